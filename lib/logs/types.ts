@@ -1,0 +1,79 @@
+/** Channels that the computation knows by name; any other column keeps a free name. */
+export const KNOWN_CHANNELS = [
+  "time",
+  "wheel_speed_undriven",
+  "wheel_speed_driven",
+  "gps_speed",
+  "engine_speed",
+  "pedal",
+  "throttle",
+  "manifold_pressure",
+  "manifold_pressure_gauge",
+  "lambda",
+  "ignition_advance",
+  "knock_retard",
+  "intake_temperature",
+  "coolant_temperature",
+  "exhaust_temperature",
+  "gear",
+  "latitude",
+  "longitude",
+  "altitude",
+  "longitudinal_acceleration",
+] as const;
+export type KnownChannel = (typeof KNOWN_CHANNELS)[number];
+
+/** One column of a log, converted to its canonical unit (m/s, 1/min, %, kPa, °C, °, m, m/s², deg, or as found). */
+export interface LogChannel {
+  /** A known channel, or null for a free one. */
+  channel: KnownChannel | null;
+  /** Column title as written in the file. */
+  column: string;
+  /** Unit text found in the file, or null. */
+  unitFound: string | null;
+  /** Canonical unit of `values`. */
+  unit: string;
+  /** One value a row of the table; NaN = missing. Never interpolated. */
+  values: Float64Array;
+}
+
+export interface RefusedRow {
+  /** Line number in the file, first line = 1. */
+  row: number;
+  column?: string;
+  raw?: string;
+  reason: string;
+}
+
+/** A gap or any other finding about the file, told in a sentence. */
+export interface LogProblem {
+  code: string;
+  message: string;
+}
+
+/** What the log reader understood. Rows are in strictly rising time. */
+export interface LogTable {
+  /** Seconds from the first kept sample, strictly rising. */
+  timeS: Float64Array;
+  channels: LogChannel[];
+  encoding: string;
+  delimiter: string | null;
+  decimal: "." | "," | null;
+  rowsRead: number;
+  rowsRefused: RefusedRow[];
+  time: { column: string; form: string; from: string; toS: number; rateHz: number; gaps: { fromS: number; toS: number }[] };
+  /** Columns that carry no channel, named. */
+  leftOut: string[];
+  problems: LogProblem[];
+}
+
+/** A saved mapping from a logger's columns to channels and units; all members optional (campaign.md form). */
+export interface ChannelKey {
+  delimiter?: string;
+  decimal?: "." | ",";
+  header_rows?: number;
+  unit_row?: boolean;
+  encoding?: string;
+  time?: { column: string; form?: string };
+  columns?: Record<string, { channel: string | null; unit?: string }>;
+}

@@ -1,0 +1,176 @@
+/**
+ * Input and output of the analysis. The spelling is that of the campaign file and of the result that
+ * `npm run -s analyse` prints (snake_case with the unit in the name), so that one shape serves file, database and page.
+ * `null` = not known or a gap; nothing is invented.
+ */
+export type FactorId =
+  | "j1349_eta85"
+  | "j1349_sqrt"
+  | "iso1585_si"
+  | "din70020"
+  | "j607_std"
+  | "ci_na"
+  | "ci_turbo_12"
+  | "ci_turbo_15"
+  | "ci_turbo_liquid";
+export type FactorChoice = "auto" | "none" | FactorId;
+export type RunKind = "pull" | "coast-down" | "sprint";
+export type Leg = "out" | "back";
+
+export interface CampaignVehicle {
+  label: string;
+  engine: "spark ignition" | "compression ignition";
+  aspiration: "natural" | "turbo" | "supercharged";
+  displacement_l?: number | null;
+  drive: "FWD" | "RWD" | "AWD";
+  mass_kg: number;
+  mass_uncertainty_kg?: number | null;
+  tyre?: string | null;
+  rolling_circumference_m?: number | null;
+  gear_ratios?: number[] | null;
+  final_drive?: number | null;
+  speed_at_rpm?: { gear: number; rpm: number; speed_kmh: number } | null;
+  redline_rpm: number;
+  engine_inertia_kgm2?: number | null;
+  wheel_inertia_kgm2?: number | null;
+  mesh_efficiency?: number | null;
+  qc_mg_per_l_cycle?: number | null;
+}
+
+export interface RunWeather {
+  temp_c: number;
+  pressure_hpa: number;
+  rh_pct: number;
+}
+
+export interface CampaignRun {
+  id: string;
+  file: string;
+  kind: RunKind;
+  side?: string | null;
+  leg?: Leg | null;
+  order?: number | null;
+  gear?: number | null;
+  started_at?: string | null;
+  weather?: RunWeather | null;
+  /** Groups runs that share losses; absent: all runs of the campaign are one road day. */
+  road_day?: string | null;
+}
+
+export interface CampaignSettings {
+  factor: FactorChoice;
+  rpm_step: number;
+  level: number;
+  seed: number;
+}
+
+export interface Campaign {
+  campaign: 1;
+  vehicle: CampaignVehicle;
+  runs: CampaignRun[];
+  compare?: { a: string; b: string } | null;
+  settings: CampaignSettings;
+}
+
+export interface Reason {
+  code: string;
+  message: string;
+}
+export interface Note extends Reason {
+  from_s?: number;
+  to_s?: number;
+}
+export interface Span {
+  from_s: number;
+  to_s: number;
+}
+export type Series = (number | null)[];
+
+export interface FactorResult {
+  id: FactorId | "none";
+  value: number | null;
+  in_range: boolean | null;
+  applied: boolean;
+  why: string;
+}
+
+export interface PowerCurve {
+  rpm: number[];
+  tractive_kw: Series;
+  wheel_kw: Series;
+  engine_kw: Series;
+  engine_nm: Series;
+  engine_kw_reference: Series;
+  engine_nm_reference: Series;
+}
+
+export interface Peak {
+  engine_kw: number;
+  engine_kw_rpm: number;
+  engine_nm: number;
+  engine_nm_rpm: number;
+  uncertainty_kw: number | null;
+}
+
+export interface RunResult {
+  id: string;
+  usable: boolean;
+  reasons: Reason[];
+  notes: Note[];
+  speed_source?: string | null;
+  sample_rate_hz?: number | null;
+  segments?: { pull?: Span; coast?: Span; sprint?: Span };
+  loss?: { f0_n: number; f1_n_per_mps: number; f2_n_per_mps2: number; source: "run" | "twin" | "road day" } | null;
+  factor?: FactorResult;
+  curve?: PowerCurve | null;
+  peak?: Peak | null;
+  times_s?: Record<string, number>;
+  times_uncertainty_s?: Record<string, number>;
+  speed_at_kmh?: Record<string, number>;
+  trap_kmh?: Record<string, number>;
+}
+
+export interface SideResult {
+  n: number;
+  basis: "reference" | "day";
+  rpm: number[];
+  engine_kw: Series;
+  engine_nm: Series;
+  peak: Peak | null;
+}
+
+export interface DeltaRegion {
+  from_rpm: number;
+  to_rpm: number;
+  verdict: "gain" | "loss";
+}
+
+export interface DeltaResult {
+  quantity: "engine_nm";
+  basis: "reference" | "day";
+  rpm: number[];
+  pct: Series;
+  low_pct: Series;
+  high_pct: Series;
+  abs_nm: Series;
+  level: number;
+  simultaneous: boolean;
+  method: string;
+  regions: DeltaRegion[];
+  resolvable_pct: Series;
+  drift_pct_per_run: number | null;
+  twins: { side: string; out: string; back: string; closure_pct: number | null }[];
+  /** Difference of the two sides' peaks (B − A) with the half-width of its own interval. */
+  peak_difference?: { engine_kw: number; half_width_kw: number | null; engine_nm: number; half_width_nm: number | null } | null;
+  /** Differences of times (B − A) with their own interval, per name as in `times_s`. */
+  times_difference?: Record<string, { a_s: number; b_s: number; difference_s: number; half_width_s: number | null; n_a: number; n_b: number }>;
+  warnings?: Reason[];
+}
+
+export interface CampaignResult {
+  analysis_version: string;
+  runs: RunResult[];
+  sides: Record<string, SideResult>;
+  delta?: DeltaResult | null;
+  warnings?: Reason[];
+}
