@@ -1,0 +1,17 @@
+export { blobs, idempotencyKeys, uploadPurposeEnum, uploadStateEnum, uploads } from "@/db/schema/blobs";
+export { comparisonResults, comparisonStateEnum, comparisons } from "@/db/schema/comparisons";
+export { decisionKindEnum, decisions, waivers } from "@/db/schema/decisions";
+export { ledger, ledgerHeads, mailQueue } from "@/db/schema/ledger";
+export {
+  accounts,
+  rateLimits,
+  sessions,
+  signingPassphrases,
+  users,
+  verificationTokens,
+} from "@/db/schema/people";
+export { gatePlans, programmeShares, programmes, vehicleSheets } from "@/db/schema/programmes";
+export { intendedUseEnum, revisionStateEnum, revisions } from "@/db/schema/revisions";
+export { roadDays } from "@/db/schema/road-days";
+export { legEnum, runAnalyses, runKindEnum, runStateEnum, runs } from "@/db/schema/runs";
+export { invitations, memberships, roleEnum, workspaces } from "@/db/schema/workspaces";

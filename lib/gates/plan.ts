@@ -1,0 +1,63 @@
+/** How much a gate binds: a must blocks a promotion unless waived, a should is shown, off is not asked. */
+export type GateLevel = "must" | "should" | "off";
+
+/** `waived` is given by a lead in a decision, `stale` by whoever knows that the inputs have moved; neither is computed here. */
+export type GateState = "met" | "not_met" | "too_little" | "does_not_apply" | "waived" | "stale";
+
+interface Asked<Kind extends string> {
+  /** Stable within a plan, e.g. `evidence.twins`. */
+  id: string;
+  kind: Kind;
+  level: GateLevel;
+}
+
+export type EvidenceGate = Asked<"evidence"> &
+  (
+    | { ask: "closed_twins"; atLeastPerSide: number }
+    | { ask: "counterbalanced" }
+    | { ask: "road_days"; atLeast: number }
+  );
+
+export type ConditionsGate = Asked<"conditions"> &
+  (
+    | { ask: "factor_in_range" }
+    | { ask: "alike_temperature"; withinK: number }
+    | { ask: "alike_pressure"; withinHpa: number }
+    | { ask: "alike_mass"; withinKg: number }
+    | { ask: "alike_gear" }
+    | { ask: "twin_closure"; withinPct: number }
+  );
+
+/** Somewhere-region claim on torque; the whole simultaneous band must lie on the safe side. */
+export type GainGate = Asked<"gain"> & { fromRpm: number; toRpm: number; atLeastPct: number };
+
+/** Null ends stand for 500 above the start of the pull and 300 below the limiter. */
+export type NoLossGate = Asked<"no_loss"> & {
+  fromRpm: number | null;
+  toRpm: number | null;
+  beyondPct: number;
+};
+
+/** `time` is a name of `times_s`, e.g. "80-120" (km/h). */
+export type SprintGate = Asked<"sprint"> & { time: string; notSlowerByS: number };
+
+export type Gate = EvidenceGate | ConditionsGate | GainGate | NoLossGate | SprintGate;
+
+/** A versioned plan: the version is kept by whoever stores it. */
+export interface GatePlan {
+  plan: 1;
+  gates: Gate[];
+}
+
+export interface GateResult {
+  id: string;
+  kind: Gate["kind"];
+  level: GateLevel;
+  state: GateState;
+  /** Short name of what is asked, e.g. "No loss beyond 1 %, 2,200 to 6,300 per minute". */
+  title: string;
+  /** One plain sentence: why this state. */
+  why: string;
+  /** What to do next; null when met or when it does not apply. */
+  next: string | null;
+}

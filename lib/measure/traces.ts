@@ -1,0 +1,17 @@
+import type { Span } from "@/lib/measure/types";
+
+/** One channel of a run thinned for drawing; `values` has the length of `timeS`, null = gap. */
+export interface TraceChannel {
+  channel: string;
+  label: string;
+  unit: string;
+  values: (number | null)[];
+}
+
+/** Thinned channels of one run on one time axis (s from the log's start), for the run page. */
+export interface RunTraces {
+  timeS: number[];
+  channels: TraceChannel[];
+  segments: { pull?: Span; coast?: Span; sprint?: Span };
+  masked: Span[];
+}
