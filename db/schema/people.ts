@@ -17,27 +17,6 @@ export const users = pgTable(
   (t) => [uniqueIndex("users_email").on(sql`lower(${t.email})`)],
 );
 
-/** Kept because the sign-in adapter asks for it; no outside account provider is offered. */
-export const accounts = pgTable(
-  "accounts",
-  {
-    userId: uuid("user_id")
-      .notNull()
-      .references(() => users.id),
-    type: text("type").notNull(),
-    provider: text("provider").notNull(),
-    providerAccountId: text("provider_account_id").notNull(),
-    refresh_token: text("refresh_token"),
-    access_token: text("access_token"),
-    expires_at: integer("expires_at"),
-    token_type: text("token_type"),
-    scope: text("scope"),
-    id_token: text("id_token"),
-    session_state: text("session_state"),
-  },
-  (t) => [primaryKey({ columns: [t.provider, t.providerAccountId] })],
-);
-
 /** `sessionToken` holds the SHA-256 of the cookie's value, never the value. */
 export const sessions = pgTable("sessions", {
   sessionToken: text("session_token").primaryKey(),
