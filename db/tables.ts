@@ -3,7 +3,6 @@ export { comparisonResults, comparisonStateEnum, comparisons } from "@/db/schema
 export { decisionKindEnum, decisions, waivers } from "@/db/schema/decisions";
 export { ledger, ledgerHeads, mailQueue } from "@/db/schema/ledger";
 export {
-  accounts,
   rateLimits,
   sessions,
   signingPassphrases,
