@@ -15,12 +15,17 @@ function judge(cell: Cell, actor: Actor, facts: Facts, doing: string): Verdict {
         ? { ok: true }
         : { ok: false, reason: `You can't ${doing}: only the person who made it can.` };
     case "granted":
-      return facts.granted ? { ok: true } : { ok: false, reason: `You can't ${doing}: it was not shared with you.` };
+      return facts.granted
+        ? { ok: true }
+        : { ok: false, reason: `You can't ${doing}: it was not shared with you.` };
     case "not-author": {
       const isOwn = facts.authorId === actor.userId || facts.submitterId === actor.userId;
       if (!isOwn) return { ok: true };
       if (!facts.otherActiveLead) return { ok: true, selfReleased: true };
-      return { ok: false, reason: `You can't ${doing}: you made it or asked for the decision, so another lead decides.` };
+      return {
+        ok: false,
+        reason: `You can't ${doing}: you made it or asked for the decision, so another lead decides.`,
+      };
     }
   }
 }

@@ -27,7 +27,10 @@ export function mintCtx(parts: Omit<Ctx, typeof minted | "requestId"> & { reques
 }
 
 /** The same asker inside a transaction; a nested call is a savepoint. */
-export async function withTransaction<T>(ctx: Ctx, work: (tx: Transaction, ctx: Ctx) => Promise<T>): Promise<T> {
+export async function withTransaction<T>(
+  ctx: Ctx,
+  work: (tx: Transaction, ctx: Ctx) => Promise<T>,
+): Promise<T> {
   return await ctx.db.transaction((tx) => work(tx, { ...ctx, db: tx }));
 }
 

@@ -1,0 +1,89 @@
+import "server-only";
+import { cookies, headers } from "next/headers";
+import { redirect } from "next/navigation";
+import { cache } from "react";
+import { selectMemberships, selectSession, selectUser } from "@/db/queries/people";
+import { hashSessionToken } from "@/lib/auth/adapter";
+import { auth } from "@/lib/auth/config";
+import { sessionCookieName } from "@/lib/auth/start-session";
+import { UnauthorizedError } from "@/lib/errors";
+import type { Role } from "@/lib/policy/actor";
+import { runtime } from "@/lib/runtime";
+import { type Ctx, mintCtx } from "@/lib/services/ctx";
+
+export interface Person {
+  id: string;
+  name: string;
+  email: string;
+  sessionAgeS: number;
+  tokenHash: string;
+  memberships: { workspaceId: string; workspaceName: string; sample: boolean; roles: Role[] }[];
+  activeWorkspaceId: string | null;
+}
+
+/** The signed-in person with their memberships, read once a request; null without a session. */
+export const currentPerson = cache(async (): Promise<Person | null> => {
+  const session = await auth();
+  const userId = session?.user?.id;
+  const token = (await cookies()).get(sessionCookieName())?.value;
+  if (!userId || !token) return null;
+  const { db } = runtime();
+  const tokenHash = hashSessionToken(token);
+  const [user, row, memberships] = await Promise.all([
+    selectUser(db, { userId }),
+    selectSession(db, { tokenHash }),
+    selectMemberships(db, { userId }),
+  ]);
+  if (!user || !row) return null;
+  const active = memberships.find((m) => m.workspaceId === row.activeWorkspaceId) ?? memberships[0];
+  return {
+    id: user.id,
+    name: user.name ?? user.email,
+    email: user.email,
+    sessionAgeS: row.ageS,
+    tokenHash,
+    memberships,
+    activeWorkspaceId: active?.workspaceId ?? null,
+  };
+});
+
+/** The context of this request in the person's active workspace, or null without session or membership. */
+export const currentCtx = cache(async (): Promise<Ctx | null> => {
+  const person = await currentPerson();
+  const membership = person?.memberships.find((m) => m.workspaceId === person.activeWorkspaceId);
+  if (!person || !membership) return null;
+  const { db, store } = runtime();
+  const requestId = (await headers()).get("x-request-id") ?? undefined;
+  return mintCtx({
+    userId: person.id,
+    userName: person.name,
+    workspaceId: membership.workspaceId,
+    roles: membership.roles,
+    requestId,
+    db,
+    store,
+  });
+});
+
+/** For pages: sends a stranger to sign in, and a person without a workspace to make one. */
+export async function requireCtx(): Promise<Ctx> {
+  const ctx = await currentCtx();
+  if (ctx) return ctx;
+  redirect((await currentPerson()) ? "/workspaces/new" : "/sign-in");
+}
+
+/** For pages that need no workspace. */
+export async function requirePerson(): Promise<Person> {
+  return (await currentPerson()) ?? redirect("/sign-in");
+}
+
+/** For route handlers and actions. @throws UnauthorizedError */
+export async function requireCtxOrThrow(): Promise<Ctx> {
+  const ctx = await currentCtx();
+  if (!ctx)
+    throw new UnauthorizedError(
+      "no_session",
+      "You are not signed in, or your session has ended. Sign in and try again.",
+    );
+  return ctx;
+}

@@ -1,0 +1,109 @@
+import "server-only";
+import { randomUUID } from "node:crypto";
+import { headers } from "next/headers";
+import { z } from "zod";
+import { requireCtxOrThrow } from "@/lib/auth/current";
+import { env } from "@/lib/env";
+import { ForbiddenError, InvalidInputError, TwinpassError } from "@/lib/errors";
+import { isOwnOrigin } from "@/lib/http/origin";
+import { logger } from "@/lib/logger";
+import type { Ctx } from "@/lib/services/ctx";
+
+const PRIVATE = { "cache-control": "private, no-store", "x-content-type-options": "nosniff" };
+
+/** The one mapping from an error to an answer. Unknown errors are logged whole and told as a plain sentence with an id. */
+export function errorBody(
+  error: unknown,
+  requestId: string,
+): { status: number; body: Record<string, unknown> } {
+  if (error instanceof TwinpassError) {
+    if (error.status === 403)
+      logger().warn({ event: "security.denied", requestId, code: error.code, details: error.details });
+    return {
+      status: error.status,
+      body: { error: error.code, message: error.message, details: error.details, requestId },
+    };
+  }
+  if (error instanceof z.ZodError) {
+    const fields = z.flattenError(error).fieldErrors;
+    const first = error.issues[0];
+    return {
+      status: 422,
+      body: {
+        error: "invalid_input",
+        message: first?.message ?? "The input is not valid.",
+        fields,
+        requestId,
+      },
+    };
+  }
+  logger().error({ event: "request.failed", requestId, err: error });
+  return {
+    status: 500,
+    body: {
+      error: "internal",
+      message: `Something failed on our side. Nothing was changed. Quote ${requestId}.`,
+      requestId,
+    },
+  };
+}
+
+/** A JSON answer that no cache keeps. */
+export function json(
+  body: unknown,
+  init: { status?: number; headers?: Record<string, string> } = {},
+): Response {
+  return Response.json(body, { status: init.status ?? 200, headers: { ...PRIVATE, ...init.headers } });
+}
+
+interface Call<Params> {
+  ctx: Ctx;
+  request: Request;
+  params: Params;
+}
+
+/**
+ * Wraps a route handler: own origin for anything but GET and HEAD, session, verb, one error mapping.
+ * The handler returns a body (200) or a Response of its own.
+ */
+export function route<Params = Record<string, never>>(handle: (call: Call<Params>) => Promise<unknown>) {
+  return async (request: Request, segment: { params: Promise<Params> }): Promise<Response> => {
+    const requestId = request.headers.get("x-request-id") ?? randomUUID();
+    try {
+      if (
+        request.method !== "GET" &&
+        request.method !== "HEAD" &&
+        !isOwnOrigin(request.headers, env().AUTH_URL)
+      ) {
+        throw new ForbiddenError(
+          "foreign_origin",
+          "This request did not come from a page of Twinpass. Open the page again and retry.",
+        );
+      }
+      const ctx = await requireCtxOrThrow();
+      const answer = await handle({ ctx, request, params: await segment.params });
+      return answer instanceof Response ? answer : json(answer);
+    } catch (error) {
+      const { status, body } = errorBody(error, requestId);
+      return json(body, { status, headers: { "x-request-id": requestId } });
+    }
+  };
+}
+
+/** Parses a JSON body by schema. @throws InvalidInputError | ZodError */
+export async function parseJson<T>(request: Request, schema: z.ZodType<T>): Promise<T> {
+  const body: unknown = await request.json().catch(() => {
+    throw new InvalidInputError("not_json", "The request body is not JSON.");
+  });
+  return schema.parse(body);
+}
+
+/** For Server Actions: they can be posted to any address, so each checks the origin itself. @throws ForbiddenError */
+export async function requireOwnOrigin(): Promise<void> {
+  if (!isOwnOrigin(new Headers(await headers()), env().AUTH_URL)) {
+    throw new ForbiddenError(
+      "foreign_origin",
+      "This form did not come from a page of Twinpass. Open the page again and retry.",
+    );
+  }
+}
