@@ -1,0 +1,66 @@
+import { existsSync, readFileSync } from "node:fs";
+import { fileURLToPath } from "node:url";
+import { drizzle } from "drizzle-orm/node-postgres";
+import { migrate } from "drizzle-orm/node-postgres/migrator";
+import { Client } from "pg";
+import PgBoss from "pg-boss";
+import { env } from "@/lib/env";
+
+const MIGRATIONS = fileURLToPath(new URL("./migrations", import.meta.url));
+const GRANTS = fileURLToPath(new URL("./migrations-grants.sql", import.meta.url));
+/** Any fixed number: all migrating processes of one database ask for the same one. */
+const ONE_AT_A_TIME = 20_261_201;
+
+/**
+ * Brings a database to the newest state: tables, job queue, then what the runtime role may do. May run again and again;
+ * a second process waits for the first.
+ * @param ownerUrl connection address of the role that owns the tables
+ * @param from migrations folder and SQL of the grants; the product's own unless told
+ * @throws the database's error; the tables are then as they were before
+ */
+export async function migrateDatabase(
+  ownerUrl: string,
+  from: { migrations?: string; grants?: string } = {},
+): Promise<void> {
+  const { migrations = MIGRATIONS, grants = GRANTS } = from;
+  if (!existsSync(`${migrations}/meta/_journal.json`)) {
+    throw new Error("The folder db/migrations holds no journal: make it with npm run db:generate.");
+  }
+  const client = new Client({ connectionString: ownerUrl, connectionTimeoutMillis: 10_000 });
+  await client.connect();
+  try {
+    await client.query("select pg_advisory_lock($1)", [ONE_AT_A_TIME]);
+    await client.query("set client_min_messages = warning");
+    await migrate(drizzle(client), { migrationsFolder: migrations });
+    await installJobQueue(ownerUrl);
+    await client.query(readFileSync(grants, "utf8"));
+  } finally {
+    await client.end();
+  }
+}
+
+/** Creates or updates the tables of the job queue; web and worker may not. */
+async function installJobQueue(ownerUrl: string): Promise<void> {
+  const boss = new PgBoss({ connectionString: ownerUrl, supervise: false, schedule: false, max: 1 });
+  let failure: unknown;
+  boss.on("error", (error) => {
+    failure = error;
+  });
+  await boss.start();
+  await boss.stop({ graceful: false, wait: true });
+  if (failure !== undefined) throw failure;
+}
+
+async function main(): Promise<void> {
+  const { DATABASE_OWNER_URL } = env();
+  if (DATABASE_OWNER_URL === undefined)
+    throw new Error("DATABASE_OWNER_URL is missing: migrations run as the owner.");
+  await migrateDatabase(DATABASE_OWNER_URL);
+}
+
+if (process.argv[1] === fileURLToPath(import.meta.url)) {
+  main().catch((error: unknown) => {
+    console.error(error instanceof Error ? error.message : error);
+    process.exitCode = 1;
+  });
+}
