@@ -35,6 +35,10 @@ export interface LogChannel {
   unit: string;
   /** One value a row of the table; NaN = missing. Never interpolated. */
   values: Float64Array;
+  /** Free name given by a channel key. */
+  name?: string;
+  /** A wheel speed named by its axle while the driven axle is not known. */
+  axle?: "front" | "rear";
 }
 
 export interface RefusedRow {
@@ -61,7 +65,14 @@ export interface LogTable {
   decimal: "." | "," | null;
   rowsRead: number;
   rowsRefused: RefusedRow[];
-  time: { column: string; form: string; from: string; toS: number; rateHz: number; gaps: { fromS: number; toS: number }[] };
+  time: {
+    column: string;
+    form: string;
+    from: string;
+    toS: number;
+    rateHz: number;
+    gaps: { fromS: number; toS: number }[];
+  };
   /** Columns that carry no channel, named. */
   leftOut: string[];
   problems: LogProblem[];

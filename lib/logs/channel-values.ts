@@ -1,0 +1,174 @@
+import { CHANNEL_UNITS, readTitle } from "@/lib/logs/channel-names";
+import type { ChannelKey, KnownChannel, LogChannel, LogProblem } from "@/lib/logs/types";
+import { KNOWN_CHANNELS } from "@/lib/logs/types";
+import { type ParsedUnit, parseUnit, toCanonical } from "@/lib/units/unit-text";
+
+/** A column as read: title, unit row cell, raw values in file order of kept rows (NaN = missing). */
+export interface RawColumn {
+  title: string;
+  unitRowText: string | null;
+  values: Float64Array;
+}
+
+/** An engine turns at no manifold pressure below this: such a reading is not an absolute one. */
+const LOWEST_ABSOLUTE_KPA = 12;
+
+function isKnown(name: string | null): name is KnownChannel {
+  return name !== null && (KNOWN_CHANNELS as readonly string[]).includes(name);
+}
+
+function range(values: Float64Array): { min: number; max: number } {
+  let min = Number.POSITIVE_INFINITY;
+  let max = Number.NEGATIVE_INFINITY;
+  for (const value of values) {
+    if (value < min) min = value;
+    if (value > max) max = value;
+  }
+  return { min, max };
+}
+
+function asFound(column: RawColumn, unitFound: string | null, extra: Partial<LogChannel> = {}): LogChannel {
+  return {
+    channel: null,
+    column: column.title,
+    unitFound,
+    unit: unitFound ?? "",
+    values: column.values,
+    ...extra,
+  };
+}
+
+/** Decides absolute or gauge: the unit text, then the title, then the values; doubt is told. */
+function pressureChannel(
+  stated: "absolute" | "gauge" | null,
+  boostWord: boolean,
+  values: Float64Array,
+  title: string,
+  problems: LogProblem[],
+): "manifold_pressure" | "manifold_pressure_gauge" {
+  const { min } = range(values);
+  if (stated === "absolute" && min >= 0) return "manifold_pressure";
+  if (stated === "gauge") return "manifold_pressure_gauge";
+  if (min < LOWEST_ABSOLUTE_KPA) {
+    problems.push({
+      code: "pressure_taken_as_gauge",
+      message: `"${title}" falls to ${min.toFixed(1)} kPa, too low for an absolute manifold pressure; it is taken as gauge pressure.`,
+    });
+    return "manifold_pressure_gauge";
+  }
+  if (boostWord) {
+    problems.push({
+      code: "pressure_taken_as_absolute",
+      message: `"${title}" does not say whether it is absolute or gauge; it never falls below ${min.toFixed(1)} kPa and is taken as absolute. State it in a channel key if that is wrong.`,
+    });
+  }
+  return "manifold_pressure";
+}
+
+/**
+ * Turns raw columns into channels in canonical units. A known quantity whose unit is missing or does not fit keeps
+ * its raw values as a free channel with a problem entry. The first of two columns of one channel wins.
+ * `drive` tells which axle is driven; without it front and rear wheel speeds stay free channels.
+ */
+export function buildChannels(
+  columns: readonly RawColumn[],
+  key: ChannelKey,
+  drive: "FWD" | "RWD" | "AWD" | undefined,
+  problems: LogProblem[],
+): LogChannel[] {
+  const taken = new Set<string>();
+  return columns.map((column) => {
+    const built = buildChannel(column, key, drive, problems);
+    if (built.channel === null) return built;
+    if (taken.has(built.channel)) {
+      problems.push({
+        code: "second_column_of_channel",
+        message: `"${column.title}" is a second column of ${built.channel}; the first one is used. Choose with a channel key.`,
+      });
+      return { ...built, channel: null };
+    }
+    taken.add(built.channel);
+    return built;
+  });
+}
+
+function buildChannel(
+  column: RawColumn,
+  key: ChannelKey,
+  drive: "FWD" | "RWD" | "AWD" | undefined,
+  problems: LogProblem[],
+): LogChannel {
+  const { title } = column;
+  const reading = readTitle(title);
+  const stated = key.columns?.[title];
+  const unitText = stated?.unit ?? (column.unitRowText || reading.unitText);
+  let unitFound = unitText || null;
+  let channel: KnownChannel | null = reading.channel;
+  if (stated) {
+    if (!isKnown(stated.channel))
+      return asFound(column, unitFound, stated.channel ? { name: stated.channel } : {});
+    channel = stated.channel;
+  } else if (reading.axle) {
+    if (!drive || drive === "AWD") {
+      if (drive === "AWD") channel = "wheel_speed_driven";
+      else {
+        problems.push({
+          code: "axle_drive_unknown",
+          message: `"${title}" is a ${reading.axle} wheel speed; whether that axle is driven is stated on the vehicle sheet or in a channel key.`,
+        });
+        return asFound(column, unitFound, { axle: reading.axle });
+      }
+    } else
+      channel =
+        (drive === "FWD") === (reading.axle === "front") ? "wheel_speed_driven" : "wheel_speed_undriven";
+  }
+  if (channel === null) return asFound(column, unitFound);
+  const expected = CHANNEL_UNITS[channel];
+  let parsed: ParsedUnit | null = parseUnit(unitFound);
+  const fits =
+    parsed !== null &&
+    (parsed.dimension === expected.dimension ||
+      (parsed.dimension === "number" && expected.withoutUnit !== null));
+  if (!fits && unitFound !== null && !stated?.unit && !column.unitRowText && !/[[({]/.test(title))
+    unitFound = null;
+  if (!fits) {
+    if (unitFound === null && expected.withoutUnit !== null) parsed = parseUnit(expected.withoutUnit);
+    else {
+      problems.push({
+        code: unitFound === null ? "unit_unknown" : "unit_does_not_fit",
+        message: `"${title}" looks like ${channel}, but ${unitFound === null ? "states no unit" : `its unit "${unitFound}" does not fit`}; it is kept as a free channel. State its unit in a channel key.`,
+      });
+      return asFound(column, unitFound);
+    }
+  }
+  if (parsed === null) return asFound(column, unitFound);
+  const from = parsed;
+  const values =
+    from.factor === 1 && from.offset === 0
+      ? column.values
+      : column.values.map((value) => toCanonical(value, from));
+  if (channel === "manifold_pressure" && !stated) {
+    channel = pressureChannel(
+      from.reference ?? reading.pressureReference,
+      reading.boostWord,
+      values,
+      title,
+      problems,
+    );
+  }
+  if (reading.speedKindOpen && !stated) {
+    problems.push({
+      code: "speed_kind_assumed",
+      message: `"${title}" does not say where the speed comes from; it is taken as driven wheel speed, so slip is not excluded.`,
+    });
+  }
+  const { min, max } = range(values);
+  const [low, high] = CHANNEL_UNITS[channel].plausible;
+  if (min < low || max > high) {
+    problems.push({
+      code: "implausible_values",
+      message: `"${title}" runs from ${min.toPrecision(4)} to ${max.toPrecision(4)} ${expected.unit}, which is not plausible for ${channel}. Check its unit.`,
+    });
+  }
+  return { channel, column: title, unitFound, unit: expected.unit, values };
+}

@@ -1,0 +1,74 @@
+import { gunzipSync } from "node:zlib";
+import { FileRefusedError } from "@/lib/errors";
+import { readDelimited } from "@/lib/logs/read-delimited";
+import { sniffLog } from "@/lib/logs/sniff-log";
+import type { ChannelKey, LogTable } from "@/lib/logs/types";
+
+/** Reasons for which a log is refused as unreadable; the first nine are shared with the analysis. */
+export const LOG_REFUSALS = [
+  "empty_file",
+  "no_data_rows",
+  "no_time_column",
+  "time_not_increasing",
+  "non_numeric_values",
+  "not_text",
+  "too_many_missing",
+  "too_few_samples",
+  "format_not_supported",
+  "ambiguous_decimal",
+  "inflates_too_large",
+  "gzip_damaged",
+] as const;
+
+/** A packed log may grow to this size; more is refused before it is held in memory. */
+export const MAX_INFLATED_BYTES = 512 * 1024 * 1024;
+
+export interface ReadLogOptions {
+  /** Saved mapping of columns; wins over what the file says. */
+  key?: ChannelKey;
+  /** Name of the file, used in messages only. */
+  fileName?: string;
+  /** Driven axle: tells front and rear wheel speeds apart. Without it they stay free channels, with a problem entry. */
+  drive?: "FWD" | "RWD" | "AWD";
+}
+
+function inflate(bytes: Uint8Array): Uint8Array {
+  try {
+    return gunzipSync(bytes, { maxOutputLength: MAX_INFLATED_BYTES });
+  } catch (error) {
+    if (error instanceof RangeError) {
+      throw new FileRefusedError(
+        "inflates_too_large",
+        `The packed log grows beyond ${MAX_INFLATED_BYTES / 1024 / 1024} MB. Split the recording and upload the parts.`,
+      );
+    }
+    throw new FileRefusedError(
+      "gzip_damaged",
+      "The packed log can't be unpacked: the file is damaged or cut off. Upload it again.",
+    );
+  }
+}
+
+/**
+ * Reads a log file into channels in canonical units over strictly rising time. Accepts delimited text in any of its
+ * usual dialects, plain or gzip-packed. Nothing is interpolated; missing is NaN; doubt is a problem entry or a refusal.
+ * Throws FileRefusedError with a code of LOG_REFUSALS.
+ */
+export function readLog(bytes: Uint8Array, options: ReadLogOptions = {}): LogTable {
+  let content = bytes;
+  let sniffed = sniffLog(content);
+  if (sniffed.kind === "gzip") {
+    content = inflate(bytes);
+    sniffed = sniffLog(content);
+  }
+  if (sniffed.kind === "empty")
+    throw new FileRefusedError("empty_file", "The file is empty. Export the log again.");
+  if (sniffed.kind === "unsupported" || sniffed.kind === "gzip") {
+    const what = sniffed.kind === "gzip" ? "a file packed twice" : sniffed.name;
+    throw new FileRefusedError(
+      "format_not_supported",
+      `${options.fileName ? `"${options.fileName}"` : "This file"} is ${what}, which is not read yet. Export the log as CSV.`,
+    );
+  }
+  return readDelimited(content, options.key ?? {}, options.drive);
+}

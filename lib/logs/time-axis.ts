@@ -1,0 +1,125 @@
+import { FileRefusedError } from "@/lib/errors";
+import type { LogProblem } from "@/lib/logs/types";
+
+/** Rows to keep, in rising time, with their time from the first kept sample. */
+export interface TimeAxis {
+  /** Index of the row in the file order of data rows. */
+  order: Uint32Array;
+  /** Seconds from the first kept sample, strictly rising. */
+  timeS: Float64Array;
+  rateHz: number;
+  gaps: { fromS: number; toS: number }[];
+  problems: LogProblem[];
+}
+
+const DAY_S = 86_400;
+/** A row may arrive this many places late and still count as a short swap. */
+const MAX_SWAP_ROWS = 5;
+/** A step longer than this many usual steps is a gap. */
+const GAP_STEPS = 2.5;
+
+/** Adds a day at each fall of more than half a day: a wall clock that passed midnight. Changes `timeS` in place. */
+export function unwrapMidnight(timeS: Float64Array): number {
+  let days = 0;
+  let previous = Number.NaN;
+  for (let i = 0; i < timeS.length; i++) {
+    const raw = timeS[i] ?? Number.NaN;
+    if (Number.isNaN(raw)) continue;
+    if (raw < previous - DAY_S / 2) days++;
+    previous = raw;
+    timeS[i] = raw + days * DAY_S;
+  }
+  return days;
+}
+
+function longestPiece(
+  rows: readonly number[],
+  timeS: Float64Array,
+): { piece: number[]; pieces: number; swapped: number } {
+  const pieces: number[][] = [];
+  let piece: number[] = [];
+  let swapped = 0;
+  for (const row of rows) {
+    const t = timeS[row] ?? 0;
+    let at = piece.length;
+    while (at > 0 && (timeS[piece[at - 1] ?? 0] ?? 0) > t) at--;
+    const late = piece.length - at;
+    if (late > MAX_SWAP_ROWS) {
+      pieces.push(piece);
+      piece = [row];
+      continue;
+    }
+    if (late > 0) swapped++;
+    piece.splice(at, 0, row);
+  }
+  pieces.push(piece);
+  let best = pieces[0] ?? [];
+  for (const candidate of pieces) if (candidate.length > best.length) best = candidate;
+  return { piece: best, pieces: pieces.length, swapped };
+}
+
+/**
+ * Brings rows into strictly rising time. Short swaps are sorted, equal times keep the last row, a longer jump back
+ * splits the log and the longest piece is kept: each with a problem entry. Rows with NaN time are left out.
+ * Throws FileRefusedError `time_not_increasing`.
+ */
+export function buildTimeAxis(rawS: Float64Array): TimeAxis {
+  const rows: number[] = [];
+  for (let i = 0; i < rawS.length; i++) if (Number.isFinite(rawS[i])) rows.push(i);
+  const { piece, pieces, swapped } = longestPiece(rows, rawS);
+  const kept: number[] = [];
+  let repeated = 0;
+  for (const row of piece) {
+    const last = kept[kept.length - 1];
+    if (last !== undefined && rawS[last] === rawS[row]) {
+      kept[kept.length - 1] = row;
+      repeated++;
+    } else kept.push(row);
+  }
+  if (kept.length < 2 && rows.length >= 2) {
+    throw new FileRefusedError(
+      "time_not_increasing",
+      "The time column does not rise: every row carries the same time. Export the log with the time of each sample.",
+    );
+  }
+  const problems: LogProblem[] = [];
+  if (swapped > 0)
+    problems.push({
+      code: "rows_out_of_order",
+      message: `${swapped} rows stood up to ${MAX_SWAP_ROWS} places too late in time and were sorted.`,
+    });
+  if (repeated > 0)
+    problems.push({
+      code: "repeated_time",
+      message: `${repeated} rows repeat the time of another row; the last of each was kept.`,
+    });
+  if (pieces > 1) {
+    problems.push({
+      code: "time_jumps_back",
+      message: `The time jumps back ${pieces - 1} times; the longest of the ${pieces} pieces was kept (${piece.length} of ${rows.length} rows).`,
+    });
+  }
+  const t0 = rawS[kept[0] ?? 0] ?? 0;
+  const timeS = Float64Array.from(kept, (row) => Math.round(((rawS[row] ?? 0) - t0) * 1e9) / 1e9);
+  return { order: Uint32Array.from(kept), timeS, ...ratesAndGaps(timeS, problems), problems };
+}
+
+function ratesAndGaps(timeS: Float64Array, problems: LogProblem[]): Pick<TimeAxis, "rateHz" | "gaps"> {
+  const steps = Float64Array.from(
+    { length: Math.max(0, timeS.length - 1) },
+    (_, i) => (timeS[i + 1] ?? 0) - (timeS[i] ?? 0),
+  );
+  const step = Float64Array.from(steps).sort()[steps.length >> 1] ?? 0;
+  const gaps: { fromS: number; toS: number }[] = [];
+  for (let i = 0; i < steps.length; i++) {
+    if ((steps[i] ?? 0) > GAP_STEPS * step) gaps.push({ fromS: timeS[i] ?? 0, toS: timeS[i + 1] ?? 0 });
+  }
+  const longest = gaps.reduce((max, gap) => Math.max(max, gap.toS - gap.fromS), 0);
+  if (gaps.length > 0) {
+    problems.push({
+      code: "gaps",
+      message: `${gaps.length} gaps in the samples, the longest ${longest.toFixed(2)} s; nothing is filled in.`,
+    });
+  }
+  return { rateHz: step > 0 ? Math.round(1e6 / step) / 1e6 : 0, gaps };
+}
