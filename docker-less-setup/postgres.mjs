@@ -39,6 +39,7 @@ const POLL_MS = 40;
 /** Owner: migrations, owns every table. App: what web and worker run as, owns nothing. */
 export const ROLES = Object.freeze({ admin: "twinpass_admin", owner: "twinpass_owner", app: "twinpass_app" });
 const DATABASE = "twinpass";
+const SETTINGS_FILE = "twinpass.conf";
 
 /** Makes a cluster with password authentication, beside its place first, so that a broken attempt never counts. */
 function makeCluster(
@@ -63,7 +64,7 @@ function makeCluster(
     writeFileSync(logFile, log);
     throw new SetupProblem(explainFailure({ step: "Making the database", code: made.status, log, logFile }));
   }
-  appendFileSync(join(partial, "postgresql.conf"), "\ninclude = 'twinpass.conf'\n");
+  appendFileSync(join(partial, "postgresql.conf"), `\ninclude = '${SETTINGS_FILE}'\n`);
   renameSync(partial, folder);
 }
 
@@ -91,13 +92,22 @@ function survivingPort(/** @type {Place} */ { bin, folder, runAs }) {
   return Number(readFileSync(join(folder, "postmaster.pid"), "utf8").split("\n")[3]);
 }
 
+/** @param {string} folder @returns {Promise<number>} the port of the last start if it is free, else another */
+async function choosePort(folder) {
+  const file = join(folder, SETTINGS_FILE);
+  const last = existsSync(file)
+    ? Number(readFileSync(file, "utf8").match(/^port = (\d+)$/m)?.[1])
+    : Number.NaN;
+  return last > 0 && (await portIsFree(last, "127.0.0.1")) ? last : freePort();
+}
+
 /**
  * Starts the cluster of a folder, making it first where there is none, with the two roles and the database in it.
- * @param {{ folder: string, logFile: string, passwords: Passwords, port?: number, durable: boolean }} options
- * `port`: the one of the last start, taken again if it is free
+ * It keeps the port of its last start where that is still free.
+ * @param {{ folder: string, logFile: string, passwords: Passwords, durable: boolean }} options
  * @returns {Promise<Cluster>}
  */
-export async function startCluster({ folder, logFile, passwords, port: wanted, durable }) {
+export async function startCluster({ folder, logFile, passwords, durable }) {
   const bin = serverBinaries(folder);
   const runAs = serverUser(folder);
   const place = { bin, folder, runAs, durable };
@@ -106,7 +116,7 @@ export async function startCluster({ folder, logFile, passwords, port: wanted, d
     makeCluster({ ...place, adminPassword: passwords.admin });
   }
   const surviving = survivingPort(place);
-  const port = surviving ?? (wanted && (await portIsFree(wanted, "127.0.0.1")) ? wanted : await freePort());
+  const port = surviving ?? (await choosePort(folder));
 
   /** @type {Cluster["url"]} */
   const url = (role, database = DATABASE) =>
@@ -146,7 +156,7 @@ export async function startCluster({ folder, logFile, passwords, port: wanted, d
 async function launchServer(
   /** @type {Place & { logFile: string, port: number }} */ { bin, folder, runAs, logFile, port, durable },
 ) {
-  writeFileSync(join(folder, "twinpass.conf"), settings({ port, durable }), { mode: 0o644 });
+  writeFileSync(join(folder, SETTINGS_FILE), settings({ port, durable }), { mode: 0o644 });
   mkdirSync(dirname(logFile), { recursive: true });
   const log = openSync(logFile, "a");
   const logStart = statSync(logFile).size;
