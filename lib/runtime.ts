@@ -1,31 +1,38 @@
 import { createDatabase, type Database } from "@/db/client";
 import { env } from "@/lib/env";
-import { openStore } from "@/storage/open";
+import { openStore, type StoreConfig } from "@/storage/open";
 import type { ObjectStore } from "@/storage/port";
 
-interface Runtime {
-  db: Database;
-  store: ObjectStore;
+// One of each a process, kept on globalThis: the web process bundles this module more than once.
+const holder = globalThis as typeof globalThis & {
+  twinpassDatabase?: Database;
+  twinpassStore?: Promise<ObjectStore>;
+};
+
+/** The process's database pool, opened at the first call. */
+export function database(): Database {
+  holder.twinpassDatabase ??= createDatabase(env().DATABASE_URL).db;
+  return holder.twinpassDatabase;
 }
 
-// One pool a process, kept on globalThis: the web process bundles this module more than once.
-const holder = globalThis as typeof globalThis & { twinpassRuntime?: Runtime };
-
-/** The process's database pool and object store, opened at the first call. */
-export function runtime(): Runtime {
-  if (!holder.twinpassRuntime) {
-    const settings = env();
-    const { db } = createDatabase(settings.DATABASE_URL);
-    holder.twinpassRuntime = { db, store: openStore(storeConfig()) };
-  }
-  return holder.twinpassRuntime;
+/** The process's object store, opened at the first call. */
+export function objectStore(): Promise<ObjectStore> {
+  holder.twinpassStore ??= openStore(storeConfig());
+  return holder.twinpassStore;
 }
 
-/** Which store to open, from the environment. */
-export function storeConfig(): Parameters<typeof openStore>[0] {
+/** Where signed links of the filesystem driver point to. */
+export const FILE_LINK_PATH = "/api/files";
+
+function storeConfig(): StoreConfig {
   const settings = env();
   if (settings.STORAGE_DRIVER === "filesystem") {
-    return { driver: "filesystem", root: settings.STORAGE_ROOT, linkSecret: settings.STORAGE_LINK_SECRET };
+    return {
+      driver: "filesystem",
+      root: settings.STORAGE_ROOT,
+      linkSecret: settings.STORAGE_LINK_SECRET,
+      linkPath: FILE_LINK_PATH,
+    };
   }
   return {
     driver: "s3",

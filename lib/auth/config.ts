@@ -5,7 +5,7 @@ import Nodemailer from "next-auth/providers/nodemailer";
 import { createAdapter } from "@/lib/auth/adapter";
 import { queueSignInMail } from "@/lib/auth/sign-in-mail";
 import { env } from "@/lib/env";
-import { runtime } from "@/lib/runtime";
+import { database } from "@/lib/runtime";
 
 /** A link works ten minutes (OWASP ASVS 5.0, 6.5.5) and once. */
 const LINK_LIFE_S = 10 * 60;
@@ -19,7 +19,7 @@ export const EMAIL_PROVIDER = "email";
 export function authConfig(): NextAuthConfig {
   const settings = env();
   return {
-    adapter: createAdapter(runtime().db),
+    adapter: createAdapter(database()),
     secret: settings.AUTH_SECRET,
     trustHost: true,
     basePath: "/api/auth",

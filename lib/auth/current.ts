@@ -8,7 +8,7 @@ import { auth } from "@/lib/auth/config";
 import { sessionCookieName } from "@/lib/auth/start-session";
 import { UnauthorizedError } from "@/lib/errors";
 import type { Role } from "@/lib/policy/actor";
-import { runtime } from "@/lib/runtime";
+import { database, objectStore } from "@/lib/runtime";
 import { type Ctx, mintCtx } from "@/lib/services/ctx";
 
 export interface Person {
@@ -27,7 +27,7 @@ export const currentPerson = cache(async (): Promise<Person | null> => {
   const userId = session?.user?.id;
   const token = (await cookies()).get(sessionCookieName())?.value;
   if (!userId || !token) return null;
-  const { db } = runtime();
+  const db = database();
   const tokenHash = hashSessionToken(token);
   const [user, row, memberships] = await Promise.all([
     selectUser(db, { userId }),
@@ -52,7 +52,6 @@ export const currentCtx = cache(async (): Promise<Ctx | null> => {
   const person = await currentPerson();
   const membership = person?.memberships.find((m) => m.workspaceId === person.activeWorkspaceId);
   if (!person || !membership) return null;
-  const { db, store } = runtime();
   const requestId = (await headers()).get("x-request-id") ?? undefined;
   return mintCtx({
     userId: person.id,
@@ -60,8 +59,8 @@ export const currentCtx = cache(async (): Promise<Ctx | null> => {
     workspaceId: membership.workspaceId,
     roles: membership.roles,
     requestId,
-    db,
-    store,
+    db: database(),
+    store: await objectStore(),
   });
 });
 

@@ -6,7 +6,7 @@ import { countTry } from "@/db/queries/people";
 import { authConfig, EMAIL_PROVIDER, signIn } from "@/lib/auth/config";
 import { env } from "@/lib/env";
 import { TooManyRequestsError } from "@/lib/errors";
-import { runtime } from "@/lib/runtime";
+import { database } from "@/lib/runtime";
 
 const LINKS_PER_ADDRESS_AND_HOUR = 5;
 const LINKS_PER_HOUR = 200;
@@ -23,7 +23,7 @@ export const emailSchema = z
  * @throws TooManyRequestsError after five links an hour for one address, or 200 in all
  */
 export async function requestLink(email: string): Promise<void> {
-  const { db } = runtime();
+  const db = database();
   const forAddress = await countTry(db, { bucket: `link:${email}` });
   const inAll = await countTry(db, { bucket: "link" });
   if (forAddress > LINKS_PER_ADDRESS_AND_HOUR || inAll > LINKS_PER_HOUR) {

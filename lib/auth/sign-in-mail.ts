@@ -1,7 +1,7 @@
 import "server-only";
 import { enqueueMail } from "@/db/queries/mail";
 import { env } from "@/lib/env";
-import { runtime } from "@/lib/runtime";
+import { database } from "@/lib/runtime";
 
 /** Address of the landing page for a link; opening it consumes nothing, its button does. */
 export function signInLink(origin: string, email: string, token: string): string {
@@ -14,7 +14,7 @@ export function signInLink(origin: string, email: string, token: string): string
 /** Queues the sign-in mail; the worker sends it. The origin is the configured one, never a request's. */
 export async function queueSignInMail(email: string, token: string): Promise<void> {
   const link = signInLink(env().AUTH_URL, email, token);
-  await enqueueMail(runtime().db, {
+  await enqueueMail(database(), {
     workspaceId: null,
     toAddress: email,
     subject: "Your sign-in link for Twinpass",

@@ -3,7 +3,7 @@ import { randomBytes } from "node:crypto";
 import { cookies } from "next/headers";
 import { createAdapter } from "@/lib/auth/adapter";
 import { env } from "@/lib/env";
-import { runtime } from "@/lib/runtime";
+import { database } from "@/lib/runtime";
 
 const LIFE_MS = 12 * 60 * 60 * 1000;
 
@@ -16,7 +16,7 @@ export function sessionCookieName(): string {
 export async function startSession(userId: string): Promise<void> {
   const sessionToken = randomBytes(32).toString("base64url");
   const expires = new Date(Date.now() + LIFE_MS);
-  await createAdapter(runtime().db).createSession?.({ sessionToken, userId, expires });
+  await createAdapter(database()).createSession?.({ sessionToken, userId, expires });
   const secure = env().AUTH_URL.startsWith("https:");
   (await cookies()).set(sessionCookieName(), sessionToken, {
     httpOnly: true,

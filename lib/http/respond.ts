@@ -4,7 +4,7 @@ import { headers } from "next/headers";
 import { z } from "zod";
 import { requireCtxOrThrow } from "@/lib/auth/current";
 import { env } from "@/lib/env";
-import { ForbiddenError, InvalidInputError, TwinpassError } from "@/lib/errors";
+import { ForbiddenError, InvalidInputError, NotFoundError, TwinpassError } from "@/lib/errors";
 import { isOwnOrigin } from "@/lib/http/origin";
 import { logger } from "@/lib/logger";
 import type { Ctx } from "@/lib/services/ctx";
@@ -106,4 +106,11 @@ export async function requireOwnOrigin(): Promise<void> {
       "This form did not come from a page of Twinpass. Open the page again and retry.",
     );
   }
+}
+
+/** An id from an address; anything but a UUID names nothing. @throws NotFoundError */
+export function requireUuid(text: string): string {
+  if (!z.uuid().safeParse(text).success)
+    throw new NotFoundError("not_found", "There is nothing at this address.");
+  return text;
 }

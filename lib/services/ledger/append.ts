@@ -6,7 +6,16 @@ import { ledgerDigest } from "@/lib/services/ledger/entry";
 export interface LedgerEvent {
   /** Past-tense name as in authorisation.csv, e.g. `revision.created`. */
   event: string;
-  subjectType: "workspace" | "member" | "programme" | "revision" | "road_day" | "run" | "comparison" | "decision" | "passphrase";
+  subjectType:
+    | "workspace"
+    | "member"
+    | "programme"
+    | "revision"
+    | "road_day"
+    | "run"
+    | "comparison"
+    | "decision"
+    | "passphrase";
   subjectId: string | null;
   programmeId?: string | null;
   /** Old and new values, digests, the reason. Never a secret, never an address of a person. */
@@ -18,7 +27,11 @@ export interface LedgerEvent {
  * The chain's head is locked, so entries of one workspace follow one another; the time is the database's.
  * @returns the database's time of the entry
  */
-export async function appendLedger(tx: Transaction, ctx: Ctx, event: LedgerEvent): Promise<{ seq: number; at: Date }> {
+export async function appendLedger(
+  tx: Transaction,
+  ctx: Ctx,
+  event: LedgerEvent,
+): Promise<{ seq: number; at: Date }> {
   const { workspaceId } = ctx;
   const head = await lockLedgerHead(tx, { workspaceId });
   const covered = {

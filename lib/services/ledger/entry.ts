@@ -14,7 +14,8 @@ export function firstBrokenLink(entries: readonly LedgerRow[]): number | null {
   let previous: LedgerRow | undefined;
   for (const entry of entries) {
     const { sha256, ...covered } = entry;
-    const follows = previous === undefined || (entry.seq === previous.seq + 1 && entry.previousSha256 === previous.sha256);
+    const follows =
+      previous === undefined || (entry.seq === previous.seq + 1 && entry.previousSha256 === previous.sha256);
     if (!follows || ledgerDigest(covered) !== sha256) return entry.seq;
     previous = entry;
   }

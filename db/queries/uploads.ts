@@ -1,0 +1,77 @@
+import { and, eq, isNull, sql } from "drizzle-orm";
+import type { Queryable } from "@/db/client";
+import { blobs, programmes, revisions, runs, uploads } from "@/db/tables";
+
+export type UploadRow = typeof uploads.$inferSelect;
+
+export async function insertUpload(
+  tx: Queryable,
+  values: Pick<
+    typeof uploads.$inferInsert,
+    "workspaceId" | "userId" | "purpose" | "fileName" | "declaredBytes" | "declaredSha256" | "stagingKey"
+  >,
+): Promise<UploadRow> {
+  const [row] = await tx
+    .insert(uploads)
+    .values({ ...values, expiresAt: sql`now() + interval '24 hours'` })
+    .returning();
+  return row;
+}
+
+/** An upload of this very person; anybody else's does not exist for them. */
+export async function selectUpload(
+  db: Queryable,
+  { workspaceId, userId, uploadId }: { workspaceId: string; userId: string; uploadId: string },
+): Promise<UploadRow | null> {
+  const [row] = await db
+    .select()
+    .from(uploads)
+    .where(and(eq(uploads.id, uploadId), eq(uploads.workspaceId, workspaceId), eq(uploads.userId, userId)));
+  return row ?? null;
+}
+
+/** Moves the count of received bytes on, if it still is where the part began. @returns whether it was */
+export async function advanceUpload(
+  tx: Queryable,
+  { uploadId, fromBytes, toBytes }: { uploadId: string; fromBytes: number; toBytes: number },
+): Promise<boolean> {
+  const moved = await tx
+    .update(uploads)
+    .set({ receivedBytes: toBytes })
+    .where(and(eq(uploads.id, uploadId), eq(uploads.receivedBytes, fromBytes), eq(uploads.state, "open")))
+    .returning({ id: uploads.id });
+  return moved.length === 1;
+}
+
+export async function setUploadState(
+  tx: Queryable,
+  { uploadId, state }: { uploadId: string; state: UploadRow["state"] },
+): Promise<void> {
+  await tx.update(uploads).set({ state }).where(eq(uploads.id, uploadId));
+}
+
+/** The row that says that a content is kept: created once, whoever comes second finds it. */
+export async function insertBlob(
+  tx: Queryable,
+  values: { workspaceId: string; sha256: string; sizeBytes: number },
+): Promise<void> {
+  await tx.insert(blobs).values(values).onConflictDoNothing();
+}
+
+/** Runs and revisions of the workspace that were made from the same bytes. */
+export async function selectUsesOfBlob(
+  db: Queryable,
+  { workspaceId, sha256 }: { workspaceId: string; sha256: string },
+) {
+  const usedAsLog = await db
+    .select({ number: runs.number, programme: programmes.name })
+    .from(runs)
+    .innerJoin(programmes, eq(programmes.id, runs.programmeId))
+    .where(and(eq(runs.workspaceId, workspaceId), eq(runs.logSha256, sha256), isNull(runs.setAsideAt)));
+  const usedAsImage = await db
+    .select({ number: revisions.number, programme: programmes.name })
+    .from(revisions)
+    .innerJoin(programmes, eq(programmes.id, revisions.programmeId))
+    .where(and(eq(revisions.workspaceId, workspaceId), eq(revisions.imageSha256, sha256)));
+  return { usedAsLog, usedAsImage };
+}

@@ -1,0 +1,46 @@
+import { createHash } from "node:crypto";
+import { UnavailableError } from "@/lib/errors";
+import { logger } from "@/lib/logger";
+import type { Ctx } from "@/lib/services/ctx";
+import { blobKey } from "@/storage/keys";
+import type { StoredBytes } from "@/storage/port";
+
+type Where = Pick<Ctx, "store" | "workspaceId">;
+
+function refuse(where: Where, sha256: string): never {
+  logger().error({ event: "integrity.failed", workspaceId: where.workspaceId, sha256 });
+  throw new UnavailableError(
+    "integrity_failed",
+    "The stored file no longer has the fingerprint it was kept under, so it is not given out. Tell whoever runs this installation.",
+    { sha256 },
+  );
+}
+
+/**
+ * Reads a whole stored file and checks its fingerprint.
+ * @throws NotFoundError when the store does not hold it; UnavailableError `integrity_failed` when its bytes have changed
+ */
+export async function readBlob(where: Where, sha256: string): Promise<Uint8Array> {
+  const { body } = await where.store.get(blobKey(where.workspaceId, sha256));
+  const hash = createHash("sha256");
+  const chunks: Uint8Array[] = [];
+  for await (const chunk of body as AsyncIterable<Uint8Array>) {
+    hash.update(chunk);
+    chunks.push(chunk);
+  }
+  if (hash.digest("hex") !== sha256) refuse(where, sha256);
+  return Buffer.concat(chunks);
+}
+
+/**
+ * Opens a stored file for a download after having read it once to check its fingerprint; memory stays flat.
+ * @throws as readBlob
+ */
+export async function openBlob(where: Where, sha256: string): Promise<StoredBytes> {
+  const key = blobKey(where.workspaceId, sha256);
+  const hash = createHash("sha256");
+  const { body } = await where.store.get(key);
+  for await (const chunk of body as AsyncIterable<Uint8Array>) hash.update(chunk);
+  if (hash.digest("hex") !== sha256) refuse(where, sha256);
+  return await where.store.get(key);
+}

@@ -1,0 +1,30 @@
+import { selectUpload, type UploadRow } from "@/db/queries/uploads";
+import { NotFoundError } from "@/lib/errors";
+import type { Ctx } from "@/lib/services/ctx";
+import type { UploadState } from "@/lib/services/uploads/schema";
+import { PART_BYTES } from "@/storage/port";
+
+/** What the browser may know of an upload. */
+export function describeUpload(row: UploadRow, alreadyUsed: string[] = []): UploadState {
+  return {
+    uploadId: row.id,
+    state: row.state,
+    receivedBytes: row.receivedBytes,
+    sizeBytes: row.declaredBytes,
+    partBytes: PART_BYTES,
+    alreadyUsed,
+  };
+}
+
+/** The person's own upload. @throws NotFoundError for anybody else's */
+export async function loadUpload(ctx: Ctx, uploadId: string): Promise<UploadRow> {
+  const { workspaceId, userId } = ctx;
+  const row = await selectUpload(ctx.db, { workspaceId, userId, uploadId });
+  if (!row) throw new NotFoundError("no_upload", "There is no such upload. Choose the file again.");
+  return row;
+}
+
+/** The upload's state, for resuming. @throws NotFoundError */
+export async function getUpload(ctx: Ctx, uploadId: string): Promise<UploadState> {
+  return describeUpload(await loadUpload(ctx, uploadId));
+}
