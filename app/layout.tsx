@@ -1,8 +1,8 @@
 import type { Metadata, Viewport } from "next";
-import { cookies } from "next/headers";
 import type { ReactNode } from "react";
 import { fontVariables } from "@/app/fonts";
-import { DAYLIGHT_COOKIE, isTheme, THEME_COOKIE } from "@/components/features/shell/appearance";
+import { readAppearance } from "@/components/features/shell/read-appearance";
+import { ToastRegion } from "@/components/ui/status/toast";
 import "@/app/globals.css";
 
 export const metadata: Metadata = {
@@ -17,17 +17,20 @@ export const metadata: Metadata = {
 export const viewport: Viewport = { width: "device-width", initialScale: 1 };
 
 export default async function RootLayout({ children }: { children: ReactNode }) {
-  const jar = await cookies();
-  const theme = jar.get(THEME_COOKIE)?.value;
-  const daylight = jar.get(DAYLIGHT_COOKIE)?.value === "on";
+  const { theme, daylight } = await readAppearance();
   return (
     <html
       lang="en"
       className={fontVariables}
-      data-theme={isTheme(theme) ? theme : "system"}
+      data-theme={theme}
       data-daylight={daylight ? "on" : undefined}
+      // Extensions and the theme switch write here before React looks.
+      suppressHydrationWarning
     >
-      <body>{children}</body>
+      <body>
+        {children}
+        <ToastRegion />
+      </body>
     </html>
   );
 }
