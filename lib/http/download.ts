@@ -1,0 +1,29 @@
+import { Readable } from "node:stream";
+import type { StoredBytes } from "@/storage/port";
+
+/** File name for Content-Disposition (RFC 6266): an ASCII fall-back and the full name in RFC 8187 form. */
+export function contentDisposition(fileName: string): string {
+  const plain = fileName.replaceAll(/[^\w.-]/g, "_");
+  const encoded = encodeURIComponent(fileName).replaceAll(
+    /['()*]/g,
+    (c) => `%${c.charCodeAt(0).toString(16).toUpperCase()}`,
+  );
+  return `attachment; filename="${plain}"; filename*=UTF-8''${encoded}`;
+}
+
+/** A stored file as a download that no browser renders, with its fingerprint (RFC 9530) beside it. */
+export function download(file: StoredBytes & { fileName: string; sha256: string }): Response {
+  const body = Readable.toWeb(file.body) as ReadableStream<Uint8Array>;
+  return new Response(body, {
+    headers: {
+      "content-type": "application/octet-stream",
+      "content-length": String(file.sizeBytes),
+      "content-disposition": contentDisposition(file.fileName),
+      "repr-digest": `sha-256=:${Buffer.from(file.sha256, "hex").toString("base64")}:`,
+      "x-fingerprint": file.sha256,
+      "cache-control": "private, no-store",
+      "x-content-type-options": "nosniff",
+      "content-security-policy": "sandbox",
+    },
+  });
+}

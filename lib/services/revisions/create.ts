@@ -1,0 +1,65 @@
+import { insertRevision, selectRevision, takeRevisionNumber } from "@/db/queries/revisions";
+import { InvalidInputError, NotFoundError } from "@/lib/errors";
+import { authorise, type Ctx } from "@/lib/services/ctx";
+import { once } from "@/lib/services/idempotency";
+import { appendLedger } from "@/lib/services/ledger/append";
+import { noRevision } from "@/lib/services/revisions/load";
+import { openCalibrationImage, summarise } from "@/lib/services/revisions/read-image";
+import { type CreateRevision, createRevision } from "@/lib/services/revisions/schema";
+import { clearStaging, sealUpload, useSealedUpload } from "@/lib/services/uploads/seal";
+
+/**
+ * Adds a draft revision from an uploaded image: bytes first, then row, ledger entry and answer in one transaction.
+ * @throws ForbiddenError; NotFoundError; FileRefusedError when the image can't be read; InvalidInputError; ConflictError
+ */
+export async function addRevision(
+  ctx: Ctx,
+  input: CreateRevision,
+  idempotencyKey: string,
+): Promise<{ revisionId: string; number: number }> {
+  const request = createRevision.parse(input);
+  authorise(ctx, "revision.create");
+  const { workspaceId, userId } = ctx;
+  const { uploadId, programmeId, parentId, baseAddress, ...text } = request;
+  const sealed = await sealUpload(ctx, { uploadId, purpose: "image" });
+  const source = {
+    imageSha256: sealed.sha256,
+    imageFileName: sealed.fileName,
+    imageBaseAddress: baseAddress,
+  };
+  const imageSummary = summarise(await openCalibrationImage(ctx, source));
+  const answer = await once(ctx, { key: idempotencyKey, request }, async (tx, inner) => {
+    const number = await takeRevisionNumber(tx, { workspaceId, programmeId });
+    if (number === null)
+      throw new NotFoundError("no_programme", "There is no such programme, or it is archived.");
+    if (parentId !== null) {
+      const parent = await selectRevision(tx, { workspaceId, revisionId: parentId });
+      if (!parent) throw noRevision();
+      if (parent.programmeId !== programmeId) {
+        throw new InvalidInputError("foreign_parent", "The parent must be a revision of the same programme.");
+      }
+    }
+    await useSealedUpload(tx, inner, sealed);
+    const row = await insertRevision(tx, {
+      ...text,
+      ...source,
+      workspaceId,
+      programmeId,
+      number,
+      parentId,
+      imageBytes: sealed.sizeBytes,
+      imageSummary,
+      authorId: userId,
+    });
+    await appendLedger(tx, inner, {
+      event: "revision.created",
+      subjectType: "revision",
+      subjectId: row.id,
+      programmeId,
+      data: { number, parentId, sha256: sealed.sha256, identity: imageSummary.identity, title: text.title },
+    });
+    return { revisionId: row.id, number };
+  });
+  await clearStaging(ctx, uploadId);
+  return answer;
+}
