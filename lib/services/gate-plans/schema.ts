@@ -1,0 +1,88 @@
+import { z } from "zod";
+import type { GatePlan } from "@/lib/gates/plan";
+import { optionalNumber, requiredNumber } from "@/lib/services/number-field";
+
+const level = z.enum(["must", "should", "off"]);
+const id = z.string().regex(/^[a-z0-9_.-]{1,60}$/);
+const percent = requiredNumber({ min: 0, max: 100, unit: "%" });
+const rpm = { min: 0, max: 25_000, unit: "per minute" };
+
+const evidence = z.discriminatedUnion("ask", [
+  z.object({
+    ...{ id, level, kind: z.literal("evidence"), ask: z.literal("closed_twins") },
+    atLeastPerSide: requiredNumber({ min: 1, max: 50, integer: true }),
+  }),
+  z.object({ id, level, kind: z.literal("evidence"), ask: z.literal("counterbalanced") }),
+  z.object({
+    ...{ id, level, kind: z.literal("evidence"), ask: z.literal("road_days") },
+    atLeast: requiredNumber({ min: 1, max: 50, integer: true }),
+  }),
+]);
+
+const conditions = z.discriminatedUnion("ask", [
+  z.object({ id, level, kind: z.literal("conditions"), ask: z.literal("factor_in_range") }),
+  z.object({
+    ...{ id, level, kind: z.literal("conditions"), ask: z.literal("alike_temperature") },
+    withinK: requiredNumber({ min: 0, max: 100, unit: "K" }),
+  }),
+  z.object({
+    ...{ id, level, kind: z.literal("conditions"), ask: z.literal("alike_pressure") },
+    withinHpa: requiredNumber({ min: 0, max: 500, unit: "hPa" }),
+  }),
+  z.object({
+    ...{ id, level, kind: z.literal("conditions"), ask: z.literal("alike_mass") },
+    withinKg: requiredNumber({ min: 0, max: 1000, unit: "kg" }),
+  }),
+  z.object({ id, level, kind: z.literal("conditions"), ask: z.literal("alike_gear") }),
+  z.object({ id, level, kind: z.literal("conditions"), ask: z.literal("twin_closure"), withinPct: percent }),
+]);
+
+const gain = z
+  .object({
+    ...{ id, level, kind: z.literal("gain") },
+    fromRpm: requiredNumber(rpm),
+    toRpm: requiredNumber(rpm),
+    atLeastPct: percent,
+  })
+  .refine((gate) => gate.fromRpm < gate.toRpm, { path: ["toRpm"], message: "Must lie above the start." });
+
+const noLoss = z
+  .object({
+    ...{ id, level, kind: z.literal("no_loss") },
+    fromRpm: optionalNumber(rpm),
+    toRpm: optionalNumber(rpm),
+    beyondPct: percent,
+  })
+  .refine((gate) => gate.fromRpm === null || gate.toRpm === null || gate.fromRpm < gate.toRpm, {
+    path: ["toRpm"],
+    message: "Must lie above the start.",
+  });
+
+const sprint = z.object({
+  ...{ id, level, kind: z.literal("sprint") },
+  time: z.string().trim().min(1, "Choose a time.").max(40),
+  notSlowerByS: requiredNumber({ min: 0, max: 60, unit: "s" }),
+});
+
+/** A whole plan. Takes what a form holds (texts) as well as a finished plan. */
+export const gatePlanSchema = z
+  .object({
+    plan: z.literal(1),
+    gates: z
+      .array(z.union([evidence, conditions, gain, noLoss, sprint]))
+      .min(1, "A plan has at least one gate.")
+      .max(60),
+  })
+  .refine((plan) => new Set(plan.gates.map((gate) => gate.id)).size === plan.gates.length, {
+    path: ["gates"],
+    message: "Two gates carry the same id. Open the page again.",
+  }) satisfies z.ZodType<GatePlan>;
+
+export type GatePlanInput = z.input<typeof gatePlanSchema>;
+
+/** A new version, made from the one that the person looked at; 0 where there was none. */
+export const saveGatePlanSchema = z.object({
+  programmeId: z.uuid(),
+  basedOnVersion: z.number().int().min(0),
+  plan: gatePlanSchema,
+});
