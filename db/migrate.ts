@@ -3,7 +3,7 @@ import { fileURLToPath } from "node:url";
 import { drizzle } from "drizzle-orm/node-postgres";
 import { migrate } from "drizzle-orm/node-postgres/migrator";
 import { Client } from "pg";
-import PgBoss from "pg-boss";
+import { installQueue } from "@/db/job-queue";
 import { env } from "@/lib/env";
 
 const MIGRATIONS = fileURLToPath(new URL("./migrations", import.meta.url));
@@ -32,23 +32,11 @@ export async function migrateDatabase(
     await client.query("select pg_advisory_lock($1)", [ONE_AT_A_TIME]);
     await client.query("set client_min_messages = warning");
     await migrate(drizzle(client), { migrationsFolder: migrations });
-    await installJobQueue(ownerUrl);
+    await installQueue(ownerUrl);
     await client.query(readFileSync(grants, "utf8"));
   } finally {
     await client.end();
   }
-}
-
-/** Creates or updates the tables of the job queue; web and worker may not. */
-async function installJobQueue(ownerUrl: string): Promise<void> {
-  const boss = new PgBoss({ connectionString: ownerUrl, supervise: false, schedule: false, max: 1 });
-  let failure: unknown;
-  boss.on("error", (error) => {
-    failure = error;
-  });
-  await boss.start();
-  await boss.stop({ graceful: false, wait: true });
-  if (failure !== undefined) throw failure;
 }
 
 async function main(): Promise<void> {

@@ -1,0 +1,12 @@
+import type { Queryable } from "@/db/client";
+import { insertJob } from "@/db/queries/jobs";
+
+/** Work that only the worker does. Each may run twice: the second run changes nothing. */
+export type Job =
+  | { name: "judge-run"; data: { workspaceId: string; runId: string } }
+  | { name: "compute-comparison"; data: { workspaceId: string; comparisonId: string } };
+
+/** Puts a job into its queue in the caller's transaction: change and job commit together or not at all. */
+export async function enqueueJob(tx: Queryable, job: Job): Promise<void> {
+  await insertJob(tx, job);
+}

@@ -1,0 +1,49 @@
+import { env } from "@/lib/env";
+import { computeComparison } from "@/lib/jobs/compute-comparison";
+import { giveUpJudging, judgeRun } from "@/lib/jobs/judge-run";
+import { startWorker } from "@/lib/jobs/start-worker";
+import { sweepLeftovers } from "@/lib/jobs/sweep";
+import { logger } from "@/lib/logger";
+import { sendDueMail } from "@/lib/mail/send-due";
+import { objectStore } from "@/lib/runtime";
+
+/** Entry of the worker process. SIGTERM or SIGINT ends it after the job in hand; a second one at once. */
+async function main(): Promise<void> {
+  const store = await objectStore();
+  const worker = await startWorker({
+    databaseUrl: env().DATABASE_URL,
+    store,
+    handlers: {
+      "judge-run": { run: judgeRun, giveUp: giveUpJudging },
+      "compute-comparison": { run: computeComparison },
+    },
+    sendMail: sendDueMail,
+    sweep: async (system) => {
+      await sweepLeftovers(system);
+    },
+  });
+  logger().info({ event: "worker.started", pid: process.pid });
+
+  let asked = false;
+  const end = (signal: NodeJS.Signals) => {
+    if (asked) process.exit(1);
+    asked = true;
+    logger().info({ event: "worker.stopping", signal });
+    worker.stop().then(
+      () => process.exit(0),
+      (error: unknown) => {
+        logger().error({ event: "worker.stop_failed", err: error });
+        process.exit(1);
+      },
+    );
+  };
+  process.on("SIGTERM", end);
+  process.on("SIGINT", end);
+}
+
+main().catch((error: unknown) => {
+  logger().error({ event: "worker.start_failed", err: error });
+  console.error(error instanceof Error ? error.message : error);
+  process.exitCode = 1;
+  process.exit();
+});
