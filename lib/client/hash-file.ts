@@ -5,7 +5,11 @@ type Answer = { doneBytes: number } | { digest: string } | { failure: string };
  * @param onProgress told the bytes hashed so far
  * @throws Error with a plain sentence when the file can't be read; the signal's reason when aborted
  */
-export function hashFile(file: Blob, onProgress: (doneBytes: number) => void, signal: AbortSignal): Promise<string> {
+export function hashFile(
+  file: Blob,
+  onProgress: (doneBytes: number) => void,
+  signal: AbortSignal,
+): Promise<string> {
   return new Promise((resolve, reject) => {
     const worker = new Worker(new URL("./hash-worker.ts", import.meta.url), { type: "module" });
     const end = (settle: () => void) => {
@@ -13,7 +17,8 @@ export function hashFile(file: Blob, onProgress: (doneBytes: number) => void, si
       settle();
     };
     signal.addEventListener("abort", () => end(() => reject(signal.reason)), { once: true });
-    worker.onerror = () => end(() => reject(new Error("The fingerprint could not be made in this browser. Reload the page.")));
+    worker.onerror = () =>
+      end(() => reject(new Error("The fingerprint could not be made in this browser. Reload the page.")));
     worker.onmessage = ({ data }: MessageEvent<Answer>) => {
       if ("digest" in data) end(() => resolve(data.digest));
       else if ("failure" in data) end(() => reject(new Error(data.failure)));

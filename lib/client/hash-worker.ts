@@ -13,6 +13,8 @@ self.onmessage = async ({ data: file }: MessageEvent<Blob>) => {
     }
     self.postMessage({ digest: bytesToHex(hash.digest()) });
   } catch {
-    self.postMessage({ failure: "This file can't be read any more. Was it moved or is it open elsewhere? Choose it again." });
+    self.postMessage({
+      failure: "This file can't be read any more. Was it moved or is it open elsewhere? Choose it again.",
+    });
   }
 };

@@ -11,7 +11,8 @@ export interface SendProgress {
 }
 
 const wait = (ms: number) => new Promise((resolve) => setTimeout(resolve, ms));
-const isWorthAnotherTry = (error: unknown) => error instanceof ApiError && (error.status === 0 || error.status >= 500);
+const isWorthAnotherTry = (error: unknown) =>
+  error instanceof ApiError && (error.status === 0 || error.status >= 500);
 
 async function sendPart(file: File, state: UploadState, signal: AbortSignal): Promise<UploadState> {
   const from = state.receivedBytes;
