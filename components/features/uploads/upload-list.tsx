@@ -33,7 +33,10 @@ export function UploadList({
         title={title}
         hint={hint}
         multiple={multiple}
-        onFiles={(files) => onAdded?.(uploads.add(files))}
+        onFiles={(files) => {
+          const added = uploads.add(files);
+          onAdded?.(added);
+        }}
       />
       {uploads.items.length > 0 && (
         <ul aria-label="Files" className="flex flex-col">
