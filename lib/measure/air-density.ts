@@ -1,9 +1,16 @@
 import { dryPressureKpa, vapourPressureKpa } from "@/lib/measure/vapour-pressure";
-import { FOOT_M, ZERO_CELSIUS_K } from "@/lib/units/constants";
+import { FOOT_M, STANDARD_GRAVITY_MPS2, ZERO_CELSIUS_K } from "@/lib/units/constants";
 
 /** Specific gas constants, J/(kg·K): public code for air data; dry air and water vapour. */
 const R_DRY = 287.058;
 const R_VAPOUR = 461.495;
+/** Molar masses, kg/mol: dry air with 400 µmol/mol carbon dioxide (CIPM-2007), water. */
+const MOLAR_AIR = 28.96546e-3;
+const MOLAR_VAPOUR = 18.01528e-3;
+/** Constants of the standard atmosphere: sea level K, lapse K/m, gas constant J/(kg·K). ISO 2533 (from memory). */
+const ISA_SEA_LEVEL_K = 288.15;
+const ISA_LAPSE_KPM = 0.0065;
+const ISA_R = 287.05287;
 
 /**
  * Density of moist air in kg/m³ as the sum of two ideal gases. `pressurePa` absolute, humidity 0 to 1.
@@ -42,7 +49,8 @@ export function cipmAir(pressurePa: number, tempC: number, relativeHumidity: num
     (1.9898e-4 - 2.376e-6 * t) * x * x;
   const perT = pressurePa / T;
   const z = 1 - perT * virial + perT * perT * (1.83e-11 - 0.765e-8 * x * x);
-  const densityKgm3 = ((pressurePa * 28.96546e-3) / (z * 8.314472 * T)) * (1 - 0.378 * x);
+  const densityKgm3 =
+    ((pressurePa * MOLAR_AIR) / (z * 8.314472 * T)) * (1 - x * (1 - MOLAR_VAPOUR / MOLAR_AIR));
   return { densityKgm3, vapourFraction: x, compressibility: z };
 }
 
@@ -52,14 +60,15 @@ export function standardAtmosphere(altitudeM: number): {
   pressurePa: number;
   densityKgm3: number;
 } {
-  const tempK = 288.15 - 0.0065 * altitudeM;
-  const pressurePa = 101_325 * (tempK / 288.15) ** 5.25588;
-  return { tempK, pressurePa, densityKgm3: pressurePa / (287.05287 * tempK) };
+  const tempK = ISA_SEA_LEVEL_K - ISA_LAPSE_KPM * altitudeM;
+  const pressurePa = 101_325 * (tempK / ISA_SEA_LEVEL_K) ** (STANDARD_GRAVITY_MPS2 / (ISA_R * ISA_LAPSE_KPM));
+  return { tempK, pressurePa, densityKgm3: pressurePa / (ISA_R * tempK) };
 }
 
 /** Altitude in m at which the standard atmosphere has this density. Context only, never a correction. */
 export function densityAltitudeM(densityKgm3: number): number {
-  return 44_330.77 * (1 - (densityKgm3 / 1.225) ** 0.234969);
+  const exponent = 1 / (STANDARD_GRAVITY_MPS2 / (ISA_R * ISA_LAPSE_KPM) - 1);
+  return (ISA_SEA_LEVEL_K / ISA_LAPSE_KPM) * (1 - (densityKgm3 / 1.225) ** exponent);
 }
 
 /**

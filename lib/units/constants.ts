@@ -34,10 +34,10 @@ export const PSI_KPA = POUND_FORCE_N / (INCH_M * INCH_M) / 1000;
 export const ATMOSPHERE_KPA = 101.325;
 /** 1 technical atmosphere (kgf/cm²) in kPa: exact. */
 export const TECHNICAL_ATMOSPHERE_KPA = 98.0665;
-/** 1 conventional millimetre of mercury in kPa: ISO 80000-4 annex, 13 595.1 kg/m³ × standard gravity. */
-export const MMHG_KPA = (13595.1 * STANDARD_GRAVITY_MPS2) / 1e6;
-/** 1 conventional inch of mercury (0 °C) in kPa: 25.4 mmHg. */
-export const INHG_KPA = 25.4 * MMHG_KPA;
+/** 1 conventional inch of mercury in kPa: NIST SP 811 (2008) appendix B.8, as rounded there. */
+export const INHG_KPA = 3.386389;
+/** 1 conventional millimetre of mercury in kPa: NIST SP 811 (2008) appendix B.8, as rounded there. */
+export const MMHG_KPA = 0.1333224;
 
 /** 1 mechanical horsepower in W: exact, 550 ft·lbf/s. */
 export const HORSEPOWER_W = 550 * FOOT_M * POUND_FORCE_N;

@@ -105,12 +105,14 @@ for (const [parsed, names] of SPELLINGS) for (const name of names.split(" ")) TA
 const PRESSURE_REFERENCE = /^(.*?)[\s(._-]*(abs|absolute|absolut|a|g|gauge|rel|relativ|relative|ü)\)?$/;
 
 function fold(text: string): string {
+  // The masculine ordinal is a common slip for the degree sign; NFKC turns ² into 2 and a superscript minus into U+2212.
   return text
+    .replaceAll("º", "°")
     .normalize("NFKC")
     .toLowerCase()
     .replace(/[\s·]+/g, "")
-    .replace(/º/g, "°")
-    .replace(/\*\*/g, "^");
+    .replaceAll("\u2212", "-")
+    .replaceAll("**", "^");
 }
 
 /**
