@@ -134,7 +134,7 @@ export class S3Creator {
         if (isUnknownUpload(error) && (await this.#exists(key))) return "existed";
         if (status === 501 && this.conditional) this.conditional = false;
         else if (status !== 409) throw error;
-        else await sleep(50 * 2 ** attempt * (0.5 + Math.random()));
+        else if (attempt < CONFLICT_TRIES) await sleep(25 * 2 ** attempt * (0.5 + Math.random()));
       }
     }
     throw new UnavailableError(

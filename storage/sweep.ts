@@ -20,11 +20,11 @@ export interface SweepRows {
   /** Which of these digests have a row in this workspace, or must be kept for another reason (a hold). */
   kept(workspaceId: string, sha256s: readonly string[]): Promise<ReadonlySet<string>>;
   /**
-   * In a transaction that locks the digest: runs `remove` if the digest still has no row and no hold.
+   * In a transaction that locks the digest: awaits `remove` if the digest still has no row and no hold.
    * The transaction that commits an upload takes the same lock and stats the blob before it writes the row;
    * so either it sees the blob gone, or the sweep sees the row.
    */
-  removeIfUnkept(workspaceId: string, sha256: string, remove: () => Promise<void>): Promise<boolean>;
+  removeIfUnkept(workspaceId: string, sha256: string, remove: () => Promise<void>): Promise<void>;
 }
 
 export interface SweepReport {
@@ -59,11 +59,14 @@ async function* pages(store: ObjectStore): AsyncGenerator<ListPage["objects"]> {
 }
 
 /** The list may be older than the store: the age is asked again before anything is deleted. */
-async function removeIfOld(store: ObjectStore, key: BlobKey, nowMs: number): Promise<void> {
+async function removeIfOld(store: ObjectStore, key: BlobKey, nowMs: number): Promise<boolean> {
   try {
-    if ((await store.stat(key)).modifiedAtMs <= nowMs - ORPHAN_AGE_MS) await store.remove(key);
+    if ((await store.stat(key)).modifiedAtMs > nowMs - ORPHAN_AGE_MS) return false;
+    await store.remove(key);
+    return true;
   } catch (error) {
-    if (!(error instanceof NotFoundError)) throw error;
+    if (error instanceof NotFoundError) return false;
+    throw error;
   }
 }
 
@@ -91,12 +94,13 @@ async function sweepObjects(store: ObjectStore, rows: SweepRows, options: SweepO
         blobs.map((blob) => blob.sha256),
       );
       for (const { sha256, key, modifiedAtMs } of blobs.filter((blob) => !kept.has(blob.sha256))) {
-        const waits = modifiedAtMs > options.nowMs - ORPHAN_AGE_MS;
-        const gone =
-          !waits &&
-          (await rows.removeIfUnkept(workspaceId, sha256, () => removeIfOld(store, key, options.nowMs)));
-        if (waits) report.orphansWaiting++;
-        if (gone) report.orphansRemoved++;
+        if (modifiedAtMs > options.nowMs - ORPHAN_AGE_MS) {
+          report.orphansWaiting++;
+          continue;
+        }
+        await rows.removeIfUnkept(workspaceId, sha256, async () => {
+          if (await removeIfOld(store, key, options.nowMs)) report.orphansRemoved++;
+        });
       }
     }
   }
