@@ -12,6 +12,7 @@ import {
   uniqueIndex,
   uuid,
 } from "drizzle-orm/pg-core";
+import type { ImageSummary } from "@/lib/calibration/image-summary";
 import { blobs } from "./blobs";
 import { createdAt, idColumn, instant, wholeNumber } from "./column";
 import { users } from "./people";
@@ -29,14 +30,6 @@ export const revisionStateEnum = pgEnum("revision_state", [
   "rolled_back",
 ]);
 export const intendedUseEnum = pgEnum("intended_use", ["road", "closed_course", "bench"]);
-
-/** What the image reader understood, kept for display; the bytes stay the authority. */
-export interface ImageSummary {
-  container: string;
-  identity: string;
-  segments: { address: number; length: number }[];
-  problems: string[];
-}
 
 export const revisions = pgTable(
   "revisions",

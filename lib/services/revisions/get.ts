@@ -6,6 +6,7 @@ import {
   selectRunsOfRevision,
   selectStanding,
 } from "@/db/queries/revisions";
+import type { ImageDifference } from "@/lib/calibration/image-summary";
 import { FileRefusedError } from "@/lib/errors";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { loadProgramme } from "@/lib/services/programmes/load";

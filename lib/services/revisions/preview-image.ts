@@ -1,24 +1,9 @@
 import { selectRevision } from "@/db/queries/revisions";
-import type { ImageSummary } from "@/db/schema/revisions";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { noRevision } from "@/lib/services/revisions/load";
-import {
-  differenceOf,
-  type ImageDifference,
-  openCalibrationImage,
-  summarise,
-} from "@/lib/services/revisions/read-image";
-import { type PreviewImage, previewImage } from "@/lib/services/revisions/schema";
+import { differenceOf, openCalibrationImage, summarise } from "@/lib/services/revisions/read-image";
+import { type ImagePreview, type PreviewImage, previewImage } from "@/lib/services/revisions/schema";
 import { sealUpload } from "@/lib/services/uploads/seal";
-
-export interface ImagePreview {
-  fileName: string;
-  sizeBytes: number;
-  sha256: string;
-  summary: ImageSummary;
-  /** Null without a parent. */
-  difference: (ImageDifference & { parentNumber: number; sameContent: boolean }) | null;
-}
 
 /**
  * What was understood of an uploaded image before it joins the lineage.

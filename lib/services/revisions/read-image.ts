@@ -1,6 +1,6 @@
-import type { ImageSummary } from "@/db/schema/revisions";
 import { changedRanges } from "@/lib/calibration/changed-ranges";
 import { imageIdentity } from "@/lib/calibration/image-identity";
+import type { ImageDifference, ImageSummary } from "@/lib/calibration/image-summary";
 import { readImage } from "@/lib/calibration/read-image";
 import type { CalibrationImage } from "@/lib/calibration/types";
 import { readBlob } from "@/lib/services/blobs";
@@ -13,13 +13,6 @@ export interface ImageSource {
   imageSha256: string;
   imageFileName: string;
   imageBaseAddress: number | null;
-}
-
-/** Where two images differ, shortened for a page. */
-export interface ImageDifference {
-  ranges: number;
-  bytes: number;
-  first: { address: number; length: number }[];
 }
 
 const SHOWN_RANGES = 200;

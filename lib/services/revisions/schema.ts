@@ -1,4 +1,5 @@
 import { z } from "zod";
+import type { ImageDifference, ImageSummary } from "@/lib/calibration/image-summary";
 
 export const INTENDED_USES = ["road", "closed_course", "bench"] as const;
 
@@ -25,6 +26,16 @@ export const previewImage = z.strictObject({
 });
 
 export type PreviewImage = z.input<typeof previewImage>;
+
+/** What was understood of an uploaded image, before it joins the lineage. */
+export interface ImagePreview {
+  fileName: string;
+  sizeBytes: number;
+  sha256: string;
+  summary: ImageSummary;
+  /** Null without a parent. */
+  difference: (ImageDifference & { parentNumber: number; sameContent: boolean }) | null;
+}
 
 /** What a calibrator states of a new revision. The last three may wait until it is validated. */
 export const revisionText = z.strictObject({
