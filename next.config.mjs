@@ -20,8 +20,8 @@ const config = {
   productionBrowserSourceMaps: false,
   typedRoutes: true,
   agentRules: false,
-  // A build asks nobody on the network and waits for no answer.
-  experimental: { agentUpgrade: false },
+  // A build asks nobody on the network and waits for no answer. A page that the policy refuses answers 403.
+  experimental: { agentUpgrade: false, authInterrupts: true },
   // `npm run check` holds the types, tests included; a start on a user's machine need not check them again.
   typescript: { ignoreBuildErrors: true },
   images: { unoptimized: true },
