@@ -19,6 +19,9 @@ import { workspaces } from "./workspaces";
 export interface ChecklistAnswer {
   item: string;
   confirmed: boolean;
+  /** Who confirmed it and when (ISO 8601), where it is confirmed. */
+  byName?: string;
+  at?: string;
 }
 
 /** One day on one strip for one programme. `zone` is the road's own time zone (IANA name). */

@@ -1,0 +1,70 @@
+import { type RoadDayRow, selectRoadDays, selectStripNames } from "@/db/queries/road-days";
+import { selectDrivableRevisions } from "@/db/queries/runs";
+import { authorise, type Ctx } from "@/lib/services/ctx";
+import { type LoadedProgramme, loadProgramme } from "@/lib/services/programmes/load";
+import { loadRoadDay } from "@/lib/services/road-days/load";
+import { listRoadDayRuns } from "@/lib/services/runs/list";
+import type { RoadDayRuns } from "@/lib/services/runs/schema";
+
+export interface RoadDayView {
+  roadDay: RoadDayRow;
+  programme: LoadedProgramme["programme"];
+  /** Revisions that runs may be attached to, newest first. */
+  revisions: { id: string; number: number; title: string; stands: boolean }[];
+  /** Twins a side that the gate plan asks for, or null without such a gate. */
+  twinsAsked: number | null;
+  gearCount: number;
+  runs: RoadDayRuns;
+}
+
+function twinsAskedBy(plan: LoadedProgramme["plan"]): number | null {
+  for (const gate of plan?.plan.gates ?? [])
+    if (gate.kind === "evidence" && gate.ask === "closed_twins" && gate.level !== "off")
+      return gate.atLeastPerSide;
+  return null;
+}
+
+/**
+ * Everything the road-day page shows.
+ * @throws NotFoundError for another workspace's; ForbiddenError for readers
+ */
+export async function getRoadDay(ctx: Ctx, roadDayId: string): Promise<RoadDayView> {
+  const roadDay = await loadRoadDay(ctx, roadDayId);
+  const { programme, plan, sheet } = await loadProgramme(ctx, roadDay.programmeId);
+  const runs = await listRoadDayRuns(ctx, roadDayId);
+  const { workspaceId } = ctx;
+  const drivable = await selectDrivableRevisions(ctx.db, { workspaceId, programmeId: programme.id });
+  return {
+    roadDay,
+    programme,
+    revisions: drivable.map(({ id, number, title, state }) => ({
+      id,
+      number,
+      title,
+      stands: state === "promoted",
+    })),
+    twinsAsked: twinsAskedBy(plan),
+    gearCount: sheet.figures.gearRatios.length,
+    runs,
+  };
+}
+
+/** What the form of a new road day offers. @throws NotFoundError; ForbiddenError */
+export async function prepareRoadDay(ctx: Ctx, programmeId: string) {
+  authorise(ctx, "road_day.edit");
+  const { programme, sheet } = await loadProgramme(ctx, programmeId);
+  const { workspaceId } = ctx;
+  const [strips, days] = await Promise.all([
+    selectStripNames(ctx.db, { workspaceId }),
+    selectRoadDays(ctx.db, { workspaceId, programmeId }),
+  ]);
+  const massKg = sheet.figures.massPartsKg.reduce((sum, part) => sum + part.value, 0);
+  return { programme, strips, days, sheetMassKg: massKg };
+}
+
+/** Road days of a programme, newest first, for its page. @throws NotFoundError; ForbiddenError */
+export async function listRoadDays(ctx: Ctx, programmeId: string) {
+  authorise(ctx, "run.view");
+  const { workspaceId } = ctx;
+  return await selectRoadDays(ctx.db, { workspaceId, programmeId });
+}

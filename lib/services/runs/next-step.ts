@@ -1,0 +1,32 @@
+/** What a tester does about a refused log, by the code of its first reason. Unknown codes get the general advice. */
+const NEXT: Readonly<Record<string, string>> = {
+  empty_file: "Export the log again and drop it here.",
+  no_data_rows: "Export the log again and drop it here.",
+  gzip_damaged: "Export the log again and drop it here.",
+  not_text: "Export the log as delimited text (CSV) and drop it here.",
+  format_not_supported: "Export the log as delimited text (CSV) and drop it here.",
+  ambiguous_decimal:
+    "Export with a point as decimal mark, or with a semicolon between columns, and drop it here.",
+  no_time_column: "Switch the time column on in the logger's export and drop the new file here.",
+  time_not_increasing: "Export the log again with its own time stamps, one recording a file.",
+  non_numeric_values: "Export numbers only, without texts in the columns, and drop the new file here.",
+  too_few_samples: "Record longer, at 5 Hz or more, and drive this place again.",
+  too_many_missing: "Check the sensor's cable, then drive this place again.",
+  no_speed_channel: "Switch on a road-speed channel (a wheel or satellite speed) and drive this place again.",
+  speed_all_zero: "Check the speed sensor: it recorded zero throughout. Then drive this place again.",
+  no_pull_found: "Drive this place again: full throttle in one gear to near the red line.",
+  no_full_load: "Drive this place again with the pedal fully down.",
+  pull_too_short: "Drive this place again from lower revolutions to near the red line.",
+  no_coast_found: "Drive this place again and let the car roll in neutral after the pull.",
+  no_sprint_found: "Drive this place again: stand still, then accelerate through the whole range.",
+  analysis_fault:
+    "Set the run aside and attach the log again after the next version; tell whoever runs this installation.",
+};
+
+/** One plain sentence. Set the refused run aside first where its place is to be driven again. */
+export function nextStep(code: string | undefined): string {
+  return (
+    (code && NEXT[code]) ??
+    "Look at the reason, mend the recording, and drop the new log here for the same place."
+  );
+}
