@@ -2,8 +2,9 @@ import "server-only";
 import { randomUUID } from "node:crypto";
 import { unstable_rethrow } from "next/navigation";
 import type { z } from "zod";
-import { requireCtxOrThrow } from "@/lib/auth/current";
+import { type Person, requireAskerOrThrow, requireCtxOrThrow } from "@/lib/auth/current";
 import { errorBody, requireOwnOrigin } from "@/lib/http/respond";
+import type { Asker } from "@/lib/services/asker";
 import type { Ctx } from "@/lib/services/ctx";
 
 /** What a form shows after it was sent. */
@@ -15,6 +16,35 @@ export interface FormState<T = unknown> {
   value?: T;
 }
 
+async function asFormState<T>(work: () => Promise<T>): Promise<FormState<T>> {
+  try {
+    await requireOwnOrigin();
+    return { ok: true, value: await work() };
+  } catch (error) {
+    unstable_rethrow(error);
+    const { body } = errorBody(error, randomUUID());
+    return { ok: false, message: String(body.message), fields: body.fields as FormState["fields"] };
+  }
+}
+
+/** As runFormAction, for a person outside any one workspace: their account, a new workspace, an invitation. */
+export async function runPersonAction<Input, T>(
+  schema: z.ZodType<Input>,
+  input: unknown,
+  work: (as: { asker: Asker; person: Person }, input: Input) => Promise<T>,
+): Promise<FormState<T>> {
+  return await asFormState(async () => work(await requireAskerOrThrow(), schema.parse(input)));
+}
+
+/** As runFormAction, for somebody who is not signed in: asking for a link, using it. */
+export async function runOpenAction<Input, T>(
+  schema: z.ZodType<Input>,
+  input: unknown,
+  work: (input: Input) => Promise<T>,
+): Promise<FormState<T>> {
+  return await asFormState(async () => work(schema.parse(input)));
+}
+
 /**
  * Runs a verb for a form: origin, session, schema, verb; errors become sentences. A redirect inside `work` passes through.
  * @param input what the form sent, unparsed
@@ -24,13 +54,5 @@ export async function runFormAction<Input, T>(
   input: unknown,
   work: (ctx: Ctx, input: Input) => Promise<T>,
 ): Promise<FormState<T>> {
-  try {
-    await requireOwnOrigin();
-    const ctx = await requireCtxOrThrow();
-    return { ok: true, value: await work(ctx, schema.parse(input)) };
-  } catch (error) {
-    unstable_rethrow(error);
-    const { body } = errorBody(error, randomUUID());
-    return { ok: false, message: String(body.message), fields: body.fields as FormState["fields"] };
-  }
+  return await asFormState(async () => work(await requireCtxOrThrow(), schema.parse(input)));
 }

@@ -12,11 +12,7 @@ import { authorise, type Ctx } from "@/lib/services/ctx";
 import { loadProgramme } from "@/lib/services/programmes/load";
 import { missingForDecision } from "@/lib/services/revisions/ask-for-decision";
 import { noRevision } from "@/lib/services/revisions/load";
-import {
-  differenceOf,
-  type ImageDifference,
-  openCalibrationImage,
-} from "@/lib/services/revisions/read-image";
+import { differenceOf, openCalibrationImage } from "@/lib/services/revisions/read-image";
 import { missingForValidating } from "@/lib/services/revisions/start-validating";
 
 /** States in which a revision is released to readers of a shared programme. */

@@ -47,6 +47,18 @@ export const revisionText = z.strictObject({
 });
 export type RevisionText = z.infer<typeof revisionText>;
 
+/** The same as a form spells it: every answer is a text, empty = not answered yet. */
+export const revisionForm = z.object({
+  title,
+  note,
+  changeReason,
+  intendedUse: z.enum([...INTENDED_USES, ""]).transform((value) => (value === "" ? null : value)),
+  touchesEmissionOrSafety: z
+    .enum(["", "yes", "no"])
+    .transform((value) => (value === "" ? null : value === "yes")),
+});
+export type RevisionFormValues = z.input<typeof revisionForm>;
+
 export const createRevision = revisionText.extend({
   programmeId: z.uuid(),
   parentId: z.uuid().nullable(),

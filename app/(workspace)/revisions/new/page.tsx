@@ -1,0 +1,39 @@
+import type { Metadata } from "next";
+import { NewRevisionForm } from "@/components/features/revisions/new-revision-form";
+import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
+import { PageHeading } from "@/components/ui/layout/page-heading";
+import { Notice } from "@/components/ui/status/notice";
+import { requireCtx } from "@/lib/auth/current";
+import { orNotFound } from "@/lib/http/page";
+import { getParentChoices } from "@/lib/services/revisions/choose-parent";
+
+export const metadata: Metadata = { title: "Add a revision" };
+
+/** A calibrator uploads an image as a new draft. */
+export default async function NewRevisionPage({ searchParams }: PageProps<"/revisions/new">) {
+  const ctx = await requireCtx();
+  const { programme: id } = await searchParams;
+  const { programme, parents } = await orNotFound(id, (programmeId) => getParentChoices(ctx, programmeId));
+  return (
+    <div className="flex flex-col gap-6">
+      <PageHeading
+        above={
+          <Breadcrumbs
+            items={[
+              { label: "Programmes", href: "/programmes" },
+              { label: programme.name, href: `/programmes/${programme.id}` },
+              { label: "Add a revision" },
+            ]}
+          />
+        }
+        title="Add a revision"
+        lead="One immutable image with the reason for its change. A changed image is a new revision."
+      />
+      <Notice tone="caution">
+        A change of calibration can destroy an engine and can make a vehicle illegal on the road: emissions
+        and noise rules, type approval, insurance and warranty differ by place.
+      </Notice>
+      <NewRevisionForm programmeId={programme.id} parents={parents} />
+    </div>
+  );
+}
