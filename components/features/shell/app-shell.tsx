@@ -6,7 +6,7 @@ import { MAIN_ID, SkipLink } from "@/components/features/shell/skip-link";
 
 export interface AppShellProps extends Omit<SiteHeaderProps, "home"> {
   /** Where the name leads; default "/". */
-  home?: string;
+  home?: SiteHeaderProps["home"];
   children: ReactNode;
 }
 

@@ -7,7 +7,7 @@ export function SiteFooter({ theme }: { theme: Theme }) {
   return (
     <footer className="mt-auto border-line border-t text-13 text-ink2 print:border-0">
       <div className="mx-auto flex max-w-page flex-wrap items-center gap-x-6 gap-y-3 px-4 py-4 md:px-8">
-        <p className="max-w-prose basis-full md:basis-0 md:grow">
+        <p className="max-w-prose basis-full md:mr-auto md:basis-auto">
           Figures are comparisons under stated assumptions. Twinpass measures and records; it approves nothing
           in law.
         </p>

@@ -1,11 +1,11 @@
 import Link from "next/link";
-import type { ReactNode } from "react";
+import type { ComponentProps, ReactNode } from "react";
 import { Wordmark } from "@/components/features/shell/mark";
 import { type NavLink, NavLinks } from "@/components/features/shell/nav-links";
 
 export interface SiteHeaderProps {
   /** Where the name leads. */
-  home: string;
+  home: ComponentProps<typeof Link>["href"];
   links?: readonly NavLink[];
   /** Name of the workspace, or a control to change it. */
   workspace?: ReactNode;

@@ -29,6 +29,7 @@ export function buttonStyle(
 ): string {
   return cn(
     "inline-flex select-none items-center justify-center gap-2 rounded border py-2 text-center font-semibold text-15 leading-tight no-underline transition-colors duration-100",
+    "aria-pressed:border-action aria-pressed:shadow-[inset_0_-3px_0_var(--action)]",
     "disabled:cursor-not-allowed disabled:border-line disabled:bg-sunk disabled:text-ink2",
     LOOK[look],
     SIZE[size],

@@ -58,7 +58,11 @@ export function Table<Row>({
       aria-label={caption}
       // biome-ignore lint/a11y/noNoninteractiveTabindex: what scrolls must be reachable by key (WCAG 2.1.1)
       tabIndex={0}
-      className={cn("overflow-x-auto print:max-h-none print:overflow-visible", SCROLL[scroll], className)}
+      className={cn(
+        "relative overflow-x-auto print:max-h-none print:overflow-visible",
+        SCROLL[scroll],
+        className,
+      )}
     >
       <table className="w-full border-collapse text-15">
         <caption className={showCaption ? "pb-2 text-left text-13 text-ink2" : "sr-only"}>{caption}</caption>
