@@ -140,7 +140,7 @@ export function portOwner(port) {
 /** @param {number} pid @returns {string} its command line, shortened; empty when it has ended */
 export function commandOf(pid) {
   try {
-    return readFileSync(`/proc/${pid}/cmdline`, "utf8").split("\0").join(" ").trim().slice(0, 80);
+    return readFileSync(`/proc/${pid}/cmdline`, "utf8").replace(/[\0\s]+/g, " ").trim().slice(0, 80);
   } catch {
     return "";
   }

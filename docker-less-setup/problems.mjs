@@ -12,10 +12,19 @@ export function gigabytes(bytes) {
   return `${(bytes / 1e9).toFixed(1)} GB`;
 }
 
-/** @param {string} text @param {number} lines @returns {string} the last lines, indented */
-export function tail(text, lines) {
-  const kept = text.trimEnd().split("\n").slice(-lines);
-  return kept.map((line) => `    ${line}`).join("\n");
+/**
+ * @param {string} log
+ * @param {number} count
+ * @returns {string} that many lines, indented: from the first that speaks of an error, else the last
+ */
+export function excerpt(log, count) {
+  const lines = log.trimEnd().split("\n");
+  const first = lines.findIndex((line) => /\berror\b/i.test(line));
+  const from = first === -1 ? lines.length - count : first;
+  return lines
+    .slice(Math.max(from, 0), Math.max(from, 0) + count)
+    .map((line) => `    ${line}`)
+    .join("\n");
 }
 
 /**
@@ -58,7 +67,7 @@ export function noPackageRights({ packages, apt, user }) {
 /** @param {{ packages: string[], log: string, logFile: string }} facts */
 export function packageInstallFailed({ packages, log, logFile }) {
   return (
-    `apt-get could not install ${packages.join(" ")}. Its last lines (all of them in ${logFile}):\n${tail(log, 8)}\n` +
+    `apt-get could not install ${packages.join(" ")}. What it said (all of it in ${logFile}):\n${excerpt(log, 8)}\n` +
     "Mend what it names (package sources, network, another apt-get at work) and try again."
   );
 }
@@ -66,7 +75,7 @@ export function packageInstallFailed({ packages, log, logFile }) {
 /** @param {{ step: string, code: number | null, log: string, logFile: string }} facts */
 export function stepFailed({ step, code, log, logFile }) {
   const end = code === null ? "was stopped" : `ended with code ${code}`;
-  return `${step} ${end}. Its last lines (all of them in ${logFile}):\n${tail(log, 15)}`;
+  return `${step} ${end}. What it said (all of it in ${logFile}):\n${excerpt(log, 15)}`;
 }
 
 /** @param {{ folder: string, blockedAt: string, user: string }} facts */

@@ -20,6 +20,7 @@ const STEP_GRACE_MS = 5_000;
 const RESTART_FIRST_MS = 500;
 const RESTART_LONGEST_MS = 30_000;
 const CALM_MS = 60_000;
+const PARENT_POLL_MS = 1_000;
 
 /** Steps that run now, to be stopped with us. @type {Set<import("node:child_process").ChildProcess>} */
 const runningSteps = new Set();
@@ -210,6 +211,10 @@ export function createStopList({ say }) {
       for (const signal of /** @type {const} */ (["SIGINT", "SIGTERM", "SIGHUP"])) {
         process.on(signal, () => onSignal(signal, exitCode));
       }
+      // npm that is killed passes nothing on: being handed to another parent means the same as SIGTERM.
+      const parent = process.ppid;
+      const watch = () => process.ppid !== parent && onSignal("SIGTERM", exitCode);
+      if (process.env.npm_lifecycle_event) setInterval(watch, PARENT_POLL_MS).unref();
     },
   };
 }

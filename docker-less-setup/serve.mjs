@@ -59,7 +59,6 @@ async function bringUp({ say, stops }) {
   if (process.env.DATABASE_URL)
     say("DATABASE_URL of your shell is set aside: npm start uses a private database.");
 
-  await ensureNodePackages(place);
   await ensurePostgres(place);
   const secrets = loadSecrets(dataFolder);
 
@@ -72,6 +71,7 @@ async function bringUp({ say, stops }) {
   });
   stops.add(cluster.stop);
 
+  await ensureNodePackages(place);
   const settings = appSettings({
     port,
     dataFolder,
