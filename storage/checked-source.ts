@@ -2,7 +2,8 @@ import { createHash } from "node:crypto";
 import { InvalidInputError, TooLargeError, TwinpassError } from "@/lib/errors";
 import type { ByteSource, DeclaredBytes } from "@/storage/port";
 
-function interrupted(cause: unknown): InvalidInputError {
+/** The sender went away: `body_interrupted`. */
+export function interrupted(cause: unknown): InvalidInputError {
   const error = new InvalidInputError(
     "body_interrupted",
     "The bytes stopped coming before the file was complete. Nothing was stored; send it again.",

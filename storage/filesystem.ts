@@ -3,6 +3,7 @@ import { type FileHandle, lstat, open, readdir, rmdir, unlink } from "node:fs/pr
 import { dirname, isAbsolute, join } from "node:path";
 import type { Readable } from "node:stream";
 import { InvalidInputError, UnavailableError } from "@/lib/errors";
+import { verifyBlob } from "@/storage/blob";
 import { checkedSource } from "@/storage/checked-source";
 import { DurableFolder, fileError, isErrno, readError } from "@/storage/durable-file";
 import { checkedKey, checkedPrefix, type KeyPrefix, type ObjectKey, parseObjectKey } from "@/storage/keys";
@@ -81,8 +82,13 @@ class FilesystemStore implements ObjectStore {
 
   async create(...[key, source, declared, signal]: Parameters<ObjectStore["create"]>) {
     const parsed = checkedKey(key);
-    const checked = checkedSource(source, declaredFor(parsed, declared), signal);
-    return await this.#folder.create(this.#path(key), checked, parsed.kind === "part");
+    const expected = declaredFor(parsed, declared);
+    const checked = checkedSource(source, expected, signal);
+    const outcome = await this.#folder.create(this.#path(key), checked, parsed.kind === "part");
+    if (parsed.kind === "blob") {
+      await verifyBlob(this, parsed.key, { sizeBytes: expected.sizeBytes, outcome });
+    }
+    return outcome;
   }
 
   async stat(key: ObjectKey): Promise<ObjectStat> {

@@ -1,7 +1,7 @@
 import type { Readable } from "node:stream";
 import type { KeyPrefix, ObjectKey } from "@/storage/keys";
 
-/** Size of every part of an upload but its last, and of every request to an S3 store: 8 MiB. */
+/** Largest part of an upload, and of one request to an S3 store: 8 MiB. */
 export const PART_BYTES = 8 * 1024 * 1024;
 /** Longest life of a signed link. */
 export const LINK_SECONDS_MAX = 60;
@@ -85,9 +85,11 @@ export interface ObjectStore {
 
   /**
    * Creates an object once; its bytes are hashed as they pass and nothing is visible before size and digest agree.
-   * Acknowledged means durable. An error, an abort or a kill leaves nothing under the key.
-   * @throws InvalidInputError `digest_mismatch`, `body_too_short`, `body_interrupted`; TooLargeError `body_too_long`;
-   *   OutOfSpaceError; a TwinpassError of the source passes through
+   * Acknowledged means durable, and for a blob also read back and compared, whether created or there before.
+   * An error, an abort or a kill leaves nothing under the key, or the whole of it.
+   * @throws InvalidInputError `digest_mismatch`, `body_too_short`, `body_interrupted`, `bad_declaration`;
+   *   TooLargeError `body_too_long`; OutOfSpaceError; UnavailableError `stored_bytes_damaged`;
+   *   a TwinpassError of the source passes through
    */
   create(
     key: ObjectKey,

@@ -11,7 +11,8 @@ import {
 } from "@aws-sdk/client-s3";
 import { getSignedUrl } from "@aws-sdk/s3-request-presigner";
 import { NotFoundError, UnavailableError } from "@/lib/errors";
-import { checkedSource } from "@/storage/checked-source";
+import { verifyBlob } from "@/storage/blob";
+import { checkedSource, interrupted } from "@/storage/checked-source";
 import { checkedKey, checkedPrefix, type KeyPrefix, type ObjectKey, parseObjectKey } from "@/storage/keys";
 import { checkedStream, declaredFor, pageLimit, rangeOutside } from "@/storage/object-checks";
 import type { ByteRange, ListPage, ObjectStat, ObjectStore, StoredBytes } from "@/storage/port";
@@ -100,9 +101,14 @@ class S3Store implements ObjectStore {
     const expected = declaredFor(parsed, declared);
     try {
       const checked = checkedSource(source, expected, signal);
-      return await this.#creator.create(parsed.key, checked, expected.sizeBytes, signal);
+      const { sizeBytes } = expected;
+      const outcome = await this.#creator.create(parsed.key, checked, sizeBytes, signal);
+      if (parsed.kind === "blob") await verifyBlob(this, parsed.key, { sizeBytes, outcome, signal });
+      return outcome;
     } catch (error) {
-      throw s3Error(error);
+      const typed = s3Error(error);
+      // An abort can meet a request to the store half way; it is still the sender who left.
+      throw signal?.aborted === true && typed !== error ? interrupted(error) : typed;
     }
   }
 

@@ -1,9 +1,15 @@
 import { createHash } from "node:crypto";
 import { buffer } from "node:stream/consumers";
-import type { ObjectKey, StagingKey } from "@/storage/keys";
-import { blobKey, newStagingKey, prefixOf } from "@/storage/keys";
+import {
+  type BlobKey,
+  blobKey,
+  newStagingKey,
+  type ObjectKey,
+  partKey,
+  prefixOf,
+  type StagingKey,
+} from "@/storage/keys";
 import { type ObjectStore, PART_BYTES } from "@/storage/port";
-import { appendPart, type PromotedBlob, promoteStaged } from "@/storage/staging";
 
 export const MIB = 1024 * 1024;
 
@@ -26,26 +32,36 @@ export async function readAll(store: ObjectStore, key: ObjectKey): Promise<Buffe
   return await buffer((await store.get(key)).body);
 }
 
-/** Sends bytes the way a browser does: all parts in order. */
+/** Sends bytes as an upload does: whole parts, in order, under a staging key. */
 export async function sendParts(store: ObjectStore, staging: StagingKey, bytes: Uint8Array): Promise<void> {
-  const totalBytes = bytes.byteLength;
-  for (let offsetBytes = 0; offsetBytes < totalBytes; offsetBytes += PART_BYTES) {
-    const part = bytes.subarray(offsetBytes, offsetBytes + PART_BYTES);
-    const sizeBytes = part.byteLength;
-    await appendPart(store, staging, { totalBytes, offsetBytes, sizeBytes }, sourceOf(part));
+  for (let offset = 0; offset < bytes.byteLength; offset += PART_BYTES) {
+    const part = bytes.subarray(offset, offset + PART_BYTES);
+    await store.create(partKey(staging, offset), sourceOf(part), { sizeBytes: part.byteLength });
   }
 }
 
+/** The bytes of all parts of an upload, as the store lists them. */
+async function* readParts(store: ObjectStore, staging: StagingKey): AsyncGenerator<Uint8Array> {
+  for (const { key } of (await store.list(prefixOf(staging))).objects) yield* (await store.get(key)).body;
+}
+
+/** Puts the parts of an upload under their final key. */
+export async function promote(store: ObjectStore, staging: StagingKey, key: BlobKey, sizeBytes: number) {
+  return await store.create(key, readParts(store, staging), { sizeBytes });
+}
+
+/** Deletes the parts of an upload. */
+export async function discard(store: ObjectStore, staging: StagingKey): Promise<void> {
+  for (const { key } of (await store.list(prefixOf(staging))).objects) await store.remove(key);
+}
+
 /** A whole upload up to the final key. */
-export async function uploadBytes(
-  store: ObjectStore,
-  workspaceId: string,
-  bytes: Uint8Array,
-): Promise<PromotedBlob & { staging: StagingKey }> {
+export async function uploadBytes(store: ObjectStore, workspaceId: string, bytes: Uint8Array) {
   const staging = newStagingKey(workspaceId);
   await sendParts(store, staging, bytes);
-  const declared = { sizeBytes: bytes.byteLength, sha256: sha256Of(bytes) };
-  return { ...(await promoteStaged(store, staging, declared)), staging };
+  const { key, sha256 } = declarationOf(workspaceId, bytes);
+  const outcome = await promote(store, staging, key, bytes.byteLength);
+  return { key, sha256, sizeBytes: bytes.byteLength, outcome, staging };
 }
 
 /** Every key of a workspace, page by page. */

@@ -1,11 +1,10 @@
 import { chmod, rm, utimes, writeFile } from "node:fs/promises";
 import { join } from "node:path";
 import { afterEach, beforeEach, describe, expect, test } from "vitest";
-import { putBlob } from "@/storage/blob";
 import { newStagingKey } from "@/storage/keys";
 import { type BlobRow, type SweepRows, sweepStore } from "@/storage/sweep";
 import { faultyStore } from "@/tests/support/faulty-store";
-import { keysOf, sendParts } from "@/tests/support/store-bytes";
+import { declarationOf, keysOf, sendParts, sourceOf } from "@/tests/support/store-bytes";
 import { filesystemHarness, type StoreHarness } from "@/tests/support/store-harness";
 
 const HOUR_MS = 3_600_000;
@@ -56,8 +55,10 @@ describe("sweep", () => {
   const sweep = (store = harness.store, rehash = true) => sweepStore(store, rows, { nowMs: NOW_MS, rehash });
   async function blob(text: string, options: { hoursOld?: number; row?: boolean } = {}) {
     const workspaceId = "w";
-    const { key, sha256, sizeBytes } = await putBlob(harness.store, workspaceId, Buffer.from(text));
-    const row = { workspaceId, sha256, sizeBytes };
+    const bytes = Buffer.from(text);
+    const { key, sha256, declared } = declarationOf(workspaceId, bytes);
+    await harness.store.create(key, sourceOf(bytes), declared);
+    const row = { workspaceId, sha256, sizeBytes: bytes.length };
     if (options.row !== false) rows.rows.push(row);
     await age(key, options.hoursOld ?? 0);
     return { key, row };
