@@ -69,6 +69,9 @@ export type CreateRevision = z.input<typeof createRevision>;
 
 export const editRevision = revisionText.extend({ revisionId: z.uuid(), rowVersion: z.int() });
 
+/** A step that needs nothing but the revision. */
+export const revisionStep = z.strictObject({ revisionId: z.uuid() });
+
 /** Any step of a revision that needs a reason. */
 export const stepWithReason = z.strictObject({
   revisionId: z.uuid(),
