@@ -1,9 +1,8 @@
 import { and, asc, desc, eq, inArray, isNull, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
-import { revisions, roadDays, runAnalyses, runs, users, workspaces } from "@/db/tables";
+import { revisions, runAnalyses, runs, users, workspaces } from "@/db/tables";
 
 export type RunRow = typeof runs.$inferSelect;
-export type RunAnalysisRow = typeof runAnalyses.$inferSelect;
 type Key = { workspaceId: string; runId: string };
 
 const at = ({ workspaceId, runId }: Key) => and(eq(runs.workspaceId, workspaceId), eq(runs.id, runId));
@@ -112,52 +111,6 @@ export async function selectRunsOfRoadDay(
     .orderBy(asc(runs.driveOrder), asc(runs.number));
 }
 
-/** What a run's verdict is computed from, beside its log and the vehicle sheet. */
-export async function selectRunForJudging(db: Queryable, key: Key) {
-  const [row] = await db
-    .select({ run: runs, massKg: roadDays.massKg })
-    .from(runs)
-    .innerJoin(roadDays, eq(roadDays.id, runs.roadDayId))
-    .where(at(key));
-  return row ?? null;
-}
-
-/** Keeps a verdict; the one of the same input is there already when the job ran twice. */
-export async function insertRunAnalysis(
-  tx: Queryable,
-  values: typeof runAnalyses.$inferInsert,
-): Promise<void> {
-  await tx.insert(runAnalyses).values(values).onConflictDoNothing();
-}
-
-/** Verdicts of a run, newest first. */
-export async function selectRunAnalyses(
-  db: Queryable,
-  { workspaceId, runId }: Key,
-): Promise<RunAnalysisRow[]> {
-  return await db
-    .select()
-    .from(runAnalyses)
-    .where(and(eq(runAnalyses.workspaceId, workspaceId), eq(runAnalyses.runId, runId)))
-    .orderBy(desc(runAnalyses.createdAt))
-    .limit(10);
-}
-
-/** Numbers of the records whose decision cites any of the runs, oldest first. */
-export async function selectCitingRecords(
-  db: Queryable,
-  { workspaceId, runIds }: { workspaceId: string; runIds: readonly string[] },
-): Promise<{ runId: string; recordNumber: number; decisionId: string }[]> {
-  if (runIds.length === 0) return [];
-  const ids = sql.param([...runIds]);
-  const { rows } = await db.execute<{ runId: string; recordNumber: number; decisionId: string }>(sql`
-    select cited->>'runId' as "runId", record_number as "recordNumber", id as "decisionId"
-    from decisions, jsonb_array_elements(evidence->'runs') as cited
-    where workspace_id = ${workspaceId} and cited->>'runId' = any(${ids})
-    order by record_number`);
-  return rows;
-}
-
 /** Runs of a road day that carry exactly the given weather, i.e. took it over when they were attached. */
 export async function updateWeatherOfRuns(
   tx: Queryable,
@@ -183,12 +136,12 @@ export async function updateWeatherOfRuns(
 }
 type Weather = Pick<RunRow, "tempC" | "pressureHpa" | "humidityPct">;
 
-/** Runs of a programme or of one of its road days, with the revision each belongs to. */
+/** Runs of a programme or of one of its road days, with the revision each belongs to; `lock` holds their rows. */
 export async function selectRunIds(
   db: Queryable,
-  args: { workspaceId: string; programmeId: string; roadDayId?: string },
+  args: { workspaceId: string; programmeId: string; roadDayId?: string; lock?: boolean },
 ) {
-  return await db
+  const query = db
     .select({ id: runs.id, revisionId: runs.revisionId })
     .from(runs)
     .where(
@@ -199,21 +152,7 @@ export async function selectRunIds(
       ),
     )
     .orderBy(asc(runs.number));
-}
-
-/** Comparisons that a revision is on a side of, with the numbers of both. */
-export async function selectComparisonsWithRevision(
-  db: Queryable,
-  { workspaceId, revisionId }: { workspaceId: string; revisionId: string },
-) {
-  const { rows } = await db.execute<{ id: string; a: number; b: number }>(sql`
-    select c.id, ra.number as a, rb.number as b
-    from comparisons c
-    join revisions ra on ra.id = c.revision_a_id
-    join revisions rb on rb.id = c.revision_b_id
-    where c.workspace_id = ${workspaceId} and (c.revision_a_id = ${revisionId} or c.revision_b_id = ${revisionId})
-    order by c.created_at desc limit 20`);
-  return rows;
+  return args.lock ? await query.for("update") : await query;
 }
 
 /** Revisions of a programme that a run may be attached to, or that one was: newest first. */

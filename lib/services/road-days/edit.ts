@@ -42,7 +42,7 @@ export async function editRoadDay(ctx: Ctx, input: EditRoadDay): Promise<RoadDay
     }
     if (changes.fields.length === 0) return row;
     if (COMPUTED_WITH.some((field) => changes.fields.includes(field))) {
-      const affected = await selectRunIds(tx, { workspaceId, programmeId, roadDayId });
+      const affected = await selectRunIds(tx, { workspaceId, programmeId, roadDayId, lock: true });
       const ids = affected.map((run) => run.id);
       await refuseCited(tx, inner, "A run of this road day", ids);
       const weather = ({ tempC, pressureHpa, humidityPct }: Figures | RoadDayRow) => ({

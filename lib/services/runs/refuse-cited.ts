@@ -1,5 +1,6 @@
-import type { Queryable } from "@/db/client";
-import { selectCitingRecords } from "@/db/queries/runs";
+import type { Transaction } from "@/db/client";
+import { lockLedgerHead } from "@/db/queries/ledger";
+import { selectCitingRecords } from "@/db/queries/run-analyses";
 import { ConflictError } from "@/lib/errors";
 import { logger } from "@/lib/logger";
 import type { Ctx } from "@/lib/services/ctx";
@@ -12,18 +13,20 @@ export function citedSentence(what: string, recordNumbers: readonly number[]): s
 }
 
 /**
- * Nothing that a decision rests on changes.
+ * Nothing that a decision rests on changes. Holds the ledger's head from here on, as a decision does, so that none can
+ * come between this look and the change. Lock the run rows before.
  * @param what how the sentence calls it, e.g. "Run 12"
  * @throws ConflictError `run_cited`
  */
 export async function refuseCited(
-  db: Queryable,
+  tx: Transaction,
   ctx: Pick<Ctx, "workspaceId" | "userId" | "requestId">,
   what: string,
   runIds: readonly string[],
 ): Promise<void> {
   const { workspaceId } = ctx;
-  const citing = await selectCitingRecords(db, { workspaceId, runIds });
+  await lockLedgerHead(tx, { workspaceId });
+  const citing = await selectCitingRecords(tx, { workspaceId, runIds });
   const records = citing.map((row) => row.recordNumber);
   const sentence = citedSentence(what, records);
   if (sentence === null) return;
