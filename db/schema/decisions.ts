@@ -27,15 +27,47 @@ export const decisionKindEnum = pgEnum("decision_kind", [
   "roll_back",
 ]);
 
+/** One run of the evidence, as it was when the decision was taken. */
+export interface EvidenceRun {
+  runId: string;
+  number: number;
+  logSha256: string;
+  side: string;
+  usable: boolean;
+  testerName: string | null;
+  /** Why it did not count; null for a run that did. */
+  leftOut: string | null;
+}
+
+/** What the revision was when the decision was taken. */
+export interface EvidenceRevision {
+  number: number;
+  title: string;
+  parentNumber: number | null;
+  imageFileName: string;
+  imageBytes: number;
+  changeReason: string;
+  intendedUse: string | null;
+  touchesEmissionOrSafety: boolean | null;
+}
+
 /** The evidence a decision was taken on, frozen with it. */
 export interface DecisionEvidence {
   comparisonId: string | null;
   comparisonInputSha256: string | null;
+  /** Digest of the result's canonical JSON: the figures on the record are these and no others. */
+  resultSha256: string | null;
+  analysisVersion: string | null;
+  sheetVersion: number | null;
   gatePlanVersion: number | null;
   gates: GateResult[];
-  runs: { runId: string; number: number; logSha256: string; side: string; usable: boolean }[];
+  runs: EvidenceRun[];
+  revision: EvidenceRevision;
+  fromNumber: number | null;
   imageSha256: string;
   standingImageSha256: string | null;
+  /** How many leads had to sign. */
+  leadsRequired: number;
 }
 
 /** Append-only: a decision is its own row and only a new one can supersede it. */

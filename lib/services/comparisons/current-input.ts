@@ -1,0 +1,88 @@
+import type { Queryable } from "@/db/client";
+import { type ComparedRun, type ComparisonRow, selectComparedRuns } from "@/db/queries/comparisons";
+import { selectVehicleSheet } from "@/db/queries/vehicle-sheets";
+import type { ComparisonInput } from "@/db/schema/comparisons";
+import { canonicalJson, digestOf } from "@/lib/canonical-json";
+import { NotFoundError } from "@/lib/errors";
+import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
+import type { VehicleSheetFigures } from "@/lib/measure/vehicle-sheet";
+
+/** What counts for a comparison at this moment, with the rows it was read from. */
+export interface CurrentInput {
+  input: ComparisonInput;
+  /** SHA-256 of the canonical JSON of `input`: a result with another one is stale. */
+  inputSha256: string;
+  sheet: VehicleSheetFigures;
+  /** Every run of both revisions in the order driven, set aside ones too; `order` counts on over the road days. */
+  runs: (ComparedRun & { side: "A" | "B"; order: number })[];
+}
+
+/** The typed facts of a run that enter the computation beside its log; the keys are the words of `whatMoved`. */
+export function runFields(run: ComparedRun): Record<string, unknown> {
+  return {
+    gear: run.gear,
+    started: run.startedAt?.toISOString() ?? null,
+    temperature: run.tempC,
+    pressure: run.pressureHpa,
+    humidity: run.humidityPct,
+    mass: run.massKg,
+  };
+}
+
+/**
+ * Places of the runs on one count over all road days: a later day goes on where the earlier one ended, so that
+ * drift is counted per run driven, also past runs that are not compared.
+ * @param runs sorted by road day and place in its driven order
+ */
+function withOrder<T extends ComparedRun>(runs: readonly T[]): (T & { order: number })[] {
+  let offset = 0;
+  let last = 0;
+  let roadDayId: string | null = null;
+  return runs.map((run) => {
+    if (run.roadDayId !== roadDayId) {
+      offset += last;
+      roadDayId = run.roadDayId;
+    }
+    last = run.driveOrder;
+    return { ...run, order: offset + run.driveOrder };
+  });
+}
+
+/**
+ * Reads the exact runs that count now: all of both revisions that are not set aside, whatever their road day.
+ * Call it inside the transaction that relies on it.
+ * @throws NotFoundError when the programme has no vehicle sheet
+ */
+export async function currentInput(
+  db: Queryable,
+  comparison: Pick<ComparisonRow, "workspaceId" | "programmeId" | "revisionAId" | "revisionBId" | "settings">,
+): Promise<CurrentInput> {
+  const { workspaceId, programmeId, revisionAId, revisionBId, settings } = comparison;
+  const sheet = await selectVehicleSheet(db, { workspaceId, programmeId });
+  if (!sheet)
+    throw new NotFoundError("no_vehicle_sheet", "This programme has no vehicle sheet. Write one first.");
+  const rows = await selectComparedRuns(db, { workspaceId, revisionIds: [revisionAId, revisionBId] });
+  const runs = withOrder(rows).map((run) => ({
+    ...run,
+    side: run.revisionId === revisionAId ? ("A" as const) : ("B" as const),
+  }));
+  const input: ComparisonInput = {
+    analysisVersion: ANALYSIS_VERSION,
+    sheetVersion: sheet.version,
+    settings,
+    runs: runs
+      .filter((run) => run.setAsideAt === null)
+      .map((run) => ({
+        runId: run.id,
+        number: run.number,
+        side: run.side,
+        logSha256: run.logSha256,
+        leg: run.leg,
+        order: run.order,
+        kind: run.kind,
+        roadDayId: run.roadDayId,
+        fields: canonicalJson(runFields(run)),
+      })),
+  };
+  return { input, inputSha256: digestOf(input), sheet: sheet.figures, runs };
+}

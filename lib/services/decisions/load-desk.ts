@@ -1,0 +1,93 @@
+import { selectPeopleToTell } from "@/db/queries/decisions";
+import { countOthersWithRole, hasPassphrase, selectUser } from "@/db/queries/people";
+import { selectRevision } from "@/db/queries/revisions";
+import { NotFoundError } from "@/lib/errors";
+import type { Verdict } from "@/lib/policy/actor";
+import { can } from "@/lib/policy/can";
+import { getComparison } from "@/lib/services/comparisons/load";
+import type { ComparisonView } from "@/lib/services/comparisons/schema";
+import { authorise, type Ctx } from "@/lib/services/ctx";
+import { type GateStatus, gateStatus } from "@/lib/services/gates/status";
+import { loadProgramme } from "@/lib/services/programmes/load";
+
+/** Everything the decision page shows beside the form. */
+export interface DecisionDesk {
+  programme: { id: string; name: string; archived: boolean };
+  revision: {
+    id: string;
+    number: number;
+    title: string;
+    state: string;
+    rowVersion: number;
+    changeReason: string;
+    intendedUse: string | null;
+    touchesEmissionOrSafety: boolean | null;
+    imageSha256: string;
+    barredReason: string | null;
+    setAside: boolean;
+    submittedAt: Date | null;
+  };
+  standing: { id: string; number: number; title: string } | null;
+  authorName: string;
+  submitterName: string | null;
+  gates: GateStatus;
+  /** The comparison that the gates rest on; null when nobody has opened it. */
+  comparison: ComparisonView | null;
+  mayPromote: Verdict;
+  mayTurnDown: Verdict;
+  mayWaive: Verdict;
+  hasPassphrase: boolean;
+  /** How many people a decision is told. */
+  peopleTold: number;
+}
+
+/**
+ * A revision with the evidence for a decision on it.
+ * @throws NotFoundError for another workspace's; ForbiddenError for who may not see comparisons
+ */
+export async function getDecisionDesk(ctx: Ctx, revisionId: string): Promise<DecisionDesk> {
+  const { db, workspaceId, userId } = ctx;
+  authorise(ctx, "comparison.view", { granted: false });
+  const row = await selectRevision(db, { workspaceId, revisionId });
+  if (!row) throw new NotFoundError("no_revision", "There is no such revision.");
+  const { programme } = await loadProgramme(ctx, row.programmeId);
+  const standingId = programme.standingRevisionId;
+  const standing = standingId ? await selectRevision(db, { workspaceId, revisionId: standingId }) : null;
+  const author = await selectUser(db, { userId: row.authorId });
+  const submitter = row.submitterId ? await selectUser(db, { userId: row.submitterId }) : null;
+  const gates = await gateStatus(ctx, { revisionId });
+  const otherLeads = await countOthersWithRole(db, { workspaceId, userId, role: "lead" });
+  const facts = {
+    authorId: row.authorId,
+    submitterId: row.submitterId,
+    otherActiveLead: otherLeads > 0,
+  };
+  const told = await selectPeopleToTell(db, row);
+  return {
+    programme: { id: programme.id, name: programme.name, archived: programme.archivedAt !== null },
+    revision: {
+      id: row.id,
+      number: row.number,
+      title: row.title,
+      state: row.state,
+      rowVersion: row.rowVersion,
+      changeReason: row.changeReason,
+      intendedUse: row.intendedUse,
+      touchesEmissionOrSafety: row.touchesEmissionOrSafety,
+      imageSha256: row.imageSha256,
+      barredReason: row.barredAt ? (row.barredReason ?? "no reason was kept") : null,
+      setAside: row.setAsideAt !== null,
+      submittedAt: row.submittedAt,
+    },
+    standing: standing && { id: standing.id, number: standing.number, title: standing.title },
+    authorName: author?.name ?? "somebody",
+    submitterName: row.submitterId ? (submitter?.name ?? "somebody") : null,
+    gates,
+    comparison: gates.comparisonId ? await getComparison(ctx, gates.comparisonId) : null,
+    mayPromote: can(ctx, "decision.promote", facts),
+    mayTurnDown: can(ctx, "decision.turn_down", facts),
+    mayWaive: can(ctx, "gate.waive", facts),
+    hasPassphrase: await hasPassphrase(db, { userId }),
+    peopleTold: told.length,
+  };
+}

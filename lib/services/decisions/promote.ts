@@ -1,0 +1,138 @@
+import { moveRevision, setStandingRevision } from "@/db/queries/decisions";
+import { ConflictError, InvalidInputError } from "@/lib/errors";
+import type { GateResult } from "@/lib/gates/plan";
+import { whatMoved } from "@/lib/services/comparisons/what-moved";
+import type { Ctx } from "@/lib/services/ctx";
+import { decide, evidenceOf } from "@/lib/services/decisions/decide";
+import { type RecordedDecision, recordDecision } from "@/lib/services/decisions/record";
+import { namesRevision, type PromoteInput, promoteInput } from "@/lib/services/decisions/schema";
+import { openMusts } from "@/lib/services/gates/open-musts";
+import type { GateDesk } from "@/lib/services/gates/status";
+import { refuseArchived } from "@/lib/services/programmes/refuse-archived";
+
+type Waiver = { gateId: string; reason: string };
+
+/** The comparison must still say what the lead saw. @throws ConflictError naming what moved */
+function requireSameEvidence(
+  gates: GateDesk,
+  seen: { comparisonId: string | null; inputSha256: string | null; gatePlanVersion: number | null },
+): void {
+  const again = "Nothing was decided by you. Open the page again and look once more.";
+  if (gates.planVersion !== seen.gatePlanVersion)
+    throw new ConflictError("plan_moved", `The gate plan has another version than you saw. ${again}`);
+  const { comparison } = gates;
+  const inputNow = comparison?.current.inputSha256 ?? null;
+  if ((comparison?.comparison.id ?? null) !== seen.comparisonId)
+    throw new ConflictError("evidence_moved", `The comparison is another one than you saw. ${again}`);
+  if (comparison && comparison.state !== "ready") {
+    const moved = comparison.moved.join(" ");
+    throw new ConflictError(
+      "evidence_moved",
+      `The comparison does not show what counts now. ${moved || "Its result is not there yet."} Recompute it first. ${again}`,
+      { moved: comparison.moved },
+    );
+  }
+  if (inputNow !== seen.inputSha256) {
+    const moved = comparison?.shown ? whatMoved(comparison.shown.input, comparison.current.input) : [];
+    throw new ConflictError(
+      "evidence_moved",
+      `The evidence has changed since you opened this page: runs, their facts or the vehicle sheet. ${again}`,
+      { moved },
+    );
+  }
+}
+
+/**
+ * Every must gate is met, does not apply or is waived; only what is not met can be waived.
+ * @returns the gates as the record prints them, and the waivers with the state they set aside
+ * @throws InvalidInputError naming the gates
+ */
+function applyWaivers(results: readonly GateResult[], waivers: readonly Waiver[]) {
+  const open = openMusts(results);
+  const unknown = waivers.filter((waiver) => !open.some((gate) => gate.id === waiver.gateId));
+  if (unknown.length > 0)
+    throw new InvalidInputError(
+      "nothing_to_waive",
+      `There is nothing to waive at ${unknown.map((waiver) => waiver.gateId).join(", ")}: only a must gate that is not met can be waived.`,
+    );
+  const missing = open.filter((gate) => !waivers.some((waiver) => waiver.gateId === gate.id));
+  if (missing.length > 0)
+    throw new InvalidInputError(
+      "gates_open",
+      `Not met and not waived: ${missing.map((gate) => gate.title).join("; ")}. Get the evidence, or waive each with a reason.`,
+      { gates: missing.map((gate) => gate.id) },
+    );
+  const gates = results.map((gate) =>
+    waivers.some((waiver) => waiver.gateId === gate.id) ? { ...gate, state: "waived" as const } : gate,
+  );
+  const signed = waivers.map((waiver) => ({
+    ...waiver,
+    gateState: results.find((gate) => gate.id === waiver.gateId)?.state ?? "not_met",
+  }));
+  return { gates, signed };
+}
+
+/**
+ * in review → promoted: the revision stands from now on, the one before is superseded.
+ * @throws ForbiddenError author, submitter, role or passphrase; InvalidInputError typed number or open gates;
+ * ConflictError when anything the lead saw has moved, or another decision was first
+ */
+export async function promoteRevision(ctx: Ctx, raw: PromoteInput): Promise<RecordedDecision> {
+  const input = promoteInput.parse(raw);
+  return await decide(ctx, { action: "decision.promote", seen: input }, async (signing) => {
+    const { tx, actor, desk, gates, reauthMethod, selfReleased } = signing;
+    const { revision, standing, programme } = desk;
+    const { workspaceId } = actor;
+    refuseArchived(programme);
+    if (revision.barredAt !== null)
+      throw new ConflictError("barred", `R${revision.number} is barred: ${revision.barredReason}`);
+    if (!namesRevision(input.typedNumber, revision.number))
+      throw new InvalidInputError(
+        "wrong_number",
+        `You typed "${input.typedNumber}", but this page is about R${revision.number}. Nothing was decided.`,
+      );
+    requireSameEvidence(gates, input);
+    const { gates: results, signed } = applyWaivers(gates.results, input.waivers);
+
+    const recorded = await recordDecision(tx, actor, {
+      kind: "promote",
+      programmeId: programme.id,
+      revisionId: revision.id,
+      fromRevisionId: standing?.id ?? null,
+      reason: input.reason,
+      reauthMethod,
+      selfReleased,
+      evidence: { ...evidenceOf(gates), gates: results },
+      waivers: signed,
+    });
+    const moves = [
+      standing === null ||
+        (await moveRevision(tx, {
+          workspaceId,
+          revisionId: standing.id,
+          rowVersion: standing.rowVersion,
+          from: "promoted",
+          set: { state: "superseded", stoodUntil: recorded.decidedAt },
+        })),
+      await moveRevision(tx, {
+        workspaceId,
+        revisionId: revision.id,
+        rowVersion: input.rowVersion,
+        from: "in_review",
+        set: { state: "promoted", stoodFrom: recorded.decidedAt, stoodUntil: null },
+      }),
+      await setStandingRevision(tx, {
+        workspaceId,
+        programmeId: programme.id,
+        from: standing?.id ?? null,
+        to: revision.id,
+      }),
+    ];
+    if (moves.includes(false))
+      throw new ConflictError(
+        "revision_moved",
+        `R${revision.number} or the standing revision was changed at this moment. Nothing was decided. Open the page again.`,
+      );
+    return recorded;
+  });
+}
