@@ -2,7 +2,8 @@ import { randomUUID } from "node:crypto";
 import { type NextRequest, NextResponse } from "next/server";
 
 /**
- * Content security policy with a nonce for each answer, and the request id. It decides no access: pages, routes and actions do.
+ * Content security policy with a nonce for each answer, the request id, and the path for the way back after signing in.
+ * It decides no access: pages, routes and actions do. What a client sends under these header names is overwritten.
  * Uploads are outside the matcher: a proxy in front of them cuts bodies over 10 MB without an error.
  */
 export function proxy(request: NextRequest): NextResponse {
@@ -24,6 +25,7 @@ export function proxy(request: NextRequest): NextResponse {
   const requestHeaders = new Headers(request.headers);
   requestHeaders.set("x-nonce", nonce);
   requestHeaders.set("x-request-id", randomUUID());
+  requestHeaders.set("x-path", request.nextUrl.pathname + request.nextUrl.search);
   requestHeaders.set("content-security-policy", policy);
   const response = NextResponse.next({ request: { headers: requestHeaders } });
   response.headers.set("content-security-policy", policy);
@@ -31,10 +33,5 @@ export function proxy(request: NextRequest): NextResponse {
 }
 
 export const config = {
-  matcher: [
-    {
-      source: "/((?!api/uploads|_next/static|_next/image|icon.svg).*)",
-      missing: [{ type: "header", key: "next-router-prefetch" }],
-    },
-  ],
+  matcher: ["/((?!api/uploads|_next/static|_next/image|icon.svg).*)"],
 };

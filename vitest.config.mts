@@ -39,6 +39,8 @@ export default defineConfig({
           env: { ...SHARED.env, ...SETTINGS },
           include: ["tests/integration/**/*.test.ts"],
           globalSetup: "tests/support/database-cluster.ts",
+          // Node can't resolve the way this package imports next; vite can.
+          server: { deps: { inline: ["next-auth"] } },
           testTimeout: 20_000,
           hookTimeout: 60_000,
         },

@@ -1,4 +1,4 @@
-import { and, desc, eq, lt, sql } from "drizzle-orm";
+import { and, asc, between, desc, eq, lt, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
 import { ledger, ledgerHeads } from "@/db/tables";
 
@@ -49,4 +49,24 @@ export async function selectLedger(
     )
     .orderBy(desc(ledger.seq))
     .limit(args.limit);
+}
+
+/** Entries from one number to another, oldest first. */
+export async function selectLedgerStretch(
+  db: Queryable,
+  args: { workspaceId: string; fromSeq: number; toSeq: number },
+): Promise<LedgerRow[]> {
+  return await db
+    .select()
+    .from(ledger)
+    .where(and(eq(ledger.workspaceId, args.workspaceId), between(ledger.seq, args.fromSeq, args.toSeq)))
+    .orderBy(asc(ledger.seq));
+}
+
+export async function selectLedgerHead(db: Queryable, { workspaceId }: { workspaceId: string }) {
+  const [head] = await db
+    .select({ seq: ledgerHeads.seq, sha256: ledgerHeads.sha256 })
+    .from(ledgerHeads)
+    .where(eq(ledgerHeads.workspaceId, workspaceId));
+  return head ?? null;
 }

@@ -1,4 +1,4 @@
-import { and, count, eq, isNull, ne, sql } from "drizzle-orm";
+import { and, count, eq, inArray, isNull, ne, or, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
 import { memberships, rateLimits, sessions, signingPassphrases, users, workspaces } from "@/db/tables";
 
@@ -59,6 +59,7 @@ export async function countOthersWithRole(
 export async function selectSession(db: Queryable, { tokenHash }: { tokenHash: string }) {
   const [row] = await db
     .select({
+      userId: sessions.userId,
       activeWorkspaceId: sessions.activeWorkspaceId,
       createdAt: sessions.createdAt,
       ageS: sql<number>`extract(epoch from now() - ${sessions.createdAt})::float8`,
@@ -164,4 +165,47 @@ export async function countTry(db: Queryable, { bucket }: { bucket: string }): P
     })
     .returning({ count: rateLimits.count });
   return row.count;
+}
+
+/** Demo people with the roles they hold in demo workspaces; one of them when named. */
+export async function selectSamplePeople(db: Queryable, { userId }: { userId?: string } = {}) {
+  return await db
+    .select({ id: users.id, name: users.name, roles: memberships.roles })
+    .from(users)
+    .innerJoin(memberships, eq(memberships.userId, users.id))
+    .innerJoin(workspaces, eq(workspaces.id, memberships.workspaceId))
+    .where(
+      and(
+        eq(users.sample, true),
+        eq(workspaces.sample, true),
+        isNull(memberships.disabledAt),
+        userId === undefined ? undefined : eq(users.id, userId),
+      ),
+    )
+    .orderBy(users.createdAt, users.name);
+}
+
+/** Addresses to warn of an attempted misuse: the person, and the active leads and admins of their workspaces. */
+export async function selectAddressesToWarn(
+  db: Queryable,
+  { userId }: { userId: string },
+): Promise<string[]> {
+  const own = db
+    .select({ id: memberships.workspaceId })
+    .from(memberships)
+    .where(and(eq(memberships.userId, userId), isNull(memberships.disabledAt)));
+  const rows = await db
+    .selectDistinct({ email: users.email })
+    .from(users)
+    .leftJoin(memberships, and(eq(memberships.userId, users.id), isNull(memberships.disabledAt)))
+    .where(
+      or(
+        eq(users.id, userId),
+        and(
+          inArray(memberships.workspaceId, own),
+          sql`${memberships.roles} && array['lead','admin']::role[]`,
+        ),
+      ),
+    );
+  return rows.map((row) => row.email);
 }

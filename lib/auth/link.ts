@@ -1,28 +1,31 @@
 import "server-only";
 import { Auth, raw } from "@auth/core";
+import { Verification } from "@auth/core/errors";
 import { cookies, headers } from "next/headers";
-import { z } from "zod";
-import { countTry } from "@/db/queries/people";
+import { countTry, selectSession } from "@/db/queries/people";
+import { hashSessionToken } from "@/lib/auth/adapter";
 import { authConfig, EMAIL_PROVIDER, signIn } from "@/lib/auth/config";
+import { ownPath } from "@/lib/auth/own-path";
+import { sessionCookieName, setSessionCookie } from "@/lib/auth/session-cookie";
+import { endCurrentSession } from "@/lib/auth/start-session";
 import { env } from "@/lib/env";
-import { TooManyRequestsError } from "@/lib/errors";
+import { TooManyRequestsError, UnavailableError } from "@/lib/errors";
+import { logger } from "@/lib/logger";
 import { database } from "@/lib/runtime";
 
 const LINKS_PER_ADDRESS_AND_HOUR = 5;
 const LINKS_PER_HOUR = 200;
-const ASKED_HERE_COOKIE = "twinpass-link-asked";
-
-export const emailSchema = z
-  .email("Write an e-mail address, e.g. name@example.org.")
-  .trim()
-  .toLowerCase()
-  .max(254);
+/** Set in the browser that asked; holds where to go after signing in. */
+const ASKED_HERE_COOKIE = "twinpass.link-asked";
+const ASKED_HERE_S = 600;
 
 /**
  * Mails a sign-in link. The answer is the same whether the address is known or not.
- * @throws TooManyRequestsError after five links an hour for one address, or 200 in all
+ * @param email as emailAddress of lib/services/members/schema gives it
+ * @param next path to go to after signing in
+ * @throws TooManyRequestsError after five links an hour for one address, or 200 in all; UnavailableError
  */
-export async function requestLink(email: string): Promise<void> {
+export async function requestLink(email: string, next: string): Promise<void> {
   const db = database();
   const forAddress = await countTry(db, { bucket: `link:${email}` });
   const inAll = await countTry(db, { bucket: "link" });
@@ -32,31 +35,56 @@ export async function requestLink(email: string): Promise<void> {
       "Too many sign-in links were asked for. Wait an hour and try again.",
     );
   }
-  await signIn(EMAIL_PROVIDER, { email, redirect: false, redirectTo: "/programmes" });
-  const jar = await cookies();
+  try {
+    await signIn(EMAIL_PROVIDER, { email, redirect: false, redirectTo: "/programmes" });
+  } catch (error) {
+    logger().error({ event: "auth.link_not_sent", err: error });
+    throw new UnavailableError("link_not_sent", "The sign-in link could not be sent. Try again in a minute.");
+  }
+  logger().info({ event: "auth.link_requested" });
   const secure = env().AUTH_URL.startsWith("https:");
-  jar.set(ASKED_HERE_COOKIE, "1", { httpOnly: true, sameSite: "lax", secure, path: "/", maxAge: 600 });
+  const options = { httpOnly: true, sameSite: "lax", secure, path: "/", maxAge: ASKED_HERE_S } as const;
+  (await cookies()).set(ASKED_HERE_COOKIE, ownPath(next), options);
 }
 
-/** Whether the link was asked for in this very browser; shown on the landing page. */
+/** Whether a link was asked for in this very browser within ten minutes; shown on the landing page. */
 export async function wasAskedHere(): Promise<boolean> {
   return (await cookies()).has(ASKED_HERE_COOKIE);
 }
 
-/**
- * Uses a link up and starts a session: the sign-in library's own callback, run by the button and never by a GET.
- * @returns whether it worked; a used, old or wrong link does not
- */
-export async function consumeLink(email: string, token: string): Promise<boolean> {
+/** Runs the library's own callback. @returns the new session's token, or null where the link does not work */
+async function callLibrary(email: string, token: string): Promise<string | null> {
   const url = new URL(`/api/auth/callback/${EMAIL_PROVIDER}`, env().AUTH_URL);
   url.searchParams.set("email", email);
   url.searchParams.set("token", token);
-  const request = new Request(url, { headers: new Headers(await headers()) });
-  const answer = await Auth(request, { ...authConfig(), raw });
+  try {
+    const answer = await Auth(new Request(url, { headers: new Headers(await headers()) }), {
+      ...authConfig(),
+      raw,
+    });
+    return answer.cookies?.find((cookie) => cookie.name === sessionCookieName())?.value ?? null;
+  } catch (error) {
+    if (error instanceof Verification) return null;
+    throw error;
+  }
+}
+
+/**
+ * Uses a link up and starts a session; run by the button and never by a GET. A session that this browser had before ends.
+ * @returns the path to go to, or null where the link was used, is too old or is wrong
+ */
+export async function consumeLink(email: string, token: string): Promise<string | null> {
+  const sessionToken = await callLibrary(email, token);
+  if (sessionToken === null) {
+    logger().warn({ event: "auth.failed", reason: "link used, too old or wrong" });
+    return null;
+  }
+  await endCurrentSession();
+  await setSessionCookie(sessionToken);
   const jar = await cookies();
-  const target = answer.redirect ?? "";
-  if (target.includes("error=")) return false;
-  for (const cookie of answer.cookies ?? []) jar.set(cookie.name, cookie.value, cookie.options);
+  const next = ownPath(jar.get(ASKED_HERE_COOKIE)?.value);
   jar.delete(ASKED_HERE_COOKIE);
-  return true;
+  const session = await selectSession(database(), { tokenHash: hashSessionToken(sessionToken) });
+  logger().info({ event: "auth.signed_in", userId: session?.userId });
+  return next;
 }

@@ -1,11 +1,32 @@
-import { lockPassphrase, notePassphraseTry } from "@/db/queries/people";
+import { enqueueMail } from "@/db/queries/mail";
+import { lockPassphrase, notePassphraseTry, selectAddressesToWarn, selectUser } from "@/db/queries/people";
 import { passphraseFits } from "@/lib/auth/passphrase";
 import { ForbiddenError, TooManyRequestsError } from "@/lib/errors";
+import { logger } from "@/lib/logger";
 import type { Ctx } from "@/lib/services/ctx";
+
+const TRIES = 5;
+
+/** Tells the person and the leads and admins around them that somebody tried. */
+async function warnOfLock(tx: Ctx["db"], userId: string): Promise<void> {
+  const person = await selectUser(tx, { userId });
+  for (const toAddress of await selectAddressesToWarn(tx, { userId })) {
+    await enqueueMail(tx, {
+      workspaceId: null,
+      toAddress,
+      subject: "Five wrong signing passphrases in Twinpass",
+      body: [
+        `Five wrong signing passphrases were tried as ${person?.name ?? person?.email}. Signing is locked for 15 minutes.`,
+        "",
+        "If it was not them, an admin can disable the membership, which ends every session at once.",
+      ].join("\n"),
+    });
+  }
+}
 
 /**
  * Confirms that it is really this person, right before a decision. Its own transaction, so that a wrong try counts
- * even though the decision fails. Five wrong tries lock the passphrase for 15 minutes.
+ * even though the decision fails. Five wrong tries lock the passphrase for 15 minutes and are told by mail.
  * @returns how identity was confirmed, for the record
  * @throws ForbiddenError no passphrase set, or a wrong one; TooManyRequestsError while locked
  */
@@ -19,8 +40,11 @@ export async function reauthenticate(
     if (row.locked) return "locked";
     const right = await passphraseFits(passphrase, row.scryptHash);
     await notePassphraseTry(tx, { userId: ctx.userId, right });
+    if (!right && row.failedTries + 1 >= TRIES) await warnOfLock(tx, ctx.userId);
     return right ? "right" : "wrong";
   });
+  if (outcome !== "right")
+    logger().warn({ event: "auth.reauthentication_failed", userId: ctx.userId, outcome });
   switch (outcome) {
     case "right":
       return "passphrase";
