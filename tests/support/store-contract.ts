@@ -40,8 +40,12 @@ const HOSTILE = [
 ];
 
 /** What every driver must do, in the numbers of the contract. One store for the whole run. */
-export function describeStoreContract(name: string, open: () => Promise<StoreHarness>): void {
-  describe(`${name} store`, { timeout: 120_000 }, () => {
+export function describeStoreContract(
+  name: string,
+  open: () => Promise<StoreHarness>,
+  timeout = 120_000,
+): void {
+  describe(`${name} store`, { timeout }, () => {
     let harness: StoreHarness;
     beforeAll(async () => {
       harness = await open();
