@@ -30,7 +30,7 @@ const FROM_OUTSIDE = [
 
 /**
  * @param {{ port: number, dataFolder: string, distDir: string, secrets: import("./secrets.mjs").Secrets,
- *   cluster: import("./postgres.mjs").Cluster, outside: NodeJS.ProcessEnv }} facts
+ *   cluster: import("./postgres.mjs").Cluster, outside: Record<string, string | undefined> }} facts
  * @returns {Settings} the settings of lib/env.ts for web and worker, without the owner's database address
  */
 export function appSettings({ port, dataFolder, distDir, secrets, cluster, outside }) {

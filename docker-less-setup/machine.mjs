@@ -126,21 +126,35 @@ export function portOwner(port) {
     }
   }
   for (const pid of readdirSync("/proc").filter((name) => /^\d+$/.test(name))) {
-    try {
-      const open = readdirSync(`/proc/${pid}/fd`).map((fd) => readlinkSync(`/proc/${pid}/fd/${fd}`));
-      if (open.some((target) => sockets.has(target)))
-        return { pid: Number(pid), command: commandOf(Number(pid)) };
-    } catch {
-      // ended meanwhile, or of another user
+    if (openFiles(pid).some((target) => sockets.has(target))) {
+      return { pid: Number(pid), command: commandOf(Number(pid)) };
     }
   }
   return null;
 }
 
+/** @param {string} pid @returns {string[]} what its file numbers point to; none when it is another user's or has ended */
+function openFiles(pid) {
+  try {
+    return readdirSync(`/proc/${pid}/fd`).map((fd) => {
+      try {
+        return readlinkSync(`/proc/${pid}/fd/${fd}`);
+      } catch {
+        return "";
+      }
+    });
+  } catch {
+    return [];
+  }
+}
+
 /** @param {number} pid @returns {string} its command line, shortened; empty when it has ended */
 export function commandOf(pid) {
   try {
-    return readFileSync(`/proc/${pid}/cmdline`, "utf8").replace(/[\0\s]+/g, " ").trim().slice(0, 80);
+    return readFileSync(`/proc/${pid}/cmdline`, "utf8")
+      .replace(/[\0\s]+/g, " ")
+      .trim()
+      .slice(0, 80);
   } catch {
     return "";
   }

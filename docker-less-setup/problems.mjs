@@ -131,3 +131,13 @@ export function alreadyRunning({ pid, address }) {
 export function folderReadOnly({ folder, user }) {
   return `${user} can't write in ${folder}. Give yourself the folder, or use a clone in a folder of your own.`;
 }
+
+/** @param {{ pid: number }} facts */
+export function alreadyTesting({ pid }) {
+  return `npm test already runs in this folder (process ${pid}). Wait for it, or use another clone.`;
+}
+
+/** @param {{ name: string, known: string[] }} facts */
+export function unknownPhase({ name, known }) {
+  return `${name} is no part of the tests. Give one of ${known.join(", ")}, or nothing to run them all.`;
+}

@@ -139,6 +139,7 @@ it("names nothing in the files that keep the rules", async () => {
 it("fails when it read no module, instead of finding no violation", async () => {
   const { ok, output } = await outcome("boundaries", {
     "tests/golden/README.md": "Nothing to read here.\n",
+    "proxy.ts": x,
     "tsconfig.json": LEGAL["tsconfig.json"] ?? "",
   });
   expect(ok).toBe(false);

@@ -1,5 +1,5 @@
 import { spawn } from "node:child_process";
-import { existsSync } from "node:fs";
+import { existsSync, writeFileSync } from "node:fs";
 import { dirname, join } from "node:path";
 import { fileURLToPath } from "node:url";
 import { inspectStructure } from "./structure.mjs";
@@ -97,6 +97,8 @@ export async function runChecks(root, say) {
 }
 
 if (process.argv[1] === fileURLToPath(import.meta.url)) {
-  const { failed } = await runChecks(HOME, console.log);
-  process.exit(failed === 0 ? 0 : 1);
+  const report = process.argv[2];
+  const count = await runChecks(HOME, console.log);
+  if (report) writeFileSync(report, JSON.stringify(count));
+  process.exitCode = count.failed === 0 ? 0 : 1;
 }
