@@ -1,7 +1,7 @@
 import { fittingTicks, ValueAxis } from "@/components/charts/frame/axes";
 import { indexSpan } from "@/components/charts/frame/series";
+import { BandArea, CurveLine, type OverlayPlotProps } from "@/components/charts/overlay/curve-shapes";
 import { OVERLAY_BOX } from "@/components/charts/overlay/overlay-layout";
-import { BandArea, CurveLine, type OverlayPlotProps } from "@/components/charts/overlay/overlay-plot";
 import { numberText } from "@/components/ui/data/number-text";
 
 /** The lower panel: B − A with its band, the zero line darkest, the proven stretches marked on it. */

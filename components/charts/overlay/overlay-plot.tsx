@@ -1,22 +1,11 @@
-import { Area, LinePath } from "@visx/shape";
 import { memo } from "react";
 import { BaseAxis, fittingTicks, type LinearScale, ValueAxis } from "@/components/charts/frame/axes";
-import { FillDefs, type FillIds } from "@/components/charts/frame/fills";
+import { FillDefs } from "@/components/charts/frame/fills";
 import { shiftLabels } from "@/components/charts/frame/label-shift";
 import type { Series } from "@/components/charts/frame/series";
+import { CurveLine, type OverlayPlotProps } from "@/components/charts/overlay/curve-shapes";
 import { OverlayDelta } from "@/components/charts/overlay/overlay-delta";
-import { OVERLAY_BOX, type OverlayLayout } from "@/components/charts/overlay/overlay-layout";
-import type { DeltaView, OverlayData, OverlayQuantity } from "@/components/charts/overlay/overlay-types";
-
-export interface OverlayPlotProps {
-  data: OverlayData;
-  quantity: OverlayQuantity;
-  delta: DeltaView;
-  layout: OverlayLayout;
-  everyRun: boolean;
-  fills: FillIds;
-  clipId: string;
-}
+import { OVERLAY_BOX } from "@/components/charts/overlay/overlay-layout";
 
 /** Everything that stays still while the cursor moves. */
 export const OverlayPlot = memo(function OverlayPlot(props: OverlayPlotProps) {
@@ -87,30 +76,6 @@ export const OverlayPlot = memo(function OverlayPlot(props: OverlayPlotProps) {
   );
 });
 
-interface CurveLineProps {
-  indices: readonly number[];
-  rpm: readonly number[];
-  values: Series;
-  x: LinearScale;
-  y: LinearScale;
-  className: string;
-}
-
-/** One curve; a gap in the values is a gap in the line. */
-export function CurveLine({ indices, rpm, values, x, y, className }: CurveLineProps) {
-  return (
-    <LinePath<number>
-      data={[...indices]}
-      x={(i) => x(rpm[i] ?? 0)}
-      y={(i) => y(values[i] ?? 0)}
-      defined={(i) => values[i] !== null && values[i] !== undefined}
-      fill="none"
-      strokeLinejoin="round"
-      className={className}
-    />
-  );
-}
-
 /** Round for A, square for B, at different engine speeds, so that the curves are told apart in grey and in glare. */
 function Markers({ data, quantity, layout }: OverlayPlotProps) {
   const { x, curves, first, last, right } = layout;
@@ -121,15 +86,20 @@ function Markers({ data, quantity, layout }: OverlayPlotProps) {
     { side: "a" as const, index: at(tick), values: quantity.a },
     { side: "b" as const, index: at(tick + step / 2), values: quantity.b },
   ]);
+  const seen = new Set<string>();
   return spots.map(({ side, index, values }) => {
+    // Ticks finer than the grid would put several markers on one point.
+    const key = `${side}${index}`;
+    if (seen.has(key)) return null;
+    seen.add(key);
     const value = values[index];
     const rpm = data.rpm[index];
     if (value === null || value === undefined || rpm === undefined) return null;
     const [cx, cy] = [x(rpm), curves(value)];
     return side === "a" ? (
-      <circle key={`a${index}`} cx={cx} cy={cy} r="3.5" className="marker-a" />
+      <circle key={key} cx={cx} cy={cy} r="3.5" className="marker-a" />
     ) : (
-      <rect key={`b${index}`} x={cx - 3.2} y={cy - 3.2} width="6.4" height="6.4" className="marker-b" />
+      <rect key={key} x={cx - 3.2} y={cy - 3.2} width="6.4" height="6.4" className="marker-b" />
     );
   });
 }
@@ -162,26 +132,4 @@ function lastValue(values: Series, last: number): number | null {
     if (value !== null && value !== undefined) return value;
   }
   return null;
-}
-
-/** Closed band between two series; gaps stay open. */
-export function BandArea({
-  indices,
-  rpm,
-  low,
-  high,
-  x,
-  y,
-}: Omit<CurveLineProps, "values" | "className"> & { low: Series; high: Series }) {
-  return (
-    <Area<number>
-      data={[...indices]}
-      x={(i) => x(rpm[i] ?? 0)}
-      y0={(i) => y(low[i] ?? 0)}
-      y1={(i) => y(high[i] ?? 0)}
-      defined={(i) => typeof low[i] === "number" && typeof high[i] === "number"}
-      fillOpacity="0.13"
-      className="fill-delta"
-    />
-  );
 }

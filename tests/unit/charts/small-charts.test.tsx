@@ -1,0 +1,158 @@
+import { cleanup, fireEvent, render, screen } from "@testing-library/react";
+import { renderToStaticMarkup } from "react-dom/server";
+import { afterEach, describe, expect, it } from "vitest";
+import { CurveChart, describeCurves } from "@/components/charts/curve-chart";
+import { DeltaStrip } from "@/components/charts/delta-strip";
+import { HeatTable, heatStep } from "@/components/charts/heat-table";
+import { describeTraces, TraceChart } from "@/components/charts/trace-chart";
+
+afterEach(cleanup);
+
+const TIME = Array.from({ length: 101 }, (_, i) => i / 10);
+const TRACES = [
+  { id: "speed", label: "Speed", unit: "km/h", decimals: 1, values: TIME.map((t) => 40 + 5 * t) },
+  {
+    id: "pressure",
+    label: "Manifold pressure",
+    unit: "kPa",
+    decimals: 0,
+    values: TIME.map((t) => (t > 4 && t < 5 ? null : 100)),
+  },
+];
+const SEGMENTS = [{ kind: "pull" as const, fromS: 2, toS: 7.5 }];
+const MASKS = [{ fromS: 3, toS: 3.4, why: "wheel spin" }];
+
+function trace() {
+  return <TraceChart title="Run 12" timeS={TIME} traces={TRACES} segments={SEGMENTS} masks={MASKS} />;
+}
+
+describe("TraceChart", () => {
+  it("says what was found and what was left out, with times", () => {
+    expect(describeTraces({ timeS: TIME, traces: TRACES, segments: SEGMENTS, masks: MASKS })).toBe(
+      "10.0 s recorded. Found: pull from 2.00 to 7.50 s. Left out: from 3.00 to 3.40 s (wheel spin).",
+    );
+    expect(describeTraces({ timeS: TIME, traces: TRACES })).toContain(
+      "No pull, coast-down or sprint was found.",
+    );
+  });
+
+  it("hatches what was left out through all panels and breaks the line at a gap", () => {
+    const box = document.createElement("div");
+    box.innerHTML = renderToStaticMarkup(trace());
+    expect(box.querySelectorAll('rect[fill$="masked)"]')).toHaveLength(1);
+    const paths = [...box.querySelectorAll("path.series-one")].map((path) => path.getAttribute("d") ?? "");
+    expect(paths.map((path) => path.match(/M/g)?.length)).toEqual([1, 2]);
+    expect(box.innerHTML).not.toMatch(/\sstyle=/);
+  });
+
+  it("moves one cursor through all panels and docks the values", () => {
+    const { container } = render(trace());
+    fireEvent.keyDown(screen.getByRole("slider"), { key: "End" });
+    fireEvent.keyDown(screen.getByRole("slider"), { key: "End" });
+    expect(container.querySelector("dl")?.textContent?.replaceAll("\u202f", " ")).toBe(
+      "Time10.00 sSpeed90.0 km/hManifold pressure100 kPa",
+    );
+    expect(container.querySelectorAll("rect.marker-b")).toHaveLength(2);
+  });
+
+  it("prints every second row of a hundred and one samples and says so", () => {
+    render(trace());
+    expect(screen.getByText(/one row for every 2 points/)).toBeDefined();
+    expect(screen.getAllByRole("rowheader")).toHaveLength(51);
+  });
+});
+
+describe("CurveChart", () => {
+  const rpm = [2000, 3000, 4000];
+  const power = {
+    id: "power",
+    label: "Engine power",
+    unit: "kW",
+    decimals: 1,
+    values: [50, 90.25, 80],
+    low: [48, 88.25, 78],
+    high: [52, 92.25, 82],
+  };
+
+  it("names the highest value with its half-width and its place", () => {
+    expect(describeCurves(rpm, [power]).replaceAll("\u202f", " ")).toBe(
+      "Engine power: highest 90.3 ± 2.0 kW at 3 000 per minute.",
+    );
+    expect(describeCurves(rpm, [{ ...power, values: [null, null, null] }])).toBe("Engine power: no values.");
+  });
+
+  it("gives each quantity a panel of its own that starts at zero", () => {
+    const torque = { ...power, id: "torque", label: "Engine torque", unit: "N·m", values: [240, 290, 190] };
+    const box = document.createElement("div");
+    box.innerHTML = renderToStaticMarkup(
+      <CurveChart title="Run 12" rpm={rpm} quantities={[power, torque]} />,
+    );
+    const titles = [...box.querySelectorAll("text.chart-title")].map((text) => text.textContent);
+    expect(titles).toEqual(["Engine power, kW", "Engine torque, N·m", "engine speed, 1/min"]);
+    const zeros = [...box.querySelectorAll("text.chart-tick")].filter((text) => text.textContent === "0");
+    expect(zeros).toHaveLength(2);
+  });
+});
+
+describe("DeltaStrip", () => {
+  it("says the verdict, losses first", () => {
+    const markup = renderToStaticMarkup(
+      <DeltaStrip
+        rpm={[2000, 3000, 4000]}
+        deltaPct={[3, 0, -3]}
+        lowPct={[2, -1, -4]}
+        highPct={[4, 1, -2]}
+        regions={[
+          { fromRpm: 2000, toRpm: 2500, verdict: "gain" },
+          { fromRpm: 3600, toRpm: 4000, verdict: "loss" },
+        ]}
+      />,
+    ).replaceAll("\u202f", " ");
+    expect(markup).toContain('aria-label="A higher 3 600 to 4 000; B higher 2 000 to 2 500 per minute"');
+    expect(markup).not.toMatch(/\sstyle=/);
+  });
+});
+
+describe("HeatTable", () => {
+  it("steps by thirds of the largest difference, plain for none", () => {
+    expect([-9, -6.1, -6, -3, -0.1, 0, null, 0.1, 3.1, 9].map((value) => heatStep(value, 9))).toEqual([
+      "heat-a3",
+      "heat-a3",
+      "heat-a2",
+      "heat-a1",
+      "heat-a1",
+      "heat-0",
+      "heat-0",
+      "heat-b1",
+      "heat-b2",
+      "heat-b3",
+    ]);
+  });
+
+  it("prints the signed number in every cell and the axis points as heads", () => {
+    render(
+      <HeatTable
+        caption="Target pressure"
+        unit="kPa"
+        decimals={1}
+        x={{ label: "Engine speed", unit: "1/min", decimals: 0, points: [1000, 2000] }}
+        y={{ label: "Pedal", unit: "%", decimals: 0, points: [50, 100] }}
+        cells={[
+          [0, 1.5],
+          [-2, null],
+        ]}
+        unvisited={[
+          [false, true],
+          [false, false],
+        ]}
+      />,
+    );
+    expect(screen.getAllByRole("cell").map((cell) => cell.textContent)).toEqual([
+      "·",
+      "+1.5 not visited",
+      "\u22122.0",
+      "–",
+    ]);
+    expect(screen.getAllByRole("rowheader").map((head) => head.textContent)).toEqual(["50", "100"]);
+  });
+});
