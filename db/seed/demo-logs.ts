@@ -1,4 +1,5 @@
 import { HATCH, RECORDER } from "@/db/seed/demo-car";
+import { proposeOrder } from "@/lib/compare/order-card";
 import type { LogTable } from "@/lib/logs/types";
 import { randomStream } from "@/lib/signal/random";
 import { driveRun } from "@/lib/simulate/drive-run";
@@ -51,7 +52,7 @@ function toCsv({ timeS, channels }: LogTable): Buffer {
 }
 
 /**
- * One simulated road day: twins out and back on one image before the image changes, A-B-B-A.
+ * One simulated road day in the order that the order card proposes.
  * The strip is level but for a gentle swell; wind, gusts, drift and run-to-run scatter are in it. Same seed, same files.
  */
 export function driveRoadDay(args: {
@@ -62,15 +63,9 @@ export function driveRoadDay(args: {
   seed: number;
 }): DemoRun[] {
   const random = randomStream(args.seed, 7);
-  const sides = Array.from({ length: args.twinsPerSide * 2 }, (_, twin) =>
-    "ABBA"[twin % 4] === "A" ? "A" : "B",
-  );
-  const order = sides.flatMap((side) => [
-    { side, leg: "out" as const },
-    { side, leg: "back" as const },
-  ]);
+  const { places } = proposeOrder({ twinsPerSide: args.twinsPerSide });
   const heightM = (s: number) => 0.35 * Math.sin((2 * Math.PI * s) / 1500 + 0.7);
-  return order.map(({ side, leg }, index) => {
+  return places.map(({ side, leg, place }, index) => {
     const tempC = args.tempC + 0.1 * index;
     const conditions = {
       direction: leg === "out" ? (1 as const) : (-1 as const),
@@ -91,9 +86,9 @@ export function driveRoadDay(args: {
     };
     const table = recordRun(driveRun(HATCH, conditions, random), conditions, RECORDER, random);
     return {
-      side: side === "A" ? "A" : "B",
+      side,
       leg,
-      order: index + 1,
+      order: place,
       tempC: Math.round(tempC * 10) / 10,
       pressureHpa: 1008,
       humidityPct: 52,

@@ -1,6 +1,6 @@
 import { HATCH_SHEET } from "@/db/seed/demo-car";
+import { EFFECTS } from "@/db/seed/demo-effects";
 import { PATCHES } from "@/db/seed/demo-image";
-import { hill } from "@/db/seed/demo-logs";
 import { addDemoRevision, type DemoRevision, driveDemoDay, type People } from "@/db/seed/demo-steps";
 import { DEMO_PASSPHRASE } from "@/lib/demo";
 import type { Ctx } from "@/lib/services/ctx";
@@ -14,15 +14,6 @@ import { adoptRevisionAsFound } from "@/lib/services/revisions/adopt";
 import { askForDecision } from "@/lib/services/revisions/ask-for-decision";
 
 const passphrase = DEMO_PASSPHRASE;
-
-/** How the images of the story change the torque of the invented car. */
-export const EFFECTS = {
-  asFound: () => 0,
-  midRange: hill(0.055, 2300, 4700),
-  topEnd: hill(-0.045, 5400, 7000),
-  ignition: (rpm: number) => 0.012 + hill(0.038, 2300, 4600)(rpm),
-  visitor: (rpm: number) => 0.03 + hill(0.04, 2300, 4600)(rpm),
-};
 
 /** What a lead sees on the decision page, as the form sends it back. */
 async function seenBy(lead: Ctx, revision: DemoRevision) {
@@ -77,7 +68,7 @@ export async function tellStory(people: People): Promise<void> {
     reason: "More air between 2,300 and 4,700 per minute.",
     patches: PATCHES.midRange,
   });
-  const first = { programmeId, a: { ...asFound, effect: EFFECTS.asFound }, twinsPerSide: 3 };
+  const first = { programmeId, a: { ...asFound, effect: EFFECTS.asFound }, twinsPerSide: 4 };
   await driveDemoDay(people, {
     ...first,
     day: "2026-09-12",
@@ -94,7 +85,7 @@ export async function tellStory(people: People): Promise<void> {
     reason: "The gain is outside the band over the whole range that was asked for.",
     waivers: promoted.open.map((gate) => ({
       gateId: gate.id,
-      reason: "Six runs a side leave this open; no loss is seen anywhere in the mean.",
+      reason: "Eight runs a side leave this open; no loss is seen anywhere in the mean.",
     })),
     passphrase,
   });
