@@ -78,3 +78,27 @@ export function proposeOrder({ twinsPerSide }: { twinsPerSide: number }): OrderC
     driftLeakRuns: meanPlace("B") - meanPlace("A"),
   };
 }
+
+/**
+ * The places to fill next: those of the card that no run has, in order, then further twins on the side that comes last on
+ * the card, out and back.
+ * @param taken places that have a run already
+ * @param count how many are wanted
+ */
+export function freePlaces(
+  card: OrderCard | null,
+  taken: readonly number[],
+  count: number,
+): Pick<OrderPlace, "place" | "side" | "leg">[] {
+  const isTaken = new Set(taken);
+  const free: Pick<OrderPlace, "place" | "side" | "leg">[] = (card?.places ?? []).filter(
+    ({ place }) => !isTaken.has(place),
+  );
+  const lastSide = card?.places.at(-1)?.side ?? "A";
+  let place = Math.max(0, card?.places.length ?? 0, ...taken);
+  while (free.length < count) {
+    place += 1;
+    free.push({ place, side: lastSide, leg: place % 2 === 1 ? "out" : "back" });
+  }
+  return free.slice(0, count);
+}

@@ -120,7 +120,12 @@ export interface RunResult {
   speed_source?: string | null;
   sample_rate_hz?: number | null;
   segments?: { pull?: Span; coast?: Span; sprint?: Span };
-  loss?: { f0_n: number; f1_n_per_mps: number; f2_n_per_mps2: number; source: "run" | "twin" | "road day" } | null;
+  loss?: {
+    f0_n: number;
+    f1_n_per_mps: number;
+    f2_n_per_mps2: number;
+    source: "run" | "twin" | "road day";
+  } | null;
   factor?: FactorResult;
   curve?: PowerCurve | null;
   peak?: Peak | null;
@@ -161,9 +166,17 @@ export interface DeltaResult {
   drift_pct_per_run: number | null;
   twins: { side: string; out: string; back: string; closure_pct: number | null }[];
   /** Difference of the two sides' peaks (B − A) with the half-width of its own interval. */
-  peak_difference?: { engine_kw: number; half_width_kw: number | null; engine_nm: number; half_width_nm: number | null } | null;
+  peak_difference?: {
+    engine_kw: number;
+    half_width_kw: number | null;
+    engine_nm: number;
+    half_width_nm: number | null;
+  } | null;
   /** Differences of times (B − A) with their own interval, per name as in `times_s`. */
-  times_difference?: Record<string, { a_s: number; b_s: number; difference_s: number; half_width_s: number | null; n_a: number; n_b: number }>;
+  times_difference?: Record<
+    string,
+    { a_s: number; b_s: number; difference_s: number; half_width_s: number | null; n_a: number; n_b: number }
+  >;
   warnings?: Reason[];
 }
 

@@ -8,6 +8,9 @@ import {
 } from "@/lib/signal/banded-cholesky";
 import { addDifferencePenalty } from "@/lib/signal/whittaker";
 
+/** Order of the difference penalty: third differences, so that a parabola costs nothing. */
+const ORDER = 3;
+
 /** Cubic B-splines on equally spaced knots: `count` coefficients, the first full interval starts at `start`. */
 export interface SplineBasis {
   start: number;
@@ -27,26 +30,6 @@ export function splineBasis(from: number, to: number, spacing: number): SplineBa
   return { start: from, spacing: (to - from) / intervals, count: intervals + 3 };
 }
 
-/** Observations of one channel: values at times, each with a weight (1/variance). NaN values are left out. */
-export interface SplineObservations {
-  times: Float64Array;
-  values: Float64Array;
-  weights: Float64Array;
-}
-
-export interface SplineFit {
-  basis: SplineBasis;
-  coefficients: Float64Array;
-  /** Cholesky factor of the penalised normal matrix. */
-  factor: BandMatrix;
-  /** Weighted residual sum of squares. */
-  weightedResidual: number;
-  /** Sum of the penalty at the solution. */
-  penalty: number;
-  logDeterminant: number;
-  used: number;
-}
-
 /**
  * The four B-spline weights of `derivative` 0, 1 or 2 at `t`, written to `out`; returns the index of the first coefficient.
  * Outside the span the end polynomial continues.
@@ -62,89 +45,117 @@ export function splineWeights(basis: SplineBasis, t: number, derivative: number,
     out[2] = (3 * v * v * v - 6 * v * v + 4) / 6;
     out[3] = (u * u * u) / 6;
   } else if (derivative === 1) {
-    const h = basis.spacing;
-    out[0] = (-v * v) / 2 / h;
-    out[1] = (3 * u * u - 4 * u) / 2 / h;
-    out[2] = -(3 * v * v - 4 * v) / 2 / h;
-    out[3] = (u * u) / 2 / h;
+    const h2 = 2 * basis.spacing;
+    out[0] = (-v * v) / h2;
+    out[1] = (3 * u * u - 4 * u) / h2;
+    out[2] = (4 * v - 3 * v * v) / h2;
+    out[3] = (u * u) / h2;
   } else {
-    const h2 = basis.spacing * basis.spacing;
-    out[0] = v / h2;
-    out[1] = (3 * u - 2) / h2;
-    out[2] = (3 * v - 2) / h2;
-    out[3] = u / h2;
+    const hh = basis.spacing * basis.spacing;
+    out[0] = v / hh;
+    out[1] = (3 * u - 2) / hh;
+    out[2] = (3 * v - 2) / hh;
+    out[3] = u / hh;
   }
   return first;
 }
 
+/** Normal equations of weighted observations on a basis; gather once, solve under many penalties. */
+export interface SplineSystem {
+  basis: SplineBasis;
+  normal: BandMatrix;
+  right: Float64Array;
+  sumOfSquares: number;
+  used: number;
+}
+
+/** An empty system on a basis. */
+export function splineSystem(basis: SplineBasis): SplineSystem {
+  return {
+    basis,
+    normal: bandMatrix(basis.count, ORDER),
+    right: new Float64Array(basis.count),
+    sumOfSquares: 0,
+    used: 0,
+  };
+}
+
+/** Adds one observation with weight 1/variance to the system; NaN or no weight adds nothing. */
+export function observe(
+  system: SplineSystem,
+  t: number,
+  value: number,
+  weight: number,
+  scratch: Float64Array,
+): void {
+  if (!(weight > 0) || Number.isNaN(value)) return;
+  const first = splineWeights(system.basis, t, 0, scratch);
+  const { band } = system.normal;
+  system.used++;
+  system.sumOfSquares += weight * value * value;
+  for (let a = 0; a < 4; a++) {
+    const wa = weight * scratch[a];
+    system.right[first + a] += wa * value;
+    for (let b = 0; b <= a; b++) band[(first + a) * 4 + (a - b)] += wa * scratch[b];
+  }
+}
+
+export interface SplineFit {
+  basis: SplineBasis;
+  coefficients: Float64Array;
+  /** Cholesky factor of the penalised normal matrix: its inverse is the covariance of the coefficients. */
+  factor: BandMatrix;
+  /** Weighted residual sum of squares plus penalty. */
+  objective: number;
+  logDeterminant: number;
+}
+
 /**
- * Penalised spline: minimises Σ w·(y − f)² + λ·Σ s_k·(Δ³c_k)², λ given per second^5 so that it does not depend on the knot
- * spacing. `scale(t)` = s at a knot time (default 1). O(observations + knots). Source: Eilers and Marx 1996.
+ * Penalised spline: minimises Σ w·(y − f)² + λ·∫ s(t)·f‴(t)² dt, so λ does not depend on the knot spacing.
+ * `scale` = s at a time (default 1). O(knots). Source: Eilers and Marx 1996, Statistical Science 11.
  */
-export function fitPenalisedSpline(
-  basis: SplineBasis,
-  observations: readonly SplineObservations[],
-  lambda: number,
-  scale?: (t: number) => number,
-): SplineFit {
-  const order = 3;
-  const normal = bandMatrix(basis.count, order);
-  const right = new Float64Array(basis.count);
-  const w = new Float64Array(4);
-  let sumOfSquares = 0;
-  let used = 0;
-  for (const { times, values, weights } of observations) {
-    for (let i = 0; i < times.length; i++) {
-      const weight = weights[i];
-      const value = values[i];
-      if (!(weight > 0) || Number.isNaN(value)) continue;
-      const first = splineWeights(basis, times[i], 0, w);
-      used++;
-      sumOfSquares += weight * value * value;
-      for (let a = 0; a < 4; a++) {
-        right[first + a] += weight * w[a] * value;
-        for (let b = 0; b <= a; b++) normal.band[(first + a) * 4 + (a - b)] += weight * w[a] * w[b];
-      }
-    }
-  }
-  // Δ³c / spacing³ is the third derivative, and a sum over knots times spacing is an integral over time.
-  const perKnot = lambda / basis.spacing ** 5;
-  addDifferencePenalty(normal, order, perKnot, scale && ((row) => scale(basis.start + row * basis.spacing)));
+export function solveSpline(system: SplineSystem, lambda: number, scale?: (t: number) => number): SplineFit {
+  const { basis } = system;
+  const normal = { ...system.normal, band: system.normal.band.slice() };
+  // Δ³c / spacing³ is the third derivative; a sum over knots times the spacing is the integral.
+  const penalty = scale && ((row: number) => scale(basis.start + (row + 0.5) * basis.spacing));
+  addDifferencePenalty(normal, ORDER, lambda / basis.spacing ** 5, penalty);
   const factor = bandedCholesky(normal);
-  const coefficients = bandedSolve(factor, right);
+  const coefficients = bandedSolve(factor, system.right);
   let explained = 0;
-  for (let i = 0; i < basis.count; i++) explained += coefficients[i] * right[i];
-  let penalty = 0;
-  for (let k = 0; k + 3 < basis.count; k++) {
-    const d = coefficients[k + 3] - 3 * coefficients[k + 2] + 3 * coefficients[k + 1] - coefficients[k];
-    penalty += perKnot * (scale ? scale(basis.start + k * basis.spacing) : 1) * d * d;
-  }
+  for (let i = 0; i < basis.count; i++) explained += coefficients[i] * system.right[i];
   return {
     basis,
     coefficients,
     factor,
-    weightedResidual: Math.max(0, sumOfSquares - explained - penalty),
-    penalty,
+    objective: Math.max(0, system.sumOfSquares - explained),
     logDeterminant: bandedLogDeterminant(factor),
-    used,
   };
+}
+
+/** The spline (or its derivative) at one time. */
+export function splineAt(
+  basis: SplineBasis,
+  coefficients: Float64Array,
+  t: number,
+  derivative: number,
+  scratch: Float64Array,
+): number {
+  const first = splineWeights(basis, t, derivative, scratch);
+  return (
+    scratch[0] * coefficients[first] +
+    scratch[1] * coefficients[first + 1] +
+    scratch[2] * coefficients[first + 2] +
+    scratch[3] * coefficients[first + 3]
+  );
 }
 
 /** The spline (or its derivative) at each time. */
 export function evaluateSpline(
-  basis: SplineBasis,
-  coefficients: Float64Array,
+  fit: Pick<SplineFit, "basis" | "coefficients">,
   times: Float64Array,
   derivative = 0,
 ): Float64Array {
-  const w = new Float64Array(4);
-  return times.map((t) => {
-    const first = splineWeights(basis, t, derivative, w);
-    return (
-      w[0] * coefficients[first] +
-      w[1] * coefficients[first + 1] +
-      w[2] * coefficients[first + 2] +
-      w[3] * coefficients[first + 3]
-    );
-  });
+  const scratch = new Float64Array(4);
+  return times.map((t) => splineAt(fit.basis, fit.coefficients, t, derivative, scratch));
 }

@@ -1,0 +1,218 @@
+import { deltaBand } from "@/lib/compare/delta-band";
+import { type ComparedRun, runDesign } from "@/lib/compare/run-design";
+import { findTwins } from "@/lib/compare/twins";
+import { groupOf, welch } from "@/lib/compare/two-means";
+import { verdictRegions } from "@/lib/compare/verdict-regions";
+import type { DeltaResult, Reason } from "@/lib/measure/types";
+import { tQuantile } from "@/lib/signal/distributions";
+import { leastSquares } from "@/lib/signal/least-squares";
+
+/** A usable pull with what is compared: torque on the shared basis, its peaks, its times. */
+export interface ComparedPull extends ComparedRun {
+  /** N·m on the common grid, null = gap. */
+  engineNm: readonly (number | null)[];
+  peakKw: number | null;
+  peakNm: number | null;
+  timesS: Readonly<Record<string, number>>;
+}
+
+export interface CompareSettings {
+  a: string;
+  b: string;
+  basis: "reference" | "day";
+  level: number;
+  seed: number;
+  resamples: number;
+}
+
+/** Fewer runs a side carry no band. */
+const LEAST_RUNS = 3;
+
+/**
+ * Compares side B with side A: at every engine speed a linear model of log torque with side, leg, order and road day, and a
+ * band that holds the whole curve at once (measurement.md 6.3). Null when a side has no run.
+ */
+export function compareSides(
+  rpm: readonly number[],
+  pulls: readonly ComparedPull[],
+  settings: CompareSettings,
+): DeltaResult | null {
+  const runs = pulls.filter((pull) => pull.side === settings.a || pull.side === settings.b);
+  const countOf = (side: string) => runs.filter((run) => run.side === side).length;
+  if (countOf(settings.a) === 0 || countOf(settings.b) === 0) return null;
+  const logs = runs.map((run) =>
+    Float64Array.from(run.engineNm, (nm) => (nm !== null && nm > 0 ? Math.log(nm) : Number.NaN)),
+  );
+  const present = (side: string, k: number) =>
+    runs.reduce((n, run, r) => n + (run.side === side && !Number.isNaN(logs[r][k]) ? 1 : 0), 0);
+  const counts = rpm.map((_, k) => [present(settings.a, k), present(settings.b, k)] as const);
+  const design = runDesign(runs, settings.b);
+  const smallest = Math.min(countOf(settings.a), countOf(settings.b));
+  const warnings: Reason[] = [...design.warnings];
+  const twins = findTwins(runs, (r) => logs[r]);
+  const usable =
+    "matrix" in design && smallest >= LEAST_RUNS && runs.length - design.columns >= 2 ? design : null;
+  const kept = rpm.flatMap((_, k) => {
+    const [a, b] = counts[k];
+    return a >= (usable ? LEAST_RUNS : 1) &&
+      b >= (usable ? LEAST_RUNS : 1) &&
+      (!usable || a + b - usable.columns >= 2)
+      ? [k]
+      : [];
+  });
+  const grid = kept.map((k) => rpm[k]);
+  const empty = grid.map(() => null);
+  const meanA = kept.map((k) => meanLog(runs, logs, settings.a, k));
+  const common = {
+    quantity: "engine_nm" as const,
+    basis: settings.basis,
+    rpm: grid,
+    level: settings.level,
+    twins,
+    peak_difference: peakDifference(runs, usable, settings),
+    times_difference: timesDifference(runs, settings),
+    warnings,
+  };
+  if (!usable) {
+    const pct = kept.map((k, i) => 100 * Math.expm1(meanLog(runs, logs, settings.b, k) - meanA[i]));
+    return {
+      ...common,
+      pct,
+      low_pct: empty,
+      high_pct: empty,
+      abs_nm: pct.map((p, i) => (p / 100) * Math.exp(meanA[i])),
+      simultaneous: false,
+      method: noBandReason(smallest, "matrix" in design),
+      regions: [],
+      resolvable_pct: empty,
+      drift_pct_per_run: null,
+    };
+  }
+  const values = Float64Array.from(logs.flatMap((log) => kept.map((k) => log[k])));
+  const band = deltaBand(values, kept.length, usable.matrix, usable.columns, usable.side, usable.order, {
+    level: settings.level,
+    seed: settings.seed,
+    resamples: settings.resamples,
+    small: smallest === LEAST_RUNS,
+  });
+  const pct = (x: number) => 100 * Math.expm1(x);
+  const effect = Array.from(band.effect);
+  const half = Array.from(band.standardError, (se) => band.critical * se);
+  const low = effect.map((x, k) => pct(x - half[k]));
+  const high = effect.map((x, k) => pct(x + half[k]));
+  const reach = band.critical + tQuantile(0.8, band.df);
+  const drift = band.orderEffect.reduce((sum, x) => sum + x, 0) / Math.max(1, kept.length);
+  return {
+    ...common,
+    pct: effect.map(pct),
+    low_pct: low,
+    high_pct: high,
+    abs_nm: effect.map((x, i) => Math.expm1(x) * Math.exp(meanA[i])),
+    simultaneous: true,
+    method: `Linear model of log torque with ${usable.names.slice(1).join(", ")}; ${band.method}, critical value ${band.critical.toFixed(3)}, ${band.df} degrees of freedom${band.method === "permutation max-t" ? `, ${settings.resamples} resamples, seed ${settings.seed}` : ", a side has only three runs"}.`,
+    regions: verdictRegions(grid, low, high),
+    resolvable_pct: Array.from(band.standardError, (se) => pct(reach * se)),
+    drift_pct_per_run: usable.order === null || kept.length === 0 ? null : pct(drift),
+  };
+}
+
+function noBandReason(smallest: number, separable: boolean): string {
+  if (smallest < LEAST_RUNS) {
+    return `Difference of the sides' means only: a band needs at least ${LEAST_RUNS} usable runs a side, here a side has ${smallest}.`;
+  }
+  return separable
+    ? "Difference of the sides' means only: too few runs are left over after side, leg and order to tell their scatter."
+    : "Difference of the sides' means only: the side can't be told apart from leg, order or road day.";
+}
+
+function meanLog(
+  runs: readonly ComparedPull[],
+  logs: readonly Float64Array[],
+  side: string,
+  k: number,
+): number {
+  let sum = 0;
+  let n = 0;
+  runs.forEach((run, r) => {
+    if (run.side !== side || Number.isNaN(logs[r][k])) return;
+    sum += logs[r][k];
+    n++;
+  });
+  return sum / n;
+}
+
+type Design = { matrix: Float64Array; columns: number; side: number };
+
+/** Difference of the runs' peaks by the same model; its interval stands alone, it is not part of the band. */
+function peakDifference(
+  runs: readonly ComparedPull[],
+  design: Design | null,
+  settings: CompareSettings,
+): DeltaResult["peak_difference"] {
+  const kw = sideEffect(
+    runs,
+    runs.map((run) => run.peakKw),
+    design,
+    settings,
+  );
+  const nm = sideEffect(
+    runs,
+    runs.map((run) => run.peakNm),
+    design,
+    settings,
+  );
+  if (!kw || !nm) return null;
+  return { engine_kw: kw.effect, half_width_kw: kw.half, engine_nm: nm.effect, half_width_nm: nm.half };
+}
+
+function sideEffect(
+  runs: readonly ComparedPull[],
+  values: readonly (number | null)[],
+  design: Design | null,
+  settings: CompareSettings,
+): { effect: number; half: number | null } | null {
+  const rows = values.flatMap((value, r) => (value === null ? [] : [r]));
+  const of = (side: string) => rows.filter((r) => runs[r].side === side).map((r) => values[r] ?? 0);
+  const average = (list: number[]) => list.reduce((sum, x) => sum + x, 0) / list.length;
+  const [a, b] = [of(settings.a), of(settings.b)];
+  if (a.length === 0 || b.length === 0) return null;
+  if (!design || Math.min(a.length, b.length) < LEAST_RUNS || rows.length - design.columns < 2) {
+    return { effect: average(b) - average(a), half: null };
+  }
+  const x = Float64Array.from(
+    rows.flatMap((r) => [...design.matrix.subarray(r * design.columns, (r + 1) * design.columns)]),
+  );
+  const fit = leastSquares(
+    x,
+    Float64Array.from(rows, (r) => values[r] ?? 0),
+    design.columns,
+  );
+  return {
+    effect: fit.coefficients[design.side],
+    half: tQuantile(0.5 + settings.level / 2, fit.df) * fit.standardErrors[design.side],
+  };
+}
+
+function timesDifference(
+  runs: readonly ComparedPull[],
+  settings: CompareSettings,
+): DeltaResult["times_difference"] {
+  const out: NonNullable<DeltaResult["times_difference"]> = {};
+  for (const name of [...new Set(runs.flatMap((run) => Object.keys(run.timesS)))]) {
+    const of = (side: string) =>
+      runs.flatMap((run) => (run.side === side && run.timesS[name] !== undefined ? [run.timesS[name]] : []));
+    const a = groupOf(of(settings.a));
+    const b = groupOf(of(settings.b));
+    if (a.n === 0 || b.n === 0) continue;
+    const test = welch(a, b, settings.level);
+    out[name] = {
+      a_s: a.mean,
+      b_s: b.mean,
+      difference_s: b.mean - a.mean,
+      half_width_s: test && (test.high - test.low) / 2,
+      n_a: a.n,
+      n_b: b.n,
+    };
+  }
+  return out;
+}

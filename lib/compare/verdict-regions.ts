@@ -1,0 +1,26 @@
+import type { DeltaRegion } from "@/lib/measure/types";
+
+/** A region of fewer than this many 1/min is no region: an engine does not gain in a slot of two grid points. */
+export const LEAST_REGION_RPM = 100;
+
+/**
+ * Engine-speed regions in which the whole band lies above zero (gain) or below (loss). `rpm` rises; NaN low or high ends a
+ * region. Regions narrower than `LEAST_REGION_RPM` are left out.
+ */
+export function verdictRegions(
+  rpm: readonly number[],
+  low: ArrayLike<number>,
+  high: ArrayLike<number>,
+): DeltaRegion[] {
+  const regions: DeltaRegion[] = [];
+  let current: DeltaRegion | null = null;
+  rpm.forEach((x, k) => {
+    const verdict = low[k] > 0 ? "gain" : high[k] < 0 ? "loss" : null;
+    if (current && verdict === current.verdict) current.to_rpm = x;
+    else {
+      current = verdict && { from_rpm: x, to_rpm: x, verdict };
+      if (current) regions.push(current);
+    }
+  });
+  return regions.filter((region) => region.to_rpm - region.from_rpm >= LEAST_REGION_RPM);
+}

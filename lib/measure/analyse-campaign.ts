@@ -1,0 +1,208 @@
+import { type ComparedPull, compareSides } from "@/lib/compare/compare-sides";
+import type { FileRefusedError } from "@/lib/errors";
+import type { LogTable } from "@/lib/logs/types";
+import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
+import { type CampaignEstimate, estimateCampaign, type ReadyRun } from "@/lib/measure/estimate-campaign";
+import { peakOfCurve } from "@/lib/measure/peak-of-curve";
+import { type PreparedRun, prepareRun } from "@/lib/measure/prepare-run";
+import { roundResult } from "@/lib/measure/round-result";
+import { type PullResult, pullResult } from "@/lib/measure/run-result";
+import { sideResult } from "@/lib/measure/side-result";
+import { measureSprint } from "@/lib/measure/sprint";
+import type {
+  Campaign,
+  CampaignResult,
+  CampaignRun,
+  CampaignSettings,
+  CampaignVehicle,
+  Reason,
+  RunResult,
+  Series,
+} from "@/lib/measure/types";
+
+/** Resamples of the simultaneous band (measurement.md 6.3 asks for at least 2000). */
+const RESAMPLES = 2000;
+
+interface AnalysedPull {
+  run: CampaignRun;
+  pull: PullResult;
+}
+
+/**
+ * Analyses a campaign: every run's verdict, curve, peak and times; each side's mean; the difference with its band.
+ * `logs` is keyed by run id; a FileRefusedError stands for a log that could not be read. A refused run is a result, not an
+ * error. The same input gives the same output to the last digit.
+ */
+export function analyseCampaign(
+  campaign: Campaign,
+  logs: ReadonlyMap<string, LogTable | FileRefusedError>,
+): CampaignResult {
+  const { vehicle } = campaign;
+  const prepared = campaign.runs.map((run) => prepareRun(run, vehicle, logs.get(run.id)));
+  const gears = [
+    ...new Set(campaign.runs.filter((run) => run.kind === "pull").map((run) => run.gear ?? null)),
+  ];
+  const analysed = new Map<string, PullResult>();
+  for (const gear of gears.length > 0 ? gears : [null]) {
+    const ready = prepared.flatMap((p): ReadyRun[] =>
+      p.signals &&
+      p.segments &&
+      (p.run.kind === "coast-down" || (p.run.gear ?? null) === gear) &&
+      (p.segments.pull || p.segments.coast)
+        ? [
+            {
+              run: p.run,
+              signals: p.signals,
+              segments:
+                p.run.kind === "coast-down" ? { ...p.segments, pull: null, cruise: null } : p.segments,
+            },
+          ]
+        : [],
+    );
+    if (!ready.some((r) => r.segments.pull)) continue;
+    const estimate: CampaignEstimate = estimateCampaign(ready, vehicle, gear);
+    ready.forEach(({ run }, index) => {
+      const own = prepared.find((p) => p.run.id === run.id);
+      const result = run.kind === "pull" ? pullResult(estimate, index, campaign, own?.notes ?? []) : null;
+      if (result) analysed.set(run.id, result);
+    });
+  }
+  const runs = prepared.map((p) => runResult(p, analysed.get(p.run.id), vehicle));
+  const usable = campaign.runs.flatMap((run, k): AnalysedPull[] => {
+    const pull = analysed.get(run.id);
+    return pull && runs[k].usable && run.kind === "pull" ? [{ run, pull }] : [];
+  });
+  return roundResult({ analysis_version: ANALYSIS_VERSION, runs, ...sidesAndDelta(campaign, usable) });
+}
+
+/** Analyses one run alone: its verdict, segments, curve and times, with the losses of its own coast-down. */
+export function analyseRun(
+  vehicle: CampaignVehicle,
+  run: CampaignRun,
+  log: LogTable | FileRefusedError,
+  settings: CampaignSettings,
+): RunResult {
+  return analyseCampaign({ campaign: 1, vehicle, runs: [run], settings }, new Map([[run.id, log]])).runs[0];
+}
+
+function runResult(prepared: PreparedRun, pull: PullResult | undefined, vehicle: CampaignVehicle): RunResult {
+  const { run, table, signals, segments, reasons, notes } = prepared;
+  const base: RunResult = { id: run.id, usable: reasons.length === 0, reasons, notes };
+  if (!signals || !table) return base;
+  base.sample_rate_hz = signals.rateHz;
+  if (run.kind === "sprint") {
+    const sprint = measureSprint(table, vehicle);
+    if (Object.keys(sprint.times_s).length === 0) {
+      reasons.push({
+        code: "no_sprint_found",
+        message:
+          "The log has no acceleration from rest or through a known pair of speeds. Check that the whole run is in the recording.",
+      });
+    }
+    return { ...base, ...sprint, usable: reasons.length === 0, reasons, notes: [...notes, ...sprint.notes] };
+  }
+  base.segments = {
+    ...(segments?.pull && run.kind === "pull" && { pull: segments.pull }),
+    ...(segments?.coast && { coast: segments.coast }),
+  };
+  if (run.kind === "coast-down" || !pull) {
+    if (run.kind === "pull" && reasons.length === 0) {
+      reasons.push({ code: "no_pull_found", message: "No speed channel covers the pull." });
+    }
+    return { ...base, usable: reasons.length === 0, speed_source: signals.speedName };
+  }
+  return { ...base, ...pull.result, notes: [...notes, ...pull.result.notes] };
+}
+
+function sidesAndDelta(
+  campaign: Campaign,
+  usable: readonly AnalysedPull[],
+): Pick<CampaignResult, "sides" | "delta" | "warnings"> {
+  const warnings: Reason[] = [];
+  const gear = commonGear(usable);
+  const pulls = usable.filter(({ run }) => (run.gear ?? null) === gear);
+  if (pulls.length < usable.length) {
+    warnings.push({
+      code: "gears_differ",
+      message: `The pulls were driven in different gears; only those in gear ${gear} are compared.`,
+    });
+  }
+  const everyFactor = pulls.length > 0 && pulls.every(({ pull }) => pull.result.factor?.applied);
+  const someFactor = pulls.some(({ pull }) => pull.result.factor?.applied);
+  const basis = everyFactor ? "reference" : "day";
+  if (someFactor && !everyFactor) {
+    warnings.push({
+      code: "factor_not_for_all",
+      message:
+        "The weather factor can't be had for every run, so all sides are shown uncorrected: bases are never mixed.",
+    });
+  }
+  const step = campaign.settings.rpm_step;
+  const all = pulls.flatMap(({ pull }) => pull.grid.rpm);
+  const low = Math.min(...all);
+  const high = Math.max(...all);
+  const rpm =
+    all.length === 0
+      ? []
+      : Array.from({ length: Math.round((high - low) / step) + 1 }, (_, k) => low + k * step);
+  const torqueOf = ({ pull }: AnalysedPull): Series => {
+    const values = new Map(pull.grid.rpm.map((x, k) => [x, pull.grid.engineNm[k]]));
+    const factor = basis === "reference" ? (pull.result.factor?.value ?? 1) : 1;
+    return rpm.map((x) => {
+      const nm = values.get(x) ?? null;
+      return nm === null ? null : nm * factor;
+    });
+  };
+  const names = [...new Set(pulls.flatMap(({ run }) => (run.side ? [run.side] : [])))].sort();
+  const sides: CampaignResult["sides"] = {};
+  for (const name of names) {
+    const members = pulls.filter(({ run }) => run.side === name);
+    sides[name] = sideResult(
+      rpm,
+      members.map((m) => {
+        const peak = m.pull.result.peak;
+        return {
+          engineNm: torqueOf(m),
+          relativeUncertainty: peak?.uncertainty_kw == null ? null : peak.uncertainty_kw / peak.engine_kw,
+        };
+      }),
+      basis,
+      members.every((m) => m.pull.result.curve),
+    );
+  }
+  const { compare, settings } = campaign;
+  const compared = pulls.map((m): ComparedPull => {
+    const engineNm = torqueOf(m);
+    const peak = peakOfCurve(rpm, engineNm, true, null);
+    return {
+      id: m.run.id,
+      side: m.run.side ?? "",
+      leg: m.run.leg ?? null,
+      order: m.run.order ?? null,
+      roadDay: m.run.road_day ?? null,
+      engineNm,
+      peakKw: peak?.engine_kw ?? null,
+      peakNm: peak?.engine_nm ?? null,
+      timesS: m.pull.result.times_s ?? {},
+    };
+  });
+  const delta = compare
+    ? compareSides(rpm, compared, {
+        a: compare.a,
+        b: compare.b,
+        basis,
+        level: settings.level,
+        seed: settings.seed,
+        resamples: RESAMPLES,
+      })
+    : undefined;
+  return { sides, delta, warnings };
+}
+
+function commonGear(usable: readonly AnalysedPull[]): number | null {
+  const counts = new Map<number | null, number>();
+  for (const { run } of usable) counts.set(run.gear ?? null, (counts.get(run.gear ?? null) ?? 0) + 1);
+  let best: number | null = null;
+  for (const [gear, n] of counts) if (n > (counts.get(best) ?? 0)) best = gear;
+  return best;
+}

@@ -1,0 +1,244 @@
+import type { SampledChannel } from "@/lib/measure/run-signals";
+import { chooseSmoothing, type SpeedStretch, smoothSpeed, speedStretch } from "@/lib/measure/smooth-speed";
+import {
+  between,
+  type ChannelModel,
+  SPEED_SOURCES,
+  type SpeedModel,
+  type SpeedRun,
+  type SpeedSource,
+  slips,
+  tipInS,
+} from "@/lib/measure/speed-model";
+import { addRow, normalEquations, solveNormal } from "@/lib/signal/normal-equations";
+import { type SplineFit, splineAt } from "@/lib/signal/penalised-spline";
+import { median } from "@/lib/signal/statistics";
+
+/** What is believed before any log is read. Slip of a car tyre: 1 to 3 % at full load (from memory), here per newton. */
+const PRIOR = { slipPerN: 2e-6, slipSd: 1.5e-6, lagSd: 0.15, wheelScaleSd: 0.03, engineScaleSd: 0.03 };
+
+interface Equation {
+  source: SpeedSource;
+  value: number;
+  speed: number;
+  acceleration: number;
+  forceN: number;
+}
+
+/** White noise of a channel from its second differences (robust), never below a hundredth of its step. */
+export function channelNoise(channel: SampledChannel, fromS: number, toS: number): number {
+  const [a, b] = between(channel, fromS, toS);
+  const bends: number[] = [];
+  for (let i = a + 1; i < b - 1; i++) {
+    bends.push(Math.abs(channel.values[i - 1] - 2 * channel.values[i] + channel.values[i + 1]));
+  }
+  return bends.length === 0 ? Number.NaN : (1.4826 * median(bends)) / Math.sqrt(6);
+}
+
+/**
+ * Estimates scale, lag and slip of every speed channel over all runs of a campaign, by weighted least squares on a smooth
+ * base speed (undriven wheel, else GPS, else driven wheel, else engine speed) with weak priors and Huber weights.
+ * `forceN(speed, acceleration)` is the drive force; `perMps` the stated engine speed per road speed, 1/min per m/s.
+ * GPS sets the absolute scale where logged (its Doppler speed has no scale error to speak of), else the wheel.
+ */
+export function calibrateSpeed(
+  runs: readonly SpeedRun[],
+  forceN: (speedMps: number, accelerationMps2: number) => number,
+  perMps: number | null,
+  masked: (run: SpeedRun, t: number) => boolean,
+): SpeedModel {
+  const has = (source: SpeedSource) => runs.filter((run) => run.signals[source]).length;
+  const base = SPEED_SOURCES.find((source) => has(source) === runs.length) ?? mostCommon(has);
+  const based = runs.filter((run) => run.signals[base]);
+  const nominal = (source: SpeedSource) => (source === "engineSpeed" ? (perMps ?? 100) : 1);
+  const stretches: { run: SpeedRun; stretch: SpeedStretch; from: number; to: number; pull: boolean }[] = [];
+  const noise = median(based.map((run) => noiseOf(run, base))) / nominal(base) || 0.01;
+  for (const run of based) {
+    const channel = run.signals[base];
+    if (!channel) continue;
+    const series = [
+      { times: channel.times, values: channel.values.map((v) => v / nominal(base)), weight: 1 / noise ** 2 },
+    ];
+    const { pull, coast } = run.segments;
+    if (pull) {
+      const tip = tipInS(run.segments);
+      stretches.push({
+        run,
+        stretch: speedStretch(series, tip, pull.to_s, 0.1, tip),
+        from: tip + 0.6,
+        to: pull.to_s - 0.05,
+        pull: true,
+      });
+    }
+    if (coast) {
+      stretches.push({
+        run,
+        stretch: speedStretch(series, coast.from_s, coast.to_s, 0.5, null),
+        from: coast.from_s + 0.3,
+        to: coast.to_s - 0.3,
+        pull: false,
+      });
+    }
+  }
+  const rate = median(based.map((run) => run.signals[base]?.rateHz ?? 10));
+  const floor = Math.max(0.1, 1.2 / rate);
+  const equations: Equation[] = [];
+  for (const kind of [true, false]) {
+    const some = stretches.filter((s) => s.pull === kind);
+    if (some.length === 0) continue;
+    const smoothing = chooseSmoothing(
+      some.map((s) => s.stretch),
+      kind ? floor : 3 * floor,
+    );
+    for (const { run, stretch, from, to } of some) {
+      gather(equations, run, smoothSpeed(stretch, smoothing), from, to, kind, base, forceN, masked);
+    }
+  }
+  for (const run of based) cruiseEquations(equations, run, base, nominal(base), forceN);
+  return solveModel(equations, base, nominal, noise);
+}
+
+function mostCommon(has: (source: SpeedSource) => number): SpeedSource {
+  return SPEED_SOURCES.reduce((best, source) => (has(source) > has(best) ? source : best));
+}
+
+function noiseOf(run: SpeedRun, source: SpeedSource): number {
+  const channel = run.signals[source];
+  const span = run.segments.pull ?? run.segments.coast;
+  return channel && span ? channelNoise(channel, span.from_s, span.to_s) : Number.NaN;
+}
+
+function gather(
+  equations: Equation[],
+  run: SpeedRun,
+  fit: SplineFit,
+  from: number,
+  to: number,
+  pull: boolean,
+  base: SpeedSource,
+  forceN: (v: number, a: number) => number,
+  masked: (run: SpeedRun, t: number) => boolean,
+): void {
+  const scratch = new Float64Array(4);
+  for (const source of SPEED_SOURCES) {
+    const channel = run.signals[source];
+    if (!channel || source === base || (!pull && source === "engineSpeed")) continue;
+    const [a, b] = between(channel, from, to);
+    for (let i = a; i < b; i++) {
+      const t = channel.times[i];
+      if (pull && slips(source) && masked(run, t)) continue;
+      const speed = splineAt(fit.basis, fit.coefficients, t, 0, scratch);
+      const acceleration = splineAt(fit.basis, fit.coefficients, t, 1, scratch);
+      equations.push({
+        source,
+        value: channel.values[i],
+        speed,
+        acceleration,
+        forceN: pull ? forceN(speed, acceleration) : 0,
+      });
+    }
+  }
+}
+
+/** Steady driving in gear: one equation a channel, weighted by repetition of its mean. */
+function cruiseEquations(
+  equations: Equation[],
+  run: SpeedRun,
+  base: SpeedSource,
+  nominal: number,
+  forceN: (v: number, a: number) => number,
+): void {
+  const { cruise } = run.segments;
+  const reference = run.signals[base];
+  if (!cruise || !reference) return;
+  const [a, b] = between(reference, cruise.from_s, cruise.to_s);
+  if (b - a < 3) return;
+  const speed = reference.values.subarray(a, b).reduce((sum, v) => sum + v, 0) / (b - a) / nominal;
+  for (const source of SPEED_SOURCES) {
+    const channel = run.signals[source];
+    if (!channel || source === base) continue;
+    const [c, d] = between(channel, cruise.from_s, cruise.to_s);
+    for (let i = c; i < d; i++) {
+      equations.push({ source, value: channel.values[i], speed, acceleration: 0, forceN: forceN(speed, 0) });
+    }
+  }
+}
+
+/** Unknowns: per channel scale and scale·lag, and one slip shared by the driven channels (as scale-free product). */
+function solveModel(
+  equations: readonly Equation[],
+  base: SpeedSource,
+  nominal: (source: SpeedSource) => number,
+  noise: number,
+): SpeedModel {
+  const others = SPEED_SOURCES.filter((source) => equations.some((e) => e.source === source));
+  const index = new Map(others.map((source, k) => [source, 1 + 2 * k]));
+  const size = 1 + 2 * others.length;
+  const deviation = new Map<SpeedSource, number>(others.map((source) => [source, 0.05]));
+  let x: Float64Array = new Float64Array(size);
+  let covariance: Float64Array = new Float64Array(size * size);
+  for (let pass = 0; pass < 6; pass++) {
+    const normal = normalEquations(size);
+    // A driven base slips itself: then only differences of slip between channels could be seen, so it is left at zero.
+    const slipSd = slips(base) ? 1e-9 : PRIOR.slipSd;
+    addRow(normal, [0], [1e6], slips(base) ? 0 : PRIOR.slipPerN * 1e6, 1 / (slipSd * 1e6) ** 2);
+    for (const source of others) {
+      const k = index.get(source) ?? 0;
+      const sd = source === "engineSpeed" ? PRIOR.engineScaleSd : PRIOR.wheelScaleSd;
+      addRow(normal, [k], [1], 1, 1 / sd ** 2);
+      addRow(normal, [k + 1], [1], 0, 1 / PRIOR.lagSd ** 2);
+    }
+    for (const e of equations) {
+      const k = index.get(e.source) ?? 0;
+      const sd = deviation.get(e.source) ?? 0.05;
+      const value = e.value / nominal(e.source);
+      const slipPart = slips(e.source) ? e.speed * e.forceN * (pass === 0 ? 1 : x[k]) : 0;
+      const predicted = x[k] * e.speed - x[k + 1] * e.acceleration + slipPart * x[0];
+      const outlier = pass === 0 ? 1 : Math.min(1, (2.5 * sd) / Math.abs(value - predicted));
+      addRow(normal, [0, k, k + 1], [slipPart, e.speed, -e.acceleration], value, outlier / sd ** 2);
+    }
+    const solved = solveNormal(normal);
+    x = solved.x;
+    covariance = solved.covariance;
+    for (const source of others) {
+      const k = index.get(source) ?? 0;
+      const residuals: number[] = [];
+      for (const e of equations) {
+        if (e.source !== source) continue;
+        const slipPart = slips(source) ? e.speed * e.forceN * x[k] * x[0] : 0;
+        residuals.push(
+          Math.abs(e.value / nominal(source) - x[k] * e.speed + x[k + 1] * e.acceleration - slipPart),
+        );
+      }
+      deviation.set(source, Math.max(1e-4, 1.4826 * median(residuals)));
+    }
+  }
+  const gpsIndex = index.get("gps");
+  // Road speed = what GPS says: divide every scale by the ratio of GPS to base.
+  const road = gpsIndex === undefined ? 1 : x[gpsIndex];
+  const channels = new Map<SpeedSource, ChannelModel>();
+  const add = (source: SpeedSource, relative: number, sd: number, lagS: number, mps: number) =>
+    channels.set(source, {
+      source,
+      scale: (nominal(source) * relative) / road,
+      scaleUncertainty: sd,
+      lagS,
+      slips: slips(source),
+      deviationMps: mps,
+    });
+  add(base, 1, 0, 0, noise);
+  for (const source of others) {
+    const k = index.get(source) ?? 0;
+    add(
+      source,
+      x[k],
+      Math.sqrt(covariance[k * size + k]),
+      x[k + 1] / x[k],
+      (deviation.get(source) ?? 0.05) / x[k],
+    );
+  }
+  const scaleFrom =
+    base === "gps" || gpsIndex !== undefined ? "gps" : base === "engineSpeed" ? "engine speed" : "wheel";
+  const scaleUncertainty = scaleFrom === "gps" ? 0.001 : scaleFrom === "wheel" ? 0.01 : 0.007;
+  return { base, slipPerN: x[0], channels, scaleUncertainty, scaleFrom };
+}

@@ -1,0 +1,125 @@
+import type { KnownChannel, LogTable } from "@/lib/logs/types";
+import { median } from "@/lib/signal/statistics";
+
+/** Samples of one channel with its own times: gaps left out, and held repeats of a slower source left out. */
+export interface SampledChannel {
+  times: Float64Array;
+  values: Float64Array;
+  /** Fresh samples a second. */
+  rateHz: number;
+}
+
+/** The channels of one log that the computation uses, in canonical units. Row arrays have one value a row (NaN = missing). */
+export interface RunSignals {
+  timeS: Float64Array;
+  rateHz: number;
+  undriven: SampledChannel | null;
+  driven: SampledChannel | null;
+  gps: SampledChannel | null;
+  engineSpeed: SampledChannel | null;
+  acceleration: SampledChannel | null;
+  altitude: SampledChannel | null;
+  latitude: SampledChannel | null;
+  longitude: SampledChannel | null;
+  /** Pedal, else throttle, in percent. */
+  loadRows: Float64Array | null;
+  engineRows: Float64Array | null;
+  gearRows: Float64Array | null;
+  /** Best road speed there is, gaps bridged linearly: for finding segments only. */
+  speedRows: Float64Array;
+  speedName: "undriven wheel" | "gps" | "driven wheel";
+}
+
+const SLOW_SOURCES: ReadonlySet<KnownChannel> = new Set(["gps_speed", "altitude", "latitude", "longitude"]);
+
+/** Picks and cleans the channels of a log. The log must carry a road speed (see `requireRoadSpeed`). */
+export function runSignals(table: LogTable): RunSignals {
+  const rows = (name: KnownChannel) => table.channels.find((c) => c.channel === name)?.values ?? null;
+  const sampled = (name: KnownChannel) => {
+    const values = rows(name);
+    return values && sampledChannel(table.timeS, values, SLOW_SOURCES.has(name));
+  };
+  const moving = (channel: SampledChannel | null) => (channel?.values.some((v) => v > 1) ? channel : null);
+  const undriven = moving(sampled("wheel_speed_undriven"));
+  const gps = moving(sampled("gps_speed"));
+  const driven = moving(sampled("wheel_speed_driven"));
+  const best = undriven ?? gps ?? driven;
+  const steps = table.timeS.subarray(1).map((t, i) => t - table.timeS[i]);
+  const pedal = rows("pedal");
+  const throttle = rows("throttle");
+  const enough = (values: Float64Array | null) =>
+    values && values.filter(Number.isFinite).length > values.length / 2 ? values : null;
+  return {
+    timeS: table.timeS,
+    rateHz: 1 / median(steps),
+    undriven,
+    driven,
+    gps,
+    engineSpeed: sampled("engine_speed"),
+    acceleration: sampled("longitudinal_acceleration"),
+    altitude: sampled("altitude"),
+    latitude: sampled("latitude"),
+    longitude: sampled("longitude"),
+    loadRows: enough(pedal) ?? enough(throttle),
+    engineRows: rows("engine_speed"),
+    gearRows: rows("gear"),
+    speedRows: best ? bridged(table.timeS, best) : new Float64Array(table.timeS.length),
+    speedName: undriven ? "undriven wheel" : gps ? "gps" : "driven wheel",
+  };
+}
+
+/**
+ * The fresh samples of a column: a slower source is repeated row by row until its next value. Holding shows as changes at a
+ * steady period of two rows or more; a coarse step shows the same when the value moves evenly, but then most changes have one
+ * size, and the column is kept whole. `slowSource` says that holding is usual (GPS), so the sizes are not asked.
+ */
+export function sampledChannel(
+  timeS: Float64Array,
+  values: Float64Array,
+  slowSource = false,
+): SampledChannel | null {
+  const present: number[] = [];
+  for (let i = 0; i < values.length; i++) if (!Number.isNaN(values[i])) present.push(i);
+  if (present.length < 2) return null;
+  const changes: number[] = [present[0]];
+  const jumps: number[] = [];
+  for (let k = 1; k < present.length; k++) {
+    const jump = Math.abs(values[present[k]] - values[present[k - 1]]);
+    if (jump === 0) continue;
+    changes.push(present[k]);
+    jumps.push(jump);
+  }
+  const keep = isHeld(changes, jumps, slowSource) ? changes : present;
+  const times = Float64Array.from(keep, (i) => timeS[i]);
+  const span = times[times.length - 1] - times[0];
+  return {
+    times,
+    values: Float64Array.from(keep, (i) => values[i]),
+    rateHz: span > 0 ? (times.length - 1) / span : 0,
+  };
+}
+
+function isHeld(changes: readonly number[], jumps: readonly number[], slowSource: boolean): boolean {
+  if (changes.length < 10) return false;
+  const gaps = changes.slice(1).map((row, k) => row - changes[k]);
+  const period = median(gaps);
+  if (period < 1.5) return false;
+  const steady = gaps.filter(
+    (gap) => Math.abs(gap - period * Math.max(1, Math.round(gap / period))) <= 1,
+  ).length;
+  if (steady < 0.8 * gaps.length) return false;
+  if (slowSource) return true;
+  const smallest = jumps.reduce((low, jump) => Math.min(low, jump), Number.POSITIVE_INFINITY);
+  const oneSize = jumps.filter((jump) => jump < 1.5 * smallest).length;
+  return oneSize < 0.4 * jumps.length;
+}
+
+function bridged(timeS: Float64Array, channel: SampledChannel): Float64Array {
+  const { times, values } = channel;
+  let k = 0;
+  return timeS.map((t) => {
+    while (k < times.length - 2 && times[k + 1] < t) k++;
+    const u = Math.min(1, Math.max(0, (t - times[k]) / (times[k + 1] - times[k])));
+    return values[k] + u * (values[k + 1] - values[k]);
+  });
+}

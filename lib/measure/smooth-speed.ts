@@ -1,0 +1,112 @@
+import {
+  observe,
+  type SplineFit,
+  type SplineSystem,
+  solveSpline,
+  splineBasis,
+  splineSystem,
+} from "@/lib/signal/penalised-spline";
+
+/** Speed samples that stand for road speed, each series with one weight 1/variance in s²/m². */
+export interface SpeedSeries {
+  times: Float64Array;
+  values: Float64Array;
+  weight: number;
+}
+
+/** How strongly speed is smoothed: penalty on the jerk's rate, relaxed by `relief` just after tip-in. */
+export interface Smoothing {
+  lambda: number;
+  relief: number;
+}
+
+/** A stretch to be smoothed; `tipInS` null when the load does not step at its start. */
+export interface SpeedStretch {
+  system: SplineSystem;
+  tipInS: number | null;
+  /** Information a second, s/m²: sets what a penalty means in seconds. */
+  density: number;
+}
+
+/** Spool-up and the take-up of the driveline are over after this, s [common practice, no source]. */
+const TIP_IN_S = 1.2;
+
+/** Gathers speed series on a spline over `fromS` to `toS`. */
+export function speedStretch(
+  series: readonly SpeedSeries[],
+  fromS: number,
+  toS: number,
+  knotS: number,
+  tipInS: number | null,
+): SpeedStretch {
+  const system = splineSystem(splineBasis(fromS, toS, knotS));
+  const scratch = new Float64Array(4);
+  let information = 0;
+  for (const { times, values, weight } of series) {
+    for (let i = 0; i < times.length; i++) {
+      if (times[i] < fromS || times[i] > toS || Number.isNaN(values[i])) continue;
+      observe(system, times[i], values[i], weight, scratch);
+      information += weight;
+    }
+  }
+  return { system, tipInS, density: information / (toS - fromS) };
+}
+
+/** The smoothed speed of a stretch. */
+export function smoothSpeed(stretch: SpeedStretch, smoothing: Smoothing): SplineFit {
+  const { tipInS } = stretch;
+  if (tipInS === null || smoothing.relief === 1) return solveSpline(stretch.system, smoothing.lambda);
+  return solveSpline(stretch.system, smoothing.lambda, (t) => reliefAt(t, tipInS, smoothing.relief));
+}
+
+function reliefAt(t: number, tipInS: number, relief: number): number {
+  return t < tipInS + TIP_IN_S ? 1 / relief : 1;
+}
+
+/** The time constant of a penalty in seconds: (λ/density)^(1/6), the width of the smoother's kernel. */
+export function kernelWidthS(lambda: number, density: number): number {
+  return (lambda / density) ** (1 / 6);
+}
+
+/**
+ * The smoothing that the data ask for: restricted maximum likelihood of the spline seen as a random function, over all
+ * stretches together, on a grid of kernel widths from `floorS` up. The floor guards against following the noise of coarse
+ * or slow logs. Source: Wahba 1985, Annals of Statistics 13; Ruppert, Wand and Carroll 2003, chapter 4.
+ */
+export function chooseSmoothing(stretches: readonly SpeedStretch[], floorS: number): Smoothing {
+  const density = stretches.reduce((sum, s) => sum + s.density, 0) / stretches.length;
+  let best: Smoothing = { lambda: density * floorS ** 6, relief: 1 };
+  let bestScore = Number.POSITIVE_INFINITY;
+  const hasTipIn = stretches.some((s) => s.tipInS !== null);
+  for (let width = floorS; width < 12 * floorS && width < 1.2; width *= 1.15) {
+    for (const relief of hasTipIn ? [1, 8, 64] : [1]) {
+      const smoothing = { lambda: density * width ** 6, relief };
+      const score = restrictedLikelihood(stretches, smoothing);
+      if (score < bestScore) {
+        bestScore = score;
+        best = smoothing;
+      }
+    }
+  }
+  return best;
+}
+
+/** −2 log restricted likelihood, up to a constant, with the noise variance profiled out. */
+function restrictedLikelihood(stretches: readonly SpeedStretch[], smoothing: Smoothing): number {
+  let logs = 0;
+  let objective = 0;
+  let samples = 0;
+  for (const stretch of stretches) {
+    const fit = smoothSpeed(stretch, smoothing);
+    logs += fit.logDeterminant;
+    const { basis } = fit;
+    for (let k = 0; k + 3 < basis.count; k++) {
+      const t = basis.start + (k + 0.5) * basis.spacing;
+      const relief = stretch.tipInS === null ? 1 : reliefAt(t, stretch.tipInS, smoothing.relief);
+      logs -= Math.log(smoothing.lambda * relief);
+    }
+    objective += fit.objective;
+    samples += stretch.system.used - 3;
+  }
+  return logs + samples * Math.log(objective);
+}
