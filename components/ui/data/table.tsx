@@ -66,7 +66,7 @@ export function Table<Row>({
     >
       <table className="w-full border-collapse text-15">
         <caption className={showCaption ? "pb-2 text-left text-13 text-ink2" : "sr-only"}>{caption}</caption>
-        <thead className="sticky top-0 z-10 bg-surface">
+        <thead className={scroll === "page" ? undefined : "sticky top-0 z-10 bg-surface"}>
           <tr className="border-line border-b">
             {columns.map((column) => (
               <th

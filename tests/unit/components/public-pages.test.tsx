@@ -1,0 +1,50 @@
+import { renderToStaticMarkup } from "react-dom/server";
+import { describe, expect, it } from "vitest";
+import { AirMethods } from "@/app/methods/air-methods";
+import { ComparisonMethods } from "@/app/methods/comparison-methods";
+import { METHOD_CONTENTS } from "@/app/methods/contents";
+import { MotionMethods } from "@/app/methods/motion-methods";
+import { FACTOR_RULES } from "@/lib/measure/atmosphere";
+
+const markup = renderToStaticMarkup(
+  <>
+    <MotionMethods />
+    <AirMethods />
+    <ComparisonMethods />
+  </>,
+);
+const page = document.createElement("div");
+page.innerHTML = markup;
+
+describe("the methods page", () => {
+  it("has one heading for every entry of its contents, in the same order, and none besides", () => {
+    expect([...page.querySelectorAll("h2")].map((heading) => heading.id)).toEqual(
+      METHOD_CONTENTS.map(([id]) => id),
+    );
+  });
+
+  it("names a source and limits for every method", () => {
+    for (const section of page.querySelectorAll("section")) {
+      const terms = [...section.querySelectorAll("dt")].map((term) => term.textContent);
+      expect(terms).toEqual(["Source", "Limits"]);
+      for (const text of section.querySelectorAll("dd")) expect(text.textContent?.length).toBeGreaterThan(15);
+    }
+  });
+
+  it("lists every weather factor that the computation knows, with its formula", () => {
+    const rows = [...page.querySelectorAll("tbody tr")].map((row) => row.textContent ?? "");
+    expect(rows).toHaveLength(Object.keys(FACTOR_RULES).length);
+    for (const [id, rule] of Object.entries(FACTOR_RULES)) {
+      expect(rows.some((row) => row.startsWith(id) && row.includes(rule.formula))).toBe(true);
+    }
+  });
+
+  it("claims no conformity", () => {
+    expect(page.textContent).not.toMatch(/certified|complies with|in accordance with/i);
+    expect(page.textContent).toContain("claims no conformity");
+  });
+
+  it("carries no style attribute", () => {
+    expect(markup).not.toMatch(/\sstyle=/);
+  });
+});
