@@ -22,8 +22,10 @@ export function createDatabase(
     statement_timeout: 15_000,
     connectionTimeoutMillis: 5_000,
   });
-  // A backend that ends while idle must not end the process; the next query opens a fresh connection.
+  // A backend that ends must not end the process. Idle: the next query opens a fresh connection. Between two
+  // statements of a transaction: the next statement fails, and with it the transaction.
   pool.on("error", () => undefined);
+  pool.on("connect", (client) => client.on("error", () => undefined));
   const db = drizzle(pool, { schema });
   return { db, pool, close: () => pool.end() };
 }

@@ -94,7 +94,7 @@ export async function endInvitations(
 ): Promise<string[]> {
   const ended = await tx
     .update(invitations)
-    .set({ expiresAt: sql`now()` })
+    .set({ expiresAt: sql`now() - interval '1 second'` })
     .where(
       and(
         eq(invitations.workspaceId, args.workspaceId),
