@@ -40,16 +40,16 @@ export function hasSwift() {
   return existsSync(PYTHON) && spawnSync(PYTHON, ["-c", "import swift.common.middleware.s3api"]).status === 0;
 }
 
-/** @returns {string | undefined} the command that would install Swift, where we have the rights to run it */
+/** @returns {boolean} whether we had the rights to try to install Swift */
 export function installSwift() {
-  const rights = isRoot() && findCommand("apt-get");
-  if (!rights) return undefined;
+  const installer = isRoot() && findCommand("apt-get");
+  if (!installer) return false;
   const args = ["install", "-y", "-q", "--no-install-recommends", "python3-swift", "memcached"];
-  spawnSync("apt-get", args, {
+  spawnSync(installer, args, {
     stdio: "inherit",
     env: { ...process.env, DEBIAN_FRONTEND: "noninteractive" },
   });
-  return `apt-get ${args.join(" ")}`;
+  return true;
 }
 
 /** @param {number} port @returns {Promise<boolean>} */
@@ -138,6 +138,7 @@ function writeSettings(conf, data, ports, user) {
     }),
   );
   for (const role of ROLES) {
+    /** @type {Record<string, Record<string, string | number>>} */
     const settings = {
       DEFAULT: { ...base(ports[role]), devices: data, mount_check: "false" },
       "pipeline:main": { pipeline: `${role}-server` },
@@ -211,21 +212,25 @@ export async function up(folder) {
   }
   /** @type {Ports} */
   const ports = JSON.parse(readFileSync(state, "utf8"));
-  const commands = [...ROLES, "proxy"].map((role) => [
-    PYTHON,
-    join(conf, "launch.py"),
-    join(conf, `${role}.conf`),
-    `${role}-server`,
-  ]);
+  /** @type {{ command: string, args: string[] }[]} */
+  const commands = [...ROLES, "proxy"].map((role) => ({
+    command: PYTHON,
+    args: [join(conf, "launch.py"), join(conf, `${role}.conf`), `${role}-server`],
+  }));
   const memcached = findCommand("memcached");
-  if (memcached) commands.unshift([memcached, "-l", "127.0.0.1", "-p", String(ports.cache), "-m", "32"]);
-  const pids = commands.map(([command, ...args]) => {
+  if (memcached) {
+    commands.unshift({
+      command: memcached,
+      args: ["-l", "127.0.0.1", "-p", String(ports.cache), "-m", "32"],
+    });
+  }
+  const pids = commands.map(({ command, args }) => {
     const log = openSync(join(logs, "swift.log"), "a");
     const child = spawn(command, args, {
       cwd: root,
       detached: true,
       stdio: ["ignore", log, log],
-      env: { PATH: process.env.PATH, HOME: root, PYTHONDONTWRITEBYTECODE: "1", LANG: "C.UTF-8" },
+      env: { ...process.env, HOME: root, PYTHONDONTWRITEBYTECODE: "1", LANG: "C.UTF-8" },
       ...ids,
     });
     child.unref();

@@ -3,7 +3,10 @@ import { spawn } from "node:child_process";
 import { chmodSync, mkdtempSync, readFileSync, rmSync } from "node:fs";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
+import { fileURLToPath } from "node:url";
 import { end, hasSwift, installSwift, up } from "./outside-s3.mjs";
+
+const VITEST_CONFIG = fileURLToPath(new URL("./soak-vitest.config.mts", import.meta.url));
 
 /** @param {string} line */
 const say = (line) => process.stdout.write(`soak:s3: ${line}\n`);
@@ -11,8 +14,8 @@ const say = (line) => process.stdout.write(`soak:s3: ${line}\n`);
 if (!hasSwift()) {
   const tried = installSwift();
   if (!hasSwift()) {
-    const why = tried === undefined ? "no right to install python3-swift" : `"${tried}" did not bring it`;
-    say(`not run: Debian's python3-swift is missing and there is ${why}.`);
+    const why = tried ? "apt-get could not install it" : "installing it needs root and apt-get";
+    say(`not run: Debian's python3-swift is missing, and ${why}.`);
     process.exit(0);
   }
 }
@@ -21,18 +24,19 @@ const folder = mkdtempSync(join(tmpdir(), "twinpass-swift-"));
 chmodSync(folder, 0o755);
 /** @type {import("node:child_process").ChildProcess | undefined} */
 let tests;
-for (const signal of /** @type {const} */ (["SIGINT", "SIGTERM"]))
-  process.on(signal, () => tests?.kill(signal));
+let stopped = false;
+for (const signal of /** @type {const} */ (["SIGINT", "SIGTERM"])) {
+  process.on(signal, () => {
+    stopped = true;
+    tests?.kill(signal);
+  });
+}
 try {
   say("starting OpenStack Swift with s3api on loopback");
   const config = await up(folder);
   say(`answers at ${config.endpoint}`);
-  const args = [
-    "node_modules/vitest/vitest.mjs",
-    "run",
-    "--config",
-    "docker-less-setup/soak-vitest.config.mts",
-  ];
+  if (stopped) throw new Error("stopped before the tests began");
+  const args = ["node_modules/vitest/vitest.mjs", "run", "--config", VITEST_CONFIG];
   const env = { ...process.env, SOAK_S3: JSON.stringify({ config, folder }) };
   const child = spawn(process.execPath, args, { stdio: "inherit", env });
   tests = child;

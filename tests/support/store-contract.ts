@@ -2,6 +2,7 @@ import { spawn } from "node:child_process";
 import { randomBytes } from "node:crypto";
 import { createInterface } from "node:readline";
 import { setTimeout as sleep } from "node:timers/promises";
+import { fileURLToPath } from "node:url";
 import { afterAll, beforeAll, describe, expect, test } from "vitest";
 import { InvalidInputError, NotFoundError, TooLargeError } from "@/lib/errors";
 import { hashBlob } from "@/storage/blob";
@@ -303,7 +304,7 @@ export function describeStoreContract(
 
 /** Starts a writer, kills it with SIGKILL in the upload after its first (round 0: in its first), notes what it said. */
 async function killedWriter(config: object, round: number, acknowledged: Map<string, number>): Promise<void> {
-  const script = "tests/support/store-writer.ts";
+  const script = fileURLToPath(new URL("./store-writer.ts", import.meta.url));
   const child = spawn(
     process.execPath,
     ["--no-warnings", "--import", "tsx", script, JSON.stringify(config)],
