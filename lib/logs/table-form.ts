@@ -18,7 +18,9 @@ export interface TableForm {
   preambleLines: number;
 }
 
-const SAMPLE_ROWS = 400;
+const SAMPLE_ROWS = 200;
+/** Rows by which delimiters are judged. */
+const DELIMITER_ROWS = 60;
 const DELIMITERS = ["\t", ";", "|", ","] as const;
 const TIME_LIKE = /^\d{1,4}[-_/.:]\d{1,2}[-_/.:]\d{1,4}|^\d{1,2}:\d{2}([.,]\d+)?$/;
 
@@ -50,7 +52,7 @@ function findDelimiter(text: string): string {
   let best = ",";
   let bestScore = 0;
   for (const delimiter of DELIMITERS) {
-    const rows = firstRows(text, delimiter, SAMPLE_ROWS);
+    const rows = firstRows(text, delimiter, DELIMITER_ROWS);
     const { width, share } = commonWidth(rows);
     if (width < 2) continue;
     let numeric = 0;

@@ -50,7 +50,8 @@ function longestPiece(
       continue;
     }
     if (late > 0) swapped++;
-    piece.splice(at, 0, row);
+    if (late === 0) piece.push(row);
+    else piece.splice(at, 0, row);
   }
   pieces.push(piece);
   let best = pieces[0] ?? [];

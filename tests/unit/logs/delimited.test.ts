@@ -3,6 +3,7 @@ import fc from "fast-check";
 import Papa from "papaparse";
 import { describe, expect, it } from "vitest";
 import { FileRefusedError } from "@/lib/errors";
+import { splitQuoted } from "@/lib/logs/delimited-rows";
 import { logReport } from "@/lib/logs/log-report";
 import { parseNumber } from "@/lib/logs/parse-number";
 import { type ReadLogOptions, readLog } from "@/lib/logs/read-log";
@@ -107,6 +108,37 @@ describe("round trip: what a CSV writer of another hand wrote is read back (prop
       }),
       { numRuns: 200, seed: 3 },
     );
+  });
+});
+
+describe("quotes", () => {
+  it("a line is split as papaparse splits it (property: any cells without a line end)", () => {
+    const cell = fc.string({ unit: fc.constantFrom("a", "1", ",", ";", '"', " ", "."), maxLength: 6 });
+    fc.assert(
+      fc.property(
+        fc.array(cell, { minLength: 1, maxLength: 6 }),
+        fc.constantFrom(",", ";"),
+        (cells, delimiter) => {
+          const line = Papa.unparse([cells], { delimiter });
+          expect(splitQuoted(line, delimiter)).toEqual(
+            Papa.parse<string[]>(line, { delimiter }).data[0] ?? [""],
+          );
+        },
+      ),
+      { numRuns: 1000, seed: 4 },
+    );
+  });
+  it("text after a closing quote makes a cell text, never a number", () => {
+    expect(splitQuoted('"1"2,3', ",")).toEqual(['"1"2', "3"]);
+  });
+  it("a quoted cell may hold a line end; line numbers of refused rows stay right", () => {
+    const text = rows(
+      '"Time [s]","GPS speed [km/h]",Note',
+      (i) => `${i / 10},36.5,${i === 2 ? '"two\nlines"' : i === 5 ? "x,y" : "ok"}`,
+    );
+    const table = read(text);
+    expect(table.rowsRead).toBe(19);
+    expect(table.rowsRefused).toEqual([{ row: 8, reason: "has 4 cells where the header has 3" }]);
   });
 });
 
