@@ -6,7 +6,7 @@ import type { ImageSummary } from "@/lib/calibration/image-summary";
 const CONTAINER_WORDS: Record<string, string> = {
   "intel-hex": "Intel HEX",
   "s-record": "Motorola S-record",
-  "raw-binary": "raw binary",
+  binary: "raw binary",
 };
 
 /** An address as the trade writes it: 0x810000. */

@@ -32,7 +32,7 @@ export function summarise(image: CalibrationImage): ImageSummary {
     container: image.container,
     identity: imageIdentity(image),
     segments: image.segments.map(({ address, bytes }) => ({ address, length: bytes.length })),
-    problems: image.problems.map((problem) => problem.message),
+    problems: image.notes.map((note) => note.message),
   };
 }
 
