@@ -45,6 +45,15 @@ export async function lockRevisions(
     .for("no key update");
 }
 
+/** Holds the row that hands out run and record numbers; whoever takes one comes before the head of the ledger. */
+export async function lockNumbers(tx: Queryable, { workspaceId }: { workspaceId: string }): Promise<void> {
+  await tx
+    .select({ id: workspaces.id })
+    .from(workspaces)
+    .where(eq(workspaces.id, workspaceId))
+    .for("no key update");
+}
+
 /** Takes the workspace's next record number; its row stays locked, so that records follow one another. */
 export async function takeRecordNumber(
   tx: Queryable,

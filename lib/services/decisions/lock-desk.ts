@@ -1,6 +1,7 @@
 import type { Transaction } from "@/db/client";
 import {
   type DecidedRevision,
+  lockNumbers,
   lockProgramme,
   lockRevisions,
   selectNewestDecisionOn,
@@ -45,6 +46,7 @@ export async function lockDesk(
   if (!revision) throw noRevision();
   const roles = await selectRoles(tx, { workspaceId, userId, lock: true });
   if (!roles) throw new ForbiddenError("no_member", "You are no active member of this workspace any more.");
+  await lockNumbers(tx, { workspaceId });
   await lockLedgerHead(tx, { workspaceId });
   const otherLeads = await countOthersWithRole(tx, { workspaceId, userId, role: "lead" });
   return {
