@@ -1,0 +1,158 @@
+import type { Metadata } from "next";
+import Link from "next/link";
+import { changeSettingsAction, recomputeAction } from "@/app/(workspace)/comparisons/actions";
+import { AnswerCard } from "@/components/features/comparisons/answer-card";
+import { ComparisonFigure } from "@/components/features/comparisons/comparison-figure";
+import { ComparisonStateNotice } from "@/components/features/comparisons/comparison-state-notice";
+import { ConditionsTable } from "@/components/features/comparisons/conditions-table";
+import { viewFromParameters } from "@/components/features/comparisons/figure-view";
+import { methodNotes } from "@/components/features/comparisons/method-notes";
+import { PeaksTable } from "@/components/features/comparisons/peaks-table";
+import { RunsTable } from "@/components/features/comparisons/runs-table";
+import { SettingsForm } from "@/components/features/comparisons/settings-form";
+import { TwinsTable } from "@/components/features/comparisons/twins-table";
+import { GateList, gateCount } from "@/components/features/gates/gate-list";
+import { LinkButton } from "@/components/ui/action/link-button";
+import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
+import { Card } from "@/components/ui/layout/card";
+import { PageHeading } from "@/components/ui/layout/page-heading";
+import { requireCtx } from "@/lib/auth/current";
+import { plottedGrid } from "@/lib/compare/plotted-grid";
+import { orNotFound } from "@/lib/http/page";
+import { can } from "@/lib/policy/can";
+import { getComparison } from "@/lib/services/comparisons/load";
+import { FACTOR_WORDS, sideOfRun } from "@/lib/services/comparisons/schema";
+import { gateStatus } from "@/lib/services/gates/status";
+
+export const metadata: Metadata = { title: "Comparison" };
+
+/** Side A against side B: the answer, the figure, the evidence behind it, and the gates beside it. */
+export default async function ComparisonPage({
+  params,
+  searchParams,
+}: PageProps<"/comparisons/[comparison]">) {
+  const ctx = await requireCtx();
+  const view = await orNotFound((await params).comparison, (id) => getComparison(ctx, id));
+  const parameters = await searchParams;
+  const maySettings = can(ctx, "comparison.settings");
+  const blockedBecause = maySettings.ok ? null : maySettings.reason;
+  const gates = maySettings.ok ? await gateStatus(ctx, { revisionId: view.b.id }) : null;
+  const gatesHere = gates?.comparisonId === view.id ? gates : null;
+  const { result } = view;
+  const labels = { a: `R${view.a.number}`, b: `R${view.b.number}` };
+  const grid = result && plottedGrid(result, sideOfRun(view.runs));
+  return (
+    <div className="flex flex-col gap-6">
+      <PageHeading
+        above={
+          <Breadcrumbs
+            items={[
+              { label: "Programmes", href: "/programmes" },
+              { label: view.programme.name, href: `/programmes/${view.programme.id}` },
+              { label: `${labels.a} and ${labels.b}` },
+            ]}
+          />
+        }
+        title={`${labels.a} against ${labels.b}`}
+        lead={
+          <>
+            A is{" "}
+            <Link href={`/revisions/${view.a.id}`} className="link">
+              {labels.a} “{view.a.title}”
+            </Link>
+            {view.a.stands && ", which stands"}. B is{" "}
+            <Link href={`/revisions/${view.b.id}`} className="link">
+              {labels.b} “{view.b.title}”
+            </Link>
+            {view.b.stands && ", which stands"}.
+          </>
+        }
+        actions={
+          view.state === "ready" && (
+            <LinkButton href={`/api/comparisons/${view.id}/csv` as never} prefetch={false}>
+              Save as CSV
+            </LinkButton>
+          )
+        }
+      />
+      <ComparisonStateNotice view={view} blockedBecause={blockedBecause} action={recomputeAction} />
+      <div className="grid gap-6 lg:grid-cols-[minmax(0,1fr)_20rem]">
+        <div className="flex min-w-0 flex-col gap-6">
+          {result?.delta && (
+            <AnswerCard delta={result.delta} labels={labels} stale={view.state === "stale"} />
+          )}
+          {result && grid && view.basis && (
+            <ComparisonFigure
+              grid={grid}
+              labels={labels}
+              title={`${labels.a} and ${labels.b} over engine speed`}
+              notes={methodNotes(result, view.settings, view.basis)}
+              initialView={viewFromParameters(parameters)}
+              keepInAddress
+            />
+          )}
+          {result && (
+            <Card title="Peaks and times" flush>
+              <PeaksTable result={result} labels={labels} />
+            </Card>
+          )}
+          <Card title="Conditions side by side" flush>
+            <ConditionsTable conditions={view.conditions} labels={labels} />
+          </Card>
+          <Card
+            title="Runs"
+            description="In the order driven. What does not count is listed with the reason."
+            flush
+          >
+            <RunsTable runs={view.runs} />
+          </Card>
+          {result?.delta && (
+            <Card title="Twins" description="How well the out and the back run of a pair agree." flush>
+              <TwinsTable delta={result.delta} />
+            </Card>
+          )}
+        </div>
+        <aside className="flex min-w-0 flex-col gap-6">
+          {gatesHere && (
+            <Card
+              title="Gates"
+              description={`Plan version ${gatesHere.planVersion ?? "–"}: ${gateCount(gatesHere.results)}`}
+            >
+              <GateList gates={gatesHere.results} />
+            </Card>
+          )}
+          {view.b.state === "in_review" && (
+            <Card title="Decide" tone="well">
+              <p className="mb-3 text-15">
+                {labels.b} is in review. The lead decides on it beside this evidence.
+              </p>
+              <LinkButton look="filled" href={`/revisions/${view.b.id}/decide`}>
+                Open decision
+              </LinkButton>
+            </Card>
+          )}
+          <Card title="Settings">
+            <SettingsForm
+              comparisonId={view.id}
+              factor={view.settings.factor}
+              rpmStep={view.settings.rpm_step}
+              blockedBecause={blockedBecause}
+              action={changeSettingsAction}
+            />
+            {view.others.length > 0 && (
+              <ul className="mt-4 flex flex-col gap-1 border-line border-t pt-3 text-15">
+                {view.others.map((other) => (
+                  <li key={other.id}>
+                    <Link href={`/comparisons/${other.id}`} className="link">
+                      {FACTOR_WORDS[other.settings.factor]}, grid {other.settings.rpm_step}
+                    </Link>
+                  </li>
+                ))}
+              </ul>
+            )}
+          </Card>
+        </aside>
+      </div>
+    </div>
+  );
+}

@@ -1,0 +1,150 @@
+import type { Metadata } from "next";
+import Link from "next/link";
+import { openComparisonAction, recomputeAction } from "@/app/(workspace)/comparisons/actions";
+import { decideAction } from "@/app/(workspace)/revisions/[revision]/decide/actions";
+import { AnswerCard } from "@/components/features/comparisons/answer-card";
+import { ComparisonFigure } from "@/components/features/comparisons/comparison-figure";
+import { ComparisonStateNotice } from "@/components/features/comparisons/comparison-state-notice";
+import { methodNotes } from "@/components/features/comparisons/method-notes";
+import { OpenComparisonForm } from "@/components/features/comparisons/open-comparison-form";
+import { PeaksTable } from "@/components/features/comparisons/peaks-table";
+import { Cautions } from "@/components/features/decisions/cautions";
+import { DecisionForm } from "@/components/features/decisions/decision-form";
+import { DeskFacts } from "@/components/features/decisions/desk-facts";
+import { GateList, gateCount } from "@/components/features/gates/gate-list";
+import { LinkButton } from "@/components/ui/action/link-button";
+import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
+import { Card } from "@/components/ui/layout/card";
+import { PageHeading } from "@/components/ui/layout/page-heading";
+import { EmptyState } from "@/components/ui/status/empty-state";
+import { requireCtx } from "@/lib/auth/current";
+import { plottedGrid } from "@/lib/compare/plotted-grid";
+import { orNotFound } from "@/lib/http/page";
+import { can } from "@/lib/policy/can";
+import { sideOfRun } from "@/lib/services/comparisons/schema";
+import { blockedSteps } from "@/lib/services/decisions/blocked-steps";
+import { getDecisionDesk } from "@/lib/services/decisions/load-desk";
+import { openMusts } from "@/lib/services/gates/open-musts";
+
+export const metadata: Metadata = { title: "Decision" };
+
+/** Evidence at the left, the countersign form at the right: one view for one decision. */
+export default async function DecidePage({ params }: PageProps<"/revisions/[revision]/decide">) {
+  const ctx = await requireCtx();
+  const desk = await orNotFound((await params).revision, (id) => getDecisionDesk(ctx, id));
+  const { revision, standing, comparison, gates, programme } = desk;
+  const result = comparison?.result ?? null;
+  const grid = comparison && result && plottedGrid(result, sideOfRun(comparison.runs));
+  const labels = { a: `R${standing?.number ?? "?"}`, b: `R${revision.number}` };
+  const mayCompare = can(ctx, "comparison.create");
+  const blocked = blockedSteps(desk);
+  return (
+    <div className="flex flex-col gap-6">
+      <PageHeading
+        above={
+          <Breadcrumbs
+            items={[
+              { label: "Programmes", href: "/programmes" },
+              { label: programme.name, href: `/programmes/${programme.id}` },
+              { label: `R${revision.number}`, href: `/revisions/${revision.id}` },
+              { label: "Decision" },
+            ]}
+          />
+        }
+        title={`Decide on R${revision.number}`}
+        lead={
+          standing
+            ? `“${revision.title}” against R${standing.number} “${standing.title}”, which stands.`
+            : `“${revision.title}”. No revision stands yet.`
+        }
+      />
+      {comparison && (
+        <ComparisonStateNotice
+          view={comparison}
+          blockedBecause={mayCompare.ok ? null : mayCompare.reason}
+          action={recomputeAction}
+        />
+      )}
+      <div className="grid gap-6 lg:grid-cols-[minmax(0,1fr)_25rem]">
+        <div className="flex min-w-0 flex-col gap-6">
+          {!comparison && standing && (
+            <EmptyState
+              sentence={`R${standing.number} and R${revision.number} have not been compared yet: gates rest on that comparison.`}
+              action={
+                <OpenComparisonForm
+                  revisionAId={standing.id}
+                  revisionBId={revision.id}
+                  label={`Compare R${revision.number} with R${standing.number}`}
+                  blockedBecause={mayCompare.ok ? null : mayCompare.reason}
+                  action={openComparisonAction}
+                />
+              }
+            />
+          )}
+          {result?.delta && (
+            <AnswerCard delta={result.delta} labels={labels} stale={comparison?.state === "stale"} />
+          )}
+          {comparison && result && grid && comparison.basis && (
+            <>
+              <ComparisonFigure
+                grid={grid}
+                labels={labels}
+                title={`${labels.a} and ${labels.b} over engine speed`}
+                notes={methodNotes(result, comparison.settings, comparison.basis)}
+              />
+              <Card title="Peaks and times" flush>
+                <PeaksTable result={result} labels={labels} />
+              </Card>
+            </>
+          )}
+          <Card
+            title="Gates"
+            description={`Plan version ${gates.planVersion ?? "–"}: ${gateCount(gates.results)}`}
+            actions={
+              comparison && (
+                <LinkButton size="compact" href={`/comparisons/${comparison.id}`}>
+                  All of the comparison
+                </LinkButton>
+              )
+            }
+          >
+            <GateList gates={gates.results} />
+          </Card>
+        </div>
+        <aside className="flex min-w-0 flex-col gap-6">
+          <Card title="Countersign" tone="well">
+            <DecisionForm
+              key={`${revision.rowVersion} ${comparison?.inputSha256}`}
+              seen={{
+                revisionId: revision.id,
+                rowVersion: revision.rowVersion,
+                standingRevisionId: standing?.id ?? null,
+                comparisonId: comparison?.id ?? null,
+                inputSha256: comparison?.inputSha256 ?? null,
+                gatePlanVersion: gates.planVersion,
+              }}
+              number={revision.number}
+              standingNumber={standing?.number ?? null}
+              openGates={openMusts(gates.results)}
+              blocked={blocked}
+              hasPassphrase={desk.hasPassphrase}
+              peopleTold={desk.peopleTold}
+              action={decideAction}
+            />
+          </Card>
+          <Card title="What is decided on">
+            <DeskFacts desk={desk} />
+          </Card>
+          <Cautions />
+          <p className="text-13 text-ink2">
+            An image can be put back at any time:{" "}
+            <Link href={`/programmes/${programme.id}/roll-back`} className="link">
+              roll back
+            </Link>
+            .
+          </p>
+        </aside>
+      </div>
+    </div>
+  );
+}

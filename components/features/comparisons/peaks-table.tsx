@@ -1,0 +1,108 @@
+import { decimalsForHalfWidth, numberText } from "@/components/ui/data/number-text";
+import { Quantity } from "@/components/ui/data/quantity";
+import { Table } from "@/components/ui/data/table";
+import type { CampaignResult } from "@/lib/measure/types";
+
+interface Line {
+  what: string;
+  unit: string;
+  a: number | null;
+  b: number | null;
+  at: [number, number] | null;
+  difference: number | null;
+  halfWidth: number | null;
+  n: [number, number];
+}
+
+function lines(result: CampaignResult): Line[] {
+  const { A, B } = result.sides;
+  const n: [number, number] = [A?.n ?? 0, B?.n ?? 0];
+  const peaks = result.delta?.peak_difference ?? null;
+  const pair = (a: number | undefined, b: number | undefined): Line["at"] =>
+    a === undefined || b === undefined ? null : [a, b];
+  const power: Line = {
+    what: "Peak power",
+    unit: "kW",
+    a: A?.peak?.engine_kw ?? null,
+    b: B?.peak?.engine_kw ?? null,
+    at: pair(A?.peak?.engine_kw_rpm, B?.peak?.engine_kw_rpm),
+    difference: peaks?.engine_kw ?? null,
+    halfWidth: peaks?.half_width_kw ?? null,
+    n,
+  };
+  const torque: Line = {
+    what: "Peak torque",
+    unit: "N·m",
+    a: A?.peak?.engine_nm ?? null,
+    b: B?.peak?.engine_nm ?? null,
+    at: pair(A?.peak?.engine_nm_rpm, B?.peak?.engine_nm_rpm),
+    difference: peaks?.engine_nm ?? null,
+    halfWidth: peaks?.half_width_nm ?? null,
+    n,
+  };
+  const times = Object.entries(result.delta?.times_difference ?? {}).map(
+    ([name, time]): Line => ({
+      what: /^\d+-\d+$/.test(name) ? `${name} km/h` : name,
+      unit: "s",
+      a: time.a_s,
+      b: time.b_s,
+      at: null,
+      difference: time.difference_s,
+      halfWidth: time.half_width_s,
+      n: [time.n_a, time.n_b],
+    }),
+  );
+  return [power, torque, ...times];
+}
+
+/** Peaks and times of both sides; a difference always with its ± and its n, or it is not claimed. */
+export function PeaksTable({ result, labels }: { result: CampaignResult; labels: { a: string; b: string } }) {
+  const digits = (line: Line) => decimalsForHalfWidth(line.halfWidth, line.unit === "s" ? 2 : 1);
+  const at = (line: Line, side: 0 | 1) =>
+    line.at && <span className="text-13 text-ink2"> at {numberText(line.at[side])}</span>;
+  return (
+    <Table
+      caption="Peaks and times of both sides with their difference"
+      dense
+      rows={lines(result)}
+      rowKey={(line) => line.what}
+      columns={[
+        { key: "what", header: "Quantity", rowHeader: true, cell: (line) => `${line.what}, ${line.unit}` },
+        {
+          key: "a",
+          header: `A ${labels.a}`,
+          numeric: true,
+          cell: (line) => (
+            <>
+              {numberText(line.a, { decimals: digits(line) })}
+              {at(line, 0)}
+            </>
+          ),
+        },
+        {
+          key: "b",
+          header: `B ${labels.b}`,
+          numeric: true,
+          cell: (line) => (
+            <>
+              {numberText(line.b, { decimals: digits(line) })}
+              {at(line, 1)}
+            </>
+          ),
+        },
+        {
+          key: "d",
+          header: "B \u2212 A",
+          numeric: true,
+          cell: (line) =>
+            line.halfWidth === null ? (
+              <span className="text-ink2">no interval, not claimed</span>
+            ) : (
+              <Quantity value={line.difference} halfWidth={line.halfWidth} unit={line.unit} signed />
+            ),
+        },
+        { key: "n", header: "n A, B", numeric: true, cell: (line) => `${line.n[0]}, ${line.n[1]}` },
+      ]}
+    />
+  );
+}
