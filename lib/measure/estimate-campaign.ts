@@ -61,6 +61,16 @@ export function estimateCampaign(
   );
   const days = [...new Set(runs.map(({ run }) => run.road_day ?? ""))];
 
+  const sides = [...new Set(runs.map(({ run }) => run.side ?? ""))];
+  const sharing = Math.max(
+    1,
+    Math.min(
+      ...sides.map(
+        (side) => runs.filter(({ run, segments }) => segments.pull && (run.side ?? "") === side).length,
+      ),
+    ),
+  );
+
   let driveline: Driveline = {
     massKg: vehicle.mass_kg,
     wheelMassKg,
@@ -100,13 +110,13 @@ export function estimateCampaign(
       driveline = { ...driveline, gearingRadPerM: engine.scale * RPM_RADPS };
       gearingFrom = "measured";
     } else gearingFrom = stated?.source === "tyre marking" ? "tyre" : "stated";
-    if (round === 0) ({ pulls } = pullSpeeds(runs, model, forceN, null));
+    if (round === 0) ({ pulls } = pullSpeeds(runs, model, forceN, null, null));
     const current = model;
     pulls = pulls.map(
       (pull, k) =>
         pull && { ...pull, slipping: findSlipping(runs[k], current, pull, (v, a, t) => forceN(k, v, a, t)) },
     );
-    ({ pulls, smoothing } = pullSpeeds(runs, model, forceN, pulls));
+    ({ pulls, smoothing } = pullSpeeds(runs, model, forceN, pulls, round === 2 ? sharing : null));
     const speedName = model.channels.get(
       runs[0].signals.speedName === "undriven wheel"
         ? "undriven"

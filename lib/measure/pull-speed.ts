@@ -1,3 +1,4 @@
+import { adaptiveSmoothing } from "@/lib/measure/adaptive-smoothing";
 import {
   chooseSmoothing,
   type Smoothing,
@@ -32,12 +33,16 @@ const RINGING_S = 0.7;
 /** Slip beyond drive creep by this much is wheel spin (measurement.md 7.6), as a share of speed. */
 const SPIN_SHARE = 0.02;
 
-/** Smooths every pull on all its speed channels together; the smoothing is chosen once for all pulls of the campaign. */
+/**
+ * Smooths every pull on all its speed channels together; the smoothing is chosen once for all pulls of the campaign.
+ * `sharing`: how many pulls are averaged into a side, for the final, adaptive smoothing; null for an even one.
+ */
 export function pullSpeeds(
   runs: readonly SpeedRun[],
   model: SpeedModel,
   forceN: (run: number, speedMps: number, accelerationMps2: number, t: number) => number,
   earlier: readonly (PullSpeed | null)[] | null,
+  sharing: number | null,
 ): { pulls: (PullSpeed | null)[]; smoothing: Smoothing | null } {
   const stretches: (SpeedStretch | null)[] = runs.map((run, index) => {
     const { pull } = run.segments;
@@ -55,7 +60,9 @@ export function pullSpeeds(
   });
   const present = stretches.filter((s) => s !== null);
   if (present.length === 0) return { pulls: runs.map(() => null), smoothing: null };
-  const smoothing = chooseSmoothing(present, floorS(runs, model));
+  const floor = floorS(runs, model);
+  const even = chooseSmoothing(present, floor);
+  const smoothing = sharing === null ? even : adaptiveSmoothing(present, even, sharing, floor);
   const pulls = stretches.map((stretch, index): PullSpeed | null => {
     const { pull } = runs[index].segments;
     if (!stretch || !pull) return null;

@@ -14,10 +14,13 @@ export interface SpeedSeries {
   weight: number;
 }
 
-/** How strongly speed is smoothed: penalty on the jerk's rate, relaxed by `relief` just after tip-in. */
+/** How the penalty varies along a stretch: a factor for each stretch and time; 1 = as `lambda` says. */
+export type PenaltyScale = (stretch: SpeedStretch, t: number) => number;
+
+/** How strongly speed is smoothed: λ on the squared third derivative of speed (the change of jerk). */
 export interface Smoothing {
   lambda: number;
-  relief: number;
+  scale: PenaltyScale | null;
 }
 
 /** A stretch to be smoothed; `tipInS` null when the load does not step at its start. */
@@ -54,18 +57,23 @@ export function speedStretch(
 
 /** The smoothed speed of a stretch. */
 export function smoothSpeed(stretch: SpeedStretch, smoothing: Smoothing): SplineFit {
-  const { tipInS } = stretch;
-  if (tipInS === null || smoothing.relief === 1) return solveSpline(stretch.system, smoothing.lambda);
-  return solveSpline(stretch.system, smoothing.lambda, (t) => reliefAt(t, tipInS, smoothing.relief));
-}
-
-function reliefAt(t: number, tipInS: number, relief: number): number {
-  return t < tipInS + TIP_IN_S ? 1 / relief : 1;
+  const { scale } = smoothing;
+  return solveSpline(stretch.system, smoothing.lambda, scale ? (t) => scale(stretch, t) : undefined);
 }
 
 /** The time constant of a penalty in seconds: (λ/density)^(1/6), the width of the smoother's kernel. */
 export function kernelWidthS(lambda: number, density: number): number {
   return (lambda / density) ** (1 / 6);
+}
+
+/** Mean information a second of some stretches. */
+export function meanDensity(stretches: readonly SpeedStretch[]): number {
+  return stretches.reduce((sum, s) => sum + s.density, 0) / stretches.length;
+}
+
+/** A penalty that is `relief` times weaker just after tip-in, where torque builds up fast. */
+function tipInRelief(relief: number): PenaltyScale {
+  return ({ tipInS }, t) => (tipInS !== null && t < tipInS + TIP_IN_S ? 1 / relief : 1);
 }
 
 /**
@@ -74,13 +82,13 @@ export function kernelWidthS(lambda: number, density: number): number {
  * or slow logs. Source: Wahba 1985, Annals of Statistics 13; Ruppert, Wand and Carroll 2003, chapter 4.
  */
 export function chooseSmoothing(stretches: readonly SpeedStretch[], floorS: number): Smoothing {
-  const density = stretches.reduce((sum, s) => sum + s.density, 0) / stretches.length;
-  let best: Smoothing = { lambda: density * floorS ** 6, relief: 1 };
+  const density = meanDensity(stretches);
+  let best: Smoothing = { lambda: density * floorS ** 6, scale: null };
   let bestScore = Number.POSITIVE_INFINITY;
   const hasTipIn = stretches.some((s) => s.tipInS !== null);
   for (let width = floorS; width < 12 * floorS && width < 1.2; width *= 1.15) {
     for (const relief of hasTipIn ? [1, 8, 64] : [1]) {
-      const smoothing = { lambda: density * width ** 6, relief };
+      const smoothing = { lambda: density * width ** 6, scale: relief === 1 ? null : tipInRelief(relief) };
       const score = restrictedLikelihood(stretches, smoothing);
       if (score < bestScore) {
         bestScore = score;
@@ -102,8 +110,7 @@ function restrictedLikelihood(stretches: readonly SpeedStretch[], smoothing: Smo
     const { basis } = fit;
     for (let k = 0; k + 3 < basis.count; k++) {
       const t = basis.start + (k + 0.5) * basis.spacing;
-      const relief = stretch.tipInS === null ? 1 : reliefAt(t, stretch.tipInS, smoothing.relief);
-      logs -= Math.log(smoothing.lambda * relief);
+      logs -= Math.log(smoothing.lambda * (smoothing.scale ? smoothing.scale(stretch, t) : 1));
     }
     objective += fit.objective;
     samples += stretch.system.used - 3;
