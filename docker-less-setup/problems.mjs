@@ -119,6 +119,15 @@ export function secretsLost({ folder, file }) {
   );
 }
 
+/** @param {{ settings: string[], folder: string }} facts */
+export function notDurable({ settings, folder }) {
+  const names = settings.join(", ");
+  return (
+    `The database in ${folder} has ${names} switched off, so what Twinpass acknowledges could be lost at a crash. ` +
+    `Twinpass does not run like that. Take the setting back (ALTER SYSTEM RESET, or ALTER ROLE … RESET, for ${names}).`
+  );
+}
+
 /** @param {{ pid: number, address: string }} facts */
 export function alreadyRunning({ pid, address }) {
   return (

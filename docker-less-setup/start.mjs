@@ -1,6 +1,5 @@
 import { demandNode } from "./node-version.mjs";
 
 demandNode();
-// Loaded only now: an old Node.js would stop at its imports without a plain sentence.
-const { serve } = await import("./serve.mjs");
-await serve();
+// Loaded only now, and without newer syntax: an old Node.js would stop here without a plain sentence.
+import("./serve.mjs").then(({ serve }) => serve());

@@ -1,6 +1,5 @@
 import { demandNode } from "./node-version.mjs";
 
 demandNode();
-// Loaded only now: an old Node.js would stop at its imports without a plain sentence.
-const { runTests } = await import("./run-tests.mjs");
-await runTests(process.argv.slice(2));
+// Loaded only now, and without newer syntax: an old Node.js would stop here without a plain sentence.
+import("./run-tests.mjs").then(({ runTests }) => runTests(process.argv.slice(2)));

@@ -62,6 +62,10 @@ const MESSAGES: Record<string, { text: string; says: string[] }> = {
     text: problems.secretsLost({ folder: ".data/pg", file: ".data/secrets.json" }),
     says: [".data/secrets.json", ".data/pg", "Put the file back"],
   },
+  notDurable: {
+    text: problems.notDurable({ settings: ["fsync"], folder: ".data/pg" }),
+    says: ["fsync", ".data/pg", "lost", "RESET"],
+  },
   alreadyRunning: {
     text: problems.alreadyRunning({ pid: 77, address: "http://localhost:3000" }),
     says: ["77", "http://localhost:3000", "kill 77"],
