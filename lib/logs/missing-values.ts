@@ -9,7 +9,7 @@ const STEADY_SHARE = 0.5;
 const FEWEST_SPACINGS = 9;
 
 /** True when a channel is mostly missing and what is there does not come at a steady rate of its own. */
-export function isMostlyMissing(timeS: Float64Array, values: Float64Array): boolean {
+function isMostlyMissing(timeS: Float64Array, values: Float64Array): boolean {
   const spacing: number[] = [];
   let last = Number.NaN;
   let present = 0;

@@ -21,7 +21,7 @@ export const LOG_REFUSALS = [
 ] as const;
 
 /** A packed log may grow to this size; more is refused before it is held in memory. */
-export const MAX_INFLATED_BYTES = 512 * 1024 * 1024;
+const MAX_INFLATED_BYTES = 256 * 1024 * 1024;
 
 export interface ReadLogOptions {
   /** Saved mapping of columns; wins over what the file says. */
@@ -30,16 +30,18 @@ export interface ReadLogOptions {
   fileName?: string;
   /** Driven axle: tells front and rear wheel speeds apart. Without it they stay free channels, with a problem entry. */
   drive?: "FWD" | "RWD" | "AWD";
+  /** Size that a packed log may grow to; 256 MiB when absent. */
+  maxInflatedBytes?: number;
 }
 
-function inflate(bytes: Uint8Array): Uint8Array {
+function inflate(bytes: Uint8Array, limit: number): Uint8Array {
   try {
-    return gunzipSync(bytes, { maxOutputLength: MAX_INFLATED_BYTES });
+    return gunzipSync(bytes, { maxOutputLength: limit });
   } catch (error) {
     if (error instanceof RangeError) {
       throw new FileRefusedError(
         "inflates_too_large",
-        `The packed log grows beyond ${MAX_INFLATED_BYTES / 1024 / 1024} MB. Split the recording and upload the parts.`,
+        `The packed log grows beyond ${Math.floor(limit / 1024 / 1024)} MB. Split the recording and upload the parts.`,
       );
     }
     throw new FileRefusedError(
@@ -58,7 +60,7 @@ export function readLog(bytes: Uint8Array, options: ReadLogOptions = {}): LogTab
   let content = bytes;
   let sniffed = sniffLog(content);
   if (sniffed.kind === "gzip") {
-    content = inflate(bytes);
+    content = inflate(bytes, options.maxInflatedBytes ?? MAX_INFLATED_BYTES);
     sniffed = sniffLog(content);
   }
   if (sniffed.kind === "empty")

@@ -6,7 +6,7 @@ const SPEED_CHANNELS: readonly KnownChannel[] = ["wheel_speed_undriven", "gps_sp
 const MOVED_MPS = 1 / 3.6;
 
 /** Road speed channels of a log, best first: undriven wheel, GPS, driven wheel. */
-export function roadSpeedChannels(table: LogTable): LogChannel[] {
+function roadSpeedChannels(table: LogTable): LogChannel[] {
   return SPEED_CHANNELS.flatMap((name) => table.channels.filter((channel) => channel.channel === name));
 }
 

@@ -3,7 +3,7 @@ import { FOOT_M, STANDARD_GRAVITY_MPS2 } from "@/lib/units/constants";
 /** Initial vehicle movement in m: 1 ft from rest, where the second clock starts. Source: SAE J1491 (2006-07) 3.3. */
 export const INITIAL_MOVEMENT_M = FOOT_M;
 /** Length over which trap speed is the mean, in m: 66 ft before the line (common practice, no source). */
-export const TRAP_LENGTH_M = 66 * FOOT_M;
+const TRAP_LENGTH_M = 66 * FOOT_M;
 /** A crossing counts when the speed stays above for this long, in s. */
 const STAYS_ABOVE_S = 0.2;
 

@@ -80,7 +80,7 @@ export function intervalForceN(massKg: number, deltaMps: number, timeS: number):
 }
 
 /** Harmonic mean: the right mean of coast times, since force goes with 1/t (the arithmetic one is biased). */
-export function harmonicMeanS(timesS: readonly number[]): number {
+function harmonicMeanS(timesS: readonly number[]): number {
   return timesS.length / timesS.reduce((sum, t) => sum + 1 / t, 0);
 }
 

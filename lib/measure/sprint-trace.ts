@@ -63,7 +63,7 @@ function noiseMps({ values }: SampledChannel): number {
  * How GPS follows the wheel: lag in s by cross-correlation of the speed changes over 0.2 s, and the wheel's scale
  * against GPS (median ratio above 10 m/s) with its uncertainty. Null when they do not overlap well.
  */
-export function compareWithGps(
+function compareWithGps(
   wheel: SampledChannel,
   gps: SampledChannel,
 ): { lagS: number; scale: number; uncertainty: number } | null {

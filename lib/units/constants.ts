@@ -13,7 +13,7 @@ export const INCH_M = 0.0254;
 /** International mile, m: exact (1959), 5280 ft. */
 export const MILE_M = 1609.344;
 /** Nautical mile, m: exact (First International Extraordinary Hydrographic Conference 1929). */
-export const NAUTICAL_MILE_M = 1852;
+const NAUTICAL_MILE_M = 1852;
 /** Avoirdupois pound, kg: exact (1959). */
 export const POUND_KG = 0.45359237;
 

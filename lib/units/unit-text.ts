@@ -16,6 +16,7 @@ import {
   ZERO_CELSIUS_K,
 } from "@/lib/units/constants";
 
+/** Canonical units: s, m/s, 1/min, %, kPa, °C, °, m, m/s², 1. */
 export type Dimension =
   | "time"
   | "speed"
@@ -27,20 +28,6 @@ export type Dimension =
   | "length"
   | "acceleration"
   | "number";
-
-/** Canonical unit of each dimension: what every value is stored in after reading. */
-export const CANONICAL_UNIT: Readonly<Record<Dimension, string>> = {
-  time: "s",
-  speed: "m/s",
-  rotation: "1/min",
-  ratio: "%",
-  pressure: "kPa",
-  temperature: "°C",
-  angle: "°",
-  length: "m",
-  acceleration: "m/s²",
-  number: "1",
-};
 
 /** How a value in the written unit becomes canonical: `canonical = value × factor + offset`. */
 export interface ParsedUnit {

@@ -5,7 +5,7 @@ import { describe, expect, it } from "vitest";
 import { changedRanges } from "@/lib/calibration/changed-ranges";
 import { imageIdentity } from "@/lib/calibration/image-identity";
 import { readImage } from "@/lib/calibration/read-image";
-import type { CalibrationImage } from "@/lib/calibration/types";
+import { type CalibrationImage, IMAGE_REFUSALS } from "@/lib/calibration/types";
 import { FileRefusedError } from "@/lib/errors";
 import { hexRecord, sRecord } from "../../support/record-files";
 
@@ -29,7 +29,10 @@ const refusal = (act: () => unknown): FileRefusedError => {
   try {
     act();
   } catch (error) {
-    if (error instanceof FileRefusedError) return error;
+    if (error instanceof FileRefusedError) {
+      expect(IMAGE_REFUSALS).toContain(error.code);
+      return error;
+    }
     throw error;
   }
   throw new Error("was read");

@@ -6,7 +6,7 @@ import { FileRefusedError } from "@/lib/errors";
 import { splitQuoted } from "@/lib/logs/delimited-rows";
 import { logReport } from "@/lib/logs/log-report";
 import { parseNumber } from "@/lib/logs/parse-number";
-import { type ReadLogOptions, readLog } from "@/lib/logs/read-log";
+import { LOG_REFUSALS, type ReadLogOptions, readLog } from "@/lib/logs/read-log";
 
 const bytes = (text: string) => new TextEncoder().encode(text);
 const read = (text: string, options?: ReadLogOptions) => readLog(bytes(text), options);
@@ -14,7 +14,10 @@ const refusal = (act: () => unknown) => {
   try {
     act();
   } catch (error) {
-    if (error instanceof FileRefusedError) return error.code;
+    if (error instanceof FileRefusedError) {
+      expect(LOG_REFUSALS).toContain(error.code);
+      return error.code;
+    }
     throw error;
   }
   return "read";
@@ -241,6 +244,11 @@ describe("containers and other formats", () => {
     expect(readLog(packed).rowsRead).toBe(20);
     expect(refusal(() => readLog(packed.subarray(0, 40)))).toBe("gzip_damaged");
     expect(refusal(() => readLog(gzipSync(packed)))).toBe("format_not_supported");
+  });
+  it("a packed file that grows beyond its bound is refused before it is held (10 MB in 10 kB)", () => {
+    const bomb = gzipSync(new Uint8Array(10 * 1024 * 1024));
+    expect(bomb.length).toBeLessThan(20_000);
+    expect(refusal(() => readLog(bomb, { maxInflatedBytes: 1024 * 1024 }))).toBe("inflates_too_large");
   });
   it.each([
     ["MDF", "MDF     4.10    writer  "],
