@@ -1,0 +1,30 @@
+import type { CampaignResult, Leg } from "@/lib/measure/types";
+
+/** One counted run as the gates see it; null = not known. */
+export interface EvidenceRun {
+  /** The same id as in the result. */
+  id: string;
+  side: "A" | "B";
+  leg: Leg | null;
+  order: number | null;
+  roadDay: string | null;
+  gear: number | null;
+  massKg: number | null;
+  tempC: number | null;
+  pressureHpa: number | null;
+}
+
+/** What the gates of a revision are evaluated on: the comparison with what stands, and the conditions of its runs. */
+export interface GateEvidence {
+  /** Result of the comparison under the standard settings, A = what stands, B = the candidate; null when there is none. */
+  result: CampaignResult | null;
+  /** All counted runs of both sides, usable or not. */
+  runs: readonly EvidenceRun[];
+  redlineRpm: number;
+}
+
+/** The counted runs that the analysis found usable as pulls. */
+export function usableRuns({ result, runs }: GateEvidence): EvidenceRun[] {
+  const usable = new Set(result?.runs.flatMap((run) => (run.usable && run.segments?.pull ? [run.id] : [])));
+  return runs.filter((run) => usable.has(run.id));
+}
