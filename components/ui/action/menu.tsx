@@ -2,18 +2,21 @@
 
 import { ChevronDown } from "lucide-react";
 import { type ReactNode, useEffect, useRef } from "react";
+import { cn } from "@/lib/cn";
 
 export interface MenuProps {
   /** What the closed menu shows. */
   label: ReactNode;
   /** Name for assistive technology when `label` alone does not say it. */
   name?: string;
+  /** Which edge of the label the panel keeps to. */
+  align?: "left" | "right";
   /** Links, buttons or small forms, one under the other. */
   children: ReactNode;
 }
 
-/** A small panel that opens under its label. Opens without script; Escape, a click outside or leaving by Tab close it. */
-export function Menu({ label, name, children }: MenuProps) {
+/** A small panel that opens under its label. Opens without script; Escape, a click outside, leaving by Tab or going somewhere close it. */
+export function Menu({ label, name, align = "right", children }: MenuProps) {
   const box = useRef<HTMLDetailsElement>(null);
 
   useEffect(() => {
@@ -27,10 +30,17 @@ export function Menu({ label, name, children }: MenuProps) {
       const outside = event.target instanceof Node && !details.contains(event.target);
       if (outside && !(event instanceof KeyboardEvent)) details.open = false;
     };
+    const leave = (event: Event) => {
+      const details = box.current;
+      if (details && event.target instanceof Element && event.target.closest("a")) details.open = false;
+    };
+    const panel = box.current;
+    panel?.addEventListener("click", leave);
     document.addEventListener("pointerdown", close);
     document.addEventListener("focusin", close);
     document.addEventListener("keydown", close);
     return () => {
+      panel?.removeEventListener("click", leave);
       document.removeEventListener("pointerdown", close);
       document.removeEventListener("focusin", close);
       document.removeEventListener("keydown", close);
@@ -46,7 +56,12 @@ export function Menu({ label, name, children }: MenuProps) {
         {label}
         <ChevronDown aria-hidden size={16} className="shrink-0 text-ink2 group-open:rotate-180" />
       </summary>
-      <div className="absolute right-0 z-30 mt-1 flex w-max min-w-48 max-w-[calc(100vw-2rem)] flex-col rounded border border-edge bg-surface p-1 text-15">
+      <div
+        className={cn(
+          "absolute z-30 mt-1 flex w-max min-w-48 max-w-[calc(100vw-2rem)] flex-col rounded border border-edge bg-surface p-1 text-15",
+          align === "right" ? "right-0" : "left-0",
+        )}
+      >
         {children}
       </div>
     </details>

@@ -5,14 +5,16 @@ import { authorise, type Ctx } from "@/lib/services/ctx";
 import { isInFlight, type LineageRevision, loadLineage } from "@/lib/services/programmes/lineage";
 import { type NextStep, nextStepFor } from "@/lib/services/programmes/waiting";
 
+type ListedRevision = Pick<LineageRevision, "id" | "number" | "title" | "state" | "runs" | "stoodFrom">;
+
 export interface ProgrammeLine {
   id: string;
   name: string;
   goal: string;
   sample: boolean;
   archivedAt: Date | null;
-  stands: Pick<LineageRevision, "id" | "number" | "title" | "stoodFrom"> | null;
-  inFlight: Pick<LineageRevision, "id" | "number" | "title" | "state" | "runs">[];
+  stands: ListedRevision | null;
+  inFlight: ListedRevision[];
   lastRunAt: Date | null;
 }
 
@@ -24,6 +26,11 @@ export interface WaitingLine {
   revisionTitle: string;
   runs: number;
   step: NextStep;
+}
+
+/** Only what a list shows leaves this verb. */
+function pick({ id, number, title, state, runs, stoodFrom }: LineageRevision): ListedRevision {
+  return { id, number, title, state, runs, stoodFrom };
 }
 
 function newest(dates: (Date | null)[]): Date | null {
@@ -44,25 +51,30 @@ export async function listProgrammes(
     rows.map((row) => row.id),
   );
   const otherLeads = await countOthersWithRole(ctx.db, { workspaceId, userId, role: "lead" });
-  const programmes = rows.map(({ id, name, goal, sample, archivedAt, standingRevisionId }) => {
-    const own = lineage.filter((revision) => revision.programmeId === id);
-    return {
-      ...{ id, name, goal, sample, archivedAt },
-      stands: own.find((revision) => revision.id === standingRevisionId) ?? null,
-      inFlight: own.filter(isInFlight),
-      lastRunAt: newest(own.map((revision) => revision.newestRunAt)),
-    };
+  const known = rows.map((row) => {
+    const own = lineage.filter((revision) => revision.programmeId === row.id);
+    return { row, own, flying: own.filter(isInFlight) };
   });
-  const waiting = programmes
-    .filter((programme) => programme.archivedAt === null)
-    .flatMap((programme) =>
-      programme.inFlight.flatMap((revision): WaitingLine[] => {
+  const waiting = known
+    .filter(({ row }) => row.archivedAt === null)
+    .flatMap(({ row, flying }) =>
+      flying.flatMap((revision): WaitingLine[] => {
         const step = nextStepFor(ctx, revision, { otherActiveLead: otherLeads > 0 });
         if (!step) return [];
         const { id: revisionId, number: revisionNumber, title: revisionTitle, runs } = revision;
-        const { id: programmeId, name: programmeName } = programme;
+        const { id: programmeId, name: programmeName } = row;
         return [{ programmeId, programmeName, revisionId, revisionNumber, revisionTitle, runs, step }];
       }),
     );
+  const programmes = known.map(({ row, own, flying }): ProgrammeLine => {
+    const { id, name, goal, sample, archivedAt, standingRevisionId } = row;
+    const standing = own.find((revision) => revision.id === standingRevisionId);
+    return {
+      ...{ id, name, goal, sample, archivedAt },
+      stands: standing ? pick(standing) : null,
+      inFlight: flying.map(pick),
+      lastRunAt: newest(own.map((revision) => revision.newestRunAt)),
+    };
+  });
   return { programmes, waiting };
 }
