@@ -10,7 +10,7 @@ module.exports = {
   forbidden: [
     rule("no-circular", {}, { circular: true }),
     rule("no-unresolved", {}, { couldNotResolve: true, pathNot: "^server-only$" }),
-    rule("app-is-a-leaf", { pathNot: "^app/" }, { path: "^app/" }),
+    rule("app-is-a-leaf", { pathNot: "^(app|tests)/" }, { path: "^app/" }),
     rule("app-reads-through-services", { path: "^app/" }, { path: "^(db|storage)/" }),
     rule(
       "client-never-reaches-server",
@@ -89,7 +89,7 @@ module.exports = {
     rule("product-never-imports-tests", { pathNot: "^tests/" }, { path: "^tests/" }),
     rule(
       "setup-runs-before-packages-are-there",
-      { path: "^docker-less-setup/" },
+      { path: "^docker-less-setup/", pathNot: "\\.config\\.mts$" },
       { dependencyTypesNot: ["core", "local", "type-only"], pathNot: "^(docker-less-setup|tests)/" },
     ),
     rule("setup-is-apart", { path: "^docker-less-setup/" }, { path: "^(app|components|db|lib|storage)/" }),

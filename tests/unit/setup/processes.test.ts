@@ -29,7 +29,7 @@ function service(script: string, graceMs = 5_000) {
     name: "worker",
     command: [process.execPath, "-e", script],
     cwd: folder,
-    env: process.env,
+    env: { NODE_ENV: "test" },
     logFile,
     graceMs,
     say: (line) => said.push(line),
@@ -126,7 +126,7 @@ describe("a supervised process", () => {
   it("ends with the process that started it, even by kill -9", async () => {
     const script = `
       const { superviseService } = await import(${JSON.stringify(MODULE)});
-      const { pid } = superviseService({ name: "worker", command: ["sleep", "60"], cwd: "/", env: process.env,
+      const { pid } = superviseService({ name: "worker", command: ["sleep", "60"], cwd: "/", env: { NODE_ENV: "test" },
         logFile: ${JSON.stringify(join(folder, "sleep.log"))}, graceMs: 1000, say: console.log });
       setTimeout(() => console.log(pid()), 300);`;
     const parent = spawn(process.execPath, ["--input-type=module", "-e", script]);
