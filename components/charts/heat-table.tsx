@@ -42,9 +42,9 @@ export function HeatTable({ caption, x, y, cells, unit, decimals, unvisited, not
   const axisHead = (axis: HeatAxis) => `${axis.label}${axis.unit ? `, ${axis.unit}` : ""}`;
   return (
     <div className="flex flex-col gap-2">
-      {/* biome-ignore lint/a11y/useSemanticElements: a named scroll region around a table, not a part of the outline */}
+      {/* biome-ignore lint/a11y/useSemanticElements: a named scroller around a table, not a set of fields */}
       <div
-        role="region"
+        role="group"
         aria-label={caption}
         // biome-ignore lint/a11y/noNoninteractiveTabindex: what scrolls must be reachable by key (WCAG 2.1.1)
         tabIndex={0}

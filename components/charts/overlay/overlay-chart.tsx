@@ -148,7 +148,7 @@ export function OverlayChart({
           aria-label={`${quantity.label} of A ${data.labelA} and B ${data.labelB} over engine speed, and their difference. ${summary}`}
           viewBox={`0 0 ${width} ${OVERLAY_BOX.height}`}
           height={OVERLAY_BOX.height}
-          className="block w-full"
+          className="isolate block w-full"
         >
           <OverlayPlot
             {...parts}

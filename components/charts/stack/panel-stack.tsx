@@ -93,7 +93,7 @@ export function PanelStack({ title, data, summary, notes, caption, rest, still =
           aria-label={`${caption}. ${summary}`}
           viewBox={`0 0 ${width} ${layout.height}`}
           height={layout.height}
-          className="block w-full"
+          className="isolate block w-full"
         >
           <StackPlot data={data} layout={layout} fills={fills} clipId={`${base}clip`} />
         </svg>

@@ -29,7 +29,7 @@ export function DescriptionList({ items, layout = "rows", className }: Descripti
         <div
           // biome-ignore lint/suspicious/noArrayIndexKey: fixed order, terms may be nodes
           key={index}
-          className="grid grid-cols-[minmax(6rem,2fr)_3fr] gap-x-4 border-line border-t py-2 first:border-t-0 first:pt-0 last:pb-0"
+          className="grid grid-cols-[minmax(5rem,2fr)_minmax(0,3fr)] gap-x-4 border-line border-t py-2 first:border-t-0 first:pt-0 last:pb-0"
         >
           <dt className="text-ink2">{item.term}</dt>
           <dd className="min-w-0 break-words">{item.description}</dd>

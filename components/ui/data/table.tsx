@@ -52,9 +52,9 @@ export function Table<Row>({
 }: TableProps<Row>) {
   const pad = dense ? "px-2 py-1.5" : "px-2 py-2.5";
   return (
-    // biome-ignore lint/a11y/useSemanticElements: a named scroll region around a table, not a part of the outline
+    // biome-ignore lint/a11y/useSemanticElements: a named scroller around a table, not a set of fields
     <div
-      role="region"
+      role="group"
       aria-label={caption}
       // biome-ignore lint/a11y/noNoninteractiveTabindex: what scrolls must be reachable by key (WCAG 2.1.1)
       tabIndex={0}

@@ -80,7 +80,7 @@ describe("Table", () => {
     render(
       <Table caption="Evidence" columns={columns} rows={[]} rowKey={(r) => r.name} empty="No runs yet." />,
     );
-    expect(screen.getByRole("region", { name: "Evidence" }).tabIndex).toBe(0);
+    expect(screen.getByRole("group", { name: "Evidence" }).tabIndex).toBe(0);
     expect(screen.getByText("No runs yet.")).toBeDefined();
   });
 });
