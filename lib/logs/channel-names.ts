@@ -63,7 +63,7 @@ const RULES: readonly [KnownChannel, RegExp][] = [
   ],
   [
     "engine_speed",
-    /\b(engine|eng|motor|crank)\b.*\b(speed|rpm|drehzahl|revs?)\b|^rpm$|^motordrehzahl$|^drehzahl$|^n ?mot(or)?$|^revs$|^engine speed$/,
+    /\b(engine|eng|motor|crank)\b.*\b(speed|rpm|drehzahl|revs?)\b|^rpm$|^motordrehzahl$|^drehzahl$|^n ?mot(or)?$|^n$|^revs$|^engine speed$/,
   ],
   [
     "pedal",
@@ -101,9 +101,9 @@ const RULES: readonly [KnownChannel, RegExp][] = [
 const WHEEL =
   /\bwheel\b|\bwhl\b|\brad\b|\bradgeschwindigkeit\b|\braddrehzahl\b|\bundriven\b|\bnon driven\b|\bdriven\b|\bangetrieben\b/;
 const VEHICLE_SPEED =
-  /^(vehicle|veh|car|road|dyno|cyc|ground|obd|ecu)? ?(speed|spd|velocity|mps|kmh|mph|geschwindigkeit)$|^fahrgeschwindigkeit$|^vss$|^v ?veh(icle)?$/;
+  /^(vehicle|veh|car|road|dyno|cyc|ground|obd|ecu)? ?(speed|spd|velocity|mps|kmh|mph|geschwindigkeit)( (obd|ecu|can))?$|^v$|^fahrgeschwindigkeit$|^vss$|^v ?veh(icle)?$/;
 const TIME =
-  /^(time|zeit|elapsed|elapsed time|log time|timestamp|time stamp|date ?time|uhrzeit|clock|zeitstempel|cyc secs?|cycle secs?|secs?|seconds)\b|^t$/;
+  /^((device|gps|utc|local|log|elapsed|relative|session) )?(time|zeit)\b|^(elapsed|timestamp|time stamp|date ?time|uhrzeit|clock|zeitstempel|cyc secs?|cycle secs?|secs?|seconds)\b|^t$/;
 
 function fold(title: string): string {
   return title

@@ -16,6 +16,7 @@ export const LOG_REFUSALS = [
   "too_few_samples",
   "format_not_supported",
   "ambiguous_decimal",
+  "too_many_columns",
   "inflates_too_large",
   "gzip_damaged",
 ] as const;

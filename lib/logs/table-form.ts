@@ -1,4 +1,5 @@
 import { FileRefusedError } from "@/lib/errors";
+import { isTimeTitle } from "@/lib/logs/channel-names";
 import { type DelimitedRow, firstRows } from "@/lib/logs/delimited-rows";
 import { isMissingMark, parseNumber } from "@/lib/logs/parse-number";
 import type { ChannelKey } from "@/lib/logs/types";
@@ -21,6 +22,9 @@ export interface TableForm {
 const SAMPLE_ROWS = 200;
 /** Rows by which delimiters are judged. */
 const DELIMITER_ROWS = 60;
+/** A log has tens of columns; the bounds keep a made-up file from claiming memory. */
+const MAX_COLUMNS = 2000;
+const MAX_TITLE_LENGTH = 200;
 const DELIMITERS = ["\t", ";", "|", ","] as const;
 const TIME_LIKE = /^\d{1,4}[-_/.:]\d{1,2}[-_/.:]\d{1,4}|^\d{1,2}:\d{2}([.,]\d+)?$/;
 
@@ -107,22 +111,37 @@ function findDecimal(rows: readonly DelimitedRow[]): "." | "," {
 }
 
 const hasNumber = (cells: readonly string[]) => cells.some((cell) => looksNumeric(cell));
+const stripBrackets = (cell: string) => cell.trim().replace(/^[([{]\s*|\s*[)\]}]$/g, "");
+
+/** A row of values: at least half of its filled cells are numbers or missing marks, at least one a number. */
+function isDataRow(cells: readonly string[]): boolean {
+  const filled = cells.filter((cell) => cell.trim() !== "");
+  return (
+    hasNumber(filled) &&
+    2 * filled.filter((cell) => looksNumeric(cell) || isMissingMark(cell)).length >= filled.length
+  );
+}
+
+/** A row of titles has no number; some loggers number their columns, but then the time is still named. */
+function isTitleRow(cells: readonly string[]): boolean {
+  return !hasNumber(cells) || (!isDataRow(cells) && cells.some((cell) => isTimeTitle(cell)));
+}
 
 function isUnitRow(cells: readonly string[]): boolean {
   const filled = cells.filter((cell) => cell.trim() !== "");
   if (filled.length === 0 || hasNumber(cells)) return false;
-  const units = filled.filter((cell) => parseUnit(cell.replace(/^[([{]\s*|\s*[)\]}]$/g, "")) !== null);
+  const units = filled.filter((cell) => parseUnit(stripBrackets(cell)) !== null);
   return units.length >= filled.length / 2;
 }
 
 /** The row of titles: the nearest row without a number above the data, as wide as the data. -1: there is none. */
 function findHeader(rows: readonly DelimitedRow[], width: number): number {
-  const first = rows.findIndex((row) => Math.abs(row.cells.length - width) <= 1 && hasNumber(row.cells));
+  const first = rows.findIndex((row) => Math.abs(row.cells.length - width) <= 1 && isDataRow(row.cells));
   const limit = first < 0 ? rows.length : first;
   for (let i = 0; i < limit; i++) {
     const cells = rows[i]?.cells ?? [];
     const filled = filledWidth(cells);
-    if (filled < Math.max(2, width - 1) || hasNumber(cells)) continue;
+    if (filled < Math.max(2, width - 1) || !isTitleRow(cells)) continue;
     if (/^\s*(#|\/\/|;|%)/.test(cells[0] ?? "") && i + 1 < limit) {
       const next = rows[i + 1]?.cells ?? [];
       if (!hasNumber(next) && filledWidth(next) >= width - 1 && !isUnitRow(next)) continue;
@@ -134,7 +153,7 @@ function findHeader(rows: readonly DelimitedRow[], width: number): number {
 
 /**
  * Finds delimiter, decimal sign, header row and unit row of a delimited text; each may be stated in the key.
- * Throws FileRefusedError `no_data_rows` or `ambiguous_decimal`.
+ * Throws FileRefusedError `no_data_rows`, `ambiguous_decimal` or `too_many_columns`.
  */
 export function findTableForm(text: string, key: ChannelKey = {}): TableForm {
   const stated = /^sep=(.)\r?\n/i.exec(text);
@@ -155,15 +174,23 @@ export function findTableForm(text: string, key: ChannelKey = {}): TableForm {
     );
   }
   const titles = header
-    ? header.cells.slice(0, Math.max(filledWidth(header.cells), 1)).map((title) => title.trim())
+    ? header.cells
+        .slice(0, Math.max(filledWidth(header.cells), 1))
+        .map((title) => title.trim().slice(0, MAX_TITLE_LENGTH))
     : Array.from({ length: Math.max(1, width) }, (_, i) => `column ${i + 1}`);
+  if (titles.length > MAX_COLUMNS) {
+    throw new FileRefusedError(
+      "too_many_columns",
+      `The log has ${titles.length} columns; at most ${MAX_COLUMNS} are read. Export fewer channels.`,
+    );
+  }
   if (header && /^\s*(#|\/\/|%)\s*/.test(titles[0] ?? ""))
     titles[0] = (titles[0] ?? "").replace(/^\s*(#|\/\/|%)\s*/, "");
   return {
     delimiter,
     decimal: key.decimal ?? findDecimal(data),
     titles,
-    unitRow: withUnits && next ? next.cells.map((cell) => cell.trim()) : null,
+    unitRow: withUnits && next ? next.cells.map(stripBrackets) : null,
     lastHeadLine: withUnits && next ? next.line : (header?.line ?? (stated ? 1 : 0)),
     preambleLines: header ? header.line - 1 : 0,
   };

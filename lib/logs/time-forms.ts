@@ -32,19 +32,24 @@ const COUNTS_PER_S: Readonly<Record<TimeForm, number>> = {
   epoch_us: 1e6,
   epoch_ns: 1e9,
 };
-const CLOCK = /^(\d{1,2}):(\d{2}):(\d{2})(?:[.,:](\d{1,9}))?$/;
+const CLOCK = /^(\d{1,2}):(\d{2}):(\d{2})(?:[.,:](\d{1,9}))?\s*([AP]M)?$/i;
 const SHORT_CLOCK = /^(\d{1,3}):(\d{2})(?:[.,](\d{1,9}))?$/;
-const YEAR_FIRST =
-  /^(\d{4})[-/._](\d{1,2})[-/._](\d{1,2})[T _](\d{1,2})[:_](\d{2})[:_](\d{2})(?:[.,_:](\d{1,9}))?\s*(Z|UTC|[+-]\d{2}:?\d{2})?$/i;
-const DAY_FIRST = /^(\d{1,2})\.(\d{1,2})\.(\d{4})[T _,]+(\d{1,2}):(\d{2}):(\d{2})(?:[.,:](\d{1,9}))?$/;
+const YEAR_FIRST = /^(?<y>\d{4})[-/._](?<m>\d{1,2})[-/._](?<d>\d{1,2})[T _](?<rest>.+)$/i;
+const DAY_FIRST = /^(?<d>\d{1,2})\.(?<m>\d{1,2})\.(?<y>\d{4})[T _,]+(?<rest>.+)$/;
+const DAY_NAME = /^(?<d>\d{1,2})[- ](?<name>[a-z]{3})[a-z]*\.?[- ](?<y>\d{4})[T _,]+(?<rest>.+)$/i;
+const SLASHES = /^(?<m>\d{1,2})\/(?<d>\d{1,2})\/(?<y>\d{4})[T _,]+(?<rest>.+)$/;
+const ZONE = /\s*(Z|UTC|[+-]\d{2}:?\d{2})$/i;
+const MONTHS = ["jan", "feb", "mar", "apr", "may", "jun", "jul", "aug", "sep", "oct", "nov", "dec"];
 
 const fraction = (digits: string | undefined) => (digits ? Number(`0.${digits}`) : 0);
 
 function clockSeconds(cell: string): number | null {
   const long = CLOCK.exec(cell);
   if (long) {
-    if (Number(long[2]) > 59 || Number(long[3]) > 60) return null;
-    return Number(long[1]) * 3600 + Number(long[2]) * 60 + Number(long[3]) + fraction(long[4]);
+    let hour = Number(long[1]);
+    if (Number(long[2]) > 59 || Number(long[3]) > 60 || hour > 24) return null;
+    if (long[5]) hour = (hour % 12) + (long[5].toUpperCase() === "PM" ? 12 : 0);
+    return hour * 3600 + Number(long[2]) * 60 + Number(long[3]) + fraction(long[4]);
   }
   const short = SHORT_CLOCK.exec(cell);
   if (short)
@@ -52,22 +57,34 @@ function clockSeconds(cell: string): number | null {
   return null;
 }
 
-/** Milliseconds since 1970: whole numbers stay exact, which seconds with a fraction would not. */
+/**
+ * Milliseconds since 1970: whole numbers stay exact, which seconds with a fraction would not. Slashes are month first
+ * unless that is no date; only differences are used, so the order matters only where the day changes.
+ */
 function isoMilliseconds(cell: string): number | null {
-  let parts = YEAR_FIRST.exec(cell);
-  let order: [number, number, number] = [1, 2, 3];
-  if (!parts) {
-    parts = DAY_FIRST.exec(cell);
-    order = [3, 2, 1];
-  }
+  const parts = (YEAR_FIRST.exec(cell) ?? DAY_FIRST.exec(cell) ?? DAY_NAME.exec(cell) ?? SLASHES.exec(cell))
+    ?.groups;
   if (!parts) return null;
-  const [year, month, day] = order.map((i) => Number(parts?.[i])) as [number, number, number];
-  const [hour, minute, second] = [Number(parts[4]), Number(parts[5]), Number(parts[6])];
-  if (month < 1 || month > 12 || day < 1 || day > 31 || hour > 24 || minute > 59 || second > 60) return null;
-  let base = Date.UTC(year, month - 1, day, hour, minute, second);
-  const zone = /^([+-])(\d{2}):?(\d{2})$/.exec(parts[8] ?? "");
-  if (zone) base -= (zone[1] === "-" ? -1 : 1) * (Number(zone[2]) * 3600 + Number(zone[3]) * 60) * 1000;
-  return base + fraction(parts[7]) * 1000;
+  let [year, month, day] = [Number(parts.y), Number(parts.m), Number(parts.d)];
+  if (parts.name) month = MONTHS.indexOf(parts.name.toLowerCase()) + 1;
+  if (month > 12 && day <= 12) [month, day] = [day, month];
+  if (month < 1 || month > 12 || day < 1 || day > 31) return null;
+  const zone = ZONE.exec(parts.rest)?.[1] ?? "";
+  const clock = parts.rest
+    .replace(ZONE, "")
+    .replace(
+      /^(\d{1,2})_(\d{2})_(\d{2})(?:_(\d+))?$/,
+      (_, h, m, s, f) => `${h}:${m}:${s}${f ? `.${f}` : ""}`,
+    );
+  const long = CLOCK.exec(clock);
+  const seconds = long === null ? null : clockSeconds(clock);
+  if (long === null || seconds === null) return null;
+  const offset = /^([+-])(\d{2}):?(\d{2})$/.exec(zone);
+  const shiftS = offset
+    ? (offset[1] === "-" ? -1 : 1) * (Number(offset[2]) * 3600 + Number(offset[3]) * 60)
+    : 0;
+  const wholeS = Math.floor(seconds) - shiftS;
+  return Date.UTC(year, month - 1, day) + wholeS * 1000 + fraction(long[4]) * 1000;
 }
 
 /** One time cell in the counts of its form; NaN when it is missing or not of this form. `clock` counts from midnight. */

@@ -228,12 +228,35 @@ describe("time", () => {
     ["underscores", (i: number) => `2030_12_01_23_59_59_${String(100 + i * 10).padStart(3, "0")}`, "iso"],
     ["offset", (i: number) => `2030-12-01T23:59:59.${String(100 + i * 10).padStart(3, "0")}+01:00`, "iso"],
     ["minutes and seconds", (i: number) => `04:59.${String(100 + i * 10).padStart(3, "0")}`, "clock"],
+    ["month by name", (i: number) => `01-Dec-2030 23:59:59.${String(100 + i * 10).padStart(3, "0")}`, "iso"],
+    ["slashes", (i: number) => `12/31/2030 23:59:59.${String(100 + i * 10).padStart(3, "0")}`, "iso"],
+    [
+      "forenoon and afternoon",
+      (i: number) => `11:59:59.${String(100 + i * 10).padStart(3, "0")} PM`,
+      "clock",
+    ],
     ["epoch s", (i: number) => `1893495600.${String(100 + i * 10).padStart(3, "0")}`, "epoch_s"],
   ])("%s", (_, time, form) => {
     const table = read(rows("Time;GPS speed [m/s];Engine speed [rpm]", (i) => `${time(i)};30;2000`));
     expect(table.time.form).toBe(form);
     expect(table.time.toS).toBeCloseTo(0.19, 6);
     expect(table.time.rateHz).toBeCloseTo(100, 3);
+  });
+});
+
+describe("titles", () => {
+  it.each([
+    ["v;n", "km/h;1/min", ["wheel_speed_driven", "engine_speed"]],
+    ["RPM;Speed GPS", "[1/min];[km/h]", ["engine_speed", "gps_speed"]],
+    ["Motordrehzahl;Ladedruck", "U/min;mbar", ["engine_speed", "manifold_pressure_gauge"]],
+    ["TPS;APP;CLT;IAT", "%;%;°C;°F", ["throttle", "pedal", "coolant_temperature", "intake_temperature"]],
+    ["Speed (OBD);Spark advance", "mph;°", ["wheel_speed_driven", "ignition_advance"]],
+  ])("%s", (titles, units, channels) => {
+    const width = channels.length;
+    const text = rows(`Device Time;${titles}\ns;${units}`, (i) =>
+      [i / 10, ...Array(width).fill(5)].join(";"),
+    );
+    expect(read(text).channels.map((c) => c.channel)).toEqual(channels);
   });
 });
 
@@ -259,6 +282,10 @@ describe("containers and other formats", () => {
     ["JSON", '{"a": 1}'],
   ])("%s is refused by name", (_, content) => {
     expect(refusal(() => read(content))).toBe("format_not_supported");
+  });
+  it("a file with more columns than any logger has is refused before memory is claimed", () => {
+    const wide = rows(`Time [s],${"x,".repeat(3000)}y`, (i) => `${i / 10},${"1,".repeat(3000)}2`);
+    expect(refusal(() => read(wide))).toBe("too_many_columns");
   });
   it("a first line sep=; states the delimiter", () => {
     expect(read(`sep=;\n${rows("Time [s];GPS speed [km/h]", (i) => `${i / 10};36.5`)}`).delimiter).toBe(";");
