@@ -27,7 +27,7 @@ async function readLogs(
   const logs = new Map<string, LogTable | FileRefusedError>();
   const { drive } = current.sheet;
   for (const run of current.runs) {
-    if (run.setAsideAt !== null) continue;
+    if (!run.counts) continue;
     const bytes = await readBlob({ store: system.store, workspaceId }, run.logSha256);
     try {
       logs.set(campaignRunId(run), readLog(bytes, { fileName: run.logFileName, drive }));
@@ -42,7 +42,7 @@ async function readLogs(
 /** What is missing before anything can be computed; null when both sides have a run. */
 function whatIsMissing(current: CurrentInput): string | null {
   const empty = (["A", "B"] as const).filter(
-    (side) => !current.runs.some((run) => run.side === side && run.setAsideAt === null),
+    (side) => !current.runs.some((run) => run.side === side && run.counts),
   );
   if (empty.length === 0) return null;
   const sides = empty.length === 2 ? "Neither side has a run" : `Side ${empty[0]} has no run`;

@@ -1,4 +1,4 @@
-import { createDatabase } from "@/db/client";
+import { createDatabase, type Database } from "@/db/client";
 import { JOB_CHANNEL, openJobQueue, type TakenJob } from "@/db/job-queue";
 import { openListener } from "@/db/listen";
 import { MAIL_CHANNEL } from "@/db/queries/mail";
@@ -24,7 +24,7 @@ export interface WorkerOptions {
   store: ObjectStore;
   handlers: Handlers;
   /** Sends what is due of the mail queue; null where no mail is sent. */
-  sendMail: ((db: System["db"]) => Promise<unknown>) | null;
+  sendMail: ((db: Database) => Promise<unknown>) | null;
   /** Clears leftovers; called an hour apart. */
   sweep: ((system: System) => Promise<void>) | null;
   /** How long to sleep at most without a notice; a lost notice costs this much. */

@@ -1,5 +1,5 @@
 import { env } from "@/lib/env";
-import { computeComparison } from "@/lib/jobs/compute-comparison";
+import { computeComparison, giveUpComputing } from "@/lib/jobs/compute-comparison";
 import { giveUpJudging, judgeRun } from "@/lib/jobs/judge-run";
 import { startWorker } from "@/lib/jobs/start-worker";
 import { sweepLeftovers } from "@/lib/jobs/sweep";
@@ -15,7 +15,7 @@ async function main(): Promise<void> {
     store,
     handlers: {
       "judge-run": { run: judgeRun, giveUp: giveUpJudging },
-      "compute-comparison": { run: computeComparison },
+      "compute-comparison": { run: computeComparison, giveUp: giveUpComputing },
     },
     sendMail: sendDueMail,
     sweep: async (system) => {

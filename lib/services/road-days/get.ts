@@ -1,5 +1,6 @@
 import { type RoadDayRow, selectRoadDays, selectStripNames } from "@/db/queries/road-days";
 import { selectDrivableRevisions } from "@/db/queries/runs";
+import { toCampaignVehicle } from "@/lib/measure/vehicle-sheet";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { type LoadedProgramme, loadProgramme } from "@/lib/services/programmes/load";
 import { loadRoadDay } from "@/lib/services/road-days/load";
@@ -14,6 +15,10 @@ export interface RoadDayView {
   /** Twins a side that the gate plan asks for, or null without such a gate. */
   twinsAsked: number | null;
   gearCount: number;
+  /** Gear that the sheet's speed at an engine speed was read off in; null when it has none. */
+  gearOfSheet: number | null;
+  /** Test mass of the newest vehicle sheet, kg. */
+  sheetMassKg: number;
   runs: RoadDayRuns;
 }
 
@@ -45,11 +50,16 @@ export async function getRoadDay(ctx: Ctx, roadDayId: string): Promise<RoadDayVi
     })),
     twinsAsked: twinsAskedBy(plan),
     gearCount: sheet.figures.gearRatios.length,
+    gearOfSheet: sheet.figures.speedAtRpm?.gear ?? null,
+    sheetMassKg: toCampaignVehicle(sheet.figures).mass_kg,
     runs,
   };
 }
 
-/** What the form of a new road day offers. @throws NotFoundError; ForbiddenError */
+/**
+ * What the form of a new road day offers: strips driven before, and the last day's strip, crew and car to take over.
+ * @throws NotFoundError; ForbiddenError
+ */
 export async function prepareRoadDay(ctx: Ctx, programmeId: string) {
   authorise(ctx, "road_day.edit");
   const { programme, sheet } = await loadProgramme(ctx, programmeId);
@@ -58,8 +68,8 @@ export async function prepareRoadDay(ctx: Ctx, programmeId: string) {
     selectStripNames(ctx.db, { workspaceId }),
     selectRoadDays(ctx.db, { workspaceId, programmeId }),
   ]);
-  const massKg = sheet.figures.massPartsKg.reduce((sum, part) => sum + part.value, 0);
-  return { programme, strips, days, sheetMassKg: massKg };
+  const last = days[0] ? await loadRoadDay(ctx, days[0].id) : null;
+  return { programme, strips, last, sheetMassKg: toCampaignVehicle(sheet.figures).mass_kg };
 }
 
 /** Road days of a programme, newest first, for its page. @throws NotFoundError; ForbiddenError */

@@ -60,22 +60,20 @@ const figures = {
   massKg: optionalNumber({ min: 200, max: 20_000, unit: "kg" }),
 };
 
-const twoPeople = {
-  check: (input: { driver: string; recorder: string }) =>
-    input.driver.toLocaleLowerCase("en") !== input.recorder.toLocaleLowerCase("en"),
-  issue: { path: ["recorder"], message: "The driver can't be at the recorder: a second person is." },
-};
+/** The figures as the form of a new day and of a correction share them. */
+export const roadDayFields = z
+  .object(figures)
+  .refine(({ driver, recorder }) => driver.toLocaleLowerCase("en") !== recorder.toLocaleLowerCase("en"), {
+    path: ["recorder"],
+    message: "The driver can't be at the recorder: a second person is.",
+  });
 
-export const newRoadDaySchema = z
-  .object({ programmeId: z.uuid(), ...figures })
-  .refine(twoPeople.check, twoPeople.issue);
-export type NewRoadDayForm = z.input<typeof newRoadDaySchema>;
+export const newRoadDaySchema = z.object({ programmeId: z.uuid() }).and(roadDayFields);
 export type NewRoadDay = z.output<typeof newRoadDaySchema>;
 
 export const editRoadDaySchema = z
-  .object({ roadDayId: z.uuid(), rowVersion: z.coerce.number().int(), ...figures })
-  .refine(twoPeople.check, twoPeople.issue);
-export type EditRoadDayForm = z.input<typeof editRoadDaySchema>;
+  .object({ roadDayId: z.uuid(), rowVersion: z.coerce.number().int() })
+  .and(roadDayFields);
 export type EditRoadDay = z.output<typeof editRoadDaySchema>;
 
 export const confirmChecklistSchema = z.object({

@@ -11,6 +11,8 @@ const NEXT: Readonly<Record<string, string>> = {
   time_not_increasing: "Export the log again with its own time stamps, one recording a file.",
   non_numeric_values: "Export numbers only, without texts in the columns, and drop the new file here.",
   too_few_samples: "Record longer, at 5 Hz or more, and drive this place again.",
+  rate_too_low: "Set the logger to 5 rows a second or more, better 20, and drive this place again.",
+  engine_speed_not_known: "Log engine speed, or write a speed at an engine speed into the vehicle sheet.",
   too_many_missing: "Check the sensor's cable, then drive this place again.",
   no_speed_channel: "Switch on a road-speed channel (a wheel or satellite speed) and drive this place again.",
   speed_all_zero: "Check the speed sensor: it recorded zero throughout. Then drive this place again.",

@@ -1,6 +1,6 @@
 import fc from "fast-check";
 import { describe, expect, test } from "vitest";
-import { type OrderCard, proposeOrder } from "@/lib/compare/order-card";
+import { freePlaces, type OrderCard, proposeOrder } from "@/lib/compare/order-card";
 
 const twins = (card: OrderCard) =>
   card.places
@@ -57,5 +57,24 @@ describe("proposeOrder", () => {
 
   test.each([0, 1.5, 13, Number.NaN])("refuses %d twins", (twinsPerSide) => {
     expect(() => proposeOrder({ twinsPerSide })).toThrow(RangeError);
+  });
+});
+
+describe("freePlaces", () => {
+  const card = proposeOrder({ twinsPerSide: 1 });
+
+  test("gives the card's places that no run has, in order", () => {
+    expect(freePlaces(card, [1, 3], 2)).toMatchObject([
+      { place: 2, side: "A", leg: "back" },
+      { place: 4, side: "B", leg: "back" },
+    ]);
+  });
+
+  test("goes on after the card and after what was driven, out and back", () => {
+    expect(freePlaces(card, [1, 2, 3, 4, 6], 2)).toEqual([
+      { place: 7, side: "B", leg: "out" },
+      { place: 8, side: "B", leg: "back" },
+    ]);
+    expect(freePlaces(null, [], 1)).toEqual([{ place: 1, side: "A", leg: "out" }]);
   });
 });

@@ -1,0 +1,147 @@
+import { insertRunAnalysis, selectRunForJudging } from "@/db/queries/run-analyses";
+import { lockRun, setRunState } from "@/db/queries/runs";
+import { selectVehicleSheet } from "@/db/queries/vehicle-sheets";
+import { digestOf } from "@/lib/canonical-json";
+import { FileRefusedError } from "@/lib/errors";
+import type { System } from "@/lib/jobs/system";
+import { logger } from "@/lib/logger";
+import { readLog } from "@/lib/logs/read-log";
+import type { LogTable } from "@/lib/logs/types";
+import { analyseRun } from "@/lib/measure/analyse-campaign";
+import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
+import { runTraces } from "@/lib/measure/run-traces";
+import type { RunTraces } from "@/lib/measure/traces";
+import type { CampaignRun, CampaignVehicle, RunResult } from "@/lib/measure/types";
+import { toCampaignVehicle } from "@/lib/measure/vehicle-sheet";
+import { readBlob } from "@/lib/services/blobs";
+import { refreshComparisonsOf } from "@/lib/services/comparisons/refresh";
+import { STANDARD_SETTINGS, toCampaignSettings } from "@/lib/services/comparisons/schema";
+
+interface JudgeJob {
+  workspaceId: string;
+  runId: string;
+}
+
+type Found = NonNullable<Awaited<ReturnType<typeof selectRunForJudging>>>;
+
+/** Everything that a verdict rests on: the same input gives the same verdict, to the last digit. */
+interface JudgeInput {
+  analysisVersion: string;
+  sheetVersion: number;
+  logSha256: string;
+  vehicle: CampaignVehicle;
+  run: CampaignRun;
+}
+
+const SETTINGS = toCampaignSettings(STANDARD_SETTINGS);
+
+async function readInput(
+  db: System["db"],
+  job: JudgeJob,
+): Promise<{ found: Found; input: JudgeInput; inputSha256: string } | null> {
+  const { workspaceId } = job;
+  const found = await selectRunForJudging(db, job);
+  if (!found) return null;
+  const { run, massKg } = found;
+  const sheet = await selectVehicleSheet(db, { workspaceId, programmeId: run.programmeId });
+  if (!sheet) return null;
+  const input: JudgeInput = {
+    analysisVersion: ANALYSIS_VERSION,
+    sheetVersion: sheet.version,
+    logSha256: run.logSha256,
+    vehicle: toCampaignVehicle(sheet.figures, massKg),
+    run: {
+      id: String(run.number),
+      file: run.logFileName,
+      kind: run.kind,
+      leg: run.leg,
+      order: run.driveOrder,
+      gear: run.gear,
+      started_at: run.startedAt?.toISOString() ?? null,
+      weather: { temp_c: run.tempC, pressure_hpa: run.pressureHpa, rh_pct: run.humidityPct },
+    },
+  };
+  return { found, input, inputSha256: digestOf({ ...input, settings: SETTINGS }) };
+}
+
+/** Reads the log and analyses it. A log that is refused is a verdict, not an error. */
+function judge(input: JudgeInput, bytes: Uint8Array): { result: RunResult; traces: RunTraces | null } {
+  let log: LogTable | FileRefusedError;
+  try {
+    log = readLog(bytes, { fileName: input.run.file, drive: input.vehicle.drive });
+  } catch (error) {
+    if (!(error instanceof FileRefusedError)) throw error;
+    log = error;
+  }
+  const result = analyseRun(input.vehicle, input.run, log, SETTINGS);
+  return { result, traces: log instanceof FileRefusedError ? null : runTraces(log, result) };
+}
+
+/** Keeps the verdict, unless the run or the sheet has changed meanwhile: then a later job brings the one that counts. */
+async function keep(
+  { db }: System,
+  job: JudgeJob,
+  args: { input: JudgeInput; inputSha256: string; result: RunResult; traces: RunTraces | null },
+): Promise<void> {
+  const { workspaceId, runId } = job;
+  const { input, inputSha256, result, traces } = args;
+  await db.transaction(async (tx) => {
+    const run = await lockRun(tx, job);
+    if (!run) return;
+    const { analysisVersion, sheetVersion } = input;
+    await insertRunAnalysis(tx, {
+      runId,
+      workspaceId,
+      inputSha256,
+      analysisVersion,
+      sheetVersion,
+      result,
+      traces,
+    });
+    if ((await readInput(tx, job))?.inputSha256 !== inputSha256) return;
+    await setRunState(tx, { ...job, state: result.usable ? "usable" : "refused" });
+    await refreshComparisonsOf(tx, { workspaceId }, { revisionId: run.revisionId });
+  });
+}
+
+/**
+ * Gives a run its verdict with the newest vehicle sheet, and has the comparisons of its revision computed anew.
+ * May run any number of times.
+ * @throws what kept the log from being read from the store; the queue tries again
+ */
+export async function judgeRun(system: System, job: JudgeJob): Promise<void> {
+  const read = await readInput(system.db, job);
+  if (!read) return;
+  const { input, inputSha256 } = read;
+  const bytes = await readBlob({ store: system.store, workspaceId: job.workspaceId }, input.logSha256);
+  const verdict = judge(input, bytes);
+  await keep(system, job, { input, inputSha256, ...verdict });
+  const { usable, reasons } = verdict.result;
+  logger().info({ event: "run.judged", ...job, usable, reasons: reasons.map((reason) => reason.code) });
+}
+
+/** The last try failed too: the run gets a verdict that says so, so that nobody waits for ever. */
+export async function giveUpJudging(system: System, job: JudgeJob): Promise<void> {
+  const read = await readInput(system.db, job);
+  if (!read) return;
+  const result: RunResult = {
+    id: read.input.run.id,
+    usable: false,
+    reasons: [
+      {
+        code: "analysis_fault",
+        message: `The analysis of ${read.input.run.file} failed on our side, five times over. The log is kept as it came.`,
+      },
+    ],
+    notes: [],
+  };
+  // A digest of its own: a later verdict on the same input is then not mistaken for a repeat.
+  const inputSha256 = digestOf({ fault: read.inputSha256 });
+  await system.db.transaction(async (tx) => {
+    const run = await lockRun(tx, job);
+    if (run?.state !== "waiting") return;
+    const { analysisVersion, sheetVersion } = read.input;
+    await insertRunAnalysis(tx, { ...job, inputSha256, analysisVersion, sheetVersion, result, traces: null });
+    await setRunState(tx, { ...job, state: "refused" });
+  });
+}
