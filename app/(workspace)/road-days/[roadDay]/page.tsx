@@ -1,0 +1,99 @@
+import type { Metadata } from "next";
+import { Checklist } from "@/app/(workspace)/road-days/[roadDay]/checklist";
+import { chooseCard } from "@/app/(workspace)/road-days/[roadDay]/choose-card";
+import { OrderCardSection } from "@/app/(workspace)/road-days/[roadDay]/order-card";
+import { RoadDayRuns } from "@/app/(workspace)/road-days/[roadDay]/road-day-runs";
+import { editRoadDayAction } from "@/app/(workspace)/road-days/actions";
+import { RoadDayFacts } from "@/components/features/road-days/road-day-facts";
+import { RoadDayForm } from "@/components/features/road-days/road-day-form";
+import { Tag } from "@/components/ui/data/tag";
+import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
+import { Card } from "@/components/ui/layout/card";
+import { Disclosure } from "@/components/ui/layout/disclosure";
+import { PageHeading } from "@/components/ui/layout/page-heading";
+import { requireCtx } from "@/lib/auth/current";
+import { orNotFound } from "@/lib/http/page";
+import { can } from "@/lib/policy/can";
+import { getRoadDay } from "@/lib/services/road-days/get";
+import { openLines } from "@/lib/services/road-days/schema";
+
+export const metadata: Metadata = { title: "Road day" };
+
+const asText = (value: number | null) => (value === null ? "" : String(value));
+
+/** One day on one strip: safety first, then what to drive, the drop area, and each log's verdict as it comes. */
+export default async function RoadDayPage({ params, searchParams }: PageProps<"/road-days/[roadDay]">) {
+  const ctx = await requireCtx();
+  const view = await orNotFound((await params).roadDay, (id) => getRoadDay(ctx, id));
+  const { roadDay, programme, revisions, runs, sheetMassKg } = view;
+  const chosen = chooseCard(view, await searchParams);
+  const mayEdit = can(ctx, "road_day.edit");
+  const mayAttach = can(ctx, "run.attach");
+  const open = openLines(roadDay.checklist).length;
+  const onlyRevision = revisions[0]?.id ?? "";
+  const blockedBecause = !mayAttach.ok
+    ? mayAttach.reason
+    : open > 0
+      ? `Confirm the safety checklist first: ${open} of its lines are open.`
+      : revisions.length === 0
+        ? "No revision is validating, in review or standing. Start validating one first."
+        : null;
+  const { id, rowVersion, day, zone, stripName, driver, recorder, windNote, fuelNote } = roadDay;
+  return (
+    <div className="flex flex-col gap-6">
+      <PageHeading
+        above={
+          <Breadcrumbs
+            items={[
+              { label: "Programmes", href: "/programmes" },
+              { label: programme.name, href: `/programmes/${programme.id}` },
+              { label: `Road day ${day}` },
+            ]}
+          />
+        }
+        title={`${day}, ${stripName}`}
+        marks={roadDay.sample ? <Tag>sample</Tag> : null}
+      />
+      <Checklist roadDay={roadDay} blockedBecause={mayEdit.ok ? null : mayEdit.reason} />
+      <Card title="Weather at the car and the car's state" id="facts">
+        <RoadDayFacts roadDay={roadDay} sheetMassKg={sheetMassKg} />
+        <Disclosure summary="Correct these figures" className="mt-4">
+          <p className="mb-4 max-w-prose text-15 text-ink2">
+            Runs that took the old weather over get the new one and are judged again. The ledger keeps the old
+            figures.
+          </p>
+          <RoadDayForm
+            key={rowVersion}
+            identity={{ roadDayId: id, rowVersion }}
+            values={{
+              ...{ day, zone, stripName, driver, recorder, windNote, fuelNote },
+              stripLengthM: asText(roadDay.stripLengthM),
+              tempC: asText(roadDay.tempC),
+              pressureHpa: asText(roadDay.pressureHpa),
+              humidityPct: asText(roadDay.humidityPct),
+              tyrePressureFrontKpa: asText(roadDay.tyrePressureFrontKpa),
+              tyrePressureRearKpa: asText(roadDay.tyrePressureRearKpa),
+              massKg: asText(roadDay.massKg),
+            }}
+            strips={[]}
+            sheetMassKg={sheetMassKg}
+            submitWords="Save the correction"
+            blockedBecause={mayEdit.ok ? null : mayEdit.reason}
+            action={editRoadDayAction}
+          />
+        </Disclosure>
+      </Card>
+      <OrderCardSection view={view} chosen={chosen} />
+      <RoadDayRuns
+        roadDayId={id}
+        revisions={revisions}
+        sides={{ A: chosen?.a ?? onlyRevision, B: chosen?.b ?? onlyRevision }}
+        card={chosen?.card ?? null}
+        gears={view.gearCount}
+        gear={runs.runs.at(-1)?.gear ?? view.gearOfSheet}
+        blockedBecause={blockedBecause}
+        initial={runs}
+      />
+    </div>
+  );
+}

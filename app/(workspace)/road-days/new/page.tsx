@@ -1,0 +1,62 @@
+import type { Metadata } from "next";
+import { createRoadDayAction } from "@/app/(workspace)/road-days/actions";
+import { RoadDayForm } from "@/components/features/road-days/road-day-form";
+import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
+import { PageHeading } from "@/components/ui/layout/page-heading";
+import { requireCtx } from "@/lib/auth/current";
+import { orNotFound } from "@/lib/http/page";
+import { prepareRoadDay } from "@/lib/services/road-days/get";
+
+export const metadata: Metadata = { title: "New road day" };
+
+const asText = (value: number | null | undefined) => (value == null ? "" : String(value));
+
+/** A tester or lead opens a road day; strip, crew and car are taken over from the last one. */
+export default async function NewRoadDayPage({ searchParams }: PageProps<"/road-days/new">) {
+  const ctx = await requireCtx();
+  const { programme: id } = await searchParams;
+  const { programme, strips, last, sheetMassKg } = await orNotFound(id, (programmeId) =>
+    prepareRoadDay(ctx, programmeId),
+  );
+  return (
+    <div className="flex flex-col gap-6">
+      <PageHeading
+        above={
+          <Breadcrumbs
+            items={[
+              { label: "Programmes", href: "/programmes" },
+              { label: programme.name, href: `/programmes/${programme.id}` },
+              { label: "New road day" },
+            ]}
+          />
+        }
+        title="New road day"
+        lead="One day on one strip. Weather is read at the car; the safety checklist follows at the road side."
+      />
+      <RoadDayForm
+        identity={{ programmeId: programme.id }}
+        values={{
+          day: "",
+          zone: last?.zone ?? "",
+          stripName: last?.stripName ?? "",
+          stripLengthM: asText(last?.stripLengthM),
+          driver: last?.driver ?? "",
+          recorder: last?.recorder ?? "",
+          tempC: "",
+          pressureHpa: "",
+          humidityPct: "",
+          windNote: "",
+          fuelNote: last?.fuelNote ?? "",
+          tyrePressureFrontKpa: asText(last?.tyrePressureFrontKpa),
+          tyrePressureRearKpa: asText(last?.tyrePressureRearKpa),
+          massKg: asText(last?.massKg),
+        }}
+        strips={strips.map((strip) => strip.stripName)}
+        sheetMassKg={sheetMassKg}
+        submitWords="Open the road day"
+        blockedBecause={null}
+        action={createRoadDayAction}
+      />
+    </div>
+  );
+}

@@ -1,0 +1,65 @@
+import Link from "next/link";
+import { VerdictMark } from "@/components/features/runs/verdict-mark";
+import { numberText } from "@/components/ui/data/number-text";
+import { Tag } from "@/components/ui/data/tag";
+import type { RunLine } from "@/lib/services/runs/schema";
+
+/** Facts of a run in one line, e.g. "out, pull, gear 3". */
+function driveWords({ leg, kind, gear }: RunLine): string {
+  return [leg, kind, gear === null ? null : `gear ${gear}`].filter(Boolean).join(", ");
+}
+
+function RunItem({ run }: { run: RunLine }) {
+  return (
+    <li className="grid grid-cols-[3.25rem_1fr] gap-x-3 gap-y-1 border-line border-t py-3 first:border-t-0">
+      <span className="tabular text-20 text-ink2" title={`Place ${run.driveOrder} in the driven order`}>
+        <span className="sr-only">Place </span>
+        {run.driveOrder}
+      </span>
+      <div className="flex min-w-0 flex-col gap-1">
+        <div className="flex flex-wrap items-center gap-x-3 gap-y-1">
+          <Link
+            href={`/runs/${run.id}`}
+            className="inline-flex min-h-6 items-center font-semibold text-action underline"
+          >
+            Run {run.number}
+          </Link>
+          <Tag>R{run.revisionNumber}</Tag>
+          <span>{driveWords(run)}</span>
+          <VerdictMark {...run} />
+          {run.peakKw !== null && (
+            <span className="tabular text-ink2">
+              peak {numberText(run.peakKw, { decimals: 1 })} kW, this run alone
+            </span>
+          )}
+        </div>
+        {run.why.map((sentence) => (
+          <p key={sentence} className="text-15">
+            {sentence}
+          </p>
+        ))}
+        {run.next && (
+          <p className="text-15">
+            <strong>Next: </strong>
+            {run.next}
+          </p>
+        )}
+        <p className="break-all text-13 text-ink2">
+          {run.fileName} · {run.testerName}
+          {run.notes > 0 && ` · ${run.notes} ${run.notes === 1 ? "note" : "notes"}`}
+        </p>
+      </div>
+    </li>
+  );
+}
+
+/** Runs of a road day in the order driven, each with its verdict and the next step. */
+export function RunList({ runs }: { runs: readonly RunLine[] }) {
+  return (
+    <ul aria-label="Runs of this road day" className="flex flex-col">
+      {runs.map((run) => (
+        <RunItem key={run.id} run={run} />
+      ))}
+    </ul>
+  );
+}
