@@ -60,6 +60,7 @@ export function describeStoreContract(
       const signedLinks = driver === "s3" ? "store" : "route";
       const { conditionalCreate } = harness;
       expect(await harness.store.check()).toEqual({ driver, conditionalCreate, signedLinks });
+      expect(await harness.rawNames()).not.toContainEqual(expect.stringMatching(/probe\/./));
     });
 
     test.each(SIZES)(
