@@ -39,9 +39,11 @@ export function heightProfiles(runs: readonly RoadRun[], observations: RoadObser
     let group = made.get(keys[r]);
     if (!group) {
       const members = new Set(keys.flatMap((key, k) => (key === keys[r] ? [k] : [])));
-      const positions = [...observations.coasts, ...observations.tilts]
-        .filter((o) => members.has(o.run))
-        .map((o) => o.positionM);
+      const positions = [
+        ...observations.coasts.filter((o) => members.has(o.run)).map((o) => o.positionM),
+        ...observations.tilts.filter((o) => members.has(o.run)).map((o) => o.positionM),
+        ...observations.climbs.filter((o) => members.has(o.run)).flatMap((o) => [o.fromM, o.toM]),
+      ];
       const tilts = observations.tilts.some((o) => members.has(o.run));
       const low = Math.min(...positions);
       const high = Math.max(...positions);
