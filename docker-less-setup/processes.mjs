@@ -2,12 +2,14 @@ import { spawn } from "node:child_process";
 import {
   appendFileSync,
   closeSync,
+  existsSync,
   linkSync,
   mkdirSync,
   openSync,
   readFileSync,
   renameSync,
   rmSync,
+  statSync,
   writeFileSync,
 } from "node:fs";
 import { dirname } from "node:path";
@@ -20,6 +22,7 @@ const STEP_GRACE_MS = 5_000;
 const RESTART_FIRST_MS = 500;
 const RESTART_LONGEST_MS = 30_000;
 const CALM_MS = 60_000;
+const LOG_BYTES = 2e7;
 const PARENT_POLL_MS = 1_000;
 
 /** Steps that run now, to be stopped with us. @type {Set<import("node:child_process").ChildProcess>} */
@@ -127,6 +130,7 @@ export function superviseService({ name, command, cwd, env, logFile, graceMs, sa
   let timer;
 
   const launch = () => {
+    if (existsSync(logFile) && statSync(logFile).size > LOG_BYTES) renameSync(logFile, `${logFile}.old`);
     const log = openSync(logFile, "a");
     const startedAt = Date.now();
     const current = spawnTied(command, { cwd, env, stdio: ["ignore", log, log], deathSignal: "SIGTERM" });

@@ -138,7 +138,7 @@ export async function runTests([only, ...extra]) {
     exitCode = await runPhases(phases, { say, stops, extra });
   } catch (error) {
     if (stops.isStopping()) return;
-    console.error(`\n${plain(error)}`);
+    say(`\n${plain(error)}\n0 passed, 1 failed`);
   }
   await stops.stopAll();
   process.exit(exitCode);

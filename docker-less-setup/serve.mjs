@@ -49,7 +49,9 @@ async function bringUp({ say, stops }) {
   const address = `http://localhost:${port}`;
 
   demandWritable(root);
-  mkdirSync(logs, { recursive: true });
+  // Others may pass through to the database's folder, and see nothing else.
+  mkdirSync(dataFolder, { recursive: true, mode: 0o711 });
+  mkdirSync(logs, { recursive: true, mode: 0o700 });
   const lock = takeLock(join(dataFolder, "start.lock"), address);
   if ("holder" in lock) {
     throw new SetupProblem(alreadyRunning({ pid: lock.holder.pid, address: lock.holder.note }));
