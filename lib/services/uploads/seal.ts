@@ -1,7 +1,7 @@
-import { createHash } from "node:crypto";
 import type { Transaction } from "@/db/client";
+import { lockDigest } from "@/db/queries/sweep";
 import { insertBlob, setUploadState, type UploadRow } from "@/db/queries/uploads";
-import { ConflictError, InvalidInputError, NotFoundError } from "@/lib/errors";
+import { ConflictError, InvalidInputError } from "@/lib/errors";
 import { logger } from "@/lib/logger";
 import type { Ctx } from "@/lib/services/ctx";
 import { loadUpload } from "@/lib/services/uploads/load";
@@ -28,22 +28,6 @@ export async function* readStaged(ctx: Pick<Ctx, "store">, row: Pick<UploadRow, 
     }
     after = page.next;
   } while (after !== undefined);
-}
-
-async function hashStaged(ctx: Ctx, row: UploadRow): Promise<string> {
-  const hash = createHash("sha256");
-  for await (const chunk of readStaged(ctx, row)) hash.update(chunk);
-  return hash.digest("hex");
-}
-
-async function isKept(ctx: Ctx, row: UploadRow): Promise<boolean> {
-  try {
-    const { sizeBytes } = await ctx.store.stat(blobKey(ctx.workspaceId, row.declaredSha256));
-    return sizeBytes === row.declaredBytes;
-  } catch (error) {
-    if (error instanceof NotFoundError) return false;
-    throw error;
-  }
 }
 
 /**
@@ -76,27 +60,23 @@ export async function sealUpload(
       `${row.fileName}: ${row.receivedBytes} of ${row.declaredBytes} bytes have arrived. Go on sending.`,
     );
   }
-  if (await isKept(ctx, row)) {
-    // The object is there already: the sender must still have the bytes.
-    if ((await hashStaged(ctx, row)) !== row.declaredSha256) {
-      throw new InvalidInputError(
-        "digest_mismatch",
-        `${row.fileName}: the bytes that arrived are not the declared ones. Send it again.`,
-      );
-    }
-  } else {
-    const key = blobKey(ctx.workspaceId, row.declaredSha256);
-    await ctx.store.create(key, readStaged(ctx, row), {
-      sizeBytes: row.declaredBytes,
-      sha256: row.declaredSha256,
-    });
-  }
+  // A copy that is there already is read and compared too, and the sender must still have the bytes.
+  const key = blobKey(ctx.workspaceId, row.declaredSha256);
+  const declared = { sizeBytes: row.declaredBytes, sha256: row.declaredSha256 };
+  await ctx.store.create(key, readStaged(ctx, row), declared);
   await setUploadState(ctx.db, { uploadId, state: "complete" });
   return sealed;
 }
 
-/** The row that says the bytes are kept, and the upload's end, in the caller's transaction. */
+/**
+ * The row that says the bytes are kept, and the upload's end, in the caller's transaction. The digest is locked against the
+ * sweep and the object looked at once more, so that the row never names bytes that were just cleared.
+ * @throws NotFoundError when the bytes are gone
+ */
 export async function useSealedUpload(tx: Transaction, ctx: Ctx, sealed: SealedUpload): Promise<void> {
+  const { workspaceId } = ctx;
+  await lockDigest(tx, { workspaceId, sha256: sealed.sha256 });
+  await ctx.store.stat(blobKey(workspaceId, sealed.sha256));
   await insertBlob(tx, { workspaceId: ctx.workspaceId, sha256: sealed.sha256, sizeBytes: sealed.sizeBytes });
   await setUploadState(tx, { uploadId: sealed.uploadId, state: "used" });
 }
@@ -105,8 +85,14 @@ export async function useSealedUpload(tx: Transaction, ctx: Ctx, sealed: SealedU
 export async function clearStaging(ctx: Ctx, uploadId: string): Promise<void> {
   try {
     const row = await loadUpload(ctx, uploadId);
-    const page = await ctx.store.list(prefixOf(parseStagingKey(row.stagingKey)));
-    for (const { key } of page.objects) await ctx.store.remove(key);
+    const prefix = prefixOf(parseStagingKey(row.stagingKey));
+    for (
+      let page = await ctx.store.list(prefix);
+      page.objects.length > 0;
+      page = await ctx.store.list(prefix)
+    ) {
+      for (const { key } of page.objects) await ctx.store.remove(key);
+    }
   } catch (error) {
     logger().warn({ event: "staging.left", uploadId, err: error });
   }
