@@ -6,9 +6,11 @@ import { sweepLeftovers } from "@/lib/jobs/sweep";
 import { logger } from "@/lib/logger";
 import { sendDueMail } from "@/lib/mail/send-due";
 import { objectStore } from "@/lib/runtime";
+import { checkBeforeServing } from "@/lib/start-checks";
 
 /** Entry of the worker process. SIGTERM or SIGINT ends it after the job in hand; a second one at once. */
 async function main(): Promise<void> {
+  await checkBeforeServing();
   const store = await objectStore();
   const worker = await startWorker({
     databaseUrl: env().DATABASE_URL,
