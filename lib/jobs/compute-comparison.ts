@@ -1,5 +1,5 @@
 import { closeResult, openResult, selectComparison, selectResult } from "@/db/queries/comparisons";
-import { FileRefusedError, TwinpassError } from "@/lib/errors";
+import { FileRefusedError, TwinpassError, UnavailableError } from "@/lib/errors";
 import type { System } from "@/lib/jobs/system";
 import { logger } from "@/lib/logger";
 import { readLog } from "@/lib/logs/read-log";
@@ -28,7 +28,12 @@ async function readLogs(
   const { drive } = current.sheet;
   for (const run of current.runs) {
     if (!run.counts) continue;
-    const bytes = await readBlob({ store: system.store, workspaceId }, run.logSha256);
+    const bytes = await readBlob({ store: system.store, workspaceId }, run.logSha256).catch((error) => {
+      throw new UnavailableError(
+        "log_unavailable",
+        `The log of run ${run.number} can't be had from the store: ${error instanceof TwinpassError ? error.message : "it does not answer."}`,
+      );
+    });
     try {
       logs.set(campaignRunId(run), readLog(bytes, { fileName: run.logFileName, drive }));
     } catch (error) {

@@ -10,8 +10,7 @@ export function massOf(current: Pick<CurrentInput, "sheet">, run: { massKg: numb
   return toCampaignVehicle(current.sheet, run.massKg).mass_kg;
 }
 
-const counted = (current: Pick<CurrentInput, "runs">) =>
-  current.runs.filter((run) => run.setAsideAt === null);
+const counted = (current: Pick<CurrentInput, "runs">) => current.runs.filter((run) => run.counts);
 
 /** Mean test mass of the runs that count, kg; null leaves the sheet's. */
 function commonMassKg(current: CurrentInput): number | null {

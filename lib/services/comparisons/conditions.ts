@@ -20,7 +20,7 @@ export function sideConditions(
   current: Pick<CurrentInput, "runs" | "sheet">,
   side: "A" | "B",
 ): SideConditions {
-  const runs = current.runs.filter((run) => run.side === side && run.setAsideAt === null);
+  const runs = current.runs.filter((run) => run.side === side && run.counts);
   const days = new Map(runs.map(({ roadDayId: id, day, stripName }) => [id, { id, day, stripName }]));
   return {
     runs: runs.length,

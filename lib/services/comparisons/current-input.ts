@@ -13,8 +13,14 @@ export interface CurrentInput {
   /** SHA-256 of the canonical JSON of `input`: a result with another one is stale. */
   inputSha256: string;
   sheet: VehicleSheetFigures;
-  /** Every run of both revisions in the order driven, set aside ones too; `order` counts on over the road days. */
-  runs: (ComparedRun & { side: "A" | "B"; order: number })[];
+  /** Every run of both revisions in the order driven, also those that do not count; `order` counts on over the road days. */
+  runs: CurrentRun[];
+}
+
+export interface CurrentRun extends ComparedRun {
+  side: "A" | "B";
+  order: number;
+  counts: boolean;
 }
 
 /** The typed facts of a run that enter the computation beside its log; the keys are the words of `whatMoved`. */
@@ -49,7 +55,24 @@ function withOrder<T extends ComparedRun>(runs: readonly T[]): (T & { order: num
 }
 
 /**
- * Reads the exact runs that count now: all of both revisions that are not set aside, whatever their road day.
+ * A road day on which only one side was driven can't tell the change from the day, so its runs do not count as long as
+ * there is a day with both sides. Where there is none, all runs count and the gates say what that is worth.
+ */
+function withCounts(runs: readonly Omit<CurrentRun, "counts">[]): CurrentRun[] {
+  const kept = runs.filter((run) => run.setAsideAt === null);
+  const daysOf = (side: "A" | "B") =>
+    new Set(kept.filter((run) => run.side === side).map((run) => run.roadDayId));
+  const daysOfB = daysOf("B");
+  const shared = new Set([...daysOf("A")].filter((day) => daysOfB.has(day)));
+  return runs.map((run) => ({
+    ...run,
+    counts: run.setAsideAt === null && (shared.size === 0 || shared.has(run.roadDayId)),
+  }));
+}
+
+/**
+ * Reads the exact runs that count now: those of both revisions that are not set aside, on the road days with both sides,
+ * or on all of them where no day has both.
  * Call it inside the transaction that relies on it.
  * @throws NotFoundError when the programme has no vehicle sheet
  */
@@ -62,16 +85,18 @@ export async function currentInput(
   if (!sheet)
     throw new NotFoundError("no_vehicle_sheet", "This programme has no vehicle sheet. Write one first.");
   const rows = await selectComparedRuns(db, { workspaceId, revisionIds: [revisionAId, revisionBId] });
-  const runs = withOrder(rows).map((run) => ({
-    ...run,
-    side: run.revisionId === revisionAId ? ("A" as const) : ("B" as const),
-  }));
+  const runs = withCounts(
+    withOrder(rows).map((run) => ({
+      ...run,
+      side: run.revisionId === revisionAId ? ("A" as const) : ("B" as const),
+    })),
+  );
   const input: ComparisonInput = {
     analysisVersion: ANALYSIS_VERSION,
     sheetVersion: sheet.version,
     settings,
     runs: runs
-      .filter((run) => run.setAsideAt === null)
+      .filter((run) => run.counts)
       .map((run) => ({
         runId: run.id,
         number: run.number,

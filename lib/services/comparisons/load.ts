@@ -59,7 +59,7 @@ export async function comparisonStanding(
   const earlier = shownOf(await selectEarlierResult(db, key));
   if (now?.state === "failed") return { ...base, state: "failed", failure: now.failure, shown: null };
   if (!earlier) return { ...base, state: "waiting", recomputing: now !== null, shown: null };
-  const moved = whatMoved(earlier.input, current.input);
+  const moved = whatMoved(earlier.input, current.input, current.runs);
   return { ...base, state: "stale", recomputing: now?.state === "waiting", moved, shown: earlier };
 }
 

@@ -11,6 +11,13 @@ function outcomeOf(
     const seen = run.resultWasVisible ? " Its result could be seen then." : "";
     return { outcome: "set aside", why: [`${run.setAsideReason ?? "No reason was kept."}${seen}`] };
   }
+  if (!run.counts) {
+    const other = run.side === "A" ? "B" : "A";
+    return {
+      outcome: "left out",
+      why: [`Side ${other} has no run on this road day, so the day can't be told from the change.`],
+    };
+  }
   if (!judged) return { outcome: "not computed yet", why: [] };
   if (judged.usable) return { outcome: "used", why: [] };
   return { outcome: "refused", why: judged.reasons.map((reason) => reason.message) };

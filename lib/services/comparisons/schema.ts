@@ -116,8 +116,8 @@ export interface RunLine {
   day: string;
   testerName: string | null;
   logSha256: string;
-  outcome: "used" | "refused" | "set aside" | "not computed yet";
-  /** Reasons of a refusal, or the reason it was set aside for. */
+  outcome: "used" | "refused" | "set aside" | "left out" | "not computed yet";
+  /** Reasons of a refusal, the reason it was set aside for, or why its road day does not count. */
   why: string[];
   /** Findings that mask or warn. */
   notes: string[];

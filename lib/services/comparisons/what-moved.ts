@@ -21,18 +21,38 @@ function changesOf(before: InputRun, after: InputRun): string[] {
   return [...own, ...(before.order === after.order ? [] : ["place in the driven order"]), ...fields];
 }
 
+/** Runs that went, told by whether somebody set them aside or their road day lost its other side. */
+function departures(gone: readonly InputRun[], setAside: ReadonlySet<string>): string[] {
+  const taken = gone.filter((run) => setAside.has(run.runId));
+  const alone = gone.filter((run) => !setAside.has(run.runId));
+  const sentences: string[] = [];
+  if (taken.length > 0) sentences.push(`${named(taken)} ${were(taken)} set aside.`);
+  if (alone.length > 0)
+    sentences.push(
+      `${named(alone)} no longer ${alone.length === 1 ? "counts" : "count"}: which road days have both sides has changed.`,
+    );
+  return sentences;
+}
+
 /**
  * What differs between the input of a result and what counts now, one sentence each; empty when nothing does.
  * @param before what the result was computed from
+ * @param runs what is known of the runs now, to tell why one no longer counts
  */
-export function whatMoved(before: ComparisonInput, after: ComparisonInput): string[] {
+export function whatMoved(
+  before: ComparisonInput,
+  after: ComparisonInput,
+  runs: readonly { id: string; setAsideAt: Date | null }[],
+): string[] {
   const known = new Map(before.runs.map((run) => [run.runId, run]));
   const left = new Map(after.runs.map((run) => [run.runId, run]));
   const added = after.runs.filter((run) => !known.has(run.runId));
   const gone = before.runs.filter((run) => !left.has(run.runId));
   const sentences: string[] = [];
-  if (added.length > 0) sentences.push(`${named(added)} ${were(added)} attached or brought back.`);
-  if (gone.length > 0) sentences.push(`${named(gone)} ${were(gone)} set aside.`);
+  const setAside = new Set(runs.filter((run) => run.setAsideAt !== null).map((run) => run.id));
+  if (added.length > 0)
+    sentences.push(`${named(added)} ${added.length === 1 ? "counts" : "count"} now and did not then.`);
+  sentences.push(...departures(gone, setAside));
   for (const run of after.runs) {
     const earlier = known.get(run.runId);
     const changes = earlier ? changesOf(earlier, run) : [];

@@ -17,7 +17,8 @@ const numbers = (values: readonly unknown[]): number[] =>
 function range(input: ComparisonInput, name: string, unit: string): string | null {
   const values = numbers(facts(input, name));
   if (values.length === 0) return null;
-  return `${whole(Math.min(...values))} to ${whole(Math.max(...values))} ${unit}`;
+  const [low, high] = [whole(Math.min(...values)), whole(Math.max(...values))];
+  return low === high ? `${low} ${unit}` : `${low} to ${high} ${unit}`;
 }
 
 /** Engine speeds over which the band holds, first and last; null without a band. */
@@ -49,7 +50,7 @@ export function notTested(compared: { input: ComparisonInput; result: CampaignRe
       ? `Engine speeds below ${whole(span[0])} and above ${whole(span[1])} per minute.`
       : "No engine speed has a band: nothing is claimed anywhere.",
     gears.length > 0 ? `Other gears than ${gears.join(", ")}.` : null,
-    temperature ? `Air outside ${temperature}${pressure ? ` and ${pressure}` : ""}.` : null,
+    temperature ? `Other air than ${temperature}${pressure ? ` and ${pressure}` : ""}.` : null,
     input.runs.some((run) => run.kind === "sprint")
       ? null
       : "Standing starts and set distances: no sprint was driven.",

@@ -33,7 +33,9 @@ function requireSameEvidence(
     );
   }
   if (inputNow !== seen.inputSha256) {
-    const moved = comparison?.shown ? whatMoved(comparison.shown.input, comparison.current.input) : [];
+    const moved = comparison?.shown
+      ? whatMoved(comparison.shown.input, comparison.current.input, comparison.current.runs)
+      : [];
     throw new ConflictError(
       "evidence_moved",
       `The evidence has changed since you opened this page: runs, their facts or the vehicle sheet. ${again}`,

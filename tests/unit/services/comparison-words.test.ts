@@ -33,7 +33,7 @@ const input = (runs: ComparisonInput["runs"], parts: Partial<ComparisonInput> = 
 
 describe("what moved", () => {
   test("is nothing between equal inputs", () => {
-    expect(whatMoved(input([run(1)]), input([run(1)]))).toEqual([]);
+    expect(whatMoved(input([run(1)]), input([run(1)]), [])).toEqual([]);
   });
 
   test("names runs that came, went and changed, the sheet and the analysis", () => {
@@ -42,8 +42,9 @@ describe("what moved", () => {
       sheetVersion: 3,
       analysisVersion: "2",
     });
-    expect(whatMoved(before, after)).toEqual([
-      "Runs 7 and 8 were attached or brought back.",
+    const setAside = [{ id: "run-2", setAsideAt: new Date() }];
+    expect(whatMoved(before, after, setAside)).toEqual([
+      "Runs 7 and 8 count now and did not then.",
       "Run 2 was set aside.",
       "Run 3 was changed: leg, gear and temperature.",
       "The vehicle sheet went from version 1 to 3.",

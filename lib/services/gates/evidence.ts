@@ -1,0 +1,31 @@
+import type { EvidenceRun, GateEvidence } from "@/lib/gates/evidence";
+import { campaignRunId, massOf } from "@/lib/services/comparisons/build-campaign";
+import type { ComparisonStanding } from "@/lib/services/comparisons/load";
+
+/**
+ * What the gates are evaluated on: the result shown and the runs that count now with their conditions.
+ * @param comparison null when nothing stands or nobody has compared yet: every gate then has too little
+ */
+export function gateEvidence(comparison: ComparisonStanding | null, redlineRpm: number): GateEvidence {
+  if (!comparison) return { result: null, runs: [], redlineRpm };
+  const { current, shown } = comparison;
+  return {
+    result: shown?.result ?? null,
+    redlineRpm,
+    runs: current.runs
+      .filter((run) => run.counts)
+      .map(
+        (run): EvidenceRun => ({
+          id: campaignRunId(run),
+          side: run.side,
+          leg: run.leg,
+          order: run.order,
+          roadDay: run.roadDayId,
+          gear: run.gear,
+          massKg: massOf(current, run),
+          tempC: run.tempC,
+          pressureHpa: run.pressureHpa,
+        }),
+      ),
+  };
+}
