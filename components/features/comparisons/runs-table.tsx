@@ -8,6 +8,7 @@ const OUTCOME: Record<RunLine["outcome"], string> = {
   used: "counts",
   refused: "refused",
   "set aside": "set aside",
+  "left out": "left out",
   "not computed yet": "not computed yet",
 };
 
@@ -17,6 +18,7 @@ export function RunsTable({ runs }: { runs: readonly RunLine[] }) {
     <Table
       caption="Runs of both sides in the order driven"
       dense
+      scroll="tall"
       rows={runs}
       rowKey={(run) => run.runId}
       empty="No run is attached to either side yet."

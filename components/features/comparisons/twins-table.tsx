@@ -9,6 +9,7 @@ export function TwinsTable({ delta }: { delta: DeltaResult }) {
     <Table
       caption="Twins and their closure"
       dense
+      scroll="short"
       rows={delta.twins}
       rowKey={(twin) => `${twin.side}-${twin.out}-${twin.back}`}
       empty="No twin: a twin is an out and a back run on one revision."
@@ -29,7 +30,8 @@ export function TwinsTable({ delta }: { delta: DeltaResult }) {
           header: "Closes within",
           unit: "%",
           numeric: true,
-          cell: (twin) => numberText(twin.closure_pct, { decimals: 2 }),
+          cell: (twin) =>
+            numberText(twin.closure_pct === null ? null : Math.abs(twin.closure_pct), { decimals: 2 }),
         },
       ]}
     />

@@ -118,8 +118,9 @@ export function DecisionForm(props: DecisionFormProps) {
             },
           ]}
           error={errors.kind && "Choose one of the three."}
+          name="kind"
           value={kind}
-          {...form.register("kind")}
+          onChange={(event) => form.setValue("kind", event.target.value as DecisionFields["kind"])}
         />
         {kind === "promote" && openGates.length > 0 && (
           <WaiverFields gates={openGates} blockedBecause={blocked.waive} />

@@ -19,6 +19,7 @@ export function RecordRuns({ runs }: { runs: readonly EvidenceRun[] }) {
     <Table
       caption="Runs of the evidence"
       dense
+      scroll="tall"
       rows={runs}
       rowKey={(run) => run.runId}
       columns={[

@@ -35,7 +35,7 @@ export function RollBackChanges({ preview }: RollBackChangesProps) {
               ? "Both revisions have the same file, byte for byte."
               : difference.bytes === 0
                 ? "Both images hold the same bytes at the same addresses; only their files differ."
-                : `${numberText(difference.bytes)} bytes in ${numberText(difference.ranges)} places differ.`}
+                : `${numberText(difference.bytes)} bytes in ${numberText(difference.ranges)} ${difference.ranges === 1 ? "place" : "places"} differ.`}
           </p>
           {difference.first.length > 0 && (
             <Table

@@ -1,4 +1,5 @@
 import { StateMark } from "@/components/ui/status/state-mark";
+import { cn } from "@/lib/cn";
 import type { GateResult } from "@/lib/gates/plan";
 
 const ORDER: Record<GateResult["state"], number> = {
@@ -16,10 +17,12 @@ export interface GateListProps {
   gates: readonly GateResult[];
   /** Reasons of waivers by gate, printed at the gate. */
   waivers?: ReadonlyMap<string, string>;
+  /** Side by side from 640 px on, for a wide place. */
+  columns?: 1 | 2;
 }
 
 /** Gates with their state, why, and the next step; what is open stands first. */
-export function GateList({ gates, waivers }: GateListProps) {
+export function GateList({ gates, waivers, columns = 1 }: GateListProps) {
   const asked = gates.filter((gate) => gate.level !== "off");
   if (asked.length === 0)
     return <p className="text-15 text-ink2">No gate is asked by the plan of this programme.</p>;
@@ -27,12 +30,9 @@ export function GateList({ gates, waivers }: GateListProps) {
     (a, b) => ORDER[a.state] - ORDER[b.state] || Number(a.level !== "must") - Number(b.level !== "must"),
   );
   return (
-    <ul className="flex flex-col">
+    <ul className={cn("grid gap-x-8", columns === 2 && "sm:grid-cols-2")}>
       {sorted.map((gate) => (
-        <li
-          key={gate.id}
-          className="keep-together flex flex-col gap-1 border-line border-t py-3 first:border-t-0 first:pt-0"
-        >
+        <li key={gate.id} className="keep-together flex flex-col gap-1 border-line border-t py-3">
           <div className="flex flex-wrap items-baseline justify-between gap-x-3">
             <StateMark state={gate.state} />
             <span className="text-13 text-ink2">{LEVEL[gate.level]}</span>

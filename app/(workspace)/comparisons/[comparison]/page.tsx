@@ -113,14 +113,6 @@ export default async function ComparisonPage({
           )}
         </div>
         <aside className="flex min-w-0 flex-col gap-6">
-          {gatesHere && (
-            <Card
-              title="Gates"
-              description={`Plan version ${gatesHere.planVersion ?? "–"}: ${gateCount(gatesHere.results)}`}
-            >
-              <GateList gates={gatesHere.results} />
-            </Card>
-          )}
           {view.b.state === "in_review" && (
             <Card title="Decide" tone="well">
               <p className="mb-3 text-15">
@@ -129,6 +121,14 @@ export default async function ComparisonPage({
               <LinkButton look="filled" href={`/revisions/${view.b.id}/decide`}>
                 Open decision
               </LinkButton>
+            </Card>
+          )}
+          {gatesHere && (
+            <Card
+              title="Gates"
+              description={`Plan version ${gatesHere.planVersion ?? "–"}: ${gateCount(gatesHere.results)}`}
+            >
+              <GateList gates={gatesHere.results} />
             </Card>
           )}
           <Card title="Settings">

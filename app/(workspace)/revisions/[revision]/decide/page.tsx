@@ -84,6 +84,19 @@ export default async function DecidePage({ params }: PageProps<"/revisions/[revi
           {result?.delta && (
             <AnswerCard delta={result.delta} labels={labels} stale={comparison?.state === "stale"} />
           )}
+          <Card
+            title="Gates"
+            description={`Plan version ${gates.planVersion ?? "–"}: ${gateCount(gates.results)}`}
+            actions={
+              comparison && (
+                <LinkButton size="compact" href={`/comparisons/${comparison.id}`}>
+                  All of the comparison
+                </LinkButton>
+              )
+            }
+          >
+            <GateList gates={gates.results} columns={2} />
+          </Card>
           {comparison && result && grid && comparison.basis && (
             <>
               <ComparisonFigure
@@ -97,22 +110,9 @@ export default async function DecidePage({ params }: PageProps<"/revisions/[revi
               </Card>
             </>
           )}
-          <Card
-            title="Gates"
-            description={`Plan version ${gates.planVersion ?? "–"}: ${gateCount(gates.results)}`}
-            actions={
-              comparison && (
-                <LinkButton size="compact" href={`/comparisons/${comparison.id}`}>
-                  All of the comparison
-                </LinkButton>
-              )
-            }
-          >
-            <GateList gates={gates.results} />
-          </Card>
         </div>
         <aside className="flex min-w-0 flex-col gap-6">
-          <Card title="Countersign" tone="well">
+          <Card title="Countersign" tone="well" id="countersign">
             <DecisionForm
               key={`${revision.rowVersion} ${comparison?.inputSha256}`}
               seen={{
