@@ -3,6 +3,7 @@
 import { type FormEvent, useState } from "react";
 import type { Range } from "@/components/charts/frame/series";
 import { Button } from "@/components/ui/action/button";
+import { Menu } from "@/components/ui/action/menu";
 import { NumberInput } from "@/components/ui/form/number-input";
 
 export interface RangeFormProps {
@@ -29,19 +30,13 @@ export function RangeForm({ whole, range, unit, onRange }: RangeFormProps) {
       return;
     }
     setError(null);
+    event.currentTarget.closest("details")?.removeAttribute("open");
     onRange({ from, to });
   };
 
   return (
-    <details className="group relative">
-      <summary className="inline-flex min-h-control list-none items-center rounded border border-edge bg-surface px-3 font-medium text-15 hover:border-ink [&::-webkit-details-marker]:hidden">
-        Range …
-      </summary>
-      <form
-        key={`${shown.from}-${shown.to}`}
-        onSubmit={submit}
-        className="absolute right-0 z-20 mt-1 flex w-64 flex-col gap-3 rounded border border-edge bg-surface p-3"
-      >
+    <Menu label="Range" align="fit" framed>
+      <form key={`${shown.from}-${shown.to}`} onSubmit={submit} className="flex flex-col gap-3 p-2 sm:w-60">
         <div className="grid grid-cols-2 gap-2">
           <NumberInput label="From" name="from" defaultValue={roundedText(shown.from)} />
           <NumberInput label="To" name="to" defaultValue={roundedText(shown.to)} />
@@ -54,7 +49,7 @@ export function RangeForm({ whole, range, unit, onRange }: RangeFormProps) {
         )}
         <Button type="submit">Show this range</Button>
       </form>
-    </details>
+    </Menu>
   );
 }
 

@@ -1,7 +1,6 @@
-"use client";
-
 import { ChevronDown } from "lucide-react";
-import { type ReactNode, useEffect, useRef } from "react";
+import type { ReactNode } from "react";
+import { MenuBehaviour } from "@/components/ui/action/menu-behaviour";
 import { cn } from "@/lib/cn";
 
 export interface MenuProps {
@@ -9,61 +8,40 @@ export interface MenuProps {
   label: ReactNode;
   /** Name for assistive technology when `label` alone does not say it. */
   name?: string;
-  /** Which edge of the label the panel keeps to. */
-  align?: "left" | "right";
+  /** Which edge of the label the panel keeps to; `fit`: the right one, but on a phone the width of the box around. */
+  align?: "left" | "right" | "fit";
+  /** With a border, to stand among buttons. */
+  framed?: boolean;
   /** Links, buttons or small forms, one under the other. */
   children: ReactNode;
 }
 
+const PANEL = { left: "left-0", right: "right-0", fit: "inset-x-4 sm:right-0 sm:left-auto" } as const;
+
 /** A small panel that opens under its label. Opens without script; Escape, a click outside, leaving by Tab or going somewhere close it. */
-export function Menu({ label, name, align = "right", children }: MenuProps) {
-  const box = useRef<HTMLDetailsElement>(null);
-
-  useEffect(() => {
-    const close = (event: Event) => {
-      const details = box.current;
-      if (!details?.open) return;
-      if (event instanceof KeyboardEvent && event.key === "Escape") {
-        details.open = false;
-        details.querySelector("summary")?.focus();
-      }
-      const outside = event.target instanceof Node && !details.contains(event.target);
-      if (outside && !(event instanceof KeyboardEvent)) details.open = false;
-    };
-    const leave = (event: Event) => {
-      const details = box.current;
-      if (details && event.target instanceof Element && event.target.closest("a")) details.open = false;
-    };
-    const panel = box.current;
-    panel?.addEventListener("click", leave);
-    document.addEventListener("pointerdown", close);
-    document.addEventListener("focusin", close);
-    document.addEventListener("keydown", close);
-    return () => {
-      panel?.removeEventListener("click", leave);
-      document.removeEventListener("pointerdown", close);
-      document.removeEventListener("focusin", close);
-      document.removeEventListener("keydown", close);
-    };
-  }, []);
-
+export function Menu({ label, name, align = "right", framed = false, children }: MenuProps) {
   return (
-    <details ref={box} className="group relative">
+    <details className={cn("group", align === "fit" ? "sm:relative" : "relative")}>
       <summary
         aria-label={name}
-        className="flex min-h-control list-none items-center gap-1 rounded px-2 text-15 hover:bg-sunk [&::-webkit-details-marker]:hidden"
+        className={cn(
+          "flex min-h-control list-none items-center gap-1 rounded px-2 text-15 hover:bg-sunk [&::-webkit-details-marker]:hidden",
+          framed && "border border-edge bg-surface px-3 font-semibold hover:border-ink hover:bg-surface",
+        )}
       >
         {label}
         <ChevronDown aria-hidden size={16} className="shrink-0 text-ink2 group-open:rotate-180" />
       </summary>
       <div
         className={cn(
-          "absolute z-30 mt-1 flex w-max min-w-48 max-w-[calc(100vw-2rem)] flex-col rounded border border-edge bg-surface p-1 text-15",
-          align === "right" ? "right-0" : "left-0",
+          align === "fit" ? "sm:w-max" : "w-max",
+          "absolute z-30 mt-1 flex min-w-48 max-w-[calc(100vw-2rem)] flex-col rounded border border-edge bg-surface p-1 text-15",
+          PANEL[align],
         )}
       >
         {children}
       </div>
+      <MenuBehaviour />
     </details>
   );
 }

@@ -3,7 +3,7 @@ import { describe, expect, it } from "vitest";
 import { shiftLabels } from "@/components/charts/frame/label-shift";
 import { extentOf, indexSpan, nearestIndex } from "@/components/charts/frame/series";
 import { tableStep } from "@/components/charts/frame/table-step";
-import { thinIndices } from "@/components/charts/frame/thin";
+import { thinIndices, thinTogether } from "@/components/charts/frame/thin";
 
 describe("nearestIndex", () => {
   it("finds the nearer neighbour, the left one on a tie, the ends outside", () => {
@@ -91,6 +91,18 @@ describe("thinIndices", () => {
     const kept = thinIndices(xs, values, 200);
     expect(kept.some((i) => values[i] === null)).toBe(true);
     expect(kept).toContain(4020);
+  });
+});
+
+describe("thinTogether", () => {
+  it("keeps the spikes of every series at the same time points", () => {
+    const xs = Array.from({ length: 10_000 }, (_, i) => i);
+    const first = xs.map((x) => (x === 1234 ? 9 : 0));
+    const second = xs.map((x) => (x === 8765 ? -9 : 0));
+    const kept = thinTogether(xs, [first, second], 100);
+    expect(kept).toContain(1234);
+    expect(kept).toContain(8765);
+    expect(kept.length).toBeLessThanOrEqual(800);
   });
 });
 

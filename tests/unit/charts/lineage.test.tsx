@@ -84,9 +84,9 @@ describe("LineageGraph", () => {
             label: "R2",
             title: "boost ramp",
             state: "validating",
-            href: "/revisions/b",
+            href: "/methods",
           },
-          { id: "a", parentId: null, label: "R1", title: "as found", state: "stands", href: "/revisions/a" },
+          { id: "a", parentId: null, label: "R1", title: "as found", state: "stands", href: "/cautions" },
         ]}
       />,
     );
@@ -96,8 +96,8 @@ describe("LineageGraph", () => {
       "R1as foundstands",
     ]);
     expect([...box.querySelectorAll("a")].map((a) => a.getAttribute("href"))).toEqual([
-      "/revisions/b",
-      "/revisions/a",
+      "/methods",
+      "/cautions",
     ]);
     expect(box.innerHTML).not.toMatch(/\sstyle=/);
   });
