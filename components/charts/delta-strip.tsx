@@ -66,7 +66,7 @@ export function DeltaStrip({ rpm, deltaPct, lowPct, highPct, regions }: DeltaStr
 }
 
 /** The verdict in a few words, losses first: "A higher 5 300 to 5 900; B higher 2 800 to 3 900 per minute". */
-export function describeStrip(regions: readonly VerdictRegion[]): string {
+function describeStrip(regions: readonly VerdictRegion[]): string {
   if (regions.length === 0) return "No difference outside the band";
   const words = [...regions]
     .sort((a, b) => Number(a.verdict === "gain") - Number(b.verdict === "gain") || a.fromRpm - b.fromRpm)

@@ -3,7 +3,7 @@
 import { useEffect, useRef, useState } from "react";
 
 /** Width that the server draws at, px; the height never changes, so nothing jumps when the real width is known. */
-export const SERVER_WIDTH = 760;
+const SERVER_WIDTH = 760;
 
 /** Width of the element the ref is put on, in whole pixels; `SERVER_WIDTH` until it was measured. */
 export function useChartWidth() {

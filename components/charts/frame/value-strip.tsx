@@ -38,7 +38,7 @@ export function ValueStrip({ values }: { values: readonly StripValue[] }) {
 }
 
 /** Line sample with its marker: A dashed and round, B solid and square. */
-export function SideMarker({ side }: { side: "a" | "b" }) {
+function SideMarker({ side }: { side: "a" | "b" }) {
   return (
     <svg aria-hidden="true" viewBox="0 0 26 12" className="h-3 w-6.5 shrink-0">
       {side === "a" ? (

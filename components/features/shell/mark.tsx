@@ -1,7 +1,7 @@
 import { cn } from "@/lib/cn";
 
 /** Our mark: two hooked strokes, one running out to the right, one coming back to the left, interlocked without touching. */
-export function Mark({ className }: { className?: string }) {
+function Mark({ className }: { className?: string }) {
   return (
     <svg
       aria-hidden="true"
