@@ -24,6 +24,6 @@ export function methodNotes(
       : `Drift over the runs and the direction of the legs are taken out; the drift found is ${numberText(delta.drift_pct_per_run, { decimals: 2, signed: true })} % per run.`,
     `Smoothing and losses as in analysis version ${basis.analysisVersion}, the same for both sides; grid ${settings.rpm_step} per minute; vehicle sheet version ${basis.sheetVersion}.`,
     "Power and torque at the crank are estimates under the stated mesh efficiency and inertias; they are no rating under any standard.",
-    `Fingerprint of the input: ${basis.inputSha256}.`,
+    `Fingerprint of the input: ${basis.inputSha256.match(/.{8}/g)?.join(" ") ?? "not kept"}.`,
   ];
 }

@@ -1,14 +1,11 @@
 import type { DecisionDesk } from "@/lib/services/decisions/load-desk";
-import { STATE_WORDS } from "@/lib/services/revisions/load";
-
-const isState = (state: string): state is keyof typeof STATE_WORDS => state in STATE_WORDS;
+import { stateSentence } from "@/lib/services/decisions/state-sentence";
 
 /** Why nobody can decide on the revision now, whatever their role; null when a decision is open. */
 function closedBecause({ revision }: DecisionDesk): string | null {
   const name = `R${revision.number}`;
   if (revision.setAside) return `${name} is set aside.`;
-  if (revision.state !== "in_review")
-    return `${name} is not in review: it is ${isState(revision.state) ? STATE_WORDS[revision.state] : revision.state}.`;
+  if (revision.state !== "in_review") return `${name} is not in review: ${stateSentence(revision.state)}.`;
   return null;
 }
 

@@ -1,6 +1,6 @@
 import { selectPeopleToTell } from "@/db/queries/decisions";
 import { countOthersWithRole, hasPassphrase, selectUser } from "@/db/queries/people";
-import { selectRevision } from "@/db/queries/revisions";
+import { type RevisionState, selectRevision } from "@/db/queries/revisions";
 import { NotFoundError } from "@/lib/errors";
 import type { Verdict } from "@/lib/policy/actor";
 import { can } from "@/lib/policy/can";
@@ -17,7 +17,7 @@ export interface DecisionDesk {
     id: string;
     number: number;
     title: string;
-    state: string;
+    state: RevisionState;
     rowVersion: number;
     changeReason: string;
     intendedUse: string | null;

@@ -11,7 +11,7 @@ import { countOthersWithRole, selectRoles } from "@/db/queries/people";
 import { ConflictError, ForbiddenError, NotFoundError } from "@/lib/errors";
 import type { Ctx } from "@/lib/services/ctx";
 import { recordName } from "@/lib/services/decisions/record-name";
-import { STATE_WORDS } from "@/lib/services/revisions/load";
+import { stateSentence } from "@/lib/services/decisions/state-sentence";
 
 /** All that a decision relies on, locked and read anew. */
 export interface Desk {
@@ -83,7 +83,7 @@ export async function requireUnmoved(
   if (revision.state !== "in_review")
     throw new ConflictError(
       "revision_moved",
-      `R${revision.number} is no longer in review: it is ${STATE_WORDS[revision.state]}.${await whoWasFirst(tx, revision)} Nothing was decided by you.`,
+      `R${revision.number} is no longer in review: ${stateSentence(revision.state)}.${await whoWasFirst(tx, revision)} Nothing was decided by you.`,
       { state: revision.state },
     );
   if (revision.rowVersion !== seen.rowVersion)
