@@ -26,3 +26,11 @@ export async function orNotFound<T>(id: unknown, load: (id: string) => Promise<T
   if (!parsed.success) notFound();
   return await orRefused(() => load(parsed.data));
 }
+
+/** A version number of a page's address; undefined when none is asked for. What is no number ends on "not found". */
+export function versionOf(text: string | string[] | undefined): number | undefined {
+  if (text === undefined) return undefined;
+  const parsed = z.coerce.number().int().min(1).max(1_000_000).safeParse(text);
+  if (!parsed.success) notFound();
+  return parsed.data;
+}

@@ -1,4 +1,5 @@
 import { z } from "zod";
+import { readTypedNumber } from "@/lib/format/typed-number";
 
 interface Limits {
   min: number;
@@ -6,16 +7,6 @@ interface Limits {
   /** Printed in the sentence of a refusal. */
   unit?: string;
   integer?: boolean;
-}
-
-const SPACES = /[\s\u00a0\u202f]/g;
-const PLAIN = /^[+-]?\d+(\.\d+)?$/;
-
-/** A typed number: point or comma as decimal mark, spaces between thousands, U+2212 or a hyphen as minus. NaN when it is none. */
-export function readTypedNumber(text: string): number {
-  const bare = text.replace(SPACES, "").replace("\u2212", "-");
-  const pointed = /^[^.,]*,[^.,]*$/.test(bare) ? bare.replace(",", ".") : bare;
-  return PLAIN.test(pointed) ? Number(pointed) : Number.NaN;
 }
 
 function check(limits: Limits, value: number): string | null {

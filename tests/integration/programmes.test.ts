@@ -64,7 +64,7 @@ describe("a new programme", () => {
       displacementL: "1,4",
       massPartsKg: [{ part: "car as weighed", value: "1 286,5", uncertainty: "" }],
       rollingCircumferenceM: { value: "", uncertainty: "" },
-      gearRatios: ["3,62", "2.11"],
+      gearRatios: "3,62 2.11; 1.44",
       finalDrive: " ",
     };
     const { programmeId } = await createProgramme(lead, { ...NEW, sheet });
@@ -72,7 +72,7 @@ describe("a new programme", () => {
       displacementL: 1.4,
       massPartsKg: [{ part: "car as weighed", value: 1286.5, uncertainty: null }],
       rollingCircumferenceM: null,
-      gearRatios: [3.62, 2.11],
+      gearRatios: [3.62, 2.11, 1.44],
       finalDrive: null,
     });
   });

@@ -1,3 +1,4 @@
+import type { Queryable } from "@/db/client";
 import { enqueueMail } from "@/db/queries/mail";
 import { hasPassphrase, savePassphrase, selectUser } from "@/db/queries/people";
 import { hashPassphrase } from "@/lib/auth/passphrase";
@@ -53,4 +54,9 @@ function notice(toAddress: string, replaced: boolean) {
       "If it was not you, tell an admin of your workspace at once: they can disable your membership.",
     ].join("\n"),
   };
+}
+
+/** Whether a person has set a signing passphrase. */
+export async function personHasPassphrase(db: Queryable, userId: string): Promise<boolean> {
+  return await hasPassphrase(db, { userId });
 }

@@ -1,4 +1,5 @@
 import { z } from "zod";
+import { readTypedNumber } from "@/lib/format/typed-number";
 import type { VehicleSheetFigures } from "@/lib/measure/vehicle-sheet";
 import { optionalNumber, requiredNumber } from "@/lib/services/number-field";
 
@@ -18,6 +19,7 @@ const LIMITS = {
   gear: { min: 1, max: 20, integer: true },
 } as const;
 const GEARS_MAX = 20;
+const RATIO_RANGE = `A ratio lies between ${LIMITS.gearRatio.min} and ${LIMITS.gearRatio.max}.`;
 
 const uncertainty = optionalNumber({ min: 0, max: 100_000 });
 
@@ -70,6 +72,17 @@ const speedAtRpm = z
     return null;
   });
 
+/** Ratios in a row, first gear first: "3.62 2,11 1.44" or a list of numbers. Empty: not known. */
+const gearRatios = z.union([z.string(), z.array(z.number())]).transform((raw, context): number[] => {
+  if (typeof raw !== "string") return raw;
+  const words = raw.split(/[\s;]+/).filter((word) => word !== "");
+  const ratios = words.map(readTypedNumber);
+  const wrong = words.find((_, index) => !Number.isFinite(ratios[index]));
+  if (wrong !== undefined)
+    context.addIssue({ code: "custom", message: `"${wrong}" is not a number. Part the ratios by spaces.` });
+  return ratios;
+});
+
 const optionalText = z
   .string()
   .trim()
@@ -88,7 +101,11 @@ export const vehicleSheetSchema = z
     massPartsKg: z.array(massPart).min(1, "Write at least the car as weighed.").max(20),
     tyre: optionalText,
     rollingCircumferenceM: figure(LIMITS.circumference),
-    gearRatios: z.array(requiredNumber(LIMITS.gearRatio)).max(GEARS_MAX),
+    gearRatios: gearRatios.pipe(
+      z
+        .array(z.number().min(LIMITS.gearRatio.min, RATIO_RANGE).max(LIMITS.gearRatio.max, RATIO_RANGE))
+        .max(GEARS_MAX, `At most ${GEARS_MAX} gears.`),
+    ),
     finalDrive: optionalNumber(LIMITS.gearRatio),
     speedAtRpm,
     idleRpm: optionalNumber(LIMITS.rpm),

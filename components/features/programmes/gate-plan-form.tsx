@@ -1,0 +1,140 @@
+"use client";
+
+import { zodResolver } from "@hookform/resolvers/zod";
+import { Plus } from "lucide-react";
+import { useState } from "react";
+import { FormProvider, useFieldArray, useForm } from "react-hook-form";
+import type { z } from "zod";
+import { GateRow, type PlanFields } from "@/components/features/programmes/gate-row";
+import { GATE_GROUPS, SPRINT_TIMES } from "@/components/features/programmes/gate-words";
+import { Button } from "@/components/ui/action/button";
+import { Select } from "@/components/ui/form/select";
+import { SectionHeading } from "@/components/ui/layout/section-heading";
+import { Notice } from "@/components/ui/status/notice";
+import type { Gate, GatePlan } from "@/lib/gates/plan";
+import { gatePlanSchema } from "@/lib/services/gate-plans/schema";
+
+export interface GatePlanFormProps {
+  programmeId: string;
+  version: number;
+  plan: GatePlan;
+  blockedBecause: string | null;
+  action: (input: {
+    programmeId: string;
+    basedOnVersion: number;
+    plan: GatePlan;
+  }) => Promise<{ ok: boolean; message?: string; value?: { version: number } }>;
+}
+
+type Fields = z.input<typeof gatePlanSchema>;
+
+/** Numbers as they are typed. */
+function typed(gate: Gate): PlanFields["gates"][number] {
+  const entries = Object.entries(gate).map(([name, value]) => [
+    name,
+    typeof value === "number" ? String(value) : (value ?? ""),
+  ]);
+  return Object.fromEntries(entries);
+}
+
+/** An id that the plan does not have yet: "gain.2", "sprint.0-100". */
+function freshId(base: string, taken: readonly { id: string }[]): string {
+  const has = (id: string) => taken.some((gate) => gate.id === id);
+  if (!has(base)) return base;
+  let nth = 2;
+  while (has(`${base}.${nth}`)) nth += 1;
+  return `${base}.${nth}`;
+}
+
+/** The newest plan, to be changed into the next version. */
+export function GatePlanForm({ programmeId, version, plan, blockedBecause, action }: GatePlanFormProps) {
+  const form = useForm<Fields, unknown, GatePlan>({
+    resolver: zodResolver(gatePlanSchema),
+    defaultValues: { plan: 1, gates: plan.gates.map(typed) as Fields["gates"] },
+  });
+  const { fields, append, remove } = useFieldArray({ control: form.control, name: "gates", keyName: "key" });
+  const [time, setTime] = useState("0-100");
+  const [outcome, setOutcome] = useState<{ ok: boolean; message: string } | null>(null);
+  const { formState } = form;
+  const wrong = Object.keys(formState.errors).length > 0;
+  const gates = fields as unknown as (Gate & { key: string })[];
+
+  const addGain = () =>
+    append({
+      ...{ id: freshId("gain", gates), kind: "gain", level: "should" },
+      ...{ fromRpm: "2500", toRpm: "4500", atLeastPct: "1" },
+    });
+  const addSprint = () => {
+    const base = `sprint.${time.replaceAll(/[^a-z0-9.-]+/g, "-")}`;
+    append({ id: freshId(base, gates), kind: "sprint", level: "should", time, notSlowerByS: "0.1" });
+  };
+  const send = form.handleSubmit(async (parsed) => {
+    setOutcome(null);
+    const state = await action({ programmeId, basedOnVersion: version, plan: parsed });
+    const saved = state.value?.version;
+    const words =
+      saved === version ? "Nothing was changed, so no version was added." : `Version ${saved} is saved.`;
+    setOutcome({ ok: state.ok, message: state.ok ? words : (state.message ?? "It was not saved.") });
+  });
+
+  return (
+    <FormProvider {...form}>
+      <form onSubmit={send} noValidate className="flex flex-col gap-6">
+        {GATE_GROUPS.map((group) => (
+          <div key={group.title}>
+            <SectionHeading level={3}>{group.title}</SectionHeading>
+            <ul className="mt-1">
+              {gates.map(
+                (gate, index) =>
+                  group.kinds.includes(gate.kind) && (
+                    <GateRow
+                      key={gate.key}
+                      gate={gate}
+                      index={index}
+                      onRemove={
+                        gate.kind === "gain" || gate.kind === "sprint" ? () => remove(index) : undefined
+                      }
+                    />
+                  ),
+              )}
+            </ul>
+            {group.kinds.includes("gain") && (
+              <Button size="compact" icon={<Plus />} onClick={addGain}>
+                Ask for a gain in another region
+              </Button>
+            )}
+            {group.kinds.includes("sprint") && (
+              <div className="flex flex-wrap items-end gap-2">
+                <Select
+                  label="Another time"
+                  options={SPRINT_TIMES}
+                  value={time}
+                  onChange={(event) => setTime(event.target.value)}
+                  fieldClassName="w-44"
+                />
+                <Button icon={<Plus />} onClick={addSprint}>
+                  Add
+                </Button>
+              </div>
+            )}
+          </div>
+        ))}
+        {(wrong || outcome) && (
+          <Notice tone={!wrong && outcome?.ok ? "plain" : "problem"} live>
+            {wrong ? "Some gates need another look: each says why." : outcome?.message}
+          </Notice>
+        )}
+        <div>
+          <Button
+            type="submit"
+            look="filled"
+            blockedBecause={blockedBecause}
+            disabled={formState.isSubmitting}
+          >
+            {formState.isSubmitting ? "Saving …" : `Save as version ${version + 1}`}
+          </Button>
+        </div>
+      </form>
+    </FormProvider>
+  );
+}
