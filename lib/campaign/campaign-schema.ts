@@ -49,6 +49,7 @@ const run = z.strictObject({
   started_at: known(z.string()),
   weather: known(weather),
   road_day: known(z.string()),
+  mass_kg: known(positive),
 });
 
 const settings = z

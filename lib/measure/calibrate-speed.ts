@@ -17,6 +17,12 @@ import { median } from "@/lib/signal/statistics";
 /** What is believed before any log is read. Slip of a car tyre: 1 to 3 % at full load (from memory), here per newton. */
 const PRIOR = { slipPerN: 2e-6, slipSd: 1.5e-6, lagSd: 0.15, wheelScaleSd: 0.03, engineScaleSd: 0.03 };
 
+/** Drive force in N of a run at a road speed, an acceleration and a time. */
+export type ForceModel = (run: SpeedRun, speedMps: number, accelerationMps2: number, t: number) => number;
+
+/** A coast-down tells scale and lag many times over: at most so many samples a channel and run are used. */
+const MOST_COAST_SAMPLES = 400;
+
 interface Equation {
   source: SpeedSource;
   value: number;
@@ -38,14 +44,16 @@ export function channelNoise(channel: SampledChannel, fromS: number, toS: number
 /**
  * Estimates scale, lag and slip of every speed channel over all runs of a campaign, by weighted least squares on a smooth
  * base speed (undriven wheel, else GPS, else driven wheel, else engine speed) with weak priors and Huber weights.
- * `forceN(speed, acceleration)` is the drive force; `perMps` the stated engine speed per road speed, 1/min per m/s.
+ * `forceN` is the drive force; `perMps` the stated engine speed per road speed, 1/min per m/s.
+ * `earlier`: a first model, whose lags the base speed is shifted by, so that only small lags are left to be linear.
  * GPS sets the absolute scale where logged (its Doppler speed has no scale error to speak of), else the wheel.
  */
 export function calibrateSpeed(
   runs: readonly SpeedRun[],
-  forceN: (speedMps: number, accelerationMps2: number) => number,
+  forceN: ForceModel,
   perMps: number | null,
   masked: (run: SpeedRun, t: number) => boolean,
+  earlier: SpeedModel | null,
 ): SpeedModel {
   const has = (source: SpeedSource) => runs.filter((run) => run.signals[source]).length;
   const base = SPEED_SOURCES.find((source) => has(source) === runs.length) ?? mostCommon(has);
@@ -82,6 +90,8 @@ export function calibrateSpeed(
   }
   const rate = median(based.map((run) => run.signals[base]?.rateHz ?? 10));
   const floor = Math.max(0.1, 1.2 / rate);
+  const lagOf = (source: SpeedSource) =>
+    earlier?.base === base ? (earlier.channels.get(source)?.lagS ?? 0) : 0;
   const equations: Equation[] = [];
   for (const kind of [true, false]) {
     const some = stretches.filter((s) => s.pull === kind);
@@ -91,11 +101,11 @@ export function calibrateSpeed(
       kind ? floor : 3 * floor,
     );
     for (const { run, stretch, from, to } of some) {
-      gather(equations, run, smoothSpeed(stretch, smoothing), from, to, kind, base, forceN, masked);
+      gather(equations, run, smoothSpeed(stretch, smoothing), from, to, kind, base, forceN, masked, lagOf);
     }
   }
   for (const run of based) cruiseEquations(equations, run, base, nominal(base), forceN);
-  return solveModel(equations, base, nominal, noise);
+  return solveModel(equations, base, nominal, noise, lagOf);
 }
 
 function mostCommon(has: (source: SpeedSource) => number): SpeedSource {
@@ -116,16 +126,19 @@ function gather(
   to: number,
   pull: boolean,
   base: SpeedSource,
-  forceN: (v: number, a: number) => number,
+  forceN: ForceModel,
   masked: (run: SpeedRun, t: number) => boolean,
+  lagOf: (source: SpeedSource) => number,
 ): void {
   const scratch = new Float64Array(4);
   for (const source of SPEED_SOURCES) {
     const channel = run.signals[source];
     if (!channel || source === base || (!pull && source === "engineSpeed")) continue;
-    const [a, b] = between(channel, from, to);
-    for (let i = a; i < b; i++) {
-      const t = channel.times[i];
+    const lag = lagOf(source);
+    const [a, b] = between(channel, from + lag, to + lag);
+    const step = pull ? 1 : Math.max(1, Math.ceil((b - a) / MOST_COAST_SAMPLES));
+    for (let i = a; i < b; i += step) {
+      const t = channel.times[i] - lag;
       if (pull && slips(source) && masked(run, t)) continue;
       const speed = splineAt(fit.basis, fit.coefficients, t, 0, scratch);
       const acceleration = splineAt(fit.basis, fit.coefficients, t, 1, scratch);
@@ -134,7 +147,7 @@ function gather(
         value: channel.values[i],
         speed,
         acceleration,
-        forceN: pull ? forceN(speed, acceleration) : 0,
+        forceN: pull ? forceN(run, speed, acceleration, t) : 0,
       });
     }
   }
@@ -146,7 +159,7 @@ function cruiseEquations(
   run: SpeedRun,
   base: SpeedSource,
   nominal: number,
-  forceN: (v: number, a: number) => number,
+  forceN: ForceModel,
 ): void {
   const { cruise } = run.segments;
   const reference = run.signals[base];
@@ -159,7 +172,13 @@ function cruiseEquations(
     if (!channel || source === base) continue;
     const [c, d] = between(channel, cruise.from_s, cruise.to_s);
     for (let i = c; i < d; i++) {
-      equations.push({ source, value: channel.values[i], speed, acceleration: 0, forceN: forceN(speed, 0) });
+      equations.push({
+        source,
+        value: channel.values[i],
+        speed,
+        acceleration: 0,
+        forceN: forceN(run, speed, 0, channel.times[i]),
+      });
     }
   }
 }
@@ -170,6 +189,7 @@ function solveModel(
   base: SpeedSource,
   nominal: (source: SpeedSource) => number,
   noise: number,
+  lagOf: (source: SpeedSource) => number,
 ): SpeedModel {
   const others = SPEED_SOURCES.filter((source) => equations.some((e) => e.source === source));
   const index = new Map(others.map((source, k) => [source, 1 + 2 * k]));
@@ -177,7 +197,7 @@ function solveModel(
   const deviation = new Map<SpeedSource, number>(others.map((source) => [source, 0.05]));
   let x: Float64Array = new Float64Array(size);
   let covariance: Float64Array = new Float64Array(size * size);
-  for (let pass = 0; pass < 6; pass++) {
+  for (let pass = 0; pass < 4; pass++) {
     const normal = normalEquations(size);
     // A driven base slips itself: then only differences of slip between channels could be seen, so it is left at zero.
     const slipSd = slips(base) ? 1e-9 : PRIOR.slipSd;
@@ -186,7 +206,7 @@ function solveModel(
       const k = index.get(source) ?? 0;
       const sd = source === "engineSpeed" ? PRIOR.engineScaleSd : PRIOR.wheelScaleSd;
       addRow(normal, [k], [1], 1, 1 / sd ** 2);
-      addRow(normal, [k + 1], [1], 0, 1 / PRIOR.lagSd ** 2);
+      addRow(normal, [k + 1], [1], -lagOf(source), 1 / PRIOR.lagSd ** 2);
     }
     for (const e of equations) {
       const k = index.get(e.source) ?? 0;
@@ -233,7 +253,7 @@ function solveModel(
       source,
       x[k],
       Math.sqrt(covariance[k * size + k]),
-      x[k + 1] / x[k],
+      lagOf(source) + x[k + 1] / x[k],
       (deviation.get(source) ?? 0.05) / x[k],
     );
   }

@@ -1,6 +1,6 @@
 import type { CampaignEstimate } from "@/lib/measure/estimate-campaign";
 import type { GridCurve } from "@/lib/measure/pull-curve";
-import { positionAt, type RoadRun } from "@/lib/measure/road-observations";
+import { positionAt } from "@/lib/measure/road-observations";
 import type { CampaignVehicle } from "@/lib/measure/types";
 import { drivelineFigures } from "@/lib/measure/vehicle";
 import { bandedSolve } from "@/lib/signal/banded-cholesky";
@@ -39,21 +39,14 @@ export function powerBudget(
   const pull = estimate.pulls[index];
   if (a === null || v === null || t === null || kw === null || !pull) return null;
   const figures = drivelineFigures(vehicle);
-  const { driveline } = estimate;
+  const driveline = estimate.drivelines[index];
   const engineMass = driveline.meshEfficiency * driveline.engineInertiaKgm2 * driveline.gearingRadPerM ** 2;
   const forceN = (1000 * kw) / v + engineMass * a;
   const share = (massKg: number, relative: number) => (massKg * a * relative) / forceN;
   const massUncertainty = vehicle.mass_uncertainty_kg ?? MASS_SHARE * vehicle.mass_kg;
-  const entry = estimate.roadDays.find((day) => day.members.includes(index));
-  const run: RoadRun = {
-    signals: estimate.runs[index].signals,
-    segments: estimate.runs[index].segments,
-    track: estimate.tracks[index],
-    densityRatio: 1,
-    pullFit: null,
-  };
+  const { day, place, run } = estimate.roads[index];
   const near = [-0.4, 0, 0.4].map((dt) => ({ speedMps: v + a * dt, positionM: positionAt(run, t + dt) }));
-  const resistance = entry ? entry.day.uncertaintyN(entry.members.indexOf(index), near) / forceN : 0;
+  const resistance = day.uncertaintyN(place, near) / forceN;
   const relative = (figure: { value: number; uncertainty: number }) => figure.uncertainty / figure.value;
   return {
     mass: share(massUncertainty, 1),

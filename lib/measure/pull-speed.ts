@@ -1,7 +1,6 @@
 import { adaptiveSmoothing } from "@/lib/measure/adaptive-smoothing";
 import {
   chooseSmoothing,
-  type Smoothing,
   type SpeedSeries,
   type SpeedStretch,
   smoothSpeed,
@@ -43,7 +42,7 @@ export function pullSpeeds(
   forceN: (run: number, speedMps: number, accelerationMps2: number, t: number) => number,
   earlier: readonly (PullSpeed | null)[] | null,
   sharing: number | null,
-): { pulls: (PullSpeed | null)[]; smoothing: Smoothing | null } {
+): (PullSpeed | null)[] {
   const stretches: (SpeedStretch | null)[] = runs.map((run, index) => {
     const { pull } = run.segments;
     if (!pull) return null;
@@ -59,11 +58,11 @@ export function pullSpeeds(
     return series.length === 0 ? null : speedStretch(series, tip, pull.to_s, 0.1, tip);
   });
   const present = stretches.filter((s) => s !== null);
-  if (present.length === 0) return { pulls: runs.map(() => null), smoothing: null };
+  if (present.length === 0) return runs.map(() => null);
   const floor = floorS(runs, model);
   const even = chooseSmoothing(present, floor);
   const smoothing = sharing === null ? even : adaptiveSmoothing(present, even, sharing, floor);
-  const pulls = stretches.map((stretch, index): PullSpeed | null => {
+  return stretches.map((stretch, index): PullSpeed | null => {
     const { pull } = runs[index].segments;
     if (!stretch || !pull) return null;
     const fit = smoothSpeed(stretch, smoothing);
@@ -76,7 +75,6 @@ export function pullSpeeds(
       slipping,
     };
   });
-  return { pulls, smoothing };
 }
 
 /** Least kernel width: two samples of the fastest channel, and more for logs that only a slow GPS tells the speed of. */

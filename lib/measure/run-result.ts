@@ -63,16 +63,16 @@ export function pullResult(
     pull,
     pull.tipInS + SETTLED_S,
     pull.toS,
-    estimate.driveline,
+    estimate.drivelines[index],
     estimate.model.slipPerN,
-    (v, t) => estimate.resistanceN(index, v, t),
+    estimate.roads[index].resistanceN,
   );
   const spans = [...pull.slipping, ...extra.filter((note) => note.code === "gap")];
   const inside = (t: number) => spans.some((s) => t >= (s.from_s ?? 0) && t <= (s.to_s ?? -1));
   const grid = gridCurve(points, campaign.settings.rpm_step, inside);
   const factor = runFactor(campaign, run);
-  const day = estimate.roadDays.find((entry) => entry.members.includes(index));
-  const absolute = (day?.day.coastRuns ?? 0) > 0;
+  const { day } = estimate.roads[index];
+  const absolute = day.coastRuns > 0;
   const notes = pull.slipping.map(
     (span): Note => ({
       code: span.code,
@@ -97,15 +97,14 @@ export function pullResult(
     grid,
     result: {
       speed_source: sourceName(SPEED_SOURCES.filter((s) => signals[s] && estimate.model.channels.has(s))),
-      loss:
-        day && absolute
-          ? {
-              f0_n: day.day.f0N,
-              f1_n_per_mps: day.day.f1NPerMps,
-              f2_n_per_mps2: day.day.f2NPerMps2,
-              source: day.day.coastRuns === 1 && coast ? "run" : "road day",
-            }
-          : null,
+      loss: absolute
+        ? {
+            f0_n: day.f0N,
+            f1_n_per_mps: day.f1NPerMps,
+            f2_n_per_mps2: day.f2NPerMps2,
+            source: day.coastRuns === 1 && coast ? "run" : "road day",
+          }
+        : null,
       factor,
       curve,
       peak: curve && runPeak(estimate, index, campaign.vehicle, grid),
@@ -172,8 +171,8 @@ function doubts(estimate: CampaignEstimate, index: number, factor: FactorResult,
     });
   }
   if (factor.in_range === false) notes.push({ code: "factor_out_of_range", message: factor.why });
-  const track = estimate.tracks[index];
-  if (track?.located && run.leg && (run.leg === "out" ? 1 : -1) !== track.direction) {
+  const { track } = estimate.roads[index].run;
+  if (track.located && run.leg && (run.leg === "out" ? 1 : -1) !== track.direction) {
     notes.push({
       code: "leg_disagrees",
       message: `The GPS track runs against the leg that was typed (${run.leg}). Check out and back.`,

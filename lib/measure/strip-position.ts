@@ -38,16 +38,15 @@ export function wayAt(signals: RunSignals, way: Float64Array, t: number): number
 /**
  * Lays the runs of one road day on a common axis: the main axis of all GPS positions, each run tied to it by the median
  * offset between its projected positions and its integrated way. Runs without usable positions keep their own way from the
- * log's start, with the direction of `legDirection` (+1 when the leg is not known).
+ * log's start, with the direction of `legDirection` (+1 when the leg is not known). `speedFactor` turns finding speed into road speed.
  */
 export function stripTracks(
-  runs: readonly { signals: RunSignals; legDirection: 1 | -1 | 0 }[],
-  speedFactor: number,
+  runs: readonly { signals: RunSignals; legDirection: 1 | -1 | 0; speedFactor: number }[],
 ): StripTrack[] {
   const fixes = runs.map(({ signals }) => fixesOf(signals.latitude, signals.longitude));
   const all = fixes.flat();
   const own = runs.map(
-    ({ signals, legDirection }): StripTrack => ({
+    ({ signals, legDirection, speedFactor }): StripTrack => ({
       wayM: integratedWay(signals, speedFactor),
       originM: 0,
       direction: legDirection === -1 ? -1 : 1,

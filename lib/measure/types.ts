@@ -55,6 +55,8 @@ export interface CampaignRun {
   weather?: RunWeather | null;
   /** Groups runs that share losses; absent: all runs of the campaign are one road day. */
   road_day?: string | null;
+  /** Test mass of this run, where it differs from the vehicle's (another road day, another driver). */
+  mass_kg?: number | null;
 }
 
 export interface CampaignSettings {
