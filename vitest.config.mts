@@ -1,3 +1,4 @@
+import { availableParallelism } from "node:os";
 import { fileURLToPath } from "node:url";
 import { defineConfig } from "vitest/config";
 
@@ -20,6 +21,7 @@ export default defineConfig({
     alias: { "server-only": fileURLToPath(new URL("./tests/support/server-only.ts", import.meta.url)) },
   },
   test: {
+    maxWorkers: availableParallelism(),
     projects: [
       { extends: true, test: { ...SHARED, name: "unit", include: ["tests/unit/**/*.test.ts"] } },
       {

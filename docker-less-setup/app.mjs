@@ -1,4 +1,4 @@
-import { existsSync, mkdirSync, readFileSync } from "node:fs";
+import { existsSync, mkdirSync, readFileSync, statSync } from "node:fs";
 import { get } from "node:http";
 import { join } from "node:path";
 import { SetupProblem, stepFailed } from "./problems.mjs";
@@ -101,6 +101,7 @@ export async function startApp({ root, settings, logs, say, stops }) {
   const next = join(root, "node_modules/next/dist/bin/next");
   const port = Number(settings.PORT);
   const webLog = join(logs, "web.log");
+  const saidBefore = existsSync(webLog) ? statSync(webLog).size : 0;
   const worker = superviseService({
     ...common,
     name: "worker",
@@ -119,7 +120,7 @@ export async function startApp({ root, settings, logs, say, stops }) {
   const giveUpAt = Date.now() + ANSWERS_WITHIN_MS;
   while (!(await answers(port))) {
     if (web.restarts() > 0 || Date.now() > giveUpAt) {
-      const log = readFileSync(webLog, "utf8");
+      const log = readFileSync(webLog).subarray(saidBefore).toString("utf8");
       throw new SetupProblem(stepFailed({ step: "The web process", code: null, log, logFile: webLog }));
     }
     await new Promise((resolve) => setTimeout(resolve, POLL_MS));

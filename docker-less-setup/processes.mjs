@@ -119,6 +119,7 @@ export function spawnTied(command, { cwd, env, stdio, deathSignal, as }) {
  */
 export function superviseService({ name, command, cwd, env, logFile, graceMs, say }) {
   mkdirSync(dirname(logFile), { recursive: true });
+  if (existsSync(logFile) && statSync(logFile).size > LOG_BYTES) renameSync(logFile, `${logFile}.old`);
   let stopping = false;
   let restarts = 0;
   let delayMs = RESTART_FIRST_MS;
@@ -130,7 +131,6 @@ export function superviseService({ name, command, cwd, env, logFile, graceMs, sa
   let timer;
 
   const launch = () => {
-    if (existsSync(logFile) && statSync(logFile).size > LOG_BYTES) renameSync(logFile, `${logFile}.old`);
     const log = openSync(logFile, "a");
     const startedAt = Date.now();
     const current = spawnTied(command, { cwd, env, stdio: ["ignore", log, log], deathSignal: "SIGTERM" });

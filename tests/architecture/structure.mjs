@@ -56,9 +56,9 @@ export const RULES = [
   {
     name: "environment-in-one-place",
     applies: (path) => isCode(path) && !MAY_READ_ENVIRONMENT.test(path),
-    // NODE_ENV is a constant of the build, not a setting.
+    // NODE_ENV and NEXT_RUNTIME are constants of the build, not settings.
     complaints: eachLine(
-      /process\.env\b(?!\.NODE_ENV\b)|process\[["'`]env|\benv\b[^=]*\}\s*=\s*process\b|from "(node:)?process"/,
+      /process\.env\b(?!\.(NODE_ENV|NEXT_RUNTIME)\b)|process\[["'`]env|\benv\b[^=]*\}\s*=\s*process\b|from "(node:)?process"/,
       "settings come from lib/env.ts",
     ),
   },
