@@ -5,9 +5,8 @@ import { logger } from "@/lib/logger";
 import { readLog } from "@/lib/logs/read-log";
 import type { LogTable } from "@/lib/logs/types";
 import { analyseCampaign } from "@/lib/measure/analyse-campaign";
-import type { CampaignResult } from "@/lib/measure/types";
 import { readBlob } from "@/lib/services/blobs";
-import { buildCampaign, campaignRunId, massWarning } from "@/lib/services/comparisons/build-campaign";
+import { buildCampaign, campaignRunId } from "@/lib/services/comparisons/build-campaign";
 import { type CurrentInput, currentInput } from "@/lib/services/comparisons/current-input";
 
 interface ComparisonJob {
@@ -54,12 +53,6 @@ function whatIsMissing(current: CurrentInput): string | null {
   return `${sides} that counts yet. Attach runs; then it is computed by itself.`;
 }
 
-function analyse(current: CurrentInput, logs: Map<string, LogTable | FileRefusedError>): CampaignResult {
-  const result = analyseCampaign(buildCampaign(current), logs);
-  const warning = massWarning(current);
-  return warning ? { ...result, warnings: [...(result.warnings ?? []), warning] } : result;
-}
-
 /**
  * Computes a comparison for the runs that count now and stores the result under the digest of its input. May run any number
  * of times: a result that is there is left alone. A comparison that was never opened is nobody's work.
@@ -82,10 +75,10 @@ export async function computeComparison(
   if (missing) return await closeResult(db, key, { state: "failed", failure: missing });
   try {
     const logs = await readLogs(system, workspaceId, current);
-    await closeResult(db, key, { state: "ready", result: analyse(current, logs) });
+    await closeResult(db, key, { state: "ready", result: analyseCampaign(buildCampaign(current), logs) });
   } catch (error) {
     logger().error({ event: "comparison.failed", workspaceId, comparisonId, err: error });
-    const failure = error instanceof TwinpassError ? error.message : OUR_SIDE;
+    const failure = error instanceof UnavailableError ? error.message : OUR_SIDE;
     await closeResult(db, key, { state: "failed", failure });
     throw error;
   }

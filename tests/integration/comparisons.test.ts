@@ -207,7 +207,7 @@ describe("a result", () => {
       [3, "B", "used"],
       [4, "A", "used"],
     ]);
-    expect(lines[1].why).toEqual(["a lorry in the way Its result could be seen then."]);
+    expect(lines[1].why).toEqual(["a lorry in the way.", "Its result could be seen then."]);
     expect(conditions.A.runs).toBe(2);
     expect(conditions.B.runs).toBe(1);
     expect(conditions.A.massKg).toEqual({ min: 1486, mean: 1486, max: 1486 });

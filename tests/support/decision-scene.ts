@@ -59,7 +59,7 @@ export async function createSigner(
 }
 
 /** A result in which B gains one per cent; invented, to have something that a decision can rest on. */
-export function inventedResult(runNumbers: { A: number[]; B: number[] }): CampaignResult {
+function inventedResult(runNumbers: { A: number[]; B: number[] }): CampaignResult {
   const rpm = [2000, 3000, 4000, 5000, 6000];
   const flat = (value: number) => rpm.map(() => value);
   const side = (n: number, nm: number) => ({

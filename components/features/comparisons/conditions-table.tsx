@@ -88,7 +88,7 @@ export function ConditionsTable({
         { key: "what", header: "Condition", rowHeader: true, cell: (line) => line.what },
         { key: "a", header: `A ${labels.a}`, cell: (line) => line.a },
         { key: "b", header: `B ${labels.b}`, cell: (line) => line.b },
-        { key: "d", header: "B \u2212 A", cell: (line) => line.difference },
+        { key: "d", header: "B \u2212 A", className: "whitespace-nowrap", cell: (line) => line.difference },
       ]}
     />
   );

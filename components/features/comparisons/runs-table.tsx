@@ -38,9 +38,14 @@ export function RunsTable({ runs }: { runs: readonly RunLine[] }) {
           header: "Side",
           cell: (run) => <Tag tone={run.side === "B" ? "strong" : "plain"}>{run.side}</Tag>,
         },
-        { key: "day", header: "Road day", cell: (run) => run.day },
+        { key: "day", header: "Road day", className: "whitespace-nowrap", cell: (run) => run.day },
         { key: "order", header: "Order", numeric: true, cell: (run) => run.order },
-        { key: "leg", header: "Kind, leg", cell: (run) => `${run.kind}, ${run.leg}` },
+        {
+          key: "leg",
+          header: "Kind, leg",
+          className: "whitespace-nowrap",
+          cell: (run) => `${run.kind}, ${run.leg}`,
+        },
         { key: "gear", header: "Gear", numeric: true, cell: (run) => numberText(run.gear) },
         {
           key: "peak",

@@ -33,7 +33,7 @@ export function GateList({ gates, waivers, columns = 1 }: GateListProps) {
     <ul className={cn("grid gap-x-8", columns === 2 && "sm:grid-cols-2")}>
       {sorted.map((gate) => (
         <li key={gate.id} className="keep-together flex flex-col gap-1 border-line border-t py-3">
-          <div className="flex flex-wrap items-baseline justify-between gap-x-3">
+          <div className="flex flex-wrap items-center justify-between gap-x-3">
             <StateMark state={gate.state} />
             <span className="text-13 text-ink2">{LEVEL[gate.level]}</span>
           </div>

@@ -24,7 +24,7 @@ export interface CurrentRun extends ComparedRun {
 }
 
 /** The typed facts of a run that enter the computation beside its log; the keys are the words of `whatMoved`. */
-export function runFields(run: ComparedRun): Record<string, unknown> {
+function runFields(run: ComparedRun): Record<string, unknown> {
   return {
     gear: run.gear,
     started: run.startedAt?.toISOString() ?? null,

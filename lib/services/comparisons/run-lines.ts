@@ -8,8 +8,9 @@ function outcomeOf(
   judged: RunResult | undefined,
 ): Pick<RunLine, "outcome" | "why"> {
   if (run.setAsideAt) {
-    const seen = run.resultWasVisible ? " Its result could be seen then." : "";
-    return { outcome: "set aside", why: [`${run.setAsideReason ?? "No reason was kept."}${seen}`] };
+    const why = [(run.setAsideReason ?? "No reason was kept").replace(/\.?$/, ".")];
+    if (run.resultWasVisible) why.push("Its result could be seen then.");
+    return { outcome: "set aside", why };
   }
   if (!run.counts) {
     const other = run.side === "A" ? "B" : "A";

@@ -41,7 +41,7 @@ export type ComparedEvidence = Pick<
   | "runs"
 >;
 
-export const NO_COMPARISON: ComparedEvidence = {
+const NO_COMPARISON: ComparedEvidence = {
   comparisonId: null,
   comparisonInputSha256: null,
   resultSha256: null,

@@ -1,4 +1,4 @@
-import type { Metadata } from "next";
+import type { Metadata, Route } from "next";
 import Link from "next/link";
 import { changeSettingsAction, recomputeAction } from "@/app/(workspace)/comparisons/actions";
 import { AnswerCard } from "@/components/features/comparisons/answer-card";
@@ -12,6 +12,7 @@ import { RunsTable } from "@/components/features/comparisons/runs-table";
 import { SettingsForm } from "@/components/features/comparisons/settings-form";
 import { TwinsTable } from "@/components/features/comparisons/twins-table";
 import { GateList, gateCount } from "@/components/features/gates/gate-list";
+import { buttonStyle } from "@/components/ui/action/button-style";
 import { LinkButton } from "@/components/ui/action/link-button";
 import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
 import { Card } from "@/components/ui/layout/card";
@@ -48,7 +49,7 @@ export default async function ComparisonPage({
           <Breadcrumbs
             items={[
               { label: "Programmes", href: "/programmes" },
-              { label: view.programme.name, href: `/programmes/${view.programme.id}` },
+              { label: view.programme.name, href: `/programmes/${view.programme.id}` as Route },
               { label: `${labels.a} and ${labels.b}` },
             ]}
           />
@@ -69,9 +70,13 @@ export default async function ComparisonPage({
         }
         actions={
           view.state === "ready" && (
-            <LinkButton href={`/api/comparisons/${view.id}/csv` as never} prefetch={false}>
+            <a
+              href={`/api/comparisons/${view.id}/csv`}
+              download
+              className={buttonStyle("outlined", "normal", false)}
+            >
               Save as CSV
-            </LinkButton>
+            </a>
           )
         }
       />
@@ -118,7 +123,7 @@ export default async function ComparisonPage({
               <p className="mb-3 text-15">
                 {labels.b} is in review. The lead decides on it beside this evidence.
               </p>
-              <LinkButton look="filled" href={`/revisions/${view.b.id}/decide`}>
+              <LinkButton look="filled" href={`/revisions/${view.b.id}/decide` as Route}>
                 Open decision
               </LinkButton>
             </Card>

@@ -1,4 +1,4 @@
-import type { Metadata } from "next";
+import type { Metadata, Route } from "next";
 import Link from "next/link";
 import { AnswerCard } from "@/components/features/comparisons/answer-card";
 import { ComparisonFigure } from "@/components/features/comparisons/comparison-figure";
@@ -47,8 +47,8 @@ export default async function RecordPage({ params }: PageProps<"/records/[record
           <Breadcrumbs
             items={[
               { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` },
-              { label: `R${revision.number}`, href: `/revisions/${revision.id}` },
+              { label: programme.name, href: `/programmes/${programme.id}` as Route },
+              { label: `R${revision.number}`, href: `/revisions/${revision.id}` as Route },
               { label: recordName(decision.recordNumber) },
             ]}
           />
@@ -57,7 +57,9 @@ export default async function RecordPage({ params }: PageProps<"/records/[record
         lead={`${programme.name}. ${revision.stands ? `R${revision.number} stands today.` : `R${revision.number} does not stand today.`}`}
         actions={
           revision.stands &&
-          mayRollBack && <LinkButton href={`/programmes/${programme.id}/roll-back`}>Roll back …</LinkButton>
+          mayRollBack && (
+            <LinkButton href={`/programmes/${programme.id}/roll-back` as Route}>Roll back …</LinkButton>
+          )
         }
       />
       <RecordSeal record={record} />

@@ -1,4 +1,4 @@
-import type { Metadata } from "next";
+import type { Metadata, Route } from "next";
 import { rollBackAction } from "@/app/(workspace)/programmes/[programme]/roll-back/actions";
 import { Cautions } from "@/components/features/decisions/cautions";
 import { EarlierList } from "@/components/features/decisions/earlier-list";
@@ -35,7 +35,7 @@ export default async function RollBackPage({
           <Breadcrumbs
             items={[
               { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` },
+              { label: programme.name, href: `/programmes/${programme.id}` as Route },
               { label: "Roll back" },
             ]}
           />

@@ -1,4 +1,4 @@
-import type { Metadata } from "next";
+import type { Metadata, Route } from "next";
 import Link from "next/link";
 import { openComparisonAction, recomputeAction } from "@/app/(workspace)/comparisons/actions";
 import { decideAction } from "@/app/(workspace)/revisions/[revision]/decide/actions";
@@ -45,8 +45,8 @@ export default async function DecidePage({ params }: PageProps<"/revisions/[revi
           <Breadcrumbs
             items={[
               { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` },
-              { label: `R${revision.number}`, href: `/revisions/${revision.id}` },
+              { label: programme.name, href: `/programmes/${programme.id}` as Route },
+              { label: `R${revision.number}`, href: `/revisions/${revision.id}` as Route },
               { label: "Decision" },
             ]}
           />
@@ -89,7 +89,7 @@ export default async function DecidePage({ params }: PageProps<"/revisions/[revi
             description={`Plan version ${gates.planVersion ?? "–"}: ${gateCount(gates.results)}`}
             actions={
               comparison && (
-                <LinkButton size="compact" href={`/comparisons/${comparison.id}`}>
+                <LinkButton size="compact" href={`/comparisons/${comparison.id}` as Route}>
                   All of the comparison
                 </LinkButton>
               )
