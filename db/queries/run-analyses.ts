@@ -36,7 +36,7 @@ export async function selectRunAnalyses(
     .limit(10);
 }
 
-/** Numbers of the records whose decision cites any of the runs, oldest first. */
+/** Numbers of the records whose decision rests on any of the runs, oldest first; a run that was left out there bears none. */
 export async function selectCitingRecords(
   db: Queryable,
   { workspaceId, runIds }: { workspaceId: string; runIds: readonly string[] },
@@ -47,6 +47,7 @@ export async function selectCitingRecords(
     select cited->>'runId' as "runId", record_number as "recordNumber", id as "decisionId"
     from decisions, jsonb_array_elements(evidence->'runs') as cited
     where workspace_id = ${workspaceId} and cited->>'runId' = any(${ids})
+      and cited->>'leftOut' is null
     order by record_number`);
   return rows;
 }
