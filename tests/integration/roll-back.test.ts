@@ -1,12 +1,14 @@
+import { createHash } from "node:crypto";
 import { eq, sql } from "drizzle-orm";
-import { describe, expect, vi } from "vitest";
-import { decisions, ledger, mailQueue, programmes, revisions } from "@/db/tables";
+import { describe, expect, onTestFinished, vi } from "vitest";
+import { blobs, decisions, ledger, mailQueue, programmes, revisions } from "@/db/tables";
 import { ConflictError, ForbiddenError, InvalidInputError, NotFoundError } from "@/lib/errors";
 import type { Ctx } from "@/lib/services/ctx";
 import { getRollBackDesk, previewRollBack } from "@/lib/services/decisions/load-roll-back";
 import { promoteRevision } from "@/lib/services/decisions/promote";
 import { rollBack } from "@/lib/services/decisions/roll-back";
 import type { RollBackInput } from "@/lib/services/decisions/schema";
+import { blobKey } from "@/storage/keys";
 import { test } from "@/tests/support/database";
 import {
   createCandidate,
@@ -17,12 +19,17 @@ import {
   type Scene,
   seenBy,
 } from "@/tests/support/decision-scene";
-import { createWorkspaceRow } from "@/tests/support/factories";
+import { createRevisionRow, createWorkspaceRow } from "@/tests/support/factories";
+import { createTestStore } from "@/tests/support/store";
 
 // Hashing takes half a second a signature on purpose; here what is stored is the passphrase itself.
 vi.mock("@/lib/auth/passphrase", () => ({
   passphraseFits: async (given: string, stored: string) => given === stored,
 }));
+
+async function* onePiece(bytes: Uint8Array) {
+  yield bytes;
+}
 
 const WAIVED = [{ gateId: "evidence.days", reason: "nothing was driven for this test of the way back" }];
 
@@ -125,6 +132,53 @@ describe("rolling back", () => {
     ]);
     await expect(previewRollBack(lead, desk, draftId)).rejects.toThrow(NotFoundError);
     await rollBack(lead, backTo(scene, thirdId, standingId, 1));
+  });
+
+  test("shows beforehand which bytes change back, and a damaged file keeps nobody from it", async ({
+    database: { db },
+  }) => {
+    const { store, drop } = createTestStore();
+    onTestFinished(drop);
+    const scene = await createScene(db);
+    const keep = async (text: string) => {
+      const bytes = Buffer.from(text);
+      const sha256 = createHash("sha256").update(bytes).digest("hex");
+      const { workspaceId } = scene;
+      await db.insert(blobs).values({ workspaceId, sha256, sizeBytes: bytes.length }).onConflictDoNothing();
+      await store.create(blobKey(workspaceId, sha256), onePiece(bytes), { sizeBytes: bytes.length, sha256 });
+      return sha256;
+    };
+    // Intel HEX by hand: four bytes at 0x0100; checksum = two's complement of the sum of the other bytes of the line.
+    const first = await keep(":0401000001020304F1\n:00000001FF\n");
+    const second = await keep(":0401000001AABB0491\n:00000001FF\n");
+    const damaged = await keep(":0401000001AABB0400\n:00000001FF\n");
+    const lead = { ...scene.lead, store };
+    const asHex = (number: number, imageSha256: string) =>
+      createRevisionRow(db, {
+        workspaceId: scene.workspaceId,
+        programmeId: scene.programmeId,
+        number,
+        authorId: scene.author.userId,
+        state: "superseded",
+        stoodFrom: new Date("2030-01-01T08:00:00Z"),
+        stoodUntil: new Date("2030-01-02T08:00:00Z"),
+        imageSha256,
+      });
+    const earlierId = await asHex(11, first);
+    const damagedId = await asHex(12, damaged);
+    const nowId = await createCandidate(scene, 13, { imageSha256: second });
+    await promoteRevision(lead, { ...(await seenBy(lead, nowId)), waivers: WAIVED });
+
+    const desk = await getRollBackDesk(lead, scene.programmeId);
+    const preview = await previewRollBack(lead, desk, earlierId);
+    expect(preview).toMatchObject({
+      sameBytes: false,
+      difference: { ranges: 1, bytes: 2, first: [{ address: 0x0101, length: 2 }] },
+    });
+    const broken = await previewRollBack(lead, desk, damagedId);
+    expect(broken.difference).toEqual({ failure: expect.stringMatching(/\.$/) });
+    await rollBack(lead, backTo(scene, nowId, damagedId, 12));
+    expect((await standing(scene)).standingId).toBe(damagedId);
   });
 
   test("is refused when another revision stands than the lead saw, or the number or reason is missing", async ({

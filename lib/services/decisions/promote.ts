@@ -2,7 +2,7 @@ import { moveRevision, setStandingRevision } from "@/db/queries/decisions";
 import { ConflictError, InvalidInputError } from "@/lib/errors";
 import type { GateResult } from "@/lib/gates/plan";
 import { whatMoved } from "@/lib/services/comparisons/what-moved";
-import type { Ctx } from "@/lib/services/ctx";
+import { authorise, type Ctx } from "@/lib/services/ctx";
 import { decide, evidenceOf } from "@/lib/services/decisions/decide";
 import { type RecordedDecision, recordDecision } from "@/lib/services/decisions/record";
 import { namesRevision, type PromoteInput, promoteInput } from "@/lib/services/decisions/schema";
@@ -93,6 +93,10 @@ export async function promoteRevision(ctx: Ctx, raw: PromoteInput): Promise<Reco
         "wrong_number",
         `You typed "${input.typedNumber}", but this page is about R${revision.number}. Nothing was decided.`,
       );
+    if (input.waivers.length > 0) {
+      const { authorId, submitterId } = revision;
+      authorise(actor, "gate.waive", { authorId, submitterId, otherActiveLead: desk.otherActiveLead });
+    }
     requireSameEvidence(gates, input);
     const { gates: results, signed } = applyWaivers(gates.results, input.waivers);
 
