@@ -54,7 +54,7 @@ export function RecordFacts({ record }: RecordFactsProps) {
           term: "Image",
           description: `${revision.imageFileName}, ${numberText(revision.imageBytes)} bytes`,
         },
-        { term: "Its fingerprint", description: <Fingerprint value={evidence.imageSha256} /> },
+        { term: "Its fingerprint", description: <Fingerprint value={evidence.imageSha256} full /> },
         {
           term: "Stood before",
           description: record.from ? (
@@ -68,7 +68,7 @@ export function RecordFacts({ record }: RecordFactsProps) {
         {
           term: "Its fingerprint",
           description: evidence.standingImageSha256 ? (
-            <Fingerprint value={evidence.standingImageSha256} />
+            <Fingerprint value={evidence.standingImageSha256} full />
           ) : (
             "–"
           ),

@@ -57,11 +57,14 @@ export function RecordSeal({ record }: RecordSealProps) {
           { term: "Identity confirmed by", description: decision.reauthMethod },
           { term: "Made by", description: authorName },
           { term: "Asked by", description: submitterName ?? "nobody" },
-          { term: "Fingerprint of this record", description: <Fingerprint value={decision.recordSha256} /> },
+          {
+            term: "Fingerprint of this record",
+            description: <Fingerprint value={decision.recordSha256} full />,
+          },
           {
             term: "Of the record before",
             description: decision.previousRecordSha256 ? (
-              <Fingerprint value={decision.previousRecordSha256} />
+              <Fingerprint value={decision.previousRecordSha256} full />
             ) : (
               "this is the first"
             ),
