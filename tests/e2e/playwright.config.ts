@@ -1,14 +1,12 @@
 import { defineConfig, devices } from "@playwright/test";
 
 const { E2E_BASE_URL, E2E_CHROMIUM, E2E_REPORT } = process.env;
-if (!E2E_BASE_URL)
-  throw new Error("The browser tests need the product they test: run them with npm test -- e2e");
-
 const asRoot = process.getuid?.() === 0;
 
 /** The build, its database, worker, storage and mail folders are made by `npm test`; see docker-less-setup/run-tests.mjs. */
 export default defineConfig({
   testDir: ".",
+  globalSetup: "./demand-product.ts",
   outputDir: "../../test-results",
   forbidOnly: true,
   retries: 0,
@@ -18,8 +16,10 @@ export default defineConfig({
   reporter: [["list"], ...(E2E_REPORT ? ([["json", { outputFile: E2E_REPORT }]] as const) : [])],
   use: {
     ...devices["Desktop Chrome"],
-    baseURL: E2E_BASE_URL,
+    ...(E2E_BASE_URL ? { baseURL: E2E_BASE_URL } : {}),
     viewport: { width: 1280, height: 900 },
+    actionTimeout: 15_000,
+    navigationTimeout: 30_000,
     locale: "en-GB",
     timezoneId: "UTC",
     trace: "retain-on-failure",

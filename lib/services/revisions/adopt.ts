@@ -1,12 +1,12 @@
 import type { z } from "zod";
 import { setStandingRevision } from "@/db/queries/decisions";
-import { updateRevision } from "@/db/queries/revisions";
+import { selectRevision, updateRevision } from "@/db/queries/revisions";
 import { reauthenticate } from "@/lib/auth/reauthenticate";
 import { ConflictError } from "@/lib/errors";
 import { authorise, type Ctx, withTransaction } from "@/lib/services/ctx";
 import { lockDesk } from "@/lib/services/decisions/lock-desk";
 import { type RecordedDecision, recordDecision } from "@/lib/services/decisions/record";
-import { loadRevisionForUpdate, requireState } from "@/lib/services/revisions/load";
+import { loadRevisionForUpdate, noRevision, requireState } from "@/lib/services/revisions/load";
 import { adoptAsFound } from "@/lib/services/revisions/schema";
 
 /**
@@ -21,8 +21,10 @@ export async function adoptRevisionAsFound(
   authorise(ctx, "revision.adopt");
   const reauthMethod = await reauthenticate(ctx, passphrase);
   return await withTransaction(ctx, async (tx, inner) => {
+    const found = await selectRevision(tx, { workspaceId: inner.workspaceId, revisionId });
+    if (!found) throw noRevision();
+    const desk = await lockDesk(tx, inner, { programmeId: found.programmeId, revisionId });
     const row = await loadRevisionForUpdate(tx, inner, revisionId);
-    const desk = await lockDesk(tx, inner, { programmeId: row.programmeId, revisionId });
     authorise(desk.actor, "revision.adopt");
     requireState(row, ["draft"], "adopt it as found");
     if (desk.standing) {
