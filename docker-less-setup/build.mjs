@@ -22,7 +22,7 @@ function filesBelow(folder) {
  * @param {string} salt what else the build depends on
  * @returns {string} SHA-256 over the paths and contents of all sources of a build
  */
-export function sourceDigest(root, salt) {
+function sourceDigest(root, salt) {
   const rootFiles = readdirSync(root).filter((name) => ROOT_FILE.test(name));
   const files = [
     ...SOURCES.flatMap((name) => filesBelow(join(root, name))),

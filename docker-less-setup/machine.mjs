@@ -149,7 +149,7 @@ function openFiles(pid) {
 }
 
 /** @param {number} pid @returns {string} its command line, shortened; empty when it has ended */
-export function commandOf(pid) {
+function commandOf(pid) {
   try {
     return readFileSync(`/proc/${pid}/cmdline`, "utf8")
       .replace(/[\0\s]+/g, " ")

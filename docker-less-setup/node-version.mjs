@@ -1,7 +1,7 @@
 // No imports and no recent syntax: this file is read by a Node.js that may be far too old for the rest.
 
 /** Oldest Node.js that the packages of this project accept. */
-export const NODE_MINIMUM = "20.20.0";
+const NODE_MINIMUM = "20.20.0";
 
 /**
  * @param {string} found e.g. "v18.19.0"

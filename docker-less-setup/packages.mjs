@@ -15,7 +15,7 @@ const DEBIAN_PACKAGES_BYTES = 6e8;
  * @param {string} root
  * @returns {boolean} whether the installed Node packages are those of package-lock.json
  */
-export function nodePackagesCurrent(root) {
+function nodePackagesCurrent(root) {
   const installed = join(root, "node_modules", ".package-lock.json");
   if (!existsSync(installed)) return false;
   const wanted = lockedVersions(join(root, "package-lock.json"));
