@@ -1,9 +1,10 @@
 import type { Metadata } from "next";
-import { NewRevisionForm } from "@/components/features/revisions/new-revision-form";
+import { NewRevisionForm } from "@/app/(workspace)/revisions/new/new-revision-form";
 import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { Notice } from "@/components/ui/status/notice";
 import { requireCtx } from "@/lib/auth/current";
+import { QueryProvider } from "@/lib/client/query-provider";
 import { orNotFound } from "@/lib/http/page";
 import { getParentChoices } from "@/lib/services/revisions/choose-parent";
 
@@ -33,7 +34,9 @@ export default async function NewRevisionPage({ searchParams }: PageProps<"/revi
         A change of calibration can destroy an engine and can make a vehicle illegal on the road: emissions
         and noise rules, type approval, insurance and warranty differ by place.
       </Notice>
-      <NewRevisionForm programmeId={programme.id} parents={parents} />
+      <QueryProvider>
+        <NewRevisionForm programmeId={programme.id} parents={parents} />
+      </QueryProvider>
     </div>
   );
 }
