@@ -28,6 +28,8 @@ export interface BandOptions {
   level: number;
   seed: number;
   resamples: number;
+  /** Columns to each side whose residual variance is pooled with a column's own (triangular weights). */
+  pool: number;
   /** True when an arm is too small for the permutation to hold its level (three runs): Bonferroni instead. */
   small: boolean;
 }
@@ -56,6 +58,7 @@ export function deltaBand(
   const standardError = new Float64Array(count);
   const orderEffect = new Float64Array(count).fill(Number.NaN);
   const residuals = new Float64Array(n * count).fill(Number.NaN);
+  const squares = new Float64Array(count);
   let df = Number.POSITIVE_INFINITY;
   for (let k = 0; k < count; k++) {
     const rows: number[] = [];
@@ -72,13 +75,16 @@ export function deltaBand(
     const x = Float64Array.from(rows.flatMap((r) => [...design.subarray(r * columns, (r + 1) * columns)]));
     const solved = leastSquares(x, y, columns);
     effect[k] = solved.coefficients[side];
-    standardError[k] = solved.residualSd * Math.sqrt(fit.sideVariance);
+    squares[k] = solved.residualSd ** 2 * fit.df;
     if (order !== null) orderEffect[k] = solved.coefficients[order];
     const scale = Math.sqrt(rows.length / fit.df);
     rows.forEach((r, i) => {
       residuals[r * count + k] = solved.residuals[i] * scale;
     });
   }
+  const dfs = Float64Array.from(fits, (fit) => fit.df);
+  const variance = pooledVariance(squares, dfs, options.small ? 0 : options.pool);
+  for (let k = 0; k < count; k++) standardError[k] = Math.sqrt(variance[k] * fits[k].sideVariance);
   const critical = options.small
     ? tQuantile(1 - (1 - options.level) / (2 * count), df)
     : permutationCritical(fillGaps(residuals, n, count), n, count, fits, options);
@@ -90,6 +96,20 @@ export function deltaBand(
     method: options.small ? "Bonferroni t" : "permutation max-t",
     orderEffect,
   };
+}
+
+/** Residual variance a column: sums of squares over degrees of freedom, both pooled with triangular weights over neighbours. */
+function pooledVariance(squares: Float64Array, dfs: Float64Array, pool: number): Float64Array {
+  return squares.map((_, k) => {
+    let top = 0;
+    let bottom = 0;
+    for (let j = Math.max(0, k - pool); j <= Math.min(squares.length - 1, k + pool); j++) {
+      const weight = 1 - Math.abs(j - k) / (pool + 1);
+      top += weight * squares[j];
+      bottom += weight * dfs[j];
+    }
+    return top / bottom;
+  });
 }
 
 function columnFit(design: Float64Array, columns: number, side: number, rows: readonly number[]): ColumnFit {
@@ -161,13 +181,15 @@ function permutationCritical(
   const order = Int32Array.from({ length: n }, (_, i) => i);
   const largest = new Float64Array(options.resamples);
   const permuted = new Float64Array(n * count);
+  const effects = new Float64Array(count);
+  const squares = new Float64Array(count);
+  const dfs = Float64Array.from(fits, (fit) => fit.df);
   for (let b = 0; b < options.resamples; b++) {
     shuffle(order, random);
     for (let r = 0; r < n; r++)
       permuted.set(residuals.subarray(order[r] * count, (order[r] + 1) * count), r * count);
-    let top = 0;
     for (let k = 0; k < count; k++) {
-      const { rows, contrast, basis, columns, sideVariance, df } = fits[k];
+      const { rows, contrast, basis, columns } = fits[k];
       let effect = 0;
       let square = 0;
       for (let i = 0; i < rows.length; i++) {
@@ -180,7 +202,13 @@ function permutationCritical(
         for (let i = 0; i < rows.length; i++) dot += basis[i * columns + j] * permuted[rows[i] * count + k];
         square -= dot * dot;
       }
-      const t = Math.abs(effect) / Math.sqrt(Math.max(1e-300, (square / df) * sideVariance));
+      effects[k] = effect;
+      squares[k] = Math.max(0, square);
+    }
+    const variance = pooledVariance(squares, dfs, options.pool);
+    let top = 0;
+    for (let k = 0; k < count; k++) {
+      const t = Math.abs(effects[k]) / Math.sqrt(Math.max(1e-300, variance[k] * fits[k].sideVariance));
       if (t > top) top = t;
     }
     largest[b] = top;

@@ -1,4 +1,4 @@
-import { tCdf, tQuantile } from "@/lib/signal/distributions";
+import { normalQuantile, tCdf, tQuantile } from "@/lib/signal/distributions";
 import { mean, standardDeviation } from "@/lib/signal/statistics";
 
 /** Size, mean and sample standard deviation of one group. */
@@ -55,8 +55,11 @@ export function pooledT(a: Group, b: Group, level = 0.95): TwoMeans | null {
   return testOf(b.mean - a.mean, Math.sqrt(variance * (1 / a.n + 1 / b.n)), df, level);
 }
 
-/** Repeatability limit: two single results differ by less than this in `level` of cases. ISO 5725-6 rounds 2.77 to 2.8. */
+/**
+ * Repeatability limit: two single results differ by less than this in `level` of cases. `df` of the standard
+ * deviation, null when it is known well. ISO 5725-6 rounds 2.77 to 2.8.
+ */
 export function repeatabilityLimit(sd: number, df: number | null, level = 0.95): number {
   const p = 0.5 + level / 2;
-  return (df === null ? tQuantile(p, 1e9) : tQuantile(p, df)) * Math.SQRT2 * sd;
+  return (df === null ? normalQuantile(p) : tQuantile(p, df)) * Math.SQRT2 * sd;
 }

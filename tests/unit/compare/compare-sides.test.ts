@@ -1,0 +1,96 @@
+import { describe, expect, it } from "vitest";
+import { type ComparedPull, compareSides } from "@/lib/compare/compare-sides";
+import { randomStream } from "@/lib/signal/random";
+
+const RPM = Array.from({ length: 61 }, (_, k) => 2000 + 50 * k);
+const SETTINGS = { a: "A", b: "B", basis: "day" as const, level: 0.95, seed: 1, resamples: 2000 };
+
+/** Pulls of 300 N·m with 0.4 % run scatter; side B has `gainPct` more from 3000 to 4000 per minute. */
+function pulls(order: string, legs: string, gainPct: number, seed: number): ComparedPull[] {
+  const random = randomStream(seed);
+  return [...order].map((side, i) => {
+    const level = 1 + 0.004 * random.nextNormal();
+    return {
+      id: `r${i + 1}`,
+      side,
+      leg: legs[i] === "+" ? "out" : "back",
+      order: i + 1,
+      roadDay: null,
+      engineNm: RPM.map(
+        (n) =>
+          300 *
+          level *
+          (1 + 0.0005 * random.nextNormal()) *
+          (side === "B" && n >= 3000 && n <= 4000 ? 1 + gainPct / 100 : 1),
+      ),
+      peakKw: 150 * level + (side === "B" ? 2 : 0),
+      peakNm: 300 * level,
+      timesS: { "80-120": 4 / level - (side === "B" ? 0.05 : 0) },
+    };
+  });
+}
+
+describe("Comparison of two sides", () => {
+  it("shows a gain of 5 % where it is and nowhere else", () => {
+    const delta = compareSides(RPM, pulls("ABBABAABABBA", "+-+-+-+-+-+-", 5, 3), SETTINGS);
+    expect(delta?.regions).toEqual([{ from_rpm: 3000, to_rpm: 4000, verdict: "gain" }]);
+    expect(delta?.simultaneous).toBe(true);
+    const at = RPM.indexOf(3500);
+    expect(Math.abs((delta?.pct[at] ?? 0) - 5)).toBeLessThan(0.6);
+    expect(delta?.low_pct[at]).toBeLessThan(delta?.pct[at] ?? 0);
+    // What a campaign could have shown is more than its half-width.
+    expect(delta?.resolvable_pct[at]).toBeGreaterThan(
+      ((delta?.high_pct[at] ?? 0) - (delta?.low_pct[at] ?? 0)) / 2,
+    );
+    expect(delta?.peak_difference?.half_width_kw).toBeGreaterThan(0);
+    expect(delta?.times_difference?.["80-120"].n_a).toBe(6);
+    expect(delta?.times_difference?.["80-120"].difference_s).toBeCloseTo(-0.05, 1);
+    expect(delta?.twins.filter((twin) => twin.side === "A")).toHaveLength(3);
+  });
+
+  it("gives the difference without a band below three runs a side, and says why", () => {
+    const delta = compareSides(RPM, pulls("ABBA", "+-+-", 4, 1), SETTINGS);
+    expect(delta?.simultaneous).toBe(false);
+    expect(delta?.low_pct.every((x) => x === null)).toBe(true);
+    expect(delta?.high_pct.every((x) => x === null)).toBe(true);
+    expect(delta?.regions).toEqual([]);
+    expect(delta?.method).toMatch(/at least 3 usable runs a side/);
+    expect(delta?.pct.every((x) => x !== null)).toBe(true);
+  });
+
+  it("uses Bonferroni's t when a side has three runs", () => {
+    const delta = compareSides(RPM, pulls("ABBABA", "+-+-+-", 0, 1), SETTINGS);
+    expect(delta?.method).toMatch(/Bonferroni t.*a side has only three runs/);
+    expect(delta?.regions).toEqual([]);
+  });
+
+  it("claims nothing in at least 19 of 20 campaigns without a change (20 draws: accepted up to 3, chance of more 1.6 %)", () => {
+    let claims = 0;
+    for (let seed = 1; seed <= 20; seed++) {
+      claims += compareSides(RPM, pulls("ABBABAAB", "+-+-+-+-", 0, seed), SETTINGS)?.regions.length ? 1 : 0;
+    }
+    expect(claims).toBeLessThanOrEqual(3);
+  });
+
+  it("cuts the band to where both sides have three runs", () => {
+    const short = pulls("ABBABAAB", "+-+-+-+-", 0, 2).map((pull) => ({
+      ...pull,
+      engineNm: pull.engineNm.map((nm, k) =>
+        pull.side === "B" && pull.id !== "r2" && RPM[k] > 4500 ? null : nm,
+      ),
+    }));
+    const delta = compareSides(RPM, short, SETTINGS);
+    expect(delta?.rpm.at(-1)).toBe(4500);
+  });
+
+  it("is null when a side has no run, and has no time difference where no run has the time", () => {
+    expect(compareSides(RPM, pulls("AAAA", "+-+-", 0, 1), SETTINGS)).toBeNull();
+    const delta = compareSides(
+      RPM,
+      pulls("ABBABAAB", "+-+-+-+-", 0, 1).map((p) => ({ ...p, timesS: {}, peakKw: null })),
+      SETTINGS,
+    );
+    expect(delta?.times_difference).toEqual({});
+    expect(delta?.peak_difference).toBeNull();
+  });
+});
