@@ -79,7 +79,7 @@ export async function selectTakenPlaces(
   { workspaceId, roadDayId }: { workspaceId: string; roadDayId: string },
 ) {
   return await db
-    .select({ id: runs.id, number: runs.number, driveOrder: runs.driveOrder })
+    .select({ id: runs.id, number: runs.number, driveOrder: runs.driveOrder, state: runs.state })
     .from(runs)
     .where(and(eq(runs.workspaceId, workspaceId), eq(runs.roadDayId, roadDayId), isNull(runs.setAsideAt)))
     .orderBy(asc(runs.driveOrder));

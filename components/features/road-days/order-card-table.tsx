@@ -11,8 +11,15 @@ export interface OrderCardRow {
   leg: "out" | "back";
   writeBefore: boolean;
   /** The run that has this place; `other` = it was driven otherwise than the card says, in words. */
-  run: { number: number; other: string | null } | null;
+  run: { number: number; verdict: "waiting" | "usable" | "refused"; other: string | null } | null;
   isNext: boolean;
+}
+
+function Driven({ number, verdict, other }: NonNullable<OrderCardRow["run"]>) {
+  const run = `run ${number}`;
+  if (verdict === "refused") return <StateMark state="not_met">{`${run} refused`}</StateMark>;
+  if (other) return <StateMark state="too_little">{`${run}, but ${other}`}</StateMark>;
+  return <StateMark state={verdict === "usable" ? "met" : "stale"}>{run}</StateMark>;
 }
 
 const COLUMNS: Column<OrderCardRow>[] = [
@@ -23,10 +30,10 @@ const COLUMNS: Column<OrderCardRow>[] = [
     cell: (row) =>
       row.writeBefore ? (
         <span>
-          Write <Tag tone="strong">{row.revision}</Tag>, then one settling drive
+          write <Tag tone="strong">{row.revision}</Tag>, settle
         </span>
       ) : (
-        <span className="text-ink2">{row.leg === "back" ? "turn round" : "nothing"}</span>
+        <span className="text-ink2">{row.leg === "back" ? "turn round" : "no write"}</span>
       ),
   },
   {
@@ -38,17 +45,17 @@ const COLUMNS: Column<OrderCardRow>[] = [
       </span>
     ),
   },
-  { key: "twin", header: "Twin", numeric: true, cell: (row) => row.twin },
+  {
+    key: "twin",
+    header: "Twin",
+    numeric: true,
+    className: "max-sm:hidden",
+    cell: (row) => row.twin,
+  },
   {
     key: "run",
     header: "Driven",
-    cell: (row) => {
-      if (!row.run) return row.isNext ? <strong>next</strong> : <span className="text-ink2">–</span>;
-      if (row.run.other) {
-        return <StateMark state="too_little">{`run ${row.run.number}: ${row.run.other}`}</StateMark>;
-      }
-      return <StateMark state="met">{`run ${row.run.number}`}</StateMark>;
-    },
+    cell: (row) => (row.run ? <Driven {...row.run} /> : row.isNext ? <strong>next</strong> : "–"),
   },
 ];
 

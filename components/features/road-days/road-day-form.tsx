@@ -74,7 +74,14 @@ export function RoadDayForm({
     <form onSubmit={send} noValidate className="flex flex-col gap-6">
       <fieldset className="grid gap-4 sm:grid-cols-2">
         <legend className="mb-2 font-head font-semibold text-17">Place and people</legend>
-        <TextInput label="Day" type="date" required {...register("day")} error={error("day")} />
+        <TextInput
+          label="Day"
+          type="date"
+          required
+          {...register("day")}
+          error={error("day")}
+          hint="The date on the road"
+        />
         <TextInput
           label="Time zone of the road"
           required
@@ -100,7 +107,13 @@ export function RoadDayForm({
           {...register("stripLengthM")}
           error={error("stripLengthM")}
         />
-        <TextInput label="Driver" required {...register("driver")} error={error("driver")} />
+        <TextInput
+          label="Driver"
+          required
+          {...register("driver")}
+          error={error("driver")}
+          hint="Trained for these speeds"
+        />
         <TextInput
           label="At the recorder"
           required
@@ -117,6 +130,7 @@ export function RoadDayForm({
           unit="°C"
           {...register("tempC")}
           error={error("tempC")}
+          hint="In the shade, at the car"
         />
         <NumberInput
           label="Station pressure"
@@ -124,7 +138,7 @@ export function RoadDayForm({
           unit="hPa"
           {...register("pressureHpa")}
           error={error("pressureHpa")}
-          hint="As a barometer at the car reads it, not reduced to sea level as forecasts are"
+          hint="As read there, not reduced to sea level"
         />
         <NumberInput
           label="Relative humidity"
@@ -132,6 +146,7 @@ export function RoadDayForm({
           unit="%"
           {...register("humidityPct")}
           error={error("humidityPct")}
+          hint="At the car"
         />
         <TextInput
           label="Wind"
@@ -155,20 +170,21 @@ export function RoadDayForm({
           unit="kPa"
           {...register("tyrePressureFrontKpa")}
           error={error("tyrePressureFrontKpa")}
-          hint="2.4 bar = 240 kPa"
+          hint="Warm; 2.4 bar = 240 kPa"
         />
         <NumberInput
           label="Tyres at the rear"
           unit="kPa"
           {...register("tyrePressureRearKpa")}
           error={error("tyrePressureRearKpa")}
+          hint="Warm"
         />
         <NumberInput
           label="Mass of the day"
           unit="kg"
           {...register("massKg")}
           error={error("massKg")}
-          hint={`Empty: the sheet's ${Math.round(sheetMassKg)} kg. Fill in when crew or load differ.`}
+          hint={`Empty: the sheet's ${Math.round(sheetMassKg)} kg`}
         />
       </fieldset>
       {outcome && (

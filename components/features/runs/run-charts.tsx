@@ -1,5 +1,6 @@
 import { CurveChart, type CurveQuantity } from "@/components/charts/curve-chart";
 import { TraceChart, type TraceSegment } from "@/components/charts/trace-chart";
+import { Disclosure } from "@/components/ui/layout/disclosure";
 import type { RunTraces } from "@/lib/measure/traces";
 import type { Note, RunResult } from "@/lib/measure/types";
 
@@ -34,13 +35,45 @@ function whyMasked(span: { from_s: number; to_s: number }, notes: readonly Note[
   return note ? note.code.replaceAll("_", " ") : "left out";
 }
 
-/** What the logger recorded, thinned for drawing. */
-export function RunTraceChart({ traces, notes }: { traces: RunTraces; notes: readonly Note[] }) {
+/** What one looks at first; a log often holds a speed or a pedal several times over. */
+const FIRST_LOOK: readonly (readonly string[])[] = [
+  ["wheel_speed_undriven", "gps_speed", "wheel_speed_driven"],
+  ["engine_speed"],
+  ["pedal", "throttle"],
+  ["manifold_pressure", "manifold_pressure_gauge"],
+  ["lambda"],
+  ["ignition_advance"],
+  ["knock_retard"],
+  ["exhaust_temperature"],
+];
+
+type Channels = RunTraces["channels"];
+
+/** The first of each choice that the log holds, and all the others. */
+function splitChannels(channels: Channels): { first: Channels; others: Channels } {
+  const first = FIRST_LOOK.flatMap((names) => {
+    const name = names.find((candidate) => channels.some(({ channel }) => channel === candidate));
+    return channels.filter(({ channel }) => channel === name);
+  });
+  return { first, others: channels.filter((channel) => !first.includes(channel)) };
+}
+
+function TraceStack({
+  title,
+  traces,
+  channels,
+  notes,
+}: {
+  title: string;
+  traces: RunTraces;
+  channels: Channels;
+  notes: readonly Note[];
+}) {
   return (
     <TraceChart
-      title="Channels over time"
+      title={title}
       timeS={traces.timeS}
-      traces={traces.channels.map(({ channel, label, unit, values }) => ({
+      traces={channels.map(({ channel, label, unit, values }) => ({
         id: channel,
         label,
         unit,
@@ -57,6 +90,22 @@ export function RunTraceChart({ traces, notes }: { traces: RunTraces; notes: rea
         "Time counts from the log's first kept row. Thinned for drawing; the computation used every row.",
       ]}
     />
+  );
+}
+
+/** What the logger recorded, thinned for drawing: the telling channels first, the others on demand. */
+export function RunTraceChart({ traces, notes }: { traces: RunTraces; notes: readonly Note[] }) {
+  const { first, others } = splitChannels(traces.channels);
+  const shown = first.length > 0 ? first : others;
+  return (
+    <div className="flex flex-col gap-2">
+      <TraceStack title="Channels over time" traces={traces} channels={shown} notes={notes} />
+      {first.length > 0 && others.length > 0 && (
+        <Disclosure summary="The other channels of the log" aside={`${others.length}`}>
+          <TraceStack title="Other channels" traces={traces} channels={others} notes={notes} />
+        </Disclosure>
+      )}
+    </div>
   );
 }
 

@@ -33,7 +33,7 @@ export function RunFacts({ run, revision, roadDay, testerName }: RunFactsProps) 
         {
           term: "In the car",
           description: (
-            <Link href={`/revisions/${revision.id}`} className="text-action underline">
+            <Link href={`/revisions/${revision.id}`} className="link">
               R{revision.number} {revision.title}
             </Link>
           ),
@@ -41,7 +41,7 @@ export function RunFacts({ run, revision, roadDay, testerName }: RunFactsProps) 
         {
           term: "Road day",
           description: (
-            <Link href={`/road-days/${roadDay.id}`} className="text-action underline">
+            <Link href={`/road-days/${roadDay.id}`} className="link">
               {roadDay.day}, {roadDay.stripName}
             </Link>
           ),

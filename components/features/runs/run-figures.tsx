@@ -61,7 +61,12 @@ export function RunTimes({ result }: { result: RunResult }) {
   const rows = timeRows(result);
   if (rows.length === 0)
     return <p className="text-15 text-ink2">The run covers none of the listed ranges.</p>;
-  return <Table caption="Times" columns={TIME_COLUMNS} rows={rows} rowKey={(row) => row.name} dense />;
+  const isShown: Record<string, boolean> = {
+    speed: rows.some((row) => row.speedKmh !== null),
+    trap: rows.some((row) => row.trapKmh !== null),
+  };
+  const columns = TIME_COLUMNS.filter((column) => isShown[column.key] ?? true);
+  return <Table caption="Times" columns={columns} rows={rows} rowKey={(row) => row.name} dense />;
 }
 
 const LOSS_SOURCE = {

@@ -1,6 +1,6 @@
 import Link from "next/link";
 import { VerdictMark } from "@/components/features/runs/verdict-mark";
-import { numberText } from "@/components/ui/data/number-text";
+import { Quantity } from "@/components/ui/data/quantity";
 import { Tag } from "@/components/ui/data/tag";
 import type { RunLine } from "@/lib/services/runs/schema";
 
@@ -18,18 +18,15 @@ function RunItem({ run }: { run: RunLine }) {
       </span>
       <div className="flex min-w-0 flex-col gap-1">
         <div className="flex flex-wrap items-center gap-x-3 gap-y-1">
-          <Link
-            href={`/runs/${run.id}`}
-            className="inline-flex min-h-6 items-center font-semibold text-action underline"
-          >
+          <Link href={`/runs/${run.id}`} className="link inline-flex min-h-6 items-center font-semibold">
             Run {run.number}
           </Link>
           <Tag>R{run.revisionNumber}</Tag>
           <span>{driveWords(run)}</span>
           <VerdictMark {...run} />
-          {run.peakKw !== null && (
-            <span className="tabular text-ink2">
-              peak {numberText(run.peakKw, { decimals: 1 })} kW, this run alone
+          {run.peakKw !== null && !run.setAside && (
+            <span className="text-ink2">
+              peak <Quantity value={run.peakKw} unit="kW" decimals={1} />, this run alone
             </span>
           )}
         </div>

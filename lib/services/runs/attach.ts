@@ -55,9 +55,10 @@ async function requireNew(tx: Transaction, roadDay: RoadDayRow, input: AttachRun
   const taken = places.find((place) => place.driveOrder === input.driveOrder);
   if (!taken) return;
   const next = Math.max(...places.map((place) => place.driveOrder)) + 1;
+  const way = taken.state === "refused" ? "was refused: set it aside, or" : "stays:";
   throw new ConflictError(
     "place_taken",
-    `Place ${input.driveOrder} of this road day is taken by run ${taken.number}. The next free place is ${next}.`,
+    `Place ${input.driveOrder} of this road day is taken by run ${taken.number}, which ${way} take place ${next}, the next free one.`,
     { runId: taken.id, number: taken.number, next },
   );
 }

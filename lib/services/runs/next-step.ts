@@ -1,15 +1,17 @@
 /** What a tester does about a refused log, by the code of its first reason. Unknown codes get the general advice. */
 const NEXT: Readonly<Record<string, string>> = {
-  empty_file: "Export the log again and drop it here.",
-  no_data_rows: "Export the log again and drop it here.",
-  gzip_damaged: "Export the log again and drop it here.",
-  not_text: "Export the log as delimited text (CSV) and drop it here.",
-  format_not_supported: "Export the log as delimited text (CSV) and drop it here.",
+  empty_file: "Export the log again and drop it on the road-day page.",
+  no_data_rows: "Export the log again and drop it on the road-day page.",
+  gzip_damaged: "Export the log again and drop it on the road-day page.",
+  not_text: "Export the log as delimited text (CSV) and drop it on the road-day page.",
+  format_not_supported: "Export the log as delimited text (CSV) and drop it on the road-day page.",
   ambiguous_decimal:
-    "Export with a point as decimal mark, or with a semicolon between columns, and drop it here.",
-  no_time_column: "Switch the time column on in the logger's export and drop the new file here.",
+    "Export with a point as decimal mark, or with a semicolon between columns, and drop it on the road-day page.",
+  no_time_column:
+    "Switch the time column on in the logger's export and drop the new file on the road-day page.",
   time_not_increasing: "Export the log again with its own time stamps, one recording a file.",
-  non_numeric_values: "Export numbers only, without texts in the columns, and drop the new file here.",
+  non_numeric_values:
+    "Export numbers only, without texts in the columns, and drop the new file on the road-day page.",
   too_few_samples: "Record longer, at 5 Hz or more, and drive this place again.",
   rate_too_low: "Set the logger to 5 rows a second or more, better 20, and drive this place again.",
   engine_speed_not_known: "Log engine speed, or write a speed at an engine speed into the vehicle sheet.",
@@ -25,10 +27,9 @@ const NEXT: Readonly<Record<string, string>> = {
     "Set the run aside and attach the log again after the next version; tell whoever runs this installation.",
 };
 
-/** One plain sentence. Set the refused run aside first where its place is to be driven again. */
+const OTHERWISE = "Look at the reason, mend the recording, and drop the new log on the road-day page.";
+
+/** Plain sentences: the way on, and that the refused run must make room first. */
 export function nextStep(code: string | undefined): string {
-  return (
-    (code && NEXT[code]) ??
-    "Look at the reason, mend the recording, and drop the new log here for the same place."
-  );
+  return `${(code && NEXT[code]) ?? OTHERWISE} Set this run aside first, so that its place is free.`;
 }

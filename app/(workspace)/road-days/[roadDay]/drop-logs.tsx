@@ -155,7 +155,7 @@ function Outcome({
   return (
     <div className="flex flex-col gap-1" role="status">
       <p className="flex flex-wrap items-center gap-x-3">
-        <Link href={`/runs/${run.runId}`} className="font-semibold text-action underline">
+        <Link href={`/runs/${run.runId}`} className="link font-semibold">
           Run {run.number}
         </Link>
         <VerdictMark verdict={line?.verdict ?? "waiting"} setAside={line?.setAside ?? false} />

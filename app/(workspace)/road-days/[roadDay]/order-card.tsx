@@ -3,6 +3,7 @@ import { OrderCardForm } from "@/components/features/road-days/order-card-form";
 import { type OrderCardRow, OrderCardTable } from "@/components/features/road-days/order-card-table";
 import { numberText } from "@/components/ui/data/number-text";
 import { Card } from "@/components/ui/layout/card";
+import { Disclosure } from "@/components/ui/layout/disclosure";
 import { EmptyState } from "@/components/ui/status/empty-state";
 import { freePlaces } from "@/lib/compare/order-card";
 import type { RoadDayView } from "@/lib/services/road-days/get";
@@ -23,7 +24,13 @@ function rowsOf({ revisions, runs }: RoadDayView, { a, b, card }: ChosenCard): O
     return {
       ...place,
       revision: `R${wanted?.number ?? "?"}`,
-      run: run ? { number: run.number, other: asPlanned ? null : `R${run.revisionNumber} ${run.leg}` } : null,
+      run: run
+        ? {
+            number: run.number,
+            verdict: run.verdict,
+            other: asPlanned ? null : `R${run.revisionNumber} ${run.leg}`,
+          }
+        : null,
       isNext: place.place === next?.place,
     };
   });
@@ -37,6 +44,32 @@ function countsOf({ card }: ChosenCard, stripLengthM: number | null): string {
   return `${card.runs} runs, ${card.writes} writes and ${card.settlingDrives} settling drives${metres}. The first write falls away when side A is in the car already.`;
 }
 
+/** The next drive in one line, large enough to read at arm's length. */
+function Next({ rows }: { rows: readonly OrderCardRow[] }) {
+  const next = rows.find((row) => row.isNext);
+  const refused = rows.filter((row) => row.run?.verdict === "refused").map((row) => row.place);
+  return (
+    <div className="flex flex-col gap-1">
+      <p className="font-head font-semibold text-20">
+        {next ? (
+          <>
+            Next: place {next.place}, {next.writeBefore && `write ${next.revision} and settle, then `}
+            {next.revision} {next.leg}
+          </>
+        ) : (
+          "Every place of this card is driven."
+        )}
+      </p>
+      {refused.length > 0 && (
+        <p className="text-15 text-unmet">
+          To be driven again once the refused run is set aside: {refused.length === 1 ? "place" : "places"}{" "}
+          {refused.join(", ")}.
+        </p>
+      )}
+    </div>
+  );
+}
+
 /** What to drive next, and how far the day has come. */
 export function OrderCardSection({ view, chosen }: Props) {
   if (!chosen) {
@@ -46,6 +79,8 @@ export function OrderCardSection({ view, chosen }: Props) {
       </Card>
     );
   }
+  const name = (id: string) => `R${view.revisions.find((revision) => revision.id === id)?.number ?? "?"}`;
+  const rows = rowsOf(view, chosen);
   const leak = chosen.card.driftLeakRuns;
   return (
     <Card
@@ -54,7 +89,10 @@ export function OrderCardSection({ view, chosen }: Props) {
       description="Out and back on one image before any change of image; sides counterbalanced, so that steady drift cancels."
     >
       <div className="flex flex-col gap-4">
-        <OrderCardForm revisions={view.revisions} a={chosen.a} b={chosen.b} twins={chosen.twins} />
+        <Next rows={rows} />
+        <Disclosure summary={`${name(chosen.a)} against ${name(chosen.b)}, ${chosen.twins} twins a side`}>
+          <OrderCardForm revisions={view.revisions} a={chosen.a} b={chosen.b} twins={chosen.twins} />
+        </Disclosure>
         <p className="text-15">{countsOf(chosen, view.roadDay.stripLengthM)}</p>
         {leak !== 0 && (
           <p className="text-15 text-thin">
@@ -62,7 +100,7 @@ export function OrderCardSection({ view, chosen }: Props) {
             {numberText(Math.abs(leak), { decimals: 2 })} runs' worth. An even number leaves none.
           </p>
         )}
-        <OrderCardTable rows={rowsOf(view, chosen)} />
+        <OrderCardTable rows={rows} />
         <p className="text-13 text-ink2">
           One settling drive after each write is common practice; no source was found for it. It is not
           recorded as a run.

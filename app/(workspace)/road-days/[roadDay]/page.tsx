@@ -1,4 +1,4 @@
-import type { Metadata } from "next";
+import type { Metadata, Route } from "next";
 import { Checklist } from "@/app/(workspace)/road-days/[roadDay]/checklist";
 import { chooseCard } from "@/app/(workspace)/road-days/[roadDay]/choose-card";
 import { OrderCardSection } from "@/app/(workspace)/road-days/[roadDay]/order-card";
@@ -46,7 +46,7 @@ export default async function RoadDayPage({ params, searchParams }: PageProps<"/
           <Breadcrumbs
             items={[
               { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` },
+              { label: programme.name, href: `/programmes/${programme.id}` as Route },
               { label: `Road day ${day}` },
             ]}
           />
@@ -55,6 +55,17 @@ export default async function RoadDayPage({ params, searchParams }: PageProps<"/
         marks={roadDay.sample ? <Tag>sample</Tag> : null}
       />
       <Checklist roadDay={roadDay} blockedBecause={mayEdit.ok ? null : mayEdit.reason} />
+      <OrderCardSection view={view} chosen={chosen} />
+      <RoadDayRuns
+        roadDayId={id}
+        revisions={revisions}
+        sides={{ A: chosen?.a ?? onlyRevision, B: chosen?.b ?? onlyRevision }}
+        card={chosen?.card ?? null}
+        gears={view.gearCount}
+        gear={runs.runs.at(-1)?.gear ?? view.gearOfSheet}
+        blockedBecause={blockedBecause}
+        initial={runs}
+      />
       <Card title="Weather at the car and the car's state" id="facts">
         <RoadDayFacts roadDay={roadDay} sheetMassKg={sheetMassKg} />
         <Disclosure summary="Correct these figures" className="mt-4">
@@ -83,17 +94,6 @@ export default async function RoadDayPage({ params, searchParams }: PageProps<"/
           />
         </Disclosure>
       </Card>
-      <OrderCardSection view={view} chosen={chosen} />
-      <RoadDayRuns
-        roadDayId={id}
-        revisions={revisions}
-        sides={{ A: chosen?.a ?? onlyRevision, B: chosen?.b ?? onlyRevision }}
-        card={chosen?.card ?? null}
-        gears={view.gearCount}
-        gear={runs.runs.at(-1)?.gear ?? view.gearOfSheet}
-        blockedBecause={blockedBecause}
-        initial={runs}
-      />
     </div>
   );
 }

@@ -1,6 +1,8 @@
 "use client";
 
 import { useQuery } from "@tanstack/react-query";
+import { useRouter } from "next/navigation";
+import { useEffect } from "react";
 import { DropLogs, type DropLogsProps } from "@/app/(workspace)/road-days/[roadDay]/drop-logs";
 import { RunList } from "@/components/features/runs/run-list";
 import { Card } from "@/components/ui/layout/card";
@@ -24,6 +26,11 @@ export function RoadDayRuns({ initial, ...drop }: RoadDayRunsProps) {
         title="Attach logs"
         description="Park first. The second person at the recorder does this, never the driver."
       >
+        {drop.blockedBecause && (
+          <Notice tone="caution" className="mb-4">
+            {drop.blockedBecause}
+          </Notice>
+        )}
         <DropLogs {...drop} />
       </Card>
       <Verdicts roadDayId={drop.roadDayId} initial={initial} />
@@ -31,9 +38,21 @@ export function RoadDayRuns({ initial, ...drop }: RoadDayRunsProps) {
   );
 }
 
+/** What the order card depends on, as one text. */
+const verdictsOf = ({ runs }: Runs) =>
+  runs.map((run) => `${run.number} ${run.verdict} ${run.setAside}`).join(",");
+
 function Verdicts({ roadDayId, initial }: { roadDayId: string; initial: Runs }) {
   const { data = initial, error } = useQuery({ ...roadDayRunsQuery(roadDayId), initialData: initial });
   const { runs, waiting } = data;
+  const router = useRouter();
+  const isNews = verdictsOf(data) !== verdictsOf(initial);
+
+  useEffect(() => {
+    // The order card above is made by the server from the same runs.
+    if (isNews) router.refresh();
+  }, [isNews, router]);
+
   const count = (verdict: (typeof runs)[number]["verdict"]) =>
     runs.filter((run) => run.verdict === verdict && !run.setAside).length;
   return (

@@ -1,7 +1,8 @@
-import type { Metadata } from "next";
+import type { Metadata, Route } from "next";
 import { createRoadDayAction } from "@/app/(workspace)/road-days/actions";
 import { RoadDayForm } from "@/components/features/road-days/road-day-form";
 import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
+import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { requireCtx } from "@/lib/auth/current";
 import { orNotFound } from "@/lib/http/page";
@@ -25,7 +26,7 @@ export default async function NewRoadDayPage({ searchParams }: PageProps<"/road-
           <Breadcrumbs
             items={[
               { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` },
+              { label: programme.name, href: `/programmes/${programme.id}` as Route },
               { label: "New road day" },
             ]}
           />
@@ -33,30 +34,32 @@ export default async function NewRoadDayPage({ searchParams }: PageProps<"/road-
         title="New road day"
         lead="One day on one strip. Weather is read at the car; the safety checklist follows at the road side."
       />
-      <RoadDayForm
-        identity={{ programmeId: programme.id }}
-        values={{
-          day: "",
-          zone: last?.zone ?? "",
-          stripName: last?.stripName ?? "",
-          stripLengthM: asText(last?.stripLengthM),
-          driver: last?.driver ?? "",
-          recorder: last?.recorder ?? "",
-          tempC: "",
-          pressureHpa: "",
-          humidityPct: "",
-          windNote: "",
-          fuelNote: last?.fuelNote ?? "",
-          tyrePressureFrontKpa: asText(last?.tyrePressureFrontKpa),
-          tyrePressureRearKpa: asText(last?.tyrePressureRearKpa),
-          massKg: asText(last?.massKg),
-        }}
-        strips={strips.map((strip) => strip.stripName)}
-        sheetMassKg={sheetMassKg}
-        submitWords="Open the road day"
-        blockedBecause={null}
-        action={createRoadDayAction}
-      />
+      <Card>
+        <RoadDayForm
+          identity={{ programmeId: programme.id }}
+          values={{
+            day: "",
+            zone: last?.zone ?? "",
+            stripName: last?.stripName ?? "",
+            stripLengthM: asText(last?.stripLengthM),
+            driver: last?.driver ?? "",
+            recorder: last?.recorder ?? "",
+            tempC: "",
+            pressureHpa: "",
+            humidityPct: "",
+            windNote: "",
+            fuelNote: last?.fuelNote ?? "",
+            tyrePressureFrontKpa: asText(last?.tyrePressureFrontKpa),
+            tyrePressureRearKpa: asText(last?.tyrePressureRearKpa),
+            massKg: asText(last?.massKg),
+          }}
+          strips={strips.map((strip) => strip.stripName)}
+          sheetMassKg={sheetMassKg}
+          submitWords="Open the road day"
+          blockedBecause={null}
+          action={createRoadDayAction}
+        />
+      </Card>
     </div>
   );
 }

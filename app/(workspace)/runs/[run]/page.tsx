@@ -1,5 +1,5 @@
 import { Download } from "lucide-react";
-import type { Metadata } from "next";
+import type { Metadata, Route } from "next";
 import { RunActsCard } from "@/app/(workspace)/runs/[run]/run-acts";
 import { RunBasis } from "@/app/(workspace)/runs/[run]/run-basis";
 import { RunCurveChart, RunTraceChart } from "@/components/features/runs/run-charts";
@@ -53,8 +53,8 @@ export default async function RunPage({ params }: PageProps<"/runs/[run]">) {
           <Breadcrumbs
             items={[
               { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` },
-              { label: `Road day ${roadDay.day}`, href: `/road-days/${roadDay.id}` },
+              { label: programme.name, href: `/programmes/${programme.id}` as Route },
+              { label: `Road day ${roadDay.day}`, href: `/road-days/${roadDay.id}` as Route },
               { label: `Run ${run.number}` },
             ]}
           />
@@ -70,30 +70,34 @@ export default async function RunPage({ params }: PageProps<"/runs/[run]">) {
         }
         actions={<LogLink runId={run.id} blockedBecause={acts.download} />}
       />
-      <VerdictCard
-        verdict={run.state}
-        reasons={result?.reasons ?? []}
-        notes={result?.notes ?? []}
-        next={view.next}
-        setAside={setAsideOf(view)}
-      />
       {run.state === "waiting" && <RunWatch runId={run.id} roadDayId={run.roadDayId} />}
-      {verdict?.traces && <RunTraceChart traces={verdict.traces} notes={verdict.result.notes} />}
-      {result?.usable && (
-        <>
-          <RunCurveChart result={result} />
-          <Card title="Figures of this run alone" description="± is about 95 %.">
-            <div className="flex flex-col gap-6">
-              <RunPeak result={result} />
-              <RunTimes result={result} />
-            </div>
+      <div className="grid items-start gap-6 lg:grid-cols-2">
+        <div className="flex flex-col gap-6">
+          <VerdictCard
+            verdict={run.state}
+            reasons={result?.reasons ?? []}
+            notes={result?.notes ?? []}
+            next={view.next}
+            setAside={setAsideOf(view)}
+          />
+          {result?.usable && (
+            <Card title="Figures of this run alone" description="± is about 95 %." id="figures">
+              <div className="flex flex-col gap-6">
+                <RunPeak result={result} />
+                <RunTimes result={result} />
+              </div>
+            </Card>
+          )}
+        </div>
+        <div className="flex flex-col gap-6">
+          <Card title="What this run is" id="facts">
+            <RunFacts run={run} revision={revision} roadDay={roadDay} testerName={view.testerName} />
           </Card>
-        </>
-      )}
-      <Card title="What this run is" id="facts">
-        <RunFacts run={run} revision={revision} roadDay={roadDay} testerName={view.testerName} />
-      </Card>
-      <RunBasis view={view} />
+          <RunBasis view={view} />
+        </div>
+      </div>
+      {result?.usable && <RunCurveChart result={result} />}
+      {verdict?.traces && <RunTraceChart traces={verdict.traces} notes={verdict.result.notes} />}
       <RunActsCard view={view} />
     </div>
   );

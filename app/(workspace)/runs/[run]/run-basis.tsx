@@ -17,7 +17,7 @@ export function RunBasis({ view }: { view: RunView }) {
             term: "Vehicle sheet",
             description: verdict ? (
               <>
-                <Link href={`/programmes/${programme.id}/vehicle-sheet`} className="text-action underline">
+                <Link href={`/programmes/${programme.id}/vehicle-sheet`} className="link">
                   version {verdict.sheetVersion}
                 </Link>
                 {isOld && `; version ${newestSheetVersion} is newer and the run is judged again`}
@@ -53,7 +53,7 @@ export function RunBasis({ view }: { view: RunView }) {
               ) : (
                 <span className="flex flex-wrap gap-x-4">
                   {comparisons.map(({ id, a, b }) => (
-                    <Link key={id} href={`/comparisons/${id}`} className="text-action underline">
+                    <Link key={id} href={`/comparisons/${id}`} className="link">
                       R{a} against R{b}
                     </Link>
                   ))}
@@ -68,7 +68,7 @@ export function RunBasis({ view }: { view: RunView }) {
               ) : (
                 <span className="flex flex-wrap gap-x-4">
                   {records.map(({ recordNumber, decisionId }) => (
-                    <Link key={decisionId} href={`/records/${decisionId}`} className="text-action underline">
+                    <Link key={decisionId} href={`/records/${decisionId}`} className="link">
                       Record {recordNumber}
                     </Link>
                   ))}
