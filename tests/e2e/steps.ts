@@ -67,8 +67,9 @@ export async function addRevision(
 export async function openRoadDay(page: Page, programme: string, day: string): Promise<string> {
   await page.goto(programme);
   await page.getByRole("link", { name: "New road day" }).click();
-  await page.getByLabel("Day", { exact: false }).first().fill(day);
-  await page.getByLabel("Strip", { exact: false }).fill("Test strip, level");
+  await page.waitForURL(/\/road-days\/new/);
+  await page.getByLabel(/^Day/).fill(day);
+  await page.getByRole("combobox", { name: /^Strip/ }).fill("Test strip, level");
   await page.getByLabel("Driver").fill("A driver");
   await page.getByLabel("At the recorder").fill("A second person");
   await page.getByLabel("Air temperature").fill("17,9");
@@ -76,13 +77,11 @@ export async function openRoadDay(page: Page, programme: string, day: string): P
   await page.getByLabel("Relative humidity").fill("56");
   await page.getByRole("button", { name: "Open the road day" }).click();
   await page.waitForURL(/\/road-days\/[0-9a-f-]{36}$/);
-  for (const box of await page
-    .getByRole("group", { name: /checklist/i })
-    .getByRole("checkbox")
-    .all())
-    await box.check();
-  await page.getByRole("button", { name: /Confirm/ }).click();
-  await expect(page.getByText("Drop run logs here")).toBeVisible();
+  const lines = page.locator('input[name="confirmed"]');
+  await expect(lines.first()).toBeVisible();
+  for (const line of await lines.all()) await line.check();
+  await page.getByRole("button", { name: "Confirm what is ticked" }).click();
+  await expect(page.getByText("Safety checklist confirmed")).toBeVisible();
   return page.url();
 }
 
@@ -118,19 +117,17 @@ export async function attachRuns(page: Page, logs: DrivenLog[]): Promise<void> {
 /** A lead promotes, waiving every must gate that is still open. */
 export async function promote(page: Page, number: number): Promise<void> {
   await page.getByRole("link", { name: `Open the decision on R${number}` }).click();
-  await page.getByText("Promote", { exact: false }).first().click();
-  const waivers = page.getByLabel("Waive this gate");
-  for (const box of await waivers.all()) {
-    await box.check();
-  }
-  for (const reason of await page.getByLabel("Reason for the waiver").all()) {
+  await page.waitForURL(/\/decide$/);
+  await page.getByRole("radio", { name: /^Promote/ }).check();
+  for (const box of await page.getByLabel("Waive this gate").all()) await box.check();
+  for (const reason of await page.getByRole("textbox", { name: /^Reason for the waiver/ }).all()) {
     await reason.fill("Left open on purpose by a test of the whole loop.");
   }
   await page
-    .getByLabel("Reason", { exact: true })
+    .getByRole("textbox", { name: /^Reason(?! for)/ })
     .fill("The gain is outside the band over the range asked for.");
   await page.getByLabel("Number of the revision").fill(`R${number}`);
   await page.getByLabel("Your signing passphrase").fill(PASSPHRASE);
-  await page.getByRole("button", { name: /^Sign/ }).click();
+  await page.getByRole("button", { name: /^Sign and promote/ }).click();
   await page.waitForURL(/\/records\/[0-9a-f-]{36}$/);
 }
