@@ -31,13 +31,12 @@ export async function insertJob(
   await tx.execute(sql`select pg_notify(${JOB_CHANNEL}, ${name})`);
 }
 
-/** Whether a job with exactly this data waits, is in work or will be tried again. */
-export async function hasPendingJob(
-  db: Queryable,
-  { name, data }: { name: JobName; data: object },
-): Promise<boolean> {
-  const { rows } = await db.execute<{ pending: boolean }>(
-    sql`select exists(select from pgboss.job where name = ${name} and state < 'completed' and data = ${JSON.stringify(data)}::jsonb) as pending`,
-  );
-  return rows[0]?.pending ?? false;
+/** Runs that wait for a verdict although no job would bring one, e.g. after a restore; younger ones are left alone. */
+export async function selectForgottenRuns(db: Queryable): Promise<{ workspaceId: string; runId: string }[]> {
+  const { rows } = await db.execute<{ workspaceId: string; runId: string }>(sql`
+    select workspace_id as "workspaceId", id as "runId" from runs
+    where state = 'waiting' and created_at < now() - interval '10 minutes' and not exists (
+      select from pgboss.job
+      where name = 'judge-run' and state < 'completed' and data->>'runId' = runs.id::text)`);
+  return rows;
 }

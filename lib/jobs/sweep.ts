@@ -1,4 +1,6 @@
+import { selectForgottenRuns } from "@/db/queries/jobs";
 import { allBlobs, cancelExpiredUploads, lockDigest, selectKeptDigests } from "@/db/queries/sweep";
+import { enqueueJob } from "@/lib/jobs/enqueue";
 import type { System } from "@/lib/jobs/system";
 import { logger } from "@/lib/logger";
 import { type SweepReport, sweepStore } from "@/storage/sweep";
@@ -7,8 +9,8 @@ import { type SweepReport, sweepStore } from "@/storage/sweep";
 const REHASH_HOUR_UTC = 3;
 
 /**
- * Clears uploads that nobody finished and looks whether every row still has its file. What is missing or damaged is
- * logged as `integrity.failed` for people to act on; it is never mended here.
+ * Clears uploads that nobody finished, has runs judged that wait without a job, and looks whether every row still has its
+ * file. What is missing or damaged is logged as `integrity.failed` for people to act on; it is never mended here.
  */
 export async function sweepLeftovers({ db, store }: System, now = new Date()): Promise<SweepReport> {
   const uploadsEnded = await cancelExpiredUploads(db);
@@ -26,11 +28,13 @@ export async function sweepLeftovers({ db, store }: System, now = new Date()): P
     },
     { nowMs: now.getTime(), rehash: now.getUTCHours() === REHASH_HOUR_UTC },
   );
+  const forgotten = await selectForgottenRuns(db);
+  for (const data of forgotten) await enqueueJob(db, { name: "judge-run", data });
   const { rowWithoutObject, digestMismatch, ...counts } = report;
   for (const row of rowWithoutObject)
     logger().error({ event: "integrity.failed", what: "file missing", ...row });
   for (const { row, found } of digestMismatch)
     logger().error({ event: "integrity.failed", what: "file changed", ...row, found });
-  logger().info({ event: "sweep.done", uploadsEnded, ...counts });
+  logger().info({ event: "sweep.done", uploadsEnded, judgedAgain: forgotten.length, ...counts });
   return report;
 }

@@ -2,11 +2,11 @@ import { spawn } from "node:child_process";
 import { randomUUID } from "node:crypto";
 import { once } from "node:events";
 import { describe, expect, onTestFinished, vi } from "vitest";
-import { hasPendingJob } from "@/db/queries/jobs";
 import { enqueueJob, type Job } from "@/lib/jobs/enqueue";
 import { type Handlers, startWorker } from "@/lib/jobs/start-worker";
 import type { ObjectStore } from "@/storage/port";
 import { type TestDatabase, test } from "@/tests/support/database";
+import { hasPendingJob } from "@/tests/support/pending-job";
 
 const STORE = {} as ObjectStore;
 

@@ -1,6 +1,5 @@
 import { eq } from "drizzle-orm";
 import { afterAll, beforeAll, describe, expect } from "vitest";
-import { hasPendingJob } from "@/db/queries/jobs";
 import { ledger, programmes, runs } from "@/db/tables";
 import { confirmChecklist } from "@/lib/services/road-days/confirm-checklist";
 import { createRoadDay } from "@/lib/services/road-days/create";
@@ -18,6 +17,7 @@ import { setRunAside } from "@/lib/services/runs/set-aside";
 import { citeRun } from "@/tests/support/cite-run";
 import { test } from "@/tests/support/database";
 import { createMember } from "@/tests/support/factories";
+import { hasPendingJob } from "@/tests/support/pending-job";
 import { attachLog, createRoadSide, DAY, pullLog } from "@/tests/support/road-side";
 import { createTestStore } from "@/tests/support/store";
 import { uploadBytes } from "@/tests/support/upload-bytes";

@@ -1,6 +1,5 @@
 import { and, eq } from "drizzle-orm";
 import { afterAll, beforeAll, describe, expect } from "vitest";
-import { hasPendingJob } from "@/db/queries/jobs";
 import { blobs, ledger, revisions, runs } from "@/db/tables";
 import { confirmChecklist } from "@/lib/services/road-days/confirm-checklist";
 import { createRoadDay } from "@/lib/services/road-days/create";
@@ -11,6 +10,7 @@ import { attachRunSchema } from "@/lib/services/runs/schema";
 import { setRunAside } from "@/lib/services/runs/set-aside";
 import { createTestDatabase, test } from "@/tests/support/database";
 import { createMember, createProgrammeRow, createRevisionRow } from "@/tests/support/factories";
+import { hasPendingJob } from "@/tests/support/pending-job";
 import { attachLog, createRoadSide, DAY, pullLog } from "@/tests/support/road-side";
 import { createTestStore } from "@/tests/support/store";
 import { sha256Of, uploadBytes } from "@/tests/support/upload-bytes";

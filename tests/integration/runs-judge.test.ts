@@ -2,7 +2,6 @@ import { gzipSync } from "node:zlib";
 import { and, desc, eq } from "drizzle-orm";
 import { afterAll, beforeAll, describe, expect } from "vitest";
 import type { Transaction } from "@/db/client";
-import { hasPendingJob } from "@/db/queries/jobs";
 import { runAnalyses, runs, vehicleSheets } from "@/db/tables";
 import { giveUpJudging, judgeRun } from "@/lib/jobs/judge-run";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
@@ -16,6 +15,7 @@ import { openUpload } from "@/lib/services/uploads/begin";
 import { blobKey } from "@/storage/keys";
 import { test } from "@/tests/support/database";
 import { SHEET } from "@/tests/support/factories";
+import { hasPendingJob } from "@/tests/support/pending-job";
 import { attachLog, createRoadSide, goldenLog, pullLog, type RoadSide } from "@/tests/support/road-side";
 import { createTestStore } from "@/tests/support/store";
 

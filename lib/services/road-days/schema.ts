@@ -17,7 +17,6 @@ export const CHECKLIST = [
   { item: "nobody_beside", text: "Nobody stands beside the road or in the braking room." },
   { item: "abort_rule", text: "Everybody knows the abort rule: in any doubt lift off, roll out, stop." },
 ] as const;
-export type ChecklistItem = (typeof CHECKLIST)[number]["item"];
 const ITEMS = CHECKLIST.map((line) => line.item);
 
 export interface ConfirmedLine {
