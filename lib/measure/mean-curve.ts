@@ -13,7 +13,7 @@ export function meanCurve(curves: readonly Series[]): Series {
   );
   const level = new Float64Array(count);
   const shape: Series = new Array<number | null>(points).fill(null);
-  for (let pass = 0; pass < 20; pass++) {
+  for (let pass = 0; pass < 200; pass++) {
     for (let k = 0; k < points; k++) {
       let sum = 0;
       let n = 0;
