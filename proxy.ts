@@ -29,6 +29,9 @@ export function proxy(request: NextRequest): NextResponse {
   requestHeaders.set("content-security-policy", policy);
   const response = NextResponse.next({ request: { headers: requestHeaders } });
   response.headers.set("content-security-policy", policy);
+  // Only over https (RFC 6797, 7.2); the server itself speaks plain http behind whatever ends TLS and says so here.
+  if (request.headers.get("x-forwarded-proto") === "https")
+    response.headers.set("strict-transport-security", "max-age=31536000; includeSubDomains");
   return response;
 }
 

@@ -9,6 +9,7 @@ import { auth } from "@/lib/auth/config";
 import { ownPath } from "@/lib/auth/own-path";
 import { readSessionToken, SESSION_LIFE_S } from "@/lib/auth/session-cookie";
 import { UnauthorizedError } from "@/lib/errors";
+import { requestIdOf } from "@/lib/http/request-id";
 import type { Role } from "@/lib/policy/actor";
 import { database, objectStore } from "@/lib/runtime";
 import type { Asker } from "@/lib/services/asker";
@@ -54,11 +55,11 @@ export const currentPerson = cache(async (): Promise<Person | null> => {
 });
 
 /** The context of this request in the person's active workspace, or null without session or membership. */
-export const currentCtx = cache(async (): Promise<Ctx | null> => {
+const currentCtx = cache(async (): Promise<Ctx | null> => {
   const person = await currentPerson();
   const membership = person?.memberships.find((m) => m.workspaceId === person.activeWorkspaceId);
   if (!person || !membership) return null;
-  const requestId = (await headers()).get("x-request-id") ?? undefined;
+  const requestId = requestIdOf(new Headers(await headers()));
   return mintCtx({
     userId: person.id,
     userName: person.name,
@@ -106,7 +107,7 @@ export async function requireCtxOrThrow(): Promise<Ctx> {
 export async function requireAskerOrThrow(): Promise<{ asker: Asker; person: Person }> {
   const person = await currentPerson();
   if (!person) throw noSession();
-  const requestId = (await headers()).get("x-request-id") ?? undefined;
+  const requestId = requestIdOf(new Headers(await headers()));
   const asker = {
     userId: person.id,
     userName: person.name,

@@ -4,7 +4,7 @@ import { env } from "@/lib/env";
 import { database } from "@/lib/runtime";
 
 /** Address of the landing page for a link; opening it consumes nothing, its button does. */
-export function signInLink(origin: string, email: string, token: string): string {
+function signInLink(origin: string, email: string, token: string): string {
   const url = new URL("/sign-in/link", origin);
   url.searchParams.set("email", email);
   url.searchParams.set("token", token);

@@ -1,11 +1,11 @@
 import "server-only";
-import { randomUUID } from "node:crypto";
 import { headers } from "next/headers";
 import { z } from "zod";
 import { requireCtxOrThrow } from "@/lib/auth/current";
 import { env } from "@/lib/env";
 import { ForbiddenError, InvalidInputError, NotFoundError, TwinpassError } from "@/lib/errors";
 import { isOwnOrigin } from "@/lib/http/origin";
+import { requestIdOf } from "@/lib/http/request-id";
 import { logger } from "@/lib/logger";
 import type { Ctx } from "@/lib/services/ctx";
 
@@ -68,7 +68,7 @@ interface Call<Params> {
  */
 export function route<Params = Record<string, never>>(handle: (call: Call<Params>) => Promise<unknown>) {
   return async (request: Request, segment: { params: Promise<Params> }): Promise<Response> => {
-    const requestId = request.headers.get("x-request-id") ?? randomUUID();
+    const requestId = requestIdOf(request.headers);
     try {
       if (
         request.method !== "GET" &&

@@ -13,11 +13,12 @@ function answer(state: FormState): FormState {
 
 /** Changes the person's own name. Field: name. */
 export async function renamePersonAction(_: FormState | null, form: FormData): Promise<FormState> {
-  return answer(
-    await runPersonAction(renamePersonSchema, { name: form.get("name") }, ({ asker }, input) =>
-      renamePerson(asker, input),
-    ),
+  const state = await runPersonAction(renamePersonSchema, { name: form.get("name") }, ({ asker }, input) =>
+    renamePerson(asker, input),
   );
+  // The name stands in the frame around every page too.
+  if (state.ok) revalidatePath("/", "layout");
+  return answer(state);
 }
 
 /** Sets or replaces the signing passphrase. Fields: old, fresh, again. */

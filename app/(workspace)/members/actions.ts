@@ -73,5 +73,8 @@ export async function disableMemberAction(_: FormState | null, form: FormData): 
 
 /** Renames the workspace. Field: name. */
 export async function renameWorkspaceAction(_: FormState | null, form: FormData): Promise<FormState> {
-  return answer(await runFormAction(renameWorkspaceSchema, { name: form.get("name") }, renameWorkspace));
+  const state = await runFormAction(renameWorkspaceSchema, { name: form.get("name") }, renameWorkspace);
+  // The name stands in the frame around every page too.
+  if (state.ok) revalidatePath("/", "layout");
+  return answer(state);
 }

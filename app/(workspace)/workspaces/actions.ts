@@ -1,5 +1,6 @@
 "use server";
 
+import { revalidatePath } from "next/cache";
 import { redirect } from "next/navigation";
 import { type FormState, runPersonAction } from "@/lib/http/form-action";
 import { createWorkspace } from "@/lib/services/workspaces/create";
@@ -13,8 +14,9 @@ export async function createWorkspaceAction(_: FormState | null, form: FormData)
     const made = await createWorkspace(asker, wanted);
     await switchWorkspace(asker, person.tokenHash, made);
   });
-  if (state.ok) redirect("/programmes");
-  return { ok: false, message: state.message, fields: state.fields };
+  if (!state.ok) return { ok: false, message: state.message, fields: state.fields };
+  revalidatePath("/", "layout");
+  redirect("/programmes");
 }
 
 /** Looks at another workspace of the person. A workspace that is not theirs changes nothing. */
@@ -23,5 +25,6 @@ export async function switchWorkspaceAction(form: FormData): Promise<void> {
   await runPersonAction(switchWorkspaceSchema, input, ({ asker, person }, wanted) =>
     switchWorkspace(asker, person.tokenHash, wanted),
   );
+  revalidatePath("/", "layout");
   redirect("/programmes");
 }

@@ -54,6 +54,12 @@ function show(value: unknown): ReactNode {
   ));
 }
 
+/** Words before numbers, numbers before what only a machine compares; the database keeps no order of its own. */
+function weight(value: unknown): number {
+  if (typeof value === "string") return DIGEST.test(value) ? 4 : ID.test(value) ? 3 : 0;
+  return typeof value === "object" && value !== null ? 2 : 1;
+}
+
 function Line({ term, children }: { term: string; children: ReactNode }) {
   return (
     <div className="flex min-w-0 flex-wrap gap-x-2">
@@ -68,9 +74,9 @@ export function EntryData({ data }: { data: Data }) {
   const before = isData(data.old) ? data.old : {};
   const after = isData(data.new) ? data.new : {};
   const changed = [...new Set([...Object.keys(before), ...Object.keys(after)])];
-  const plain = Object.entries(data).filter(
-    ([name, value]) => !((name === "old" || name === "new") && isData(value)),
-  );
+  const plain = Object.entries(data)
+    .filter(([name, value]) => !((name === "old" || name === "new") && isData(value)))
+    .sort(([, a], [, b]) => weight(a) - weight(b));
   if (plain.length === 0 && changed.length === 0) return null;
   return (
     <dl className="flex flex-wrap gap-x-6 gap-y-0.5 text-13">

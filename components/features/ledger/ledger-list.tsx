@@ -18,7 +18,7 @@ export interface LedgerEntry {
 
 function Happening({ entry }: { entry: LedgerEntry }) {
   const path = subjectPath(entry.subjectType, entry.subjectId);
-  const words = eventWords(entry.event, entry.data);
+  const words = eventWords(entry);
   return path ? (
     <Link href={path as Route} className="font-semibold hover:underline">
       {words}
@@ -39,21 +39,18 @@ export function LedgerList({ entries }: { entries: readonly LedgerEntry[] }) {
           className="keep-together flex gap-3 border-line border-t px-4 py-3 first:border-t-0 md:px-5"
         >
           <span className="tabular w-12 shrink-0 pt-0.5 text-right text-13 text-ink2">{entry.seq}</span>
-          <div className="flex min-w-0 flex-1 flex-col gap-1">
-            <div className="flex flex-wrap items-baseline gap-x-3">
+          <div className="flex min-w-0 flex-1 flex-wrap justify-between gap-x-6 gap-y-1">
+            <div className="flex min-w-0 flex-1 basis-80 flex-col gap-1">
               <p className="text-15">
                 <Happening entry={entry} />
                 <span className="text-ink2">, {entry.actorName}</span>
               </p>
-              <span className="text-13 text-ink2 sm:ml-auto">
-                <DateTime at={entry.at} zone="UTC" precision="second" />
-              </span>
+              <EntryData data={entry.data} />
             </div>
-            <EntryData data={entry.data} />
-            <p className="flex flex-wrap items-center gap-x-3 text-13 text-ink2">
-              <code className="tabular text-[0.92em]">{entry.event}</code>
+            <div className="flex shrink-0 flex-wrap gap-x-3 text-13 text-ink2 sm:w-48 sm:flex-col sm:items-end">
+              <DateTime at={entry.at} zone="UTC" precision="second" />
               <Fingerprint value={entry.sha256} copy={false} />
-            </p>
+            </div>
           </div>
         </li>
       ))}
@@ -61,19 +58,36 @@ export function LedgerList({ entries }: { entries: readonly LedgerEntry[] }) {
   );
 }
 
-/** The same in a few words, for the margin of a page. */
-export function HistoryList({ entries }: { entries: readonly LedgerEntry[] }) {
+/** Entries that follow one another, by the same person and of the same kind, told once with their number. */
+function grouped(entries: readonly LedgerEntry[]): { first: LedgerEntry; count: number }[] {
+  const groups: { first: LedgerEntry; count: number }[] = [];
+  for (const entry of entries) {
+    const last = groups.at(-1);
+    if (last && last.first.event === entry.event && last.first.actorName === entry.actorName) last.count += 1;
+    else groups.push({ first: entry, count: 1 });
+  }
+  return groups;
+}
+
+/** The same in a few words, for a part of another page. */
+export function HistoryList({ entries, limit }: { entries: readonly LedgerEntry[]; limit: number }) {
   if (entries.length === 0) return <p className="text-15 text-ink2">Nothing to show.</p>;
   return (
     <ol reversed className="flex flex-col gap-2">
-      {entries.map((entry) => (
-        <li key={entry.seq} className="text-15">
-          <Happening entry={entry} />
-          <p className="text-13 text-ink2">
-            {entry.actorName}, <DateTime at={entry.at} zone="UTC" />
-          </p>
-        </li>
-      ))}
+      {grouped(entries)
+        .slice(0, limit)
+        .map(({ first, count }) => (
+          <li key={first.seq} className="flex flex-wrap items-baseline justify-between gap-x-4 text-15">
+            <span>
+              <Happening entry={first} />
+              {count > 1 && <span className="text-ink2"> and {count - 1} more like it</span>}
+              <span className="text-ink2">, {first.actorName}</span>
+            </span>
+            <span className="text-13 text-ink2">
+              <DateTime at={first.at} zone="UTC" />
+            </span>
+          </li>
+        ))}
     </ol>
   );
 }

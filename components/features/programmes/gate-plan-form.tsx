@@ -11,6 +11,7 @@ import { Button } from "@/components/ui/action/button";
 import { Select } from "@/components/ui/form/select";
 import { SectionHeading } from "@/components/ui/layout/section-heading";
 import { Notice } from "@/components/ui/status/notice";
+import { showToast } from "@/components/ui/status/toast";
 import type { Gate, GatePlan } from "@/lib/gates/plan";
 import { gatePlanSchema } from "@/lib/services/gate-plans/schema";
 
@@ -54,7 +55,7 @@ export function GatePlanForm({ programmeId, version, plan, blockedBecause, actio
   });
   const { fields, append, remove } = useFieldArray({ control: form.control, name: "gates", keyName: "key" });
   const [time, setTime] = useState("0-100");
-  const [outcome, setOutcome] = useState<{ ok: boolean; message: string } | null>(null);
+  const [problem, setProblem] = useState<string | null>(null);
   const { formState } = form;
   const wrong = Object.keys(formState.errors).length > 0;
   const gates = fields as unknown as (Gate & { key: string })[];
@@ -69,12 +70,13 @@ export function GatePlanForm({ programmeId, version, plan, blockedBecause, actio
     append({ id: freshId(base, gates), kind: "sprint", level: "should", time, notSlowerByS: "0.1" });
   };
   const send = form.handleSubmit(async (parsed) => {
-    setOutcome(null);
+    setProblem(null);
     const state = await action({ programmeId, basedOnVersion: version, plan: parsed });
     const saved = state.value?.version;
     const words =
       saved === version ? "Nothing was changed, so no version was added." : `Version ${saved} is saved.`;
-    setOutcome({ ok: state.ok, message: state.ok ? words : (state.message ?? "It was not saved.") });
+    if (state.ok) showToast(words);
+    else setProblem(state.message ?? "It was not saved.");
   });
 
   return (
@@ -82,7 +84,7 @@ export function GatePlanForm({ programmeId, version, plan, blockedBecause, actio
       <form onSubmit={send} noValidate className="flex flex-col gap-6">
         {GATE_GROUPS.map((group) => (
           <div key={group.title}>
-            <SectionHeading level={3}>{group.title}</SectionHeading>
+            <SectionHeading>{group.title}</SectionHeading>
             <ul className="mt-1">
               {gates.map(
                 (gate, index) =>
@@ -119,9 +121,9 @@ export function GatePlanForm({ programmeId, version, plan, blockedBecause, actio
             )}
           </div>
         ))}
-        {(wrong || outcome) && (
-          <Notice tone={!wrong && outcome?.ok ? "plain" : "problem"} live>
-            {wrong ? "Some gates need another look: each says why." : outcome?.message}
+        {(wrong || problem) && (
+          <Notice tone="problem" live>
+            {wrong ? "Some gates need another look: each says why." : problem}
           </Notice>
         )}
         <div>

@@ -6,9 +6,9 @@ import type { Gate, GatePlan } from "@/lib/gates/plan";
 function numbersText(gate: Gate): string {
   const values = gate as unknown as Record<string, number | null>;
   return gateWords(gate)
-    .numbers.map(({ name, label, unit, hint }) => {
+    .numbers.map(({ name, label, unit }) => {
       const value = values[name];
-      if (value === null) return `${label}: ${hint?.replace(/^Empty: /, "") ?? "open"}`;
+      if (value === null) return `${label} open`;
       return `${label} ${value}${unit ? `\u202f${unit}` : ""}`;
     })
     .join(", ");
@@ -23,7 +23,7 @@ export function GatePlanView({ plan }: { plan: GatePlan }) {
         if (gates.length === 0) return null;
         return (
           <div key={group.title}>
-            <SectionHeading level={3}>{group.title}</SectionHeading>
+            <SectionHeading>{group.title}</SectionHeading>
             <ul className="mt-1">
               {gates.map((gate) => (
                 <li
@@ -32,7 +32,10 @@ export function GatePlanView({ plan }: { plan: GatePlan }) {
                 >
                   <span className="min-w-0 text-15">
                     <span className="font-medium">{gateWords(gate).title}</span>{" "}
-                    <span className="tabular text-ink2">{numbersText(gate)}</span>
+                    <span className="text-ink2">{numbersText(gate)}</span>
+                    {gateWords(gate).note && (
+                      <span className="block text-13 text-ink2">{gateWords(gate).note}</span>
+                    )}
                   </span>
                   <Tag tone={gate.level === "must" ? "strong" : "plain"}>
                     {LEVEL_WORDS[gate.level].toLowerCase()}

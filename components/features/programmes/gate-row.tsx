@@ -24,24 +24,26 @@ interface GateRowProps {
 /** One gate: how much it binds, and its numbers. */
 export function GateRow({ gate, index, onRemove }: GateRowProps) {
   const { register, formState } = useFormContext<PlanFields>();
-  const { title, numbers } = gateWords(gate);
+  const { title, note, numbers } = gateWords(gate);
   const errors = formState.errors.gates?.[index] as Record<string, { message?: string }> | undefined;
   return (
-    <li className="grid gap-x-4 gap-y-2 border-line border-t py-3 first:border-t-0 md:grid-cols-[minmax(0,1fr)_8rem_minmax(0,22rem)_2.75rem] md:items-start">
-      <p className="self-center font-medium text-15 md:pt-6">{title}</p>
+    <li className="grid gap-x-4 gap-y-2 border-line border-t py-3 first:border-t-0 md:grid-cols-[minmax(0,1fr)_8rem_22rem_2.75rem] md:items-start">
+      <div className="self-center md:pt-6">
+        <p className="font-medium text-15">{title}</p>
+        {note && <p className="text-13 text-ink2">{note}</p>}
+      </div>
       <Select
         label="Level"
         aria-label={`Level of: ${title}`}
         options={choices(LEVEL_WORDS)}
         {...register(`gates.${index}.level`)}
       />
-      <div className="grid grid-cols-[repeat(auto-fit,minmax(6.5rem,1fr))] gap-2">
+      <div className="grid grid-cols-3 gap-2">
         {numbers.map((number) => (
           <NumberInput
             key={number.name}
             label={number.label}
             unit={number.unit}
-            hint={number.hint}
             {...register(`gates.${index}.${number.name}`)}
             error={errors?.[number.name]?.message}
           />

@@ -5,11 +5,11 @@ export interface GateNumber {
   name: string;
   label: string;
   unit?: string;
-  hint?: string;
 }
 
 export interface GateWords {
   title: string;
+  note?: string;
   numbers: GateNumber[];
 }
 
@@ -24,8 +24,8 @@ export const SPRINT_TIMES: { value: string; label: string }[] = [
 ];
 
 const REGION: GateNumber[] = [
-  { name: "fromRpm", label: "from", unit: "1/min" },
-  { name: "toRpm", label: "to", unit: "1/min" },
+  { name: "fromRpm", label: "from 1/min" },
+  { name: "toRpm", label: "to 1/min" },
 ];
 
 /** What a gate asks, in words, and the numbers that a lead sets. */
@@ -77,11 +77,8 @@ export function gateWords(gate: Gate): GateWords {
     case "no_loss":
       return {
         title: "No loss in torque",
-        numbers: [
-          { name: "beyondPct", label: "beyond", unit: "%" },
-          { ...REGION[0], name: "fromRpm", hint: "Empty: 500 above the start of the pull" },
-          { ...REGION[1], name: "toRpm", hint: "Empty: 300 below the limiter" },
-        ],
+        note: "Empty ends: 500 above the start of the pull, 300 below the limiter.",
+        numbers: [{ name: "beyondPct", label: "beyond", unit: "%" }, ...REGION],
       };
     case "sprint": {
       const time = SPRINT_TIMES.find((known) => known.value === gate.time)?.label ?? gate.time;

@@ -39,7 +39,8 @@ export function statePhrase(revision: {
   if (!stoodFrom) return undefined;
   if (state === "promoted") return `stands since ${day(stoodFrom)}`;
   if (!stoodUntil) return undefined;
-  const stood = `stood ${day(stoodFrom)} – ${day(stoodUntil)}`;
+  const [from, until] = [day(stoodFrom), day(stoodUntil)];
+  const stood = from === until ? `stood on ${from}` : `stood ${from} – ${until}`;
   return state === "rolled_back" ? `${stood}, rolled back` : stood;
 }
 

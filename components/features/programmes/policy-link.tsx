@@ -9,7 +9,12 @@ export interface PolicyLinkProps extends ComponentProps<typeof LinkButton> {
 
 /** A link that looks like a button for whoever may go there; for others the button is off and says why. */
 export function PolicyLink({ verdict, children, ...rest }: PolicyLinkProps) {
-  if (verdict.ok) return <LinkButton {...rest}>{children}</LinkButton>;
+  if (verdict.ok)
+    return (
+      <LinkButton {...rest} className="self-start">
+        {children}
+      </LinkButton>
+    );
   return (
     <Button icon={rest.icon} blockedBecause={verdict.reason} className="max-w-full">
       {children}

@@ -66,7 +66,7 @@ export function VehicleSheetFields() {
         <Select label="Charging" options={choices(ASPIRATION_WORDS)} {...field("aspiration")} />
         <Select label="Driven wheels" options={choices(DRIVE_WORDS)} {...field("drive")} />
         <NumberInput label="Displacement" unit="L" {...field("displacementL")} />
-        <NumberInput label="Idle speed" unit="1/min" {...field("idleRpm")} />
+        <NumberInput label="Idle speed" unit="1/min" hint="Warm, in neutral" {...field("idleRpm")} />
         <NumberInput
           label="Speed limiter"
           required
@@ -88,7 +88,7 @@ export function VehicleSheetFields() {
           {...field("gearRatios")}
           fieldClassName="sm:col-span-2"
         />
-        <NumberInput label="Final drive" {...field("finalDrive")} />
+        <NumberInput label="Final drive" hint="Ratio of the driven axle" {...field("finalDrive")} />
         <TextInput label="Tyre marking" mono hint="E.g. 225/40 R18" {...field("tyre")} />
         <div className="sm:col-span-2">
           {figure(

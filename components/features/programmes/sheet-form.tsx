@@ -8,6 +8,7 @@ import { VehicleSheetFields } from "@/components/features/programmes/sheet-field
 import { sheetValues } from "@/components/features/programmes/sheet-values";
 import { Button } from "@/components/ui/action/button";
 import { Notice } from "@/components/ui/status/notice";
+import { showToast } from "@/components/ui/status/toast";
 import type { VehicleSheetFigures } from "@/lib/measure/vehicle-sheet";
 import { vehicleSheetSchema } from "@/lib/services/vehicle-sheets/schema";
 
@@ -38,29 +39,25 @@ export function VehicleSheetForm({
     resolver: zodResolver(schema),
     defaultValues: { sheet: sheetValues(figures) },
   });
-  const [outcome, setOutcome] = useState<{ ok: boolean; message: string } | null>(null);
+  const [problem, setProblem] = useState<string | null>(null);
   const { formState } = form;
   const send = form.handleSubmit(async ({ sheet }) => {
-    setOutcome(null);
+    setProblem(null);
     const state = await action({ programmeId, basedOnVersion: version, figures: sheet });
     const saved = state.value?.version;
     const words =
       saved === version ? "Nothing was changed, so no version was added." : `Version ${saved} is saved.`;
-    setOutcome({ ok: state.ok, message: state.ok ? words : (state.message ?? "It was not saved.") });
+    if (state.ok) showToast(words);
+    else setProblem(state.message ?? "It was not saved.");
   });
   const wrong = Object.keys(formState.errors).length > 0;
   return (
     <FormProvider {...form}>
       <form onSubmit={send} noValidate className="flex flex-col gap-8">
         <VehicleSheetFields />
-        {wrong && (
+        {(wrong || problem) && (
           <Notice tone="problem" live>
-            Some fields need another look: each says why.
-          </Notice>
-        )}
-        {outcome && !wrong && (
-          <Notice tone={outcome.ok ? "plain" : "problem"} live>
-            {outcome.message}
+            {wrong ? "Some fields need another look: each says why." : problem}
           </Notice>
         )}
         <div>

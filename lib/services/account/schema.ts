@@ -1,7 +1,7 @@
 import { z } from "zod";
 import { personName } from "@/lib/services/workspaces/schema";
 
-export const PASSPHRASE_MIN = 12;
+const PASSPHRASE_MIN = 12;
 
 export const renamePersonSchema = z.object({ name: personName });
 

@@ -9,7 +9,8 @@ import { isInFlight, loadLineage } from "@/lib/services/programmes/lineage";
 import { loadProgramme } from "@/lib/services/programmes/load";
 
 const ROAD_DAYS = 5;
-const ENTRIES = 8;
+/** Many entries of one kind are told as one. */
+const ENTRIES = 60;
 
 /** The same verdict for whoever may, refused with a plain sentence while the programme is archived or the thing is missing. */
 function unless(reason: string | null, verdict: Verdict): Verdict {

@@ -5,7 +5,7 @@ import { optionalNumber, requiredNumber } from "@/lib/services/number-field";
 
 /** The limits only catch slips of the keyboard; common practice, no source. */
 const LIMITS = {
-  massPart: { min: 0.1, max: 20_000, unit: "kg" },
+  massPart: { min: 0, max: 20_000, unit: "kg" },
   massTotal: { min: 200, max: 20_000 },
   circumference: { min: 0.5, max: 6, unit: "m" },
   gearRatio: { min: 0.1, max: 50 },

@@ -74,7 +74,10 @@ describe("several roles", () => {
 
   it("marks a decision as self-released where nobody else could take it", () => {
     const facts = { authorId: "me", submitterId: "me", otherActiveLead: false };
-    expect(can({ userId: "me", roles: ["lead"] }, "decision.promote", facts)).toEqual({ ok: true, selfReleased: true });
+    expect(can({ userId: "me", roles: ["lead"] }, "decision.promote", facts)).toEqual({
+      ok: true,
+      selfReleased: true,
+    });
   });
 
   it("names the roles that could in the refusal", () => {

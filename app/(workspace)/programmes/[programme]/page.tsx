@@ -26,6 +26,9 @@ import { getProgramme, type ProgrammeOverview } from "@/lib/services/programmes/
 
 export const metadata: Metadata = { title: "Programme" };
 
+/** Lines of what happened. */
+const HISTORY = 8;
+
 /** "R14 stands since 12 Nov 2026, decided by Ana": the answer that the page is opened for. */
 function Standing({ overview }: { overview: ProgrammeOverview }) {
   const { standing } = overview;
@@ -124,6 +127,11 @@ export default async function ProgrammePage({ params }: PageProps<"/programmes/[
               </div>
             </Card>
           )}
+          {can(ctx, "history.view").ok && (
+            <HistoryCard allHref={ledger}>
+              <HistoryList entries={history} limit={HISTORY} />
+            </HistoryCard>
+          )}
           <ProgrammeManagement ctx={ctx} overview={overview} />
         </div>
         <aside aria-label="About this programme" className="grid min-w-0 gap-6 sm:grid-cols-2 lg:grid-cols-1">
@@ -131,11 +139,6 @@ export default async function ProgrammePage({ params }: PageProps<"/programmes/[
           <GatesCard programmeId={programme.id} plan={plan} />
           <RoadDaysCard days={roadDays} />
           <PeopleCard people={people} />
-          {can(ctx, "history.view").ok && (
-            <HistoryCard allHref={ledger}>
-              <HistoryList entries={history} />
-            </HistoryCard>
-          )}
         </aside>
       </div>
     </div>
