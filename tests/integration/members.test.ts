@@ -165,11 +165,11 @@ describe("roles", () => {
       const invite = { email: "x@example.org", roles: ["admin" as const] };
       const own = { userId: ctx.userId, roles: ["admin" as const] };
       for (const attempt of [
-        inviteMember(ctx, invite, FRESH, ORIGIN),
-        changeRoles(ctx, own, FRESH),
-        disableMember(ctx, { userId: admin.userId }, FRESH),
+        () => inviteMember(ctx, invite, FRESH, ORIGIN),
+        () => changeRoles(ctx, own, FRESH),
+        () => disableMember(ctx, { userId: admin.userId }, FRESH),
       ])
-        await expect(attempt).rejects.toMatchObject({ status: 403 });
+        await expect(attempt()).rejects.toMatchObject({ status: 403 });
       expect(await selectRoles(tx, { workspaceId, userId: ctx.userId })).toEqual([role]);
     });
   }

@@ -110,18 +110,18 @@ describe("another workspace", () => {
     const foreign = await member(tx, await createWorkspaceRow(tx), "lead", "admin", "calibrator");
     const figures = SHEET;
     for (const attempt of [
-      loadProgramme(foreign, programmeId),
-      getVehicleSheet(foreign, programmeId),
-      getGatePlan(foreign, programmeId, 1),
-      saveVehicleSheet(foreign, { programmeId, basedOnVersion: 1, figures }),
-      saveGatePlan(foreign, { programmeId, basedOnVersion: 1, plan: startingPlan() }),
-      editProgramme(foreign, { programmeId, rowVersion: 1, name: "Mine now", goal: "" }),
-      archiveProgramme(foreign, { programmeId, archived: true }),
-      listShares(foreign, programmeId),
-      shareProgramme(foreign, { programmeId, userId: foreign.userId, expiresOn: "2999-01-01" }),
-      endShare(foreign, { programmeId, userId: foreign.userId }),
+      () => loadProgramme(foreign, programmeId),
+      () => getVehicleSheet(foreign, programmeId),
+      () => getGatePlan(foreign, programmeId, 1),
+      () => saveVehicleSheet(foreign, { programmeId, basedOnVersion: 1, figures }),
+      () => saveGatePlan(foreign, { programmeId, basedOnVersion: 1, plan: startingPlan() }),
+      () => editProgramme(foreign, { programmeId, rowVersion: 1, name: "Mine now", goal: "" }),
+      () => archiveProgramme(foreign, { programmeId, archived: true }),
+      () => listShares(foreign, programmeId),
+      () => shareProgramme(foreign, { programmeId, userId: foreign.userId, expiresOn: "2999-01-01" }),
+      () => endShare(foreign, { programmeId, userId: foreign.userId }),
     ])
-      await expect(attempt).rejects.toMatchObject({ status: 404 });
+      await expect(attempt()).rejects.toMatchObject({ status: 404 });
     expect((await listProgrammes(foreign)).programmes).toEqual([]);
   });
 });
