@@ -1,6 +1,6 @@
-import { and, asc, count, desc, eq, isNull, sql } from "drizzle-orm";
+import { and, asc, desc, eq, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
-import { roadDays, runs, users } from "@/db/tables";
+import { roadDays } from "@/db/tables";
 
 export type RoadDayRow = typeof roadDays.$inferSelect;
 type Key = { workspaceId: string; roadDayId: string };
@@ -56,28 +56,18 @@ export async function updateRoadDay(
   return row ?? null;
 }
 
-/** Road days of a programme, newest first, with their runs counted (those set aside not). */
-export async function selectRoadDays(
+/** The road day of a programme that was driven last. */
+export async function selectNewestRoadDay(
   db: Queryable,
   { workspaceId, programmeId }: { workspaceId: string; programmeId: string },
-) {
-  return await db
-    .select({
-      id: roadDays.id,
-      day: roadDays.day,
-      zone: roadDays.zone,
-      stripName: roadDays.stripName,
-      sample: roadDays.sample,
-      createdByName: users.name,
-      runs: count(runs.id),
-      usable: sql<number>`count(${runs.id}) filter (where ${runs.state} = 'usable')::int`,
-    })
+): Promise<RoadDayRow | null> {
+  const [row] = await db
+    .select()
     .from(roadDays)
-    .innerJoin(users, eq(users.id, roadDays.createdBy))
-    .leftJoin(runs, and(eq(runs.roadDayId, roadDays.id), isNull(runs.setAsideAt)))
     .where(and(eq(roadDays.workspaceId, workspaceId), eq(roadDays.programmeId, programmeId)))
-    .groupBy(roadDays.id, users.name)
-    .orderBy(desc(roadDays.day), desc(roadDays.createdAt));
+    .orderBy(desc(roadDays.day), desc(roadDays.createdAt))
+    .limit(1);
+  return row ?? null;
 }
 
 /** Strips driven before in this workspace, to choose from, the one driven last first. */

@@ -1,4 +1,4 @@
-import { type RoadDayRow, selectRoadDays, selectStripNames } from "@/db/queries/road-days";
+import { type RoadDayRow, selectNewestRoadDay, selectStripNames } from "@/db/queries/road-days";
 import { selectDrivableRevisions } from "@/db/queries/runs";
 import { toCampaignVehicle } from "@/lib/measure/vehicle-sheet";
 import { authorise, type Ctx } from "@/lib/services/ctx";
@@ -64,17 +64,9 @@ export async function prepareRoadDay(ctx: Ctx, programmeId: string) {
   authorise(ctx, "road_day.edit");
   const { programme, sheet } = await loadProgramme(ctx, programmeId);
   const { workspaceId } = ctx;
-  const [strips, days] = await Promise.all([
+  const [strips, last] = await Promise.all([
     selectStripNames(ctx.db, { workspaceId }),
-    selectRoadDays(ctx.db, { workspaceId, programmeId }),
+    selectNewestRoadDay(ctx.db, { workspaceId, programmeId }),
   ]);
-  const last = days[0] ? await loadRoadDay(ctx, days[0].id) : null;
   return { programme, strips, last, sheetMassKg: toCampaignVehicle(sheet.figures).mass_kg };
-}
-
-/** Road days of a programme, newest first, for its page. @throws NotFoundError; ForbiddenError */
-export async function listRoadDays(ctx: Ctx, programmeId: string) {
-  authorise(ctx, "run.view");
-  const { workspaceId } = ctx;
-  return await selectRoadDays(ctx.db, { workspaceId, programmeId });
 }

@@ -7,10 +7,11 @@ import { authorise, type Ctx, withTransaction } from "@/lib/services/ctx";
 import { appendLedger } from "@/lib/services/ledger/append";
 import { loadProgramme } from "@/lib/services/programmes/load";
 import { refuseArchived } from "@/lib/services/programmes/refuse-archived";
+import { judgeRunsAgain } from "@/lib/services/runs/judge-again";
 import { saveVehicleSheetSchema, type VehicleSheetInput } from "@/lib/services/vehicle-sheets/schema";
 
 /**
- * Adds a version of the vehicle sheet; the old ones stay, and comparisons are computed anew with the new one.
+ * Adds a version of the vehicle sheet; the old ones stay, and runs are judged and comparisons computed anew with the new one.
  * Saving what is already there adds nothing.
  * @param input `basedOnVersion`: the version that the person looked at
  * @throws ForbiddenError, NotFoundError; ConflictError when a newer version exists
@@ -39,6 +40,7 @@ export async function saveVehicleSheet(
         "Somebody else saved a newer version of this sheet meanwhile. Open the page again to see it, then change it.",
         { newestVersion: sheet.version },
       );
+    await judgeRunsAgain(tx, inner, { programmeId });
     const lineage = await selectLineage(tx, { workspaceId, programmeIds: [programmeId] });
     for (const revision of lineage) await refreshComparisonsOf(tx, inner, { revisionId: revision.id });
     await appendLedger(tx, inner, {
