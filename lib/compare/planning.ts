@@ -2,7 +2,7 @@ import { normalQuantile, tQuantile } from "@/lib/signal/distributions";
 import { noncentralTCdf } from "@/lib/signal/noncentral-t";
 
 /** Chance that a two-sided pooled t test with `nPerSide` runs a side shows a true difference of `deltaOverSd` standard deviations. */
-export function powerOfTest(nPerSide: number, deltaOverSd: number, alpha = 0.05): number {
+function powerOfTest(nPerSide: number, deltaOverSd: number, alpha = 0.05): number {
   const df = 2 * nPerSide - 2;
   const delta = deltaOverSd * Math.sqrt(nPerSide / 2);
   const critical = tQuantile(1 - alpha / 2, df);

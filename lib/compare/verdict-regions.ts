@@ -1,7 +1,7 @@
 import type { DeltaRegion } from "@/lib/measure/types";
 
 /** A region of fewer than this many 1/min is no region: an engine does not gain in a slot of two grid points. */
-export const LEAST_REGION_RPM = 100;
+const LEAST_REGION_RPM = 100;
 
 /**
  * Engine-speed regions in which the whole band lies above zero (gain) or below (loss). `rpm` rises; NaN low or high ends a

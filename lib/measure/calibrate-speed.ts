@@ -32,7 +32,7 @@ interface Equation {
 }
 
 /** White noise of a channel from its second differences (robust), never below a hundredth of its step. */
-export function channelNoise(channel: SampledChannel, fromS: number, toS: number): number {
+function channelNoise(channel: SampledChannel, fromS: number, toS: number): number {
   const [a, b] = between(channel, fromS, toS);
   const bends: number[] = [];
   for (let i = a + 1; i < b - 1; i++) {

@@ -41,7 +41,7 @@ const ROUNDS = 3;
 const USUAL_RADIUS_M = 0.31;
 
 /** Test mass of a run, kg: its own where typed, else the vehicle's. */
-export function massOf(run: CampaignRun, vehicle: CampaignVehicle): number {
+function massOf(run: CampaignRun, vehicle: CampaignVehicle): number {
   return run.mass_kg ?? vehicle.mass_kg;
 }
 

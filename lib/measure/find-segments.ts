@@ -92,6 +92,15 @@ function lockedRatio(signals: RunSignals, first: number, last: number): number |
   return Number.isFinite(ratio) ? ratio : null;
 }
 
+/** A recording gap of up to this is bridged when full load stands on both sides of it, s; what lies in it is masked. */
+const LONGEST_GAP_S = 2;
+
+/** True when row `i` continues a span that ended at row `end`: after a short dip, or right after a gap in the recording. */
+function joins({ timeS }: RunSignals, end: number, i: number, bridgeS: number): boolean {
+  const pause = timeS[i] - timeS[end];
+  return pause <= bridgeS || (i === end + 1 && pause <= LONGEST_GAP_S);
+}
+
 /** Row spans in which the load stays at its full value; dips of up to 0.15 s are bridged. */
 function fullLoadSpans(signals: RunSignals, load: Float64Array): [number, number][] {
   const top = quantile(load, 0.995);
@@ -101,8 +110,7 @@ function fullLoadSpans(signals: RunSignals, load: Float64Array): [number, number
   for (let i = 0; i < load.length; i++) {
     if (!(load[i] >= limit)) continue;
     const previous = spans[spans.length - 1];
-    if (previous && signals.timeS[i] - signals.timeS[previous[1]] <= Math.max(0.15, 2.5 / signals.rateHz))
-      previous[1] = i;
+    if (previous && joins(signals, previous[1], i, Math.max(0.15, 2.5 / signals.rateHz))) previous[1] = i;
     else spans.push([i, i]);
   }
   return spans.filter(([a, b]) => signals.timeS[b] - signals.timeS[a] >= 0.8);
@@ -116,8 +124,7 @@ function risingSpans(signals: RunSignals): [number, number][] {
   for (let i = 0; i < acceleration.length; i++) {
     if (!(acceleration[i] >= limit)) continue;
     const previous = spans[spans.length - 1];
-    if (previous && signals.timeS[i] - signals.timeS[previous[1]] <= 0.2 + 2 / signals.rateHz)
-      previous[1] = i;
+    if (previous && joins(signals, previous[1], i, 0.2 + 2 / signals.rateHz)) previous[1] = i;
     else spans.push([i, i]);
   }
   return spans.filter(([a, b]) => signals.timeS[b] - signals.timeS[a] >= 1.5);
@@ -127,7 +134,7 @@ function risingSpans(signals: RunSignals): [number, number][] {
  * Acceleration a row: difference of the mean finding speeds of the `widthS` after and before it; O(rows). Rough on purpose,
  * for finding segments only.
  */
-export function accelerationRows(signals: RunSignals, widthS: number): Float64Array {
+function accelerationRows(signals: RunSignals, widthS: number): Float64Array {
   const { timeS, speedRows } = signals;
   const n = timeS.length;
   const width = Math.max(1, Math.round(widthS * signals.rateHz));
@@ -205,7 +212,7 @@ function findCruise(signals: RunSignals, pullRow: number): Span | null {
 }
 
 /** The longest coast-down after row `after`: load closed, engine off the wheels, speed falling gently. */
-export function findCoast(signals: RunSignals, after: number, perMps: number | null): Span | null {
+function findCoast(signals: RunSignals, after: number, perMps: number | null): Span | null {
   const { timeS, speedRows, loadRows, engineRows, gearRows } = signals;
   const acceleration = accelerationRows(signals, 0.8);
   const closed = loadRows ? Math.min(quantile(loadRows, 0.02) + 5, 20) : 0;

@@ -7,7 +7,7 @@ import type { CampaignRun, CampaignVehicle, Note, Reason } from "@/lib/measure/t
 import { rpmPerMps } from "@/lib/measure/vehicle";
 
 /** Below this rate an acceleration over half a second is guesswork (campaign.md start value). */
-export const LEAST_RATE_HZ = 5;
+const LEAST_RATE_HZ = 5;
 
 /** A log after its first look: what it holds, or why it is refused. */
 export interface PreparedRun {

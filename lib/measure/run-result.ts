@@ -28,7 +28,7 @@ const SOURCE_NAMES: Record<SpeedSource, string> = {
 };
 
 /** The weather factor of one run by the campaign's choice. */
-export function runFactor(campaign: Campaign, run: CampaignRun): FactorResult {
+function runFactor(campaign: Campaign, run: CampaignRun): FactorResult {
   const chosen = chooseFactor(campaign.settings.factor, campaign.vehicle);
   const computed = weatherFactor(chosen.id, run.weather, campaign.vehicle);
   return {

@@ -61,11 +61,6 @@ export function smoothSpeed(stretch: SpeedStretch, smoothing: Smoothing): Spline
   return solveSpline(stretch.system, smoothing.lambda, scale ? (t) => scale(stretch, t) : undefined);
 }
 
-/** The time constant of a penalty in seconds: (λ/density)^(1/6), the width of the smoother's kernel. */
-export function kernelWidthS(lambda: number, density: number): number {
-  return (lambda / density) ** (1 / 6);
-}
-
 /** Mean information a second of some stretches. */
 export function meanDensity(stretches: readonly SpeedStretch[]): number {
   return stretches.reduce((sum, s) => sum + s.density, 0) / stretches.length;

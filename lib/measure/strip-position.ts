@@ -18,7 +18,7 @@ const EARTH_RADIUS_M = 6_371_000;
 const LARGEST_SCATTER_M = 25;
 
 /** Way by the trapezium rule from the finding speed times `speedFactor`; m, one value a row. */
-export function integratedWay(signals: RunSignals, speedFactor: number): Float64Array {
+function integratedWay(signals: RunSignals, speedFactor: number): Float64Array {
   const way = new Float64Array(signals.timeS.length);
   for (let i = 1; i < way.length; i++) {
     const dt = signals.timeS[i] - signals.timeS[i - 1];

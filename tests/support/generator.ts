@@ -26,7 +26,7 @@ export interface Scenario {
   sensors: Partial<Sensors>;
 }
 
-export const BASE_SCENARIO: Scenario = {
+const BASE_SCENARIO: Scenario = {
   car: "hatch",
   order: "ABBABAAB",
   directions: "+-+-+-+-",
