@@ -1,6 +1,9 @@
 import { randomUUID } from "node:crypto";
 import { type NextRequest, NextResponse } from "next/server";
 
+/** Data and downloads: nothing in them may run or load, whatever a stored file claims to be. */
+const DATA_POLICY = "default-src 'none'; base-uri 'none'; frame-ancestors 'none'; sandbox";
+
 /**
  * Content security policy with a nonce for each answer, the request id, and the path for the way back after signing in.
  * It decides no access: pages, routes and actions do. What a client sends under these header names is overwritten.
@@ -28,7 +31,8 @@ export function proxy(request: NextRequest): NextResponse {
   requestHeaders.set("x-path", request.nextUrl.pathname + request.nextUrl.search);
   requestHeaders.set("content-security-policy", policy);
   const response = NextResponse.next({ request: { headers: requestHeaders } });
-  response.headers.set("content-security-policy", policy);
+  const isData = request.nextUrl.pathname.startsWith("/api/");
+  response.headers.set("content-security-policy", isData ? DATA_POLICY : policy);
   // Only over https (RFC 6797, 7.2); the server itself speaks plain http behind whatever ends TLS and says so here.
   if (request.headers.get("x-forwarded-proto") === "https")
     response.headers.set("strict-transport-security", "max-age=31536000; includeSubDomains");
