@@ -6,7 +6,8 @@ import { createHash } from "node:crypto";
  * @throws RangeError on NaN or an infinity
  */
 export function canonicalJson(value: unknown): string {
-  if (typeof value === "number" && !Number.isFinite(value)) throw new RangeError(`not a JSON number: ${value}`);
+  if (typeof value === "number" && !Number.isFinite(value))
+    throw new RangeError(`not a JSON number: ${value}`);
   if (value instanceof Date) return JSON.stringify(value);
   if (Array.isArray(value)) return `[${value.map((item) => canonicalJson(item ?? null)).join(",")}]`;
   if (typeof value === "object" && value !== null) {

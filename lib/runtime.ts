@@ -22,7 +22,7 @@ export function objectStore(): Promise<ObjectStore> {
 }
 
 /** Where signed links of the filesystem driver point to. */
-export const FILE_LINK_PATH = "/api/files";
+const FILE_LINK_PATH = "/api/files";
 
 function storeConfig(): StoreConfig {
   const settings = env();

@@ -49,7 +49,7 @@ export function errorBody(
 }
 
 /** A JSON answer that no cache keeps. */
-export function json(
+function json(
   body: unknown,
   init: { status?: number; headers?: Record<string, string> } = {},
 ): Response {

@@ -1,7 +1,7 @@
 import { z } from "zod";
 import type { ImageDifference, ImageSummary } from "@/lib/calibration/image-summary";
 
-export const INTENDED_USES = ["road", "closed_course", "bench"] as const;
+const INTENDED_USES = ["road", "closed_course", "bench"] as const;
 
 const title = z
   .string()

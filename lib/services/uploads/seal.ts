@@ -17,7 +17,7 @@ export interface SealedUpload {
 }
 
 /** The bytes of an upload in order, from its parts in the store. */
-export async function* readStaged(ctx: Pick<Ctx, "store">, row: Pick<UploadRow, "stagingKey">): ByteSource {
+async function* readStaged(ctx: Pick<Ctx, "store">, row: Pick<UploadRow, "stagingKey">): ByteSource {
   const prefix = prefixOf(parseStagingKey(row.stagingKey));
   let after: string | undefined;
   do {

@@ -1,4 +1,4 @@
-import type { Metadata } from "next";
+import type { Metadata, Route } from "next";
 import { openComparisonAction } from "@/app/(workspace)/comparisons/actions";
 import {
   adoptAction,
@@ -63,7 +63,7 @@ export default async function RevisionPage({ params }: PageProps<"/revisions/[re
           <Breadcrumbs
             items={[
               { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` },
+              { label: programme.name, href: `/programmes/${programme.id}` as Route },
               { label: `R${revision.number}` },
             ]}
           />

@@ -1,4 +1,4 @@
-import type { Metadata } from "next";
+import type { Metadata, Route } from "next";
 import { NewRevisionForm } from "@/app/(workspace)/revisions/new/new-revision-form";
 import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
 import { PageHeading } from "@/components/ui/layout/page-heading";
@@ -22,7 +22,7 @@ export default async function NewRevisionPage({ searchParams }: PageProps<"/revi
           <Breadcrumbs
             items={[
               { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` },
+              { label: programme.name, href: `/programmes/${programme.id}` as Route },
               { label: "Add a revision" },
             ]}
           />
