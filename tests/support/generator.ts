@@ -1,7 +1,9 @@
 import type { LogTable } from "@/lib/logs/types";
 import type { Campaign, FactorChoice } from "@/lib/measure/types";
 import { randomStream } from "@/lib/signal/random";
-import { driveRun, type RunConditions, recordRun, type Sensors, type SimulatedCar } from "./simulate-run";
+import { driveRun } from "@/lib/simulate/drive-run";
+import { recordRun } from "@/lib/simulate/record-run";
+import type { RunConditions, Sensors, SimulatedCar } from "@/lib/simulate/types";
 import { SIMULATED_CARS } from "./simulated-cars";
 
 /** What a simulated campaign varies; everything not stated comes from `seed`. */

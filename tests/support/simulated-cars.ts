@@ -1,5 +1,5 @@
 import type { Campaign, FactorChoice } from "@/lib/measure/types";
-import type { SimulatedCar } from "./simulate-run";
+import type { SimulatedCar } from "@/lib/simulate/types";
 
 /** The invented cars of the generator: physics for the simulator, sheet for the campaign. */
 export interface Model {

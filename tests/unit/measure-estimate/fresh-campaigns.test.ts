@@ -74,7 +74,7 @@ const SCENARIOS: [string, Partial<Scenario>, { peak: number; curve: number; delt
   ["cold diesel", { car: "estate", tempC: 2 }, { peak: 0.8, curve: 0.9, delta: 0.6 }],
 ];
 
-describe("Fresh campaigns (truth: tests/support/simulate-run.ts)", () => {
+describe("Fresh campaigns (truth: lib/simulate)", () => {
   it.each(SCENARIOS)("%s", (_, changes, limits) => {
     const draws = [41, 42].map((seed) => analysed(changes, seed));
     const mean = (of: (score: Score) => number) =>
