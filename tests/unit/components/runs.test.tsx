@@ -1,0 +1,149 @@
+import { cleanup, render, screen, within } from "@testing-library/react";
+import { afterEach, describe, expect, it, vi } from "vitest";
+import { type OrderCardRow, OrderCardTable } from "@/components/features/road-days/order-card-table";
+import { RunFields } from "@/components/features/runs/run-fields";
+import { RunTimes } from "@/components/features/runs/run-figures";
+import { RunList } from "@/components/features/runs/run-list";
+import { VerdictCard } from "@/components/features/runs/verdict-card";
+import type { RunLine } from "@/lib/services/runs/schema";
+
+afterEach(cleanup);
+
+const LINE: RunLine = {
+  id: "6f0c0c5e-2a0b-4d52-9f0f-0a4b2d1c9e11",
+  number: 12,
+  driveOrder: 3,
+  leg: "back",
+  kind: "pull",
+  gear: 3,
+  revisionId: "6f0c0c5e-2a0b-4d52-9f0f-0a4b2d1c9e12",
+  revisionNumber: 15,
+  testerName: "A tester",
+  fileName: "pull-03.csv",
+  verdict: "usable",
+  setAside: false,
+  why: [],
+  next: null,
+  notes: 0,
+  peakKw: 184.06,
+};
+
+describe("RunList", () => {
+  it("names the run, what was in the car, how it was driven, and its verdict in a word", () => {
+    render(<RunList runs={[LINE]} />);
+    const [item] = screen.getAllByRole("listitem");
+    expect(item?.textContent).toContain("R15");
+    expect(item?.textContent).toContain("back, pull, gear 3");
+    expect(item?.textContent).toContain("Usable");
+    expect(item?.textContent).toContain("184.1");
+    expect(screen.getByRole("link", { name: "Run 12" }).getAttribute("href")).toBe(`/runs/${LINE.id}`);
+  });
+
+  it("says why a run is refused and what to do next", () => {
+    const refused = {
+      verdict: "refused",
+      why: ["No column is a time."],
+      next: "Export again.",
+      peakKw: null,
+    } as const;
+    render(<RunList runs={[{ ...LINE, ...refused, why: [...refused.why] }]} />);
+    expect(screen.getByText("Refused")).toBeTruthy();
+    expect(screen.getByText("No column is a time.")).toBeTruthy();
+    expect(screen.getByText("Export again.")).toBeTruthy();
+  });
+
+  it("shows no figure of a run that is set aside", () => {
+    render(<RunList runs={[{ ...LINE, setAside: true, why: ["a gust"] }]} />);
+    expect(screen.getByText("Set aside")).toBeTruthy();
+    expect(screen.queryByText(/peak/)).toBeNull();
+  });
+});
+
+describe("VerdictCard", () => {
+  const shown = { verdict: "usable", reasons: [], notes: [], next: null, setAside: null } as const;
+
+  it("lists notes with their code and the stretch they are about", () => {
+    const notes = [{ code: "wheel_spin", message: "The driven wheels spun.", from_s: 3.1, to_s: 3.64 }];
+    render(<VerdictCard {...shown} notes={notes} />);
+    const row = screen.getByRole("row", { name: /The driven wheels spun/ });
+    expect(within(row).getByText("wheel_spin")).toBeTruthy();
+    expect(within(row).getByText("3.10–3.64 s")).toBeTruthy();
+  });
+
+  it("says whether the result could be seen when the run was set aside", () => {
+    const aside = { by: "A lead", at: "1 Jan 2030", reason: "a gust" };
+    render(<VerdictCard {...shown} setAside={{ ...aside, resultWasVisible: true }} />);
+    expect(screen.getByText(/Its result could be seen then/)).toBeTruthy();
+    cleanup();
+    render(<VerdictCard {...shown} setAside={{ ...aside, resultWasVisible: false }} />);
+    expect(screen.getByText(/could not be seen yet/)).toBeTruthy();
+  });
+});
+
+describe("RunTimes", () => {
+  const result = { id: "1", usable: true, reasons: [], notes: [] };
+
+  it("prints ± as twice the stated standard uncertainty, and only columns that hold something", () => {
+    render(
+      <RunTimes
+        result={{ ...result, times_s: { "80-120": 3.4 }, times_uncertainty_s: { "80-120": 0.006 } }}
+      />,
+    );
+    expect(screen.getByRole("row", { name: /80-120 \(km\/h\)/ }).textContent).toContain("3.400 ± 0.012");
+    expect(screen.queryByText(/Trap/)).toBeNull();
+  });
+
+  it("says so when no range is covered", () => {
+    render(<RunTimes result={result} />);
+    expect(screen.getByText(/covers none/)).toBeTruthy();
+  });
+});
+
+describe("OrderCardTable", () => {
+  const row: OrderCardRow = {
+    ...{ place: 3, twin: 2, revision: "R15", side: "B", leg: "out" },
+    ...{ writeBefore: true, run: null, isNext: true },
+  };
+
+  it("says what to write before the next drive", () => {
+    render(<OrderCardTable rows={[row]} />);
+    expect(screen.getByRole("row", { name: /next/ }).textContent).toMatch(/write R15, settle.*R15 out/);
+  });
+
+  it("tells a place driven as planned, otherwise, or refused apart", () => {
+    const driven = (place: number, verdict: "usable" | "refused", other: string | null): OrderCardRow => ({
+      ...row,
+      place,
+      isNext: false,
+      run: { number: place, verdict, other },
+    });
+    render(
+      <OrderCardTable
+        rows={[driven(1, "usable", null), driven(2, "usable", "R14 back"), driven(3, "refused", null)]}
+      />,
+    );
+    expect(screen.getByText("run 1")).toBeTruthy();
+    expect(screen.getByText("run 2, but R14 back")).toBeTruthy();
+    expect(screen.getByText("run 3 refused")).toBeTruthy();
+  });
+});
+
+describe("RunFields", () => {
+  it("hands every change on and shows where the order card says otherwise", () => {
+    const onChange = vi.fn();
+    render(
+      <RunFields
+        fileName="pull.csv"
+        values={{ revisionId: "a", driveOrder: "1", leg: "out", kind: "pull", gear: "3" }}
+        revisions={[{ id: "a", number: 14, title: "standing" }]}
+        gears={6}
+        cardSays="The order card has R15 out at place 1."
+        onChange={onChange}
+      />,
+    );
+    screen.getByLabelText("BACK").click();
+    expect(onChange).toHaveBeenCalledWith({ leg: "back" });
+    expect(screen.getByText(/R15 out at place 1/)).toBeTruthy();
+    expect(screen.getByRole("combobox", { name: "Gear" }).querySelectorAll("option")).toHaveLength(7);
+  });
+});
