@@ -34,7 +34,7 @@ export function VehicleSheetFields() {
     error: errorOf(`sheet.${name}`),
   });
   const figure = (name: FigureName, label: string, unit: string | undefined, hint: string) => (
-    <div className="grid grid-cols-[3fr_2fr] items-start gap-2">
+    <div className="grid grid-cols-[3fr_2fr] items-end gap-2">
       <NumberInput
         label={label}
         unit={unit}
