@@ -49,10 +49,7 @@ export function errorBody(
 }
 
 /** A JSON answer that no cache keeps. */
-function json(
-  body: unknown,
-  init: { status?: number; headers?: Record<string, string> } = {},
-): Response {
+function json(body: unknown, init: { status?: number; headers?: Record<string, string> } = {}): Response {
   return Response.json(body, { status: init.status ?? 200, headers: { ...PRIVATE, ...init.headers } });
 }
 
