@@ -1,6 +1,6 @@
 "use client";
 import { useCallback, useEffect, useReducer, useRef } from "react";
-import { callApi } from "@/lib/client/api";
+import { ApiError, callApi } from "@/lib/client/api";
 import { sendFile } from "@/lib/client/send-file";
 import type { BeginUpload, UploadState } from "@/lib/services/uploads/schema";
 
@@ -132,8 +132,10 @@ export function useUploads(purpose: BeginUpload["purpose"]) {
       try {
         set(item.id, { phase: "attached", message: await work(item.uploadId, item.idempotencyKey) });
       } catch (error) {
-        // Another request needs another key, else a corrected row would be answered with the refused one.
-        set(item.id, { phase: "sent", message: sentenceOf(error), idempotencyKey: crypto.randomUUID() });
+        // A refused request may be corrected and needs another key; one without an answer may have worked and keeps its own.
+        const isRefused = error instanceof ApiError && error.status >= 400 && error.status < 500;
+        const idempotencyKey = isRefused ? crypto.randomUUID() : item.idempotencyKey;
+        set(item.id, { phase: "sent", message: sentenceOf(error), idempotencyKey });
       }
     },
     [set],

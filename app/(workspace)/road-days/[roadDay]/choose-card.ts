@@ -15,7 +15,7 @@ const TWINS_USUAL = 3;
 
 /**
  * Sides and size of the card: from the page's address, else the standing revision against the one driven or validated,
- * and as many twins as the gate plan asks for. Null while there are not two revisions to compare.
+ * and as many twins as the gate plan asks for, rounded up to an even number. Null while there are not two revisions to compare.
  */
 export function chooseCard(
   { revisions, twinsAsked, runs }: Pick<RoadDayView, "revisions" | "twinsAsked" | "runs">,
@@ -34,7 +34,10 @@ export function chooseCard(
     driven.find((run) => run.revisionId !== a)?.revisionId ??
     revisions.find((revision) => revision.id !== a)?.id;
   if (!a || !b || a === b) return null;
-  const wanted = Number(query.twins ?? twinsAsked ?? TWINS_USUAL);
-  const twins = Number.isInteger(wanted) && wanted >= 1 && wanted <= TWINS_MOST ? wanted : TWINS_USUAL;
+  const least = twinsAsked ?? TWINS_USUAL;
+  // An even number a side lets steady drift cancel; a day that holds more runs already shows them all.
+  const usual = Math.max(least + (least % 2), Math.ceil(driven.length / 4));
+  const wanted = Number(query.twins ?? usual);
+  const twins = Number.isInteger(wanted) && wanted >= 1 && wanted <= TWINS_MOST ? wanted : usual;
   return { a, b, twins, card: proposeOrder({ twinsPerSide: twins }) };
 }

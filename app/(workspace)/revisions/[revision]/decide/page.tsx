@@ -1,5 +1,6 @@
 import type { Metadata, Route } from "next";
 import Link from "next/link";
+import { redirect } from "next/navigation";
 import { openComparisonAction, recomputeAction } from "@/app/(workspace)/comparisons/actions";
 import { decideAction } from "@/app/(workspace)/revisions/[revision]/decide/actions";
 import { AnswerCard } from "@/components/features/comparisons/answer-card";
@@ -33,6 +34,7 @@ export default async function DecidePage({ params }: PageProps<"/revisions/[revi
   const ctx = await requireCtx();
   const desk = await orNotFound((await params).revision, (id) => getDecisionDesk(ctx, id));
   const { revision, standing, comparison, gates, programme } = desk;
+  if (revision.state !== "in_review") redirect(`/revisions/${revision.id}` as Route);
   const result = comparison?.result ?? null;
   const grid = comparison && result && plottedGrid(result, sideOfRun(comparison.runs));
   const labels = { a: `R${standing?.number ?? "?"}`, b: `R${revision.number}` };
