@@ -83,7 +83,7 @@ export function deltaBand(
     });
   }
   const dfs = Float64Array.from(fits, (fit) => fit.df);
-  const variance = pooledVariance(squares, dfs, options.small ? 0 : options.pool);
+  const variance = pooledVariance(squares, dfs, options.pool);
   for (let k = 0; k < count; k++) standardError[k] = Math.sqrt(variance[k] * fits[k].sideVariance);
   const critical = options.small
     ? tQuantile(1 - (1 - options.level) / (2 * count), df)

@@ -10,7 +10,13 @@ import {
   slips,
   tipInS,
 } from "@/lib/measure/speed-model";
-import { addRow, normalEquations, solveNormal } from "@/lib/signal/normal-equations";
+import {
+  addRow,
+  type NormalSolution,
+  normalEquations,
+  solveNormal,
+  varianceOf,
+} from "@/lib/signal/normal-equations";
 import { type SplineFit, splineAt } from "@/lib/signal/penalised-spline";
 import { median } from "@/lib/signal/statistics";
 
@@ -196,7 +202,7 @@ function solveModel(
   const size = 1 + 2 * others.length;
   const deviation = new Map<SpeedSource, number>(others.map((source) => [source, 0.05]));
   let x: Float64Array = new Float64Array(size);
-  let covariance: Float64Array = new Float64Array(size * size);
+  let solved: NormalSolution | null = null;
   for (let pass = 0; pass < 4; pass++) {
     const normal = normalEquations(size);
     // A driven base slips itself: then only differences of slip between channels could be seen, so it is left at zero.
@@ -217,9 +223,8 @@ function solveModel(
       const outlier = pass === 0 ? 1 : Math.min(1, (2.5 * sd) / Math.abs(value - predicted));
       addRow(normal, [0, k, k + 1], [slipPart, e.speed, -e.acceleration], value, outlier / sd ** 2);
     }
-    const solved = solveNormal(normal);
+    solved = solveNormal(normal);
     x = solved.x;
-    covariance = solved.covariance;
     for (const source of others) {
       const k = index.get(source) ?? 0;
       const residuals: number[] = [];
@@ -233,6 +238,12 @@ function solveModel(
       deviation.set(source, Math.max(1e-4, 1.4826 * median(residuals)));
     }
   }
+  const final = solved;
+  const deviationOf = (k: number) => {
+    const unit = new Float64Array(size);
+    unit[k] = 1;
+    return final ? Math.sqrt(varianceOf(final, unit)) : Number.NaN;
+  };
   const gpsIndex = index.get("gps");
   // Road speed = what GPS says: divide every scale by the ratio of GPS to base.
   const road = gpsIndex === undefined ? 1 : x[gpsIndex];
@@ -252,7 +263,7 @@ function solveModel(
     add(
       source,
       x[k],
-      Math.sqrt(covariance[k * size + k]),
+      deviationOf(k),
       lagOf(source) + x[k + 1] / x[k],
       (deviation.get(source) ?? 0.05) / x[k],
     );

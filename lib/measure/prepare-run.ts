@@ -8,6 +8,8 @@ import { rpmPerMps } from "@/lib/measure/vehicle";
 
 /** Below this rate an acceleration over half a second is guesswork (campaign.md start value). */
 const LEAST_RATE_HZ = 5;
+/** Jitter of time stamps must not turn 5 rows a second into a refusal. */
+const RATE_TOLERANCE = 0.95;
 
 /** A log after its first look: what it holds, or why it is refused. */
 export interface PreparedRun {
@@ -43,7 +45,7 @@ export function prepareRun(
     throw error;
   }
   const signals = runSignals(log);
-  if (!(signals.rateHz >= LEAST_RATE_HZ)) {
+  if (!(signals.rateHz >= RATE_TOLERANCE * LEAST_RATE_HZ)) {
     return refused(
       "rate_too_low",
       `The log has ${signals.rateHz.toFixed(1)} rows a second; at least ${LEAST_RATE_HZ} are needed. Log faster.`,

@@ -16,6 +16,7 @@ import {
 } from "@/lib/measure/speed-model";
 import type { Span } from "@/lib/measure/types";
 import { type SplineFit, splineAt } from "@/lib/signal/penalised-spline";
+import { median } from "@/lib/signal/statistics";
 
 /** The fused speed of one pull. */
 export interface PullSpeed {
@@ -29,6 +30,9 @@ export interface PullSpeed {
 
 /** Driven channels ring after tip-in for so long: left out, s [common practice, no source]. */
 const RINGING_S = 0.7;
+/** Samples farther than this from the earlier fit are reading errors: standard deviations, and at least a share of the speed. */
+const OUTLIER_DEVIATIONS = 6;
+const OUTLIER_SHARE = 0.003;
 /** Slip beyond drive creep by this much is wheel spin (measurement.md 7.6), as a share of speed. */
 const SPIN_SHARE = 0.02;
 
@@ -48,13 +52,16 @@ export function pullSpeeds(
     if (!pull) return null;
     const tip = tipInS(run.segments);
     const before = earlier?.[index] ?? null;
-    const series = SPEED_SOURCES.flatMap((source): SpeedSeries[] => {
-      const reading = model.channels.get(source);
-      // Without an earlier fit there is no force to correct slip with: only free-rolling channels count, unless there is none.
-      if (!reading || (reading.slips && !before && model.base !== source)) return [];
-      const one = roadSpeedSeries(run, reading, model, before, tip, (v, a, t) => forceN(index, v, a, t));
-      return one ? [one] : [];
-    });
+    const seriesOf = (wanted: (reading: ChannelModel) => boolean) =>
+      SPEED_SOURCES.flatMap((source): SpeedSeries[] => {
+        const reading = model.channels.get(source);
+        if (!reading || !wanted(reading)) return [];
+        const one = roadSpeedSeries(run, reading, model, before, tip, (v, a, t) => forceN(index, v, a, t));
+        return one ? [one] : [];
+      });
+    // Without an earlier fit there is no force to correct slip with: free-rolling channels only, unless there is none.
+    let series = seriesOf((reading) => before !== null || !reading.slips || model.base === reading.source);
+    if (series.length === 0) series = seriesOf(() => true);
     return series.length === 0 ? null : speedStretch(series, tip, pull.to_s, 0.1, tip);
   });
   const present = stretches.filter((s) => s !== null);
@@ -118,13 +125,21 @@ function roadSpeedSeries(
       value /= 1 + model.slipPerN * forceN(speed, acceleration, t);
       if (earlier.slipping.some((span) => t >= span.from_s && t <= span.to_s)) value = Number.NaN;
     }
+    if (earlier) {
+      const expected = splineAt(earlier.fit.basis, earlier.fit.coefficients, t, 0, scratch);
+      if (
+        Math.abs(value - expected) >
+        Math.max(OUTLIER_DEVIATIONS * reading.deviationMps, OUTLIER_SHARE * expected)
+      )
+        value = Number.NaN;
+    }
     values[i - a] = value;
   }
   return { times, values, weight: 1 / reading.deviationMps ** 2 };
 }
 
 /**
- * Spans of a pull in which a driven channel runs ahead of the road speed by more than 2 % beyond drive creep, averaged over
+ * Spans of a pull in which a driven channel runs ahead of the road speed by more than 2 % beyond drive creep, in the median over
  * 0.15 s; widened by 0.15 s to each side. The driven wheel tells wheel spin; engine speed alone tells clutch slip.
  */
 export function findSlipping(
@@ -155,8 +170,7 @@ export function findSlipping(
       );
     });
     for (let k = 0; k + width <= excess.length; k++) {
-      const mean = excess.slice(k, k + width).reduce((sum, e) => sum + e, 0) / width;
-      if (mean < SPIN_SHARE) continue;
+      if (median(excess.slice(k, k + width)) < SPIN_SHARE) continue;
       const from = channel.times[a + k] - 0.15;
       const to = channel.times[a + k + width - 1] + 0.15;
       const last = out[out.length - 1];

@@ -14,6 +14,7 @@ import type {
   PowerCurve,
   RunResult,
 } from "@/lib/measure/types";
+import { rpmPerMps } from "@/lib/measure/vehicle";
 import { evaluateSpline } from "@/lib/signal/penalised-spline";
 import { RPM_RADPS } from "@/lib/units/constants";
 
@@ -84,7 +85,7 @@ export function pullResult(
           : "Engine speed runs ahead of the driven wheels (clutch or converter slip); the engine speeds in this span are left out.",
     }),
   );
-  notes.push(...doubts(estimate, index, factor, absolute));
+  notes.push(...doubts(estimate, index, campaign.vehicle, factor, absolute));
   const curve = absolute ? powerCurve(grid, factor) : null;
   const times = rollOnTimes(
     points.t,
@@ -155,7 +156,13 @@ function runPeak(
   return { ...peak, uncertainty_kw: budget && COVERAGE * combined(budget) * peak.engine_kw };
 }
 
-function doubts(estimate: CampaignEstimate, index: number, factor: FactorResult, absolute: boolean): Note[] {
+function doubts(
+  estimate: CampaignEstimate,
+  index: number,
+  vehicle: CampaignVehicle,
+  factor: FactorResult,
+  absolute: boolean,
+): Note[] {
   const notes: Note[] = [];
   const { run, segments } = estimate.runs[index];
   if (!absolute) {
@@ -168,6 +175,15 @@ function doubts(estimate: CampaignEstimate, index: number, factor: FactorResult,
     notes.push({
       code: "no_own_coast_down",
       message: "This run has no coast-down of its own; the losses come from the road day's other runs.",
+    });
+  }
+  const measured = estimate.model.channels.get("engineSpeed")?.scale;
+  const stated = rpmPerMps(vehicle, run.gear)?.value;
+  // Neighbouring gears differ by more than 12 %; tyre wear and growth stay below 4 % [common practice, no source].
+  if (measured && stated && Math.abs(measured / stated - 1) > 0.06) {
+    notes.push({
+      code: "gear_disagrees",
+      message: `Engine and road speed fit ${(100 * (measured / stated - 1)).toFixed(0)} % away from gear ${run.gear} of the vehicle sheet; what was measured is used. Check the gear and the sheet.`,
     });
   }
   if (factor.in_range === false) notes.push({ code: "factor_out_of_range", message: factor.why });

@@ -1,4 +1,5 @@
 import type { KnownChannel, LogTable } from "@/lib/logs/types";
+import { findOutliers } from "@/lib/signal/outliers";
 import { median } from "@/lib/signal/statistics";
 
 /** Samples of one channel with its own times: gaps left out, and held repeats of a slower source left out. */
@@ -32,6 +33,20 @@ export interface RunSignals {
 
 const SLOW_SOURCES: ReadonlySet<KnownChannel> = new Set(["gps_speed", "altitude", "latitude", "longitude"]);
 
+/** A jump of one sample is a reading error from 2 % and this much on [common practice, no source]. */
+const LEAST_JUMP_MPS = 0.3;
+const LEAST_JUMP_RPM = 60;
+const JUMP_SHARE = 0.02;
+
+/** Leaves out single samples that jump away from their neighbours. */
+function withoutJumps(channel: SampledChannel | null, least: number): SampledChannel | null {
+  if (!channel) return null;
+  const outlier = findOutliers(channel.values, 4, (value) => least + JUMP_SHARE * value);
+  if (!outlier.includes(1)) return channel;
+  const keep = (_: number, i: number) => outlier[i] === 0;
+  return { ...channel, times: channel.times.filter(keep), values: channel.values.filter(keep) };
+}
+
 /** Picks and cleans the channels of a log. The log must carry a road speed (see `requireRoadSpeed`). */
 export function runSignals(table: LogTable): RunSignals {
   const rows = (name: KnownChannel) => table.channels.find((c) => c.channel === name)?.values ?? null;
@@ -39,10 +54,11 @@ export function runSignals(table: LogTable): RunSignals {
     const values = rows(name);
     return values && sampledChannel(table.timeS, values, SLOW_SOURCES.has(name));
   };
+  const clean = (name: KnownChannel, least: number) => withoutJumps(sampled(name), least);
   const moving = (channel: SampledChannel | null) => (channel?.values.some((v) => v > 1) ? channel : null);
-  const undriven = moving(sampled("wheel_speed_undriven"));
-  const gps = moving(sampled("gps_speed"));
-  const driven = moving(sampled("wheel_speed_driven"));
+  const undriven = moving(clean("wheel_speed_undriven", LEAST_JUMP_MPS));
+  const gps = moving(clean("gps_speed", LEAST_JUMP_MPS));
+  const driven = moving(clean("wheel_speed_driven", LEAST_JUMP_MPS));
   const best = undriven ?? gps ?? driven;
   const steps = table.timeS.subarray(1).map((t, i) => t - table.timeS[i]);
   const pedal = rows("pedal");
@@ -55,7 +71,7 @@ export function runSignals(table: LogTable): RunSignals {
     undriven,
     driven,
     gps,
-    engineSpeed: sampled("engine_speed"),
+    engineSpeed: clean("engine_speed", LEAST_JUMP_RPM),
     acceleration: sampled("longitudinal_acceleration"),
     altitude: sampled("altitude"),
     latitude: sampled("latitude"),

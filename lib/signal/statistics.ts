@@ -23,14 +23,46 @@ export function standardDeviation(values: ArrayLike<number>): number {
   return n > 1 ? Math.sqrt(sum / (n - 1)) : Number.NaN;
 }
 
-/** Quantile of the finite values by linear interpolation between order statistics (the R-7 method); NaN when empty. */
+/**
+ * Quantile of the finite values by linear interpolation between order statistics (the R-7 method); NaN when empty. Average O(n).
+ */
 export function quantile(values: ArrayLike<number>, p: number): number {
-  const sorted = Float64Array.from(values).filter(Number.isFinite).sort();
-  if (sorted.length === 0) return Number.NaN;
-  const position = (sorted.length - 1) * Math.min(1, Math.max(0, p));
+  const kept = new Float64Array(values.length);
+  let n = 0;
+  for (let i = 0; i < values.length; i++) if (Number.isFinite(values[i])) kept[n++] = values[i];
+  if (n === 0) return Number.NaN;
+  const position = (n - 1) * Math.min(1, Math.max(0, p));
   const low = Math.floor(position);
-  const high = Math.min(sorted.length - 1, low + 1);
-  return sorted[low] + (position - low) * (sorted[high] - sorted[low]);
+  const below = select(kept, n, low);
+  if (position === low) return below;
+  // After selecting, everything right of `low` is at least as large: the next order statistic is its least.
+  let above = Number.POSITIVE_INFINITY;
+  for (let i = low + 1; i < n; i++) if (kept[i] < above) above = kept[i];
+  return below + (position - low) * (above - below);
+}
+
+/** The k-th smallest of the first `n` values, which are partly sorted in place around it (quickselect, Hoare 1961). */
+function select(values: Float64Array, n: number, k: number): number {
+  let left = 0;
+  let right = n - 1;
+  while (left < right) {
+    const pivot = values[(left + right) >>> 1];
+    let i = left;
+    let j = right;
+    while (i <= j) {
+      while (values[i] < pivot) i++;
+      while (values[j] > pivot) j--;
+      if (i <= j) {
+        const held = values[i];
+        values[i++] = values[j];
+        values[j--] = held;
+      }
+    }
+    if (k <= j) right = j;
+    else if (k >= i) left = i;
+    else break;
+  }
+  return values[k];
 }
 
 /** Median of the finite values; NaN when empty. */

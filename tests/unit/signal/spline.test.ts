@@ -2,6 +2,8 @@ import { describe, expect, it } from "vitest";
 import { bandedCholesky, bandedLogDeterminant, bandedSolve, bandMatrix } from "@/lib/signal/banded-cholesky";
 import { bandedInverse } from "@/lib/signal/banded-inverse";
 import { crossCorrelationLag } from "@/lib/signal/cross-correlation";
+import { addRow, normalEquations, solveNormal, varianceOf } from "@/lib/signal/normal-equations";
+import { findOutliers } from "@/lib/signal/outliers";
 import {
   evaluateSpline,
   observe,
@@ -106,9 +108,39 @@ describe("Lag and plain statistics", () => {
     expect(standardDeviation(values)).toBe(1);
     expect(median(values)).toBe(2);
     expect(quantile([1, 2, 3, 4], 0.25)).toBe(1.75);
+    const shuffled = Float64Array.from({ length: 101 }, (_, i) => (37 * i) % 101);
+    for (const p of [0, 0.1, 0.5, 0.995, 1]) expect(quantile(shuffled, p)).toBeCloseTo(100 * p, 10);
     expect(robustDeviation([1, 2, 3, 4, 100])).toBeCloseTo(1.4826, 10);
     expect(mean([])).toBeNaN();
     expect(median([Number.NaN])).toBeNaN();
     expect(standardDeviation([1])).toBeNaN();
+  });
+});
+
+describe("Outliers", () => {
+  it("marks single jumps on a ramp and leaves steps of a coarse channel and gaps alone", () => {
+    const values = Float64Array.from({ length: 60 }, (_, i) => 20 + 0.06 * i);
+    values[20] += 3;
+    values[41] -= 2;
+    values[50] = Number.NaN;
+    const marked = findOutliers(values, 4, (v) => 0.3 + 0.02 * v);
+    expect([...marked].flatMap((m, i) => (m ? [i] : []))).toEqual([20, 41]);
+    const coarse = Float64Array.from({ length: 60 }, (_, i) => 50 * Math.round((2000 + 8 * i) / 50));
+    expect(findOutliers(coarse, 4, (v) => 60 + 0.02 * v).includes(1)).toBe(false);
+  });
+});
+
+describe("Normal equations", () => {
+  it("solve a weighted line and tell the variance of its value (closed form)", () => {
+    const equations = normalEquations(2);
+    for (const x of [-1, 0, 1]) addRow(equations, [0, 1], [1, x], 2 + 3 * x, 4);
+    const solved = solveNormal(equations);
+    expect(solved.x[0]).toBeCloseTo(2, 12);
+    expect(solved.x[1]).toBeCloseTo(3, 12);
+    // Σw = 12, Σw·x² = 8: variance of the value at x is 1/12 + x²/8; determinant 96.
+    expect(varianceOf(solved, Float64Array.of(1, 2))).toBeCloseTo(1 / 12 + 4 / 8, 12);
+    expect(solved.logDeterminant).toBeCloseTo(Math.log(96), 12);
+    expect(solved.objective).toBeCloseTo(0, 10);
+    expect(() => solveNormal(normalEquations(1))).toThrow(/neither data nor prior/);
   });
 });
