@@ -1,5 +1,5 @@
-const PURE = "^lib/(units|format|signal|logs|measure|compare|calibration|gates|policy)/";
-const KERNEL = "^lib/(units|signal|logs|measure|compare|calibration|gates|policy)/";
+const PURE = "^lib/(units|format|signal|logs|measure|compare|calibration|gates|policy|simulate)/";
+const KERNEL = "^lib/(units|signal|logs|measure|compare|calibration|gates|policy|simulate)/";
 const SERVICE_SCHEMA = "^lib/services/[^/]+/schema\\.ts$";
 const NPM = ["npm", "npm-dev", "npm-optional", "npm-peer", "npm-no-pkg", "npm-unknown"];
 

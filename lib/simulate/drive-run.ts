@@ -1,7 +1,6 @@
 import type { RandomStream } from "@/lib/signal/random";
 import { type RunConditions, type RunTrace, type SimulatedCar, STEP_S } from "@/lib/simulate/types";
-
-const G = 9.80665;
+import { STANDARD_GRAVITY_MPS2 } from "@/lib/units/constants";
 
 function interpolate(nodes: readonly [number, number][], x: number): number {
   if (x <= nodes[0][0]) return nodes[0][1];
@@ -66,10 +65,10 @@ export function driveRun(car: SimulatedCar, run: RunConditions, random: RandomSt
     const air = v - run.direction * (run.windMps + gust);
     const slope = (run.heightM(s + 0.5) - run.heightM(s - 0.5)) * run.direction;
     const resistance =
-      car.rolling * car.massKg * G * (1 + car.rollingV2 * v * v) +
+      car.rolling * car.massKg * STANDARD_GRAVITY_MPS2 * (1 + car.rollingV2 * v * v) +
       0.5 * density * car.dragAreaM2 * air * Math.abs(air) +
       (car.drivelineNm + car.drivelineNmPerMps * v) / car.radiusM +
-      car.massKg * G * Math.sin(Math.atan(slope));
+      car.massKg * STANDARD_GRAVITY_MPS2 * Math.sin(Math.atan(slope));
     const full = t >= run.pedalS && t < liftAt;
     const neutral = t > liftAt + 0.15;
     load = full ? Math.min(1, load + STEP_S / 0.12) : Math.max(0, load - STEP_S / 0.12);

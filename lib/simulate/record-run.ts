@@ -1,8 +1,7 @@
 import type { KnownChannel, LogTable } from "@/lib/logs/types";
 import type { RandomStream } from "@/lib/signal/random";
 import { type RunConditions, type RunTrace, type Sensors, STEP_S } from "@/lib/simulate/types";
-
-const G = 9.80665;
+import { STANDARD_GRAVITY_MPS2 } from "@/lib/units/constants";
 
 /** Records a driven run the way a logger would: rates, lags, noise, steps. */
 export function recordRun(
@@ -76,7 +75,7 @@ export function recordRun(
     add("longitudinal_acceleration", "m/s²", (t) => {
       const s = at(trace.s, t);
       const slope = (run.heightM(s + 0.5) - run.heightM(s - 0.5)) * run.direction;
-      return 0.05 + 1.089 * at(trace.a, t) + G * slope + 0.15 * random.nextNormal();
+      return 0.05 + 1.089 * at(trace.a, t) + STANDARD_GRAVITY_MPS2 * slope + 0.15 * random.nextNormal();
     });
   return {
     timeS,
