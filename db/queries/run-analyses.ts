@@ -15,12 +15,16 @@ export async function selectRunForJudging(db: Queryable, key: Key) {
   return row ?? null;
 }
 
-/** Keeps a verdict; the one of the same input is there already when the job ran twice. */
+/** Keeps a verdict as the newest one; of an input that was judged before, the row that is there becomes the newest again. */
 export async function insertRunAnalysis(
   tx: Queryable,
   values: typeof runAnalyses.$inferInsert,
 ): Promise<void> {
-  await tx.insert(runAnalyses).values(values).onConflictDoNothing();
+  const createdAt = sql`clock_timestamp()`;
+  await tx
+    .insert(runAnalyses)
+    .values({ ...values, createdAt })
+    .onConflictDoUpdate({ target: [runAnalyses.runId, runAnalyses.inputSha256], set: { createdAt } });
 }
 
 /** Verdicts of a run, newest first. */

@@ -98,7 +98,6 @@ async function keep(
       result,
       traces,
     });
-    if ((await readInput(tx, job))?.inputSha256 !== inputSha256) return;
     await setRunState(tx, { ...job, state: result.usable ? "usable" : "refused" });
     await refreshComparisonsOf(tx, { workspaceId }, { revisionId: run.revisionId });
   });

@@ -7,6 +7,7 @@ import { giveUpJudging, judgeRun } from "@/lib/jobs/judge-run";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
 import { openComparison } from "@/lib/services/comparisons/open";
 import { openComparisonInput } from "@/lib/services/comparisons/schema";
+import { editRoadDay } from "@/lib/services/road-days/edit";
 import { getRun } from "@/lib/services/runs/get";
 import { listRoadDayRuns } from "@/lib/services/runs/list";
 import { setRunAside } from "@/lib/services/runs/set-aside";
@@ -16,7 +17,7 @@ import { blobKey } from "@/storage/keys";
 import { test } from "@/tests/support/database";
 import { SHEET } from "@/tests/support/factories";
 import { hasPendingJob } from "@/tests/support/pending-job";
-import { attachLog, createRoadSide, goldenLog, pullLog, type RoadSide } from "@/tests/support/road-side";
+import { attachLog, createRoadSide, DAY, goldenLog, pullLog, type RoadSide } from "@/tests/support/road-side";
 import { createTestStore } from "@/tests/support/store";
 
 let files: ReturnType<typeof createTestStore>;
@@ -120,6 +121,24 @@ describe("judging a run", () => {
     expect(heavier?.inputSha256).not.toBe(first?.inputSha256);
     // A heavier car that accelerates the same way has more power: force is mass times acceleration.
     expect(heavier?.result.peak?.engine_kw).toBeGreaterThan(first?.result.peak?.engine_kw ?? Infinity);
+  });
+
+  test("of weather that was typed wrong and put right again is the verdict of the right one", async ({
+    tx,
+  }) => {
+    const side = await createRoadSide(tx, files.store);
+    const { workspaceId, roadDayId } = side;
+    const runId = await attachAndJudge(tx, side, pullLog());
+    const newest = async () => (await getRun(side.tester, runId)).verdict?.inputSha256;
+    const first = await newest();
+    for (const [tempC, rowVersion] of [
+      [2, 2],
+      [DAY.tempC, 3],
+    ] as const) {
+      await editRoadDay(side.tester, { ...DAY, tempC, roadDayId, rowVersion });
+      await judgeRun(system(tx), { workspaceId, runId });
+      expect((await newest()) === first).toBe(tempC === DAY.tempC);
+    }
   });
 
   test("has the comparisons of its revision computed anew, and setting it aside does too", async ({ tx }) => {
