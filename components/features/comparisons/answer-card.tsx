@@ -1,16 +1,18 @@
 import { answerSentences } from "@/components/features/comparisons/answer-line";
 import { Card } from "@/components/ui/layout/card";
-import type { DeltaResult } from "@/lib/measure/types";
+import type { CampaignResult } from "@/lib/measure/types";
 
 export interface AnswerCardProps {
-  delta: DeltaResult;
+  result: CampaignResult;
   labels: { a: string; b: string };
   stale?: boolean;
 }
 
-/** The answer in words, above everything else. */
-export function AnswerCard({ delta, labels, stale = false }: AnswerCardProps) {
-  const [first, ...rest] = answerSentences(delta, labels);
+/** The answer in words, above everything else; nothing where there is no difference to speak of. */
+export function AnswerCard({ result, labels, stale = false }: AnswerCardProps) {
+  const { delta, sides } = result;
+  if (!delta) return null;
+  const [first, ...rest] = answerSentences(delta, labels, { a: sides.A?.n ?? 0, b: sides.B?.n ?? 0 });
   return (
     <Card title={stale ? "What the earlier result said" : "The answer"}>
       <p className="font-semibold text-17">{first}</p>

@@ -72,6 +72,7 @@ describe("the answer in words", () => {
     ...parts,
   });
   const labels = { a: "R1", b: "R2" };
+  const n = { a: 5, b: 6 };
 
   test("names losses before gains", () => {
     const [first, second] = answerSentences(
@@ -82,23 +83,39 @@ describe("the answer in words", () => {
         ],
       }),
       labels,
+      n,
     );
     expect(first).toMatch(/^Loss shown: R2 is below R1/);
     expect(second).toMatch(/^Gain shown: R2 is above R1/);
   });
 
   test("claims nothing without a band or inside it, and a peak only with its ±", () => {
-    expect(answerSentences(delta({ low_pct: [null, null] }), labels)[0]).toMatch(/No difference is claimed/);
+    expect(answerSentences(delta({ low_pct: [null, null] }), labels, n)[0]).toMatch(
+      /No difference is claimed/,
+    );
     const words = answerSentences(
       delta({
         peak_difference: { engine_kw: 2.317, half_width_kw: 0.81, engine_nm: -1.2, half_width_nm: 2.4 },
       }),
       labels,
+      n,
     ).join(" ");
     expect(words).toMatch(/Nothing shown/);
     // The last digit is worth about a third of the half-width: look.md 4.4.
     expect(words).toContain("+2.3 ± 0.8 kW");
     expect(words).toContain("\u22121.2 ± 2.4 N·m");
+    expect(words).toContain("(n 5 for A, 6 for B)");
+    expect(words.indexOf("peak torque")).toBeLessThan(words.indexOf("peak power"));
+  });
+
+  test.each([
+    [null, 2.4],
+    [0.81, null],
+    [null, null],
+  ])("says nothing of peaks with half-widths %s kW and %s N·m", (half_width_kw, half_width_nm) => {
+    const peak_difference = { engine_kw: 2.317, half_width_kw, engine_nm: -1.2, half_width_nm };
+    const words = answerSentences(delta({ peak_difference }), labels, n).join(" ");
+    expect(words).not.toMatch(/peak|kW|N·m/i);
   });
 });
 

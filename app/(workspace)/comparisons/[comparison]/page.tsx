@@ -83,9 +83,7 @@ export default async function ComparisonPage({
       <ComparisonStateNotice view={view} blockedBecause={blockedBecause} action={recomputeAction} />
       <div className="grid gap-6 lg:grid-cols-[minmax(0,1fr)_20rem]">
         <div className="flex min-w-0 flex-col gap-6">
-          {result?.delta && (
-            <AnswerCard delta={result.delta} labels={labels} stale={view.state === "stale"} />
-          )}
+          {result && <AnswerCard result={result} labels={labels} stale={view.state === "stale"} />}
           {result && grid && view.basis && (
             <ComparisonFigure
               grid={grid}

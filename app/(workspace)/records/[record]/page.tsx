@@ -65,7 +65,7 @@ export default async function RecordPage({ params }: PageProps<"/records/[record
       <RecordSeal record={record} />
       <div className="grid gap-6 lg:grid-cols-[minmax(0,1fr)_22rem] print:block">
         <div className="flex min-w-0 flex-col gap-6">
-          {compared?.result.delta && <AnswerCard delta={compared.result.delta} labels={labels} />}
+          {compared && <AnswerCard result={compared.result} labels={labels} />}
           {compared && grid && (
             <>
               <ComparisonFigure

@@ -83,9 +83,7 @@ export default async function DecidePage({ params }: PageProps<"/revisions/[revi
               }
             />
           )}
-          {result?.delta && (
-            <AnswerCard delta={result.delta} labels={labels} stale={comparison?.state === "stale"} />
-          )}
+          {result && <AnswerCard result={result} labels={labels} stale={comparison?.state === "stale"} />}
           <Card
             title="Gates"
             description={`Plan version ${gates.planVersion ?? "–"}: ${gateCount(gates.results)}`}
