@@ -9,8 +9,8 @@ import {
   startValidatingAction,
   withdrawAction,
 } from "@/app/(workspace)/revisions/actions";
+import { OpenComparisonForm } from "@/components/features/comparisons/open-comparison-form";
 import { ChangedRanges } from "@/components/features/revisions/changed-ranges";
-import { CompareForm } from "@/components/features/revisions/compare-form";
 import { EditRevisionForm } from "@/components/features/revisions/edit-form";
 import { ImageUnderstood } from "@/components/features/revisions/image-understood";
 import { NextStep } from "@/components/features/revisions/next-step";
@@ -131,9 +131,10 @@ export default async function RevisionPage({ params }: PageProps<"/revisions/[re
             }}
             compare={
               reference && (
-                <CompareForm
-                  a={reference}
-                  b={revision}
+                <OpenComparisonForm
+                  revisionAId={reference.id}
+                  revisionBId={revision.id}
+                  label={`Compare with R${reference.number}`}
                   blockedBecause={reasonAgainst("comparison.create")}
                   action={openComparisonAction}
                 />
