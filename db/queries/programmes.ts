@@ -100,11 +100,18 @@ export function inForce() {
 /** Whether a programme is shared with a person today. */
 export async function isShared(
   db: Queryable,
-  { programmeId, userId }: { programmeId: string; userId: string },
+  { workspaceId, programmeId, userId }: { workspaceId: string; programmeId: string; userId: string },
 ): Promise<boolean> {
   const [row] = await db
     .select({ n: count() })
     .from(programmeShares)
-    .where(and(eq(programmeShares.programmeId, programmeId), eq(programmeShares.userId, userId), inForce()));
+    .where(
+      and(
+        eq(programmeShares.workspaceId, workspaceId),
+        eq(programmeShares.programmeId, programmeId),
+        eq(programmeShares.userId, userId),
+        inForce(),
+      ),
+    );
   return row.n > 0;
 }

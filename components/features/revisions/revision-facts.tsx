@@ -5,6 +5,8 @@ import { DescriptionList } from "@/components/ui/data/description-list";
 export interface RevisionFactsProps {
   authorName: string;
   createdAt: Date;
+  parentId: string | null;
+  /** Null without a parent, and for a reader where the parent was not released. */
   parentNumber: number | null;
   changeReason: string;
   intendedUse: string | null;
@@ -14,6 +16,11 @@ export interface RevisionFactsProps {
 }
 
 const notSaid = "not said yet";
+
+function madeFrom({ parentId, parentNumber }: Pick<RevisionFactsProps, "parentId" | "parentNumber">): string {
+  if (parentNumber !== null) return `R${parentNumber}`;
+  return parentId === null ? "no parent: the first image" : "a revision that was not released";
+}
 
 /** What the calibrator states of a revision. */
 export function RevisionFacts(props: RevisionFactsProps) {
@@ -32,7 +39,7 @@ export function RevisionFacts(props: RevisionFactsProps) {
         },
         {
           term: "Made from",
-          description: props.parentNumber === null ? "no parent: the first image" : `R${props.parentNumber}`,
+          description: madeFrom(props),
         },
         ...(props.howRead ? [{ term: "How it was read", description: props.howRead }] : []),
         ...(props.note

@@ -12,6 +12,7 @@ import { isShared, selectProgramme } from "@/db/queries/programmes";
 import type { ComparisonInput } from "@/db/schema/comparisons";
 import { NotFoundError } from "@/lib/errors";
 import type { CampaignResult } from "@/lib/measure/types";
+import { RELEASED_STATES } from "@/lib/policy/released";
 import type { Action } from "@/lib/policy/rules";
 import { sideConditions } from "@/lib/services/comparisons/conditions";
 import { type CurrentInput, currentInput } from "@/lib/services/comparisons/current-input";
@@ -19,9 +20,6 @@ import { runLines } from "@/lib/services/comparisons/run-lines";
 import type { ComparedSide, ComparisonState, ComparisonView } from "@/lib/services/comparisons/schema";
 import { whatMoved } from "@/lib/services/comparisons/what-moved";
 import { authorise, type Ctx } from "@/lib/services/ctx";
-
-/** States that a reader may see: what stands or stood. */
-const RELEASED = new Set(["promoted", "superseded", "rolled_back"]);
 
 /** How a comparison stands: its newest result, and whether that still belongs to what counts now. */
 export interface ComparisonStanding {
@@ -72,12 +70,12 @@ async function readComparison(ctx: Ctx, comparisonId: string, action: Action) {
   const [programme, revisions, shared] = await Promise.all([
     selectProgramme(db, { workspaceId, programmeId }),
     selectComparedRevisions(db, { workspaceId, revisionIds: [revisionAId, revisionBId] }),
-    isShared(db, { programmeId, userId: ctx.userId }),
+    isShared(db, { workspaceId, programmeId, userId: ctx.userId }),
   ]);
   const a = revisions.find((row) => row.id === revisionAId);
   const b = revisions.find((row) => row.id === revisionBId);
   if (!programme || !a || !b) throw missing();
-  authorise(ctx, action, { granted: shared && RELEASED.has(a.state) && RELEASED.has(b.state) });
+  authorise(ctx, action, { granted: shared && RELEASED_STATES.has(a.state) && RELEASED_STATES.has(b.state) });
   return { comparison, programme, a, b };
 }
 

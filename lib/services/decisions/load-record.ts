@@ -12,12 +12,10 @@ import type { ComparisonInput } from "@/db/schema/comparisons";
 import { digestOf } from "@/lib/canonical-json";
 import { NotFoundError } from "@/lib/errors";
 import type { CampaignResult } from "@/lib/measure/types";
+import { isReaderOnly, RELEASING_KINDS } from "@/lib/policy/released";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { notTested } from "@/lib/services/decisions/not-tested";
 import { type RecordWaiver, recordHolds } from "@/lib/services/decisions/record-digest";
-
-/** Decisions that a reader of a shared programme may see: those after which a revision stands. */
-const RELEASING = new Set<DecisionRow["kind"]>(["as_found", "promote", "roll_back"]);
 
 type Chain = Awaited<ReturnType<typeof selectDecisionsOfProgramme>>;
 
@@ -57,7 +55,8 @@ export async function getRecord(ctx: Ctx, decisionId: string): Promise<RecordVie
   const missing = () => new NotFoundError("no_record", "There is no such record.");
   if (!decision) throw missing();
   const { programmeId } = decision;
-  const granted = RELEASING.has(decision.kind) && (await isShared(db, { programmeId, userId }));
+  const granted =
+    RELEASING_KINDS.has(decision.kind) && (await isShared(db, { workspaceId, programmeId, userId }));
   authorise(ctx, "decision.view", { granted });
   const programme = await selectProgramme(db, { workspaceId, programmeId });
   const revision = await selectRevision(db, { workspaceId, revisionId: decision.revisionId });
@@ -70,7 +69,6 @@ export async function getRecord(ctx: Ctx, decisionId: string): Promise<RecordVie
   const waivers = await selectWaivers(db, { workspaceId, decisionId });
   const compared = await loadCompared(ctx, decision);
   const chain = await selectDecisionsOfProgramme(db, { workspaceId, programmeId });
-  const readerOnly = ctx.roles.every((role) => role === "reader");
   return {
     decision,
     waivers,
@@ -87,6 +85,6 @@ export async function getRecord(ctx: Ctx, decisionId: string): Promise<RecordVie
     holds: recordHolds(decision, waivers),
     compared,
     notTested: decision.kind === "promote" ? notTested(compared) : [],
-    chain: readerOnly ? chain.filter((entry) => RELEASING.has(entry.kind)) : chain,
+    chain: isReaderOnly(ctx) ? chain.filter((entry) => RELEASING_KINDS.has(entry.kind)) : chain,
   };
 }

@@ -1,7 +1,7 @@
 import { selectMembers } from "@/db/queries/members";
 import { selectNewestRoadDays } from "@/db/queries/programme-overview";
 import type { Verdict } from "@/lib/policy/actor";
-import { can } from "@/lib/policy/can";
+import { can, isMasked } from "@/lib/policy/can";
 import type { Ctx } from "@/lib/services/ctx";
 import { gateStatus } from "@/lib/services/gates/status";
 import { readProgrammeHistory } from "@/lib/services/ledger/read";
@@ -29,6 +29,7 @@ export async function getProgramme(ctx: Ctx, programmeId: string) {
     seesRuns ? selectNewestRoadDays(db, { workspaceId, programmeId, limit: ROAD_DAYS }) : [],
     seesHistory ? readProgrammeHistory(ctx, { programmeId, limit: ENTRIES }) : [],
   ]);
+  const masked = isMasked(ctx, "member.list");
   const inFlight = lineage.filter(isInFlight);
   const gates = await Promise.all(
     inFlight.map(async ({ id }) => [id, (await gateStatus(ctx, { revisionId: id })).results] as const),
@@ -49,7 +50,7 @@ export async function getProgramme(ctx: Ctx, programmeId: string) {
     history,
     people: members
       .filter((member) => member.disabledAt === null)
-      .map(({ userId, name, roles }) => ({ userId, name: name ?? "somebody", roles })),
+      .map(({ userId, name, roles }) => ({ userId, name: name ?? "somebody", roles: masked ? [] : roles })),
     may: {
       addRevision: unless(archived, can(ctx, "revision.upload")),
       addRoadDay: unless(archived, can(ctx, "road_day.edit")),

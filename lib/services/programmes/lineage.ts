@@ -1,5 +1,6 @@
 import { countRunsByRevision, selectDecisions, selectLineage } from "@/db/queries/programme-overview";
 import { can } from "@/lib/policy/can";
+import { RELEASED_STATES, RELEASING_KINDS } from "@/lib/policy/released";
 import type { Ctx } from "@/lib/services/ctx";
 
 type LineageRow = Awaited<ReturnType<typeof selectLineage>>[number];
@@ -13,7 +14,6 @@ export interface LineageRevision extends LineageRow {
   decisions: DecisionRow[];
 }
 
-const RELEASED: ReadonlySet<string> = new Set(["promoted", "superseded", "rolled_back"]);
 const IN_FLIGHT: ReadonlySet<string> = new Set(["draft", "validating", "in_review"]);
 
 /** Drafts, validating ones and those in review that are not set aside. */
@@ -22,7 +22,7 @@ export function isInFlight(revision: Pick<LineageRow, "state" | "setAsideAt">): 
 }
 
 /**
- * Revisions of programmes that the asker may see, newest first: readers get released ones only.
+ * Revisions of programmes that the asker may see, newest first: readers get released ones only, with the decisions that released them.
  * The caller has made sure that the programmes themselves may be seen.
  */
 export async function loadLineage(ctx: Ctx, programmeIds: string[]): Promise<LineageRevision[]> {
@@ -35,11 +35,13 @@ export async function loadLineage(ctx: Ctx, programmeIds: string[]): Promise<Lin
   const countOf = new Map(counts.map((count) => [count.revisionId, count]));
   const seesAll = can(ctx, "revision.view", { granted: false }).ok;
   return rows
-    .filter((row) => seesAll || RELEASED.has(row.state))
+    .filter((row) => seesAll || RELEASED_STATES.has(row.state))
     .map((row) => ({
       ...row,
       runs: countOf.get(row.id)?.runs ?? 0,
       newestRunAt: countOf.get(row.id)?.newestAt ?? null,
-      decisions: decisions.filter((decision) => decision.revisionId === row.id),
+      decisions: decisions.filter(
+        (decision) => decision.revisionId === row.id && (seesAll || RELEASING_KINDS.has(decision.kind)),
+      ),
     }));
 }

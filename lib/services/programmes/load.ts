@@ -30,7 +30,7 @@ export async function loadProgramme(ctx: Ctx, programmeId: string): Promise<Load
   const place = { workspaceId: ctx.workspaceId, programmeId };
   const programme = await selectProgramme(ctx.db, place);
   if (!programme) throw new NotFoundError("programme_not_found", "There is no such programme here.");
-  const granted = await isShared(ctx.db, { programmeId, userId: ctx.userId });
+  const granted = await isShared(ctx.db, { ...place, userId: ctx.userId });
   authorise(ctx, "programme.view", { granted });
   const sheet = await selectVehicleSheet(ctx.db, place);
   if (!sheet) throw new NotFoundError("vehicle_sheet_missing", "This programme has no vehicle sheet yet.");

@@ -1,4 +1,6 @@
+import { selectDecisionsOfProgramme } from "@/db/queries/decisions";
 import { selectUser } from "@/db/queries/people";
+import { selectLineage } from "@/db/queries/programme-overview";
 import { selectRevision } from "@/db/queries/revisions";
 import {
   type RunAnalysisRow,
@@ -9,6 +11,7 @@ import {
 import type { RunRow } from "@/db/queries/runs";
 import { canBringBack } from "@/lib/policy/bring-back";
 import { can } from "@/lib/policy/can";
+import { isReaderOnly, RELEASED_STATES, RELEASING_KINDS } from "@/lib/policy/released";
 import type { Ctx } from "@/lib/services/ctx";
 import { loadProgramme } from "@/lib/services/programmes/load";
 import { noRevision } from "@/lib/services/revisions/load";
@@ -45,6 +48,23 @@ function verdictOf(analysis: RunAnalysisRow | undefined) {
   return { result, traces, sheetVersion, analysisVersion, inputSha256, at: createdAt };
 }
 
+type Citing = Awaited<ReturnType<typeof selectCitingRecords>>;
+type Compared = Awaited<ReturnType<typeof selectComparisonsWithRevision>>;
+
+/** For a reader: without records that released nothing, and without comparisons that have an unreleased side. */
+async function releasedOnly(ctx: Ctx, programmeId: string, all: { citing: Citing; comparisons: Compared }) {
+  if (!isReaderOnly(ctx)) return all;
+  const { workspaceId, db } = ctx;
+  const decisions = await selectDecisionsOfProgramme(db, { workspaceId, programmeId });
+  const lineage = await selectLineage(db, { workspaceId, programmeIds: [programmeId] });
+  const records = new Set(decisions.filter((row) => RELEASING_KINDS.has(row.kind)).map((row) => row.id));
+  const released = new Set(lineage.filter((row) => RELEASED_STATES.has(row.state)).map((row) => row.number));
+  return {
+    citing: all.citing.filter((row) => records.has(row.decisionId)),
+    comparisons: all.comparisons.filter((row) => released.has(row.a) && released.has(row.b)),
+  };
+}
+
 /**
  * Everything the run page shows.
  * @throws NotFoundError for another workspace's; ForbiddenError for an unshared reader
@@ -54,7 +74,7 @@ export async function getRun(ctx: Ctx, runId: string) {
   const { workspaceId, db } = ctx;
   const { revisionId } = run;
   const { programme, sheet } = await loadProgramme(ctx, run.programmeId);
-  const [roadDay, revision, analyses, citing, comparisons, tester, setAsideBy] = await Promise.all([
+  const [roadDay, revision, analyses, allCiting, allCompared, tester, setAsideBy] = await Promise.all([
     loadRoadDay(ctx, run.roadDayId),
     selectRevision(db, { workspaceId, revisionId }),
     selectRunAnalyses(db, { workspaceId, runId }),
@@ -64,6 +84,8 @@ export async function getRun(ctx: Ctx, runId: string) {
     run.setAsideBy ? selectUser(db, { userId: run.setAsideBy }) : null,
   ]);
   if (!revision) throw noRevision();
+  const all = { citing: allCiting, comparisons: allCompared };
+  const { citing, comparisons } = await releasedOnly(ctx, programme.id, all);
   const verdict = verdictOf(analyses[0]);
   const cited = citedSentence(
     `Run ${run.number}`,

@@ -1,13 +1,11 @@
 import type { Transaction } from "@/db/client";
 import { isShared } from "@/db/queries/programmes";
-import { type RevisionState, selectRevision } from "@/db/queries/revisions";
+import { selectRevision } from "@/db/queries/revisions";
 import { lockRun, type RunRow, selectRun } from "@/db/queries/runs";
 import { ConflictError, NotFoundError } from "@/lib/errors";
+import { RELEASED_STATES } from "@/lib/policy/released";
 import type { Action } from "@/lib/policy/rules";
 import { authorise, type Ctx } from "@/lib/services/ctx";
-
-/** States in which a revision, and with it its runs, is released to readers of a shared programme. */
-const RELEASED: ReadonlySet<RevisionState> = new Set(["promoted", "superseded", "rolled_back"]);
 
 const noRun = () => new NotFoundError("no_run", "There is no such run here.");
 
@@ -18,9 +16,9 @@ export async function loadRun(ctx: Ctx, runId: string, action: Action = "run.vie
   if (!run) throw noRun();
   const [revision, shared] = await Promise.all([
     selectRevision(ctx.db, { workspaceId, revisionId: run.revisionId }),
-    isShared(ctx.db, { programmeId: run.programmeId, userId }),
+    isShared(ctx.db, { workspaceId, programmeId: run.programmeId, userId }),
   ]);
-  const granted = shared && revision !== null && RELEASED.has(revision.state);
+  const granted = shared && revision !== null && RELEASED_STATES.has(revision.state);
   authorise(ctx, action, { granted, ownerId: run.testerId });
   return run;
 }

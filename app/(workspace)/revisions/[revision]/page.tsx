@@ -86,7 +86,13 @@ export default async function RevisionPage({ params }: PageProps<"/revisions/[re
       <div className="grid items-start gap-6 lg:grid-cols-[minmax(0,2fr)_minmax(0,1fr)]">
         <div className="flex min-w-0 flex-col gap-6">
           <Card title={parent ? `What differs from R${parent.number}` : "What differs"}>
-            {!parent && <p>This is the first image of its line: there is no parent to differ from.</p>}
+            {!parent && (
+              <p>
+                {revision.parentId
+                  ? "Its parent was not released."
+                  : "This is the first image of its line: there is no parent to differ from."}
+              </p>
+            )}
             {parent && changes && "difference" in changes && (
               <ChangedRanges difference={changes.difference} parentNumber={parent.number} />
             )}
