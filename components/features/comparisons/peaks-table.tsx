@@ -8,6 +8,8 @@ interface Line {
   unit: string;
   a: number | null;
   b: number | null;
+  /** ± of each side's own value, where the result states one. */
+  own: [number | null, number | null];
   at: [number, number] | null;
   difference: number | null;
   halfWidth: number | null;
@@ -25,6 +27,7 @@ function lines(result: CampaignResult): Line[] {
     unit: "kW",
     a: A?.peak?.engine_kw ?? null,
     b: B?.peak?.engine_kw ?? null,
+    own: [A?.peak?.uncertainty_kw ?? null, B?.peak?.uncertainty_kw ?? null],
     at: pair(A?.peak?.engine_kw_rpm, B?.peak?.engine_kw_rpm),
     difference: peaks?.engine_kw ?? null,
     halfWidth: peaks?.half_width_kw ?? null,
@@ -35,6 +38,7 @@ function lines(result: CampaignResult): Line[] {
     unit: "N·m",
     a: A?.peak?.engine_nm ?? null,
     b: B?.peak?.engine_nm ?? null,
+    own: [null, null],
     at: pair(A?.peak?.engine_nm_rpm, B?.peak?.engine_nm_rpm),
     difference: peaks?.engine_nm ?? null,
     halfWidth: peaks?.half_width_nm ?? null,
@@ -46,6 +50,7 @@ function lines(result: CampaignResult): Line[] {
       unit: "s",
       a: time.a_s,
       b: time.b_s,
+      own: [null, null],
       at: null,
       difference: time.difference_s,
       halfWidth: time.half_width_s,
@@ -55,54 +60,58 @@ function lines(result: CampaignResult): Line[] {
   return [power, torque, ...times];
 }
 
+/** The air that both sides' peaks are referred to, in words. */
+function basisWords({ sides, runs }: CampaignResult): string {
+  if ((sides.A ?? sides.B)?.basis !== "reference") return "air of the day";
+  const ids = runs.flatMap((run) => (run.usable && run.factor?.applied ? [run.factor.id] : []));
+  return `reference air by ${[...new Set(ids)].join(", ") || "a factor that is not named"}`;
+}
+
 /** Peaks and times of both sides; a difference always with its ± and its n, or it is not claimed. */
 export function PeaksTable({ result, labels }: { result: CampaignResult; labels: { a: string; b: string } }) {
   const digits = (line: Line) => decimalsForHalfWidth(line.halfWidth, line.unit === "s" ? 2 : 1);
-  const at = (line: Line, side: 0 | 1) =>
-    line.at && <span className="text-13 text-ink2"> at {numberText(line.at[side])}</span>;
+  const side = (line: Line, which: 0 | 1) => (
+    <>
+      <Quantity
+        value={which === 0 ? line.a : line.b}
+        unit=""
+        halfWidth={line.own[which]}
+        decimals={digits(line)}
+        orNotStated
+      />
+      {line.at && <span className="text-13 text-ink2"> at {numberText(line.at[which])}</span>}
+    </>
+  );
   return (
-    <Table
-      caption="Peaks and times of both sides with their difference"
-      dense
-      rows={lines(result)}
-      rowKey={(line) => line.what}
-      columns={[
-        { key: "what", header: "Quantity", rowHeader: true, cell: (line) => `${line.what}, ${line.unit}` },
-        {
-          key: "a",
-          header: `A ${labels.a}`,
-          numeric: true,
-          cell: (line) => (
-            <>
-              {numberText(line.a, { decimals: digits(line) })}
-              {at(line, 0)}
-            </>
-          ),
-        },
-        {
-          key: "b",
-          header: `B ${labels.b}`,
-          numeric: true,
-          cell: (line) => (
-            <>
-              {numberText(line.b, { decimals: digits(line) })}
-              {at(line, 1)}
-            </>
-          ),
-        },
-        {
-          key: "d",
-          header: "B \u2212 A",
-          numeric: true,
-          cell: (line) =>
-            line.halfWidth === null ? (
-              <span className="text-ink2">no interval, not claimed</span>
-            ) : (
-              <Quantity value={line.difference} halfWidth={line.halfWidth} unit={line.unit} signed />
-            ),
-        },
-        { key: "n", header: "n A, B", numeric: true, cell: (line) => `${line.n[0]}, ${line.n[1]}` },
-      ]}
-    />
+    <>
+      <Table
+        caption={`Peaks (crank estimate, ${basisWords(result)}) and times of both sides with their difference`}
+        dense
+        rows={lines(result)}
+        rowKey={(line) => line.what}
+        columns={[
+          { key: "what", header: "Quantity", rowHeader: true, cell: (line) => `${line.what}, ${line.unit}` },
+          { key: "a", header: `A ${labels.a}`, numeric: true, cell: (line) => side(line, 0) },
+          { key: "b", header: `B ${labels.b}`, numeric: true, cell: (line) => side(line, 1) },
+          {
+            key: "d",
+            header: "B \u2212 A",
+            numeric: true,
+            cell: (line) =>
+              line.halfWidth === null ? (
+                <span className="text-ink2">no interval, not claimed</span>
+              ) : (
+                <Quantity value={line.difference} halfWidth={line.halfWidth} unit={line.unit} signed />
+              ),
+          },
+          { key: "n", header: "n A, B", numeric: true, cell: (line) => `${line.n[0]}, ${line.n[1]}` },
+        ]}
+      />
+      <p className="px-4 py-3 text-13 text-ink2">
+        Peaks are crank estimates in {basisWords(result)}. The ± beside A or B is that of the side’s own peak,
+        about 95 %, without that of a weather factor. B − A of the peaks comes from the model with leg and
+        order taken out and so need not equal the plain difference.
+      </p>
+    </>
   );
 }

@@ -1,5 +1,6 @@
 import Link from "next/link";
 import { numberText } from "@/components/ui/data/number-text";
+import { Quantity } from "@/components/ui/data/quantity";
 import { Table } from "@/components/ui/data/table";
 import { Tag } from "@/components/ui/data/tag";
 import type { RunLine } from "@/lib/services/comparisons/schema";
@@ -49,10 +50,12 @@ export function RunsTable({ runs }: { runs: readonly RunLine[] }) {
         { key: "gear", header: "Gear", numeric: true, cell: (run) => numberText(run.gear) },
         {
           key: "peak",
-          header: "Peak",
+          header: "Peak, air of the day",
           unit: "kW",
           numeric: true,
-          cell: (run) => numberText(run.peakKw, { decimals: 1 }),
+          cell: (run) => (
+            <Quantity value={run.peakKw} unit="" halfWidth={run.peakUncertaintyKw} decimals={1} orNotStated />
+          ),
         },
         {
           key: "outcome",

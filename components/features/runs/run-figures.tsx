@@ -21,19 +21,21 @@ const TIME_COLUMNS: Column<TimeRow>[] = [
     key: "time",
     header: "Time",
     numeric: true,
-    cell: (row) => <Quantity value={row.timeS} unit="s" halfWidth={row.halfWidthS} decimals={3} />,
+    cell: (row) => (
+      <Quantity value={row.timeS} unit="s" halfWidth={row.halfWidthS} decimals={3} orNotStated />
+    ),
   },
   {
     key: "speed",
     header: "Speed at its end",
-    unit: "km/h",
+    unit: "km/h, ± not stated",
     numeric: true,
     cell: (row) => numberText(row.speedKmh, { decimals: 1 }),
   },
   {
     key: "trap",
     header: "Trap, last 20.1168 m",
-    unit: "km/h",
+    unit: "km/h, ± not stated",
     numeric: true,
     cell: (row) => numberText(row.trapKmh, { decimals: 1 }),
   },
@@ -84,22 +86,28 @@ export function RunPeak({ result }: { result: RunResult }) {
     <DescriptionList
       items={[
         {
-          term: "Peak power, crank estimate",
+          term: "Peak power, crank estimate, air of the day",
           description: peak ? (
             <>
-              <Quantity value={peak.engine_kw} unit="kW" halfWidth={peak.uncertainty_kw} decimals={1} /> at{" "}
-              {numberText(peak.engine_kw_rpm)} per minute
+              <Quantity
+                value={peak.engine_kw}
+                unit="kW"
+                halfWidth={peak.uncertainty_kw}
+                decimals={1}
+                orNotStated
+              />{" "}
+              at {numberText(peak.engine_kw_rpm)} per minute
             </>
           ) : (
             "none: it takes a usable pull and a coast-down"
           ),
         },
         {
-          term: "Peak torque, crank estimate",
+          term: "Peak torque, crank estimate, air of the day",
           description: peak ? (
             <>
-              <Quantity value={peak.engine_nm} unit="Nm" decimals={1} /> at {numberText(peak.engine_nm_rpm)}{" "}
-              per minute
+              <Quantity value={peak.engine_nm} unit="N·m" decimals={1} orNotStated /> at{" "}
+              {numberText(peak.engine_nm_rpm)} per minute
             </>
           ) : (
             "none"
@@ -111,6 +119,7 @@ export function RunPeak({ result }: { result: RunResult }) {
             <>
               <span className="tabular">{factorWords}</span>, {factor.applied ? "applied" : "not applied"}
               {factor.in_range === false && ", outside its permitted range"}. {factor.why}
+              {peak && factor.id !== "none" && " The peak above does not carry it."}
             </>
           ) : (
             "none"

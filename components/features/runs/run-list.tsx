@@ -26,7 +26,15 @@ function RunItem({ run }: { run: RunLine }) {
           <VerdictMark {...run} />
           {run.peakKw !== null && !run.setAside && (
             <span className="text-ink2">
-              peak <Quantity value={run.peakKw} unit="kW" decimals={1} />, this run alone
+              peak{" "}
+              <Quantity
+                value={run.peakKw}
+                unit="kW"
+                halfWidth={run.peakUncertaintyKw}
+                decimals={1}
+                orNotStated
+              />
+              , air of the day, this run alone
             </span>
           )}
         </div>

@@ -44,6 +44,7 @@ export function runLines(current: Pick<CurrentInput, "runs">, result: CampaignRe
       ...outcomeOf(run, found),
       notes: found?.notes.map((note) => note.message) ?? [],
       peakKw: found?.peak?.engine_kw ?? null,
+      peakUncertaintyKw: found?.peak?.uncertainty_kw ?? null,
     };
   });
 }

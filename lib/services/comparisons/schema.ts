@@ -121,7 +121,10 @@ export interface RunLine {
   why: string[];
   /** Findings that mask or warn. */
   notes: string[];
+  /** Crank estimate in the air of the day, also where the sides are referred to reference air. */
   peakKw: number | null;
+  /** Its ±, about 95 %; null where none is stated. */
+  peakUncertaintyKw: number | null;
 }
 
 /** Everything the comparison page shows. Dates are ISO texts. */

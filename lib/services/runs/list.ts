@@ -9,6 +9,7 @@ type Row = Awaited<ReturnType<typeof selectRunsOfRoadDay>>[number];
 function lineOf({ run, revisionNumber, testerName, result }: Row): RunLine {
   const setAside = run.setAsideAt !== null;
   const reasons = run.state === "refused" ? (result?.reasons ?? []) : [];
+  const peak = run.state === "usable" ? result?.peak : null;
   const why = setAside ? [run.setAsideReason ?? ""] : reasons.map((reason) => reason.message);
   return {
     id: run.id,
@@ -26,7 +27,8 @@ function lineOf({ run, revisionNumber, testerName, result }: Row): RunLine {
     why,
     next: run.state === "refused" && !setAside ? nextStep(reasons[0]?.code) : null,
     notes: result?.notes.length ?? 0,
-    peakKw: run.state === "usable" ? (result?.peak?.engine_kw ?? null) : null,
+    peakKw: peak?.engine_kw ?? null,
+    peakUncertaintyKw: peak?.uncertainty_kw ?? null,
   };
 }
 

@@ -69,7 +69,10 @@ export const runLine = z.object({
   next: z.string().nullable(),
   /** Findings that mask or warn; how many. */
   notes: z.number().int(),
+  /** Crank estimate in the air of the day. */
   peakKw: z.number().nullable(),
+  /** Its ±, about 95 %; null where none is stated. */
+  peakUncertaintyKw: z.number().nullable(),
 });
 export type RunLine = z.infer<typeof runLine>;
 

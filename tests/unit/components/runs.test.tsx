@@ -2,7 +2,7 @@ import { cleanup, render, screen, within } from "@testing-library/react";
 import { afterEach, describe, expect, it, vi } from "vitest";
 import { type OrderCardRow, OrderCardTable } from "@/components/features/road-days/order-card-table";
 import { RunFields } from "@/components/features/runs/run-fields";
-import { RunTimes } from "@/components/features/runs/run-figures";
+import { RunPeak, RunTimes } from "@/components/features/runs/run-figures";
 import { RunList } from "@/components/features/runs/run-list";
 import { VerdictCard } from "@/components/features/runs/verdict-card";
 import type { RunLine } from "@/lib/services/runs/schema";
@@ -26,6 +26,7 @@ const LINE: RunLine = {
   next: null,
   notes: 0,
   peakKw: 184.06,
+  peakUncertaintyKw: 5.52,
 };
 
 describe("RunList", () => {
@@ -35,7 +36,7 @@ describe("RunList", () => {
     expect(item?.textContent).toContain("R15");
     expect(item?.textContent).toContain("back, pull, gear 3");
     expect(item?.textContent).toContain("Usable");
-    expect(item?.textContent).toContain("184.1");
+    expect(item?.textContent).toMatch(/peak 184\.1 ± 5\.5\u202fkW, air of the day/);
     expect(screen.getByRole("link", { name: "Run 12" }).getAttribute("href")).toBe(`/runs/${LINE.id}`);
   });
 
@@ -45,11 +46,17 @@ describe("RunList", () => {
       why: ["No column is a time."],
       next: "Export again.",
       peakKw: null,
+      peakUncertaintyKw: null,
     } as const;
     render(<RunList runs={[{ ...LINE, ...refused, why: [...refused.why] }]} />);
     expect(screen.getByText("Refused")).toBeTruthy();
     expect(screen.getByText("No column is a time.")).toBeTruthy();
     expect(screen.getByText("Export again.")).toBeTruthy();
+  });
+
+  it("says so where no ± of a peak is stated", () => {
+    render(<RunList runs={[{ ...LINE, peakUncertaintyKw: null }]} />);
+    expect(screen.getByRole("listitem").textContent).toContain("kW (± not stated)");
   });
 
   it("shows no figure of a run that is set aside", () => {
@@ -93,9 +100,42 @@ describe("RunTimes", () => {
     expect(screen.queryByText(/Trap/)).toBeNull();
   });
 
+  it("leaves no time and no speed without its ± or the word that none is stated", () => {
+    const times = { times_s: { "201.168 m": 9.1 }, speed_at_kmh: { "201.168 m": 121.3 } };
+    render(<RunTimes result={{ ...result, ...times, trap_kmh: { "201.168 m": 119.8 } }} />);
+    expect(screen.getByRole("row", { name: /9\.100/ }).textContent).toContain("s (± not stated)");
+    for (const name of [/Speed at its end/, /Trap/])
+      expect(screen.getByRole("columnheader", { name }).textContent).toContain("± not stated");
+  });
+
   it("says so when no range is covered", () => {
     render(<RunTimes result={result} />);
     expect(screen.getByText(/covers none/)).toBeTruthy();
+  });
+});
+
+describe("RunPeak", () => {
+  const peak = {
+    engine_kw: 184,
+    engine_kw_rpm: 6000,
+    engine_nm: 320,
+    engine_nm_rpm: 3500,
+    uncertainty_kw: 5.5,
+  };
+  const factor = {
+    id: "din70020",
+    value: 0.98,
+    in_range: null,
+    applied: true,
+    why: "Chosen by hand.",
+  } as const;
+
+  it("names the air, gives the ± that is known, and says that the factor is not in the peak", () => {
+    render(<RunPeak result={{ id: "1", usable: true, reasons: [], notes: [], peak, factor }} />);
+    expect(screen.getByText("Peak power, crank estimate, air of the day")).toBeTruthy();
+    expect(screen.getByText(/± 5\.5/)).toBeTruthy();
+    expect(screen.getByText(/320\.0/).textContent).toContain("(± not stated)");
+    expect(screen.getByText(/The peak above does not carry it\./)).toBeTruthy();
   });
 });
 
