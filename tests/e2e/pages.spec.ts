@@ -83,8 +83,10 @@ async function look(page: Page, name: string, address: string, view: string): Pr
   expect(overflow, `${name} ${view} scrolls sideways`).toBe(0);
   page.off("console", note);
   expect(faults, `${name} ${view} reports to the console`).toEqual([]);
-  if (PICTURES && PICTURED.has(`${name}-${view}`))
-    await page.screenshot({ path: `${PICTURES}/${name}-${view}.png`, fullPage: false });
+  if (!PICTURES || !PICTURED.has(`${name}-${view}`)) return;
+  const { width, height } = page.viewportSize() ?? { width: 1280, height: 900 };
+  const clip = { x: 0, y: 0, width, height: Math.round(height * (width > height ? 1.35 : 1)) };
+  await page.screenshot({ path: `${PICTURES}/${name}-${view}.png`, fullPage: true, clip });
 }
 
 for (const scheme of ["light", "dark"] as const) {
