@@ -1,4 +1,4 @@
-import { and, eq, isNull, sql } from "drizzle-orm";
+import { and, eq, inArray, isNull, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
 import { blobs, programmes, revisions, runs, uploads } from "@/db/tables";
 
@@ -33,21 +33,45 @@ export async function selectUpload(
 /** Moves the count of received bytes on, if it still is where the part began. @returns whether it was */
 export async function advanceUpload(
   tx: Queryable,
-  { uploadId, fromBytes, toBytes }: { uploadId: string; fromBytes: number; toBytes: number },
+  {
+    workspaceId,
+    uploadId,
+    fromBytes,
+    toBytes,
+  }: { workspaceId: string; uploadId: string; fromBytes: number; toBytes: number },
 ): Promise<boolean> {
   const moved = await tx
     .update(uploads)
     .set({ receivedBytes: toBytes })
-    .where(and(eq(uploads.id, uploadId), eq(uploads.receivedBytes, fromBytes), eq(uploads.state, "open")))
+    .where(
+      and(
+        eq(uploads.id, uploadId),
+        eq(uploads.workspaceId, workspaceId),
+        eq(uploads.receivedBytes, fromBytes),
+        eq(uploads.state, "open"),
+      ),
+    )
     .returning({ id: uploads.id });
   return moved.length === 1;
 }
 
+/** Moves an upload on from one of the states that were expected. @returns whether it was in one */
 export async function setUploadState(
   tx: Queryable,
-  { uploadId, state }: { uploadId: string; state: UploadRow["state"] },
-): Promise<void> {
-  await tx.update(uploads).set({ state }).where(eq(uploads.id, uploadId));
+  args: { workspaceId: string; uploadId: string; from: UploadRow["state"][]; to: UploadRow["state"] },
+): Promise<boolean> {
+  const moved = await tx
+    .update(uploads)
+    .set({ state: args.to })
+    .where(
+      and(
+        eq(uploads.id, args.uploadId),
+        eq(uploads.workspaceId, args.workspaceId),
+        inArray(uploads.state, args.from),
+      ),
+    )
+    .returning({ id: uploads.id });
+  return moved.length === 1;
 }
 
 /** The row that says that a content is kept: created once, whoever comes second finds it. */

@@ -141,6 +141,45 @@ describe("who may send what", () => {
     }
   });
 
+  test("stops an upload at once when the role is taken away", async ({ tx }) => {
+    const workspaceId = await createWorkspaceRow(tx);
+    for (const [role, purpose] of [
+      ["tester", "log"],
+      ["calibrator", "image"],
+    ] as const) {
+      const ctx = await createMember(tx, { workspaceId, roles: [role], store: files.store });
+      const bytes = randomBytes(10);
+      const declared = { purpose, fileName: "a.bin", sizeBytes: 10, sha256: sha256Of(bytes) };
+      const { uploadId } = await openUpload(ctx, declared);
+      const part = (who: Ctx) => addPart(who, { uploadId, offsetBytes: 0, sizeBytes: 10, body: once(bytes) });
+      const without: Ctx = { ...ctx, roles: ["reader", "lead", "admin"] };
+      await expect(part(without)).rejects.toMatchObject({ status: 403 });
+      await part(ctx);
+      await expect(sealUpload(without, { uploadId, purpose })).rejects.toMatchObject({ status: 403 });
+      await expect(getUpload(without, uploadId)).rejects.toMatchObject({ status: 403 });
+      await expect(cancelUpload(without, uploadId)).rejects.toMatchObject({ status: 403 });
+      expect(await getUpload(ctx, uploadId)).toMatchObject({ state: "open", receivedBytes: 10 });
+    }
+  });
+
+  test("lets no upload serve twice, and none that was cancelled meanwhile", async ({ tx }) => {
+    const ctx = await tester(tx);
+    const send = async () => {
+      const uploadId = await uploadBytes(ctx, "log", "a.csv", randomBytes(8));
+      return await sealUpload(ctx, { uploadId, purpose: "log" });
+    };
+    const use = (sealed: Awaited<ReturnType<typeof send>>) =>
+      withTransaction(ctx, (inner, c) => useSealedUpload(inner, c, sealed));
+    const used = await send();
+    await use(used);
+    await expect(use(used)).rejects.toMatchObject({ code: "upload_used" });
+    await cancelUpload(ctx, used.uploadId);
+    expect(await getUpload(ctx, used.uploadId)).toMatchObject({ state: "used" });
+    const ended = await send();
+    await cancelUpload(ctx, ended.uploadId);
+    await expect(use(ended)).rejects.toMatchObject({ code: "upload_used" });
+  });
+
   test("lets a tester send logs but no images", async ({ tx }) => {
     const ctx = await tester(tx);
     const image = { purpose: "image" as const, fileName: "a.hex", sizeBytes: 10, sha256: "0".repeat(64) };

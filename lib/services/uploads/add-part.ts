@@ -9,7 +9,7 @@ import { type ByteSource, PART_BYTES } from "@/storage/port";
 /**
  * Takes one part at its offset; acknowledged means durable. A repeated part is no error and no second copy.
  * @param part.sizeBytes length as the request states it; the body must have exactly that
- * @throws NotFoundError; ConflictError with `receivedBytes` when the offset is not the next one; TooLargeError; OutOfSpaceError
+ * @throws NotFoundError; ForbiddenError; ConflictError with `receivedBytes` when the offset is not the next one; TooLargeError; OutOfSpaceError
  */
 export async function addPart(
   ctx: Ctx,
@@ -50,6 +50,11 @@ export async function addPart(
     );
   }
   if (!isRepeat)
-    await advanceUpload(ctx.db, { uploadId: row.id, fromBytes: part.offsetBytes, toBytes: endBytes });
+    await advanceUpload(ctx.db, {
+      workspaceId: ctx.workspaceId,
+      uploadId: row.id,
+      fromBytes: part.offsetBytes,
+      toBytes: endBytes,
+    });
   return describeUpload(await loadUpload(ctx, part.uploadId));
 }

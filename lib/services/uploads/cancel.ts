@@ -3,10 +3,15 @@ import type { Ctx } from "@/lib/services/ctx";
 import { loadUpload } from "@/lib/services/uploads/load";
 import { clearStaging } from "@/lib/services/uploads/seal";
 
-/** Gives an upload up that nothing uses yet. @throws NotFoundError */
+/** Gives an upload up that nothing uses yet. @throws NotFoundError, ForbiddenError */
 export async function cancelUpload(ctx: Ctx, uploadId: string): Promise<void> {
-  const row = await loadUpload(ctx, uploadId);
-  if (row.state === "used") return;
-  await setUploadState(ctx.db, { uploadId, state: "cancelled" });
-  await clearStaging(ctx, uploadId);
+  await loadUpload(ctx, uploadId);
+  const { workspaceId } = ctx;
+  const ended = await setUploadState(ctx.db, {
+    workspaceId,
+    uploadId,
+    from: ["open", "complete"],
+    to: "cancelled",
+  });
+  if (ended) await clearStaging(ctx, uploadId);
 }

@@ -16,6 +16,9 @@ export interface SealedUpload {
   fileName: string;
 }
 
+const wasCancelled = () =>
+  new ConflictError("upload_closed", "This upload was cancelled. Choose the file again.");
+
 /** The bytes of an upload in order, from its parts in the store. */
 async function* readStaged(ctx: Pick<Ctx, "store">, row: Pick<UploadRow, "stagingKey">): ByteSource {
   const prefix = prefixOf(parseStagingKey(row.stagingKey));
@@ -33,7 +36,7 @@ async function* readStaged(ctx: Pick<Ctx, "store">, row: Pick<UploadRow, "stagin
 /**
  * Puts a complete upload under its final key, before any row names it: a crash leaves an object without a row, never the
  * other way round. May be repeated.
- * @throws NotFoundError; ConflictError `upload_incomplete`; InvalidInputError `digest_mismatch` when the bytes are not the declared ones
+ * @throws NotFoundError; ForbiddenError; ConflictError `upload_incomplete`, `upload_closed`; InvalidInputError `digest_mismatch` when the bytes are not the declared ones
  */
 export async function sealUpload(
   ctx: Ctx,
@@ -52,8 +55,7 @@ export async function sealUpload(
       `${row.fileName} was not sent as ${purpose}. Choose it again.`,
     );
   if (row.state === "used" || row.state === "complete") return sealed;
-  if (row.state === "cancelled")
-    throw new ConflictError("upload_closed", "This upload was cancelled. Choose the file again.");
+  if (row.state === "cancelled") throw wasCancelled();
   if (row.receivedBytes !== row.declaredBytes) {
     throw new ConflictError(
       "upload_incomplete",
@@ -64,21 +66,28 @@ export async function sealUpload(
   const key = blobKey(ctx.workspaceId, row.declaredSha256);
   const declared = { sizeBytes: row.declaredBytes, sha256: row.declaredSha256 };
   await ctx.store.create(key, readStaged(ctx, row), declared);
-  await setUploadState(ctx.db, { uploadId, state: "complete" });
+  const { workspaceId } = ctx;
+  const moved = await setUploadState(ctx.db, { workspaceId, uploadId, from: ["open"], to: "complete" });
+  if (!moved && (await loadUpload(ctx, uploadId)).state === "cancelled") throw wasCancelled();
   return sealed;
 }
 
 /**
  * The row that says the bytes are kept, and the upload's end, in the caller's transaction. The digest is locked against the
  * sweep and the object looked at once more, so that the row never names bytes that were just cleared.
- * @throws NotFoundError when the bytes are gone
+ * @throws NotFoundError when the bytes are gone; ConflictError `upload_used` when the upload served before or was ended
  */
 export async function useSealedUpload(tx: Transaction, ctx: Ctx, sealed: SealedUpload): Promise<void> {
   const { workspaceId } = ctx;
   await lockDigest(tx, { workspaceId, sha256: sealed.sha256 });
   await ctx.store.stat(blobKey(workspaceId, sealed.sha256));
-  await insertBlob(tx, { workspaceId: ctx.workspaceId, sha256: sealed.sha256, sizeBytes: sealed.sizeBytes });
-  await setUploadState(tx, { uploadId: sealed.uploadId, state: "used" });
+  await insertBlob(tx, { workspaceId, sha256: sealed.sha256, sizeBytes: sealed.sizeBytes });
+  const { uploadId, fileName } = sealed;
+  if (!(await setUploadState(tx, { workspaceId, uploadId, from: ["complete"], to: "used" })))
+    throw new ConflictError(
+      "upload_used",
+      `This sending of ${fileName} was used before or has ended. Choose the file again to add it once more.`,
+    );
 }
 
 /** Clears the parts of a used or cancelled upload; what fails here the hourly sweep clears. */
