@@ -57,6 +57,8 @@ export interface DecisionEvidence {
   comparisonInputSha256: string | null;
   /** Digest of the result's canonical JSON: the figures on the record are these and no others. */
   resultSha256: string | null;
+  /** The result belonged to earlier inputs; the runs are those it was computed from. Absent where it did not. */
+  stale?: true;
   analysisVersion: string | null;
   sheetVersion: number | null;
   gatePlanVersion: number | null;

@@ -29,6 +29,7 @@ async function seenBy(lead: Ctx, revision: DemoRevision) {
       standingRevisionId: desk.standing?.id ?? null,
       comparisonId: desk.comparison?.id ?? null,
       inputSha256: desk.comparison?.inputSha256 ?? null,
+      shownInputSha256: desk.comparison?.basis?.inputSha256 ?? null,
     },
   };
 }

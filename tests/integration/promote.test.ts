@@ -259,6 +259,52 @@ describe("holding and turning down", () => {
     expect((await decisionRows(scene)).map((row) => row.kind)).toEqual(["hold", "turn_down"]);
     // Who asked is kept on the record even though the revision forgets it.
     expect((await decisionRows(scene))[0].submitterId).toBe(scene.tester.userId);
+    expect((await decisionRows(scene))[0].evidence).not.toHaveProperty("stale");
+  });
+
+  test("is refused when a run came, or a result, since the lead looked", async ({ database: { db } }) => {
+    const scene = await createScene(db);
+    const { lead, candidateId } = scene;
+    const fresh = await seenForSendBack(lead, candidateId);
+    await createRunRow(scene, { revisionId: candidateId, number: 5 });
+    for (const send of [holdRevision, turnDownRevision])
+      await expect(send(lead, fresh)).rejects.toMatchObject({
+        code: "evidence_moved",
+        message: expect.stringContaining("Run 5 counts now and did not then."),
+      });
+    const stale = await seenForSendBack(lead, candidateId);
+    await expect(holdRevision(lead, { ...stale, comparisonId: null })).rejects.toThrow(
+      /another one than you/,
+    );
+    await storeResult(scene);
+    await expect(holdRevision(lead, stale)).rejects.toThrow(/another result than you saw/);
+    expect(await decisionRows(scene)).toEqual([]);
+  });
+
+  test("of a stale comparison keeps the runs that its result was computed from, marked as stale", async ({
+    database: { db },
+  }) => {
+    const scene = await createScene(db);
+    const { lead, candidateId } = scene;
+    const [gone] = await db.select().from(runs).where(eq(runs.number, 3));
+    await db
+      .update(runs)
+      .set({
+        ...{ setAsideAt: new Date(), setAsideBy: lead.userId, setAsideReason: "a gust from the left" },
+        resultWasVisible: true,
+      })
+      .where(eq(runs.id, gone.id));
+    await createRunRow(scene, { revisionId: candidateId, number: 5 });
+    await holdRevision(lead, await seenForSendBack(lead, candidateId));
+    const [{ evidence }] = await decisionRows(scene);
+    expect(evidence.stale).toBe(true);
+    expect(evidence.runs.map((run) => [run.number, run.side, run.leftOut])).toEqual([
+      [1, "A", null],
+      [2, "B", null],
+      [3, "B", null],
+      [4, "A", null],
+    ]);
+    expect(evidence.runs[2].testerName).toBe(scene.tester.userName);
   });
 });
 

@@ -230,6 +230,7 @@ export async function seenBy(ctx: Ctx, revisionId: string): Promise<PromoteInput
     standingRevisionId: desk.standing?.id ?? null,
     comparisonId: desk.comparison?.id ?? null,
     inputSha256: desk.comparison?.inputSha256 ?? null,
+    shownInputSha256: desk.comparison?.basis?.inputSha256 ?? null,
     gatePlanVersion: desk.gates.planVersion,
     typedNumber: `R${desk.revision.number}`,
     reason: "shown on the road",

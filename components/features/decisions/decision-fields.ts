@@ -7,6 +7,7 @@ export interface SeenByLead {
   standingRevisionId: string | null;
   comparisonId: string | null;
   inputSha256: string | null;
+  shownInputSha256: string | null;
   gatePlanVersion: number | null;
 }
 

@@ -1,5 +1,9 @@
 export type RecordKind = "as_found" | "promote" | "hold" | "turn_down" | "roll_back";
 
+/** Stands beside evidence that was no longer what counted. */
+export const STALE_EVIDENCE =
+  "Stale when it was decided: runs, their facts or the vehicle sheet had moved since this result was computed. Result and runs are those of the earlier input.";
+
 /** What a record says in its title. */
 export function recordTitle(kind: RecordKind, number: number, from: number | null): string {
   switch (kind) {

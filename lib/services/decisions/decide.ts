@@ -1,13 +1,11 @@
 import type { Transaction } from "@/db/client";
 import { selectRevision } from "@/db/queries/revisions";
 import { reauthenticate } from "@/lib/auth/reauthenticate";
-import { digestOf } from "@/lib/canonical-json";
 import { ConflictError, NotFoundError } from "@/lib/errors";
 import type { Action } from "@/lib/policy/rules";
-import { runLines } from "@/lib/services/comparisons/run-lines";
 import { authorise, type Ctx, withTransaction } from "@/lib/services/ctx";
 import { type Desk, lockDesk, requireSameStanding, requireUnmoved } from "@/lib/services/decisions/lock-desk";
-import type { ComparedEvidence, RecordedDecision } from "@/lib/services/decisions/record";
+import type { RecordedDecision } from "@/lib/services/decisions/record";
 import { retryLost, sqlState } from "@/lib/services/decisions/retry";
 import { type GateDesk, gateDesk } from "@/lib/services/gates/status";
 
@@ -27,30 +25,6 @@ export interface Signing {
   gates: GateDesk;
   reauthMethod: string;
   selfReleased: boolean;
-}
-
-/** Freezes what the gates rest on. */
-export function evidenceOf(gates: GateDesk): ComparedEvidence {
-  const shown = gates.comparison?.shown ?? null;
-  const lines = gates.comparison ? runLines(gates.comparison.current, shown?.result ?? null) : [];
-  return {
-    comparisonId: gates.comparison?.comparison.id ?? null,
-    comparisonInputSha256: shown?.inputSha256 ?? null,
-    resultSha256: shown ? digestOf(shown.result) : null,
-    analysisVersion: shown?.input.analysisVersion ?? null,
-    sheetVersion: shown?.input.sheetVersion ?? null,
-    gatePlanVersion: gates.planVersion,
-    gates: gates.results,
-    runs: lines.map((line) => ({
-      runId: line.runId,
-      number: line.number,
-      logSha256: line.logSha256,
-      side: line.side,
-      usable: line.outcome === "used",
-      testerName: line.testerName,
-      leftOut: line.outcome === "used" ? null : `${line.outcome}: ${line.why.join(" ") || "no reason kept"}`,
-    })),
-  };
 }
 
 /** A unique index that refuses a decision is another decision that was first. */

@@ -1,10 +1,11 @@
 import { moveRevision, setStandingRevision } from "@/db/queries/decisions";
 import { ConflictError, InvalidInputError } from "@/lib/errors";
 import type { GateResult } from "@/lib/gates/plan";
-import { whatMoved } from "@/lib/services/comparisons/what-moved";
 import { authorise, type Ctx } from "@/lib/services/ctx";
-import { decide, evidenceOf } from "@/lib/services/decisions/decide";
+import { decide } from "@/lib/services/decisions/decide";
+import { evidenceOf } from "@/lib/services/decisions/freeze-evidence";
 import { type RecordedDecision, recordDecision } from "@/lib/services/decisions/record";
+import { LOOK_AGAIN, requireSameComparison } from "@/lib/services/decisions/same-evidence";
 import { namesRevision, type PromoteInput, promoteInput } from "@/lib/services/decisions/schema";
 import { openMusts } from "@/lib/services/gates/open-musts";
 import type { GateDesk } from "@/lib/services/gates/status";
@@ -12,36 +13,20 @@ import { refuseArchived } from "@/lib/services/programmes/refuse-archived";
 
 type Waiver = { gateId: string; reason: string };
 
-/** The comparison must still say what the lead saw. @throws ConflictError naming what moved */
-function requireSameEvidence(
-  gates: GateDesk,
-  seen: { comparisonId: string | null; inputSha256: string | null; gatePlanVersion: number | null },
-): void {
-  const again = "Nothing was decided by you. Open the page again and look once more.";
+/** Plan and comparison must still say what the lead saw, and the result belong to what counts now. @throws ConflictError */
+function requireSameEvidence(gates: GateDesk, seen: ReturnType<typeof promoteInput.parse>): void {
   if (gates.planVersion !== seen.gatePlanVersion)
-    throw new ConflictError("plan_moved", `The gate plan has another version than you saw. ${again}`);
+    throw new ConflictError("plan_moved", `The gate plan has another version than you saw. ${LOOK_AGAIN}`);
   const { comparison } = gates;
-  const inputNow = comparison?.current.inputSha256 ?? null;
-  if ((comparison?.comparison.id ?? null) !== seen.comparisonId)
-    throw new ConflictError("evidence_moved", `The comparison is another one than you saw. ${again}`);
   if (comparison && comparison.state !== "ready") {
     const moved = comparison.moved.join(" ");
     throw new ConflictError(
       "evidence_moved",
-      `The comparison does not show what counts now. ${moved || "Its result is not there yet."} Recompute it first. ${again}`,
+      `The comparison does not show what counts now. ${moved || "Its result is not there yet."} Recompute it first. ${LOOK_AGAIN}`,
       { moved: comparison.moved },
     );
   }
-  if (inputNow !== seen.inputSha256) {
-    const moved = comparison?.shown
-      ? whatMoved(comparison.shown.input, comparison.current.input, comparison.current.runs)
-      : [];
-    throw new ConflictError(
-      "evidence_moved",
-      `The evidence has changed since you opened this page: runs, their facts or the vehicle sheet. ${again}`,
-      { moved },
-    );
-  }
+  requireSameComparison(gates, seen);
 }
 
 /**

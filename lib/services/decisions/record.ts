@@ -34,6 +34,7 @@ export type ComparedEvidence = Pick<
   | "comparisonId"
   | "comparisonInputSha256"
   | "resultSha256"
+  | "stale"
   | "analysisVersion"
   | "sheetVersion"
   | "gatePlanVersion"

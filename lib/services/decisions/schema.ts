@@ -24,7 +24,10 @@ const seen = {
   rowVersion: z.coerce.number().int(),
   standingRevisionId: z.uuid().nullable(),
   comparisonId: z.uuid().nullable(),
+  /** Of what counted then. */
   inputSha256: sha256.nullable(),
+  /** Of what the result shown was computed from; another one when stale. */
+  shownInputSha256: sha256.nullable(),
 };
 
 const waiver = z.strictObject({

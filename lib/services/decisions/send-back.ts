@@ -1,8 +1,10 @@
 import { moveRevision } from "@/db/queries/decisions";
 import { ConflictError } from "@/lib/errors";
 import type { Ctx } from "@/lib/services/ctx";
-import { decide, evidenceOf } from "@/lib/services/decisions/decide";
+import { decide } from "@/lib/services/decisions/decide";
+import { evidenceOf } from "@/lib/services/decisions/freeze-evidence";
 import { type RecordedDecision, recordDecision } from "@/lib/services/decisions/record";
+import { requireSameComparison } from "@/lib/services/decisions/same-evidence";
 import {
   type HoldInput,
   holdInput,
@@ -20,6 +22,7 @@ async function sendBack(
   return await decide(ctx, { action: "decision.turn_down", seen: input }, async (signing) => {
     const { tx, actor, desk, gates, reauthMethod, selfReleased } = signing;
     const { revision, standing, programme } = desk;
+    requireSameComparison(gates, input);
     const recorded = await recordDecision(tx, actor, {
       kind,
       programmeId: programme.id,
@@ -48,7 +51,7 @@ async function sendBack(
 
 /**
  * in review → validating: a decision needs more runs. Who asks again is its submitter then, under the plan in force then.
- * @throws as promoteRevision, but no gate is asked
+ * @throws as promoteRevision, but no gate is asked and a stale comparison will do
  */
 export async function holdRevision(ctx: Ctx, raw: HoldInput): Promise<RecordedDecision> {
   return await sendBack(ctx, holdInput.parse(raw), {

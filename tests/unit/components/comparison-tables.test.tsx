@@ -1,8 +1,10 @@
 import { cleanup, render, screen } from "@testing-library/react";
 import { afterEach, describe, expect, it } from "vitest";
+import { AnswerCard } from "@/components/features/comparisons/answer-card";
 import { PeaksTable } from "@/components/features/comparisons/peaks-table";
 import { RunsTable } from "@/components/features/comparisons/runs-table";
-import type { CampaignResult, FactorResult } from "@/lib/measure/types";
+import { STALE_EVIDENCE } from "@/components/features/decisions/record-words";
+import type { CampaignResult, DeltaResult, FactorResult } from "@/lib/measure/types";
 import type { RunLine } from "@/lib/services/comparisons/schema";
 
 afterEach(cleanup);
@@ -40,6 +42,21 @@ describe("PeaksTable", () => {
     expect(b?.textContent).toContain("188.0 (± not stated)");
     const [, torque] = Array.from(screen.getByRole("row", { name: /Peak torque/ }).children);
     expect(torque?.textContent).toContain("320.0 (± not stated)");
+  });
+});
+
+describe("AnswerCard", () => {
+  const delta: DeltaResult = {
+    ...{ quantity: "engine_nm", basis: "day", rpm: [], pct: [], low_pct: [], high_pct: [], abs_nm: [] },
+    ...{ level: 0.95, simultaneous: true, method: "", regions: [], resolvable_pct: [], twins: [] },
+    drift_pct_per_run: null,
+  };
+
+  it("says of a record's stale evidence that it was an earlier result", () => {
+    const labels = { a: "R1", b: "R2" };
+    render(<AnswerCard result={{ ...resultOf("day"), delta }} labels={labels} stale note={STALE_EVIDENCE} />);
+    expect(screen.getByRole("heading", { name: "What the earlier result said" })).toBeTruthy();
+    expect(screen.getByText(/Stale when it was decided/)).toBeTruthy();
   });
 });
 

@@ -26,6 +26,7 @@ function show(parts: Partial<DecisionFormProps> = {}) {
         standingRevisionId: ID,
         comparisonId: ID,
         inputSha256: "a".repeat(64),
+        shownInputSha256: "a".repeat(64),
         gatePlanVersion: 2,
       }}
       number={15}
@@ -63,6 +64,7 @@ describe("the countersign form", () => {
       standingRevisionId: ID,
       comparisonId: ID,
       inputSha256: "a".repeat(64),
+      shownInputSha256: "a".repeat(64),
       gatePlanVersion: 2,
       reason: "gain shown, nothing lost",
       typedNumber: "R15",

@@ -9,7 +9,7 @@ import { RecordChain } from "@/components/features/decisions/record-chain";
 import { RecordFacts } from "@/components/features/decisions/record-facts";
 import { RecordRuns } from "@/components/features/decisions/record-runs";
 import { RecordSeal } from "@/components/features/decisions/record-seal";
-import { recordTitle } from "@/components/features/decisions/record-words";
+import { recordTitle, STALE_EVIDENCE } from "@/components/features/decisions/record-words";
 import { GateList, gateCount } from "@/components/features/gates/gate-list";
 import { LinkButton } from "@/components/ui/action/link-button";
 import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
@@ -65,7 +65,14 @@ export default async function RecordPage({ params }: PageProps<"/records/[record
       <RecordSeal record={record} />
       <div className="grid gap-6 lg:grid-cols-[minmax(0,1fr)_22rem] print:block">
         <div className="flex min-w-0 flex-col gap-6">
-          {compared && <AnswerCard result={compared.result} labels={labels} />}
+          {compared && (
+            <AnswerCard
+              result={compared.result}
+              labels={labels}
+              stale={evidence.stale}
+              note={evidence.stale && STALE_EVIDENCE}
+            />
+          )}
           {compared && grid && (
             <>
               <ComparisonFigure
@@ -85,7 +92,11 @@ export default async function RecordPage({ params }: PageProps<"/records/[record
             </>
           )}
           {evidence.runs.length > 0 && (
-            <Card title="Runs of the evidence" description="With what was left out, and why." flush>
+            <Card
+              title="Runs of the evidence"
+              description={evidence.stale ? STALE_EVIDENCE : "With what was left out, and why."}
+              flush
+            >
               <RecordRuns runs={evidence.runs} />
             </Card>
           )}

@@ -114,13 +114,14 @@ export default async function DecidePage({ params }: PageProps<"/revisions/[revi
         <aside className="flex min-w-0 flex-col gap-6">
           <Card title="Countersign" tone="well" id="countersign">
             <DecisionForm
-              key={`${revision.rowVersion} ${comparison?.inputSha256}`}
+              key={`${revision.rowVersion} ${comparison?.inputSha256} ${comparison?.basis?.inputSha256}`}
               seen={{
                 revisionId: revision.id,
                 rowVersion: revision.rowVersion,
                 standingRevisionId: standing?.id ?? null,
                 comparisonId: comparison?.id ?? null,
                 inputSha256: comparison?.inputSha256 ?? null,
+                shownInputSha256: comparison?.basis?.inputSha256 ?? null,
                 gatePlanVersion: gates.planVersion,
               }}
               number={revision.number}
