@@ -1,6 +1,6 @@
 import { and, asc, eq, gt, inArray, lt, or, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
-import { blobs, uploads } from "@/db/tables";
+import { blobs, rateLimits, uploads } from "@/db/tables";
 
 type BlobRow = Pick<typeof blobs.$inferSelect, "workspaceId" | "sha256" | "sizeBytes">;
 
@@ -69,4 +69,13 @@ export async function cancelExpiredUploads(db: Queryable): Promise<number> {
     .where(and(inArray(uploads.state, ["open", "complete"]), lt(uploads.expiresAt, sql`now()`)))
     .returning({ id: uploads.id });
   return ended.length;
+}
+
+/** Forgets counts whose hour is over: they limit nothing any more, and some name an address. @returns how many */
+export async function deleteOldTries(db: Queryable): Promise<number> {
+  const gone = await db
+    .delete(rateLimits)
+    .where(lt(rateLimits.windowStart, sql`now() - interval '1 hour'`))
+    .returning({ bucket: rateLimits.bucket });
+  return gone.length;
 }

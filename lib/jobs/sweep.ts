@@ -1,5 +1,11 @@
 import { selectForgottenRuns } from "@/db/queries/jobs";
-import { allBlobs, cancelExpiredUploads, lockDigest, selectKeptDigests } from "@/db/queries/sweep";
+import {
+  allBlobs,
+  cancelExpiredUploads,
+  deleteOldTries,
+  lockDigest,
+  selectKeptDigests,
+} from "@/db/queries/sweep";
 import { enqueueJob } from "@/lib/jobs/enqueue";
 import type { System } from "@/lib/jobs/system";
 import { logger } from "@/lib/logger";
@@ -9,11 +15,12 @@ import { type SweepReport, sweepStore } from "@/storage/sweep";
 const REHASH_HOUR_UTC = 3;
 
 /**
- * Clears uploads that nobody finished, has runs judged that wait without a job, and looks whether every row still has its
+ * Clears uploads that nobody finished and counts of tries that are over, has runs judged that wait without a job, and looks whether every row still has its
  * file. What is missing or damaged is logged as `integrity.failed` for people to act on; it is never mended here.
  */
 export async function sweepLeftovers({ db, store }: System, now = new Date()): Promise<SweepReport> {
   const uploadsEnded = await cancelExpiredUploads(db);
+  const countsForgotten = await deleteOldTries(db);
   const report = await sweepStore(
     store,
     {
@@ -35,6 +42,12 @@ export async function sweepLeftovers({ db, store }: System, now = new Date()): P
     logger().error({ event: "integrity.failed", what: "file missing", ...row });
   for (const { row, found } of digestMismatch)
     logger().error({ event: "integrity.failed", what: "file changed", ...row, found });
-  logger().info({ event: "sweep.done", uploadsEnded, judgedAgain: forgotten.length, ...counts });
+  logger().info({
+    event: "sweep.done",
+    uploadsEnded,
+    countsForgotten,
+    judgedAgain: forgotten.length,
+    ...counts,
+  });
   return report;
 }

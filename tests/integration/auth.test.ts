@@ -8,6 +8,7 @@ import { consumeLink, requestLink, wasAskedHere } from "@/lib/auth/link";
 import { startSampleSession } from "@/lib/auth/sample-people";
 import { readSessionToken } from "@/lib/auth/session-cookie";
 import { requireOwnOrigin } from "@/lib/http/respond";
+import { logger } from "@/lib/logger";
 import { ORIGIN, serveFrom, TestBrowser } from "@/tests/support/browser";
 import { test } from "@/tests/support/database";
 import { createMember, createPerson, createWorkspaceRow } from "@/tests/support/factories";
@@ -171,6 +172,49 @@ describe("asking for a link", () => {
     await requestLink("other@example.org", "/");
     await db.update(rateLimits).set({ windowStart: sql`now() - interval '61 minutes'` });
     await requestLink("often@example.org", "/");
+  });
+
+  test("by one sender with many addresses locks nobody else out, and alarms once", async ({
+    database: { db },
+  }) => {
+    serveFrom(db);
+    const alarm = vi.spyOn(logger(), "error");
+    // Refused tries of one address, however many, are not counted against everybody.
+    for (let nth = 1; nth <= 7; nth += 1) await requestLink("loud@example.org", "/").catch(() => undefined);
+    const inAll = () => db.select().from(rateLimits).where(eq(rateLimits.bucket, "link"));
+    expect(await inAll()).toMatchObject([{ count: 5 }]);
+
+    const setTo = (count: number) =>
+      db.update(rateLimits).set({ count }).where(eq(rateLimits.bucket, "link"));
+    await setTo(199);
+    await requestLink("a@example.org", "/");
+    await requestLink("b@example.org", "/");
+    expect(alarm.mock.calls).toEqual([[{ event: "security.many_links", inAnHour: 200 }]]);
+    await setTo(2_000);
+    await expect(requestLink("c@example.org", "/")).rejects.toMatchObject({ status: 429 });
+  });
+
+  test("is refused after twenty in an hour for one client, where a trusted edge names it", async ({
+    database: { db },
+  }) => {
+    serveFrom(db);
+    const ask = async (nth: number, hops: string) => {
+      browser.now.sent.set("x-forwarded-for", hops);
+      await requestLink(`${nth}@example.org`, "/");
+    };
+    for (let nth = 1; nth <= 22; nth += 1) await ask(nth, "192.0.2.1");
+    vi.stubEnv("TRUST_PROXY", "1");
+    vi.resetModules();
+    const { requestLink: behindEdge } = await import("@/lib/auth/link");
+    const askEdge = async (nth: number, hops: string) => {
+      browser.now.sent.set("x-forwarded-for", hops);
+      await behindEdge(`${nth}@example.org`, "/");
+    };
+    // What a client writes before the last hop changes nothing.
+    for (let nth = 30; nth < 50; nth += 1) await askEdge(nth, `198.51.100.${nth}, 192.0.2.1`);
+    await expect(askEdge(50, "198.51.100.50, 192.0.2.1")).rejects.toMatchObject({ status: 429 });
+    await askEdge(51, "192.0.2.2");
+    vi.stubEnv("TRUST_PROXY", "0");
   });
 });
 

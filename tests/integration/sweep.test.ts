@@ -3,7 +3,7 @@ import { utimesSync } from "node:fs";
 import { join } from "node:path";
 import { eq, sql } from "drizzle-orm";
 import { afterAll, beforeAll, describe, expect } from "vitest";
-import { blobs, runs, uploads } from "@/db/tables";
+import { blobs, rateLimits, runs, uploads } from "@/db/tables";
 import { sweepLeftovers } from "@/lib/jobs/sweep";
 import { blobKey, parseStagingKey, prefixOf } from "@/storage/keys";
 import { test } from "@/tests/support/database";
@@ -37,6 +37,16 @@ async function keep(workspaceId: string, bytes: Buffer) {
 }
 
 describe("the hourly sweep", () => {
+  test("forgets counts of tries whose hour is over", async ({ tx }) => {
+    const windowStart = sql`now() - interval '61 minutes'`;
+    await tx.insert(rateLimits).values([
+      { bucket: "link:old@example.org", count: 5, windowStart },
+      { bucket: "link:new@example.org", count: 5 },
+    ]);
+    await sweepLeftovers({ db: tx, store: files.store });
+    expect(await tx.select().from(rateLimits)).toMatchObject([{ bucket: "link:new@example.org" }]);
+  });
+
   test("ends uploads nobody finished and clears their parts by age", async ({ tx }) => {
     const side = await createRoadSide(tx, files.store);
     const uploadId = await uploadBytes(side.tester, "log", "left.csv", pullLog(1));
