@@ -18,6 +18,26 @@ export async function insertUpload(
   return row;
 }
 
+/** Lets uploads of a workspace begin one after the other, so that their sum holds. */
+export async function lockOpenUploads(
+  tx: Queryable,
+  { workspaceId }: { workspaceId: string },
+): Promise<void> {
+  await tx.execute(sql`select pg_advisory_xact_lock(hashtextextended(${`uploads:${workspaceId}`}, 0))`);
+}
+
+/** Declared bytes of all uploads of a workspace that are under way. */
+export async function sumOpenUploads(
+  db: Queryable,
+  { workspaceId }: { workspaceId: string },
+): Promise<number> {
+  const [row] = await db
+    .select({ bytes: sql<number>`coalesce(sum(${uploads.declaredBytes}), 0)::float8` })
+    .from(uploads)
+    .where(and(eq(uploads.workspaceId, workspaceId), inArray(uploads.state, ["open", "complete"])));
+  return row.bytes;
+}
+
 /** An upload of this very person; anybody else's does not exist for them. */
 export async function selectUpload(
   db: Queryable,

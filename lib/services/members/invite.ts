@@ -7,6 +7,7 @@ import { ConflictError, NotFoundError } from "@/lib/errors";
 import type { Role } from "@/lib/policy/actor";
 import { authorise, type Ctx, withTransaction } from "@/lib/services/ctx";
 import { appendLedger } from "@/lib/services/ledger/append";
+import { limitTries } from "@/lib/services/limit-tries";
 import { inviteSchema } from "@/lib/services/members/schema";
 
 /** What is kept of an invitation's token: the table opens no door. */
@@ -29,7 +30,7 @@ function letter(workspace: string, inviter: string, roles: Role[], link: string)
 /**
  * Invites somebody by mail; an earlier open invitation of the same address ends.
  * @param origin public address of the product, for the link
- * @throws ForbiddenError; ConflictError for an address that is or was a member here
+ * @throws ForbiddenError; ConflictError for an address that is or was a member here; TooManyRequestsError after 30 an hour
  */
 export async function inviteMember(
   ctx: Ctx,
@@ -40,6 +41,7 @@ export async function inviteMember(
   authorise(ctx, "member.invite");
   const { email, roles } = inviteSchema.parse(input);
   await confirmIdentity(ctx, proof);
+  await limitTries(ctx.db, { doing: "send invitations", userId: ctx.userId });
   const { workspaceId } = ctx;
   const token = randomBytes(32).toString("base64url");
   return await withTransaction(ctx, async (tx, inner) => {

@@ -4,11 +4,13 @@ import { insertWorkspace } from "@/db/queries/workspaces";
 import { ROLES } from "@/lib/policy/actor";
 import { type Asker, inWorkspace } from "@/lib/services/asker";
 import { appendLedger } from "@/lib/services/ledger/append";
+import { limitTries } from "@/lib/services/limit-tries";
 import { newWorkspaceSchema } from "@/lib/services/workspaces/schema";
 
 /**
  * Makes a workspace; who makes it holds every role there.
  * @param input name, and the person's own name where they have none yet
+ * @throws TooManyRequestsError after five an hour
  */
 export async function createWorkspace(
   asker: Asker,
@@ -16,6 +18,7 @@ export async function createWorkspace(
 ): Promise<{ workspaceId: string }> {
   const { name, yourName } = newWorkspaceSchema.parse(input);
   const sample = input.sample ?? false;
+  await limitTries(asker.db, { doing: "make workspaces", userId: asker.userId });
   return await asker.db.transaction(async (tx) => {
     const { userId } = asker;
     const person = await selectUser(tx, { userId });
