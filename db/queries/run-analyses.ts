@@ -1,6 +1,6 @@
 import { and, desc, eq, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
-import { roadDays, runAnalyses, runs } from "@/db/tables";
+import { type decisions, roadDays, runAnalyses, runs } from "@/db/tables";
 
 export type RunAnalysisRow = typeof runAnalyses.$inferSelect;
 type Key = { workspaceId: string; runId: string };
@@ -40,15 +40,23 @@ export async function selectRunAnalyses(
     .limit(10);
 }
 
-/** Numbers of the records whose decision rests on any of the runs, oldest first; a run that was left out there bears none. */
+/** A record whose decision rests on a run. */
+export interface CitingRecord {
+  runId: string;
+  recordNumber: number;
+  decisionId: string;
+  kind: typeof decisions.$inferSelect.kind;
+}
+
+/** The records whose decision rests on any of the runs, oldest first; a run that was left out there bears none. */
 export async function selectCitingRecords(
   db: Queryable,
   { workspaceId, runIds }: { workspaceId: string; runIds: readonly string[] },
-): Promise<{ runId: string; recordNumber: number; decisionId: string }[]> {
+): Promise<CitingRecord[]> {
   if (runIds.length === 0) return [];
   const ids = sql.param([...runIds]);
-  const { rows } = await db.execute<{ runId: string; recordNumber: number; decisionId: string }>(sql`
-    select cited->>'runId' as "runId", record_number as "recordNumber", id as "decisionId"
+  const { rows } = await db.execute<CitingRecord & Record<string, unknown>>(sql`
+    select cited->>'runId' as "runId", record_number as "recordNumber", id as "decisionId", kind
     from decisions, jsonb_array_elements(evidence->'runs') as cited
     where workspace_id = ${workspaceId} and cited->>'runId' = any(${ids})
       and cited->>'leftOut' is null

@@ -103,15 +103,19 @@ describe("a road day", () => {
     });
   });
 
-  test("keeps its figures once a decision rests on one of its runs; notes may still be added", async ({
+  test("keeps its figures once a decision other than a hold rests on one of its runs; notes may still be added", async ({
     tx,
   }) => {
     const side = await createRoadSide(tx, files.store);
     const { roadDayId } = side;
     const { runId } = await attachLog(side.tester, side, pullLog());
+    // A hold asks for more runs and ends nothing.
+    await citeRun(tx, side, runId, { kind: "hold" });
+    const { rowVersion: opened } = (await getRoadDay(side.tester, roadDayId)).roadDay;
+    const wrong = { ...DAY, roadDayId, rowVersion: opened, tempC: 21 };
+    const { rowVersion } = await editRoadDay(side.tester, wrong);
     await citeRun(tx, side, runId);
-    const { rowVersion } = (await getRoadDay(side.tester, roadDayId)).roadDay;
-    const edit = { ...DAY, roadDayId, rowVersion };
+    const edit = { ...DAY, tempC: 21, roadDayId, rowVersion };
     for (const change of [{ massKg: 1520 }, { tempC: 5 }])
       await expect(editRoadDay(side.lead, { ...edit, ...change })).rejects.toMatchObject({
         status: 409,

@@ -155,10 +155,22 @@ describe("a run that a decision rests on", () => {
     for (const reason of [acts.setAside, acts.editNote]) expect(reason).toContain(`record ${record}`);
   });
 
+  test("that only holds is put right as before: note, setting aside, bringing back", async ({ tx }) => {
+    const { side, runId } = await withRun(tx);
+    const record = await citeRun(tx, side, runId, { kind: "hold" });
+    const { acts, cited, records } = await getRun(side.tester, runId);
+    expect([acts.setAside, acts.editNote, cited]).toEqual([null, null, null]);
+    expect(records).toMatchObject([{ recordNumber: record }]);
+    await editRunNote(side.tester, { runId, rowVersion: 1, note: "a gust on the way out" });
+    await setRunAside(side.tester, { runId, rowVersion: 2, reason: REASON });
+    await bringRunBack(side.lead, { runId, rowVersion: 3, reason: "the gust was on another run" });
+    expect((await getRun(side.lead, runId)).run.setAsideAt).toBeNull();
+  });
+
   test("but was left out there can still come back", async ({ tx }) => {
     const { side, runId } = await withRun(tx);
     await setRunAside(side.tester, { runId, rowVersion: 1, reason: REASON });
-    await citeRun(tx, side, runId, REASON);
+    await citeRun(tx, side, runId, { leftOut: REASON });
     await bringRunBack(side.lead, { runId, rowVersion: 2, reason: "the gust was on another run" });
     expect((await getRun(side.lead, runId)).run.setAsideAt).toBeNull();
   });

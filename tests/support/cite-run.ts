@@ -1,6 +1,7 @@
 import { eq, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
 import { decisions, workspaces } from "@/db/tables";
+import { MEANING } from "@/lib/services/decisions/schema";
 import type { RoadSide } from "@/tests/support/road-side";
 
 /** A decision of the lead that rests on a run, or names it as left out, written straight into its table. @returns its record number */
@@ -8,7 +9,7 @@ export async function citeRun(
   db: Queryable,
   side: RoadSide,
   runId: string,
-  leftOut: string | null = null,
+  { leftOut = null, kind = "turn_down" }: { leftOut?: string | null; kind?: "hold" | "turn_down" } = {},
 ): Promise<number> {
   const { workspaceId, programmeId } = side;
   const [{ next }] = await db
@@ -18,9 +19,9 @@ export async function citeRun(
     .returning({ next: workspaces.nextRecordNumber });
   const recordNumber = next - 1;
   await db.insert(decisions).values({
-    ...{ workspaceId, programmeId, recordNumber, revisionId: side.r2, kind: "hold" },
-    reason: "two more twins are needed",
-    meaning: "held for more runs",
+    ...{ workspaceId, programmeId, recordNumber, revisionId: side.r2, kind },
+    reason: "torque is lost below 3,000 per minute",
+    meaning: MEANING[kind],
     deciderId: side.lead.userId,
     deciderName: side.lead.userName,
     authorId: side.calibrator.userId,

@@ -22,7 +22,7 @@ function differences(row: RoadDayRow, figures: Figures) {
 
 /**
  * Corrects a road day. Weather and mass count in the computation: runs that took the old weather over get the new one and
- * are judged again, and comparisons follow. Once a decision rests on a run of the day, those figures stay as they are.
+ * are judged again, and comparisons follow. Once a decision other than a hold rests on a run of the day, those figures stay.
  * @throws ForbiddenError; NotFoundError; ConflictError `road_day_moved` with what it holds now, `run_cited`
  */
 export async function editRoadDay(ctx: Ctx, input: EditRoadDay): Promise<RoadDayRow> {

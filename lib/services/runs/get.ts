@@ -87,10 +87,7 @@ export async function getRun(ctx: Ctx, runId: string) {
   const all = { citing: allCiting, comparisons: allCompared };
   const { citing, comparisons } = await releasedOnly(ctx, programme.id, all);
   const verdict = verdictOf(analyses[0]);
-  const cited = citedSentence(
-    `Run ${run.number}`,
-    citing.map((row) => row.recordNumber),
-  );
+  const cited = citedSentence(`Run ${run.number}`, citing);
   return {
     run,
     programme: { id: programme.id, name: programme.name },
