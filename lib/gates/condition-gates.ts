@@ -55,6 +55,14 @@ export function conditionsGate(gate: ConditionsGate, evidence: GateEvidence): Ga
           "Refuel and load alike for both sides.",
         ),
       );
+    case "alike_tyre_pressure":
+      return gateResult(
+        gate,
+        `A and B within ${figure(gate.withinKpa)} kPa of tyre pressure`,
+        alikeTyres(evidence, gate.withinKpa),
+      );
+    case "alike_fuel":
+      return gateResult(gate, "A and B on the same fuel", sameFuel(evidence));
     case "alike_gear":
       return gateResult(gate, "A and B in the same gear", sameGear(evidence));
     case "twin_closure":
@@ -104,6 +112,7 @@ function alike(
   name: string,
   unit: string,
   next: string,
+  typedFor = "run",
 ): Verdict {
   const runs = usableRuns(evidence);
   if (!bothSides(runs)) return noRuns();
@@ -111,7 +120,7 @@ function alike(
   if (unknown > 0)
     return tooLittle(
       `The ${name} of ${counted(unknown, "run")} is not known.`,
-      `Type the ${name} of every run.`,
+      `Type the ${name} of every ${typedFor}.`,
     );
   const mean = (side: string) => {
     const values = runs.flatMap((run) => (run.side === side ? [of(run) ?? 0] : []));
@@ -120,6 +129,41 @@ function alike(
   const difference = Math.abs(mean("B") - mean("A"));
   const why = `The mean ${name} differs by ${figure(difference)} ${unit} (A ${figure(mean("A"))}, B ${figure(mean("B"))} ${unit}); ${figure(within)} ${unit} are allowed.`;
   return difference <= within ? met(why) : notMet(why, next);
+}
+
+/** Both axles must agree; the one that agrees least speaks. */
+function alikeTyres(evidence: GateEvidence, withinKpa: number): Verdict {
+  const next = "Set the tyres to one pressure for both sides and drive again.";
+  const axle = (name: string, of: (run: EvidenceRun) => number | null) =>
+    alike(evidence, of, withinKpa, `${name} tyre pressure`, "kPa", next, "road day");
+  const front = axle("front", (run) => run.tyreFrontKpa);
+  const rear = axle("rear", (run) => run.tyreRearKpa);
+  const worse = (["not_met", "too_little"] as const).flatMap((state) =>
+    [front, rear].filter((verdict) => verdict.state === state),
+  );
+  return worse[0] ?? met(`${front.why} ${rear.why}`);
+}
+
+/** The same fuel notes on both sides, but for letter case and spaces. */
+function sameFuel(evidence: GateEvidence): Verdict {
+  const runs = usableRuns(evidence);
+  if (!bothSides(runs)) return noRuns();
+  const noted = (run: EvidenceRun) => (run.fuel ?? "").trim().replace(/\s+/g, " ").toLowerCase();
+  const unknown = runs.filter((run) => noted(run) === "").length;
+  if (unknown > 0)
+    return tooLittle(
+      `The fuel of ${counted(unknown, "run")} is not noted.`,
+      "Note grade and batch of the fuel on every road day.",
+    );
+  const fuels = (side: string) =>
+    [...new Set(runs.filter((run) => run.side === side).map(noted))].sort().join("; ");
+  const [a, b] = [fuels("A"), fuels("B")];
+  return a === b
+    ? met(`The fuel noted for both sides is the same: ${a}.`)
+    : notMet(
+        `The fuel noted differs: A ${a}; B ${b}.`,
+        "Drive both sides on one batch, or note one fuel in the same words.",
+      );
 }
 
 function sameGear(evidence: GateEvidence): Verdict {

@@ -12,6 +12,10 @@ export interface EvidenceRun {
   massKg: number | null;
   tempC: number | null;
   pressureHpa: number | null;
+  tyreFrontKpa: number | null;
+  tyreRearKpa: number | null;
+  /** The fuel as noted for the road day. */
+  fuel: string | null;
 }
 
 /** What the gates of a revision are evaluated on: the comparison with what stands, and the conditions of its runs. */

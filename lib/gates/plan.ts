@@ -24,6 +24,8 @@ export type ConditionsGate = Asked<"conditions"> &
     | { ask: "alike_temperature"; withinK: number }
     | { ask: "alike_pressure"; withinHpa: number }
     | { ask: "alike_mass"; withinKg: number }
+    | { ask: "alike_tyre_pressure"; withinKpa: number }
+    | { ask: "alike_fuel" }
     | { ask: "alike_gear" }
     | { ask: "twin_closure"; withinPct: number }
   );

@@ -1,10 +1,22 @@
 import { and, eq, sql } from "drizzle-orm";
 import { Client } from "pg";
 import { describe, expect, vi } from "vitest";
-import { decisions, ledger, mailQueue, memberships, programmes, revisions, runs, waivers } from "@/db/tables";
+import {
+  decisions,
+  ledger,
+  mailQueue,
+  memberships,
+  programmes,
+  revisions,
+  roadDays,
+  runs,
+  waivers,
+} from "@/db/tables";
 import { ConflictError, ForbiddenError, InvalidInputError, NotFoundError } from "@/lib/errors";
+import type { Gate } from "@/lib/gates/plan";
 import { promoteRevision } from "@/lib/services/decisions/promote";
 import { holdRevision, turnDownRevision } from "@/lib/services/decisions/send-back";
+import { gateStatus } from "@/lib/services/gates/status";
 import { test } from "@/tests/support/database";
 import {
   createCandidate,
@@ -236,6 +248,23 @@ describe("a must gate that is not met", () => {
     ]);
     expect(await db.select().from(ledger).where(eq(ledger.event, "gate.waived"))).toHaveLength(1);
   });
+});
+
+test("gates see tyre pressures and fuel of the road days driven on", async ({ database: { db } }) => {
+  const tyres: Gate = {
+    ...{ id: "t", kind: "conditions", level: "must", ask: "alike_tyre_pressure" },
+    withinKpa: 10,
+  };
+  const fuel: Gate = { id: "f", kind: "conditions", level: "must", ask: "alike_fuel" };
+  const scene = await createScene(db, { gates: [tyres, fuel] });
+  const { lead, candidateId: revisionId, roadDayId } = scene;
+  const note = (set: Partial<typeof roadDays.$inferInsert>) =>
+    db.update(roadDays).set(set).where(eq(roadDays.id, roadDayId));
+  const states = async () => (await gateStatus(lead, { revisionId })).results.map((gate) => gate.state);
+  await note({ tyrePressureFrontKpa: null, tyrePressureRearKpa: 230, fuelNote: "" });
+  expect(await states()).toEqual(["too_little", "too_little"]);
+  await note({ tyrePressureFrontKpa: 240, fuelNote: "98 octane" });
+  expect(await states()).toEqual(["met", "met"]);
 });
 
 describe("holding and turning down", () => {

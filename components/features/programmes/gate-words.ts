@@ -63,6 +63,18 @@ export function gateWords(gate: Gate): GateWords {
             title: "A and B alike in mass",
             numbers: [{ name: "withinKg", label: "within", unit: "kg" }],
           };
+        case "alike_tyre_pressure":
+          return {
+            title: "A and B alike in tyre pressure",
+            note: "As typed for the road days, front and rear each.",
+            numbers: [{ name: "withinKpa", label: "within", unit: "kPa" }],
+          };
+        case "alike_fuel":
+          return {
+            title: "A and B on the same fuel",
+            note: "Compares the fuel notes of the road days.",
+            numbers: [],
+          };
         case "alike_gear":
           return { title: "A and B driven in the same gear", numbers: [] };
         case "twin_closure":

@@ -33,6 +33,11 @@ const conditions = z.discriminatedUnion("ask", [
     ...{ id, level, kind: z.literal("conditions"), ask: z.literal("alike_mass") },
     withinKg: requiredNumber({ min: 0, max: 1000, unit: "kg" }),
   }),
+  z.object({
+    ...{ id, level, kind: z.literal("conditions"), ask: z.literal("alike_tyre_pressure") },
+    withinKpa: requiredNumber({ min: 0, max: 500, unit: "kPa" }),
+  }),
+  z.object({ id, level, kind: z.literal("conditions"), ask: z.literal("alike_fuel") }),
   z.object({ id, level, kind: z.literal("conditions"), ask: z.literal("alike_gear") }),
   z.object({ id, level, kind: z.literal("conditions"), ask: z.literal("twin_closure"), withinPct: percent }),
 ]);

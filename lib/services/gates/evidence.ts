@@ -25,6 +25,9 @@ export function gateEvidence(comparison: ComparisonStanding | null, redlineRpm: 
           massKg: massOf(current, run),
           tempC: run.tempC,
           pressureHpa: run.pressureHpa,
+          tyreFrontKpa: run.tyrePressureFrontKpa,
+          tyreRearKpa: run.tyrePressureRearKpa,
+          fuel: run.fuelNote,
         }),
       ),
   };

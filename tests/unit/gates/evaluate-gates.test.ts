@@ -20,6 +20,9 @@ function runs(order = ORDER): EvidenceRun[] {
     massKg: 1486,
     tempC: 18,
     pressureHpa: 1003,
+    tyreFrontKpa: 240,
+    tyreRearKpa: 230,
+    fuel: "98 octane, batch 7",
   }));
 }
 
@@ -193,6 +196,19 @@ describe("Evidence and conditions", () => {
     ["conditions.pressure", (run) => ({ pressureHpa: run.side === "A" ? 1003 : 1014 }), "not_met"],
     ["conditions.mass", (run) => ({ massKg: run.side === "A" ? 1486 : 1502 }), "not_met"],
     ["conditions.mass", (run) => ({ massKg: run.side === "A" ? 1486 : 1500 }), "met"],
+    ["conditions.tyres", (run) => ({ tyreFrontKpa: run.side === "A" ? 240 : 250 }), "met"],
+    ["conditions.tyres", (run) => ({ tyreFrontKpa: run.side === "A" ? 240 : 250.5 }), "not_met"],
+    ["conditions.tyres", (run) => ({ tyreRearKpa: run.side === "A" ? 230 : 219 }), "not_met"],
+    ["conditions.tyres", () => ({ tyreRearKpa: null }), "too_little"],
+    [
+      "conditions.tyres",
+      (run) => ({ tyreFrontKpa: null, tyreRearKpa: run.side === "A" ? 1 : 99 }),
+      "not_met",
+    ],
+    ["conditions.fuel", (run) => ({ fuel: run.side === "A" ? " 98  Octane, batch 7" : run.fuel }), "met"],
+    ["conditions.fuel", (run) => ({ fuel: run.side === "A" ? "98 octane, batch 8" : run.fuel }), "not_met"],
+    ["conditions.fuel", (run) => ({ fuel: run.id === "r5" ? " " : run.fuel }), "too_little"],
+    ["conditions.fuel", () => ({ fuel: null }), "too_little"],
     ["conditions.gear", (run) => ({ gear: run.id === "r2" ? 4 : 3 }), "not_met"],
     ["conditions.gear", () => ({ gear: null }), "too_little"],
   ])("%s", (id, change, state) => expect(stateOf(id, changed(change))).toBe(state));
