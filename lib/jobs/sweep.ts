@@ -15,8 +15,8 @@ import { type SweepReport, sweepStore } from "@/storage/sweep";
 const REHASH_HOUR_UTC = 3;
 
 /**
- * Clears uploads that nobody finished and counts of tries that are over, has runs judged that wait without a job, and looks whether every row still has its
- * file. What is missing or damaged is logged as `integrity.failed` for people to act on; it is never mended here.
+ * Clears uploads that nobody finished and counts of tries that are over, has runs judged that wait without a job, and looks
+ * whether every row still has its file. What is missing or damaged is logged as `integrity.failed` for people to act on; it is never mended here.
  */
 export async function sweepLeftovers({ db, store }: System, now = new Date()): Promise<SweepReport> {
   const uploadsEnded = await cancelExpiredUploads(db);
