@@ -8,9 +8,13 @@ interface MemberKey {
   userId: string;
 }
 
-/** Takes the workspace's lock: changes of its members follow one another. */
+/** Takes the workspace's lock: changes of its members follow one another. Rows that only name the workspace may still be added. */
 export async function lockWorkspace(tx: Queryable, { workspaceId }: { workspaceId: string }): Promise<void> {
-  await tx.select({ id: workspaces.id }).from(workspaces).where(eq(workspaces.id, workspaceId)).for("update");
+  await tx
+    .select({ id: workspaces.id })
+    .from(workspaces)
+    .where(eq(workspaces.id, workspaceId))
+    .for("no key update");
 }
 
 /** Members by name, disabled ones too. */

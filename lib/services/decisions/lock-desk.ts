@@ -44,9 +44,10 @@ export async function lockDesk(
   const rows = await lockRevisions(tx, { workspaceId, programmeId, revisionIds });
   const revision = rows.find((row) => row.id === revisionId);
   if (!revision) throw noRevision();
+  // The workspace's row before the membership, as whoever changes members takes them.
+  await lockNumbers(tx, { workspaceId });
   const roles = await selectRoles(tx, { workspaceId, userId, lock: true });
   if (!roles) throw new ForbiddenError("no_member", "You are no active member of this workspace any more.");
-  await lockNumbers(tx, { workspaceId });
   await lockLedgerHead(tx, { workspaceId });
   const otherLeads = await countOthersWithRole(tx, { workspaceId, userId, role: "lead" });
   return {

@@ -28,7 +28,11 @@ export async function acceptInvitation(
 ): Promise<{ workspaceId: string }> {
   const { userId } = asker;
   return await asker.db.transaction(async (tx) => {
-    const invitation = await selectInvitation(tx, { tokenSha256: hashInvitationToken(token), lock: true });
+    const tokenSha256 = hashInvitationToken(token);
+    const found = await selectInvitation(tx, { tokenSha256 });
+    // The workspace's row before the invitation, as whoever invites takes them.
+    if (found) await lockWorkspace(tx, { workspaceId: found.workspaceId });
+    const invitation = await selectInvitation(tx, { tokenSha256, lock: true });
     if (!invitation)
       throw new NotFoundError(
         "invitation_not_found",
@@ -41,7 +45,6 @@ export async function acceptInvitation(
         "This invitation was sent to another address. Sign out and sign in with the address that it was sent to.",
       );
     const { workspaceId, roles } = invitation;
-    await lockWorkspace(tx, { workspaceId });
     if (await selectMember(tx, { workspaceId, userId }))
       throw new ConflictError("is_member", "You belong to this workspace already.");
     const userName = person.name ?? name ?? asker.userName;
