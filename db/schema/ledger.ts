@@ -51,7 +51,10 @@ export const mailQueue = pgTable(
     workspaceId: uuid("workspace_id").references(() => workspaces.id),
     toAddress: text("to_address").notNull(),
     subject: text("subject").notNull(),
+    /** Emptied once sent: it may hold a link that opens a door. */
     body: text("body").notNull(),
+    /** Not sent any more after this; null = always of use. */
+    usefulUntil: instant("useful_until"),
     attempts: integer("attempts").notNull().default(0),
     nextTryAt: instant("next_try_at").notNull().defaultNow(),
     sentAt: instant("sent_at"),

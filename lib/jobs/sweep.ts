@@ -1,4 +1,5 @@
 import { selectForgottenRuns } from "@/db/queries/jobs";
+import { emptyUselessMail } from "@/db/queries/mail";
 import {
   allBlobs,
   cancelExpiredUploads,
@@ -21,6 +22,7 @@ const REHASH_HOUR_UTC = 3;
 export async function sweepLeftovers({ db, store }: System, now = new Date()): Promise<SweepReport> {
   const uploadsEnded = await cancelExpiredUploads(db);
   const countsForgotten = await deleteOldTries(db);
+  const mailEmptied = await emptyUselessMail(db);
   const report = await sweepStore(
     store,
     {
@@ -46,6 +48,7 @@ export async function sweepLeftovers({ db, store }: System, now = new Date()): P
     event: "sweep.done",
     uploadsEnded,
     countsForgotten,
+    mailEmptied,
     judgedAgain: forgotten.length,
     ...counts,
   });

@@ -3,8 +3,9 @@ import { tmpdir } from "node:os";
 import { join } from "node:path";
 import { asc, sql } from "drizzle-orm";
 import { afterEach, beforeEach, describe, expect, vi } from "vitest";
-import { enqueueMail } from "@/db/queries/mail";
+import { emptyUselessMail, enqueueMail } from "@/db/queries/mail";
 import { mailQueue } from "@/db/tables";
+import { queueSignInMail } from "@/lib/auth/sign-in-mail";
 import { readMailFolder } from "@/lib/mail/read-folder";
 import { sendDueMail } from "@/lib/mail/send-due";
 import { type Letter, mailTransport } from "@/lib/mail/transport";
@@ -41,6 +42,8 @@ describe("due mail", () => {
     expect(await sendDueMail(db)).toBe(0);
     const [row] = await db.select().from(mailQueue);
     expect(row.sentAt).toBeInstanceOf(Date);
+    // What was sent is a key to the door; it stays in the letter only.
+    expect(row.body).toBe("");
     expect((await readdir(folder.path)).sort()).toEqual([`${row.id}.eml`, `${row.id}.json`]);
 
     const eml = await readFile(join(folder.path, `${row.id}.eml`), "utf8");
@@ -63,6 +66,28 @@ describe("due mail", () => {
     const counts = await Promise.all(Array.from({ length: 4 }, () => sendDueMail(db, send)));
     expect(counts.reduce((sum, count) => sum + count)).toBe(20);
     expect(new Set(sent).size).toBe(20);
+  });
+
+  test("is not sent once it is of no use any more, and is emptied by the sweep", async ({
+    database: { db },
+  }) => {
+    serveFrom(db);
+    await queueSignInMail("a@example.org", "x".repeat(43));
+    await enqueueMail(db, { ...MAIL, subject: "of use for ever" });
+    const wait = (minutes: number) =>
+      db.execute(
+        sql`update mail_queue set useful_until = useful_until - make_interval(mins => ${minutes}::int)`,
+      );
+    const [young] = await db.select().from(mailQueue).orderBy(asc(mailQueue.createdAt));
+    expect(young.body).toContain("x".repeat(43));
+    await wait(59);
+    expect(await emptyUselessMail(db)).toBe(0);
+    await wait(2);
+    const sent: string[] = [];
+    await sendDueMail(db, async (letter) => void sent.push(letter.subject));
+    expect(sent).toEqual(["of use for ever"]);
+    expect(await emptyUselessMail(db)).toBe(1);
+    expect((await db.select().from(mailQueue)).map((row) => row.body)).toEqual(["", ""]);
   });
 
   test("that fails is tried again after 1, 2, 4 … minutes and stops no other", async ({

@@ -10,6 +10,9 @@ import { appendLedger } from "@/lib/services/ledger/append";
 import { limitTries } from "@/lib/services/limit-tries";
 import { inviteSchema } from "@/lib/services/members/schema";
 
+/** As long as the invitation itself is good: seven days. */
+const INVITATION_S = 7 * 24 * 60 * 60;
+
 /** What is kept of an invitation's token: the table opens no door. */
 export function hashInvitationToken(token: string): string {
   return createHash("sha256").update(token).digest("hex");
@@ -68,6 +71,7 @@ export async function inviteMember(
     await enqueueMail(tx, {
       workspaceId,
       toAddress: email,
+      usefulForS: INVITATION_S,
       subject: `Invitation to ${workspace.name} in Twinpass`,
       body: letter(workspace.name, ctx.userName, roles, link),
     });
