@@ -1,4 +1,4 @@
-import type { GatePlan } from "@/lib/gates/plan";
+import type { Gate, GatePlan } from "@/lib/gates/plan";
 
 /** The plan a new programme starts with; a lead edits it. A gain is not asked until a lead asks for it. */
 export function startingPlan(): GatePlan {
@@ -34,4 +34,11 @@ export function startingPlan(): GatePlan {
       { id: "sprint.100-200", kind: "sprint", level: "should", time: "100-200", notSlowerByS: 0.1 },
     ],
   };
+}
+
+/** Conditions that can be asked for by now and that an older plan does not name, switched off. */
+export function conditionsNotIn(plan: GatePlan): Gate[] {
+  return startingPlan()
+    .gates.filter(({ kind, id }) => kind === "conditions" && !plan.gates.some((gate) => gate.id === id))
+    .map((gate) => ({ ...gate, level: "off" }));
 }

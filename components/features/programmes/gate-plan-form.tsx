@@ -13,6 +13,7 @@ import { SectionHeading } from "@/components/ui/layout/section-heading";
 import { Notice } from "@/components/ui/status/notice";
 import { showToast } from "@/components/ui/status/toast";
 import type { Gate, GatePlan } from "@/lib/gates/plan";
+import { conditionsNotIn } from "@/lib/gates/starting-plan";
 import { gatePlanSchema } from "@/lib/services/gate-plans/schema";
 
 export interface GatePlanFormProps {
@@ -49,9 +50,10 @@ function freshId(base: string, taken: readonly { id: string }[]): string {
 
 /** The newest plan, to be changed into the next version. */
 export function GatePlanForm({ programmeId, version, plan, blockedBecause, action }: GatePlanFormProps) {
+  const offered = conditionsNotIn(plan);
   const form = useForm<Fields, unknown, GatePlan>({
     resolver: zodResolver(gatePlanSchema),
-    defaultValues: { plan: 1, gates: plan.gates.map(typed) as Fields["gates"] },
+    defaultValues: { plan: 1, gates: [...plan.gates, ...offered].map(typed) as Fields["gates"] },
   });
   const { fields, append, remove } = useFieldArray({ control: form.control, name: "gates", keyName: "key" });
   const [time, setTime] = useState("0-100");
@@ -71,7 +73,9 @@ export function GatePlanForm({ programmeId, version, plan, blockedBecause, actio
   };
   const send = form.handleSubmit(async (parsed) => {
     setProblem(null);
-    const state = await action({ programmeId, basedOnVersion: version, plan: parsed });
+    const left = (gate: Gate) => gate.level === "off" && offered.some(({ id }) => id === gate.id);
+    const asked = { ...parsed, gates: parsed.gates.filter((gate) => !left(gate)) };
+    const state = await action({ programmeId, basedOnVersion: version, plan: asked });
     const saved = state.value?.version;
     const words =
       saved === version ? "Nothing was changed, so no version was added." : `Version ${saved} is saved.`;
