@@ -62,11 +62,25 @@ interface Call<Params> {
 /**
  * Wraps a route handler: own origin for anything but GET and HEAD, session, verb, one error mapping.
  * The handler returns a body (200) or a Response of its own.
+ * @param isDownload the handler notes in the ledger that somebody fetched a file: a HEAD fetches none (405), and another
+ *   site's page may not cause the entry
  */
-export function route<Params = Record<string, never>>(handle: (call: Call<Params>) => Promise<unknown>) {
+export function route<Params = Record<string, never>>(
+  handle: (call: Call<Params>) => Promise<unknown>,
+  { isDownload = false }: { isDownload?: boolean } = {},
+) {
   return async (request: Request, segment: { params: Promise<Params> }): Promise<Response> => {
     const requestId = requestIdOf(request.headers);
+    // Next answers a HEAD by the handler of GET.
+    if (isDownload && request.method === "HEAD")
+      return new Response(null, { status: 405, headers: { ...PRIVATE, allow: "GET" } });
     try {
+      if (isDownload && request.headers.get("sec-fetch-site") === "cross-site") {
+        throw new ForbiddenError(
+          "foreign_origin",
+          "This download was not asked for on a page of Twinpass. Open the page and download it there.",
+        );
+      }
       if (
         request.method !== "GET" &&
         request.method !== "HEAD" &&
