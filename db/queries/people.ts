@@ -99,17 +99,20 @@ export async function updateUserName(
   await db.update(users).set({ name }).where(eq(users.id, userId));
 }
 
-/** The passphrase row of a person, locked for the length of the transaction. */
-export async function lockPassphrase(tx: Queryable, { userId }: { userId: string }) {
-  const [row] = await tx
+/** The passphrase row of a person, locked for the length of the transaction when `lock`. */
+export async function selectPassphrase(
+  db: Queryable,
+  { userId, lock = false }: { userId: string; lock?: boolean },
+) {
+  const query = db
     .select({
       scryptHash: signingPassphrases.scryptHash,
       failedTries: signingPassphrases.failedTries,
       locked: sql<boolean>`coalesce(${signingPassphrases.lockedUntil} > now(), false)`,
     })
     .from(signingPassphrases)
-    .where(eq(signingPassphrases.userId, userId))
-    .for("update");
+    .where(eq(signingPassphrases.userId, userId));
+  const [row] = lock ? await query.for("update") : await query;
   return row ?? null;
 }
 

@@ -1,5 +1,5 @@
 import { enqueueMail } from "@/db/queries/mail";
-import { lockPassphrase, notePassphraseTry, selectAddressesToWarn, selectUser } from "@/db/queries/people";
+import { notePassphraseTry, selectAddressesToWarn, selectPassphrase, selectUser } from "@/db/queries/people";
 import { passphraseFits } from "@/lib/auth/passphrase";
 import { ForbiddenError, TooManyRequestsError } from "@/lib/errors";
 import { logger } from "@/lib/logger";
@@ -25,6 +25,26 @@ async function warnOfLock(tx: Ctx["db"], userId: string): Promise<void> {
 }
 
 /**
+ * Hashing takes long and memory, so it happens before the transaction and holds neither row nor connection. What it found
+ * counts only if the row is still open and the same under lock: of any number of tries at once five are answered.
+ */
+async function tryPassphrase({ db, userId }: Pick<Ctx, "db" | "userId">, passphrase: string) {
+  const before = await selectPassphrase(db, { userId });
+  if (!before) return "none";
+  if (before.locked) return "locked";
+  const fits = await passphraseFits(passphrase, before.scryptHash);
+  return await db.transaction(async (tx) => {
+    const row = await selectPassphrase(tx, { userId, lock: true });
+    if (!row) return "none";
+    if (row.locked) return "locked";
+    const right = fits && row.scryptHash === before.scryptHash;
+    await notePassphraseTry(tx, { userId, right });
+    if (!right && row.failedTries + 1 >= TRIES) await warnOfLock(tx, userId);
+    return right ? "right" : "wrong";
+  });
+}
+
+/**
  * Confirms that it is really this person, right before a decision. Its own transaction, so that a wrong try counts
  * even though the decision fails. Five wrong tries lock the passphrase for 15 minutes and are told by mail.
  * @returns how identity was confirmed, for the record
@@ -34,15 +54,7 @@ export async function reauthenticate(
   ctx: Pick<Ctx, "db" | "userId">,
   passphrase: string,
 ): Promise<"passphrase"> {
-  const outcome = await ctx.db.transaction(async (tx) => {
-    const row = await lockPassphrase(tx, { userId: ctx.userId });
-    if (!row) return "none";
-    if (row.locked) return "locked";
-    const right = await passphraseFits(passphrase, row.scryptHash);
-    await notePassphraseTry(tx, { userId: ctx.userId, right });
-    if (!right && row.failedTries + 1 >= TRIES) await warnOfLock(tx, ctx.userId);
-    return right ? "right" : "wrong";
-  });
+  const outcome = await tryPassphrase(ctx, passphrase);
   if (outcome !== "right")
     logger().warn({ event: "auth.reauthentication_failed", userId: ctx.userId, outcome });
   switch (outcome) {
