@@ -2,10 +2,11 @@ import { randomBytes } from "node:crypto";
 import { eq } from "drizzle-orm";
 import { afterAll, beforeAll, describe, expect } from "vitest";
 import type { Transaction } from "@/db/client";
-import { uploads } from "@/db/tables";
+import { revisions, uploads } from "@/db/tables";
 import { readBlob } from "@/lib/services/blobs";
 import type { Ctx } from "@/lib/services/ctx";
 import { withTransaction } from "@/lib/services/ctx";
+import { addRevision } from "@/lib/services/revisions/create";
 import { addPart } from "@/lib/services/uploads/add-part";
 import { openUpload } from "@/lib/services/uploads/begin";
 import { cancelUpload } from "@/lib/services/uploads/cancel";
@@ -14,7 +15,7 @@ import { LARGEST_BYTES } from "@/lib/services/uploads/schema";
 import { sealUpload, useSealedUpload } from "@/lib/services/uploads/seal";
 import { PART_BYTES } from "@/storage/port";
 import { test } from "@/tests/support/database";
-import { createMember, createWorkspaceRow } from "@/tests/support/factories";
+import { createMember, createProgrammeRow, createWorkspaceRow } from "@/tests/support/factories";
 import { createTestStore } from "@/tests/support/store";
 import { sha256Of, uploadBytes } from "@/tests/support/upload-bytes";
 
@@ -221,5 +222,31 @@ describe("declarations", () => {
     expect(
       await openUpload(ctx, { ...declared, fileName: "a.csv", sizeBytes: LARGEST_BYTES.log }),
     ).toBeTruthy();
+  });
+});
+
+describe("a revision from an upload", () => {
+  test("is made once of it, whatever key the second wish carries", async ({ tx }) => {
+    const workspaceId = await createWorkspaceRow(tx);
+    const ctx = await createMember(tx, { workspaceId, roles: ["calibrator"], store: files.store });
+    const programmeId = await createProgrammeRow(tx, { workspaceId, createdBy: ctx.userId });
+    const request = {
+      programmeId,
+      parentId: null,
+      uploadId: await uploadBytes(ctx, "image", "a.bin", randomBytes(64)),
+      baseAddress: "8000",
+      title: "Base",
+      changeReason: "",
+      intendedUse: null,
+      touchesEmissionOrSafety: null,
+      note: "",
+    };
+    const made = await addRevision(ctx, request, "key-of-the-first-wish");
+    expect(await addRevision(ctx, request, "key-of-the-first-wish")).toEqual(made);
+    await expect(addRevision(ctx, request, "key-of-another-wish")).rejects.toMatchObject({
+      status: 409,
+      code: "upload_used",
+    });
+    expect(await tx.select().from(revisions)).toHaveLength(1);
   });
 });
