@@ -7,7 +7,7 @@ import { type BeginUpload, beginUpload, type UploadState } from "@/lib/services/
 import { newStagingKey } from "@/storage/keys";
 
 /** What a workspace may have under way at once, in bytes: twenty of the largest logs. */
-export const OPEN_BYTES_AT_MOST = 4_000_000_000;
+const OPEN_BYTES_AT_MOST = 4_000_000_000;
 
 /**
  * Opens an upload for declared bytes; the server picks the place. Nothing is kept yet.
