@@ -1,7 +1,6 @@
 "use client";
 
 import { zodResolver } from "@hookform/resolvers/zod";
-import Link from "next/link";
 import { useState, useTransition } from "react";
 import { FormProvider, type Resolver, useForm } from "react-hook-form";
 import {
@@ -9,6 +8,7 @@ import {
   type SeenByLead,
   toDecideInput,
 } from "@/components/features/decisions/decision-fields";
+import { SigningField } from "@/components/features/decisions/signing-field";
 import { WaiverFields } from "@/components/features/decisions/waiver-fields";
 import { Button } from "@/components/ui/action/button";
 import { RadioCards } from "@/components/ui/form/radio-cards";
@@ -145,24 +145,11 @@ export function DecisionForm(props: DecisionFormProps) {
                 {...form.register("typedNumber")}
               />
             )}
-            {hasPassphrase ? (
-              <TextInput
-                label="Your signing passphrase"
-                type="password"
-                autoComplete="current-password"
-                required
-                error={errors.passphrase?.message}
-                {...form.register("passphrase")}
-              />
-            ) : (
-              <Notice tone="caution">
-                You sign with a passphrase, and you have none yet.{" "}
-                <Link href="/account" className="link">
-                  Set one on your account page
-                </Link>
-                .
-              </Notice>
-            )}
+            <SigningField
+              hasPassphrase={hasPassphrase}
+              error={errors.passphrase?.message}
+              field={form.register("passphrase")}
+            />
           </>
         )}
         {consequence(kind, props) && <p className="text-15">What will happen: {consequence(kind, props)}</p>}

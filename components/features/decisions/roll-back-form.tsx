@@ -1,9 +1,9 @@
 "use client";
 
 import { zodResolver } from "@hookform/resolvers/zod";
-import Link from "next/link";
 import { useState, useTransition } from "react";
 import { useForm } from "react-hook-form";
+import { SigningField } from "@/components/features/decisions/signing-field";
 import { Button } from "@/components/ui/action/button";
 import { TextInput } from "@/components/ui/form/text-input";
 import { Textarea } from "@/components/ui/form/textarea";
@@ -68,23 +68,11 @@ export function RollBackForm(props: RollBackFormProps) {
         error={errors.typedNumber?.message}
         {...form.register("typedNumber")}
       />
-      <TextInput
-        label="Your signing passphrase"
-        type="password"
-        autoComplete="current-password"
-        required
+      <SigningField
+        hasPassphrase={props.hasPassphrase}
         error={errors.passphrase?.message}
-        {...form.register("passphrase")}
+        field={form.register("passphrase")}
       />
-      {!props.hasPassphrase && (
-        <Notice tone="caution">
-          You sign with a passphrase, and you have none yet.{" "}
-          <Link href="/account" className="link">
-            Set one on your account page
-          </Link>
-          .
-        </Notice>
-      )}
       {refusal && (
         <Notice tone="problem" title="Nothing was changed" live>
           {refusal}
