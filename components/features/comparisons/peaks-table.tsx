@@ -91,8 +91,7 @@ export function PeaksTable({ result, labels }: { result: CampaignResult; labels:
         rowKey={(line) => line.what}
         columns={[
           { key: "what", header: "Quantity", rowHeader: true, cell: (line) => `${line.what}, ${line.unit}` },
-          { key: "a", header: `A ${labels.a}`, numeric: true, cell: (line) => side(line, 0) },
-          { key: "b", header: `B ${labels.b}`, numeric: true, cell: (line) => side(line, 1) },
+          // The difference first: on a phone it is what stays in sight.
           {
             key: "d",
             header: "B \u2212 A",
@@ -105,6 +104,8 @@ export function PeaksTable({ result, labels }: { result: CampaignResult; labels:
               ),
           },
           { key: "n", header: "n A, B", numeric: true, cell: (line) => `${line.n[0]}, ${line.n[1]}` },
+          { key: "a", header: `A ${labels.a}`, numeric: true, cell: (line) => side(line, 0) },
+          { key: "b", header: `B ${labels.b}`, numeric: true, cell: (line) => side(line, 1) },
         ]}
       />
       <p className="px-4 py-3 text-13 text-ink2">

@@ -37,10 +37,12 @@ describe("PeaksTable", () => {
 
   it("gives each side its own ± or says that none is stated", () => {
     render(<PeaksTable result={resultOf("day")} labels={labels} />);
-    const [, a, b] = Array.from(screen.getByRole("row", { name: /Peak power/ }).children);
+    const heads = screen.getAllByRole("columnheader").map((head) => head.textContent);
+    expect(heads.slice(0, 2)).toEqual(["Quantity", "B \u2212 A"]);
+    const [, , , a, b] = Array.from(screen.getByRole("row", { name: /Peak power/ }).children);
     expect(a?.textContent).toContain("184.0 ± 5.5");
     expect(b?.textContent).toContain("188.0 (± not stated)");
-    const [, torque] = Array.from(screen.getByRole("row", { name: /Peak torque/ }).children);
+    const [, , , torque] = Array.from(screen.getByRole("row", { name: /Peak torque/ }).children);
     expect(torque?.textContent).toContain("320.0 (± not stated)");
   });
 });
