@@ -1,6 +1,6 @@
 import { Formula, Method } from "@/app/methods/method";
 import { type Column, Table } from "@/components/ui/data/table";
-import { FACTOR_RULES, FACTOR_VERSION, type FactorRule } from "@/lib/measure/atmosphere";
+import { FACTOR_RULES, FACTOR_VERSION, type FactorRule } from "@/lib/measure/air/atmosphere";
 
 interface FactorRow extends FactorRule {
   id: string;

@@ -1,7 +1,7 @@
 import { and, desc, eq } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
 import { users, vehicleSheets } from "@/db/tables";
-import type { VehicleSheetFigures } from "@/lib/measure/vehicle-sheet";
+import type { VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 
 interface Place {
   workspaceId: string;

@@ -1,6 +1,6 @@
 import { boolean, date, integer, jsonb, pgTable, primaryKey, text, unique, uuid } from "drizzle-orm/pg-core";
 import type { GatePlan } from "@/lib/gates/plan";
-import type { VehicleSheetFigures } from "@/lib/measure/vehicle-sheet";
+import type { VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 import { createdAt, idColumn, instant } from "./column";
 import { users } from "./people";
 import { workspaces } from "./workspaces";

@@ -14,7 +14,7 @@ import {
   uniqueIndex,
   uuid,
 } from "drizzle-orm/pg-core";
-import type { RunTraces } from "@/lib/measure/traces";
+import type { RunTraces } from "@/lib/measure/run/traces";
 import type { RunResult } from "@/lib/measure/types";
 import { blobs } from "./blobs";
 import { createdAt, idColumn, instant, wholeNumber } from "./column";

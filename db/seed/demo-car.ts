@@ -1,4 +1,4 @@
-import type { VehicleSheetFigures } from "@/lib/measure/vehicle-sheet";
+import type { VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 import type { Sensors, SimulatedCar } from "@/lib/simulate/types";
 
 /** An invented hatch; nobody's real vehicle. */

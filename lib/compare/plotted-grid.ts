@@ -1,5 +1,5 @@
 import type { CampaignResult, DeltaRegion, RunResult, Series, SideResult } from "@/lib/measure/types";
-import { shaftPowerW } from "@/lib/measure/vehicle";
+import { shaftPowerW } from "@/lib/measure/vehicle/vehicle";
 
 /** One side on the common grid; kW and N·m at the crank, estimated. */
 export interface PlottedSide {

@@ -3,12 +3,12 @@ import type { FileRefusedError } from "@/lib/errors";
 import type { LogTable } from "@/lib/logs/types";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
 import { type CampaignEstimate, estimateCampaign, type ReadyRun } from "@/lib/measure/estimate-campaign";
-import { peakOfCurve } from "@/lib/measure/peak-of-curve";
-import { type PreparedRun, prepareRun } from "@/lib/measure/prepare-run";
+import { peakOfCurve } from "@/lib/measure/curve/peak-of-curve";
+import { type PreparedRun, prepareRun } from "@/lib/measure/run/prepare-run";
 import { roundResult } from "@/lib/measure/round-result";
-import { type PullResult, pullResult } from "@/lib/measure/run-result";
-import { sideResult } from "@/lib/measure/side-result";
-import { measureSprint } from "@/lib/measure/sprint";
+import { type PullResult, pullResult } from "@/lib/measure/run/run-result";
+import { sideResult } from "@/lib/measure/curve/side-result";
+import { measureSprint } from "@/lib/measure/sprint/sprint";
 import type {
   Campaign,
   CampaignResult,

@@ -11,7 +11,7 @@ import {
   vehicleSheets,
   workspaces,
 } from "@/db/tables";
-import type { VehicleSheetFigures } from "@/lib/measure/vehicle-sheet";
+import type { VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 import type { Role } from "@/lib/policy/actor";
 import { type Ctx, mintCtx } from "@/lib/services/ctx";
 import type { ObjectStore } from "@/storage/port";

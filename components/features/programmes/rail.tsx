@@ -7,7 +7,7 @@ import { DRIVE_WORDS } from "@/components/features/programmes/sheet-words";
 import { Quantity } from "@/components/ui/data/quantity";
 import { Card } from "@/components/ui/layout/card";
 import type { GatePlan } from "@/lib/gates/plan";
-import type { VehicleSheetFigures } from "@/lib/measure/vehicle-sheet";
+import type { VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 
 const more = "link mt-2 inline-flex min-h-6 items-center text-15";
 

@@ -9,7 +9,7 @@ import { sheetValues } from "@/components/features/programmes/sheet-values";
 import { Button } from "@/components/ui/action/button";
 import { Notice } from "@/components/ui/status/notice";
 import { showToast } from "@/components/ui/status/toast";
-import type { VehicleSheetFigures } from "@/lib/measure/vehicle-sheet";
+import type { VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 import { vehicleSheetSchema } from "@/lib/services/vehicle-sheets/schema";
 
 const schema = z.object({ sheet: vehicleSheetSchema });

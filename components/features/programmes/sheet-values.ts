@@ -1,4 +1,4 @@
-import type { Figure, VehicleSheetFigures } from "@/lib/measure/vehicle-sheet";
+import type { Figure, VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 
 interface TypedFigure {
   value: string;

@@ -2,8 +2,8 @@ import { ASPIRATION_WORDS, DRIVE_WORDS, ENGINE_WORDS } from "@/components/featur
 import { DescriptionList } from "@/components/ui/data/description-list";
 import { numberText } from "@/components/ui/data/number-text";
 import { Quantity } from "@/components/ui/data/quantity";
-import type { Figure, VehicleSheetFigures } from "@/lib/measure/vehicle-sheet";
-import { toCampaignVehicle } from "@/lib/measure/vehicle-sheet";
+import type { Figure, VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
+import { toCampaignVehicle } from "@/lib/measure/vehicle/vehicle-sheet";
 
 const NOT_KNOWN = <span className="text-ink2">not known</span>;
 

@@ -1,4 +1,4 @@
-import type { VehicleSheetFigures } from "@/lib/measure/vehicle-sheet";
+import type { VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 
 export const ENGINE_WORDS: Record<VehicleSheetFigures["engine"], string> = {
   "spark ignition": "Spark ignition (petrol)",

@@ -1,7 +1,7 @@
 import { CurveChart, type CurveQuantity } from "@/components/charts/curve-chart";
 import { TraceChart, type TraceSegment } from "@/components/charts/trace-chart";
 import { Disclosure } from "@/components/ui/layout/disclosure";
-import type { RunTraces } from "@/lib/measure/traces";
+import type { RunTraces } from "@/lib/measure/run/traces";
 import type { Note, RunResult } from "@/lib/measure/types";
 
 /** Digits behind the point by unit; others show two. */

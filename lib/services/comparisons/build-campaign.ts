@@ -1,5 +1,5 @@
 import type { Campaign, CampaignRun } from "@/lib/measure/types";
-import { toCampaignVehicle } from "@/lib/measure/vehicle-sheet";
+import { toCampaignVehicle } from "@/lib/measure/vehicle/vehicle-sheet";
 import type { CurrentInput } from "@/lib/services/comparisons/current-input";
 
 /** How the analysis calls a run, in its results and its sentences. */

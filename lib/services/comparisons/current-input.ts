@@ -5,7 +5,7 @@ import type { ComparisonInput } from "@/db/schema/comparisons";
 import { canonicalJson, digestOf } from "@/lib/canonical-json";
 import { NotFoundError } from "@/lib/errors";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
-import type { VehicleSheetFigures } from "@/lib/measure/vehicle-sheet";
+import type { VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 
 /** What counts for a comparison at this moment, with the rows it was read from. */
 export interface CurrentInput {

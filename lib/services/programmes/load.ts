@@ -3,7 +3,7 @@ import { isShared, type ProgrammeRow, selectProgramme } from "@/db/queries/progr
 import { selectVehicleSheet } from "@/db/queries/vehicle-sheets";
 import { NotFoundError } from "@/lib/errors";
 import type { GatePlan } from "@/lib/gates/plan";
-import type { VehicleSheetFigures } from "@/lib/measure/vehicle-sheet";
+import type { VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 
 interface Version {

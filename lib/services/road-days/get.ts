@@ -1,6 +1,6 @@
 import { type RoadDayRow, selectNewestRoadDay, selectStripNames } from "@/db/queries/road-days";
 import { selectDrivableRevisions } from "@/db/queries/runs";
-import { toCampaignVehicle } from "@/lib/measure/vehicle-sheet";
+import { toCampaignVehicle } from "@/lib/measure/vehicle/vehicle-sheet";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { type LoadedProgramme, loadProgramme } from "@/lib/services/programmes/load";
 import { loadRoadDay } from "@/lib/services/road-days/load";

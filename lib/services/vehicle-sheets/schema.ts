@@ -1,6 +1,6 @@
 import { z } from "zod";
 import { readTypedNumber } from "@/lib/format/typed-number";
-import type { VehicleSheetFigures } from "@/lib/measure/vehicle-sheet";
+import type { VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 import { optionalNumber, requiredNumber } from "@/lib/services/number-field";
 
 /** The limits only catch slips of the keyboard; common practice, no source. */

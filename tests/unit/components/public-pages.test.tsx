@@ -4,7 +4,7 @@ import { AirMethods } from "@/app/methods/air-methods";
 import { ComparisonMethods } from "@/app/methods/comparison-methods";
 import { METHOD_CONTENTS } from "@/app/methods/contents";
 import { MotionMethods } from "@/app/methods/motion-methods";
-import { FACTOR_RULES } from "@/lib/measure/atmosphere";
+import { FACTOR_RULES } from "@/lib/measure/air/atmosphere";
 
 const markup = renderToStaticMarkup(
   <>

@@ -12,7 +12,7 @@ import {
   traceAt,
   trapSpeedMps,
   wayCrossingS,
-} from "@/lib/measure/acceleration";
+} from "@/lib/measure/sprint/acceleration";
 import { checkValue, checkValues } from "../../support/check-values";
 import { expectClose } from "../../support/expect-close";
 

@@ -5,7 +5,7 @@ import {
   densityAltitudeM,
   nwsDensityAltitudeM,
   standardAtmosphere,
-} from "@/lib/measure/air-density";
+} from "@/lib/measure/air/air-density";
 import {
   airFactor,
   chooseFactor,
@@ -13,7 +13,7 @@ import {
   frictionFactor,
   fuelQuantityMgPerLCycle,
   weatherFactor,
-} from "@/lib/measure/atmosphere";
+} from "@/lib/measure/air/atmosphere";
 import type { FactorId } from "@/lib/measure/types";
 import {
   cfr1065SaturationKpa,
@@ -23,7 +23,7 @@ import {
   saturationVapourKpa,
   VAPOUR_FORMS,
   vapourPressureKpa,
-} from "@/lib/measure/vapour-pressure";
+} from "@/lib/measure/air/vapour-pressure";
 import { FOOT_M } from "@/lib/units/constants";
 import { checkValue, checkValues } from "../../support/check-values";
 import { expectClose } from "../../support/expect-close";

@@ -14,14 +14,14 @@ import {
   roadLoadInWind,
   roadLoadN,
   twoWayWindResidualN,
-} from "@/lib/measure/road-load";
+} from "@/lib/measure/road/road-load";
 import {
   countingStepMps,
   driveSlip,
   powerDeviationW,
   slopeDeviation,
   stepDeviationMps,
-} from "@/lib/measure/speed-sensor";
+} from "@/lib/measure/speed/speed-sensor";
 import { savitzkyGolayWeights } from "@/lib/signal/savitzky-golay";
 import { HORSEPOWER_W, MPH_MPS, POUND_FORCE_N, POUND_KG, RADIAN_DEG } from "@/lib/units/constants";
 import { checkValue, checkValues } from "../../support/check-values";

@@ -2,7 +2,7 @@ import { readFileSync } from "node:fs";
 import { describe, expect, it } from "vitest";
 import { readLog } from "@/lib/logs/read-log";
 import type { LogTable } from "@/lib/logs/types";
-import { measureSprint, rollOnTimes, type SprintResult } from "@/lib/measure/sprint";
+import { measureSprint, rollOnTimes, type SprintResult } from "@/lib/measure/sprint/sprint";
 import type { CampaignVehicle } from "@/lib/measure/types";
 import { expectClose } from "../../support/expect-close";
 

@@ -1,6 +1,6 @@
 import { describe, expect, it } from "vitest";
-import { boostOvershoot, injectorDutyPct, lambdaFromAirFuel } from "@/lib/measure/engine-channels";
-import { gradeForceN, roadLoadFromKmh, roadLoadN } from "@/lib/measure/road-load";
+import { boostOvershoot, injectorDutyPct, lambdaFromAirFuel } from "@/lib/measure/engine/engine-channels";
+import { gradeForceN, roadLoadFromKmh, roadLoadN } from "@/lib/measure/road/road-load";
 import type { CampaignVehicle } from "@/lib/measure/types";
 import {
   circumferenceAtSpeed,
@@ -15,7 +15,7 @@ import {
   shaftPowerW,
   shaftTorqueNm,
   wheelPowerW,
-} from "@/lib/measure/vehicle";
+} from "@/lib/measure/vehicle/vehicle";
 import {
   HORSEPOWER_W,
   METRIC_HORSEPOWER_W,

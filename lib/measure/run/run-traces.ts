@@ -1,5 +1,5 @@
 import type { KnownChannel, LogTable } from "@/lib/logs/types";
-import type { RunTraces, TraceChannel } from "@/lib/measure/traces";
+import type { RunTraces, TraceChannel } from "@/lib/measure/run/traces";
 import type { RunResult } from "@/lib/measure/types";
 
 /** A trace has at most this many points a channel; each of half as many columns keeps its lowest and highest value. */

@@ -1,5 +1,5 @@
-import { meanCurve } from "@/lib/measure/mean-curve";
-import { peakOfCurve } from "@/lib/measure/peak-of-curve";
+import { meanCurve } from "@/lib/measure/curve/mean-curve";
+import { peakOfCurve } from "@/lib/measure/curve/peak-of-curve";
 import type { Series, SideResult } from "@/lib/measure/types";
 import { RPM_RADPS } from "@/lib/units/constants";
 

@@ -1,4 +1,4 @@
-import { dryPressureKpa, vapourPressureKpa } from "@/lib/measure/vapour-pressure";
+import { dryPressureKpa, vapourPressureKpa } from "@/lib/measure/air/vapour-pressure";
 import { FOOT_M, STANDARD_GRAVITY_MPS2, ZERO_CELSIUS_K } from "@/lib/units/constants";
 
 /** Specific gas constants, J/(kg·K): public code for air data; dry air and water vapour. */

@@ -1,4 +1,4 @@
-import type { RunSignals } from "@/lib/measure/run-signals";
+import type { RunSignals } from "@/lib/measure/run/run-signals";
 import type { CampaignVehicle, Reason, Span } from "@/lib/measure/types";
 import { median, quantile } from "@/lib/signal/statistics";
 

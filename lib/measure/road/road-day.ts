@@ -1,4 +1,4 @@
-import { type HeightProfile, heightProfile } from "@/lib/measure/height-profile";
+import { type HeightProfile, heightProfile } from "@/lib/measure/road/height-profile";
 import {
   addObservations,
   addPriors,
@@ -8,8 +8,8 @@ import {
   resistanceRow,
   roadLayout,
   type Scatter,
-} from "@/lib/measure/road-equations";
-import type { RoadObservations, RoadRun } from "@/lib/measure/road-observations";
+} from "@/lib/measure/road/road-equations";
+import type { RoadObservations, RoadRun } from "@/lib/measure/road/road-observations";
 import {
   type NormalEquations,
   type NormalSolution,

@@ -1,5 +1,5 @@
-import type { SampledChannel } from "@/lib/measure/run-signals";
-import { chooseSmoothing, type SpeedStretch, smoothSpeed, speedStretch } from "@/lib/measure/smooth-speed";
+import type { SampledChannel } from "@/lib/measure/run/run-signals";
+import { chooseSmoothing, type SpeedStretch, smoothSpeed, speedStretch } from "@/lib/measure/speed/smooth-speed";
 import {
   between,
   type ChannelModel,
@@ -9,7 +9,7 @@ import {
   type SpeedSource,
   slips,
   tipInS,
-} from "@/lib/measure/speed-model";
+} from "@/lib/measure/speed/speed-model";
 import {
   addRow,
   type NormalSolution,

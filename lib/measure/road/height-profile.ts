@@ -1,4 +1,4 @@
-import type { RoadObservations, RoadRun } from "@/lib/measure/road-observations";
+import type { RoadObservations, RoadRun } from "@/lib/measure/road/road-observations";
 import { addRow, type NormalEquations } from "@/lib/signal/normal-equations";
 import { type SplineBasis, splineBasis, splineWeights } from "@/lib/signal/penalised-spline";
 

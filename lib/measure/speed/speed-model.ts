@@ -1,5 +1,5 @@
-import type { Segments } from "@/lib/measure/find-segments";
-import type { RunSignals, SampledChannel } from "@/lib/measure/run-signals";
+import type { Segments } from "@/lib/measure/run/find-segments";
+import type { RunSignals, SampledChannel } from "@/lib/measure/run/run-signals";
 
 /** The channels that tell how fast the car goes. */
 export const SPEED_SOURCES = ["undriven", "gps", "driven", "engineSpeed"] as const;

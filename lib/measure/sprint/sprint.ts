@@ -7,9 +7,9 @@ import {
   traceAt,
   trapSpeedMps,
   wayCrossingS,
-} from "@/lib/measure/acceleration";
-import { runSignals } from "@/lib/measure/run-signals";
-import { type SprintTrace, sprintTrace } from "@/lib/measure/sprint-trace";
+} from "@/lib/measure/sprint/acceleration";
+import { runSignals } from "@/lib/measure/run/run-signals";
+import { type SprintTrace, sprintTrace } from "@/lib/measure/sprint/sprint-trace";
 import type { CampaignVehicle, Note, Span } from "@/lib/measure/types";
 import { KMH_MPS, MPH_MPS } from "@/lib/units/constants";
 

@@ -1,4 +1,4 @@
-import type { RunSignals, SampledChannel } from "@/lib/measure/run-signals";
+import type { RunSignals, SampledChannel } from "@/lib/measure/run/run-signals";
 import { lowerBound } from "@/lib/signal/local-quadratic";
 import { median, robustDeviation } from "@/lib/signal/statistics";
 import { RADIAN_DEG } from "@/lib/units/constants";

@@ -1,4 +1,4 @@
-import type { PullSpeed } from "@/lib/measure/pull-speed";
+import type { PullSpeed } from "@/lib/measure/speed/pull-speed";
 import { splineAt } from "@/lib/signal/penalised-spline";
 import { RPM_RADPS } from "@/lib/units/constants";
 

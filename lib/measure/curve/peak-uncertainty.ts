@@ -1,8 +1,8 @@
 import type { CampaignEstimate } from "@/lib/measure/estimate-campaign";
-import type { GridCurve } from "@/lib/measure/pull-curve";
-import { positionAt } from "@/lib/measure/road-observations";
+import type { GridCurve } from "@/lib/measure/curve/pull-curve";
+import { positionAt } from "@/lib/measure/road/road-observations";
 import type { CampaignVehicle } from "@/lib/measure/types";
-import { drivelineFigures } from "@/lib/measure/vehicle";
+import { drivelineFigures } from "@/lib/measure/vehicle/vehicle";
 import { bandedSolve } from "@/lib/signal/banded-cholesky";
 import { splineWeights } from "@/lib/signal/penalised-spline";
 

@@ -1,10 +1,10 @@
-import { chooseFactor, weatherFactor } from "@/lib/measure/atmosphere";
+import { chooseFactor, weatherFactor } from "@/lib/measure/air/atmosphere";
 import type { CampaignEstimate } from "@/lib/measure/estimate-campaign";
-import { peakOfCurve } from "@/lib/measure/peak-of-curve";
-import { COVERAGE, combined, powerBudget } from "@/lib/measure/peak-uncertainty";
-import { type GridCurve, gridCurve, pullPoints } from "@/lib/measure/pull-curve";
-import { SPEED_SOURCES, type SpeedSource } from "@/lib/measure/speed-model";
-import { rollOnTimes } from "@/lib/measure/sprint";
+import { peakOfCurve } from "@/lib/measure/curve/peak-of-curve";
+import { COVERAGE, combined, powerBudget } from "@/lib/measure/curve/peak-uncertainty";
+import { type GridCurve, gridCurve, pullPoints } from "@/lib/measure/curve/pull-curve";
+import { SPEED_SOURCES, type SpeedSource } from "@/lib/measure/speed/speed-model";
+import { rollOnTimes } from "@/lib/measure/sprint/sprint";
 import type {
   Campaign,
   CampaignRun,
@@ -14,7 +14,7 @@ import type {
   PowerCurve,
   RunResult,
 } from "@/lib/measure/types";
-import { rpmPerMps } from "@/lib/measure/vehicle";
+import { rpmPerMps } from "@/lib/measure/vehicle/vehicle";
 import { evaluateSpline } from "@/lib/signal/penalised-spline";
 import { RPM_RADPS } from "@/lib/units/constants";
 

@@ -1,10 +1,10 @@
 import { FileRefusedError } from "@/lib/errors";
 import { requireRoadSpeed } from "@/lib/logs/road-speed";
 import type { LogTable } from "@/lib/logs/types";
-import { findSegments, type Segments } from "@/lib/measure/find-segments";
-import { type RunSignals, runSignals } from "@/lib/measure/run-signals";
+import { findSegments, type Segments } from "@/lib/measure/run/find-segments";
+import { type RunSignals, runSignals } from "@/lib/measure/run/run-signals";
 import type { CampaignRun, CampaignVehicle, Note, Reason } from "@/lib/measure/types";
-import { rpmPerMps } from "@/lib/measure/vehicle";
+import { rpmPerMps } from "@/lib/measure/vehicle/vehicle";
 
 /** Below this rate an acceleration over half a second is guesswork (campaign.md start value). */
 const LEAST_RATE_HZ = 5;

@@ -1,5 +1,5 @@
-import type { HeightProfile, SparseRow } from "@/lib/measure/height-profile";
-import type { RoadObservations, RoadRun } from "@/lib/measure/road-observations";
+import type { HeightProfile, SparseRow } from "@/lib/measure/road/height-profile";
+import type { RoadObservations, RoadRun } from "@/lib/measure/road/road-observations";
 import { addRow, type NormalEquations } from "@/lib/signal/normal-equations";
 import { median } from "@/lib/signal/statistics";
 import { STANDARD_GRAVITY_MPS2 } from "@/lib/units/constants";

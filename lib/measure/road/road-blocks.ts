@@ -1,5 +1,5 @@
-import type { RunSignals } from "@/lib/measure/run-signals";
-import { between, SPEED_SOURCES, type SpeedModel } from "@/lib/measure/speed-model";
+import type { RunSignals } from "@/lib/measure/run/run-signals";
+import { between, SPEED_SOURCES, type SpeedModel } from "@/lib/measure/speed/speed-model";
 
 /** Mean speed and acceleration over a short block, by a weighted straight line through every speed channel. */
 export interface SpeedBlock {

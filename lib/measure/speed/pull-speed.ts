@@ -1,11 +1,11 @@
-import { adaptiveSmoothing } from "@/lib/measure/adaptive-smoothing";
+import { adaptiveSmoothing } from "@/lib/measure/speed/adaptive-smoothing";
 import {
   chooseSmoothing,
   type SpeedSeries,
   type SpeedStretch,
   smoothSpeed,
   speedStretch,
-} from "@/lib/measure/smooth-speed";
+} from "@/lib/measure/speed/smooth-speed";
 import {
   between,
   type ChannelModel,
@@ -13,7 +13,7 @@ import {
   type SpeedModel,
   type SpeedRun,
   tipInS,
-} from "@/lib/measure/speed-model";
+} from "@/lib/measure/speed/speed-model";
 import type { Span } from "@/lib/measure/types";
 import { type SplineFit, splineAt } from "@/lib/signal/penalised-spline";
 import { median } from "@/lib/signal/statistics";

@@ -1,4 +1,4 @@
-import type { SampledChannel } from "@/lib/measure/run-signals";
+import type { SampledChannel } from "@/lib/measure/run/run-signals";
 import { lowerBound } from "@/lib/signal/local-quadratic";
 import { mean, standardDeviation } from "@/lib/signal/statistics";
 
