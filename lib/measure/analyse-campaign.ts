@@ -2,12 +2,12 @@ import { type ComparedPull, compareSides } from "@/lib/compare/compare-sides";
 import type { FileRefusedError } from "@/lib/errors";
 import type { LogTable } from "@/lib/logs/types";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
-import { type CampaignEstimate, estimateCampaign, type ReadyRun } from "@/lib/measure/estimate-campaign";
 import { peakOfCurve } from "@/lib/measure/curve/peak-of-curve";
-import { type PreparedRun, prepareRun } from "@/lib/measure/run/prepare-run";
-import { roundResult } from "@/lib/measure/round-result";
-import { type PullResult, pullResult } from "@/lib/measure/run/run-result";
 import { sideResult } from "@/lib/measure/curve/side-result";
+import { type CampaignEstimate, estimateCampaign, type ReadyRun } from "@/lib/measure/estimate-campaign";
+import { roundResult } from "@/lib/measure/round-result";
+import { type PreparedRun, prepareRun } from "@/lib/measure/run/prepare-run";
+import { type PullResult, pullResult } from "@/lib/measure/run/run-result";
 import { measureSprint } from "@/lib/measure/sprint/sprint";
 import type {
   Campaign,

@@ -1,14 +1,19 @@
 import { airDensityKgm3 } from "@/lib/measure/air/air-density";
-import { calibrateSpeed } from "@/lib/measure/speed/calibrate-speed";
 import type { Driveline } from "@/lib/measure/curve/pull-curve";
-import { findSlipping, type PullSpeed, pullSpeeds } from "@/lib/measure/speed/pull-speed";
 import { estimateRoadDay, type RoadDay } from "@/lib/measure/road/road-day";
 import { positionAt, type RoadRun, roadObservations } from "@/lib/measure/road/road-observations";
-import type { RunSignals } from "@/lib/measure/run/run-signals";
-import type { SpeedModel, SpeedRun, SpeedSource } from "@/lib/measure/speed/speed-model";
 import { stripTracks } from "@/lib/measure/road/strip-position";
+import type { RunSignals } from "@/lib/measure/run/run-signals";
+import { calibrateSpeed } from "@/lib/measure/speed/calibrate-speed";
+import { findSlipping, type PullSpeed, pullSpeeds } from "@/lib/measure/speed/pull-speed";
+import type { SpeedModel, SpeedRun, SpeedSource } from "@/lib/measure/speed/speed-model";
 import type { CampaignRun, CampaignVehicle } from "@/lib/measure/types";
-import { drivelineFigures, rollingCircumference, rpmPerMps, type StatedFigure } from "@/lib/measure/vehicle/vehicle";
+import {
+  drivelineFigures,
+  rollingCircumference,
+  rpmPerMps,
+  type StatedFigure,
+} from "@/lib/measure/vehicle/vehicle";
 import { RPM_RADPS, STANDARD_GRAVITY_MPS2 } from "@/lib/units/constants";
 
 /** A run that carries something to estimate from. */

@@ -1,5 +1,5 @@
-import type { CampaignVehicle, FactorChoice, FactorId, RunWeather } from "@/lib/measure/types";
 import { dryPressureKpa } from "@/lib/measure/air/vapour-pressure";
+import type { CampaignVehicle, FactorChoice, FactorId, RunWeather } from "@/lib/measure/types";
 import { INHG_KPA } from "@/lib/units/constants";
 
 /** What decides which factor fits a vehicle. */

@@ -1,5 +1,5 @@
-import type { CampaignEstimate } from "@/lib/measure/estimate-campaign";
 import type { GridCurve } from "@/lib/measure/curve/pull-curve";
+import type { CampaignEstimate } from "@/lib/measure/estimate-campaign";
 import { positionAt } from "@/lib/measure/road/road-observations";
 import type { CampaignVehicle } from "@/lib/measure/types";
 import { drivelineFigures } from "@/lib/measure/vehicle/vehicle";

@@ -1,8 +1,8 @@
-import type { Segments } from "@/lib/measure/run/find-segments";
 import { coastBlocks } from "@/lib/measure/road/road-blocks";
+import { type StripTrack, wayAt } from "@/lib/measure/road/strip-position";
+import type { Segments } from "@/lib/measure/run/find-segments";
 import type { RunSignals, SampledChannel } from "@/lib/measure/run/run-signals";
 import { between, type SpeedModel, tipInS } from "@/lib/measure/speed/speed-model";
-import { type StripTrack, wayAt } from "@/lib/measure/road/strip-position";
 import type { SplineFit } from "@/lib/signal/penalised-spline";
 import { splineAt } from "@/lib/signal/penalised-spline";
 

@@ -1,8 +1,8 @@
 import { chooseFactor, weatherFactor } from "@/lib/measure/air/atmosphere";
-import type { CampaignEstimate } from "@/lib/measure/estimate-campaign";
 import { peakOfCurve } from "@/lib/measure/curve/peak-of-curve";
 import { COVERAGE, combined, powerBudget } from "@/lib/measure/curve/peak-uncertainty";
 import { type GridCurve, gridCurve, pullPoints } from "@/lib/measure/curve/pull-curve";
+import type { CampaignEstimate } from "@/lib/measure/estimate-campaign";
 import { SPEED_SOURCES, type SpeedSource } from "@/lib/measure/speed/speed-model";
 import { rollOnTimes } from "@/lib/measure/sprint/sprint";
 import type {

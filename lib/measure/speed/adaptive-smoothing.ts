@@ -1,4 +1,9 @@
-import { meanDensity, type Smoothing, type SpeedStretch, smoothSpeed } from "@/lib/measure/speed/smooth-speed";
+import {
+  meanDensity,
+  type Smoothing,
+  type SpeedStretch,
+  smoothSpeed,
+} from "@/lib/measure/speed/smooth-speed";
 import { bandedInverse } from "@/lib/signal/banded-inverse";
 import { evaluateSpline, type SplineFit } from "@/lib/signal/penalised-spline";
 

@@ -1,5 +1,10 @@
 import type { SampledChannel } from "@/lib/measure/run/run-signals";
-import { chooseSmoothing, type SpeedStretch, smoothSpeed, speedStretch } from "@/lib/measure/speed/smooth-speed";
+import {
+  chooseSmoothing,
+  type SpeedStretch,
+  smoothSpeed,
+  speedStretch,
+} from "@/lib/measure/speed/smooth-speed";
 import {
   between,
   type ChannelModel,

@@ -1,6 +1,6 @@
+import type { RunSignals, SampledChannel } from "@/lib/measure/run/run-signals";
 import { type MotionTrace, motionTrace } from "@/lib/measure/sprint/acceleration";
 import { findLaunch, type Launch } from "@/lib/measure/sprint/launch";
-import type { RunSignals, SampledChannel } from "@/lib/measure/run/run-signals";
 import type { Note } from "@/lib/measure/types";
 import { crossCorrelationLag } from "@/lib/signal/cross-correlation";
 import { localQuadratic, lowerBound } from "@/lib/signal/local-quadratic";

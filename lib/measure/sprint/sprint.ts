@@ -1,4 +1,5 @@
 import type { LogTable } from "@/lib/logs/types";
+import { runSignals } from "@/lib/measure/run/run-signals";
 import {
   INITIAL_MOVEMENT_M,
   type MotionTrace,
@@ -8,7 +9,6 @@ import {
   trapSpeedMps,
   wayCrossingS,
 } from "@/lib/measure/sprint/acceleration";
-import { runSignals } from "@/lib/measure/run/run-signals";
 import { type SprintTrace, sprintTrace } from "@/lib/measure/sprint/sprint-trace";
 import type { CampaignVehicle, Note, Span } from "@/lib/measure/types";
 import { KMH_MPS, MPH_MPS } from "@/lib/units/constants";

@@ -14,7 +14,6 @@ import {
   fuelQuantityMgPerLCycle,
   weatherFactor,
 } from "@/lib/measure/air/atmosphere";
-import type { FactorId } from "@/lib/measure/types";
 import {
   cfr1065SaturationKpa,
   dewPointC,
@@ -24,6 +23,7 @@ import {
   VAPOUR_FORMS,
   vapourPressureKpa,
 } from "@/lib/measure/air/vapour-pressure";
+import type { FactorId } from "@/lib/measure/types";
 import { FOOT_M } from "@/lib/units/constants";
 import { checkValue, checkValues } from "../../support/check-values";
 import { expectClose } from "../../support/expect-close";
