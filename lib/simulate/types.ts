@@ -40,6 +40,13 @@ export interface Sensors {
   shuffleRpm: number;
 }
 
+/** One thing the driver does after the pull, until a speed or for a time. "clutch": gear stays in, clutch open; "hold": part load. */
+export interface AfterPull {
+  what: "neutral" | "clutch" | "overrun" | "brake" | "hold";
+  toMps?: number;
+  seconds?: number;
+}
+
 export interface RunConditions {
   direction: 1 | -1;
   /** Strip position at the start of the log, m. */
@@ -58,6 +65,14 @@ export interface RunConditions {
   heightM: (s: number) => number;
   coastToMps: number;
   spin: { atRpm: number; slip: number; lengthS: number } | null;
+  /** Absent: neutral, rolling down to `coastToMps`. */
+  after?: readonly AfterPull[];
+  /** How long the pedal takes to go down; 0.12 s when absent. */
+  pedalRampS?: number;
+  /** Full load in a lower gear (its ratio over the pull's) up to the pull's first speed, then a shift; `pedalS` counts from there. */
+  approachRatio?: number;
+  /** Share by which torque waves with engine speed (period 350 1/min), as a tuned intake makes it. */
+  ripple?: number;
 }
 
 export interface RunTrace {
@@ -70,6 +85,10 @@ export interface RunTrace {
   pedal: Float64Array;
   slip: Float64Array;
   neutral: Uint8Array;
+  /** Gear in the box: 0 none, 1 the pull's, 2 the one of the approach. */
+  engaged: Uint8Array;
+  /** When the pedal goes down for the pull, s. */
+  pedalS: number;
   length: number;
 }
 

@@ -1,10 +1,12 @@
 import type { LogTable } from "@/lib/logs/types";
-import type { Campaign, FactorChoice } from "@/lib/measure/types";
+import type { Campaign } from "@/lib/measure/types";
 import { randomStream } from "@/lib/signal/random";
 import { driveRun } from "@/lib/simulate/drive-run";
 import { recordRun } from "@/lib/simulate/record-run";
-import type { RunConditions, Sensors, SimulatedCar } from "@/lib/simulate/types";
+import type { AfterPull, RunConditions, Sensors, SimulatedCar } from "@/lib/simulate/types";
 import { SIMULATED_CARS } from "./simulated-cars";
+import { gainBand, referenceTorque, weatherFactor } from "./simulated-truth";
+import { type Logger, worsenLog } from "./worsen-log";
 
 /** What a simulated campaign varies; everything not stated comes from `seed`. */
 export interface Scenario {
@@ -26,6 +28,26 @@ export interface Scenario {
   spinInRuns: number[];
   coastToMps: number;
   sensors: Partial<Sensors>;
+  /** Gear of the pull by the car's sheet; null: the car's usual one. */
+  gear: number | null;
+  /** Changes of the car's physics that its sheet does not know. */
+  physics: Partial<SimulatedCar>;
+  /** Rise per metre of the whole strip; null: drawn, about 0.1 %. */
+  tilt: number | null;
+  /** What a run's driver does after the pull; null: neutral down to `coastToMps`. */
+  after: ((run: number) => readonly AfterPull[]) | null;
+  pedalRampS: number;
+  approachRatio: number | null;
+  ripple: number;
+  /** Test mass typed over the true one. */
+  massTypedOverTrue: number;
+  /** How far each run's mass lies above the vehicle's, kg; typed with the run. */
+  extraMassKg: ((run: number) => number) | null;
+  /** One of + and − per coast-down run without side, driven after the others. */
+  coastDowns: string;
+  weatherKnown: boolean;
+  /** What the logger does beyond the sensors: jitter, dropouts, repeats. */
+  logger: Partial<Logger>;
 }
 
 const BASE_SCENARIO: Scenario = {
@@ -46,6 +68,18 @@ const BASE_SCENARIO: Scenario = {
   spinInRuns: [],
   coastToMps: 15,
   sensors: {},
+  gear: null,
+  physics: {},
+  tilt: null,
+  after: null,
+  pedalRampS: 0.12,
+  approachRatio: null,
+  ripple: 0,
+  massTypedOverTrue: 1,
+  extraMassKg: null,
+  coastDowns: "",
+  weatherKnown: true,
+  logger: {},
 };
 
 const BASE_SENSORS: Sensors = {
@@ -88,56 +122,6 @@ export interface SimulatedCampaign {
   starts: number[];
 }
 
-function weatherFactor(factor: FactorChoice, tempC: number, pressureHpa: number, rhPct: number): number {
-  const dry = pressureHpa - (rhPct / 100) * 6.1094 * Math.exp((17.625 * tempC) / (tempC + 243.04));
-  const hot = (tempC + 273) / 298;
-  if (factor === "ci_turbo_15") return ((990 / dry) ** 0.7 * hot ** 1.5) ** (0.036 * 52 - 1.14);
-  return factor === "none" ? 1 : 1.18 * (990 / dry) * Math.sqrt(hot) - 0.18;
-}
-
-function band(scenario: Scenario): (rpm: number) => number {
-  const edge = 200;
-  const ramp = (u: number) => (u <= 0 ? 0 : u >= 1 ? 1 : 0.5 - 0.5 * Math.cos(Math.PI * u));
-  return (rpm) =>
-    (scenario.gainPct / 100) *
-    ramp((rpm - scenario.gainFromRpm) / edge + 0.5) *
-    ramp((scenario.gainToRpm - rpm) / edge + 0.5);
-}
-
-function referenceTorque(
-  car: SimulatedCar,
-  gain: (rpm: number) => number,
-  grid: number[],
-): (number | null)[] {
-  const still: RunConditions = {
-    direction: 1,
-    startM: 0,
-    pedalS: 1,
-    tempC: 25,
-    pressureHpa: 990,
-    rhPct: 0,
-    windMps: 0,
-    gustMps: 0,
-    gustTimeS: 3,
-    powerFactor: 1,
-    gain,
-    weatherFactor: 1,
-    heightM: () => 0,
-    coastToMps: 1e9,
-    spin: null,
-  };
-  const trace = driveRun(car, still, randomStream(0));
-  return grid.map((rpm) => {
-    for (let i = 1; i < trace.length; i++) {
-      if (trace.t[i] < 1.13 || trace.rpm[i] < rpm) continue;
-      if (trace.rpm[i - 1] > rpm || trace.pedal[i] < 99) return null;
-      const u = (rpm - trace.rpm[i - 1]) / (trace.rpm[i] - trace.rpm[i - 1]);
-      return trace.torque[i - 1] + u * (trace.torque[i] - trace.torque[i - 1]);
-    }
-    return null;
-  });
-}
-
 /** Simulates one campaign with known truth; same scenario and seed, same campaign. */
 export function simulateCampaign(changes: Partial<Scenario>, seed: number): SimulatedCampaign {
   const scenario = { ...BASE_SCENARIO, ...changes };
@@ -153,22 +137,34 @@ export function simulateCampaign(changes: Partial<Scenario>, seed: number): Simu
     height: 2 * scenario.undulation * height,
     phase: 2 * Math.PI * random.nextUniform(),
   }));
-  const tilt = 0.001 * random.nextNormal();
+  const drawnTilt = 0.001 * random.nextNormal();
+  const tilt = scenario.tilt ?? drawnTilt;
   const heightM = (s: number) =>
     tilt * s + waves.reduce((sum, w) => sum + w.height * Math.sin((2 * Math.PI * s) / w.length + w.phase), 0);
-  const gain = band(scenario);
+  const gain = gainBand(scenario);
+  const gear = scenario.gear ?? model.gear;
+  const ratios = model.vehicle.gear_ratios ?? [];
+  const car: SimulatedCar = {
+    ...model.car,
+    totalRatio: (model.car.totalRatio * ratios[gear - 1]) / ratios[model.gear - 1],
+    ...scenario.physics,
+  };
+  const typedMassKg = Math.round(car.massKg * scenario.massTypedOverTrue);
   const logs = new Map<string, LogTable>();
   const starts: number[] = [];
   const runs: Campaign["runs"] = [];
   const factors: Record<string, number[]> = { A: [], B: [] };
   const pressureHpa = 1000 + 6 * random.nextNormal();
-  [...scenario.order].forEach((side, i) => {
+  const directions = scenario.directions + scenario.coastDowns;
+  [...directions].forEach((sense, i) => {
+    const side = scenario.order.at(i) ?? null;
     const id = `r${String(i + 1).padStart(2, "0")}`;
-    const direction = scenario.directions[i] === "+" ? 1 : -1;
+    const direction = sense === "+" ? 1 : -1;
     const tempC = scenario.tempC + 0.12 * i;
     const rhPct = 55 - 0.3 * i;
     const powerFactor = 1 + scenario.driftPerRun * i + scenario.runSigma * random.nextNormal();
-    factors[side].push(powerFactor);
+    if (side !== null) factors[side].push(powerFactor);
+    const extraKg = scenario.extraMassKg?.(i) ?? 0;
     const run: RunConditions = {
       direction,
       startM: direction === 1 ? 60 + 40 * random.nextNormal() : 2780 + 40 * random.nextNormal(),
@@ -185,47 +181,55 @@ export function simulateCampaign(changes: Partial<Scenario>, seed: number): Simu
       heightM,
       coastToMps: scenario.coastToMps,
       spin: scenario.spinInRuns.includes(i) ? { atRpm: 2600, slip: 0.08, lengthS: 0.7 } : null,
+      after: side === null ? undefined : scenario.after?.(i),
+      pedalRampS: scenario.pedalRampS,
+      approachRatio: scenario.approachRatio ?? undefined,
+      ripple: scenario.ripple,
     };
     starts.push(run.startM);
-    logs.set(id, recordRun(driveRun(model.car, run, random), run, sensors, random));
+    const trace = driveRun({ ...car, massKg: car.massKg + extraKg }, run, random);
+    const log = recordRun(trace, { ...run, pedalS: trace.pedalS }, sensors, random);
+    logs.set(id, worsenLog(log, trace, gear, scenario.logger, randomStream(seed, 500 + i)));
     runs.push({
       id,
       file: `${id}.csv`,
-      kind: "pull",
+      kind: side === null ? "coast-down" : "pull",
       side,
       leg: direction === 1 ? "out" : "back",
       order: i + 1,
-      gear: model.gear,
-      weather: {
-        temp_c: Math.round(10 * tempC) / 10,
-        pressure_hpa: Math.round(pressureHpa),
-        rh_pct: Math.round(rhPct),
-      },
+      gear,
+      ...(scenario.extraMassKg && { mass_kg: typedMassKg + extraKg }),
+      ...(scenario.weatherKnown && {
+        weather: {
+          temp_c: Math.round(10 * tempC) / 10,
+          pressure_hpa: Math.round(pressureHpa),
+          rh_pct: Math.round(rhPct),
+        },
+      }),
     });
   });
-  const speedKmh = ((3000 * Math.PI) / 30 / model.car.totalRatio) * model.car.radiusM * 3.6 * 0.9975;
+  const speedKmh = ((3000 * Math.PI) / 30 / car.totalRatio) * car.radiusM * 3.6 * 0.9975;
   const campaign: Campaign = {
     campaign: 1,
     vehicle: {
       ...model.vehicle,
-      speed_at_rpm: { gear: model.gear, rpm: 3000, speed_kmh: Math.round(10 * speedKmh) / 10 },
+      mass_kg: typedMassKg,
+      speed_at_rpm: { gear, rpm: 3000, speed_kmh: Math.round(10 * speedKmh) / 10 },
       ...(scenario.known && {
-        engine_inertia_kgm2: model.car.engineInertiaKgm2,
-        wheel_inertia_kgm2: model.car.wheelInertiaKgm2,
-        mesh_efficiency: model.car.efficiency,
+        engine_inertia_kgm2: car.engineInertiaKgm2,
+        wheel_inertia_kgm2: car.wheelInertiaKgm2,
+        mesh_efficiency: car.efficiency,
       }),
     },
     runs,
     compare: { a: "A", b: "B" },
     settings: { factor: model.factor, rpm_step: 50, level: 0.95, seed: 1 },
   };
-  const [lo, hi] = [Math.ceil((model.car.startRpm + 300) / 100) * 100, model.car.redlineRpm - 200];
-  const rpm = Array.from(
-    { length: (hi + 200 - model.car.startRpm) / 50 + 1 },
-    (_, i) => model.car.startRpm + 50 * i,
-  );
-  const a = referenceTorque(model.car, () => 0, rpm);
-  const b = referenceTorque(model.car, gain, rpm);
+  const [lo, hi] = [Math.ceil((car.startRpm + 300) / 100) * 100, car.redlineRpm - 200];
+  const rpm = Array.from({ length: (hi + 200 - car.startRpm) / 50 + 1 }, (_, i) => car.startRpm + 50 * i);
+  const manner = { ripple: scenario.ripple, pedalRampS: scenario.pedalRampS };
+  const a = referenceTorque(car, () => 0, rpm, manner);
+  const b = referenceTorque(car, gain, rpm, manner);
   const average = (values: number[]) => values.reduce((sum, x) => sum + x, 0) / values.length;
   const meanPowerFactor = { A: average(factors.A), B: average(factors.B) };
   return {
