@@ -1,4 +1,4 @@
-import { and, asc, desc, eq, inArray, ne, or, sql } from "drizzle-orm";
+import { and, asc, desc, eq, inArray, isNull, ne, or, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
 import { comparisonResults, comparisons, revisions, roadDays, runs, users } from "@/db/tables";
 
@@ -15,7 +15,12 @@ export async function insertComparison(
     .insert(comparisons)
     .values(values)
     .onConflictDoNothing({
-      target: [comparisons.revisionAId, comparisons.revisionBId, comparisons.settingsSha256],
+      target: [
+        comparisons.revisionAId,
+        comparisons.revisionBId,
+        comparisons.nullTestRoadDayId,
+        comparisons.settingsSha256,
+      ],
     })
     .returning();
   return row ?? null;
@@ -32,11 +37,16 @@ export async function selectComparison(
   return row ?? null;
 }
 
+/** The two sides of a comparison: two revisions, or one image against itself on the road day of a null test. */
+export interface Sides {
+  workspaceId: string;
+  revisionAId: string;
+  revisionBId: string;
+  nullTestRoadDayId: string | null;
+}
+
 /** Comparisons of side A with side B, one a settings set, oldest first. */
-export async function selectComparisonsOf(
-  db: Queryable,
-  args: { workspaceId: string; revisionAId: string; revisionBId: string },
-): Promise<ComparisonRow[]> {
+export async function selectComparisonsOf(db: Queryable, args: Sides): Promise<ComparisonRow[]> {
   return await db
     .select()
     .from(comparisons)
@@ -45,6 +55,9 @@ export async function selectComparisonsOf(
         eq(comparisons.workspaceId, args.workspaceId),
         eq(comparisons.revisionAId, args.revisionAId),
         eq(comparisons.revisionBId, args.revisionBId),
+        args.nullTestRoadDayId === null
+          ? isNull(comparisons.nullTestRoadDayId)
+          : eq(comparisons.nullTestRoadDayId, args.nullTestRoadDayId),
       ),
     )
     .orderBy(asc(comparisons.createdAt));
@@ -86,10 +99,13 @@ export async function selectComparedRevisions(
     .where(and(eq(revisions.workspaceId, workspaceId), inArray(revisions.id, [...revisionIds])));
 }
 
-/** Every run of the revisions, also those set aside, with the conditions of its road day, in the order they were driven. */
+/**
+ * Every run of the two sides, also those set aside, with the conditions of its road day, in the order they were driven.
+ * What was driven for a null test counts there and nowhere else.
+ */
 export async function selectComparedRuns(
   db: Queryable,
-  { workspaceId, revisionIds }: { workspaceId: string; revisionIds: readonly string[] },
+  { workspaceId, revisionAId, revisionBId, nullTestRoadDayId }: Sides,
 ) {
   return await db
     .select({
@@ -97,6 +113,7 @@ export async function selectComparedRuns(
       number: runs.number,
       revisionId: runs.revisionId,
       kind: runs.kind,
+      letter: runs.letter,
       leg: runs.leg,
       driveOrder: runs.driveOrder,
       gear: runs.gear,
@@ -125,7 +142,15 @@ export async function selectComparedRuns(
     .from(runs)
     .innerJoin(roadDays, eq(roadDays.id, runs.roadDayId))
     .innerJoin(users, eq(users.id, runs.testerId))
-    .where(and(eq(runs.workspaceId, workspaceId), inArray(runs.revisionId, [...revisionIds])))
+    .where(
+      and(
+        eq(runs.workspaceId, workspaceId),
+        inArray(runs.revisionId, [revisionAId, revisionBId]),
+        nullTestRoadDayId === null
+          ? isNull(roadDays.nullTestRevisionId)
+          : eq(runs.roadDayId, nullTestRoadDayId),
+      ),
+    )
     .orderBy(asc(roadDays.day), asc(roadDays.createdAt), asc(runs.driveOrder), asc(runs.number));
 }
 

@@ -1,4 +1,6 @@
+import { sql } from "drizzle-orm";
 import {
+  check,
   foreignKey,
   integer,
   jsonb,
@@ -13,6 +15,7 @@ import type { CampaignResult, CampaignSettings } from "@/lib/measure/types";
 import { createdAt, idColumn } from "./column";
 import { users } from "./people";
 import { revisions } from "./revisions";
+import { roadDays } from "./road-days";
 import { workspaces } from "./workspaces";
 
 export const comparisonStateEnum = pgEnum("comparison_state", ["waiting", "ready", "failed"]);
@@ -28,6 +31,8 @@ export const comparisons = pgTable(
     programmeId: uuid("programme_id").notNull(),
     revisionAId: uuid("revision_a_id").notNull(),
     revisionBId: uuid("revision_b_id").notNull(),
+    /** The road day of a null test, whose two sides are one image; null where two revisions are compared. */
+    nullTestRoadDayId: uuid("null_test_road_day_id"),
     settings: jsonb("settings").$type<CampaignSettings>().notNull(),
     settingsSha256: text("settings_sha256").notNull(),
     createdBy: uuid("created_by")
@@ -36,7 +41,9 @@ export const comparisons = pgTable(
     createdAt: createdAt(),
   },
   (t) => [
-    unique("comparisons_question").on(t.revisionAId, t.revisionBId, t.settingsSha256),
+    unique("comparisons_question")
+      .on(t.revisionAId, t.revisionBId, t.nullTestRoadDayId, t.settingsSha256)
+      .nullsNotDistinct(),
     unique("comparisons_tenant").on(t.workspaceId, t.id),
     foreignKey({
       columns: [t.workspaceId, t.revisionAId],
@@ -46,6 +53,14 @@ export const comparisons = pgTable(
       columns: [t.workspaceId, t.revisionBId],
       foreignColumns: [revisions.workspaceId, revisions.id],
     }),
+    foreignKey({
+      columns: [t.workspaceId, t.nullTestRoadDayId],
+      foreignColumns: [roadDays.workspaceId, roadDays.id],
+    }),
+    check(
+      "comparisons_two_sides",
+      sql`(${t.revisionAId} = ${t.revisionBId}) = (${t.nullTestRoadDayId} is not null)`,
+    ),
   ],
 );
 

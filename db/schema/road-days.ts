@@ -13,6 +13,7 @@ import {
 import { createdAt, idColumn } from "./column";
 import { users } from "./people";
 import { programmes } from "./programmes";
+import { revisions } from "./revisions";
 import { workspaces } from "./workspaces";
 
 /** One line of the safety checklist as confirmed at the road side. */
@@ -48,6 +49,12 @@ export const roadDays = pgTable(
     tyrePressureRearKpa: real("tyre_pressure_rear_kpa"),
     /** Mass as tested on that day where it differs from the sheet, e.g. another driver. */
     massKg: real("mass_kg"),
+    /** The one image that a null test drives against itself; null on every other road day. Set when it is opened. */
+    nullTestRevisionId: uuid("null_test_revision_id"),
+    /** Whether that image is written anew wherever the card changes the letter. */
+    nullTestRewrites: boolean("null_test_rewrites").notNull().default(false),
+    /** Twins a side that the day was planned with; null: what the gate plan asks for. */
+    plannedTwins: integer("planned_twins"),
     checklist: jsonb("checklist").$type<ChecklistAnswer[]>().notNull(),
     sample: boolean("sample").notNull().default(false),
     rowVersion: integer("row_version").notNull().default(1),
@@ -61,6 +68,10 @@ export const roadDays = pgTable(
     foreignKey({
       columns: [t.workspaceId, t.programmeId],
       foreignColumns: [programmes.workspaceId, programmes.id],
+    }),
+    foreignKey({
+      columns: [t.workspaceId, t.nullTestRevisionId],
+      foreignColumns: [revisions.workspaceId, revisions.id],
     }),
   ],
 );

@@ -42,6 +42,8 @@ export const runs = pgTable(
     leg: legEnum("leg").notNull(),
     /** Place in the driven order of its road day, first = 1. */
     driveOrder: integer("drive_order").notNull(),
+    /** Letter of the order card on a null test, where both letters are one image; null on every other road day. */
+    letter: text("letter", { enum: ["A", "B"] }),
     gear: integer("gear"),
     startedAt: instant("started_at"),
     tempC: real("temp_c").notNull(),

@@ -1,5 +1,10 @@
 import type { Queryable } from "@/db/client";
-import { type ComparedRun, type ComparisonRow, selectComparedRuns } from "@/db/queries/comparisons";
+import {
+  type ComparedRun,
+  type ComparisonRow,
+  type Sides,
+  selectComparedRuns,
+} from "@/db/queries/comparisons";
 import { selectVehicleSheet } from "@/db/queries/vehicle-sheets";
 import type { ComparisonInput } from "@/db/schema/comparisons";
 import { canonicalJson, digestOf } from "@/lib/canonical-json";
@@ -78,19 +83,19 @@ function withCounts(runs: readonly Omit<CurrentRun, "counts">[]): CurrentRun[] {
  */
 export async function currentInput(
   db: Queryable,
-  comparison: Pick<ComparisonRow, "workspaceId" | "programmeId" | "revisionAId" | "revisionBId" | "settings">,
+  comparison: Sides & Pick<ComparisonRow, "programmeId" | "settings">,
 ): Promise<CurrentInput> {
-  const { workspaceId, programmeId, revisionAId, revisionBId, settings } = comparison;
+  const { workspaceId, programmeId, revisionAId, nullTestRoadDayId, settings } = comparison;
   const sheet = await selectVehicleSheet(db, { workspaceId, programmeId });
   if (!sheet)
     throw new NotFoundError("no_vehicle_sheet", "This programme has no vehicle sheet. Write one first.");
-  const rows = await selectComparedRuns(db, { workspaceId, revisionIds: [revisionAId, revisionBId] });
-  const runs = withCounts(
-    withOrder(rows).map((run) => ({
-      ...run,
-      side: run.revisionId === revisionAId ? ("A" as const) : ("B" as const),
-    })),
-  );
+  const rows = await selectComparedRuns(db, comparison);
+  const sideOf = (run: ComparedRun): "A" | "B" => {
+    // Both letters of a null test are one image, so only the order card tells them apart.
+    if (nullTestRoadDayId !== null) return run.letter ?? "A";
+    return run.revisionId === revisionAId ? "A" : "B";
+  };
+  const runs = withCounts(withOrder(rows).map((run) => ({ ...run, side: sideOf(run) })));
   const input: ComparisonInput = {
     analysisVersion: ANALYSIS_VERSION,
     sheetVersion: sheet.version,

@@ -89,9 +89,8 @@ export async function getComparison(
   action: "comparison.view" | "comparison.export" = "comparison.view",
 ): Promise<ComparisonView> {
   const { comparison, programme, a, b } = await readComparison(ctx, comparisonId, action);
-  const { workspaceId, revisionAId, revisionBId } = comparison;
   const standing = await comparisonStanding(ctx.db, comparison);
-  const siblings = await selectComparisonsOf(ctx.db, { workspaceId, revisionAId, revisionBId });
+  const siblings = await selectComparisonsOf(ctx.db, comparison);
   const { current, shown } = standing;
   const side = (row: typeof a): ComparedSide => ({
     id: row.id,

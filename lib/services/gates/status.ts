@@ -47,7 +47,7 @@ async function standardComparison(
   args: { workspaceId: string; revisionAId: string; revisionBId: string },
 ): Promise<ComparisonStanding | null> {
   if (args.revisionAId === args.revisionBId) return null;
-  const rows = await selectComparisonsOf(db, args);
+  const rows = await selectComparisonsOf(db, { ...args, nullTestRoadDayId: null });
   const row = rows.find((comparison) => comparison.settingsSha256 === STANDARD_SHA256);
   return row ? await comparisonStanding(db, row) : null;
 }
