@@ -34,6 +34,11 @@ export interface CampaignVehicle {
   engine_inertia_kgm2?: number | null;
   wheel_inertia_kgm2?: number | null;
   mesh_efficiency?: number | null;
+  /** Standard uncertainties of the figures above; absent: what the class of the figure is worth (vehicle.ts). */
+  rolling_circumference_uncertainty_m?: number | null;
+  engine_inertia_uncertainty_kgm2?: number | null;
+  wheel_inertia_uncertainty_kgm2?: number | null;
+  mesh_efficiency_uncertainty?: number | null;
   qc_mg_per_l_cycle?: number | null;
 }
 
@@ -74,13 +79,18 @@ export interface Campaign {
   settings: CampaignSettings;
 }
 
+/** What a finding does: figures are left out ("masked"), shown with a warning ("warned"), or the run is not used ("refused"). */
+export type Consequence = "masked" | "warned" | "refused";
+
 export interface Reason {
   code: string;
   message: string;
 }
+/** A finding about a run, with the span it is about where it has one. Results of older versions state no consequence. */
 export interface Note extends Reason {
   from_s?: number;
   to_s?: number;
+  consequence?: Consequence;
 }
 export interface Span {
   from_s: number;
@@ -106,18 +116,51 @@ export interface PowerCurve {
   engine_nm_reference: Series;
 }
 
+/** What the uncertainty of an absolute figure is made of. */
+export type BudgetComponent =
+  | "mass"
+  | "speed scale"
+  | "wind"
+  | "grade"
+  | "rolling and air resistance"
+  | "engine inertia"
+  | "wheel inertia"
+  | "mesh efficiency"
+  | "weather"
+  | "smoothing"
+  | "repeatability";
+
+/** One independent part: its standard uncertainty (one standard deviation) and in a sentence where that comes from. */
+export interface BudgetPart {
+  component: BudgetComponent;
+  standard_pct: number;
+  standard_kw: number;
+  basis: string;
+}
+
+/** Uncertainty budget of a peak power: the expanded figure is the coverage factor times the root sum of squares. */
+export interface UncertaintyBudget {
+  coverage_factor: number;
+  parts: BudgetPart[];
+  expanded_pct: number;
+  expanded_kw: number;
+}
+
+/** Highest power and torque; the uncertainties are expanded (about 95 %). Results of older versions lack the last two members. */
 export interface Peak {
   engine_kw: number;
   engine_kw_rpm: number;
   engine_nm: number;
   engine_nm_rpm: number;
   uncertainty_kw: number | null;
+  uncertainty_nm?: number | null;
+  budget?: UncertaintyBudget | null;
 }
 
 export interface RunResult {
   id: string;
   usable: boolean;
-  reasons: Reason[];
+  reasons: Note[];
   notes: Note[];
   speed_source?: string | null;
   sample_rate_hz?: number | null;
@@ -143,6 +186,8 @@ export interface SideResult {
   rpm: number[];
   engine_kw: Series;
   engine_nm: Series;
+  /** Expanded uncertainty of `engine_kw` at each point, kW. */
+  engine_kw_uncertainty?: Series;
   peak: Peak | null;
 }
 
