@@ -1,16 +1,17 @@
 import { deltaBand } from "@/lib/compare/delta-band";
-import { type ComparedRun, runDesign } from "@/lib/compare/run-design";
+import { defaultRanges, rangeMeans } from "@/lib/compare/range-means";
+import { type ComparedRun, type RunDesign, runDesign } from "@/lib/compare/run-design";
+import { LEAST_RUNS, sideEffect } from "@/lib/compare/side-effect";
 import { findTwins } from "@/lib/compare/twins";
 import { groupOf, welch } from "@/lib/compare/two-means";
 import { verdictRegions } from "@/lib/compare/verdict-regions";
 import type { DeltaResult, Reason } from "@/lib/measure/types";
 import { tQuantile } from "@/lib/signal/distributions";
-import { leastSquares } from "@/lib/signal/least-squares";
 
 /** A usable pull with what is compared: torque on the shared basis, its peaks, its times. */
 export interface ComparedPull extends ComparedRun {
   /** N·m on the common grid, null = gap. */
-  engineNm: readonly (number | null)[];
+  engineNm: (number | null)[];
   peakKw: number | null;
   peakNm: number | null;
   timesS: Readonly<Record<string, number>>;
@@ -23,6 +24,8 @@ export interface CompareSettings {
   level: number;
   seed: number;
   resamples: number;
+  /** Ranges of engine speed to average over, 1/min; absent: the compared range and its thirds. */
+  ranges?: readonly (readonly [number, number])[] | null;
 }
 
 /**
@@ -30,8 +33,6 @@ export interface CompareSettings {
  * simulated campaigns of 4 + 4 runs: half-width 1.9 instead of 3.5 pp, whole curve held in 95 instead of 98 of 100.
  */
 const POOL_RPM = 400;
-/** Fewer runs a side carry no band. */
-const LEAST_RUNS = 3;
 
 /**
  * Compares side B with side A: at every engine speed a linear model of log torque with side, leg, order and road day, and a
@@ -76,6 +77,7 @@ export function compareSides(
     twins,
     peak_difference: peakDifference(runs, usable, settings),
     times_difference: timesDifference(runs, settings),
+    range_means: rangeMeans(rpm, runs, settings.ranges ?? defaultRanges(grid), usable, settings),
     warnings,
   };
   if (!usable) {
@@ -117,6 +119,7 @@ export function compareSides(
     simultaneous: true,
     method: `Linear model of log torque with ${usable.names.slice(1).join(", ")}; ${band.method}, critical value ${band.critical.toFixed(3)}, ${band.df} degrees of freedom${band.method === "permutation max-t" ? `, ${settings.resamples} resamples, seed ${settings.seed}` : ", a side has only three runs"}.`,
     regions: verdictRegions(grid, low, high),
+    band: { critical_value: band.critical, df: band.df },
     resolvable_pct: Array.from(band.standardError, (se) => pct(reach * se)),
     drift_pct_per_run: usable.order === null || kept.length === 0 ? null : pct(drift),
   };
@@ -147,12 +150,10 @@ function meanLog(
   return sum / n;
 }
 
-type Design = { matrix: Float64Array; columns: number; side: number };
-
 /** Difference of the runs' peaks by the same model; its interval stands alone, it is not part of the band. */
 function peakDifference(
   runs: readonly ComparedPull[],
-  design: Design | null,
+  design: RunDesign | null,
   settings: CompareSettings,
 ): DeltaResult["peak_difference"] {
   const kw = sideEffect(
@@ -169,34 +170,6 @@ function peakDifference(
   );
   if (!kw || !nm) return null;
   return { engine_kw: kw.effect, half_width_kw: kw.half, engine_nm: nm.effect, half_width_nm: nm.half };
-}
-
-function sideEffect(
-  runs: readonly ComparedPull[],
-  values: readonly (number | null)[],
-  design: Design | null,
-  settings: CompareSettings,
-): { effect: number; half: number | null } | null {
-  const rows = values.flatMap((value, r) => (value === null ? [] : [r]));
-  const of = (side: string) => rows.filter((r) => runs[r].side === side).map((r) => values[r] ?? 0);
-  const average = (list: number[]) => list.reduce((sum, x) => sum + x, 0) / list.length;
-  const [a, b] = [of(settings.a), of(settings.b)];
-  if (a.length === 0 || b.length === 0) return null;
-  if (!design || Math.min(a.length, b.length) < LEAST_RUNS || rows.length - design.columns < 2) {
-    return { effect: average(b) - average(a), half: null };
-  }
-  const x = Float64Array.from(
-    rows.flatMap((r) => [...design.matrix.subarray(r * design.columns, (r + 1) * design.columns)]),
-  );
-  const fit = leastSquares(
-    x,
-    Float64Array.from(rows, (r) => values[r] ?? 0),
-    design.columns,
-  );
-  return {
-    effect: fit.coefficients[design.side],
-    half: tQuantile(0.5 + settings.level / 2, fit.df) * fit.standardErrors[design.side],
-  };
 }
 
 function timesDifference(

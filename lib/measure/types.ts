@@ -1,3 +1,10 @@
+import type {
+  ChannelDifference,
+  EngineChannel,
+  RunFullLoad,
+  SideFullLoad,
+} from "@/lib/measure/engine/full-load-types";
+
 /**
  * Input and output of the analysis. The spelling is that of the campaign file and of the result that
  * `npm run -s analyse` prints (snake_case with the unit in the name), so that one shape serves file, database and page.
@@ -69,6 +76,8 @@ export interface CampaignSettings {
   rpm_step: number;
   level: number;
   seed: number;
+  /** Ranges over which the difference is averaged, 1/min; absent: the compared range and its thirds. */
+  rpm_ranges?: [number, number][] | null;
 }
 
 export interface Campaign {
@@ -178,6 +187,27 @@ export interface RunResult {
   times_uncertainty_s?: Record<string, number>;
   speed_at_kmh?: Record<string, number>;
   trap_kmh?: Record<string, number>;
+  full_load?: RunFullLoad;
+}
+
+/** A stretch of a side's mean curve that leaves its local fit by more than the runs' scatter explains. */
+export interface CurveAnomaly {
+  code: "spike" | "ripple";
+  from_rpm: number;
+  to_rpm: number;
+  /** Largest deviation from the local fit, signed. */
+  size_pct: number;
+  /** What it had to exceed there. */
+  limit_pct: number;
+  /** Runs that deviate there by more than half of it to the same side, of those that cover it. */
+  runs: { showing: number; of: number };
+}
+
+/** Deviation of a side's mean curve from its local fit; null where it can't be judged. */
+export interface Smoothness {
+  rpm: number[];
+  deviation_pct: Series;
+  half_width_pct: Series;
 }
 
 export interface SideResult {
@@ -189,6 +219,23 @@ export interface SideResult {
   /** Expanded uncertainty of `engine_kw` at each point, kW. */
   engine_kw_uncertainty?: Series;
   peak: Peak | null;
+  full_load?: SideFullLoad | null;
+  /** Null: too few runs to tell ripple from scatter. */
+  smoothness?: Smoothness | null;
+  anomalies?: CurveAnomaly[];
+}
+
+/** Mean difference B − A over a range of engine speed; its interval stands alone, it is not part of the simultaneous band. */
+export interface RangeMean {
+  from_rpm: number;
+  to_rpm: number;
+  pct: number;
+  low_pct: number | null;
+  high_pct: number | null;
+  /** Smallest mean difference that these runs could have shown here (80 % chance). */
+  resolvable_pct: number | null;
+  n_a: number;
+  n_b: number;
 }
 
 export interface DeltaRegion {
@@ -210,6 +257,8 @@ export interface DeltaResult {
   method: string;
   regions: DeltaRegion[];
   resolvable_pct: Series;
+  /** What the half-width of the band is made of besides the standard error; null without a band. */
+  band?: { critical_value: number; df: number } | null;
   drift_pct_per_run: number | null;
   twins: { side: string; out: string; back: string; closure_pct: number | null }[];
   /** Difference of the two sides' peaks (B − A) with the half-width of its own interval. */
@@ -224,12 +273,31 @@ export interface DeltaResult {
     string,
     { a_s: number; b_s: number; difference_s: number; half_width_s: number | null; n_a: number; n_b: number }
   >;
+  range_means?: RangeMean[];
+  /** Engine channels at full load that both sides carry. */
+  channels?: Partial<Record<EngineChannel, ChannelDifference>>;
   warnings?: Reason[];
+}
+
+/** Scatter between the runs of one road day, with side, leg and drift taken out; what the plan of a later day rests on. */
+export interface RepeatabilityResult {
+  road_day: string | null;
+  runs: number;
+  /** Degrees of freedom of both standard deviations: runs less what was taken out. 0 = none can be had. */
+  df: number;
+  /** Standard deviation between runs of the torque at one engine speed, %. */
+  sd_point_pct: number | null;
+  /** The same of the mean torque over a range of `range_rpm`, %. */
+  sd_range_pct: number | null;
+  range_rpm: number;
+  /** How the out and the back run of the twins agree, %: root mean square and largest. */
+  closure: { twins: number; rms_pct: number | null; largest_pct: number | null };
 }
 
 export interface CampaignResult {
   analysis_version: string;
   runs: RunResult[];
+  repeatability?: RepeatabilityResult[];
   sides: Record<string, SideResult>;
   delta?: DeltaResult | null;
   warnings?: Reason[];
