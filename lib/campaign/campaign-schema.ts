@@ -22,6 +22,10 @@ const vehicle = z.strictObject({
   engine_inertia_kgm2: known(positive),
   wheel_inertia_kgm2: known(positive),
   mesh_efficiency: known(z.number().gt(0).max(1)),
+  rolling_circumference_uncertainty_m: known(z.number().nonnegative()),
+  engine_inertia_uncertainty_kgm2: known(z.number().nonnegative()),
+  wheel_inertia_uncertainty_kgm2: known(z.number().nonnegative()),
+  mesh_efficiency_uncertainty: known(z.number().nonnegative()),
   qc_mg_per_l_cycle: known(positive),
 });
 

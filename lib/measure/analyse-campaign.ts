@@ -1,9 +1,10 @@
 import { type ComparedPull, compareSides } from "@/lib/compare/compare-sides";
+import { repeatability } from "@/lib/compare/repeatability";
 import type { FileRefusedError } from "@/lib/errors";
 import type { LogTable } from "@/lib/logs/types";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
 import { peakOfCurve } from "@/lib/measure/curve/peak-of-curve";
-import { sideResult } from "@/lib/measure/curve/side-result";
+import { sideResults } from "@/lib/measure/curve/side-result";
 import { type CampaignEstimate, estimateCampaign, type ReadyRun } from "@/lib/measure/estimate-campaign";
 import { roundResult } from "@/lib/measure/round-result";
 import { type PreparedRun, prepareRun } from "@/lib/measure/run/prepare-run";
@@ -117,7 +118,7 @@ function runResult(prepared: PreparedRun, pull: PullResult | undefined, vehicle:
 function sidesAndDelta(
   campaign: Campaign,
   usable: readonly AnalysedPull[],
-): Pick<CampaignResult, "sides" | "delta" | "warnings"> {
+): Pick<CampaignResult, "repeatability" | "sides" | "delta" | "warnings"> {
   const warnings: Reason[] = [];
   const gear = commonGear(usable);
   const pulls = usable.filter(({ run }) => (run.gear ?? null) === gear);
@@ -154,22 +155,26 @@ function sidesAndDelta(
     });
   };
   const names = [...new Set(pulls.flatMap(({ run }) => (run.side ? [run.side] : [])))].sort();
-  const sides: CampaignResult["sides"] = {};
-  for (const name of names) {
-    const members = pulls.filter(({ run }) => run.side === name);
-    sides[name] = sideResult(
-      rpm,
-      members.map((m) => {
-        const peak = m.pull.result.peak;
-        return {
+  const sides = sideResults(
+    rpm,
+    names.map((name) => {
+      const members = pulls.filter(({ run }) => run.side === name);
+      return {
+        name,
+        absolute: members.every((m) => m.pull.result.curve),
+        pulls: members.map((m) => ({
           engineNm: torqueOf(m),
-          relativeUncertainty: peak?.uncertainty_kw == null ? null : peak.uncertainty_kw / peak.engine_kw,
-        };
-      }),
-      basis,
-      members.every((m) => m.pull.result.curve),
-    );
-  }
+          sensitivityAt: m.pull.sensitivityAt,
+          basis: m.pull.basis,
+          factor:
+            basis === "reference" && m.pull.result.factor
+              ? { id: m.pull.result.factor.id, relative: m.pull.factorUncertainty }
+              : null,
+        })),
+      };
+    }),
+    basis,
+  );
   const { compare, settings } = campaign;
   const compared = pulls.map((m): ComparedPull => {
     const engineNm = torqueOf(m);
@@ -196,7 +201,7 @@ function sidesAndDelta(
         resamples: RESAMPLES,
       })
     : undefined;
-  return { sides, delta, warnings };
+  return { repeatability: compare ? repeatability(rpm, compared) : undefined, sides, delta, warnings };
 }
 
 function commonGear(usable: readonly AnalysedPull[]): number | null {

@@ -5,18 +5,12 @@ import {
   heightRows,
   ROAD_PRIOR,
   type RoadProblem,
-  resistanceRow,
   roadLayout,
   type Scatter,
 } from "@/lib/measure/road/road-equations";
 import type { RoadObservations, RoadRun } from "@/lib/measure/road/road-observations";
-import {
-  type NormalEquations,
-  type NormalSolution,
-  normalEquations,
-  solveNormal,
-  varianceOf,
-} from "@/lib/signal/normal-equations";
+import { type RoadVariance, roadVariance } from "@/lib/measure/road/road-variance";
+import { type NormalEquations, normalEquations, solveNormal } from "@/lib/signal/normal-equations";
 import { STANDARD_GRAVITY_MPS2 } from "@/lib/units/constants";
 
 /** What the road and the air do to the car on one road day, with the joint uncertainty of all of it. */
@@ -26,8 +20,8 @@ export interface RoadDay {
   f2NPerMps2: number;
   /** Resistance at a speed and position in one run, wind and slope of that run in it, N. */
   resistanceN: (run: number, speedMps: number, positionM: number) => number;
-  /** Standard uncertainty of the mean resistance over some points of one run, N. */
-  uncertaintyN: (run: number, points: readonly { speedMps: number; positionM: number }[]) => number;
+  /** Joint uncertainty of all unknowns of the day. */
+  variance: RoadVariance;
   /** How many runs have a coast-down; 0: all figures are priors only. */
   coastRuns: number;
 }
@@ -64,15 +58,14 @@ export function estimateRoadDay(
   x.set([ROAD_PRIOR.rolling[0] * weightN, ROAD_PRIOR.f1NPerMps[0], ROAD_PRIOR.dragAreaHalfDensity[0]]);
   let scatter: Scatter = { coast: 1, tilt: 1, climb: 1 };
   let roughness = 1e-8;
-  let solution: NormalSolution | null = null;
+  let data = normalEquations(layout.size);
   for (let pass = 0; pass < PASSES; pass++) {
-    const data = normalEquations(layout.size);
+    data = normalEquations(layout.size);
     addPriors(data, problem);
     const excess = addObservations(data, problem, x, scatter);
     if (pass === PASSES - 2) roughness = chooseRoughness(data, profile);
     profile.addPenalty(data, roughness, ROAD_PRIOR.tilt);
-    solution = solveNormal(data);
-    x = solution.x;
+    x = solveNormal(data).x;
     if (pass > 0) {
       scatter = {
         coast: scatter.coast * excess.coast,
@@ -81,14 +74,14 @@ export function estimateRoadDay(
       };
     }
   }
-  return roadDay(problem, profile, x, solution);
+  return roadDay(problem, profile, x, roadVariance(problem, profile, x, data, scatter.coast));
 }
 
 function roadDay(
   problem: RoadProblem,
   profile: HeightProfile,
   x: Float64Array,
-  solution: NormalSolution | null,
+  variance: RoadVariance,
 ): RoadDay {
   const { layout, runs, weightN } = problem;
   return {
@@ -100,16 +93,7 @@ function roadDay(
       const air = v - track.direction * (x[layout.wind] + x[layout.runWind(r)]);
       return x[0] + x[1] * v + x[2] * densityRatio * air * Math.abs(air) + weightN * profile.slopeAt(x, r, s);
     },
-    uncertaintyN: (r, points) => {
-      const mean = new Float64Array(layout.size);
-      for (const { speedMps, positionM } of points) {
-        const { indices, values } = resistanceRow(problem, r, speedMps, profile.slopeRow(r, positionM), x);
-        indices.forEach((index, k) => {
-          mean[index] += values[k] / points.length;
-        });
-      }
-      return solution ? Math.sqrt(varianceOf(solution, mean)) : Number.NaN;
-    },
+    variance,
     coastRuns: runs.filter((run) => run.segments.coast).length,
   };
 }

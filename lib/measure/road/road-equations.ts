@@ -17,7 +17,7 @@ export const ROAD_PRIOR = {
 } as const;
 
 /** Scatter of a gust within a coast-down block, m/s, and the drag per speed that turns it into force. */
-const GUST_MPS = 0.3;
+export const GUST_MPS = 0.3;
 
 /** The unknowns in order: f0, f1, f2, wind, wind of each run, pitch, accelerometer bias of each run, then heights. */
 export interface RoadLayout {

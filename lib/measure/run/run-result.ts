@@ -1,7 +1,10 @@
 import { chooseFactor, weatherFactor } from "@/lib/measure/air/atmosphere";
+import { factorUncertainty } from "@/lib/measure/air/weather-uncertainty";
+import { type BudgetBasis, budgetBasis } from "@/lib/measure/curve/budget-basis";
 import { peakOfCurve } from "@/lib/measure/curve/peak-of-curve";
-import { COVERAGE, combined, powerBudget } from "@/lib/measure/curve/peak-uncertainty";
+import { type PowerSensitivity, powerSensitivity } from "@/lib/measure/curve/power-sensitivity";
 import { type GridCurve, gridCurve, pullPoints } from "@/lib/measure/curve/pull-curve";
+import { COVERAGE, combined, runParts, uncertaintyBudget } from "@/lib/measure/curve/uncertainty-budget";
 import type { CampaignEstimate } from "@/lib/measure/estimate-campaign";
 import { SPEED_SOURCES, type SpeedSource } from "@/lib/measure/speed/speed-model";
 import { rollOnTimes } from "@/lib/measure/sprint/sprint";
@@ -48,6 +51,11 @@ export interface PullResult {
     "speed_source" | "loss" | "factor" | "curve" | "peak" | "times_s" | "times_uncertainty_s" | "notes"
   >;
   grid: GridCurve;
+  /** What moves the power at an engine speed of the grid; null elsewhere. */
+  sensitivityAt: (rpm: number) => PowerSensitivity | null;
+  basis: BudgetBasis;
+  /** Relative standard uncertainty of the weather factor's value. */
+  factorUncertainty: number;
 }
 
 /** Turns the estimate of one run into its curve, peak, times and notes. `extra`: spans that are masked for other reasons. */
@@ -94,8 +102,16 @@ export function pullResult(
     estimate.model.scaleUncertainty,
   );
   const { coast } = estimate.runs[index].segments;
+  const sensitivities = new Map(
+    grid.rpm.map((rpm, k) => [rpm, powerSensitivity(estimate, campaign.vehicle, index, grid, k)]),
+  );
+  const sensitivityAt = (rpm: number) => sensitivities.get(rpm) ?? null;
+  const basis = budgetBasis(estimate, campaign.vehicle, index);
   return {
     grid,
+    sensitivityAt,
+    basis,
+    factorUncertainty: factorUncertainty(factor.id, run.weather, campaign.vehicle),
     result: {
       speed_source: sourceName(SPEED_SOURCES.filter((s) => signals[s] && estimate.model.channels.has(s))),
       loss: absolute
@@ -108,7 +124,7 @@ export function pullResult(
         : null,
       factor,
       curve,
-      peak: curve && runPeak(estimate, index, campaign.vehicle, grid),
+      peak: curve && runPeak(grid, sensitivityAt, basis),
       times_s: times.times_s,
       times_uncertainty_s: times.times_uncertainty_s,
       notes,
@@ -145,15 +161,28 @@ function powerCurve(grid: GridCurve, factor: FactorResult): PowerCurve {
 }
 
 function runPeak(
-  estimate: CampaignEstimate,
-  index: number,
-  vehicle: CampaignVehicle,
   grid: GridCurve,
+  sensitivityAt: (rpm: number) => PowerSensitivity | null,
+  basis: BudgetBasis,
 ): RunResult["peak"] {
   const peak = peakOfCurve(grid.rpm, grid.engineNm, true, null);
-  if (!peak) return null;
-  const budget = powerBudget(estimate, vehicle, index, grid, grid.rpm.indexOf(peak.engine_kw_rpm));
-  return { ...peak, uncertainty_kw: budget && COVERAGE * combined(budget) * peak.engine_kw };
+  const atPower = peak && sensitivityAt(peak.engine_kw_rpm);
+  const atTorque = peak && sensitivityAt(peak.engine_nm_rpm);
+  if (!peak || !atPower || !atTorque) return peak;
+  const budget = uncertaintyBudget(
+    runParts(atPower),
+    (component) => {
+      if (component === "repeatability") return "";
+      return component === "wind" ? `${basis.wind} Gusts around it are added.` : basis[component];
+    },
+    peak.engine_kw,
+  );
+  return {
+    ...peak,
+    uncertainty_kw: budget.expanded_kw,
+    uncertainty_nm: COVERAGE * combined(runParts(atTorque, "torque")) * peak.engine_nm,
+    budget,
+  };
 }
 
 function doubts(

@@ -31,7 +31,8 @@ export interface VehicleSheetFigures {
 /**
  * The sheet in the spelling of the analysis.
  * Mass is the sum of the parts (kg), its uncertainty the root sum of squares of the parts' stated ones (GUM, JCGM 100:2008, 5.1.2);
- * null when no part states one. `massKg` replaces the sum, e.g. on a road day with another driver.
+ * null when no part states one. Uncertainties of the other figures as stated, null where not. `massKg` replaces the sum, e.g. on
+ * a road day with another driver.
  */
 export function toCampaignVehicle(sheet: VehicleSheetFigures, massKg: number | null = null): CampaignVehicle {
   const stated = sheet.massPartsKg.map((part) => part.uncertainty).filter((u) => u !== null);
@@ -56,6 +57,10 @@ export function toCampaignVehicle(sheet: VehicleSheetFigures, massKg: number | n
     engine_inertia_kgm2: sheet.engineInertiaKgm2?.value ?? null,
     wheel_inertia_kgm2: sheet.wheelInertiaKgm2?.value ?? null,
     mesh_efficiency: sheet.meshEfficiency?.value ?? null,
+    rolling_circumference_uncertainty_m: sheet.rollingCircumferenceM?.uncertainty ?? null,
+    engine_inertia_uncertainty_kgm2: sheet.engineInertiaKgm2?.uncertainty ?? null,
+    wheel_inertia_uncertainty_kgm2: sheet.wheelInertiaKgm2?.uncertainty ?? null,
+    mesh_efficiency_uncertainty: sheet.meshEfficiency?.uncertainty ?? null,
     qc_mg_per_l_cycle: sheet.fuelQuantityMgPerLCycle,
   };
 }
