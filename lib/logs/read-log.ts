@@ -1,6 +1,6 @@
 import { gunzipSync } from "node:zlib";
 import { FileRefusedError } from "@/lib/errors";
-import { readDelimited } from "@/lib/logs/read-delimited";
+import { HEAD_BYTES, openDelimited } from "@/lib/logs/delimited/read-delimited";
 import { sniffLog } from "@/lib/logs/sniff-log";
 import type { ChannelKey, LogTable } from "@/lib/logs/types";
 
@@ -17,6 +17,7 @@ export const LOG_REFUSALS = [
   "format_not_supported",
   "ambiguous_decimal",
   "too_many_columns",
+  "line_too_long",
   "inflates_too_large",
   "gzip_damaged",
 ] as const;
@@ -73,5 +74,8 @@ export function readLog(bytes: Uint8Array, options: ReadLogOptions = {}): LogTab
       `${options.fileName ? `"${options.fileName}"` : "This file"} is ${what}, which is not read yet. Export the log as CSV.`,
     );
   }
-  return readDelimited(content, options.key ?? {}, options.drive);
+  const head = content.subarray(0, HEAD_BYTES);
+  const reader = openDelimited(head, content.length, options.key ?? {}, options.drive);
+  reader.push(content);
+  return reader.finish();
 }

@@ -3,8 +3,8 @@ import type { LogProblem } from "@/lib/logs/types";
 
 /** Rows to keep, in rising time, with their time from the first kept sample. */
 export interface TimeAxis {
-  /** Index of the row in the file order of data rows. */
-  order: Uint32Array;
+  /** Index of the row in the file order of data rows; null when every row is kept in its place. */
+  order: Uint32Array | null;
   /** Seconds from the first kept sample, strictly rising. */
   timeS: Float64Array;
   rateHz: number;
@@ -42,7 +42,7 @@ function longestPiece(
   for (const row of rows) {
     const t = timeS[row] ?? 0;
     let at = piece.length;
-    while (at > 0 && (timeS[piece[at - 1] ?? 0] ?? 0) > t) at--;
+    while (at > 0 && piece.length - at <= MAX_SWAP_ROWS && (timeS[piece[at - 1] ?? 0] ?? 0) > t) at--;
     const late = piece.length - at;
     if (late > MAX_SWAP_ROWS) {
       pieces.push(piece);
@@ -59,12 +59,29 @@ function longestPiece(
   return { piece: best, pieces: pieces.length, swapped };
 }
 
+function isRising(timeS: Float64Array): boolean {
+  for (let i = 1; i < timeS.length; i++) if (!(timeS[i] > timeS[i - 1])) return false;
+  return timeS.length > 0 && Number.isFinite(timeS[0]) && Number.isFinite(timeS[timeS.length - 1]);
+}
+
+/** Times from the first one, to the nanosecond: what lies below is rounding of the file's own numbers. */
+function fromFirst(count: number, timeAt: (i: number) => number, t0: number): Float64Array {
+  const timeS = new Float64Array(count);
+  for (let i = 0; i < count; i++) timeS[i] = Math.round((timeAt(i) - t0) * 1e9) / 1e9;
+  return timeS;
+}
+
 /**
  * Brings rows into strictly rising time. Short swaps are sorted, equal times keep the last row, a longer jump back
  * splits the log and the longest piece is kept: each with a problem entry. Rows with NaN time are left out.
  * Throws FileRefusedError `time_not_increasing`.
  */
 export function buildTimeAxis(rawS: Float64Array): TimeAxis {
+  if (isRising(rawS)) {
+    const timeS = fromFirst(rawS.length, (i) => rawS[i], rawS[0]);
+    const problems: LogProblem[] = [];
+    return { order: null, timeS, ...ratesAndGaps(timeS, problems), problems };
+  }
   const rows: number[] = [];
   for (let i = 0; i < rawS.length; i++) if (Number.isFinite(rawS[i])) rows.push(i);
   const { piece, pieces, swapped } = longestPiece(rows, rawS);
@@ -101,15 +118,13 @@ export function buildTimeAxis(rawS: Float64Array): TimeAxis {
     });
   }
   const t0 = rawS[kept[0] ?? 0] ?? 0;
-  const timeS = Float64Array.from(kept, (row) => Math.round(((rawS[row] ?? 0) - t0) * 1e9) / 1e9);
+  const timeS = fromFirst(kept.length, (i) => rawS[kept[i]], t0);
   return { order: Uint32Array.from(kept), timeS, ...ratesAndGaps(timeS, problems), problems };
 }
 
 function ratesAndGaps(timeS: Float64Array, problems: LogProblem[]): Pick<TimeAxis, "rateHz" | "gaps"> {
-  const steps = Float64Array.from(
-    { length: Math.max(0, timeS.length - 1) },
-    (_, i) => (timeS[i + 1] ?? 0) - (timeS[i] ?? 0),
-  );
+  const steps = new Float64Array(Math.max(0, timeS.length - 1));
+  for (let i = 0; i < steps.length; i++) steps[i] = timeS[i + 1] - timeS[i];
   const step = Float64Array.from(steps).sort()[steps.length >> 1] ?? 0;
   const gaps: { fromS: number; toS: number }[] = [];
   for (let i = 0; i < steps.length; i++) {

@@ -3,7 +3,7 @@ import fc from "fast-check";
 import Papa from "papaparse";
 import { describe, expect, it } from "vitest";
 import { FileRefusedError } from "@/lib/errors";
-import { splitQuoted } from "@/lib/logs/delimited-rows";
+import { splitQuoted } from "@/lib/logs/delimited/delimited-rows";
 import { logReport } from "@/lib/logs/log-report";
 import { parseNumber } from "@/lib/logs/parse-number";
 import { LOG_REFUSALS, type ReadLogOptions, readLog } from "@/lib/logs/read-log";

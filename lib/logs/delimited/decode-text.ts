@@ -44,9 +44,9 @@ function looksLikeText(bytes: Uint8Array): boolean {
   return control <= MAX_CONTROL_SHARE * n;
 }
 
-function decodeAs(bytes: Uint8Array, label: string, fatal: boolean): string | null {
+function decodeAs(bytes: Uint8Array, label: string, fatal: boolean, cut: boolean): string | null {
   try {
-    return new TextDecoder(label, { fatal }).decode(bytes);
+    return new TextDecoder(label, { fatal }).decode(bytes, { stream: cut });
   } catch {
     return null;
   }
@@ -54,11 +54,11 @@ function decodeAs(bytes: Uint8Array, label: string, fatal: boolean): string | nu
 
 /**
  * Decodes a text log. Order: a stated encoding, byte order mark, UTF-16 without mark, UTF-8 (strict), windows-1252.
- * No statistical guess. Throws FileRefusedError `not_text`.
+ * No statistical guess. `cut`: the bytes are the beginning of a longer text and may end within a character. Throws FileRefusedError `not_text`.
  */
-export function decodeText(bytes: Uint8Array, stated?: string): DecodedText {
+export function decodeText(bytes: Uint8Array, stated?: string, cut = false): DecodedText {
   if (stated) {
-    const text = decodeAs(bytes, stated, false);
+    const text = decodeAs(bytes, stated, false, cut);
     if (text === null) {
       throw new FileRefusedError(
         "not_text",
@@ -69,18 +69,18 @@ export function decodeText(bytes: Uint8Array, stated?: string): DecodedText {
   }
   if (bytes[0] === 0xef && bytes[1] === 0xbb && bytes[2] === 0xbf) {
     if (!looksLikeText(bytes)) refuseNotText();
-    return { text: decodeAs(bytes, "utf-8", false) ?? "", encoding: "utf-8 BOM" };
+    return { text: decodeAs(bytes, "utf-8", false, cut) ?? "", encoding: "utf-8 BOM" };
   }
   if (bytes[0] === 0xff && bytes[1] === 0xfe) {
-    return { text: decodeAs(bytes, "utf-16le", true) ?? refuseNotText(), encoding: "utf-16le" };
+    return { text: decodeAs(bytes, "utf-16le", true, cut) ?? refuseNotText(), encoding: "utf-16le" };
   }
   if (bytes[0] === 0xfe && bytes[1] === 0xff) {
-    return { text: decodeAs(bytes, "utf-16be", true) ?? refuseNotText(), encoding: "utf-16be" };
+    return { text: decodeAs(bytes, "utf-16be", true, cut) ?? refuseNotText(), encoding: "utf-16be" };
   }
   const wide = utf16WithoutMark(bytes);
-  if (wide) return { text: decodeAs(bytes, wide, true) ?? refuseNotText(), encoding: wide };
+  if (wide) return { text: decodeAs(bytes, wide, true, cut) ?? refuseNotText(), encoding: wide };
   if (!looksLikeText(bytes)) refuseNotText();
-  const utf8 = decodeAs(bytes, "utf-8", true);
+  const utf8 = decodeAs(bytes, "utf-8", true, cut);
   if (utf8 !== null) return { text: utf8, encoding: "utf-8" };
-  return { text: decodeAs(bytes, "windows-1252", false) ?? refuseNotText(), encoding: "windows-1252" };
+  return { text: decodeAs(bytes, "windows-1252", false, cut) ?? refuseNotText(), encoding: "windows-1252" };
 }

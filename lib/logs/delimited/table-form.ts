@@ -1,6 +1,6 @@
 import { FileRefusedError } from "@/lib/errors";
 import { isTimeTitle } from "@/lib/logs/channel-names";
-import { type DelimitedRow, firstRows } from "@/lib/logs/delimited-rows";
+import { type DelimitedRow, firstRows } from "@/lib/logs/delimited/delimited-rows";
 import { isMissingMark, parseNumber } from "@/lib/logs/parse-number";
 import type { ChannelKey } from "@/lib/logs/types";
 import { parseUnit } from "@/lib/units/unit-text";

@@ -1,0 +1,237 @@
+import { FileRefusedError } from "@/lib/errors";
+import { splitQuoted } from "@/lib/logs/delimited/delimited-rows";
+
+/** How rows are cut and how their cells become numbers. */
+export interface ScanForm {
+  delimiter: string;
+  decimal: "." | ",";
+  /** Columns of the table; further cells are counted, not kept. */
+  width: number;
+  /** "\n", or "\r" in a file that has no other line end. */
+  lineEnd: "\n" | "\r";
+  /** Lines up to this one are the head and are passed over; first line = 1. */
+  lastHeadLine: number;
+  /** A column that is always read by `oddCell`, e.g. a clock; −1 = none. */
+  textColumn: number;
+}
+
+/** Where the numbers go. */
+export interface RowTarget {
+  /** One array a column; the next row is written at place `row` of each and stays unless `endRow` moves `row`. */
+  columns: Float64Array[];
+  row: number;
+  /** Value of a cell that is no plain number, NaN = missing. */
+  oddCell: (column: number, text: string) => number;
+  /**
+   * A row is complete.
+   * @param filled cells without empty ones at the end
+   */
+  endRow: (line: number, cells: number, filled: number) => void;
+}
+
+/** Exact powers of ten: the whole-number mantissa of up to 15 digits and 10^k are exact, so one division rounds once. */
+const TEN = Float64Array.from({ length: 16 }, (_, k) => Number(`1e${k}`));
+const MOST_DIGITS = 15;
+/** A quoted cell with line ends in it may be this long; beyond, the quote is taken as a mark of its own. */
+const LONGEST_QUOTED_LINE = 1 << 20;
+/** No table of numbers has such a line; the bound keeps a made-up file from claiming memory. */
+const LONGEST_LINE = 8 << 20;
+const [TAB, CR, SPACE, QUOTE, PLUS, MINUS, ZERO, NINE] = [9, 13, 32, 34, 43, 45, 48, 57];
+
+function refuseLine(line: number): never {
+  throw new FileRefusedError(
+    "line_too_long",
+    `Line ${line} is longer than ${LONGEST_LINE >> 20} MB, which no table of numbers has. Export the log again with one row a line.`,
+  );
+}
+
+/**
+ * Cuts bytes of delimited text into rows of numbers, in one pass and without making strings of plain numbers; feed it piece
+ * by piece, an unfinished line waits for the next piece. Text must be ASCII-compatible (UTF-8, windows-1252).
+ * Same cells as `forEachRow` gives: RFC 4180 quotes, LF, CRLF or CR line ends, blank lines passed over. O(bytes).
+ */
+export function createRowScanner(form: ScanForm, target: RowTarget, decode: (bytes: Uint8Array) => string) {
+  const { width, lastHeadLine, textColumn } = form;
+  const lineEnd = form.lineEnd.charCodeAt(0);
+  const plain = /^[\t;,|:!#&^~/]$/.test(form.delimiter);
+  const delimiter = plain ? form.delimiter.charCodeAt(0) : -1;
+  // A mark that cuts cells can't be the decimal sign as well: then only quoted cells hold one.
+  const decimal = form.decimal === form.delimiter ? -1 : form.decimal.charCodeAt(0);
+  const blankDelimiter = form.delimiter.trim() === "";
+  const whiteTab = delimiter === TAB ? SPACE : TAB;
+  let line = 0;
+  /** The line under way, for whoever asks for its text. */
+  const current: { bytes: Uint8Array; from: number; end: number } = {
+    bytes: new Uint8Array(0),
+    from: 0,
+    end: 0,
+  };
+  let waiting: Uint8Array = new Uint8Array(0);
+
+  /** First position after the line that begins at `from`, quotes minded; −1 when a quoted cell is not closed before `to`. */
+  function logicalEnd(bytes: Uint8Array, from: number, to: number): number {
+    let quotes = 0;
+    for (let i = from; i < to; i++) {
+      if (bytes[i] === QUOTE) quotes++;
+      else if (bytes[i] === lineEnd && quotes % 2 === 0) return i + 1;
+    }
+    return -1;
+  }
+
+  function textLine(bytes: Uint8Array, from: number, end: number): string {
+    let stop = end;
+    if (stop > from && bytes[stop - 1] === lineEnd) stop--;
+    if (stop > from && bytes[stop - 1] === CR) stop--;
+    return decode(bytes.subarray(from, stop));
+  }
+
+  const split = (text: string) =>
+    text.includes('"') ? splitQuoted(text, form.delimiter) : text.split(form.delimiter);
+
+  /** A line with quotes, or any line where the delimiter is no single ASCII character. */
+  function slowLine(bytes: Uint8Array, from: number, to: number, final: boolean): number {
+    let end = logicalEnd(bytes, from, to);
+    if (end < 0 && (final || to - from > LONGEST_QUOTED_LINE)) end = bytes.indexOf(lineEnd, from) + 1;
+    if (end < 0) return from;
+    const text = textLine(bytes, from, end);
+    const at = line + 1;
+    for (let i = from; i < end; i++) if (bytes[i] === lineEnd) line++;
+    if (at <= lastHeadLine || text.trim() === "") return end;
+    Object.assign(current, { bytes, from, end });
+    const cells = split(text);
+    const { columns, row } = target;
+    let filled = 0;
+    for (let c = 0; c < cells.length; c++) {
+      if (cells[c].trim() !== "") filled = c + 1;
+      if (c < width) columns[c][row] = target.oddCell(c, cells[c]);
+    }
+    for (let c = cells.length; c < width; c++) columns[c][row] = Number.NaN;
+    target.endRow(at, cells.length, filled);
+    return end;
+  }
+
+  /** Reads whole lines of [from, to), the last byte of which is a line end; gives the position up to which it came. */
+  function scan(bytes: Uint8Array, from: number, to: number, final: boolean): number {
+    let i = from;
+    lines: while (i < to) {
+      const start = i;
+      if (!plain || line < lastHeadLine) {
+        i = slowLine(bytes, start, to, final);
+        if (i === start) return start;
+        continue;
+      }
+      const { columns, row } = target;
+      let column = 0;
+      let filled = 0;
+      for (; ; column++) {
+        const cellStart = i;
+        let c = bytes[i];
+        while (c === SPACE || c === whiteTab) c = bytes[++i];
+        const negative = c === MINUS;
+        if (negative || c === PLUS) c = bytes[++i];
+        let mantissa = 0;
+        let first = i;
+        while (c >= ZERO && c <= NINE) {
+          mantissa = mantissa * 10 + (c - ZERO);
+          c = bytes[++i];
+        }
+        let digits = i - first;
+        let fraction = 0;
+        if (c === decimal) {
+          c = bytes[++i];
+          first = i;
+          while (c >= ZERO && c <= NINE) {
+            mantissa = mantissa * 10 + (c - ZERO);
+            c = bytes[++i];
+          }
+          fraction = i - first;
+          digits += fraction;
+        }
+        while (c === SPACE || c === whiteTab) c = bytes[++i];
+        if (c === CR && bytes[i + 1] === lineEnd) c = bytes[++i];
+        let value: number;
+        if (
+          (c === delimiter || c === lineEnd) &&
+          digits > 0 &&
+          digits <= MOST_DIGITS &&
+          column !== textColumn
+        ) {
+          value = fraction > 0 ? mantissa / TEN[fraction] : mantissa;
+          if (negative) value = -value;
+          filled = column + 1;
+        } else {
+          while (c !== delimiter && c !== lineEnd && c !== QUOTE) c = bytes[++i];
+          if (c === QUOTE) {
+            i = slowLine(bytes, start, to, final);
+            if (i === start) return start;
+            continue lines;
+          }
+          const stop = c === lineEnd && i > cellStart && bytes[i - 1] === CR ? i - 1 : i;
+          value = Number.NaN;
+          if (stop > cellStart) {
+            const text = decode(bytes.subarray(cellStart, stop));
+            if (text.trim() !== "") {
+              filled = column + 1;
+              if (column < width) value = target.oddCell(column, text);
+            }
+          }
+        }
+        if (column < width) columns[column][row] = value;
+        i++;
+        if (c === lineEnd) break;
+      }
+      line++;
+      const cells = column + 1;
+      if (filled === 0 && (cells === 1 || blankDelimiter)) continue;
+      for (let k = cells; k < width; k++) columns[k][row] = Number.NaN;
+      current.bytes = bytes;
+      current.from = start;
+      current.end = i;
+      target.endRow(line, cells, filled);
+    }
+    return i;
+  }
+
+  function join(tail: Uint8Array): Uint8Array {
+    if (waiting.length === 0) return tail;
+    const joined = new Uint8Array(waiting.length + tail.length);
+    joined.set(waiting);
+    joined.set(tail, waiting.length);
+    return joined;
+  }
+
+  return {
+    /** The cells of the row under way as text; decodes and splits the line, so it is for the rare row only. */
+    texts: (): string[] => split(textLine(current.bytes, current.from, current.end)),
+    push(bytes: Uint8Array): void {
+      const last = bytes.lastIndexOf(lineEnd) + 1;
+      if (last === 0) {
+        if (waiting.length + bytes.length > LONGEST_LINE) refuseLine(line + 1);
+        waiting = join(bytes).slice();
+        return;
+      }
+      // Only the line that was cut in two is copied; an open quote makes the whole piece wait.
+      let from = 0;
+      if (waiting.length > 0) {
+        const first = bytes.indexOf(lineEnd) + 1;
+        const cut = join(bytes.subarray(0, first));
+        const read = scan(cut, 0, cut.length, false);
+        from = first;
+        waiting = cut.subarray(read);
+        if (waiting.length > 0) {
+          const rest = join(bytes.subarray(first, last));
+          waiting = rest.slice(scan(rest, 0, rest.length, false));
+          from = last;
+        }
+      }
+      if (from < last) waiting = bytes.subarray(scan(bytes, from, last, false), last);
+      waiting = join(bytes.subarray(last)).slice();
+    },
+    finish(): void {
+      const rest = join(new Uint8Array([lineEnd]));
+      waiting = new Uint8Array(0);
+      let from = 0;
+      while (from < rest.length) from = scan(rest, from, rest.length, true);
+    },
+  };
+}
