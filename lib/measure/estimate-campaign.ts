@@ -98,7 +98,7 @@ export function estimateCampaign(
         pull && { ...pull, slipping: findSlipping(runs[k], current, pull, (v, a, t) => forceN(k, v, a, t)) },
     );
     pulls = pullSpeeds(runs, model, forceN, checked, round === ROUNDS - 1 ? sharing : null);
-    roads = estimateRoads(runs, model, pulls, drivelines, vehicle);
+    roads = estimateRoads(runs, model, pulls, drivelines);
   }
   if (!model || !pulls || !roads) throw new Error("Nothing was estimated.");
   return { runs, model, pulls, drivelines, gearingFrom, roads };
@@ -135,7 +135,6 @@ function estimateRoads(
   model: SpeedModel,
   pulls: readonly (PullSpeed | null)[],
   drivelines: readonly Driveline[],
-  vehicle: CampaignVehicle,
 ): RunRoad[] {
   const density = runs.map(({ run }) => densityOf(run));
   const meanDensity = density.reduce((sum, x) => sum + x, 0) / density.length;
@@ -152,6 +151,8 @@ function estimateRoads(
       segments,
       track: tracks[k],
       densityRatio: density[k] / meanDensity,
+      massKg: drivelines[k].massKg,
+      neutralMassKg: drivelines[k].massKg + drivelines[k].wheelMassKg,
       pullFit: pulls[k]?.fit ?? null,
     }),
   );
@@ -159,13 +160,7 @@ function estimateRoads(
   for (const name of new Set(runs.map(({ run }) => run.road_day ?? ""))) {
     const members = runs.flatMap(({ run }, k) => ((run.road_day ?? "") === name ? [k] : []));
     const own = members.map((k) => roadRuns[k]);
-    const massKg = members.reduce((sum, k) => sum + massOf(runs[k].run, vehicle), 0) / members.length;
-    const day = estimateRoadDay(
-      own,
-      roadObservations(own, model),
-      massKg,
-      massKg + drivelines[members[0]].wheelMassKg,
-    );
+    const day = estimateRoadDay(own, roadObservations(own, model));
     members.forEach((k, place) => {
       const run = roadRuns[k];
       roads[k] = { day, place, run, resistanceN: (v, t) => day.resistanceN(place, v, positionAt(run, t)) };

@@ -8,7 +8,7 @@ import {
   roadLayout,
   type Scatter,
 } from "@/lib/measure/road/road-equations";
-import type { RoadObservations, RoadRun } from "@/lib/measure/road/road-observations";
+import type { CoastWindow, RoadObservations, RoadRun } from "@/lib/measure/road/road-observations";
 import { type RoadVariance, roadVariance } from "@/lib/measure/road/road-variance";
 import { type NormalEquations, normalEquations, solveNormal } from "@/lib/signal/normal-equations";
 import { STANDARD_GRAVITY_MPS2 } from "@/lib/units/constants";
@@ -24,6 +24,16 @@ export interface RoadDay {
   variance: RoadVariance;
   /** How many runs have a coast-down; 0: all figures are priors only. */
   coastRuns: number;
+  /** Range of road speed that all coast-downs together cover, m/s: from 20 km/h on the losses carry an absolute figure. */
+  coveredMps: number;
+}
+
+/** Coast-downs of all runs must cover this much between them for an absolute figure. */
+const LEAST_COVERED_MPS = 20 / 3.6;
+
+/** True when the coast-downs of a road day, taken together, carry an absolute power. */
+export function carriesAbsolute(day: RoadDay): boolean {
+  return day.coveredMps >= LEAST_COVERED_MPS;
 }
 
 /** Rounds of weighting, wind tangent and road roughness; they settle in four. */
@@ -36,13 +46,8 @@ const PASSES = 4;
  * (bias a run + (1 + pitch)·a + d·g·θ), altitude differences. Weighted least squares with priors; the scatter of each kind of
  * reading is estimated from its own residuals, the roughness of the road by marginal likelihood. Gauss-Newton in the wind.
  */
-export function estimateRoadDay(
-  runs: readonly RoadRun[],
-  observations: RoadObservations,
-  massKg: number,
-  neutralMassKg: number,
-): RoadDay {
-  const weightN = massKg * STANDARD_GRAVITY_MPS2;
+export function estimateRoadDay(runs: readonly RoadRun[], observations: RoadObservations): RoadDay {
+  const massKg = runs.reduce((sum, run) => sum + run.massKg, 0) / runs.length;
   const first = roadLayout(runs.length, 0).size;
   const profile = heightProfile(runs, observations, first);
   const layout = roadLayout(runs.length, profile.size);
@@ -51,11 +56,14 @@ export function estimateRoadDay(
     runs,
     observations,
     slopes: heightRows(profile, observations),
-    weightN,
-    neutralMassKg,
+    massKg,
   };
   let x: Float64Array = new Float64Array(layout.size);
-  x.set([ROAD_PRIOR.rolling[0] * weightN, ROAD_PRIOR.f1NPerMps[0], ROAD_PRIOR.dragAreaHalfDensity[0]]);
+  x.set([
+    ROAD_PRIOR.rolling[0] * massKg * STANDARD_GRAVITY_MPS2,
+    ROAD_PRIOR.f1NPerMps[0],
+    ROAD_PRIOR.dragAreaHalfDensity[0],
+  ]);
   let scatter: Scatter = { coast: 1, tilt: 1, climb: 1 };
   let roughness = 1e-8;
   let data = normalEquations(layout.size);
@@ -83,19 +91,33 @@ function roadDay(
   x: Float64Array,
   variance: RoadVariance,
 ): RoadDay {
-  const { layout, runs, weightN } = problem;
+  const { layout, runs, massKg, observations } = problem;
   return {
     f0N: x[0],
     f1NPerMps: x[1],
     f2NPerMps2: x[2],
     resistanceN: (r, v, s) => {
-      const { densityRatio, track } = runs[r];
+      const { densityRatio, track, massKg: own } = runs[r];
       const air = v - track.direction * (x[layout.wind] + x[layout.runWind(r)]);
-      return x[0] + x[1] * v + x[2] * densityRatio * air * Math.abs(air) + weightN * profile.slopeAt(x, r, s);
+      const rolling = (x[0] * own) / massKg + x[1] * v;
+      const slopeN = own * STANDARD_GRAVITY_MPS2 * profile.slopeAt(x, r, s);
+      return rolling + x[2] * densityRatio * air * Math.abs(air) + slopeN;
     },
     variance,
     coastRuns: runs.filter((run) => run.segments.coast).length,
+    coveredMps: unionMps(observations.windows),
   };
+}
+
+/** Length of the union of speed windows. */
+function unionMps(windows: readonly CoastWindow[]): number {
+  let total = 0;
+  let reached = 0;
+  for (const { lowMps, highMps } of [...windows].sort((a, b) => a.lowMps - b.lowMps)) {
+    total += Math.max(0, highMps - Math.max(lowMps, reached));
+    reached = Math.max(reached, highMps);
+  }
+  return total;
 }
 
 /** Variance of slope change per metre by marginal likelihood, 1e-11 (an airfield) to 1e-6 (a hilly lane). */

@@ -19,23 +19,25 @@ export const ROAD_PRIOR = {
 /** Scatter of a gust within a coast-down block, m/s, and the drag per speed that turns it into force. */
 export const GUST_MPS = 0.3;
 
-/** The unknowns in order: f0, f1, f2, wind, wind of each run, pitch, accelerometer bias of each run, then heights. */
+/** The unknowns in order: f0, f1, f2, wind, wind of each run, pitch, accelerometer bias of each run, resistance beyond the speeds coasted, then heights. */
 export interface RoadLayout {
   size: number;
   wind: number;
   runWind: (run: number) => number;
   pitch: number;
   bias: (run: number) => number;
+  beyond: number;
 }
 
 /** Places of the unknowns for `runs` runs and `heights` height coefficients. */
 export function roadLayout(runs: number, heights: number): RoadLayout {
   return {
-    size: 5 + 2 * runs + heights,
+    size: 6 + 2 * runs + heights,
     wind: 3,
     runWind: (r) => 4 + r,
     pitch: 4 + runs,
     bias: (r) => 5 + runs + r,
+    beyond: 5 + 2 * runs,
   };
 }
 
@@ -52,8 +54,8 @@ export interface RoadProblem {
   runs: readonly RoadRun[];
   observations: RoadObservations;
   slopes: { coasts: SparseRow[]; tilts: SparseRow[]; climbs: SparseRow[] };
-  weightN: number;
-  neutralMassKg: number;
+  /** Mean test mass of the runs: f0 holds for it and goes with each run's mass. */
+  massKg: number;
 }
 
 /** Works out the rows of the height profile for every reading. */
@@ -66,12 +68,14 @@ export function heightRows(profile: HeightProfile, observations: RoadObservation
 }
 
 /** Adds the priors of all unknowns but the heights. */
-export function addPriors(data: NormalEquations, { layout, runs, weightN }: RoadProblem): void {
+export function addPriors(data: NormalEquations, { layout, runs, massKg }: RoadProblem): void {
+  const weightN = massKg * STANDARD_GRAVITY_MPS2;
   const prior = (index: number, mean: number, sd: number) => addRow(data, [index], [1], mean, 1 / sd ** 2);
   prior(0, ROAD_PRIOR.rolling[0] * weightN, ROAD_PRIOR.rolling[1] * weightN);
   prior(1, ROAD_PRIOR.f1NPerMps[0], ROAD_PRIOR.f1NPerMps[1]);
   prior(2, ROAD_PRIOR.dragAreaHalfDensity[0], ROAD_PRIOR.dragAreaHalfDensity[1]);
   prior(layout.wind, ROAD_PRIOR.windMps[0], ROAD_PRIOR.windMps[1]);
+  prior(layout.beyond, 0, 1);
   prior(layout.pitch, ROAD_PRIOR.pitch[0], ROAD_PRIOR.pitch[1]);
   runs.forEach((_, r) => {
     prior(layout.runWind(r), 0, ROAD_PRIOR.windBetweenRunsMps);
@@ -87,21 +91,38 @@ export function resistanceRow(
   slope: SparseRow,
   x: Float64Array,
 ): SparseRow {
-  const { layout, runs, weightN } = problem;
-  const { track, densityRatio } = runs[r];
+  const { layout, runs, massKg, observations } = problem;
+  const { track, densityRatio, massKg: own } = runs[r];
   const air = speedMps - track.direction * (x[layout.wind] + x[layout.runWind(r)]);
   const perWind = -2 * track.direction * x[2] * densityRatio * Math.abs(air);
   return {
-    indices: [0, 1, 2, layout.wind, layout.runWind(r), ...slope.indices],
+    indices: [0, 1, 2, layout.wind, layout.runWind(r), layout.beyond, ...slope.indices],
     values: [
-      1,
+      own / massKg,
       speedMps,
       densityRatio * air * Math.abs(air),
       perWind,
       perWind,
-      ...slope.values.map((value) => value * weightN),
+      beyondN(observations, speedMps),
+      ...slope.values.map((value) => value * own * STANDARD_GRAVITY_MPS2),
     ],
   };
+}
+
+/** How far resistance may depart from the fitted curve outside the speeds that were coasted, N: a tenth of what it grows by. */
+function beyondN({ windows }: RoadObservations, speedMps: number): number {
+  let low = Number.POSITIVE_INFINITY;
+  let high = Number.NEGATIVE_INFINITY;
+  for (const window of windows) {
+    low = Math.min(low, window.lowMps);
+    high = Math.max(high, window.highMps);
+  }
+  const edge = Math.min(high, Math.max(low, speedMps));
+  if (windows.length === 0 || edge === speedMps) return 0;
+  const grown =
+    ROAD_PRIOR.f1NPerMps[0] * (speedMps - edge) +
+    ROAD_PRIOR.dragAreaHalfDensity[0] * (speedMps ** 2 - edge ** 2);
+  return 0.1 * Math.abs(grown);
 }
 
 /** Adds every reading with its weight; returns the factors by which each kind scatters more than it was weighted for. */
@@ -111,7 +132,7 @@ export function addObservations(
   x: Float64Array,
   scatter: Scatter,
 ): Scatter {
-  const { layout, observations, slopes, neutralMassKg } = problem;
+  const { layout, runs, observations, slopes } = problem;
   const standardised = { coast: [] as number[], tilt: [] as number[], climb: [] as number[] };
   const add = (
     list: number[],
@@ -132,6 +153,7 @@ export function addObservations(
     // The wind enters squared: its row is the tangent, the constant that the tangent misses goes to the other side.
     const tangent = -row.values[3] * (x[layout.wind] + x[layout.runWind(o.run)]);
     const gustN = 2 * ROAD_PRIOR.dragAreaHalfDensity[0] * o.speedMps * GUST_MPS;
+    const { neutralMassKg } = runs[o.run];
     const variance = scatter.coast ** 2 * (neutralMassKg ** 2 * o.accelerationVariance + gustN ** 2);
     add(standardised.coast, row, -neutralMassKg * o.accelerationMps2, variance, tangent);
   });

@@ -1,4 +1,4 @@
-import { coastBlocks } from "@/lib/measure/road/road-blocks";
+import { coastBlocks, type SpeedBlock } from "@/lib/measure/road/road-blocks";
 import { type StripTrack, wayAt } from "@/lib/measure/road/strip-position";
 import type { Segments } from "@/lib/measure/run/find-segments";
 import type { RunSignals, SampledChannel } from "@/lib/measure/run/run-signals";
@@ -13,6 +13,9 @@ export interface RoadRun {
   track: StripTrack;
   /** Air density over the day's mean. */
   densityRatio: number;
+  /** Test mass, and with the inertia of the wheels, kg. */
+  massKg: number;
+  neutralMassKg: number;
   /** Smoothed speed of the pull, where there is one. */
   pullFit: SplineFit | null;
 }
@@ -43,8 +46,16 @@ export interface ClimbObservation {
   toM: number;
 }
 
+/** Road speeds that one stretch of coasting covers. */
+export interface CoastWindow {
+  run: number;
+  lowMps: number;
+  highMps: number;
+}
+
 export interface RoadObservations {
   coasts: CoastObservation[];
+  windows: CoastWindow[];
   tilts: TiltObservation[];
   climbs: ClimbObservation[];
 }
@@ -62,18 +73,20 @@ export function positionAt(run: RoadRun, t: number): number {
     wayAt(
       run.signals,
       run.track.wayM,
-      run.segments.pull ? tipInS(run.segments) : (run.segments.coast?.from_s ?? 0),
+      run.segments.pull ? tipInS(run.segments) : (run.segments.coasts[0]?.from_s ?? 0),
     )
   );
 }
 
 /** Gathers everything in the logs of a road day that tells of resistance, wind and slope. */
 export function roadObservations(runs: readonly RoadRun[], model: SpeedModel): RoadObservations {
-  const out: RoadObservations = { coasts: [], tilts: [], climbs: [] };
+  const out: RoadObservations = { coasts: [], windows: [], tilts: [], climbs: [] };
   runs.forEach((run, index) => {
-    const { coast, cruise, pull } = run.segments;
-    if (coast) {
-      for (const block of coastBlocks(run.signals, model, coast.from_s, coast.to_s, COAST_BLOCK_S)) {
+    const { coasts, cruise, pull } = run.segments;
+    for (const coast of coasts) {
+      const blocks = coastBlocks(run.signals, model, coast.from_s, coast.to_s, COAST_BLOCK_S);
+      if (blocks.length > 0) out.windows.push(windowOf(index, blocks));
+      for (const block of blocks) {
         out.coasts.push({
           run: index,
           speedMps: block.speedMps,
@@ -85,7 +98,7 @@ export function roadObservations(runs: readonly RoadRun[], model: SpeedModel): R
     }
     const { acceleration, altitude } = run.signals;
     if (acceleration) {
-      for (const span of [cruise, coast]) {
+      for (const span of [cruise, ...coasts]) {
         if (!span) continue;
         for (const block of coastBlocks(run.signals, model, span.from_s, span.to_s, TILT_BLOCK_S)) {
           addTilt(out.tilts, run, index, acceleration, block.fromS, block.toS, block.accelerationMps2);
@@ -105,6 +118,17 @@ export function roadObservations(runs: readonly RoadRun[], model: SpeedModel): R
     if (altitude && run.track.located) climbsOf(out.climbs, run, index, altitude);
   });
   return out;
+}
+
+function windowOf(run: number, blocks: readonly SpeedBlock[]): CoastWindow {
+  let lowMps = Number.POSITIVE_INFINITY;
+  let highMps = 0;
+  for (const { speedMps, accelerationMps2, fromS, toS } of blocks) {
+    const half = (Math.abs(accelerationMps2) * (toS - fromS)) / 2;
+    lowMps = Math.min(lowMps, speedMps - half);
+    highMps = Math.max(highMps, speedMps + half);
+  }
+  return { run, lowMps, highMps };
 }
 
 function meanBetween(channel: SampledChannel, fromS: number, toS: number): number {

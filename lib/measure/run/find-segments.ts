@@ -1,5 +1,8 @@
+import { accelerationRows } from "@/lib/measure/run/acceleration-rows";
+import { findCoasts } from "@/lib/measure/run/find-coasts";
 import type { RunSignals } from "@/lib/measure/run/run-signals";
 import type { CampaignVehicle, Reason, Span } from "@/lib/measure/types";
+import { lowerBound } from "@/lib/signal/local-quadratic";
 import { median, quantile } from "@/lib/signal/statistics";
 
 /** What one log contains; `reason` says why no pull was found. */
@@ -7,6 +10,9 @@ export interface Segments {
   pull: Span | null;
   /** Steady driving just before the pull, in the same gear. */
   cruise: Span | null;
+  /** All stretches of free rolling, in order of time. */
+  coasts: Span[];
+  /** The one of them over the widest range of speed. */
   coast: Span | null;
   /** True when full load was held through a change of gear: only one gear's part is the pull. */
   gearChange: boolean;
@@ -16,8 +22,6 @@ export interface Segments {
 /** Least share of the way from the start of the pull to the red line (campaign.md start value). */
 const LEAST_RISE = 0.4;
 const LEAST_SAMPLES = 30;
-/** A coast-down of less is no basis for losses: 20 km/h. */
-const LEAST_COAST_FALL_MPS = 20 / 3.6;
 
 /**
  * Finds the pull (full load, one gear, rising engine speed), the steady part before it and the neutral coast-down.
@@ -27,7 +31,7 @@ export function findSegments(signals: RunSignals, vehicle: CampaignVehicle, perM
   const none = (reason: Reason): Segments => ({
     pull: null,
     cruise: null,
-    coast: findCoast(signals, 0, perMps),
+    ...coastsOf(signals, null, perMps),
     gearChange: false,
     reason,
   });
@@ -76,7 +80,7 @@ export function findSegments(signals: RunSignals, vehicle: CampaignVehicle, perM
   return {
     pull,
     cruise: findCruise(signals, first),
-    coast: findCoast(signals, last, locked),
+    ...coastsOf(signals, [first, last], locked),
     gearChange: pieces.length > spans.length,
     reason: null,
   };
@@ -128,29 +132,6 @@ function risingSpans(signals: RunSignals): [number, number][] {
     else spans.push([i, i]);
   }
   return spans.filter(([a, b]) => signals.timeS[b] - signals.timeS[a] >= 1.5);
-}
-
-/**
- * Acceleration a row: difference of the mean finding speeds of the `widthS` after and before it; O(rows). Rough on purpose,
- * for finding segments only.
- */
-function accelerationRows(signals: RunSignals, widthS: number): Float64Array {
-  const { timeS, speedRows } = signals;
-  const n = timeS.length;
-  const width = Math.max(1, Math.round(widthS * signals.rateHz));
-  const sum = new Float64Array(n + 1);
-  const timeSum = new Float64Array(n + 1);
-  for (let i = 0; i < n; i++) {
-    sum[i + 1] = sum[i] + speedRows[i];
-    timeSum[i + 1] = timeSum[i] + timeS[i];
-  }
-  return timeS.map((_, i) => {
-    const a = Math.max(0, i - width);
-    const b = Math.min(n, i + width);
-    if (i - a < 1 || b - i < 1) return Number.NaN;
-    const rise = (sum[b] - sum[i]) / (b - i) - (sum[i] - sum[a]) / (i - a);
-    return rise / ((timeSum[b] - timeSum[i]) / (b - i) - (timeSum[i] - timeSum[a]) / (i - a));
-  });
 }
 
 /** Splits a span where the gear channel changes or the ratio of engine to road speed jumps. */
@@ -211,41 +192,21 @@ function findCruise(signals: RunSignals, pullRow: number): Span | null {
   return timeS[stop] - timeS[i] >= 0.6 ? { from_s: timeS[i], to_s: timeS[stop] } : null;
 }
 
-/** The longest coast-down after row `after`: load closed, engine off the wheels, speed falling gently. */
-function findCoast(signals: RunSignals, after: number, perMps: number | null): Span | null {
-  const { timeS, speedRows, loadRows, engineRows, gearRows } = signals;
-  const acceleration = accelerationRows(signals, 0.8);
-  const closed = loadRows ? Math.min(quantile(loadRows, 0.02) + 5, 20) : 0;
-  const free = (i: number): boolean => {
-    if (loadRows && !(loadRows[i] <= closed)) return false;
-    if (!(acceleration[i] < 0.3 && acceleration[i] > -1.8) || speedRows[i] < 4) return false;
-    if (gearRows && Number.isFinite(gearRows[i]) && Math.round(gearRows[i]) === 0) return true;
-    if (engineRows && perMps) return Math.abs(engineRows[i] / (speedRows[i] * perMps) - 1) > 0.15;
-    return !engineRows && !gearRows;
-  };
-  let best: [number, number] | null = null;
-  let start = -1;
-  let misses = 0;
-  for (let i = after; i <= timeS.length; i++) {
-    const is = i < timeS.length && free(i);
-    if (is) {
-      if (start < 0) start = i;
-      misses = 0;
-    } else if (start >= 0 && (i === timeS.length || ++misses > 0.3 * signals.rateHz)) {
-      const end = i - misses - (i === timeS.length ? 1 : 0);
-      if (!best || speedRows[start] - speedRows[end] > speedRows[best[0]] - speedRows[best[1]])
-        best = [start, end];
-      start = -1;
-      misses = 0;
-    }
-  }
-  if (!best) return null;
-  // The driveline needs a moment to come to rest after the gear goes out; a braked or re-engaged end is cut as well.
-  const from = timeS[best[0]] + 0.6;
-  const to = timeS[best[1]] - 0.5;
-  let i = best[0];
-  while (i < best[1] && timeS[i] < from) i++;
-  let j = best[1];
-  while (j > i && timeS[j] > to) j--;
-  return speedRows[i] - speedRows[j] >= LEAST_COAST_FALL_MPS ? { from_s: timeS[i], to_s: timeS[j] } : null;
+function coastsOf(
+  signals: RunSignals,
+  pull: [number, number] | null,
+  perMps: number | null,
+): Pick<Segments, "coast" | "coasts"> {
+  const coasts = findCoasts(signals, pull, perMps);
+  return { coasts, coast: widest(signals, coasts) };
+}
+
+/** The piece over the widest range of speed; null without any. */
+function widest({ timeS, speedRows }: RunSignals, coasts: readonly Span[]): Span | null {
+  const speedAt = (t: number) => speedRows[Math.min(timeS.length - 1, lowerBound(timeS, t))];
+  const fall = (span: Span) => speedAt(span.from_s) - speedAt(span.to_s);
+  return coasts.reduce<Span | null>(
+    (best, span) => (best === null || fall(span) > fall(best) ? span : best),
+    null,
+  );
 }

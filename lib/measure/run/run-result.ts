@@ -6,8 +6,16 @@ import { type PowerSensitivity, powerSensitivity } from "@/lib/measure/curve/pow
 import { type GridCurve, gridCurve, pullPoints } from "@/lib/measure/curve/pull-curve";
 import { COVERAGE, combined, runParts, uncertaintyBudget } from "@/lib/measure/curve/uncertainty-budget";
 import type { CampaignEstimate } from "@/lib/measure/estimate-campaign";
+import { maskedSpans } from "@/lib/measure/judge/consequence";
+import { judgePull } from "@/lib/measure/judge/judge-pull";
+import { lossSource } from "@/lib/measure/road/loss-source";
+import { carriesAbsolute } from "@/lib/measure/road/road-day";
 import { SPEED_SOURCES, type SpeedSource } from "@/lib/measure/speed/speed-model";
-import { rollOnTimes } from "@/lib/measure/sprint/sprint";
+import { motionTrace } from "@/lib/measure/sprint/acceleration";
+import type { FallInput } from "@/lib/measure/sprint/add-falls";
+import { ownFall } from "@/lib/measure/sprint/net-fall";
+import { rollOnTimes } from "@/lib/measure/sprint/roll-on";
+import { timingsOf } from "@/lib/measure/sprint/timings";
 import type {
   Campaign,
   CampaignRun,
@@ -17,7 +25,6 @@ import type {
   PowerCurve,
   RunResult,
 } from "@/lib/measure/types";
-import { rpmPerMps } from "@/lib/measure/vehicle/vehicle";
 import { evaluateSpline } from "@/lib/signal/penalised-spline";
 import { RPM_RADPS } from "@/lib/units/constants";
 
@@ -45,7 +52,7 @@ function runFactor(campaign: Campaign, run: CampaignRun): FactorResult {
 }
 
 /** What a run's pull gives, and its curve on the common grid for the comparison. */
-export interface PullResult {
+export interface PullResult extends FallInput {
   result: Pick<
     RunResult,
     "speed_source" | "loss" | "factor" | "curve" | "peak" | "times_s" | "times_uncertainty_s" | "notes"
@@ -76,32 +83,33 @@ export function pullResult(
     estimate.model.slipPerN,
     estimate.roads[index].resistanceN,
   );
-  const spans = [...pull.slipping, ...extra.filter((note) => note.code === "gap")];
-  const inside = (t: number) => spans.some((s) => t >= (s.from_s ?? 0) && t <= (s.to_s ?? -1));
+  const spans = [...pull.slipping, ...maskedSpans(extra)];
+  const inside = (t: number) => spans.some((s) => t >= s.from_s && t <= s.to_s);
   const grid = gridCurve(points, campaign.settings.rpm_step, inside);
   const factor = runFactor(campaign, run);
   const { day } = estimate.roads[index];
-  const absolute = day.coastRuns > 0;
+  const absolute = carriesAbsolute(day);
   const notes = pull.slipping.map(
     (span): Note => ({
       code: span.code,
+      consequence: "masked",
       from_s: span.from_s,
       to_s: span.to_s,
       message:
         span.code === "wheel_spin"
-          ? "The driven wheels spin; the engine speeds in this span are left out."
-          : "Engine speed runs ahead of the driven wheels (clutch or converter slip); the engine speeds in this span are left out.",
+          ? "The driven wheels spin; the engine speeds in this span are left out. Warm the tyres, or use a higher gear."
+          : "Engine speed runs ahead of the driven wheels (clutch or converter slip); the engine speeds in this span are left out. Lock the converter, or look at the clutch.",
     }),
   );
-  notes.push(...doubts(estimate, index, campaign.vehicle, factor, absolute));
+  notes.push(...judgePull(estimate, index, campaign.vehicle, { factor, absolute, torqueNm: grid.engineNm }));
   const curve = absolute ? powerCurve(grid, factor) : null;
+  const speedMps = evaluateSpline(pull.fit, points.t);
   const times = rollOnTimes(
     points.t,
-    evaluateSpline(pull.fit, points.t),
-    0.01,
-    estimate.model.scaleUncertainty,
+    speedMps,
+    { deviationMps: 0.01, scale: estimate.model.scaleUncertainty },
+    timingsOf(campaign.settings).pairs,
   );
-  const { coast } = estimate.runs[index].segments;
   const sensitivities = new Map(
     grid.rpm.map((rpm, k) => [rpm, powerSensitivity(estimate, campaign.vehicle, index, grid, k)]),
   );
@@ -109,6 +117,8 @@ export function pullResult(
   const basis = budgetBasis(estimate, campaign.vehicle, index);
   return {
     grid,
+    fall: ownFall(signals.altitude, motionTrace(points.t, speedMps), pull.tipInS, pull.toS),
+    sensitivityS: times.sensitivityS,
     sensitivityAt,
     basis,
     factorUncertainty: factorUncertainty(factor.id, run.weather, campaign.vehicle),
@@ -119,7 +129,7 @@ export function pullResult(
             f0_n: day.f0N,
             f1_n_per_mps: day.f1NPerMps,
             f2_n_per_mps2: day.f2NPerMps2,
-            source: day.coastRuns === 1 && coast ? "run" : "road day",
+            source: lossSource(estimate, index),
           }
         : null,
       factor,
@@ -183,52 +193,4 @@ function runPeak(
     uncertainty_nm: COVERAGE * combined(runParts(atTorque, "torque")) * peak.engine_nm,
     budget,
   };
-}
-
-function doubts(
-  estimate: CampaignEstimate,
-  index: number,
-  vehicle: CampaignVehicle,
-  factor: FactorResult,
-  absolute: boolean,
-): Note[] {
-  const notes: Note[] = [];
-  const { run, segments } = estimate.runs[index];
-  if (!absolute) {
-    notes.push({
-      code: "no_coast_down",
-      message:
-        "Neither this run nor its road day has a neutral coast-down over 20 km/h or more: a difference can be shown, an absolute power can't.",
-    });
-  } else if (!segments.coast) {
-    notes.push({
-      code: "no_own_coast_down",
-      message: "This run has no coast-down of its own; the losses come from the road day's other runs.",
-    });
-  }
-  const measured = estimate.model.channels.get("engineSpeed")?.scale;
-  const stated = rpmPerMps(vehicle, run.gear)?.value;
-  // Neighbouring gears differ by more than 12 %; tyre wear and growth stay below 4 % [common practice, no source].
-  if (measured && stated && Math.abs(measured / stated - 1) > 0.06) {
-    notes.push({
-      code: "gear_disagrees",
-      message: `Engine and road speed fit ${(100 * (measured / stated - 1)).toFixed(0)} % away from gear ${run.gear} of the vehicle sheet; what was measured is used. Check the gear and the sheet.`,
-    });
-  }
-  if (factor.in_range === false) notes.push({ code: "factor_out_of_range", message: factor.why });
-  const { track } = estimate.roads[index].run;
-  if (track.located && run.leg && (run.leg === "out" ? 1 : -1) !== track.direction) {
-    notes.push({
-      code: "leg_disagrees",
-      message: `The GPS track runs against the leg that was typed (${run.leg}). Check out and back.`,
-    });
-  }
-  if (estimate.model.scaleFrom !== "gps") {
-    notes.push({
-      code: "scale_not_checked",
-      message:
-        "Without a GPS speed the wheel speed's scale is taken as it is; the absolute figures carry its error twice.",
-    });
-  }
-  return notes;
 }

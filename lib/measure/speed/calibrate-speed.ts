@@ -78,7 +78,7 @@ export function calibrateSpeed(
     const series = [
       { times: channel.times, values: channel.values.map((v) => v / nominal(base)), weight: 1 / noise ** 2 },
     ];
-    const { pull, coast } = run.segments;
+    const { pull, coasts } = run.segments;
     if (pull) {
       const tip = tipInS(run.segments);
       stretches.push({
@@ -89,7 +89,7 @@ export function calibrateSpeed(
         pull: true,
       });
     }
-    if (coast) {
+    for (const coast of coasts) {
       stretches.push({
         run,
         stretch: speedStretch(series, coast.from_s, coast.to_s, 0.5, null),
