@@ -1,0 +1,152 @@
+import { deltaBand } from "@/lib/compare/delta-band";
+import { type ComparedRun, type RunDesign, runDesign } from "@/lib/compare/run-design";
+import { LEAST_RUNS, sideEffect } from "@/lib/compare/side-effect";
+import {
+  type ChannelDifference,
+  ENGINE_CHANNELS,
+  type EngineChannel,
+  type RunFullLoad,
+} from "@/lib/measure/engine/full-load-types";
+import { valuesOn } from "@/lib/measure/engine/values-on";
+import type { CampaignVehicle, Series } from "@/lib/measure/types";
+
+/** A usable pull with its engine channels. */
+export interface LoadedPull extends ComparedRun {
+  fullLoad: RunFullLoad;
+}
+
+export interface ChannelSettings {
+  a: string;
+  b: string;
+  level: number;
+  seed: number;
+  resamples: number;
+  engine: CampaignVehicle["engine"];
+}
+
+/** Residual variance is pooled over this much to each side, 1/min, as for torque. */
+const POOL_RPM = 400;
+
+/**
+ * B − A of every engine channel that both sides carry: at each engine speed by the linear model of the torque comparison
+ * (side, leg, order, road day), with a band that holds this channel's whole curve at once where three runs a side carry it.
+ */
+export function compareChannels(
+  pulls: readonly LoadedPull[],
+  settings: ChannelSettings,
+): Partial<Record<EngineChannel, ChannelDifference>> {
+  const out: Partial<Record<EngineChannel, ChannelDifference>> = {};
+  for (const name of ENGINE_CHANNELS) {
+    const runs = pulls.filter(
+      ({ side, fullLoad }) => (side === settings.a || side === settings.b) && fullLoad.channels[name],
+    );
+    const found = compareOne(name, runs, settings);
+    if (found) out[name] = found;
+  }
+  return out;
+}
+
+function compareOne(
+  name: EngineChannel,
+  runs: readonly LoadedPull[],
+  settings: ChannelSettings,
+): ChannelDifference | null {
+  const countOf = (side: string) => runs.filter((run) => run.side === side).length;
+  const counts = { n_a: countOf(settings.a), n_b: countOf(settings.b) };
+  const smallest = Math.min(counts.n_a, counts.n_b);
+  if (smallest === 0) return null;
+  const built = runDesign(runs, settings.b);
+  const design =
+    "matrix" in built && smallest >= LEAST_RUNS && runs.length - built.columns >= 2 ? built : null;
+  const all = [...new Set(runs.flatMap(({ fullLoad }) => fullLoad.rpm))].sort((x, y) => x - y);
+  const rows = runs.map(({ fullLoad }) => valuesOn(all, fullLoad.rpm, fullLoad.channels[name]?.values ?? []));
+  const least = design ? LEAST_RUNS : 1;
+  const kept = all.flatMap((_, k) => {
+    const at = (side: string) => rows.filter((row, r) => runs[r].side === side && row[k] !== null).length;
+    const [a, b] = [at(settings.a), at(settings.b)];
+    return a >= least && b >= least && (!design || a + b - design.columns >= 2) ? [k] : [];
+  });
+  const rpm = kept.map((k) => all[k]);
+  const values = rows.map((row) => kept.map((k) => row[k]));
+  const band = design && bandOf(rpm, values, design, smallest, settings);
+  const plain = kept.map((_, k) => meanOf(values, runs, settings.b, k) - meanOf(values, runs, settings.a, k));
+  const gaps = kept.map(() => null);
+  return {
+    ...counts,
+    rpm,
+    difference: band?.difference ?? plain,
+    low: band?.low ?? gaps,
+    high: band?.high ?? gaps,
+    level: settings.level,
+    simultaneous: band !== null,
+    method: band
+      ? `Linear model with ${band.names}; ${band.method}.`
+      : !design
+        ? "Difference of the sides' means only: too few runs, or the side can't be told apart from leg, order or road day."
+        : "Difference of the sides' means only: the channel does not scatter between runs (a coarse step), so its scatter is not known.",
+    worst: worstOf(name, runs, design, settings),
+  };
+}
+
+/** The simultaneous band; null where the channel shows no scatter at all at some engine speed. */
+function bandOf(
+  rpm: readonly number[],
+  values: readonly Series[],
+  design: RunDesign,
+  smallest: number,
+  settings: ChannelSettings,
+): (Pick<ChannelDifference, "difference" | "low" | "high"> & { names: string; method: string }) | null {
+  if (rpm.length === 0) return null;
+  const flat = Float64Array.from(values.flatMap((row) => row.map((value) => value ?? Number.NaN)));
+  const band = deltaBand(flat, rpm.length, design.matrix, design.columns, design.side, design.order, {
+    level: settings.level,
+    seed: settings.seed,
+    resamples: settings.resamples,
+    small: smallest === LEAST_RUNS,
+    pool: rpm.length > 1 ? Math.round(POOL_RPM / (rpm[1] - rpm[0])) : 0,
+  });
+  const scale = Math.max(...flat.map((value) => Math.abs(value || 0)));
+  if (!Number.isFinite(band.critical) || band.standardError.some((se) => !(se > 1e-9 * scale))) return null;
+  const effect = Array.from(band.effect);
+  const half = Array.from(band.standardError, (se) => band.critical * se);
+  return {
+    difference: effect,
+    low: effect.map((x, k) => x - half[k]),
+    high: effect.map((x, k) => x + half[k]),
+    names: design.names.slice(1).join(", "),
+    method: `${band.method}, critical value ${band.critical.toFixed(3)}, ${band.df} degrees of freedom`,
+  };
+}
+
+function meanOf(values: readonly Series[], runs: readonly ComparedRun[], side: string, k: number): number {
+  const there = values.flatMap((row, r) => {
+    const value = row[k];
+    return runs[r].side === side && value !== null ? [value] : [];
+  });
+  return there.reduce((sum, x) => sum + x, 0) / there.length;
+}
+
+/** A petrol engine runs hot when lean, a diesel smokes when rich; of all else the highest value is the worst. */
+function worstOf(
+  name: EngineChannel,
+  runs: readonly LoadedPull[],
+  design: RunDesign | null,
+  settings: ChannelSettings,
+): ChannelDifference["worst"] {
+  const of = name === "lambda" && settings.engine === "compression ignition" ? "min" : "max";
+  const values = runs.map(({ fullLoad }) => fullLoad.channels[name]?.[of].value ?? null);
+  const worst = (side: string) => {
+    const own = values.filter((value, r): value is number => value !== null && runs[r].side === side);
+    return of === "max" ? Math.max(...own) : Math.min(...own);
+  };
+  const [a, b] = [worst(settings.a), worst(settings.b)];
+  const mean = sideEffect(runs, values, design, settings);
+  return {
+    of,
+    a,
+    b,
+    difference: b - a,
+    mean_difference: mean?.effect ?? b - a,
+    half_width: mean?.half || null,
+  };
+}
