@@ -3,18 +3,16 @@ import { defaultRanges, rangeMeans } from "@/lib/compare/range-means";
 import { type ComparedRun, type RunDesign, runDesign } from "@/lib/compare/run-design";
 import { LEAST_RUNS, sideEffect } from "@/lib/compare/side-effect";
 import { findTwins } from "@/lib/compare/twins";
-import { groupOf, welch } from "@/lib/compare/two-means";
 import { verdictRegions } from "@/lib/compare/verdict-regions";
 import type { DeltaResult, Reason } from "@/lib/measure/types";
 import { tQuantile } from "@/lib/signal/distributions";
 
-/** A usable pull with what is compared: torque on the shared basis, its peaks, its times. */
+/** A usable pull with what is compared: torque on the shared basis, its peaks. */
 export interface ComparedPull extends ComparedRun {
   /** N·m on the common grid, null = gap. */
   engineNm: (number | null)[];
   peakKw: number | null;
   peakNm: number | null;
-  timesS: Readonly<Record<string, number>>;
 }
 
 export interface CompareSettings {
@@ -76,7 +74,6 @@ export function compareSides(
     level: settings.level,
     twins,
     peak_difference: peakDifference(runs, usable, settings),
-    times_difference: timesDifference(runs, settings),
     range_means: rangeMeans(rpm, runs, settings.ranges ?? defaultRanges(grid), usable, settings),
     warnings,
   };
@@ -170,28 +167,4 @@ function peakDifference(
   );
   if (!kw || !nm) return null;
   return { engine_kw: kw.effect, half_width_kw: kw.half, engine_nm: nm.effect, half_width_nm: nm.half };
-}
-
-function timesDifference(
-  runs: readonly ComparedPull[],
-  settings: CompareSettings,
-): DeltaResult["times_difference"] {
-  const out: NonNullable<DeltaResult["times_difference"]> = {};
-  for (const name of [...new Set(runs.flatMap((run) => Object.keys(run.timesS)))]) {
-    const of = (side: string) =>
-      runs.flatMap((run) => (run.side === side && run.timesS[name] !== undefined ? [run.timesS[name]] : []));
-    const a = groupOf(of(settings.a));
-    const b = groupOf(of(settings.b));
-    if (a.n === 0 || b.n === 0) continue;
-    const test = welch(a, b, settings.level);
-    out[name] = {
-      a_s: a.mean,
-      b_s: b.mean,
-      difference_s: b.mean - a.mean,
-      half_width_s: test && (test.high - test.low) / 2,
-      n_a: a.n,
-      n_b: b.n,
-    };
-  }
-  return out;
 }

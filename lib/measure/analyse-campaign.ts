@@ -1,3 +1,5 @@
+import { addTimes } from "@/lib/compare/add-times";
+import { compareChannels } from "@/lib/compare/compare-channels";
 import { type ComparedPull, compareSides } from "@/lib/compare/compare-sides";
 import { repeatability } from "@/lib/compare/repeatability";
 import type { FileRefusedError } from "@/lib/errors";
@@ -5,11 +7,17 @@ import type { LogTable } from "@/lib/logs/types";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
 import { peakOfCurve } from "@/lib/measure/curve/peak-of-curve";
 import { sideResults } from "@/lib/measure/curve/side-result";
+import { findAnomalies } from "@/lib/measure/engine/curve-anomalies";
+import { runFullLoad } from "@/lib/measure/engine/full-load";
+import type { RunFullLoad } from "@/lib/measure/engine/full-load-types";
+import { sideFullLoad } from "@/lib/measure/engine/side-full-load";
 import { type CampaignEstimate, estimateCampaign, type ReadyRun } from "@/lib/measure/estimate-campaign";
 import { roundResult } from "@/lib/measure/round-result";
 import { type PreparedRun, prepareRun } from "@/lib/measure/run/prepare-run";
 import { type PullResult, pullResult } from "@/lib/measure/run/run-result";
-import { measureSprint } from "@/lib/measure/sprint/sprint";
+import { addFalls, type FallInput } from "@/lib/measure/sprint/add-falls";
+import { type MeasuredSprint, measureSprint, type SprintResult } from "@/lib/measure/sprint/sprint";
+import { timingsOf } from "@/lib/measure/sprint/timings";
 import type {
   Campaign,
   CampaignResult,
@@ -27,6 +35,7 @@ const RESAMPLES = 2000;
 interface AnalysedPull {
   run: CampaignRun;
   pull: PullResult;
+  fullLoad: RunFullLoad | undefined;
 }
 
 /**
@@ -68,12 +77,22 @@ export function analyseCampaign(
       if (result) analysed.set(run.id, result);
     });
   }
-  const runs = prepared.map((p) => runResult(p, analysed.get(p.run.id), vehicle));
+  const timings = timingsOf(campaign.settings);
+  const sprints = new Map(
+    prepared.flatMap((p): [string, MeasuredSprint][] =>
+      p.run.kind === "sprint" && p.table && p.signals ? [[p.run.id, measureSprint(p.table, timings)]] : [],
+    ),
+  );
+  const runs = prepared.map((p) =>
+    runResult(p, analysed.get(p.run.id), vehicle, sprints.get(p.run.id)?.result),
+  );
+  addFalls(campaign, runs, new Map<string, FallInput>([...analysed, ...sprints]));
   const usable = campaign.runs.flatMap((run, k): AnalysedPull[] => {
     const pull = analysed.get(run.id);
-    return pull && runs[k].usable && run.kind === "pull" ? [{ run, pull }] : [];
+    const fullLoad = runs[k].full_load;
+    return pull && runs[k].usable && run.kind === "pull" ? [{ run, pull, fullLoad }] : [];
   });
-  return roundResult({ analysis_version: ANALYSIS_VERSION, runs, ...sidesAndDelta(campaign, usable) });
+  return roundResult({ analysis_version: ANALYSIS_VERSION, runs, ...sidesAndDelta(campaign, usable, runs) });
 }
 
 /** Analyses one run alone: its verdict, segments, curve and times, with the losses of its own coast-down. */
@@ -86,13 +105,17 @@ export function analyseRun(
   return analyseCampaign({ campaign: 1, vehicle, runs: [run], settings }, new Map([[run.id, log]])).runs[0];
 }
 
-function runResult(prepared: PreparedRun, pull: PullResult | undefined, vehicle: CampaignVehicle): RunResult {
+function runResult(
+  prepared: PreparedRun,
+  pull: PullResult | undefined,
+  vehicle: CampaignVehicle,
+  sprint: SprintResult | undefined,
+): RunResult {
   const { run, table, signals, segments, reasons, notes } = prepared;
   const base: RunResult = { id: run.id, usable: reasons.length === 0, reasons, notes };
   if (!signals || !table) return base;
   base.sample_rate_hz = signals.rateHz;
-  if (run.kind === "sprint") {
-    const sprint = measureSprint(table, vehicle);
+  if (run.kind === "sprint" && sprint) {
     if (Object.keys(sprint.times_s).length === 0) {
       reasons.push({
         code: "no_sprint_found",
@@ -112,12 +135,19 @@ function runResult(prepared: PreparedRun, pull: PullResult | undefined, vehicle:
     }
     return { ...base, usable: reasons.length === 0, speed_source: signals.speedName };
   }
-  return { ...base, ...pull.result, notes: [...notes, ...pull.result.notes] };
+  const fullLoad = segments?.pull && runFullLoad(table, pull.grid, segments.pull, vehicle);
+  return {
+    ...base,
+    ...pull.result,
+    notes: [...notes, ...pull.result.notes],
+    ...(fullLoad && { full_load: fullLoad }),
+  };
 }
 
 function sidesAndDelta(
   campaign: Campaign,
   usable: readonly AnalysedPull[],
+  results: readonly RunResult[],
 ): Pick<CampaignResult, "repeatability" | "sides" | "delta" | "warnings"> {
   const warnings: Reason[] = [];
   const gear = commonGear(usable);
@@ -188,19 +218,20 @@ function sidesAndDelta(
       engineNm,
       peakKw: peak?.engine_kw ?? null,
       peakNm: peak?.engine_nm ?? null,
-      timesS: m.pull.result.times_s ?? {},
     };
   });
-  const delta = compare
-    ? compareSides(rpm, compared, {
-        a: compare.a,
-        b: compare.b,
-        basis,
-        level: settings.level,
-        seed: settings.seed,
-        resamples: RESAMPLES,
-      })
-    : undefined;
+  const loaded = pulls.flatMap(({ fullLoad }, k) => (fullLoad ? [{ ...compared[k], fullLoad }] : []));
+  const curvesOf = (name: string) => compared.flatMap((c) => (c.side === name ? [c.engineNm] : []));
+  const found = findAnomalies(rpm, Object.fromEntries(names.map((n) => [n, curvesOf(n)])), settings.level);
+  for (const name of names) {
+    sides[name].full_load = sideFullLoad(loaded.filter((one) => one.side === name));
+    Object.assign(sides[name], found[name]);
+  }
+  const model = compare && { ...compare, level: settings.level, seed: settings.seed, resamples: RESAMPLES };
+  const curves = model && compareSides(rpm, compared, { ...model, basis, ranges: settings.rpm_ranges });
+  const pullIds = new Set(pulls.map(({ run }) => run.id));
+  const delta = model && addTimes(curves ?? null, campaign, results, pullIds, basis);
+  if (delta && model) delta.channels = compareChannels(loaded, { ...model, engine: campaign.vehicle.engine });
   return { repeatability: compare ? repeatability(rpm, compared) : undefined, sides, delta, warnings };
 }
 

@@ -4,6 +4,8 @@ import type {
   RunFullLoad,
   SideFullLoad,
 } from "@/lib/measure/engine/full-load-types";
+import type { CurveAnomaly, Smoothness } from "@/lib/measure/engine/smoothness-types";
+import type { RunTimings, TimeDifference } from "@/lib/measure/sprint/time-types";
 
 /**
  * Input and output of the analysis. The spelling is that of the campaign file and of the result that
@@ -78,6 +80,11 @@ export interface CampaignSettings {
   seed: number;
   /** Ranges over which the difference is averaged, 1/min; absent: the compared range and its thirds. */
   rpm_ranges?: [number, number][] | null;
+  /** Timed beside the usual ranges and distances. */
+  speed_pairs?: ({ from_kmh: number; to_kmh: number } | { from_mph: number; to_mph: number })[] | null;
+  distances_m?: number[] | null;
+  /** Net fall of a sprint beyond which it gets a note, %; absent: 0.5. */
+  fall_limit_pct?: number | null;
 }
 
 export interface Campaign {
@@ -166,7 +173,7 @@ export interface Peak {
   budget?: UncertaintyBudget | null;
 }
 
-export interface RunResult {
+export interface RunResult extends RunTimings {
   id: string;
   usable: boolean;
   reasons: Note[];
@@ -183,31 +190,7 @@ export interface RunResult {
   factor?: FactorResult;
   curve?: PowerCurve | null;
   peak?: Peak | null;
-  times_s?: Record<string, number>;
-  times_uncertainty_s?: Record<string, number>;
-  speed_at_kmh?: Record<string, number>;
-  trap_kmh?: Record<string, number>;
   full_load?: RunFullLoad;
-}
-
-/** A stretch of a side's mean curve that leaves its local fit by more than the runs' scatter explains. */
-export interface CurveAnomaly {
-  code: "spike" | "ripple";
-  from_rpm: number;
-  to_rpm: number;
-  /** Largest deviation from the local fit, signed. */
-  size_pct: number;
-  /** What it had to exceed there. */
-  limit_pct: number;
-  /** Runs that deviate there by more than half of it to the same side, of those that cover it. */
-  runs: { showing: number; of: number };
-}
-
-/** Deviation of a side's mean curve from its local fit; null where it can't be judged. */
-export interface Smoothness {
-  rpm: number[];
-  deviation_pct: Series;
-  half_width_pct: Series;
 }
 
 export interface SideResult {
@@ -269,10 +252,7 @@ export interface DeltaResult {
     half_width_nm: number | null;
   } | null;
   /** Differences of times (B − A) with their own interval, per name as in `times_s`. */
-  times_difference?: Record<
-    string,
-    { a_s: number; b_s: number; difference_s: number; half_width_s: number | null; n_a: number; n_b: number }
-  >;
+  times_difference?: Record<string, TimeDifference>;
   range_means?: RangeMean[];
   /** Engine channels at full load that both sides carry. */
   channels?: Partial<Record<EngineChannel, ChannelDifference>>;

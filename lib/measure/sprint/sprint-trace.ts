@@ -1,6 +1,7 @@
 import type { RunSignals, SampledChannel } from "@/lib/measure/run/run-signals";
 import { type MotionTrace, motionTrace } from "@/lib/measure/sprint/acceleration";
 import { findLaunch, type Launch } from "@/lib/measure/sprint/launch";
+import type { TraceUncertainty } from "@/lib/measure/sprint/timing-uncertainty";
 import type { Note } from "@/lib/measure/types";
 import { crossCorrelationLag } from "@/lib/signal/cross-correlation";
 import { localQuadratic, lowerBound } from "@/lib/signal/local-quadratic";
@@ -12,9 +13,9 @@ export interface SprintTrace {
   source: "undriven wheel" | "gps" | "driven wheel";
   /** First motion; null when the run did not begin at rest. */
   launch: Launch | null;
-  /** Standard deviation of the speed at a crossing, m/s, and relative uncertainty of its scale. */
-  deviationMps: number;
-  scaleUncertainty: number;
+  uncertainty: TraceUncertainty;
+  /** Noise of the speed channel as it was logged, m/s. */
+  startNoiseMps: number;
   notes: Note[];
 }
 
@@ -29,6 +30,11 @@ const FUSE_S = 1;
 /** GPS may follow the wheels by as much as this. */
 const MAX_LAG_S = 0.5;
 const GRID_S = 0.02;
+/** A wheel's scale is taken from GPS wherever there is one; it is told from this much on. */
+const LEAST_TOLD_SCALE = 0.002;
+/** Relative uncertainty of the scale: satellite speed by Doppler, wheel speed by tyre size and wear; common practice, no source. */
+const GPS_SCALE = 0.0005;
+const WHEEL_SCALE = 0.01;
 
 /** Linear value of a channel at a time inside it. */
 function at(channel: SampledChannel, t: number): number {
@@ -150,7 +156,7 @@ export function sprintTrace(signals: RunSignals): SprintTrace | null {
   let channel = signals.undriven ?? signals.gps ?? signals.driven;
   if (!channel) return null;
   const notes: Note[] = [];
-  let scaleUncertainty = source === "gps" ? 0.001 : 0.01;
+  let scaleUncertainty = source === "gps" ? GPS_SCALE : WHEEL_SCALE;
   if (source !== "gps" && signals.gps) {
     const compared = compareWithGps(channel, signals.gps);
     if (compared) {
@@ -158,14 +164,16 @@ export function sprintTrace(signals: RunSignals): SprintTrace | null {
         code: "gps_latency",
         message: `GPS speed follows the wheel speed by ${compared.lagS.toFixed(3)} s.`,
       });
-      scaleUncertainty = Math.hypot(0.001, compared.uncertainty);
+      scaleUncertainty = Math.hypot(GPS_SCALE, compared.uncertainty);
       const { scale } = compared;
-      if (source === "undriven wheel" && Math.abs(scale - 1) > Math.max(0.002, 3 * compared.uncertainty)) {
+      if (source === "undriven wheel") {
         channel = { ...channel, values: channel.values.map((v) => v / scale) };
-        notes.push({
-          code: "wheel_speed_scaled",
-          message: `The wheel speed reads ${(100 * (scale - 1)).toFixed(2)} % against GPS speed and was scaled to it.`,
-        });
+        if (Math.abs(scale - 1) > Math.max(LEAST_TOLD_SCALE, 3 * compared.uncertainty)) {
+          notes.push({
+            code: "wheel_speed_scaled",
+            message: `The wheel speed reads ${(100 * (scale - 1)).toFixed(2)} % against GPS speed and was scaled to it.`,
+          });
+        }
       }
     }
   }
@@ -200,8 +208,8 @@ export function sprintTrace(signals: RunSignals): SprintTrace | null {
     trace: motionTrace(Float64Array.from(times), Float64Array.from(speeds)),
     source,
     launch,
-    deviationMps,
-    scaleUncertainty,
+    uncertainty: { deviationMps, scale: scaleUncertainty },
+    startNoiseMps: noise,
     notes,
   };
 }

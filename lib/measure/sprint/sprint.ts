@@ -2,166 +2,148 @@ import type { LogTable } from "@/lib/logs/types";
 import { runSignals } from "@/lib/measure/run/run-signals";
 import {
   INITIAL_MOVEMENT_M,
-  type MotionTrace,
-  motionTrace,
   speedCrossingS,
   traceAt,
   trapSpeedMps,
   wayCrossingS,
 } from "@/lib/measure/sprint/acceleration";
+import type { FallInput } from "@/lib/measure/sprint/add-falls";
+import { fallSensitivity } from "@/lib/measure/sprint/fall-sensitivity";
+import type { Launch } from "@/lib/measure/sprint/launch";
+import { ownFall } from "@/lib/measure/sprint/net-fall";
+import { type RunTimes, rollOnTimes } from "@/lib/measure/sprint/roll-on";
 import { type SprintTrace, sprintTrace } from "@/lib/measure/sprint/sprint-trace";
-import type { CampaignVehicle, Note, Span } from "@/lib/measure/types";
-import { KMH_MPS, MPH_MPS } from "@/lib/units/constants";
-
-/** Times between two speeds in m/s, by their name in the result. From rest: the first speed is 0. */
-const FROM_REST: readonly [string, number][] = [
-  ["0-50", 50 * KMH_MPS],
-  ["0-100", 100 * KMH_MPS],
-  ["0-60 mph", 60 * MPH_MPS],
-];
-const ROLL_ON: readonly [string, number, number][] = [
-  ["60-100", 60 * KMH_MPS, 100 * KMH_MPS],
-  ["80-120", 80 * KMH_MPS, 120 * KMH_MPS],
-  ["100-150", 100 * KMH_MPS, 150 * KMH_MPS],
-  ["100-200", 100 * KMH_MPS, 200 * KMH_MPS],
-];
-const DISTANCES_M = [18.288, 201.168, 402.336, 1000] as const;
-
-/** Times of one run with their standard uncertainty, by name; a time that the run does not cover is absent. */
-export interface RunTimes {
-  times_s: Record<string, number>;
-  times_uncertainty_s: Record<string, number>;
-}
+import {
+  clockStart,
+  speedAtWayUncertaintyMps,
+  speedEnd,
+  timeUncertaintyS,
+  wayEnd,
+} from "@/lib/measure/sprint/timing-uncertainty";
+import { STANDARD_TIMINGS, type Timings } from "@/lib/measure/sprint/timings";
+import type { Note, Span } from "@/lib/measure/types";
+import { KMH_MPS } from "@/lib/units/constants";
 
 /** What a sprint gives, in the spelling of the result. */
 export interface SprintResult extends RunTimes {
   segments: { sprint?: Span };
   speed_source: SprintTrace["source"] | null;
   speed_at_kmh: Record<string, number>;
+  speed_uncertainty_kmh: Record<string, number>;
   trap_kmh: Record<string, number>;
+  trap_uncertainty_kmh: Record<string, number>;
   notes: Note[];
 }
 
-/** Way between first motion and the first sound speed sample that the start may hide, m. */
-const START_WAY_UNCERTAINTY_M = 0.02;
-
-const round = (value: number) => Math.round(value * 1e6) / 1e6;
-
-/** Acceleration around a time, from the speeds 0.15 s to each side. */
-function accelerationAt(trace: MotionTrace, atS: number): number {
-  const from = Math.max(trace.timeS[0], atS - 0.15);
-  const to = Math.min(trace.timeS[trace.timeS.length - 1], atS + 0.15);
-  return (traceAt(trace, to, "speedMps") - traceAt(trace, from, "speedMps")) / (to - from);
+/** A sprint with what is needed to tell the effect of its fall. */
+export interface MeasuredSprint extends FallInput {
+  result: SprintResult;
+  sensitivityS: Record<string, number>;
 }
 
-/**
- * Roll-on times ("60-100", "80-120", "100-150", "100-200") of a speed trace: also of a pull, when only its full-load
- * part in one gear is passed. `deviationMps` = standard deviation of a speed, `scaleUncertainty` relative.
- */
-export function rollOnTimes(
-  timeS: Float64Array,
-  speedMps: Float64Array,
-  deviationMps: number,
-  scaleUncertainty: number,
-): RunTimes {
-  const result: RunTimes = { times_s: {}, times_uncertainty_s: {} };
-  if (timeS.length < 2) return result;
-  const trace = motionTrace(timeS, speedMps);
-  for (const [name, low, high] of ROLL_ON) {
-    const from = speedCrossingS(trace, low);
-    const to = from === null ? null : speedCrossingS(trace, high, from);
-    if (from === null || to === null) continue;
-    result.times_s[name] = round(to - from);
-    const ends = [from, to].map((t) => deviationMps / Math.max(0.2, accelerationAt(trace, t)));
-    result.times_uncertainty_s[name] = round(Math.hypot(...ends, scaleUncertainty * (to - from)));
-  }
-  return result;
-}
+/** Standard uncertainty of the way from rest that the start hides, m, by how first motion was found; from simulated launches. */
+const START_WAY_M: Record<Launch["by"], number> = { acceleration: 0.003, extrapolated: 0.01 };
+/** Noise of the first speeds becomes noise of the way up to 0.3048 m over about this long, s; from the same launches. */
+const START_NOISE_S = 0.3;
+/** Trap speed is a mean: this share of a single speed's noise is left. */
+const TRAP_NOISE_SHARE = Math.SQRT1_2;
 
 /**
  * Measures a sprint: times from rest (first motion) and with the clock started at 0.3048 m (name + " ivm"), roll-on
- * times, speed and trap speed at distances. Distances count from rest. What the run does not cover is absent; a run that
- * did not begin at rest has roll-on times only. The log must carry a road speed (requireRoadSpeed).
+ * times, speed and trap speed at distances, each with its standard uncertainty. Distances count from rest. What the run does
+ * not cover is absent; a run that did not begin at rest has roll-on times only. The log must carry a road speed.
  */
-export function measureSprint(table: LogTable, _vehicle: CampaignVehicle): SprintResult {
-  const empty: SprintResult = {
+export function measureSprint(table: LogTable, timings: Timings = STANDARD_TIMINGS): MeasuredSprint {
+  const result: SprintResult = {
     segments: {},
     speed_source: null,
     times_s: {},
     times_uncertainty_s: {},
     speed_at_kmh: {},
+    speed_uncertainty_kmh: {},
     trap_kmh: {},
+    trap_uncertainty_kmh: {},
     notes: [],
   };
-  const sprint = sprintTrace(runSignals(table));
-  if (!sprint) return empty;
-  const { trace, launch, deviationMps, scaleUncertainty } = sprint;
-  const notes = [...sprint.notes];
-  const roll = rollOnTimes(trace.timeS, trace.speedMps, deviationMps, scaleUncertainty);
-  const result: SprintResult = { ...empty, ...roll, speed_source: sprint.source, notes };
+  const signals = runSignals(table);
+  const sprint = sprintTrace(signals);
+  if (!sprint) return { result, fall: null, sensitivityS: {} };
+  const { trace, launch } = sprint;
+  const roll = rollOnTimes(trace.timeS, trace.speedMps, sprint.uncertainty, timings.pairs);
+  Object.assign(result.times_s, roll.times_s);
+  Object.assign(result.times_uncertainty_s, roll.times_uncertainty_s);
+  result.speed_source = sprint.source;
   let top = 0;
   for (let i = 1; i < trace.speedMps.length; i++) if (trace.speedMps[i] > trace.speedMps[top]) top = i;
-  result.segments = {
-    sprint: { from_s: round(launch?.restS ?? trace.timeS[0]), to_s: round(trace.timeS[top]) },
+  const fromS = launch?.restS ?? trace.timeS[0];
+  result.segments = { sprint: { from_s: fromS, to_s: trace.timeS[top] } };
+  const measured: MeasuredSprint = {
+    result,
+    fall: ownFall(signals.altitude, trace, fromS, trace.timeS[top]),
+    sensitivityS: roll.sensitivityS,
   };
+  if (launch) addTimesFromRest(measured, sprint, launch, timings);
+  result.notes.push(...sprint.notes, startNote(launch));
+  return measured;
+}
+
+function startNote(launch: Launch | null): Note {
   if (!launch) {
-    notes.push({
+    return {
       code: "not_from_rest",
       message:
         "The recording does not begin at rest, so there are no times from rest. Stand for a second before the start.",
-    });
-    return result;
+    };
   }
-  addTimesFromRest(result, sprint, launch.restS, launch.restUncertaintyS);
-  notes.push(
-    launch.by === "acceleration"
-      ? {
-          code: "start_by_accelerometer",
-          message:
-            "First motion was found with the accelerometer, which sees what the speed sensor does not.",
-        }
-      : {
-          code: "start_extrapolated",
-          message:
-            "First motion was drawn back from the first speeds, since no accelerometer is logged; times from rest are the less certain for it.",
-        },
-  );
-  return result;
+  const half = (2 * launch.restUncertaintyS).toFixed(2);
+  return launch.by === "acceleration"
+    ? {
+        code: "start_by_accelerometer",
+        message: `First motion was found with the accelerometer, which sees what the speed sensor does not, to ± ${half} s.`,
+      }
+    : {
+        code: "start_extrapolated",
+        message: `First motion was drawn back from the first speeds, since no accelerometer tells of it: times from rest are uncertain by ± ${half} s for that alone. Compare the times from 0.3048 m, or log an accelerometer at 50 rows a second.`,
+      };
 }
 
 function addTimesFromRest(
-  result: SprintResult,
-  sprint: SprintTrace,
-  restS: number,
-  restUncertaintyS: number,
+  { result, sensitivityS }: MeasuredSprint,
+  { trace, uncertainty, startNoiseMps }: SprintTrace,
+  launch: Launch,
+  timings: Timings,
 ): void {
-  const { trace, deviationMps, scaleUncertainty } = sprint;
+  const { restS } = launch;
+  const { scale } = uncertainty;
+  const startWayM = Math.hypot(START_WAY_M[launch.by], START_NOISE_S * startNoiseMps);
   const movementS = wayCrossingS(trace, INITIAL_MOVEMENT_M);
-  const movementUncertaintyS =
-    movementS === null
-      ? 0
-      : START_WAY_UNCERTAINTY_M / (2 * Math.max(0.5, traceAt(trace, movementS, "speedMps")));
-  const add = (name: string, atS: number, endUncertaintyS: number) => {
-    const scaled = scaleUncertainty * (atS - restS);
-    result.times_s[name] = round(atS - restS);
-    result.times_uncertainty_s[name] = round(Math.hypot(restUncertaintyS, endUncertaintyS, scaled));
+  const fall = fallSensitivity(trace);
+  const rest = clockStart(launch.restUncertaintyS);
+  const add = (name: string, atS: number, end: ReturnType<typeof clockStart>, savedS: number) => {
+    result.times_s[name] = atS - restS;
+    result.times_uncertainty_s[name] = timeUncertaintyS(rest, end, atS - restS, scale);
+    sensitivityS[name] = savedS;
     if (movementS === null || movementS >= atS) return;
-    result.times_s[`${name} ivm`] = round(atS - movementS);
-    result.times_uncertainty_s[`${name} ivm`] = round(
-      Math.hypot(movementUncertaintyS, endUncertaintyS, scaled),
-    );
+    const movement = wayEnd(trace, movementS, INITIAL_MOVEMENT_M, startWayM);
+    result.times_s[`${name} ivm`] = atS - movementS;
+    result.times_uncertainty_s[`${name} ivm`] = timeUncertaintyS(movement, end, atS - movementS, scale);
+    sensitivityS[`${name} ivm`] = savedS - fall.ofWayS(movementS);
   };
-  for (const [name, speed] of FROM_REST) {
-    const t = speedCrossingS(trace, speed);
-    if (t !== null) add(name, t, deviationMps / Math.max(0.2, accelerationAt(trace, t)));
+  for (const { name, fromMps, toMps } of timings.pairs) {
+    const t = fromMps === 0 ? speedCrossingS(trace, toMps) : null;
+    if (t !== null) add(name, t, speedEnd(trace, t, uncertainty), fall.ofSpeedS(t));
   }
-  for (const wayM of DISTANCES_M) {
+  for (const { name, wayM } of timings.distances) {
     const t = wayCrossingS(trace, wayM);
     if (t === null) continue;
-    const name = `${wayM} m`;
-    add(name, t, START_WAY_UNCERTAINTY_M / traceAt(trace, t, "speedMps"));
-    result.speed_at_kmh[name] = round(traceAt(trace, t, "speedMps") / KMH_MPS);
+    add(name, t, wayEnd(trace, t, wayM, startWayM), fall.ofWayS(t));
+    const deviation = speedAtWayUncertaintyMps(trace, t, wayM, uncertainty);
+    result.speed_at_kmh[name] = traceAt(trace, t, "speedMps") / KMH_MPS;
+    result.speed_uncertainty_kmh[name] = deviation / KMH_MPS;
     const trap = trapSpeedMps(trace, wayM);
-    if (trap !== null && wayM > 20.1168) result.trap_kmh[name] = round(trap / KMH_MPS);
+    if (trap === null) continue;
+    const trapNoise = { ...uncertainty, deviationMps: TRAP_NOISE_SHARE * uncertainty.deviationMps };
+    result.trap_kmh[name] = trap / KMH_MPS;
+    result.trap_uncertainty_kmh[name] = speedAtWayUncertaintyMps(trace, t, wayM, trapNoise) / KMH_MPS;
   }
 }

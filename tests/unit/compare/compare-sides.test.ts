@@ -25,7 +25,6 @@ function pulls(order: string, legs: string, gainPct: number, seed: number): Comp
       ),
       peakKw: 150 * level + (side === "B" ? 2 : 0),
       peakNm: 300 * level,
-      timesS: { "80-120": 4 / level - (side === "B" ? 0.05 : 0) },
     };
   });
 }
@@ -43,8 +42,6 @@ describe("Comparison of two sides", () => {
       ((delta?.high_pct[at] ?? 0) - (delta?.low_pct[at] ?? 0)) / 2,
     );
     expect(delta?.peak_difference?.half_width_kw).toBeGreaterThan(0);
-    expect(delta?.times_difference?.["80-120"].n_a).toBe(6);
-    expect(delta?.times_difference?.["80-120"].difference_s).toBeCloseTo(-0.05, 1);
     expect(delta?.twins.filter((twin) => twin.side === "A")).toHaveLength(3);
   });
 
@@ -83,14 +80,13 @@ describe("Comparison of two sides", () => {
     expect(delta?.rpm.at(-1)).toBe(4500);
   });
 
-  it("is null when a side has no run, and has no time difference where no run has the time", () => {
+  it("is null when a side has no run, and has no difference of peaks where a side has none", () => {
     expect(compareSides(RPM, pulls("AAAA", "+-+-", 0, 1), SETTINGS)).toBeNull();
     const delta = compareSides(
       RPM,
-      pulls("ABBABAAB", "+-+-+-+-", 0, 1).map((p) => ({ ...p, timesS: {}, peakKw: null })),
+      pulls("ABBABAAB", "+-+-+-+-", 0, 1).map((p) => ({ ...p, peakKw: null })),
       SETTINGS,
     );
-    expect(delta?.times_difference).toEqual({});
     expect(delta?.peak_difference).toBeNull();
   });
 });

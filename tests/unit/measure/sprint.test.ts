@@ -2,8 +2,8 @@ import { readFileSync } from "node:fs";
 import { describe, expect, it } from "vitest";
 import { readLog } from "@/lib/logs/read-log";
 import type { LogTable } from "@/lib/logs/types";
-import { measureSprint, rollOnTimes, type SprintResult } from "@/lib/measure/sprint/sprint";
-import type { CampaignVehicle } from "@/lib/measure/types";
+import { rollOnTimes } from "@/lib/measure/sprint/roll-on";
+import { measureSprint, type SprintResult } from "@/lib/measure/sprint/sprint";
 import { expectClose } from "../../support/expect-close";
 
 const golden = (name: string) => readFileSync(new URL(`../../golden/logs/sprints/${name}`, import.meta.url));
@@ -12,14 +12,7 @@ const TRUTH = JSON.parse(golden("truth.json").toString("utf8")) as Record<
   string,
   { times_s: Record<string, number>; speed_at_kmh: Record<string, number>; launch_s: number }
 >;
-const VEHICLE: CampaignVehicle = {
-  label: "car",
-  engine: "spark ignition",
-  aspiration: "natural",
-  drive: "RWD",
-  mass_kg: 1500,
-  redline_rpm: 7000,
-};
+const measure = (table: LogTable) => measureSprint(table).result;
 const without = (table: LogTable, ...channels: string[]): LogTable => ({
   ...table,
   channels: table.channels.filter((channel) => !channels.includes(channel.channel ?? "")),
@@ -50,26 +43,24 @@ describe("simulated launches of known physics", () => {
     ["a06", "undriven wheel", "rear drive, 10 Hz"],
     ["a08", "gps", "all-wheel drive: no undriven wheel, GPS 0.15 s late"],
   ])("%s by %s (%s): roll-on and 0.3048 m clocks within 0.025 s", (name, source) => {
-    const got = measureSprint(readLog(golden(`${name}.csv.gz`)), VEHICLE);
+    const got = measure(readLog(golden(`${name}.csv.gz`)));
     expect(got.speed_source).toBe(source);
     compare(name, got, 0.025);
     expect(got.notes.map((note) => note.code)).toContain("start_by_accelerometer");
   });
   it("without an accelerometer the start is drawn back, is less certain and says so", () => {
     const table = readLog(golden("a01.csv.gz"));
-    const got = measureSprint(without(table, "longitudinal_acceleration"), VEHICLE);
+    const got = measure(without(table, "longitudinal_acceleration"));
     compare("a01", got, 0.025);
     expect(got.notes.map((note) => note.code)).toContain("start_extrapolated");
-    expect(got.times_uncertainty_s["0-100"]).toBeGreaterThan(
-      2 * measureSprint(table, VEHICLE).times_uncertainty_s["0-100"],
-    );
+    expect(got.times_uncertainty_s["0-100"]).toBeGreaterThan(2 * measure(table).times_uncertainty_s["0-100"]);
   });
   it("an undriven wheel that reads 1.2 % high is scaled to GPS and told", () => {
     const table = readLog(golden("a01.csv.gz"));
     for (const channel of table.channels) {
       if (channel.channel === "wheel_speed_undriven") channel.values = channel.values.map((v) => 1.012 * v);
     }
-    const got = measureSprint(table, VEHICLE);
+    const got = measure(table);
     compare("a01", got, 0.025);
     expect(got.notes.find((note) => note.code === "wheel_speed_scaled")?.message).toMatch(/1\.[12]\d? %/);
   });
@@ -79,12 +70,10 @@ describe("simulated launches of known physics", () => {
       if (channel.channel === "wheel_speed_undriven")
         channel.values = channel.values.map((v) => Math.round(v * 3.6) / 3.6);
     }
-    compare("a01", measureSprint(table, VEHICLE), 0.025);
+    compare("a01", measure(table), 0.025);
   });
   it("the lag of GPS behind the wheel is found (simulated: 0.15 s and 0.012 s)", () => {
-    const note = measureSprint(readLog(golden("a01.csv.gz")), VEHICLE).notes.find(
-      (n) => n.code === "gps_latency",
-    );
+    const note = measure(readLog(golden("a01.csv.gz"))).notes.find((n) => n.code === "gps_latency");
     expectClose(Number(/([\d.]+) s\.$/.exec(note?.message ?? "")?.[1]), 0.138, { abs: 0.01 });
   });
 });
@@ -97,6 +86,7 @@ function table(speed: (t: number) => number, toS: number): LogTable {
     return v < 1.5 / 3.6 ? 0 : v;
   });
   return {
+    format: "delimited",
     timeS,
     channels: [{ channel: "wheel_speed_undriven", column: "v", unitFound: "km/h", unit: "m/s", values }],
     encoding: "utf-8",
@@ -113,10 +103,7 @@ function table(speed: (t: number) => number, toS: number): LogTable {
 describe("closed forms", () => {
   it("force minus v²: v = vt tanh(t/τ), way vt τ ln cosh(t/τ), started at 2 s", () => {
     const [vt, tau] = [124.03473458920845, 31.008683647302114];
-    const got = measureSprint(
-      table((t) => (t < 2 ? 0 : vt * Math.tanh((t - 2) / tau)), 18),
-      VEHICLE,
-    );
+    const got = measure(table((t) => (t < 2 ? 0 : vt * Math.tanh((t - 2) / tau)), 18));
     // Exact: t = τ artanh(v/vt); for a way, cosh(t/τ) = exp(s/(vt τ)). First motion here is a step of acceleration.
     const atSpeed = (kmh: number) => tau * Math.atanh(kmh / 3.6 / vt);
     const atWay = (m: number) => tau * Math.acosh(Math.exp(m / (vt * tau)));
@@ -132,19 +119,13 @@ describe("closed forms", () => {
     expect(got.times_s["1000 m"]).toBeUndefined();
   });
   it("a recording that begins in motion has roll-on times only, and says why", () => {
-    const got = measureSprint(
-      table((t) => 10 + 3 * t, 12),
-      VEHICLE,
-    );
+    const got = measure(table((t) => 10 + 3 * t, 12));
     expect(Object.keys(got.times_s)).toEqual(["60-100", "80-120", "100-150"]);
     expectClose(got.times_s["60-100"], 40 / 3.6 / 3, { abs: 0.002 });
     expect(got.notes.map((note) => note.code)).toContain("not_from_rest");
   });
   it("creeping before the start does not count: the last standing start before the top speed does", () => {
-    const got = measureSprint(
-      table((t) => (t < 1 ? 0 : t < 2 ? 0.8 : t < 3.5 ? 0 : 4 * (t - 3.5)), 14),
-      VEHICLE,
-    );
+    const got = measure(table((t) => (t < 1 ? 0 : t < 2 ? 0.8 : t < 3.5 ? 0 : 4 * (t - 3.5)), 14));
     expectClose(got.segments.sprint?.from_s, 3.5, { abs: 0.15 });
     expectClose(got.times_s["60-100"], 40 / 3.6 / 4, { abs: 0.002 });
   });
@@ -153,13 +134,14 @@ describe("closed forms", () => {
     const got = rollOnTimes(
       timeS,
       timeS.map((t) => 55 / 3.6 + 3 * (t - 5)),
-      0.03,
-      0,
+      { deviationMps: 0.03, scale: 0 },
     );
     expect(Object.keys(got.times_s)).toEqual(["60-100", "80-120"]);
     expectClose(got.times_s["80-120"], 40 / 3.6 / 3, { abs: 1e-6 });
     // σ/a at both ends: 0.03/3 · √2.
     expectClose(got.times_uncertainty_s["80-120"], 0.01 * Math.SQRT2, { abs: 1e-5 });
-    expect(rollOnTimes(new Float64Array(), new Float64Array(), 0.03, 0).times_s).toEqual({});
+    expect(
+      rollOnTimes(new Float64Array(), new Float64Array(), { deviationMps: 0.03, scale: 0 }).times_s,
+    ).toEqual({});
   });
 });
