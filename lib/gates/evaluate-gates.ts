@@ -1,8 +1,10 @@
+import { channelLimitGate } from "@/lib/gates/channel-gates";
 import { conditionsGate } from "@/lib/gates/condition-gates";
 import { gainGate, noLossGate, sprintGate } from "@/lib/gates/delta-gates";
 import type { GateEvidence } from "@/lib/gates/evidence";
 import { evidenceGate } from "@/lib/gates/evidence-gates";
 import type { Gate, GatePlan, GateResult } from "@/lib/gates/plan";
+import { smoothCurveGate } from "@/lib/gates/smooth-gate";
 
 /**
  * Evaluates every gate that a plan asks for; a gate that is off is left out. Rule for every limit: met only when the whole band
@@ -25,5 +27,9 @@ function evaluate(gate: Gate, evidence: GateEvidence): GateResult {
       return noLossGate(gate, evidence);
     case "sprint":
       return sprintGate(gate, evidence);
+    case "channel_limit":
+      return channelLimitGate(gate, evidence);
+    case "smooth_curve":
+      return smoothCurveGate(gate, evidence);
   }
 }

@@ -1,4 +1,4 @@
-import type { CampaignResult, Leg } from "@/lib/measure/types";
+import type { CampaignResult, CampaignVehicle, Leg } from "@/lib/measure/types";
 
 /** One counted run as the gates see it; null = not known. */
 export interface EvidenceRun {
@@ -25,6 +25,9 @@ export interface GateEvidence {
   /** All counted runs of both sides, usable or not. */
   runs: readonly EvidenceRun[];
   redlineRpm: number;
+  /** From the vehicle sheet; null where there is none. */
+  engine: CampaignVehicle["engine"] | null;
+  aspiration: CampaignVehicle["aspiration"] | null;
 }
 
 /** The counted runs that the analysis found usable as pulls. */

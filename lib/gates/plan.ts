@@ -43,7 +43,39 @@ export type NoLossGate = Asked<"no_loss"> & {
 /** `time` is a name of `times_s`, e.g. "80-120" (km/h). */
 export type SprintGate = Asked<"sprint"> & { time: string; notSlowerByS: number };
 
-export type Gate = EvidenceGate | ConditionsGate | GainGate | NoLossGate | SprintGate;
+/** What a limit can be set on: an engine channel under full load, or a figure drawn from one. */
+export type LimitedQuantity =
+  | "lambda"
+  | "knock_retard"
+  | "exhaust_temperature"
+  | "boost_overshoot"
+  | "intake_temperature"
+  | "intake_temperature_rise"
+  | "coolant_temperature"
+  | "injector_duty";
+
+/**
+ * Limits of an engine quantity at full load on side B, in its own unit (lambda 1, retard °, temperatures °C, rise K, overshoot
+ * kPa, duty %). `leastLoadS`: a shorter pull can't show that it stays inside. At least one limit is a number.
+ */
+export type ChannelLimitGate = Asked<"channel_limit"> & {
+  quantity: LimitedQuantity;
+  min: number | null;
+  max: number | null;
+  leastLoadS: number;
+};
+
+/** No ripple or spike of B's mean curve beyond x % of its local fit. */
+export type SmoothCurveGate = Asked<"smooth_curve"> & { withinPct: number };
+
+export type Gate =
+  | EvidenceGate
+  | ConditionsGate
+  | GainGate
+  | NoLossGate
+  | SprintGate
+  | ChannelLimitGate
+  | SmoothCurveGate;
 
 /** A versioned plan: the version is kept by whoever stores it. */
 export interface GatePlan {

@@ -1,7 +1,38 @@
-import type { Gate, GatePlan } from "@/lib/gates/plan";
+import type { ChannelLimitGate, Gate, GateLevel, GatePlan, LimitedQuantity } from "@/lib/gates/plan";
+import type { CampaignVehicle } from "@/lib/measure/types";
+
+/** What the starting limits depend on. */
+type EngineKind = Pick<CampaignVehicle, "engine" | "aspiration">;
+
+/**
+ * Limits at full load by kind of engine [common practice, no source]. Lambda and knock must be shown; what a short pull hardly
+ * shows, or few cars log, should be. Injector duty is off: it depends on the kind of injection.
+ */
+function startingLimits({ engine, aspiration }: EngineKind): ChannelLimitGate[] {
+  const petrol = engine === "spark ignition";
+  const limit = (
+    quantity: LimitedQuantity,
+    level: GateLevel,
+    limits: Partial<Pick<ChannelLimitGate, "min" | "max" | "leastLoadS">>,
+  ): ChannelLimitGate => ({
+    ...{ id: `limit.${quantity}`, kind: "channel_limit", level, quantity },
+    ...{ min: null, max: null, leastLoadS: 3, ...limits },
+  });
+  return [
+    limit("lambda", "must", petrol ? { min: 0.78, max: 0.9 } : { min: 1.15 }),
+    ...(petrol ? [limit("knock_retard", "must", { max: 3 })] : []),
+    limit("exhaust_temperature", "should", { max: petrol ? 950 : 850, leastLoadS: 20 }),
+    ...(aspiration === "natural" ? [] : [limit("boost_overshoot", "should", { max: 15 })]),
+    limit("intake_temperature_rise", "should", { max: 20 }),
+    limit("coolant_temperature", "should", { max: 110 }),
+    limit("injector_duty", "off", { max: 90 }),
+  ];
+}
 
 /** The plan a new programme starts with; a lead edits it. A gain is not asked until a lead asks for it. */
-export function startingPlan(): GatePlan {
+export function startingPlan(
+  engine: EngineKind = { engine: "spark ignition", aspiration: "turbo" },
+): GatePlan {
   return {
     plan: 1,
     gates: [
@@ -32,13 +63,17 @@ export function startingPlan(): GatePlan {
       { id: "no_loss", kind: "no_loss", level: "must", fromRpm: null, toRpm: null, beyondPct: 1 },
       { id: "sprint.80-120", kind: "sprint", level: "should", time: "80-120", notSlowerByS: 0.1 },
       { id: "sprint.100-200", kind: "sprint", level: "should", time: "100-200", notSlowerByS: 0.1 },
+      ...startingLimits(engine),
+      { id: "smooth", kind: "smooth_curve", level: "must", withinPct: 2 },
     ],
   };
 }
 
-/** Conditions that can be asked for by now and that an older plan does not name, switched off. */
-export function conditionsNotIn(plan: GatePlan): Gate[] {
-  return startingPlan()
-    .gates.filter(({ kind, id }) => kind === "conditions" && !plan.gates.some((gate) => gate.id === id))
+const OFFERED: ReadonlySet<Gate["kind"]> = new Set(["conditions", "channel_limit", "smooth_curve"]);
+
+/** Gates that can be asked for by now and that an older plan does not name, switched off. */
+export function gatesNotIn(plan: GatePlan, engine?: EngineKind): Gate[] {
+  return startingPlan(engine)
+    .gates.filter(({ kind, id }) => OFFERED.has(kind) && !plan.gates.some((gate) => gate.id === id))
     .map((gate) => ({ ...gate, level: "off" }));
 }

@@ -51,7 +51,7 @@ describe("a new programme", () => {
     const { workspaceId, lead, programmeId } = await shop(tx);
     const loaded = await loadProgramme(lead, programmeId);
     expect(loaded.sheet).toMatchObject({ version: 1, figures: SHEET });
-    expect(loaded.plan).toMatchObject({ version: 1, plan: startingPlan() });
+    expect(loaded.plan).toMatchObject({ version: 1, plan: startingPlan(SHEET) });
     expect(await entries(tx, workspaceId)).toMatchObject([
       { event: "programme.created", subjectId: programmeId, programmeId, data: { name: NEW.name } },
     ]);

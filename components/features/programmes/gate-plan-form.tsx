@@ -13,13 +13,14 @@ import { SectionHeading } from "@/components/ui/layout/section-heading";
 import { Notice } from "@/components/ui/status/notice";
 import { showToast } from "@/components/ui/status/toast";
 import type { Gate, GatePlan } from "@/lib/gates/plan";
-import { conditionsNotIn } from "@/lib/gates/starting-plan";
 import { gatePlanSchema } from "@/lib/services/gate-plans/schema";
 
 export interface GatePlanFormProps {
   programmeId: string;
   version: number;
   plan: GatePlan;
+  /** Gates that the plan does not name yet, switched off: only those that are switched on are saved. */
+  offered: readonly Gate[];
   blockedBecause: string | null;
   action: (input: {
     programmeId: string;
@@ -49,8 +50,14 @@ function freshId(base: string, taken: readonly { id: string }[]): string {
 }
 
 /** The newest plan, to be changed into the next version. */
-export function GatePlanForm({ programmeId, version, plan, blockedBecause, action }: GatePlanFormProps) {
-  const offered = conditionsNotIn(plan);
+export function GatePlanForm({
+  programmeId,
+  version,
+  plan,
+  offered,
+  blockedBecause,
+  action,
+}: GatePlanFormProps) {
   const form = useForm<Fields, unknown, GatePlan>({
     resolver: zodResolver(gatePlanSchema),
     defaultValues: { plan: 1, gates: [...plan.gates, ...offered].map(typed) as Fields["gates"] },

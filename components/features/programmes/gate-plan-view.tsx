@@ -6,9 +6,9 @@ import type { Gate, GatePlan } from "@/lib/gates/plan";
 function numbersText(gate: Gate): string {
   const values = gate as unknown as Record<string, number | null>;
   return gateWords(gate)
-    .numbers.map(({ name, label, unit }) => {
+    .numbers.flatMap(({ name, label, unit }) => {
       const value = values[name];
-      if (value === null) return `${label} open`;
+      if (value === null) return gate.kind === "channel_limit" ? [] : `${label} open`;
       return `${label} ${value}${unit ? `\u202f${unit}` : ""}`;
     })
     .join(", ");

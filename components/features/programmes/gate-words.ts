@@ -1,4 +1,5 @@
-import type { Gate } from "@/lib/gates/plan";
+import type { Gate, LimitedQuantity } from "@/lib/gates/plan";
+import { QUANTITIES } from "@/lib/gates/quantities";
 
 /** One number of a gate as its form asks for it. */
 export interface GateNumber {
@@ -99,14 +100,39 @@ export function gateWords(gate: Gate): GateWords {
         numbers: [{ name: "notSlowerByS", label: "by more than", unit: "s" }],
       };
     }
+    case "channel_limit": {
+      const { name, unit } = QUANTITIES[gate.quantity];
+      return {
+        title: `${name} at full load`,
+        note: SENSOR_NOTE[gate.quantity],
+        numbers: [
+          { name: "min", label: "at least", unit: unit.trim() },
+          { name: "max", label: "at most", unit: unit.trim() },
+          { name: "leastLoadS", label: "load held", unit: "s" },
+        ],
+      };
+    }
+    case "smooth_curve":
+      return {
+        title: "Smooth curve",
+        note: "No ripple or spike of the mean curve beyond this share of its local fit.",
+        numbers: [{ name: "withinPct", label: "within", unit: "%" }],
+      };
   }
 }
+
+const SENSOR_NOTE: Partial<Record<LimitedQuantity, string>> = {
+  exhaust_temperature: "A sensor follows slowly: a short pull can't show it.",
+  boost_overshoot: "Over a logged target, else over the plateau after the peak.",
+  injector_duty: "For one injection a cycle; direct injection has its own window.",
+};
 
 export const GATE_GROUPS: { kinds: Gate["kind"][]; title: string }[] = [
   { kinds: ["evidence"], title: "Evidence" },
   { kinds: ["conditions"], title: "Conditions" },
   { kinds: ["gain", "no_loss"], title: "Gain and loss" },
   { kinds: ["sprint"], title: "Sprints" },
+  { kinds: ["channel_limit", "smooth_curve"], title: "Engine at full load" },
 ];
 
 export const LEVEL_WORDS: Record<Gate["level"], string> = {

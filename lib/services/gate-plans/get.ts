@@ -1,6 +1,6 @@
 import { selectGatePlan, selectGatePlanVersions } from "@/db/queries/gate-plans";
 import { NotFoundError } from "@/lib/errors";
-import { startingPlan } from "@/lib/gates/starting-plan";
+import { gatesNotIn, startingPlan } from "@/lib/gates/starting-plan";
 import type { Ctx } from "@/lib/services/ctx";
 import { loadProgramme } from "@/lib/services/programmes/load";
 
@@ -10,9 +10,14 @@ import { loadProgramme } from "@/lib/services/programmes/load";
  * @throws NotFoundError, ForbiddenError
  */
 export async function getGatePlan(ctx: Ctx, programmeId: string, version?: number) {
-  const { programme, plan: newest } = await loadProgramme(ctx, programmeId);
+  const { programme, sheet, plan: newest } = await loadProgramme(ctx, programmeId);
   const place = { workspaceId: ctx.workspaceId, programmeId };
-  const start = { version: 0, plan: startingPlan(), createdAt: programme.createdAt, createdByName: null };
+  const start = {
+    version: 0,
+    plan: startingPlan(sheet?.figures),
+    createdAt: programme.createdAt,
+    createdByName: null,
+  };
   const plan =
     version === undefined ? (newest ?? start) : await selectGatePlan(ctx.db, { ...place, version });
   if (!plan)
@@ -20,6 +25,7 @@ export async function getGatePlan(ctx: Ctx, programmeId: string, version?: numbe
   return {
     programme,
     plan,
+    offered: gatesNotIn(plan.plan, sheet?.figures),
     newestVersion: newest?.version ?? 0,
     versions: await selectGatePlanVersions(ctx.db, place),
   };

@@ -1,5 +1,6 @@
 import { z } from "zod";
-import type { GatePlan } from "@/lib/gates/plan";
+import type { GatePlan, LimitedQuantity } from "@/lib/gates/plan";
+import { QUANTITIES } from "@/lib/gates/quantities";
 import { optionalNumber, requiredNumber } from "@/lib/services/number-field";
 
 const level = z.enum(["must", "should", "off"]);
@@ -69,12 +70,31 @@ const sprint = z.object({
   notSlowerByS: requiredNumber({ min: 0, max: 60, unit: "s" }),
 });
 
+const channelLimit = z
+  .object({
+    ...{ id, level, kind: z.literal("channel_limit") },
+    quantity: z.enum(Object.keys(QUANTITIES) as [LimitedQuantity, ...LimitedQuantity[]]),
+    min: optionalNumber({ min: -60, max: 1500 }),
+    max: optionalNumber({ min: -60, max: 1500 }),
+    leastLoadS: requiredNumber({ min: 0, max: 600, unit: "s" }),
+  })
+  .refine((gate) => gate.min !== null || gate.max !== null, {
+    path: ["max"],
+    message: "Give a highest or a lowest value.",
+  })
+  .refine((gate) => gate.min === null || gate.max === null || gate.min < gate.max, {
+    path: ["max"],
+    message: "Must lie above the lowest value.",
+  });
+
+const smoothCurve = z.object({ id, level, kind: z.literal("smooth_curve"), withinPct: percent });
+
 /** A whole plan. Takes what a form holds (texts) as well as a finished plan. */
 export const gatePlanSchema = z
   .object({
     plan: z.literal(1),
     gates: z
-      .array(z.union([evidence, conditions, gain, noLoss, sprint]))
+      .array(z.union([evidence, conditions, gain, noLoss, sprint, channelLimit, smoothCurve]))
       .min(1, "A plan has at least one gate.")
       .max(60),
   })

@@ -1,4 +1,5 @@
 import type { EvidenceRun, GateEvidence } from "@/lib/gates/evidence";
+import type { VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 import { campaignRunId, massOf } from "@/lib/services/comparisons/build-campaign";
 import type { ComparisonStanding } from "@/lib/services/comparisons/load";
 
@@ -6,12 +7,20 @@ import type { ComparisonStanding } from "@/lib/services/comparisons/load";
  * What the gates are evaluated on: the result shown and the runs that count now with their conditions.
  * @param comparison null when nothing stands or nobody has compared yet: every gate then has too little
  */
-export function gateEvidence(comparison: ComparisonStanding | null, redlineRpm: number): GateEvidence {
-  if (!comparison) return { result: null, runs: [], redlineRpm };
+export function gateEvidence(
+  comparison: ComparisonStanding | null,
+  sheet: Pick<VehicleSheetFigures, "redlineRpm" | "engine" | "aspiration"> | null,
+): GateEvidence {
+  const vehicle = {
+    redlineRpm: sheet?.redlineRpm ?? 0,
+    engine: sheet?.engine ?? null,
+    aspiration: sheet?.aspiration ?? null,
+  };
+  if (!comparison) return { result: null, runs: [], ...vehicle };
   const { current, shown } = comparison;
   return {
     result: shown?.result ?? null,
-    redlineRpm,
+    ...vehicle,
     runs: current.runs
       .filter((run) => run.counts)
       .map(

@@ -80,7 +80,7 @@ export async function gateDesk(
   if (!plan || !ASKED.has(revision.state)) return { comparison, stale: false, results: [], planVersion };
   const stale = comparison?.state === "stale";
   const sheet = await selectVehicleSheet(db, { workspaceId, programmeId });
-  const results = evaluateGates(plan.plan, gateEvidence(comparison, sheet?.figures.redlineRpm ?? 0));
+  const results = evaluateGates(plan.plan, gateEvidence(comparison, sheet?.figures ?? null));
   return {
     comparison,
     stale,

@@ -21,7 +21,7 @@ export async function createProgramme(ctx: Ctx, input: NewProgrammeInput): Promi
     const programmeId = await insertProgramme(tx, { workspaceId, name, goal, createdBy: userId, sample });
     const first = { workspaceId, programmeId, version: 1, createdBy: userId };
     await insertVehicleSheet(tx, { ...first, figures: sheet });
-    await insertGatePlan(tx, { ...first, plan: startingPlan() });
+    await insertGatePlan(tx, { ...first, plan: startingPlan(sheet) });
     await appendLedger(tx, inner, {
       event: "programme.created",
       subjectType: "programme",

@@ -5,6 +5,7 @@ import type { Gate, GateState } from "@/lib/gates/plan";
 import { startingPlan } from "@/lib/gates/starting-plan";
 import { figure } from "@/lib/gates/verdict";
 import type { CampaignResult, DeltaResult } from "@/lib/measure/types";
+import { fullLoad } from "./full-load-sample";
 
 const RPM = Array.from({ length: 91 }, (_, k) => 1700 + 50 * k);
 const ORDER = "ABBABAABABBA";
@@ -52,6 +53,13 @@ function delta(changes: Partial<DeltaResult> = {}): DeltaResult {
   };
 }
 
+const SMOOTHNESS = {
+  rpm: RPM,
+  deviation_pct: RPM.map(() => 0.4),
+  half_width_pct: RPM.map(() => 0.7),
+};
+const SMOOTH = { n: 6, basis: "day" as const, rpm: [], engine_kw: [], engine_nm: [], peak: null };
+
 function evidence(changes: Partial<DeltaResult> = {}, over: Partial<GateEvidence> = {}): GateEvidence {
   const list = over.runs ?? runs();
   const result: CampaignResult = {
@@ -61,13 +69,14 @@ function evidence(changes: Partial<DeltaResult> = {}, over: Partial<GateEvidence
       usable: true,
       reasons: [],
       notes: [],
-      segments: { pull: { from_s: 2, to_s: 10 } },
+      segments: { pull: { from_s: 2, to_s: 24 } },
+      full_load: fullLoad(),
       factor: { id: "j1349_eta85", value: 0.98, in_range: true, applied: true, why: "" },
     })),
-    sides: {},
+    sides: { B: { ...SMOOTH, smoothness: SMOOTHNESS } },
     delta: delta(changes),
   };
-  return { result, runs: list, redlineRpm: 6500, ...over };
+  return { result, runs: list, redlineRpm: 6500, engine: "spark ignition", aspiration: "turbo", ...over };
 }
 
 const results = (e: GateEvidence) => new Map(evaluateGates(startingPlan(), e).map((r) => [r.id, r]));

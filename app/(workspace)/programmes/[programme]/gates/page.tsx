@@ -21,8 +21,9 @@ export default async function GatePlanPage({
 }: PageProps<"/programmes/[programme]/gates">) {
   const ctx = await requireCtx();
   const version = versionOf((await searchParams).version);
-  const { programme, plan, newestVersion, versions } = await orNotFound((await params).programme, (id) =>
-    getGatePlan(ctx, id, version),
+  const { programme, plan, offered, newestVersion, versions } = await orNotFound(
+    (await params).programme,
+    (id) => getGatePlan(ctx, id, version),
   );
   const may = can(ctx, "gate_plan.version");
   const archived = programme.archivedAt ? "This programme is archived." : null;
@@ -62,6 +63,7 @@ export default async function GatePlanPage({
               programmeId={programme.id}
               version={plan.version}
               plan={plan.plan}
+              offered={offered}
               blockedBecause={archived}
               action={saveGatePlanAction}
             />
