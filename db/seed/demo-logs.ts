@@ -3,15 +3,13 @@ import { proposeOrder } from "@/lib/compare/order-card";
 import type { LogTable } from "@/lib/logs/types";
 import { randomStream } from "@/lib/signal/random";
 import { driveRun } from "@/lib/simulate/drive-run";
+import { type EngineModel, recordEngine } from "@/lib/simulate/record-engine";
 import { recordRun } from "@/lib/simulate/record-run";
 
-/** How an image of the demo changes the torque of the car: fraction by engine speed. */
-export type Effect = (rpm: number) => number;
-
-/** A smooth hill of a gain or loss over a range of engine speed. */
-export function hill(share: number, fromRpm: number, toRpm: number, edgeRpm = 350): Effect {
-  const rise = (x: number) => 0.5 * (1 + Math.tanh(x / (edgeRpm / 2)));
-  return (rpm) => share * rise(rpm - fromRpm) * rise(toRpm - rpm);
+/** What an image of the demo does: the gain of torque as a fraction by engine speed, and how it runs the engine. */
+export interface Effect {
+  gain: (rpm: number) => number;
+  engine: EngineModel;
 }
 
 export interface DemoRun {
@@ -34,6 +32,12 @@ const COLUMNS: Record<string, { title: string; decimals: number; factor?: number
   latitude: { title: "Latitude [deg]", decimals: 7 },
   longitude: { title: "Longitude [deg]", decimals: 7 },
   altitude: { title: "Altitude [m]", decimals: 1 },
+  manifold_pressure: { title: "Manifold pressure, absolute [kPa]", decimals: 1 },
+  lambda: { title: "Lambda [-]", decimals: 3 },
+  knock_retard: { title: "Knock retard [°]", decimals: 1 },
+  intake_temperature: { title: "Intake air temperature [°C]", decimals: 1 },
+  coolant_temperature: { title: "Coolant temperature [°C]", decimals: 1 },
+  exhaust_temperature: { title: "Exhaust gas temperature [°C]", decimals: 0 },
   longitudinal_acceleration: { title: "Longitudinal acceleration [m/s²]", decimals: 3 },
 };
 
@@ -63,10 +67,12 @@ export function driveRoadDay(args: {
   seed: number;
 }): DemoRun[] {
   const random = randomStream(args.seed, 7);
+  const engineRandom = randomStream(args.seed, 8);
   const { places } = proposeOrder({ twinsPerSide: args.twinsPerSide });
   const heightM = (s: number) => 0.35 * Math.sin((2 * Math.PI * s) / 1500 + 0.7);
   return places.map(({ side, leg, place }, index) => {
     const tempC = args.tempC + 0.1 * index;
+    const effect = side === "A" ? args.effectA : args.effectB;
     const conditions = {
       direction: leg === "out" ? (1 as const) : (-1 as const),
       startM: (leg === "out" ? 80 : 2780) + 20 * random.nextNormal(),
@@ -78,13 +84,15 @@ export function driveRoadDay(args: {
       gustMps: 0.3,
       gustTimeS: 3,
       powerFactor: 1 - 0.0006 * index + 0.004 * random.nextNormal(),
-      gain: side === "A" ? args.effectA : args.effectB,
+      gain: effect.gain,
       weatherFactor: 1,
       heightM,
       coastToMps: 15,
       spin: null,
     };
-    const table = recordRun(driveRun(HATCH, conditions, random), conditions, RECORDER, random);
+    const trace = driveRun(HATCH, conditions, random);
+    const table = recordRun(trace, conditions, RECORDER, random);
+    table.channels.push(...recordEngine(trace, conditions, effect.engine, table.timeS, engineRandom));
     return {
       side,
       leg,

@@ -1,7 +1,8 @@
 import { createHash } from "node:crypto";
 import { eq } from "drizzle-orm";
 import { describe, expect, onTestFinished } from "vitest";
-import { driveRoadDay, hill } from "@/db/seed/demo-logs";
+import { EFFECTS, hill } from "@/db/seed/demo-effects";
+import { driveRoadDay } from "@/db/seed/demo-logs";
 import { blobs, comparisonResults, comparisons, runs } from "@/db/tables";
 import { computeComparison, giveUpComputing } from "@/lib/jobs/compute-comparison";
 import { getComparison } from "@/lib/services/comparisons/load";
@@ -45,8 +46,8 @@ async function driven({ db }: TestDatabase, twinsPerSide = 4) {
   await db.delete(runs);
   const day = driveRoadDay({
     twinsPerSide,
-    effectA: () => 0,
-    effectB: hill(TRUTH.share, TRUTH.fromRpm, TRUTH.toRpm),
+    effectA: EFFECTS.asFound,
+    effectB: { ...EFFECTS.asFound, gain: hill(TRUTH.share, TRUTH.fromRpm, TRUTH.toRpm) },
     tempC: 16,
     seed: 11,
   });
