@@ -38,7 +38,7 @@ function lines(result: CampaignResult): Line[] {
     unit: "N·m",
     a: A?.peak?.engine_nm ?? null,
     b: B?.peak?.engine_nm ?? null,
-    own: [null, null],
+    own: [A?.peak?.uncertainty_nm ?? null, B?.peak?.uncertainty_nm ?? null],
     at: pair(A?.peak?.engine_nm_rpm, B?.peak?.engine_nm_rpm),
     difference: peaks?.engine_nm ?? null,
     halfWidth: peaks?.half_width_nm ?? null,
@@ -110,8 +110,8 @@ export function PeaksTable({ result, labels }: { result: CampaignResult; labels:
       />
       <p className="px-4 py-3 text-13 text-ink2">
         Peaks are crank estimates in {basisWords(result)}. The ± beside A or B is that of the side’s own peak,
-        about 95 %, without that of a weather factor. B − A of the peaks comes from the model with leg and
-        order taken out and so need not equal the plain difference.
+        about 95 %; what it is made of is listed further down. B − A of the peaks comes from the model with
+        leg and order taken out and so need not equal the plain difference.
       </p>
     </>
   );

@@ -106,8 +106,14 @@ export function RunPeak({ result }: { result: RunResult }) {
           term: "Peak torque, crank estimate, air of the day",
           description: peak ? (
             <>
-              <Quantity value={peak.engine_nm} unit="N·m" decimals={1} orNotStated /> at{" "}
-              {numberText(peak.engine_nm_rpm)} per minute
+              <Quantity
+                value={peak.engine_nm}
+                unit="N·m"
+                halfWidth={peak.uncertainty_nm}
+                decimals={1}
+                orNotStated
+              />{" "}
+              at {numberText(peak.engine_nm_rpm)} per minute
             </>
           ) : (
             "none"

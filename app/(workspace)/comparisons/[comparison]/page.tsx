@@ -10,8 +10,10 @@ import { methodNotes } from "@/components/features/comparisons/method-notes";
 import { PeaksTable } from "@/components/features/comparisons/peaks-table";
 import { RunsTable } from "@/components/features/comparisons/runs-table";
 import { SettingsForm } from "@/components/features/comparisons/settings-form";
+import { SideBudgets } from "@/components/features/comparisons/side-budgets";
 import { TwinsTable } from "@/components/features/comparisons/twins-table";
 import { GateList, gateCount } from "@/components/features/gates/gate-list";
+import { NullTestCard } from "@/components/features/null-tests/null-test-card";
 import { buttonStyle } from "@/components/ui/action/button-style";
 import { LinkButton } from "@/components/ui/action/link-button";
 import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
@@ -22,7 +24,7 @@ import { plottedGrid } from "@/lib/compare/plotted-grid";
 import { orNotFound } from "@/lib/http/page";
 import { can } from "@/lib/policy/can";
 import { getComparison } from "@/lib/services/comparisons/load";
-import { FACTOR_WORDS, sideOfRun } from "@/lib/services/comparisons/schema";
+import { FACTOR_WORDS, sideLabels, sideOfRun } from "@/lib/services/comparisons/schema";
 import { gateStatus } from "@/lib/services/gates/status";
 
 export const metadata: Metadata = { title: "Comparison" };
@@ -40,7 +42,8 @@ export default async function ComparisonPage({
   const gates = maySettings.ok ? await gateStatus(ctx, { revisionId: view.b.id }) : null;
   const gatesHere = gates?.comparisonId === view.id ? gates : null;
   const { result } = view;
-  const labels = { a: `R${view.a.number}`, b: `R${view.b.number}` };
+  const labels = sideLabels(view);
+  const isNullTest = view.nullTestRoadDayId !== null;
   const grid = result && plottedGrid(result, sideOfRun(view.runs));
   return (
     <div className="flex flex-col gap-6">
@@ -56,17 +59,31 @@ export default async function ComparisonPage({
         }
         title={`${labels.a} against ${labels.b}`}
         lead={
-          <>
-            A is{" "}
-            <Link href={`/revisions/${view.a.id}`} className="link">
-              {labels.a} “{view.a.title}”
-            </Link>
-            {view.a.stands && ", which stands"}. B is{" "}
-            <Link href={`/revisions/${view.b.id}`} className="link">
-              {labels.b} “{view.b.title}”
-            </Link>
-            {view.b.stands && ", which stands"}.
-          </>
+          isNullTest ? (
+            <>
+              Null test of{" "}
+              <Link href={`/revisions/${view.a.id}`} className="link">
+                {labels.a} “{view.a.title}”
+              </Link>{" "}
+              on one{" "}
+              <Link href={`/road-days/${view.nullTestRoadDayId}` as Route} className="link">
+                road day
+              </Link>
+              : both sides are the same image, so nothing may be claimed. No gate rests on it.
+            </>
+          ) : (
+            <>
+              A is{" "}
+              <Link href={`/revisions/${view.a.id}`} className="link">
+                {labels.a} “{view.a.title}”
+              </Link>
+              {view.a.stands && ", which stands"}. B is{" "}
+              <Link href={`/revisions/${view.b.id}`} className="link">
+                {labels.b} “{view.b.title}”
+              </Link>
+              {view.b.stands && ", which stands"}.
+            </>
+          )
         }
         actions={
           view.state === "ready" && (
@@ -83,7 +100,10 @@ export default async function ComparisonPage({
       <ComparisonStateNotice view={view} blockedBecause={blockedBecause} action={recomputeAction} />
       <div className="grid gap-6 lg:grid-cols-[minmax(0,1fr)_20rem]">
         <div className="flex min-w-0 flex-col gap-6">
-          {result && <AnswerCard result={result} labels={labels} stale={view.state === "stale"} />}
+          {result && isNullTest && <NullTestCard result={result} image={labels.a} />}
+          {result && !isNullTest && (
+            <AnswerCard result={result} labels={labels} stale={view.state === "stale"} />
+          )}
           {result && grid && view.basis && (
             <ComparisonFigure
               grid={grid}
@@ -97,6 +117,16 @@ export default async function ComparisonPage({
           {result && (
             <Card title="Peaks and times" flush>
               <PeaksTable result={result} labels={labels} />
+            </Card>
+          )}
+          {result && (
+            <Card
+              title="What the ± of each peak is made of"
+              description="Standard uncertainties of a side’s own figure. In the difference most of them cancel."
+              id="budget"
+              flush
+            >
+              <SideBudgets result={result} labels={labels} />
             </Card>
           )}
           <Card title="Conditions side by side" flush>
@@ -116,7 +146,7 @@ export default async function ComparisonPage({
           )}
         </div>
         <aside className="flex min-w-0 flex-col gap-6">
-          {view.b.state === "in_review" && (
+          {view.b.state === "in_review" && !isNullTest && (
             <Card title="Decide" tone="well">
               <p className="mb-3 text-15">
                 {labels.b} is in review. The lead decides on it beside this evidence.

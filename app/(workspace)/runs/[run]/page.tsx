@@ -2,6 +2,7 @@ import { Download } from "lucide-react";
 import type { Metadata, Route } from "next";
 import { RunActsCard } from "@/app/(workspace)/runs/[run]/run-acts";
 import { RunBasis } from "@/app/(workspace)/runs/[run]/run-basis";
+import { RunBudget } from "@/components/features/runs/run-budget";
 import { RunCurveChart, RunTraceChart } from "@/components/features/runs/run-charts";
 import { RunFacts } from "@/components/features/runs/run-facts";
 import { RunPeak, RunTimes } from "@/components/features/runs/run-figures";
@@ -96,6 +97,16 @@ export default async function RunPage({ params }: PageProps<"/runs/[run]">) {
           <RunBasis view={view} />
         </div>
       </div>
+      {result?.usable && result.peak?.budget && (
+        <Card
+          title="What the ± of the peak power is made of"
+          description="Standard uncertainties of this run’s own figure; the parts are added as squares."
+          id="budget"
+          flush
+        >
+          <RunBudget budget={result.peak.budget} />
+        </Card>
+      )}
       {result?.usable && <RunCurveChart result={result} />}
       {verdict?.traces && <RunTraceChart traces={verdict.traces} notes={verdict.result.notes} />}
       <RunActsCard view={view} />
