@@ -140,6 +140,8 @@ export async function countUsableRuns(db: Queryable, { workspaceId, revisionId }
         eq(runs.revisionId, revisionId),
         eq(runs.state, "usable"),
         sql`${runs.setAsideAt} is null`,
+        // A run of a null test says nothing about a change.
+        sql`${runs.letter} is null`,
       ),
     );
   return row.n;

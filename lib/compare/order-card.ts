@@ -49,9 +49,16 @@ function twinSides(twinsPerSide: number): Side[] {
  * What to drive, in twins: out and back on one image before any change of image, sides counterbalanced (A-B-B-A).
  * Sources of the order: drift cancellation of A-B-B-A and of the Thue–Morse order, see the leakage table in the Methods.
  * @param twinsPerSide whole number, 1 to 12
+ * @param sameImage for a null test, whose two sides are one image: it is written once, not at each change of side
  * @throws RangeError outside that
  */
-export function proposeOrder({ twinsPerSide }: { twinsPerSide: number }): OrderCard {
+export function proposeOrder({
+  twinsPerSide,
+  sameImage = false,
+}: {
+  twinsPerSide: number;
+  sameImage?: boolean;
+}): OrderCard {
   if (!Number.isInteger(twinsPerSide) || twinsPerSide < 1 || twinsPerSide > 12)
     throw new RangeError(`twins a side must be a whole number from 1 to 12, not ${twinsPerSide}`);
   const sides = twinSides(twinsPerSide);
@@ -61,7 +68,7 @@ export function proposeOrder({ twinsPerSide }: { twinsPerSide: number }): OrderC
       twin: index + 1,
       side,
       leg: "out",
-      writeBefore: index === 0 || sides[index - 1] !== side,
+      writeBefore: index === 0 || (!sameImage && sides[index - 1] !== side),
     },
     { place: 2 * index + 2, twin: index + 1, side, leg: "back", writeBefore: false },
   ]);

@@ -42,7 +42,9 @@ function designOf(runs: readonly ComparedRun[]): { matrix: Float64Array; columns
 }
 
 /** The design of whichever runs have a value; the same runs at the next engine speed share it. */
-function designsOf(runs: readonly ComparedRun[]): (present: readonly number[]) => ReturnType<typeof designOf> {
+function designsOf(
+  runs: readonly ComparedRun[],
+): (present: readonly number[]) => ReturnType<typeof designOf> {
   const known = new Map<string, ReturnType<typeof designOf>>();
   return (present) => {
     const key = present.join();

@@ -2,24 +2,31 @@ import { Button } from "@/components/ui/action/button";
 import { Select } from "@/components/ui/form/select";
 
 export interface OrderCardFormProps {
-  revisions: readonly { id: string; number: number; title: string; stands: boolean }[];
-  a: string;
-  b: string;
+  /** The two images to choose from; null on a null test, which has one. */
+  sides: {
+    revisions: readonly { id: string; number: number; title: string; stands: boolean }[];
+    a: string;
+    b: string;
+  } | null;
   twins: number;
 }
 
-const TWINS = [1, 2, 3, 4, 5, 6, 8];
+const TWINS = [1, 2, 3, 4, 5, 6, 7, 8, 9, 10, 11, 12];
 
 /** Chooses what the order card is for; works without script, since it only asks for the page again. */
-export function OrderCardForm({ revisions, a, b, twins }: OrderCardFormProps) {
-  const options = revisions.map(({ id, number, title, stands }) => ({
+export function OrderCardForm({ sides, twins }: OrderCardFormProps) {
+  const options = (sides?.revisions ?? []).map(({ id, number, title, stands }) => ({
     value: id,
     label: `R${number} ${title}${stands ? " (stands)" : ""}`,
   }));
   return (
     <form method="get" className="grid gap-3 sm:grid-cols-[1fr_1fr_8rem_auto] sm:items-end">
-      <Select label="Side A, the reference" name="a" defaultValue={a} options={options} />
-      <Select label="Side B, the candidate" name="b" defaultValue={b} options={options} />
+      {sides && (
+        <>
+          <Select label="Side A, the reference" name="a" defaultValue={sides.a} options={options} />
+          <Select label="Side B, the candidate" name="b" defaultValue={sides.b} options={options} />
+        </>
+      )}
       <Select
         label="Twins a side"
         name="twins"

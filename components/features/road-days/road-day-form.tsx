@@ -4,6 +4,7 @@ import { zodResolver } from "@hookform/resolvers/zod";
 import { useEffect, useState } from "react";
 import { useForm } from "react-hook-form";
 import type { z } from "zod";
+import { PurposeFields, type PurposeFieldsProps } from "@/components/features/road-days/purpose-fields";
 import { Button } from "@/components/ui/action/button";
 import { NumberInput } from "@/components/ui/form/number-input";
 import { TextInput } from "@/components/ui/form/text-input";
@@ -11,6 +12,7 @@ import { Notice } from "@/components/ui/status/notice";
 import {
   type editRoadDaySchema,
   type newRoadDaySchema,
+  type RoadDayPurpose,
   roadDayFields,
 } from "@/lib/services/road-days/schema";
 
@@ -30,7 +32,9 @@ export interface RoadDayFormProps {
   sheetMassKg: number;
   submitWords: string;
   blockedBecause: string | null;
-  action: (input: Identity & Parsed) => Promise<{
+  /** What a new day may be opened for; null where a day is corrected, whose purpose is fixed. */
+  purpose: (Pick<PurposeFieldsProps, "revisions"> & { plannedTwins: number | null }) | null;
+  action: (input: Identity & RoadDayPurpose & Parsed) => Promise<{
     ok: boolean;
     message?: string;
     fields?: Record<string, string[] | undefined>;
@@ -45,6 +49,7 @@ export function RoadDayForm({
   sheetMassKg,
   submitWords,
   blockedBecause,
+  purpose,
   action,
 }: RoadDayFormProps) {
   const form = useForm<Fields, unknown, Parsed>({
@@ -52,6 +57,7 @@ export function RoadDayForm({
     defaultValues: values,
   });
   const { register, formState, setValue, getValues, setError } = form;
+  const [chosen, setChosen] = useState<RoadDayPurpose>({ plannedTwins: purpose?.plannedTwins ?? null });
   const [outcome, setOutcome] = useState<{ ok: boolean; message: string } | null>(null);
   const error = (name: keyof Fields) => formState.errors[name]?.message;
 
@@ -64,7 +70,7 @@ export function RoadDayForm({
 
   const send = form.handleSubmit(async (parsed) => {
     setOutcome(null);
-    const state = await action({ ...identity, ...parsed });
+    const state = await action({ ...identity, ...(purpose && chosen), ...parsed });
     for (const [name, sentences] of Object.entries(state.fields ?? {}))
       if (sentences?.[0]) setError(name as keyof Fields, { message: sentences[0] });
     setOutcome({ ok: state.ok, message: state.ok ? "Saved." : (state.message ?? "It was not saved.") });
@@ -72,6 +78,9 @@ export function RoadDayForm({
 
   return (
     <form onSubmit={send} noValidate className="flex flex-col gap-6">
+      {purpose && (
+        <PurposeFields revisions={purpose.revisions} value={chosen} onChange={(next) => setChosen(next)} />
+      )}
       <fieldset className="grid gap-4 sm:grid-cols-2">
         <legend className="mb-2 font-head font-semibold text-17">Place and people</legend>
         <TextInput

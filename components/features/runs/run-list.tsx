@@ -21,7 +21,10 @@ function RunItem({ run }: { run: RunLine }) {
           <Link href={`/runs/${run.id}`} className="link inline-flex min-h-6 items-center font-semibold">
             Run {run.number}
           </Link>
-          <Tag>R{run.revisionNumber}</Tag>
+          <Tag>
+            R{run.revisionNumber}
+            {run.letter === "B" && "′"}
+          </Tag>
           <span>{driveWords(run)}</span>
           <VerdictMark {...run} />
           {run.peakKw !== null && !run.setAside && (

@@ -2,7 +2,7 @@ import Papa from "papaparse";
 import { type PlottedGrid, plottedGrid } from "@/lib/compare/plotted-grid";
 import { ConflictError } from "@/lib/errors";
 import { getComparison } from "@/lib/services/comparisons/load";
-import { sideOfRun } from "@/lib/services/comparisons/schema";
+import { sideLabels, sideOfRun } from "@/lib/services/comparisons/schema";
 import { type Ctx, withTransaction } from "@/lib/services/ctx";
 import { appendLedger } from "@/lib/services/ledger/append";
 
@@ -54,7 +54,7 @@ export async function exportComparison(
       "no_result",
       "There is no result for what counts now. Open the comparison, recompute it and save it then.",
     );
-  const labels = { a: `R${view.a.number}`, b: `R${view.b.number}` };
+  const labels = sideLabels(view);
   await withTransaction(ctx, (tx, inner) =>
     appendLedger(tx, inner, {
       event: "compare.exported",
@@ -64,8 +64,10 @@ export async function exportComparison(
       data: { inputSha256: view.inputSha256 },
     }),
   );
+  // The prime of a null test has no place in a header of HTTP.
+  const names = view.nullTestRoadDayId === null ? `${labels.a}-${labels.b}` : `${labels.a}-null-test`;
   return {
-    fileName: `${labels.a}-${labels.b}-${view.inputSha256.slice(0, 8)}.csv`,
+    fileName: `${names}-${view.inputSha256.slice(0, 8)}.csv`,
     csv: gridCsv(grid, labels),
   };
 }

@@ -75,7 +75,9 @@ async function readComparison(ctx: Ctx, comparisonId: string, action: Action) {
   const a = revisions.find((row) => row.id === revisionAId);
   const b = revisions.find((row) => row.id === revisionBId);
   if (!programme || !a || !b) throw missing();
-  authorise(ctx, action, { granted: shared && RELEASED_STATES.has(a.state) && RELEASED_STATES.has(b.state) });
+  const isNullTest = comparison.nullTestRoadDayId !== null;
+  const released = RELEASED_STATES.has(a.state) && RELEASED_STATES.has(b.state);
+  authorise(ctx, action, { granted: shared && released && !isNullTest });
   return { comparison, programme, a, b };
 }
 
@@ -103,6 +105,7 @@ export async function getComparison(
   });
   return {
     id: comparison.id,
+    nullTestRoadDayId: comparison.nullTestRoadDayId,
     programme: {
       id: programme.id,
       name: programme.name,

@@ -130,6 +130,8 @@ export interface RunLine {
 /** Everything the comparison page shows. Dates are ISO texts. */
 export interface ComparisonView extends ComparisonState {
   id: string;
+  /** Road day of a null test, where both sides are one image and nothing may be claimed; null where two are compared. */
+  nullTestRoadDayId: string | null;
   programme: { id: string; name: string; idleRpm: number | null; redlineRpm: number };
   a: ComparedSide;
   b: ComparedSide;
@@ -144,6 +146,14 @@ export interface ComparisonView extends ComparisonState {
   conditions: { A: SideConditions; B: SideConditions };
   /** The same two sides under other settings. */
   others: { id: string; settings: CampaignSettings }[];
+}
+
+/** How both sides are called: on a null test one image twice, the second time with a prime. */
+export function sideLabels(view: Pick<ComparisonView, "a" | "b" | "nullTestRoadDayId">): {
+  a: string;
+  b: string;
+} {
+  return { a: `R${view.a.number}`, b: `R${view.b.number}${view.nullTestRoadDayId === null ? "" : "′"}` };
 }
 
 /** Tells the side of a run by the name that the analysis gives it; null for a run that does not count. */

@@ -64,9 +64,10 @@ export async function prepareRoadDay(ctx: Ctx, programmeId: string) {
   authorise(ctx, "road_day.edit");
   const { programme, sheet } = await loadProgramme(ctx, programmeId);
   const { workspaceId } = ctx;
-  const [strips, last] = await Promise.all([
+  const [strips, last, drivable] = await Promise.all([
     selectStripNames(ctx.db, { workspaceId }),
     selectNewestRoadDay(ctx.db, { workspaceId, programmeId }),
+    selectDrivableRevisions(ctx.db, { workspaceId, programmeId }),
   ]);
-  return { programme, strips, last, sheetMassKg: toCampaignVehicle(sheet.figures).mass_kg };
+  return { programme, strips, last, drivable, sheetMassKg: toCampaignVehicle(sheet.figures).mass_kg };
 }

@@ -67,7 +67,17 @@ export const roadDayFields = z
     message: "The driver can't be at the recorder: a second person is.",
   });
 
-export const newRoadDaySchema = z.object({ programmeId: z.uuid() }).and(roadDayFields);
+/** What a road day is opened for. Fixed from then on, since the runs that follow take their side from it. */
+export const roadDayPurpose = z.object({
+  /** The one image of a null test; null or absent: two images are compared. */
+  nullTestRevisionId: z.uuid("Choose the revision that the null test drives.").nullish(),
+  /** Null test only: the same image is written anew wherever the letter changes. */
+  nullTestRewrites: z.boolean().optional(),
+  plannedTwins: z.coerce.number().int().min(1).max(12).nullish(),
+});
+export type RoadDayPurpose = z.output<typeof roadDayPurpose>;
+
+export const newRoadDaySchema = z.object({ programmeId: z.uuid() }).and(roadDayPurpose).and(roadDayFields);
 export type NewRoadDay = z.output<typeof newRoadDaySchema>;
 
 export const editRoadDaySchema = z

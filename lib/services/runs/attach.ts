@@ -3,6 +3,8 @@ import type { RoadDayRow } from "@/db/queries/road-days";
 import { insertRun, selectRunWithLog, selectTakenPlaces, takeRunNumber } from "@/db/queries/runs";
 import { ConflictError, InvalidInputError } from "@/lib/errors";
 import { enqueueJob } from "@/lib/jobs/enqueue";
+import { findOrOpen } from "@/lib/services/comparisons/question";
+import { STANDARD_SETTINGS } from "@/lib/services/comparisons/schema";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { once } from "@/lib/services/idempotency";
 import { appendLedger } from "@/lib/services/ledger/append";
@@ -38,6 +40,22 @@ async function requireDrivable(tx: Transaction, ctx: Ctx, input: AttachRun, road
   if (revision.barredAt)
     throw new ConflictError("revision_barred", `R${revision.number} is barred. It is not driven any more.`);
   return revision;
+}
+
+/** On a null test one image is driven under two letters; elsewhere the revision alone tells the side. @throws InvalidInputError */
+function requireLetter(roadDay: RoadDayRow, input: AttachRun): "A" | "B" | null {
+  if (roadDay.nullTestRevisionId === null) return null;
+  if (input.revisionId !== roadDay.nullTestRevisionId)
+    throw new InvalidInputError(
+      "null_test_one_image",
+      "This road day is a null test: every run of it is driven on one image. Drive another image on a road day of its own.",
+    );
+  if (!input.letter)
+    throw new InvalidInputError(
+      "letter_missing",
+      "Say which letter of the order card this run is: on a null test nothing else tells the two sides apart.",
+    );
+  return input.letter;
 }
 
 /** One log once a programme, one run a place. @throws ConflictError `already_attached`, `place_taken` */
@@ -85,6 +103,7 @@ export async function attachRun(
     refuseArchived(programme);
     requireChecklist(roadDay);
     const revision = await requireDrivable(tx, inner, input, roadDay);
+    const letter = requireLetter(roadDay, input);
     // Its row lock also puts attachments of the workspace one after the other, so the checks below can't race.
     const number = await takeRunNumber(tx, { workspaceId });
     await requireNew(tx, roadDay, input, sealed);
@@ -99,6 +118,7 @@ export async function attachRun(
       kind,
       leg,
       driveOrder,
+      letter,
       gear,
       note,
       startedAt: startedAt === null ? null : new Date(startedAt),
@@ -126,11 +146,17 @@ export async function attachRun(
         kind,
         leg,
         driveOrder,
+        ...(letter && { letter }),
         gear,
         vehicleSheet: sheet.version,
         clock: startedAt === null ? "the log's own" : "typed",
       },
     });
+    if (letter !== null) {
+      // A null test asks one question that needs no choice, so it is asked with the first run; each verdict has it computed.
+      const sides = { revisionAId: revision.id, revisionBId: revision.id, nullTestRoadDayId: roadDay.id };
+      await findOrOpen(tx, inner, { ...sides, settings: STANDARD_SETTINGS });
+    }
     await enqueueJob(tx, { name: "judge-run", data: { workspaceId, runId: run.id } });
     return { runId: run.id, number };
   });

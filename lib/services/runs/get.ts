@@ -61,7 +61,9 @@ async function releasedOnly(ctx: Ctx, programmeId: string, all: { citing: Citing
   const released = new Set(lineage.filter((row) => RELEASED_STATES.has(row.state)).map((row) => row.number));
   return {
     citing: all.citing.filter((row) => records.has(row.decisionId)),
-    comparisons: all.comparisons.filter((row) => released.has(row.a) && released.has(row.b)),
+    comparisons: all.comparisons.filter(
+      (row) => row.a !== row.b && released.has(row.a) && released.has(row.b),
+    ),
   };
 }
 

@@ -20,6 +20,7 @@ function lineOf({ run, revisionNumber, testerName, result }: Row): RunLine {
     gear: run.gear,
     revisionId: run.revisionId,
     revisionNumber,
+    letter: run.letter,
     testerName: testerName ?? "somebody",
     fileName: run.logFileName,
     verdict: run.state,

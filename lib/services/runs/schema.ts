@@ -16,6 +16,8 @@ export const attachRunSchema = z.strictObject({
     .int("The place in the driven order is a whole number.")
     .min(1, "The first run of the day has place 1.")
     .max(200, "A road day has at most 200 runs."),
+  /** Letter of the order card at this place; for a null test only, where both letters are one image. */
+  letter: z.enum(["A", "B"]).nullish(),
   gear: optionalNumber({ min: 1, max: 20, integer: true }),
   note: z.string().trim().max(1000, "At most 1,000 characters.").default(""),
   startedAt: z.iso.datetime({ offset: true }).nullable().default(null),
@@ -59,6 +61,8 @@ export const runLine = z.object({
   gear: z.number().int().nullable(),
   revisionId: z.uuid(),
   revisionNumber: z.number().int(),
+  /** Which of the two letters of a null test it is; null on every other road day. */
+  letter: z.enum(["A", "B"]).nullable(),
   testerName: z.string(),
   fileName: z.string(),
   verdict: z.enum(["waiting", "usable", "refused"]),

@@ -17,6 +17,7 @@ const LINE: RunLine = {
   kind: "pull",
   gear: 3,
   revisionId: "6f0c0c5e-2a0b-4d52-9f0f-0a4b2d1c9e12",
+  letter: null,
   revisionNumber: 15,
   testerName: "A tester",
   fileName: "pull-03.csv",

@@ -19,6 +19,8 @@ export interface DropLogsProps {
   /** Which revision each side of the order card is, and the card. */
   sides: { A: string; B: string };
   card: OrderCard | null;
+  /** How the two letters of a null test are called; null on every other road day. */
+  letters: { A: string; B: string } | null;
   gears: number;
   /** Gear of the runs so far; prefilled. */
   gear: number | null;
@@ -29,9 +31,16 @@ export interface DropLogsProps {
 /** Logs in their natural order by name, so that pull-2 comes before pull-10. */
 const byName = new Intl.Collator("en", { numeric: true });
 
+/** Letter of a null test at a place of the card; beyond the card that of its last place, as freePlaces has it. */
+function letterAt(card: OrderCard | null, driveOrder: string): "A" | "B" {
+  const places = card?.places ?? [];
+  const place = places.find((candidate) => String(candidate.place) === driveOrder) ?? places.at(-1);
+  return place?.side ?? "A";
+}
+
 /** The drop area: each log prefilled from the order card, attached one by one or all at once, judged while one looks on. */
 export function DropLogs(props: DropLogsProps) {
-  const { roadDayId, revisions, sides, card, gears, gear, blockedBecause } = props;
+  const { roadDayId, revisions, sides, card, letters, gears, gear, blockedBecause } = props;
   const uploads = useUploads("log");
   const client = useQueryClient();
   const runsQuery = roadDayRunsQuery(roadDayId);
@@ -69,7 +78,9 @@ export function DropLogs(props: DropLogsProps) {
 
   const attach = (item: UploadItem) =>
     uploads.attach(item, async (uploadId, idempotencyKey) => {
-      const asked = attachRunSchema.safeParse({ uploadId, roadDayId, ...fields[item.id] });
+      const values = fields[item.id];
+      const letter = letters && values ? letterAt(card, values.driveOrder) : null;
+      const asked = attachRunSchema.safeParse({ uploadId, roadDayId, ...values, letter });
       if (!asked.success) throw new Error(asked.error.issues[0]?.message ?? "Fill the fields in first.");
       try {
         const answer = await callApi("/api/runs", { method: "POST", json: asked.data, idempotencyKey });
@@ -93,6 +104,8 @@ export function DropLogs(props: DropLogsProps) {
 
   const cardSays = (values: RunFieldValues): string | null => {
     const place = card?.places.find((candidate) => String(candidate.place) === values.driveOrder);
+    if (letters)
+      return `Counts as ${letters[letterAt(card, values.driveOrder)]}: the order card has that at this place.`;
     if (!place) return null;
     const wanted = revisions.find((revision) => revision.id === sides[place.side]);
     if (values.revisionId === sides[place.side] && values.leg === place.leg) return null;

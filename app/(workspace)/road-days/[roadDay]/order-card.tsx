@@ -6,11 +6,12 @@ import { Card } from "@/components/ui/layout/card";
 import { Disclosure } from "@/components/ui/layout/disclosure";
 import { EmptyState } from "@/components/ui/status/empty-state";
 import { freePlaces } from "@/lib/compare/order-card";
+import { cardMetres } from "@/lib/compare/plan-cost";
 import type { RoadDayView } from "@/lib/services/road-days/get";
 
 type Props = { view: RoadDayView; chosen: ChosenCard | null };
 
-function rowsOf({ revisions, runs }: RoadDayView, { a, b, card }: ChosenCard): OrderCardRow[] {
+function rowsOf({ runs }: RoadDayView, { a, b, names, isNullTest, card }: ChosenCard): OrderCardRow[] {
   const driven = runs.runs.filter((run) => !run.setAside);
   const [next] = freePlaces(
     card,
@@ -18,17 +19,19 @@ function rowsOf({ revisions, runs }: RoadDayView, { a, b, card }: ChosenCard): O
     1,
   );
   return card.places.map((place) => {
-    const wanted = revisions.find((revision) => revision.id === (place.side === "A" ? a : b));
+    const wanted = place.side === "A" ? a : b;
     const run = driven.find((candidate) => candidate.driveOrder === place.place);
-    const asPlanned = run?.revisionId === wanted?.id && run?.leg === place.leg;
+    const asPlanned =
+      run?.revisionId === wanted && run.leg === place.leg && (!isNullTest || run.letter === place.side);
+    const drivenAs = run && (isNullTest ? names[run.letter ?? "A"] : `R${run.revisionNumber}`);
     return {
       ...place,
-      revision: `R${wanted?.number ?? "?"}`,
+      revision: names[place.side],
       run: run
         ? {
             number: run.number,
             verdict: run.verdict,
-            other: asPlanned ? null : `R${run.revisionNumber} ${run.leg}`,
+            other: asPlanned ? null : `${drivenAs} ${run.leg}`,
           }
         : null,
       isNext: place.place === next?.place,
@@ -38,10 +41,10 @@ function rowsOf({ revisions, runs }: RoadDayView, { a, b, card }: ChosenCard): O
 
 function countsOf({ card }: ChosenCard, stripLengthM: number | null): string {
   const metres =
-    stripLengthM === null
-      ? ""
-      : `, ${numberText((card.runs + card.settlingDrives) * stripLengthM)} m over the strip`;
-  return `${card.runs} runs, ${card.writes} writes and ${card.settlingDrives} settling drives${metres}. The first write falls away when side A is in the car already.`;
+    stripLengthM === null ? "" : `, ${numberText(cardMetres(card, stripLengthM))} m over the strip`;
+  const writes = card.writes === 1 ? "1 write" : `${card.writes} writes`;
+  const settling = card.settlingDrives === 1 ? "1 settling drive" : `${card.settlingDrives} settling drives`;
+  return `${card.runs} runs, ${writes} and ${settling}${metres}. The first write falls away when side A is in the car already.`;
 }
 
 /** The next drive in one line, large enough to read at arm's length. */
@@ -79,19 +82,28 @@ export function OrderCardSection({ view, chosen }: Props) {
       </Card>
     );
   }
-  const name = (id: string) => `R${view.revisions.find((revision) => revision.id === id)?.number ?? "?"}`;
+  const { names, isNullTest, twins } = chosen;
   const rows = rowsOf(view, chosen);
   const leak = chosen.card.driftLeakRuns;
   return (
     <Card
       title="Order card"
       id="order-card"
-      description="Out and back on one image before any change of image; sides counterbalanced, so that steady drift cancels."
+      description={
+        isNullTest
+          ? "One image under two letters, in the order that two images would have: what it then shows is scatter, nothing else."
+          : "Out and back on one image before any change of image; sides counterbalanced, so that steady drift cancels."
+      }
     >
       <div className="flex flex-col gap-4">
         <Next rows={rows} />
-        <Disclosure summary={`${name(chosen.a)} against ${name(chosen.b)}, ${chosen.twins} twins a side`}>
-          <OrderCardForm revisions={view.revisions} a={chosen.a} b={chosen.b} twins={chosen.twins} />
+        <Disclosure
+          summary={`${names.A} against ${names.B}, ${twins === 1 ? "1 twin" : `${twins} twins`} a side`}
+        >
+          <OrderCardForm
+            sides={isNullTest ? null : { revisions: view.revisions, a: chosen.a, b: chosen.b }}
+            twins={twins}
+          />
         </Disclosure>
         <p className="text-15">{countsOf(chosen, view.roadDay.stripLengthM)}</p>
         {leak !== 0 && (

@@ -52,15 +52,21 @@ export default async function RoadDayPage({ params, searchParams }: PageProps<"/
           />
         }
         title={`${day}, ${stripName}`}
-        marks={roadDay.sample ? <Tag>sample</Tag> : null}
+        marks={
+          <>
+            {chosen?.isNullTest && <Tag tone="strong">null test of {chosen.names.A}</Tag>}
+            {roadDay.sample && <Tag>sample</Tag>}
+          </>
+        }
       />
       <Checklist roadDay={roadDay} blockedBecause={mayEdit.ok ? null : mayEdit.reason} />
       <OrderCardSection view={view} chosen={chosen} />
       <RoadDayRuns
         roadDayId={id}
-        revisions={revisions}
+        revisions={chosen?.isNullTest ? revisions.filter(({ id }) => id === chosen.a) : revisions}
         sides={{ A: chosen?.a ?? onlyRevision, B: chosen?.b ?? onlyRevision }}
         card={chosen?.card ?? null}
+        letters={chosen?.isNullTest ? chosen.names : null}
         gears={view.gearCount}
         gear={runs.runs.at(-1)?.gear ?? view.gearOfSheet}
         blockedBecause={blockedBecause}
@@ -90,6 +96,7 @@ export default async function RoadDayPage({ params, searchParams }: PageProps<"/
             sheetMassKg={sheetMassKg}
             submitWords="Save the correction"
             blockedBecause={mayEdit.ok ? null : mayEdit.reason}
+            purpose={null}
             action={editRoadDayAction}
           />
         </Disclosure>

@@ -1,10 +1,12 @@
 import type { Metadata, Route } from "next";
 import { createRoadDayAction } from "@/app/(workspace)/road-days/actions";
 import { RoadDayForm } from "@/components/features/road-days/road-day-form";
+import { LinkButton } from "@/components/ui/action/link-button";
 import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
 import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { requireCtx } from "@/lib/auth/current";
+import { MOST_TWINS } from "@/lib/compare/plan-twins";
 import { orNotFound } from "@/lib/http/page";
 import { prepareRoadDay } from "@/lib/services/road-days/get";
 
@@ -12,11 +14,17 @@ export const metadata: Metadata = { title: "New road day" };
 
 const asText = (value: number | null | undefined) => (value == null ? "" : String(value));
 
+/** Twins a side as a plan hands them over in the address; null where it says nothing that makes sense. */
+function twinsOf(text: string | string[] | undefined): number | null {
+  const twins = Number(text);
+  return Number.isInteger(twins) && twins >= 1 && twins <= MOST_TWINS ? twins : null;
+}
+
 /** A tester or lead opens a road day; strip, crew and car are taken over from the last one. */
 export default async function NewRoadDayPage({ searchParams }: PageProps<"/road-days/new">) {
   const ctx = await requireCtx();
-  const { programme: id } = await searchParams;
-  const { programme, strips, last, sheetMassKg } = await orNotFound(id, (programmeId) =>
+  const { programme: id, twins } = await searchParams;
+  const { programme, strips, last, drivable, sheetMassKg } = await orNotFound(id, (programmeId) =>
     prepareRoadDay(ctx, programmeId),
   );
   return (
@@ -32,6 +40,9 @@ export default async function NewRoadDayPage({ searchParams }: PageProps<"/road-
           />
         }
         title="New road day"
+        actions={
+          <LinkButton href={`/programmes/${programme.id}/plan` as Route}>Plan how many twins</LinkButton>
+        }
         lead="One day on one strip. Weather is read at the car; the safety checklist follows at the road side."
       />
       <Card>
@@ -57,6 +68,10 @@ export default async function NewRoadDayPage({ searchParams }: PageProps<"/road-
           sheetMassKg={sheetMassKg}
           submitWords="Open the road day"
           blockedBecause={null}
+          purpose={{
+            revisions: drivable.map(({ id, number, title }) => ({ id, number, title })),
+            plannedTwins: twinsOf(twins),
+          }}
           action={createRoadDayAction}
         />
       </Card>

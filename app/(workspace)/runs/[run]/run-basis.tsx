@@ -54,7 +54,7 @@ export function RunBasis({ view }: { view: RunView }) {
                 <span className="flex flex-wrap gap-x-4">
                   {comparisons.map(({ id, a, b }) => (
                     <Link key={id} href={`/comparisons/${id}`} className="link">
-                      R{a} against R{b}
+                      {a === b ? `null test of R${a}` : `R${a} against R${b}`}
                     </Link>
                   ))}
                 </span>
