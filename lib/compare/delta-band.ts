@@ -1,6 +1,6 @@
+import { type ColumnGroup, criticalMaxT, pooled } from "@/lib/compare/permutation-max-t";
 import { tQuantile } from "@/lib/signal/distributions";
 import { leastSquares } from "@/lib/signal/least-squares";
-import { randomStream, shuffle } from "@/lib/signal/random";
 
 /** Effect of the side at each column with its standard error and the critical value of the simultaneous band. */
 export interface DeltaBand {
@@ -13,13 +13,11 @@ export interface DeltaBand {
   orderEffect: Float64Array;
 }
 
-interface ColumnFit {
-  rows: number[];
-  /** Row weights whose product with the values is the side's coefficient. */
-  contrast: Float64Array;
-  /** Orthonormal basis of the design's columns, rows × columns. */
-  basis: Float64Array;
-  columns: number;
+/** Columns present in the same runs, with what their common design gives. */
+interface Pattern extends ColumnGroup {
+  /** Weights over all runs whose product with the values is the coefficient. */
+  side: Float64Array;
+  order: Float64Array | null;
   sideVariance: number;
   df: number;
 }
@@ -52,42 +50,39 @@ export function deltaBand(
   options: BandOptions,
 ): DeltaBand {
   const n = values.length / count;
-  const patterns = new Map<string, ColumnFit>();
-  const fits: ColumnFit[] = [];
   const effect = new Float64Array(count);
   const standardError = new Float64Array(count);
   const orderEffect = new Float64Array(count).fill(Number.NaN);
   const residuals = new Float64Array(n * count).fill(Number.NaN);
   const squares = new Float64Array(count);
-  let df = Number.POSITIVE_INFINITY;
-  for (let k = 0; k < count; k++) {
-    const rows: number[] = [];
-    for (let r = 0; r < n; r++) if (!Number.isNaN(values[r * count + k])) rows.push(r);
-    const key = rows.join();
-    let fit = patterns.get(key);
-    if (!fit) {
-      fit = columnFit(design, columns, side, rows);
-      patterns.set(key, fit);
+  const dfs = new Float64Array(count);
+  const patterns = findPatterns(values, count).map(({ rows, columns: members }) => ({
+    ...fitPattern(design, n, columns, side, order, rows),
+    columns: members,
+  }));
+  for (const pattern of patterns) {
+    const scale = Math.sqrt(pattern.rows.length / pattern.df);
+    for (const k of pattern.columns) {
+      const y = Float64Array.from({ length: n }, (_, r) => values[r * count + k] || 0);
+      effect[k] = dot(pattern.side, y, 0);
+      if (pattern.order) orderEffect[k] = dot(pattern.order, y, 0);
+      for (let j = 0; j < columns; j++) {
+        const along = dot(y, pattern.basis, j * n);
+        for (let r = 0; r < n; r++) y[r] -= along * pattern.basis[j * n + r];
+      }
+      squares[k] = dot(y, y, 0);
+      dfs[k] = pattern.df;
+      for (const r of pattern.rows) residuals[r * count + k] = y[r] * scale;
     }
-    fits.push(fit);
-    df = Math.min(df, fit.df);
-    const y = Float64Array.from(rows, (r) => values[r * count + k]);
-    const x = Float64Array.from(rows.flatMap((r) => [...design.subarray(r * columns, (r + 1) * columns)]));
-    const solved = leastSquares(x, y, columns);
-    effect[k] = solved.coefficients[side];
-    squares[k] = solved.residualSd ** 2 * fit.df;
-    if (order !== null) orderEffect[k] = solved.coefficients[order];
-    const scale = Math.sqrt(rows.length / fit.df);
-    rows.forEach((r, i) => {
-      residuals[r * count + k] = solved.residuals[i] * scale;
-    });
   }
-  const dfs = Float64Array.from(fits, (fit) => fit.df);
-  const variance = pooledVariance(squares, dfs, options.pool);
-  for (let k = 0; k < count; k++) standardError[k] = Math.sqrt(variance[k] * fits[k].sideVariance);
+  const df = Math.min(...patterns.map((pattern) => pattern.df));
+  const pooledSquares = pooled(squares, options.pool);
+  const pooledDf = pooled(dfs, options.pool);
+  for (const { columns: members, sideVariance } of patterns)
+    for (const k of members) standardError[k] = Math.sqrt((pooledSquares[k] / pooledDf[k]) * sideVariance);
   const critical = options.small
     ? tQuantile(1 - (1 - options.level) / (2 * count), df)
-    : permutationCritical(fillGaps(residuals, n, count), n, count, fits, options);
+    : criticalMaxT(fillGaps(residuals, n, count), count, patterns, dfs, options);
   return {
     effect,
     standardError,
@@ -98,55 +93,74 @@ export function deltaBand(
   };
 }
 
-/** Residual variance a column: sums of squares over degrees of freedom, both pooled with triangular weights over neighbours. */
-function pooledVariance(squares: Float64Array, dfs: Float64Array, pool: number): Float64Array {
-  return squares.map((_, k) => {
-    let top = 0;
-    let bottom = 0;
-    for (let j = Math.max(0, k - pool); j <= Math.min(squares.length - 1, k + pool); j++) {
-      const weight = 1 - Math.abs(j - k) / (pool + 1);
-      top += weight * squares[j];
-      bottom += weight * dfs[j];
-    }
-    return top / bottom;
-  });
+/** Σ a[i]·b[from + i] over the length of a. */
+function dot(a: Float64Array, b: Float64Array, from: number): number {
+  let sum = 0;
+  for (let i = 0; i < a.length; i++) sum += a[i] * b[from + i];
+  return sum;
 }
 
-function columnFit(design: Float64Array, columns: number, side: number, rows: readonly number[]): ColumnFit {
-  const x = Float64Array.from(rows.flatMap((r) => [...design.subarray(r * columns, (r + 1) * columns)]));
-  const { unscaledCovariance } = leastSquares(x, new Float64Array(rows.length), columns);
-  const contrast = new Float64Array(rows.length);
-  for (let i = 0; i < rows.length; i++) {
-    for (let j = 0; j < columns; j++)
-      contrast[i] += unscaledCovariance[side * columns + j] * x[i * columns + j];
+/** Groups the columns by the runs that have a value there. */
+function findPatterns(values: Float64Array, count: number): { rows: number[]; columns: number[] }[] {
+  const patterns = new Map<string, { rows: number[]; columns: number[] }>();
+  for (let k = 0; k < count; k++) {
+    const rows: number[] = [];
+    for (let r = 0; r * count < values.length; r++) if (!Number.isNaN(values[r * count + k])) rows.push(r);
+    const found = patterns.get(rows.join());
+    if (found) found.columns.push(k);
+    else patterns.set(rows.join(), { rows, columns: [k] });
   }
+  return [...patterns.values()];
+}
+
+function fitPattern(
+  design: Float64Array,
+  n: number,
+  columns: number,
+  side: number,
+  order: number | null,
+  rows: readonly number[],
+): Omit<Pattern, "columns"> {
+  const x = Float64Array.from(rows.flatMap((r) => [...design.subarray(r * columns, (r + 1) * columns)]));
+  // Refuses a column that depends on the others.
+  const { unscaledCovariance } = leastSquares(x, new Float64Array(rows.length), columns);
+  const contrast = (column: number) => {
+    const weights = new Float64Array(n);
+    rows.forEach((r, i) => {
+      for (let j = 0; j < columns; j++)
+        weights[r] += unscaledCovariance[column * columns + j] * x[i * columns + j];
+    });
+    return weights;
+  };
+  const sideLast = Array.from({ length: columns }, (_, j) => j).filter((j) => j !== side);
+  const basis = new Float64Array(n * columns);
+  [...sideLast, side].forEach((column, j) => {
+    for (const r of rows) basis[j * n + r] = design[r * columns + column];
+  });
+  orthonormalise(basis, n);
   return {
     rows: [...rows],
-    contrast,
-    basis: orthonormal(x, rows.length, columns),
-    columns,
+    basis,
+    side: contrast(side),
+    order: order === null ? null : contrast(order),
     sideVariance: unscaledCovariance[side * columns + side],
     df: rows.length - columns,
   };
 }
 
-/** Modified Gram-Schmidt, twice: the designs here have a handful of well-scaled columns. */
-function orthonormal(x: Float64Array, rows: number, columns: number): Float64Array {
-  const q = x.slice();
-  for (let j = 0; j < columns; j++) {
+/** Modified Gram-Schmidt in place, twice: the designs here have a handful of well-scaled columns. */
+function orthonormalise(directions: Float64Array, n: number): void {
+  for (let from = 0; from < directions.length; from += n) {
+    const own = directions.subarray(from, from + n);
     for (let pass = 0; pass < 2; pass++) {
-      for (let k = 0; k < j; k++) {
-        let dot = 0;
-        for (let i = 0; i < rows; i++) dot += q[i * columns + j] * q[i * columns + k];
-        for (let i = 0; i < rows; i++) q[i * columns + j] -= dot * q[i * columns + k];
+      for (let before = 0; before < from; before += n) {
+        const along = dot(own, directions, before);
+        for (let i = 0; i < n; i++) own[i] -= along * directions[before + i];
       }
     }
-    let norm = 0;
-    for (let i = 0; i < rows; i++) norm += q[i * columns + j] ** 2;
-    norm = Math.sqrt(norm);
-    for (let i = 0; i < rows; i++) q[i * columns + j] /= norm;
+    const norm = Math.sqrt(dot(own, own, 0));
+    for (let i = 0; i < n; i++) own[i] /= norm;
   }
-  return q;
 }
 
 function fillGaps(residuals: Float64Array, n: number, count: number): Float64Array {
@@ -168,51 +182,4 @@ function fillGaps(residuals: Float64Array, n: number, count: number): Float64Arr
     }
   }
   return out;
-}
-
-function permutationCritical(
-  residuals: Float64Array,
-  n: number,
-  count: number,
-  fits: readonly ColumnFit[],
-  options: BandOptions,
-): number {
-  const random = randomStream(options.seed);
-  const order = Int32Array.from({ length: n }, (_, i) => i);
-  const largest = new Float64Array(options.resamples);
-  const permuted = new Float64Array(n * count);
-  const effects = new Float64Array(count);
-  const squares = new Float64Array(count);
-  const dfs = Float64Array.from(fits, (fit) => fit.df);
-  for (let b = 0; b < options.resamples; b++) {
-    shuffle(order, random);
-    for (let r = 0; r < n; r++)
-      permuted.set(residuals.subarray(order[r] * count, (order[r] + 1) * count), r * count);
-    for (let k = 0; k < count; k++) {
-      const { rows, contrast, basis, columns } = fits[k];
-      let effect = 0;
-      let square = 0;
-      for (let i = 0; i < rows.length; i++) {
-        const e = permuted[rows[i] * count + k];
-        effect += contrast[i] * e;
-        square += e * e;
-      }
-      for (let j = 0; j < columns; j++) {
-        let dot = 0;
-        for (let i = 0; i < rows.length; i++) dot += basis[i * columns + j] * permuted[rows[i] * count + k];
-        square -= dot * dot;
-      }
-      effects[k] = effect;
-      squares[k] = Math.max(0, square);
-    }
-    const variance = pooledVariance(squares, dfs, options.pool);
-    let top = 0;
-    for (let k = 0; k < count; k++) {
-      const t = Math.abs(effects[k]) / Math.sqrt(Math.max(1e-300, variance[k] * fits[k].sideVariance));
-      if (t > top) top = t;
-    }
-    largest[b] = top;
-  }
-  largest.sort();
-  return largest[Math.min(options.resamples - 1, Math.ceil((options.resamples + 1) * options.level) - 1)];
 }

@@ -15,38 +15,38 @@ export interface RandomStream {
  * Non-negative integers below 2^53. Source: O'Neill 2014, HMC-CS-2014-0905; reference outputs of its demo are tested.
  */
 export function randomStream(seed: number, stream = 54): RandomStream {
-  // 64-bit words as [high, low] pairs of unsigned 32-bit numbers.
-  let high = 0;
-  let low = 0;
-  const streamHigh = Math.floor(stream / 0x100000000) >>> 0;
+  // 64-bit words as unsigned halves, low first. A typed array keeps them out of the heap: plain variables would be boxed.
+  const state = new Uint32Array(2);
   const incrementLow = ((stream << 1) | 1) >>> 0;
-  const incrementHigh = ((streamHigh << 1) | (stream >>> 31)) >>> 0;
+  const incrementHigh = ((Math.floor(stream / 0x100000000) << 1) | (stream >>> 31)) >>> 0;
 
+  const add = (low: number, high: number) => {
+    const sum = (state[0] + low) >>> 0;
+    state[1] = (state[1] + high + (sum < low ? 1 : 0)) | 0;
+    state[0] = sum;
+  };
   const step = () => {
     // state · 6364136223846793005 + increment; the multiplier is 0x5851F42D 4C957F2D.
-    const productLow = multiplyLow(low, 0x4c957f2d);
-    const carryProduct = multiplyHigh(low, 0x4c957f2d);
-    const productHigh = (carryProduct + Math.imul(low, 0x5851f42d) + Math.imul(high, 0x4c957f2d)) >>> 0;
-    const sum = productLow + incrementLow;
-    low = sum >>> 0;
-    high = (productHigh + incrementHigh + (sum > 0xffffffff ? 1 : 0)) >>> 0;
+    const low = state[0];
+    const high = (Math.imul(low, 0x5851f42d) + Math.imul(state[1], 0x4c957f2d)) | 0;
+    state[1] = (multiplyHigh(low, 0x4c957f2d) + high) | 0;
+    state[0] = Math.imul(low, 0x4c957f2d);
+    add(incrementLow, incrementHigh);
   };
   const nextUint32 = () => {
-    const oldHigh = high;
-    const oldLow = low;
+    const oldLow = state[0];
+    const oldHigh = state[1];
     step();
     // ((old >> 18) ^ old) >> 27, truncated to 32 bits, rotated by the top five bits.
-    const mixedHigh = (oldHigh ^ (oldHigh >>> 18)) >>> 0;
-    const mixedLow = (oldLow ^ ((oldLow >>> 18) | (oldHigh << 14))) >>> 0;
-    const shifted = ((mixedLow >>> 27) | (mixedHigh << 5)) >>> 0;
+    const mixedHigh = oldHigh ^ (oldHigh >>> 18);
+    const mixedLow = oldLow ^ ((oldLow >>> 18) | (oldHigh << 14));
+    const shifted = (mixedLow >>> 27) | (mixedHigh << 5);
     const rotation = oldHigh >>> 27;
     return ((shifted >>> rotation) | (shifted << (-rotation & 31))) >>> 0;
   };
 
   step();
-  const seedLow = low + (seed >>> 0);
-  low = seedLow >>> 0;
-  high = (high + (Math.floor(seed / 0x100000000) >>> 0) + (seedLow > 0xffffffff ? 1 : 0)) >>> 0;
+  add(seed >>> 0, Math.floor(seed / 0x100000000) >>> 0);
   step();
 
   let spare: number | null = null;
@@ -68,28 +68,25 @@ export function randomStream(seed: number, stream = 54): RandomStream {
     }
   };
   const nextBelow = (bound: number) => {
-    const limit = 0x100000000 - (0x100000000 % bound);
+    const whole = bound >>> 0;
     for (;;) {
       const value = nextUint32();
-      if (value < limit) return value % bound;
+      // Values from the last whole multiple of the bound on are drawn again; only the topmost ones need the look.
+      if (value < 0x100000000 - whole || value < 0x100000000 - (0x100000000 % whole)) return value % whole;
     }
   };
   return { nextUint32, nextUniform, nextNormal, nextBelow };
 }
 
-function multiplyLow(a: number, b: number): number {
-  return Math.imul(a, b) >>> 0;
-}
-
+/** Upper 32 bits of the product of two unsigned 32-bit numbers, by halves that fit. */
 function multiplyHigh(a: number, b: number): number {
   const aHigh = a >>> 16;
   const aLow = a & 0xffff;
   const bHigh = b >>> 16;
   const bLow = b & 0xffff;
-  const low = aLow * bLow;
-  const middle = aHigh * bLow + Math.floor(low / 0x10000);
-  const rest = aLow * bHigh + (middle % 0x10000);
-  return aHigh * bHigh + Math.floor(middle / 0x10000) + Math.floor(rest / 0x10000);
+  const middle = ((Math.imul(aHigh, bLow) >>> 0) + (Math.imul(aLow, bLow) >>> 16)) >>> 0;
+  const lower = ((Math.imul(aLow, bHigh) >>> 0) + (middle & 0xffff)) >>> 0;
+  return (Math.imul(aHigh, bHigh) + (middle >>> 16) + (lower >>> 16)) >>> 0;
 }
 
 /** Shuffles `items` in place (Fisher-Yates) with the stream's own numbers. */
