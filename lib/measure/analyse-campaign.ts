@@ -12,6 +12,8 @@ import { runFullLoad } from "@/lib/measure/engine/full-load";
 import type { RunFullLoad } from "@/lib/measure/engine/full-load-types";
 import { sideFullLoad } from "@/lib/measure/engine/side-full-load";
 import { type CampaignEstimate, estimateCampaign, type ReadyRun } from "@/lib/measure/estimate-campaign";
+import { withConsequences } from "@/lib/measure/judge/consequence";
+import { judgeTogether } from "@/lib/measure/judge/judge-together";
 import { roundResult } from "@/lib/measure/round-result";
 import { type PreparedRun, prepareRun } from "@/lib/measure/run/prepare-run";
 import { type PullResult, pullResult } from "@/lib/measure/run/run-result";
@@ -83,6 +85,7 @@ export function analyseCampaign(
       p.run.kind === "sprint" && p.table && p.signals ? [[p.run.id, measureSprint(p.table, timings)]] : [],
     ),
   );
+  judgeTogether(prepared);
   const runs = prepared.map((p) =>
     runResult(p, analysed.get(p.run.id), vehicle, sprints.get(p.run.id)?.result),
   );
@@ -92,7 +95,11 @@ export function analyseCampaign(
     const fullLoad = runs[k].full_load;
     return pull && runs[k].usable && run.kind === "pull" ? [{ run, pull, fullLoad }] : [];
   });
-  return roundResult({ analysis_version: ANALYSIS_VERSION, runs, ...sidesAndDelta(campaign, usable, runs) });
+  return roundResult({
+    analysis_version: ANALYSIS_VERSION,
+    runs: runs.map(withConsequences),
+    ...sidesAndDelta(campaign, usable, runs),
+  });
 }
 
 /** Analyses one run alone: its verdict, segments, curve and times, with the losses of its own coast-down. */

@@ -94,8 +94,10 @@ function slopesOf(
   return { slopes, windowS };
 }
 
+/** A window with a recording gap in it tells no slope: at least half the usual rows must be there. */
 function slopesOver(timeS: Float64Array, speedMps: Float64Array, span: Span, windowS: number): Slope[] {
   const out: Slope[] = [];
+  const usualStepS = median(timeS.subarray(1).map((t, i) => t - timeS[i]));
   let from = 0;
   for (let start = span.from_s; start + windowS <= span.to_s + 1e-9; start += windowS / 2) {
     while (from < timeS.length && timeS[from] < start) from++;
@@ -114,7 +116,7 @@ function slopesOver(timeS: Float64Array, speedMps: Float64Array, span: Span, win
       sumTV += t * speedMps[i];
     }
     const spread = sumTT - (sumT * sumT) / n;
-    if (n < 3 || !(spread > 0)) continue;
+    if (n < Math.max(3, (0.5 * windowS) / usualStepS) || !(spread > 0)) continue;
     out.push({
       t: start + windowS / 2,
       v: sumV / n,

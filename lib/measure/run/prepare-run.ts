@@ -1,6 +1,17 @@
 import { FileRefusedError } from "@/lib/errors";
+import { heldOnRows } from "@/lib/logs/held-on-rows";
 import { requireRoadSpeed } from "@/lib/logs/road-speed";
 import type { LogTable } from "@/lib/logs/types";
+import { judgeLog, readerNotes } from "@/lib/measure/judge/judge-log";
+import { believableRoad } from "@/lib/measure/judge/road-signs";
+import { bestSpeedRateHz, isFastEnough } from "@/lib/measure/judge/sampling";
+import {
+  implausibleSpeed,
+  type SpeedAgreement,
+  speedAgreement,
+  speedContradiction,
+} from "@/lib/measure/judge/speed-agreement";
+import { fixed } from "@/lib/measure/judge/words";
 import { findSegments, type Segments } from "@/lib/measure/run/find-segments";
 import { type RunSignals, runSignals } from "@/lib/measure/run/run-signals";
 import type { CampaignRun, CampaignVehicle, Note, Reason } from "@/lib/measure/types";
@@ -17,8 +28,10 @@ export interface PreparedRun {
   table: LogTable | null;
   signals: RunSignals | null;
   segments: Segments | null;
-  reasons: Reason[];
+  reasons: Note[];
   notes: Note[];
+  /** How its wheel and GPS speeds go together; null where either is absent. */
+  agreement: SpeedAgreement | null;
 }
 
 /** First look at one log: road speed, rate, segments. Never throws: a refusal is a reason. */
@@ -34,6 +47,7 @@ export function prepareRun(
     segments: null,
     reasons: [{ code, message }],
     notes: [],
+    agreement: null,
   });
   if (log === undefined)
     return refused("log_missing", `There is no log for run ${run.id}. Add the file, or set the run aside.`);
@@ -44,14 +58,16 @@ export function prepareRun(
     if (error instanceof FileRefusedError) return refused(error.code, error.message);
     throw error;
   }
-  const signals = runSignals(log);
-  if (!(signals.rateHz >= RATE_TOLERANCE * LEAST_RATE_HZ)) {
-    return refused(
-      "rate_too_low",
-      `The log has ${signals.rateHz.toFixed(1)} rows a second; at least ${LEAST_RATE_HZ} are needed. Log faster.`,
-    );
+  const { signals, notes: road } = believableRoad(runSignals(log));
+  const agreement = speedAgreement(signals);
+  const why = tooSlow(signals) ?? implausibleSpeed(signals) ?? speedContradiction(agreement);
+  if (why) return { ...refused(why.code, why.message), notes: readerNotes(log, []) };
+  const table = heldOnRows(log);
+  const seen = { run, vehicle, table, signals, agreement };
+  if (run.kind === "sprint") {
+    const notes = judgeLog({ ...seen, segments: null });
+    return { run, table, signals, segments: null, reasons: [], notes, agreement };
   }
-  if (run.kind === "sprint") return { run, table: log, signals, segments: null, reasons: [], notes: [] };
   const stated = rpmPerMps(vehicle, run.gear)?.value ?? null;
   if (!signals.engineSpeed && stated === null) {
     return refused(
@@ -60,48 +76,29 @@ export function prepareRun(
     );
   }
   const segments = findSegments(signals, vehicle, stated);
-  const reasons: Reason[] = [];
+  const reasons: Note[] = [];
   if (run.kind === "pull" && segments.reason) reasons.push(segments.reason);
   if (run.kind === "coast-down" && !segments.coast) {
     reasons.push({
       code: "no_coast_found",
       message:
-        "The log has no neutral coast-down over 20 km/h or more. Put the gear out and let the car roll.",
+        "The log has no neutral coast-down over 5 km/h or more. Put the gear out and let the car roll without the brake.",
     });
   }
-  return { run, table: log, signals, segments, reasons, notes: firstNotes(log, segments) };
+  const notes = [...judgeLog({ ...seen, segments }), ...road];
+  return { run, table, signals, segments, reasons, notes, agreement };
 }
 
-function firstNotes(log: LogTable, segments: Segments): Note[] {
-  const notes: Note[] = [];
-  const { pull } = segments;
-  if (segments.gearChange) {
-    notes.push({
-      code: "gear_change",
-      message: "The gear changes within the full-load part; only the longest part in one gear is used.",
-    });
+function tooSlow(signals: RunSignals): Reason | null {
+  if (!(signals.rateHz >= RATE_TOLERANCE * LEAST_RATE_HZ)) {
+    return {
+      code: "rate_too_low",
+      message: `The log has ${fixed(signals.rateHz, 1)} rows a second; at least ${LEAST_RATE_HZ} are needed. Log faster.`,
+    };
   }
-  for (const gap of log.time.gaps) {
-    if (pull && gap.toS > pull.from_s && gap.fromS < pull.to_s) {
-      notes.push({
-        code: "gap",
-        from_s: gap.fromS,
-        to_s: gap.toS,
-        message: `The recording has a gap of ${(gap.toS - gap.fromS).toFixed(2)} s inside the pull; the engine speeds in it are left out.`,
-      });
-    }
-  }
-  const coolant = log.channels.find((c) => c.channel === "coolant_temperature");
-  if (pull && coolant) {
-    const row = log.timeS.findIndex((t) => t >= pull.from_s);
-    const warm = coolant.values[row];
-    // Below 70 °C friction and fuelling are not those of a warm engine [common practice, no source].
-    if (warm < 70) {
-      notes.push({
-        code: "engine_cold",
-        message: `The coolant is at ${warm.toFixed(0)} °C when the pull starts; a cold engine gives other torque. Warm up before the runs.`,
-      });
-    }
-  }
-  return notes;
+  if (isFastEnough(signals)) return null;
+  return {
+    code: "rate_too_low",
+    message: `No speed channel brings more than ${fixed(bestSpeedRateHz(signals), 1)} new values a second; at least ${LEAST_RATE_HZ} are needed. Log a speed faster.`,
+  };
 }

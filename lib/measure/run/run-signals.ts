@@ -1,4 +1,6 @@
+import { heldOnRows } from "@/lib/logs/held-on-rows";
 import type { KnownChannel, LogTable } from "@/lib/logs/types";
+import { type SensorFault, sensorFaults, withoutFaults } from "@/lib/measure/judge/sensor-faults";
 import { findOutliers } from "@/lib/signal/outliers";
 import { median } from "@/lib/signal/statistics";
 
@@ -29,6 +31,8 @@ export interface RunSignals {
   /** Best road speed there is, gaps bridged linearly: for finding segments only. */
   speedRows: Float64Array;
   speedName: "undriven wheel" | "gps" | "driven wheel";
+  /** What was left out of the channels above because the sensor did not tell it. */
+  faults: SensorFault[];
 }
 
 const SLOW_SOURCES: ReadonlySet<KnownChannel> = new Set(["gps_speed", "altitude", "latitude", "longitude"]);
@@ -38,23 +42,44 @@ const LEAST_JUMP_MPS = 0.3;
 const LEAST_JUMP_RPM = 60;
 const JUMP_SHARE = 0.02;
 
-/** Leaves out single samples that jump away from their neighbours. */
-function withoutJumps(channel: SampledChannel | null, least: number): SampledChannel | null {
+/** Leaves out single samples that jump away from their neighbours, and notes each in `faults`. */
+function withoutJumps(
+  channel: SampledChannel | null,
+  least: number,
+  name: KnownChannel,
+  faults: SensorFault[],
+): SampledChannel | null {
   if (!channel) return null;
-  const outlier = findOutliers(channel.values, 4, (value) => least + JUMP_SHARE * value);
+  const changes = channel.values.subarray(1).map((v, i) => Math.abs(v - channel.values[i]) || Number.NaN);
+  // A coarse channel moves by its step at once.
+  const floor = Math.max(least, 1.5 * (median(changes) || 0));
+  const outlier = findOutliers(channel.values, 4, (value) => floor + JUMP_SHARE * value);
   if (!outlier.includes(1)) return channel;
+  outlier.forEach((is, i) => {
+    const at = channel.times[i];
+    if (is) faults.push({ channel: name, kind: "jump", from_s: at, to_s: at, samples: 1 });
+  });
   const keep = (_: number, i: number) => outlier[i] === 0;
   return { ...channel, times: channel.times.filter(keep), values: channel.values.filter(keep) };
 }
 
 /** Picks and cleans the channels of a log. The log must carry a road speed (see `requireRoadSpeed`). */
-export function runSignals(table: LogTable): RunSignals {
-  const rows = (name: KnownChannel) => table.channels.find((c) => c.channel === name)?.values ?? null;
-  const sampled = (name: KnownChannel) => {
-    const values = rows(name);
-    return values && sampledChannel(table.timeS, values, SLOW_SOURCES.has(name));
+export function runSignals(log: LogTable): RunSignals {
+  const table = heldOnRows(log);
+  const faults = sensorFaults(table);
+  const sound = (from: LogTable, name: KnownChannel) => {
+    const channel = from.channels.find((c) => c.channel === name);
+    if (!channel) return null;
+    const own = faults.filter((fault) => fault.channel === name && fault.kind !== "jump");
+    const timeS = channel.timeS ?? from.timeS;
+    return { timeS, values: withoutFaults(timeS, channel.values, own) };
   };
-  const clean = (name: KnownChannel, least: number) => withoutJumps(sampled(name), least);
+  const rows = (name: KnownChannel) => sound(table, name)?.values ?? null;
+  const sampled = (name: KnownChannel) => {
+    const channel = sound(log, name);
+    return channel && sampledChannel(channel.timeS, channel.values, SLOW_SOURCES.has(name));
+  };
+  const clean = (name: KnownChannel, least: number) => withoutJumps(sampled(name), least, name, faults);
   const moving = (channel: SampledChannel | null) => (channel?.values.some((v) => v > 1) ? channel : null);
   const undriven = moving(clean("wheel_speed_undriven", LEAST_JUMP_MPS));
   const gps = moving(clean("gps_speed", LEAST_JUMP_MPS));
@@ -81,6 +106,7 @@ export function runSignals(table: LogTable): RunSignals {
     gearRows: rows("gear"),
     speedRows: best ? bridged(table.timeS, best) : new Float64Array(table.timeS.length),
     speedName: undriven ? "undriven wheel" : gps ? "gps" : "driven wheel",
+    faults,
   };
 }
 

@@ -1,12 +1,11 @@
+import { heldOnRows } from "@/lib/logs/held-on-rows";
 import type { KnownChannel, LogTable } from "@/lib/logs/types";
+import { maskedSpans } from "@/lib/measure/judge/consequence";
 import type { RunTraces, TraceChannel } from "@/lib/measure/run/traces";
 import type { RunResult } from "@/lib/measure/types";
 
 /** A trace has at most this many points a channel; each of half as many columns keeps its lowest and highest value. */
 const MOST_POINTS = 1200;
-
-/** Notes that hide a span from the curve. */
-const MASKING = new Set(["wheel_spin", "clutch_slip", "gap"]);
 
 const LABELS: Readonly<Partial<Record<KnownChannel, string>>> = {
   wheel_speed_undriven: "Wheel speed, undriven",
@@ -33,7 +32,8 @@ const LABELS: Readonly<Partial<Record<KnownChannel, string>>> = {
  * highest value in the order they came, at two times shared by all channels. Speeds in m/s and the rest in canonical units;
  * positions are left out. A log of no more than 1 200 rows is kept whole. Gaps are null.
  */
-export function runTraces(table: LogTable, result: RunResult): RunTraces {
+export function runTraces(log: LogTable, result: RunResult): RunTraces {
+  const table = heldOnRows(log);
   const channels = table.channels.filter(
     (c) => c.channel !== "latitude" && c.channel !== "longitude" && c.channel !== "time",
   );
@@ -44,11 +44,7 @@ export function runTraces(table: LogTable, result: RunResult): RunTraces {
   };
   const rounded = (value: number) => (Number.isFinite(value) ? Number(value.toPrecision(6)) : null);
   const segments = { ...result.segments };
-  const masked = result.notes.flatMap((note) =>
-    MASKING.has(note.code) && note.from_s !== undefined && note.to_s !== undefined
-      ? [{ from_s: note.from_s, to_s: note.to_s }]
-      : [],
-  );
+  const masked = maskedSpans(result.notes);
   if (rows <= MOST_POINTS) {
     return {
       timeS: Array.from(table.timeS, (t) => Number(t.toFixed(4))),
