@@ -63,7 +63,7 @@ const RULES: readonly [KnownChannel, RegExp][] = [
   ],
   [
     "engine_speed",
-    /\b(engine|eng|motor|crank)\b.*\b(speed|rpm|drehzahl|revs?)\b|^rpm$|^motordrehzahl$|^drehzahl$|^n ?mot(or)?$|^n$|^revs$|^engine speed$/,
+    /\b(engine|eng|motor|crank)\b.*\b(speed|rpm|drehzahl|revs?)\b|^rpm$|^motordrehzahl$|^drehzahl$|^n ?(mot(or)?|eng(ine)?)$|^n$|^revs$|^engine speed$/,
   ],
   [
     "pedal",

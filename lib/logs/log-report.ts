@@ -1,5 +1,5 @@
 import { splitTitle } from "@/lib/logs/channel-names";
-import type { LogChannel, LogProblem, LogTable, RefusedRow } from "@/lib/logs/types";
+import type { LogChannel, LogFormat, LogProblem, LogTable, RefusedRow } from "@/lib/logs/types";
 
 /** What was understood of one column; min, median, max are null when every value is missing. */
 export interface ChannelReport {
@@ -12,11 +12,16 @@ export interface ChannelReport {
   median: number | null;
   max: number | null;
   missing: number;
+  /** Samples, missing ones included: those of the table, or of the channel's own times. */
+  rows: number;
+  /** Samples a second by the usual step. */
+  rate_hz: number;
 }
 
 /** What the log reader understood, in the spelling that `read-log` prints. */
 export interface LogReport {
-  encoding: string;
+  format: LogFormat;
+  encoding: string | null;
   delimiter: string | null;
   decimal: "." | "," | null;
   rows_read: number;
@@ -36,7 +41,14 @@ export interface LogReport {
 
 const tidy = (value: number | undefined) => (value === undefined ? null : Number(value.toPrecision(12)));
 
-function channelReport(channel: LogChannel): ChannelReport {
+/** Samples a second by the median of the steps. */
+function usualRate(timeS: Float64Array): number {
+  const steps = timeS.subarray(1).map((t, i) => t - timeS[i]);
+  const step = steps.sort()[steps.length >> 1];
+  return step > 0 ? Math.round(1e6 / step) / 1e6 : 0;
+}
+
+function channelReport(channel: LogChannel, table: LogTable): ChannelReport {
   const present = channel.values.filter((value) => !Number.isNaN(value)).sort();
   return {
     column: channel.column,
@@ -48,12 +60,15 @@ function channelReport(channel: LogChannel): ChannelReport {
     median: tidy(present[present.length >> 1]),
     max: tidy(present[present.length - 1]),
     missing: channel.values.length - present.length,
+    rows: channel.values.length,
+    rate_hz: channel.timeS ? usualRate(channel.timeS) : table.time.rateHz,
   };
 }
 
 /** Summarises a log table: columns, units, ranges, rates, problems. Medians are of the values that are there. */
 export function logReport(table: LogTable): LogReport {
   return {
+    format: table.format,
     encoding: table.encoding,
     delimiter: table.delimiter,
     decimal: table.decimal,
@@ -67,7 +82,7 @@ export function logReport(table: LogTable): LogReport {
       rate_hz: table.time.rateHz,
       gaps: table.time.gaps.map((gap) => ({ from_s: gap.fromS, to_s: gap.toS })),
     },
-    channels: table.channels.map(channelReport),
+    channels: table.channels.map((channel) => channelReport(channel, table)),
     left_out: table.leftOut,
     problems: table.problems,
   };

@@ -1,6 +1,9 @@
 import { gunzipSync } from "node:zlib";
 import { FileRefusedError } from "@/lib/errors";
 import { HEAD_BYTES, openDelimited } from "@/lib/logs/delimited/read-delimited";
+import { readGpx } from "@/lib/logs/gpx/read-gpx";
+import { readMdf } from "@/lib/logs/mdf/read-mdf";
+import { readNmea } from "@/lib/logs/nmea/read-nmea";
 import { sniffLog } from "@/lib/logs/sniff-log";
 import type { ChannelKey, LogTable } from "@/lib/logs/types";
 
@@ -18,8 +21,10 @@ export const LOG_REFUSALS = [
   "ambiguous_decimal",
   "too_many_columns",
   "line_too_long",
+  "too_many_values",
   "inflates_too_large",
   "gzip_damaged",
+  "file_damaged",
 ] as const;
 
 /** A packed log may grow to this size; more is refused before it is held in memory. */
@@ -55,8 +60,8 @@ function inflate(bytes: Uint8Array, limit: number): Uint8Array {
 
 /**
  * Reads a log file into channels in canonical units over strictly rising time. Accepts delimited text in any of its
- * usual dialects, plain or gzip-packed. Nothing is interpolated; missing is NaN; doubt is a problem entry or a refusal.
- * Throws FileRefusedError with a code of LOG_REFUSALS.
+ * usual dialects, MDF 4, NMEA 0183 and GPX, plain or gzip-packed. Nothing is interpolated; missing is NaN; doubt is a
+ * problem entry or a refusal. Throws FileRefusedError with a code of LOG_REFUSALS.
  */
 export function readLog(bytes: Uint8Array, options: ReadLogOptions = {}): LogTable {
   let content = bytes;
@@ -74,6 +79,10 @@ export function readLog(bytes: Uint8Array, options: ReadLogOptions = {}): LogTab
       `${options.fileName ? `"${options.fileName}"` : "This file"} is ${what}, which is not read yet. Export the log as CSV.`,
     );
   }
+  const maxInflatedBytes = options.maxInflatedBytes ?? MAX_INFLATED_BYTES;
+  if (sniffed.kind === "mdf") return readMdf(content, { ...options, maxInflatedBytes });
+  if (sniffed.kind === "nmea") return readNmea(content, options.key ?? {});
+  if (sniffed.kind === "gpx") return readGpx(content, options.key ?? {});
   const head = content.subarray(0, HEAD_BYTES);
   const reader = openDelimited(head, content.length, options.key ?? {}, options.drive);
   reader.push(content);

@@ -33,8 +33,10 @@ export interface LogChannel {
   unitFound: string | null;
   /** Canonical unit of `values`. */
   unit: string;
-  /** One value a row of the table; NaN = missing. Never interpolated. */
+  /** One value a row of the table, or one a time of `timeS`; NaN = missing. Never interpolated. */
   values: Float64Array;
+  /** Own times of a channel that was recorded at another rate, s from the table's zero, strictly rising; absent: the rows'. */
+  timeS?: Float64Array;
   /** Free name given by a channel key. */
   name?: string;
   /** A wheel speed named by its axle while the driven axle is not known. */
@@ -55,12 +57,17 @@ export interface LogProblem {
   message: string;
 }
 
+/** File formats that the log reader knows. */
+export type LogFormat = "delimited" | "mdf4" | "nmea0183" | "gpx";
+
 /** What the log reader understood. Rows are in strictly rising time. */
 export interface LogTable {
+  format: LogFormat;
   /** Seconds from the first kept sample, strictly rising. */
   timeS: Float64Array;
   channels: LogChannel[];
-  encoding: string;
+  /** Character encoding, or null for a binary file. */
+  encoding: string | null;
   delimiter: string | null;
   decimal: "." | "," | null;
   rowsRead: number;
@@ -68,6 +75,7 @@ export interface LogTable {
   time: {
     column: string;
     form: string;
+    /** The first time as written, or the date and time that the file states for its first sample. */
     from: string;
     toS: number;
     rateHz: number;

@@ -78,6 +78,7 @@ export function recordRun(
       return 0.05 + 1.089 * at(trace.a, t) + STANDARD_GRAVITY_MPS2 * slope + 0.15 * random.nextNormal();
     });
   return {
+    format: "delimited",
     timeS,
     channels,
     encoding: "utf-8",
