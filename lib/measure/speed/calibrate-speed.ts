@@ -42,14 +42,18 @@ interface Equation {
   forceN: number;
 }
 
-/** White noise of a channel from its second differences (robust), never below a hundredth of its step. */
+/** White noise of a channel from its second differences (robust), never below what its step makes: step/√12. */
 function channelNoise(channel: SampledChannel, fromS: number, toS: number): number {
   const [a, b] = between(channel, fromS, toS);
   const bends: number[] = [];
+  let step = Number.POSITIVE_INFINITY;
   for (let i = a + 1; i < b - 1; i++) {
+    const jump = Math.abs(channel.values[i] - channel.values[i - 1]);
+    if (jump > 0 && jump < step) step = jump;
     bends.push(Math.abs(channel.values[i - 1] - 2 * channel.values[i] + channel.values[i + 1]));
   }
-  return bends.length === 0 ? Number.NaN : (1.4826 * median(bends)) / Math.sqrt(6);
+  if (bends.length === 0) return Number.NaN;
+  return Math.max((1.4826 * median(bends)) / Math.sqrt(6), Number.isFinite(step) ? step / Math.sqrt(12) : 0);
 }
 
 /**
@@ -276,5 +280,7 @@ function solveModel(
   const scaleFrom =
     base === "gps" || gpsIndex !== undefined ? "gps" : base === "engineSpeed" ? "engine speed" : "wheel";
   const scaleUncertainty = scaleFrom === "gps" ? 0.001 : scaleFrom === "wheel" ? 0.01 : 0.007;
-  return { base, slipPerN: x[0], channels, scaleUncertainty, scaleFrom };
+  // Where only driven channels tell the speed, their slip can't be seen: a usual tyre's is taken out.
+  const slipPerN = slips(base) ? PRIOR.slipPerN : x[0];
+  return { base, slipPerN, channels, scaleUncertainty, scaleFrom };
 }

@@ -12,6 +12,7 @@ import {
   SPEED_SOURCES,
   type SpeedModel,
   type SpeedRun,
+  slips,
   tipInS,
 } from "@/lib/measure/speed/speed-model";
 import type { Span } from "@/lib/measure/types";
@@ -24,6 +25,8 @@ export interface PullSpeed {
   fromS: number;
   toS: number;
   tipInS: number;
+  /** False for a first fit on driven channels alone: their slip is still in it. */
+  slipTaken: boolean;
   /** Spans in which the driven wheels or the clutch slipped beyond drive creep. */
   slipping: (Span & { code: "wheel_spin" | "clutch_slip" })[];
 }
@@ -79,6 +82,7 @@ export function pullSpeeds(
       fromS: tipInS(runs[index].segments),
       toS: pull.to_s,
       tipInS: tipInS(runs[index].segments),
+      slipTaken: earlier !== null || !slips(model.base),
       slipping,
     };
   });
@@ -127,8 +131,9 @@ function roadSpeedSeries(
     }
     if (earlier) {
       const expected = splineAt(earlier.fit.basis, earlier.fit.coefficients, t, 0, scratch);
+      const compared = earlier.slipTaken ? value : channel.values[i] / reading.scale;
       if (
-        Math.abs(value - expected) >
+        Math.abs(compared - expected) >
         Math.max(OUTLIER_DEVIATIONS * reading.deviationMps, OUTLIER_SHARE * expected)
       )
         value = Number.NaN;
