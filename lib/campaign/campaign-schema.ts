@@ -56,6 +56,15 @@ const run = z.strictObject({
   mass_kg: known(positive),
 });
 
+const speedPair = z
+  .union([
+    z.strictObject({ from_kmh: z.number().nonnegative(), to_kmh: positive }),
+    z.strictObject({ from_mph: z.number().nonnegative(), to_mph: positive }),
+  ])
+  .refine((pair) => ("from_kmh" in pair ? pair.to_kmh > pair.from_kmh : pair.to_mph > pair.from_mph), {
+    message: "the second speed must be above the first",
+  });
+
 const settings = z
   .strictObject({
     factor: z
@@ -76,6 +85,9 @@ const settings = z
     rpm_step: z.number().min(5).max(500).default(50),
     level: z.number().gt(0.5).lt(1).default(0.95),
     seed: z.int().nonnegative().default(1),
+    speed_pairs: known(z.array(speedPair).max(20)),
+    distances_m: known(z.array(z.number().min(5).max(5000)).max(20)),
+    fall_limit_pct: known(positive),
   })
   .prefault({});
 

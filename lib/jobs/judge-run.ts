@@ -11,7 +11,8 @@ import { analyseRun } from "@/lib/measure/analyse-campaign";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
 import { runTraces } from "@/lib/measure/run/run-traces";
 import type { RunTraces } from "@/lib/measure/run/traces";
-import type { CampaignRun, CampaignVehicle, RunResult } from "@/lib/measure/types";
+import { toTimingSettings } from "@/lib/measure/sprint/sheet-timings";
+import type { CampaignRun, CampaignSettings, CampaignVehicle, RunResult } from "@/lib/measure/types";
 import { toCampaignVehicle } from "@/lib/measure/vehicle/vehicle-sheet";
 import { readBlob } from "@/lib/services/blobs";
 import { refreshComparisonsOf } from "@/lib/services/comparisons/refresh";
@@ -31,6 +32,7 @@ interface JudgeInput {
   logSha256: string;
   vehicle: CampaignVehicle;
   run: CampaignRun;
+  settings: CampaignSettings;
 }
 
 const SETTINGS = toCampaignSettings(STANDARD_SETTINGS);
@@ -60,8 +62,9 @@ async function readInput(
       started_at: run.startedAt?.toISOString() ?? null,
       weather: { temp_c: run.tempC, pressure_hpa: run.pressureHpa, rh_pct: run.humidityPct },
     },
+    settings: { ...SETTINGS, ...toTimingSettings(sheet.figures.timings) },
   };
-  return { found, input, inputSha256: digestOf({ ...input, settings: SETTINGS }) };
+  return { found, input, inputSha256: digestOf(input) };
 }
 
 /** Reads the log and analyses it. A log that is refused is a verdict, not an error. */
@@ -73,7 +76,7 @@ function judge(input: JudgeInput, bytes: Uint8Array): { result: RunResult; trace
     if (!(error instanceof FileRefusedError)) throw error;
     log = error;
   }
-  const result = analyseRun(input.vehicle, input.run, log, SETTINGS);
+  const result = analyseRun(input.vehicle, input.run, log, input.settings);
   return { result, traces: log instanceof FileRefusedError ? null : runTraces(log, result) };
 }
 

@@ -9,6 +9,7 @@ import {
   DRIVE_WORDS,
   ENGINE_WORDS,
 } from "@/components/features/programmes/sheet-words";
+import { TimingFields } from "@/components/features/programmes/timing-fields";
 import { NumberInput } from "@/components/ui/form/number-input";
 import { Select } from "@/components/ui/form/select";
 import { TextInput } from "@/components/ui/form/text-input";
@@ -29,7 +30,7 @@ function messageAt(errors: object, name: string): string | undefined {
 export function VehicleSheetFields() {
   const { register, control, formState } = useFormContext<SheetFields>();
   const errorOf = (name: string) => messageAt(formState.errors, name);
-  const field = (name: keyof SheetValues) => ({
+  const field = (name: Exclude<keyof SheetValues, "timings">) => ({
     ...register(`sheet.${name}`),
     error: errorOf(`sheet.${name}`),
   });
@@ -142,6 +143,10 @@ export function VehicleSheetFields() {
           {...field("fuelQuantityMgPerLCycle")}
           fieldClassName="sm:max-w-xs"
         />
+      </fieldset>
+      <fieldset className="grid gap-4 sm:grid-cols-2">
+        <legend className={legend}>Times</legend>
+        <TimingFields register={register} errorOf={errorOf} />
       </fieldset>
     </>
   );

@@ -1,3 +1,4 @@
+import { type TypedTimings, typedTimings } from "@/components/features/programmes/timing-words";
 import type { Figure, VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 
 interface TypedFigure {
@@ -24,6 +25,7 @@ export interface SheetValues {
   wheelInertiaKgm2: TypedFigure;
   meshEfficiency: TypedFigure;
   fuelQuantityMgPerLCycle: string;
+  timings: TypedTimings;
 }
 
 /** Every form that holds a sheet holds it under this name. */
@@ -65,6 +67,7 @@ export function sheetValues(sheet: VehicleSheetFigures): SheetValues {
     wheelInertiaKgm2: typed(sheet.wheelInertiaKgm2),
     meshEfficiency: typed(sheet.meshEfficiency),
     fuelQuantityMgPerLCycle: text(sheet.fuelQuantityMgPerLCycle),
+    timings: typedTimings(sheet.timings),
   };
 }
 
@@ -93,4 +96,5 @@ export const EMPTY_SHEET: SheetValues = {
   wheelInertiaKgm2: EMPTY,
   meshEfficiency: EMPTY,
   fuelQuantityMgPerLCycle: "",
+  timings: typedTimings(undefined),
 };

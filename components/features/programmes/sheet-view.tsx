@@ -1,4 +1,5 @@
 import { ASPIRATION_WORDS, DRIVE_WORDS, ENGINE_WORDS } from "@/components/features/programmes/sheet-words";
+import { timingLines } from "@/components/features/programmes/timing-words";
 import { DescriptionList } from "@/components/ui/data/description-list";
 import { numberText } from "@/components/ui/data/number-text";
 import { Quantity } from "@/components/ui/data/quantity";
@@ -81,6 +82,10 @@ export function VehicleSheetView({ sheet }: { sheet: VehicleSheetFigures }) {
               },
             ]
           : []),
+        ...timingLines(sheet.timings).map(({ term, words }) => ({
+          term,
+          description: words ?? <span className="text-ink2">none</span>,
+        })),
       ]}
     />
   );

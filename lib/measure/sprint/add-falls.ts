@@ -24,7 +24,9 @@ export function addFalls(
   for (const kind of ["pull", "sprint"] as const) {
     const members = runs.flatMap((run, k) => {
       const input = inputs.get(run.id);
-      return run.kind === kind && input && results[k].usable ? [{ run, result: results[k], ...input }] : [];
+      return run.kind === kind && input && results[k].usable
+        ? [{ run, result: results[k], fall: input.fall, sensitivityS: input.sensitivityS }]
+        : [];
     });
     const falls = pooledFalls(
       members.map(({ run, fall }) => ({ leg: run.leg ?? null, roadDay: run.road_day ?? null, fall })),

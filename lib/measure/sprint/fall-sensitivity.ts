@@ -13,8 +13,9 @@ export interface FallSensitivity {
 
 /** A fall of 1 %: what it adds to the acceleration, g·sin(atan 0.01), m/s². */
 const PER_PCT_MPS2 = STANDARD_GRAVITY_MPS2 * Math.sin(Math.atan(0.01));
-/** Below this share of the acceleration that follows, the drive is interrupted: a shift, or the start coming in. */
-const INTERRUPTED = 0.5;
+/** Below this share of what follows within so many seconds, the drive is interrupted: a shift, or the start coming in. */
+const INTERRUPTED = 0.7;
+const FOLLOWS_S = 1.2;
 const LEAST_ACCELERATION_MPS2 = 0.2;
 
 /**
@@ -26,13 +27,12 @@ export function fallSensitivity(trace: MotionTrace): FallSensitivity {
   const { timeS, speedMps } = trace;
   let top = 0;
   for (let i = 1; i < speedMps.length; i++) if (speedMps[i] > speedMps[top]) top = i;
-  const accel = new Float64Array(top + 1);
-  let next = LEAST_ACCELERATION_MPS2;
-  for (let i = top; i >= 0; i--) {
-    const own = accelerationAt(trace, timeS[i]);
-    if (own >= INTERRUPTED * next) next = Math.max(LEAST_ACCELERATION_MPS2, own);
-    accel[i] = next;
-  }
+  const own = Float64Array.from({ length: top + 1 }, (_, i) => accelerationAt(trace, timeS[i]));
+  const accel = own.map((value, i) => {
+    let follows = LEAST_ACCELERATION_MPS2;
+    for (let k = i; k <= top && timeS[k] <= timeS[i] + FOLLOWS_S; k++) follows = Math.max(follows, own[k]);
+    return value < INTERRUPTED * follows ? follows : value;
+  });
   const saved = new Float64Array(top + 1);
   const way = new Float64Array(top + 1);
   for (let i = 1; i <= top; i++) {

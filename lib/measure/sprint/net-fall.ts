@@ -23,8 +23,8 @@ const LEAST_WAY_M = 50;
 const AGREEMENT = 2;
 /** A run without height is taken to have its road day's fall to within this, percent. */
 const OTHER_STRETCH_PCT = 0.15;
-/** The effect of a fall is worked out to first order: good to this share. */
-const FIRST_ORDER = 0.1;
+/** The effect of a fall is worked out to first order and without rotating masses: good to this share. */
+const FIRST_ORDER = 0.15;
 
 /** End-height difference over distance between two times of one run; null without a live altitude or with too little way. */
 export function ownFall(
@@ -93,9 +93,9 @@ export function fallResult(fall: NetFall | null, sensitivityS: Readonly<Record<s
     uncertainties[name] = Math.hypot(perPct * (fall?.uncertaintyPct ?? 0), FIRST_ORDER * effects[name]);
   }
   return {
-    net_fall_pct: fall && fall.pct,
-    net_fall_uncertainty_pct: fall && fall.uncertaintyPct,
-    net_fall_from: fall && fall.from,
+    net_fall_pct: fall?.pct ?? null,
+    net_fall_uncertainty_pct: fall?.uncertaintyPct ?? null,
+    net_fall_from: fall?.from ?? null,
     fall_effect_s: effects,
     fall_effect_uncertainty_s: uncertainties,
   };

@@ -1,3 +1,4 @@
+import type { SheetTimings } from "@/lib/measure/sprint/sheet-timings";
 import type { CampaignVehicle } from "@/lib/measure/types";
 
 /** A figure with its standard uncertainty, both in the unit that the field's name states. */
@@ -26,6 +27,8 @@ export interface VehicleSheetFigures {
   wheelInertiaKgm2: Figure | null;
   meshEfficiency: Figure | null;
   fuelQuantityMgPerLCycle: number | null;
+  /** Own ranges and distances to time; absent: the usual ones only. */
+  timings?: SheetTimings | undefined;
 }
 
 /**

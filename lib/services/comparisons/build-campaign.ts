@@ -1,3 +1,4 @@
+import { toTimingSettings } from "@/lib/measure/sprint/sheet-timings";
 import type { Campaign, CampaignRun } from "@/lib/measure/types";
 import { toCampaignVehicle } from "@/lib/measure/vehicle/vehicle-sheet";
 import type { CurrentInput } from "@/lib/services/comparisons/current-input";
@@ -34,6 +35,6 @@ export function buildCampaign(current: CurrentInput): Campaign {
     vehicle: toCampaignVehicle(current.sheet),
     runs,
     compare: { a: "A", b: "B" },
-    settings: current.input.settings,
+    settings: { ...current.input.settings, ...toTimingSettings(current.sheet.timings) },
   };
 }

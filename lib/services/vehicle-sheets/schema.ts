@@ -2,6 +2,7 @@ import { z } from "zod";
 import { readTypedNumber } from "@/lib/format/typed-number";
 import type { VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 import { optionalNumber, requiredNumber } from "@/lib/services/number-field";
+import { sheetTimings } from "@/lib/services/vehicle-sheets/timings";
 
 /** The limits only catch slips of the keyboard; common practice, no source. */
 const LIMITS = {
@@ -114,6 +115,7 @@ export const vehicleSheetSchema = z
     wheelInertiaKgm2: figure(LIMITS.wheelInertia),
     meshEfficiency: figure(LIMITS.efficiency),
     fuelQuantityMgPerLCycle: optionalNumber(LIMITS.fuelQuantity),
+    timings: sheetTimings,
   })
   .superRefine((sheet, context) => {
     const total = sheet.massPartsKg.reduce((sum, part) => sum + part.value, 0);
