@@ -31,7 +31,7 @@ export const EFFECTS = {
     lambda: (rpm) => AS_FOUND.lambda(rpm) + hill(0.008, 2300, 4700)(rpm),
     boostKpa: (rpm) => AS_FOUND.boostKpa(rpm) + hill(11, 2300, 4700)(rpm),
     overshootKpa: 11,
-    knocksPerS: (rpm) => 0.35 + hill(0.9, 2300, 4700)(rpm),
+    knocksPerS: (rpm) => 0.35 + hill(0.4, 2300, 4700)(rpm),
     exhaustC: (rpm) => AS_FOUND.exhaustC(rpm) + 20,
   }),
   // Later ignition: no knock at the top, and the heat goes into the exhaust.

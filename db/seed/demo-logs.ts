@@ -32,7 +32,7 @@ const COLUMNS: Record<string, { title: string; decimals: number; factor?: number
   latitude: { title: "Latitude [deg]", decimals: 7 },
   longitude: { title: "Longitude [deg]", decimals: 7 },
   altitude: { title: "Altitude [m]", decimals: 1 },
-  manifold_pressure: { title: "Manifold pressure, absolute [kPa]", decimals: 1 },
+  manifold_pressure: { title: "Manifold pressure absolute [kPa]", decimals: 1 },
   lambda: { title: "Lambda [-]", decimals: 3 },
   knock_retard: { title: "Knock retard [°]", decimals: 1 },
   intake_temperature: { title: "Intake air temperature [°C]", decimals: 1 },

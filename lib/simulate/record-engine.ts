@@ -17,8 +17,8 @@ export interface EngineModel {
 
 const LAMBDA_LAG_S = 0.15;
 const BOOST_LAG_S = 0.35;
-/** The overshoot dies away with this once the pressure is there. */
-const OVERSHOOT_S = 0.4;
+/** The overshoot is greatest this long after tip-in, when the pressure is nearly there. */
+const OVERSHOOT_S = 1.3;
 /** A knock control gives the ignition back at this rate, °/s. */
 const KNOCK_RETURN_DEG_PER_S = 1.2;
 /** A sheathed thermocouple follows the gas with this lag. */
@@ -80,7 +80,9 @@ export function recordEngine(
     const towards = (value: number, goal: number, lagS: number) => value + ((goal - value) * STEP_S) / lagS;
     lambda = towards(lambda, full ? model.lambda(rpm) : load > 0.02 ? 1 : 1.3, LAMBDA_LAG_S);
     loadedS = full ? loadedS + STEP_S : 0;
-    over = full ? model.overshootKpa * (loadedS / OVERSHOOT_S) * Math.exp(1 - loadedS / OVERSHOOT_S) : 0;
+    over = full
+      ? model.overshootKpa * ((loadedS / OVERSHOOT_S) * Math.exp(1 - loadedS / OVERSHOOT_S)) ** 4
+      : 0;
     boost = towards(boost, full ? model.boostKpa(rpm) : (0.3 + 0.5 * load) * ambientKpa, BOOST_LAG_S);
     retard = Math.max(0, retard - KNOCK_RETURN_DEG_PER_S * STEP_S);
     if (full && loadedS > 0.5 && random.nextUniform() < model.knocksPerS(rpm) * STEP_S)

@@ -4,7 +4,10 @@ import { timedChannel } from "@/lib/measure/engine/timed-channel";
 import type { Span } from "@/lib/measure/types";
 import { median } from "@/lib/signal/statistics";
 
-/** The plateau is read from here to here after the peak, s, and needs this much of it [common practice, no source]. */
+/** Pressure is there when it first reaches this share of its highest; the overshoot comes within this time after, s. */
+const THERE = 0.95;
+const OVERSHOOT_WITHIN_S = 1.5;
+/** The plateau is read from here to here after the overshoot, s, and needs this much of it [common practice, no source]. */
 const PLATEAU_FROM_S = 0.5;
 const PLATEAU_TO_S = 2.5;
 const LEAST_PLATEAU_S = 1;
@@ -13,7 +16,7 @@ const OTHER_ZERO_KPA = 60;
 
 /**
  * Overshoot of manifold pressure in a pull: its greatest excess over a logged target of the same zero point, else its peak
- * over its own plateau after the peak; both held for `holdS`. Null without a manifold pressure. `atS`: when.
+ * while it builds up over the plateau that follows; both held for `holdS`. Null without a manifold pressure. `atS`: when.
  */
 export function boostAtLoad(
   timeS: Float64Array,
@@ -27,7 +30,14 @@ export function boostAtLoad(
   if (!pressure) return null;
   const held = pressure.heldMeans(pull.from_s, pull.to_s, holdS);
   if (held.length < 3) return null;
-  const peak = held.reduce((best, one) => (one.value > best.value ? one : best));
+  const highest = held.reduce((best, one) => (one.value > best.value ? one : best));
+  const least = held[0].value + THERE * (highest.value - held[0].value);
+  const there = held.find(({ value }) => value >= least) ?? highest;
+  const peak = held.reduce(
+    (best, one) =>
+      one.t >= there.t && one.t <= there.t + OVERSHOOT_WITHIN_S && one.value > best.value ? one : best,
+    there,
+  );
   const base = { channel: name, peak_kpa: peak.value } as const;
 
   const { boostTarget } = rows;
@@ -58,7 +68,7 @@ export function boostAtLoad(
         reference: null,
         against_kpa: null,
         overshoot_kpa: null,
-        why: "No target is logged, and the pressure peaks too near the end of the pull to settle after it.",
+        why: "No target is logged, and the pressure builds up too late in the pull to settle after it.",
       },
       atS: peak.t,
     };

@@ -4,7 +4,7 @@ import type { Series } from "@/lib/measure/types";
 import { tQuantile } from "@/lib/signal/distributions";
 
 /** Below this the curve builds up boost and takes up the driveline, 1/min over its first point [common practice, no source]. */
-const SETTLED_RPM = 600;
+const SETTLED_RPM = 800;
 /** Nothing smaller is marked: engines ripple by less [common practice, no source]. */
 const LEAST_SIZE = 0.01;
 /** Level at which a stretch is marked: of clean sides at most about one in a hundred shows a mark. */
