@@ -44,7 +44,7 @@ export function UncertaintyTable({ caption, showCaption, parts, unit, total }: U
       basis: "Root of the sum of squares, then times the coverage factor: about 95 %.",
     },
   ];
-  const digits = decimalsForHalfWidth(total.value, 1) + 1;
+  const digits = decimalsForHalfWidth(total.value, 1) + 2;
   const columns: Column<Row>[] = [
     {
       key: "part",
