@@ -51,6 +51,8 @@ export const RULES = {
     doing: "create or edit road days",
     cells: { tester: "allow", lead: "allow" },
   },
+  "plan.view": { row: "O02", doing: "see plans and the workshop's own scatter", cells: staff },
+  "analysis.view": { row: "N09", doing: "see what an analysis version moves", cells: staff },
   "run.view": { row: "N01", doing: "see this run", cells: everybody },
   "run.attach": { row: "N02", doing: "attach runs", cells: { tester: "allow" } },
   "run.edit": { row: "N03", doing: "edit this run", cells: { tester: "own", lead: "allow" } },

@@ -71,8 +71,12 @@ export function PeopleCard({
 }
 
 export function RoadDaysCard({
+  programmeId,
   days,
+  mayPlan,
 }: {
+  programmeId: string;
+  mayPlan: boolean;
   days: readonly { id: string; day: string; stripName: string; runs: number }[];
 }) {
   return (
@@ -95,6 +99,19 @@ export function RoadDaysCard({
             </li>
           ))}
         </ul>
+      )}
+      {mayPlan && (
+        <p className="flex flex-wrap gap-x-4">
+          <Link href={`/programmes/${programmeId}/plan` as Route} className={more}>
+            Plan
+          </Link>
+          <Link href={`/programmes/${programmeId}/repeatability` as Route} className={more}>
+            Own scatter
+          </Link>
+          <Link href={`/programmes/${programmeId}/analysis` as Route} className={more}>
+            Analysis version
+          </Link>
+        </p>
       )}
     </Card>
   );

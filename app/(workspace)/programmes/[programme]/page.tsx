@@ -137,7 +137,7 @@ export default async function ProgrammePage({ params }: PageProps<"/programmes/[
         <aside aria-label="About this programme" className="grid min-w-0 gap-6 sm:grid-cols-2 lg:grid-cols-1">
           <VehicleCard programmeId={programme.id} sheet={sheet} />
           <GatesCard programmeId={programme.id} plan={plan} />
-          <RoadDaysCard days={roadDays} />
+          <RoadDaysCard programmeId={programme.id} days={roadDays} mayPlan={can(ctx, "plan.view").ok} />
           <PeopleCard people={people} />
         </aside>
       </div>

@@ -1,0 +1,109 @@
+import { selectNewestRoadDay } from "@/db/queries/road-days";
+import { type OrderCard, proposeOrder } from "@/lib/compare/order-card";
+import { type CardCost, cardCost } from "@/lib/compare/plan-cost";
+import { type PlanBasis, pooledScatter, type Scatter } from "@/lib/compare/plan-scatter";
+import {
+  MOST_TWINS,
+  type ShownBy,
+  shownBy,
+  type TwinsNeeded,
+  twinsFor,
+  twinsForInterval,
+} from "@/lib/compare/plan-twins";
+import { can } from "@/lib/policy/can";
+import { authorise, type Ctx } from "@/lib/services/ctx";
+import { planBasis, type ScatterDay, scatterHistory } from "@/lib/services/plans/history";
+import { type PlanQuery, readPlanQuery } from "@/lib/services/plans/schema";
+import { loadProgramme } from "@/lib/services/programmes/load";
+
+/** Twins a side that the table lists. */
+const LISTED = [2, 3, 4, 5, 6, 7, 8];
+
+export interface PlanRow extends ShownBy {
+  cost: CardCost;
+}
+
+/** Everything the plan page shows. */
+export interface PlanView {
+  programme: { id: string; name: string };
+  query: PlanQuery;
+  basis: PlanBasis;
+  /** Road days that the scatter was pooled from. */
+  days: number;
+  needed: TwinsNeeded;
+  /** The same at both ends of what the scatter can be; null for starting values. */
+  neededBetween: { fewest: TwinsNeeded; most: TwinsNeeded } | null;
+  rows: PlanRow[];
+  chosen: PlanRow;
+  card: OrderCard;
+  mayOpenRoadDay: ReturnType<typeof can>;
+}
+
+/**
+ * The plan before driving: how many twins a side show a difference, from the programme's own scatter.
+ * @throws NotFoundError for another workspace's; ForbiddenError
+ */
+export async function getPlan(
+  ctx: Ctx,
+  programmeId: string,
+  raw: Record<string, string | string[] | undefined>,
+): Promise<PlanView> {
+  authorise(ctx, "plan.view");
+  const { programme } = await loadProgramme(ctx, programmeId);
+  const place = { workspaceId: ctx.workspaceId, programmeId };
+  const last = await selectNewestRoadDay(ctx.db, place);
+  const history = await scatterHistory(ctx.db, place);
+  const query = readPlanQuery(raw, last?.stripLengthM ?? null);
+  const basis = planBasis(history);
+  const needed = twinsFor(query.wantedPct, basis);
+  const rowOf = (twins: number): PlanRow => ({
+    ...shownBy(twins, basis),
+    cost: cardCost(proposeOrder({ twinsPerSide: twins }), query.drive),
+  });
+  const twins = query.twins ?? needed.curve ?? needed.range ?? MOST_TWINS;
+  return {
+    programme: { id: programme.id, name: programme.name },
+    query,
+    basis,
+    days: history.days.filter((day) => (day.figures?.df ?? 0) > 0).length,
+    needed,
+    neededBetween: twinsForInterval(query.wantedPct, basis),
+    rows: LISTED.map(rowOf),
+    chosen: rowOf(twins),
+    card: proposeOrder({ twinsPerSide: twins }),
+    mayOpenRoadDay: programme.archivedAt
+      ? { ok: false, reason: "This programme is archived." }
+      : can(ctx, "road_day.edit"),
+  };
+}
+
+/** The scatter of one strip over its road days. */
+export interface StripScatter {
+  stripName: string;
+  days: ScatterDay[];
+  point: Scatter | null;
+  range: Scatter | null;
+}
+
+export interface RepeatabilityView {
+  programme: { id: string; name: string };
+  strips: StripScatter[];
+}
+
+/**
+ * A workshop's own scatter over time, strip by strip, the strip driven last first.
+ * @throws NotFoundError for another workspace's; ForbiddenError
+ */
+export async function getRepeatability(ctx: Ctx, programmeId: string): Promise<RepeatabilityView> {
+  authorise(ctx, "plan.view");
+  const { programme } = await loadProgramme(ctx, programmeId);
+  const { days } = await scatterHistory(ctx.db, { workspaceId: ctx.workspaceId, programmeId });
+  const names = [...new Set([...days].reverse().map((day) => day.stripName))];
+  const strips = names.map((stripName): StripScatter => {
+    const own = days.filter((day) => day.stripName === stripName);
+    const pooled = (key: "sd_range_pct" | "sd_point_pct") =>
+      pooledScatter(own.flatMap(({ figures }) => (figures ? [{ sdPct: figures[key], df: figures.df }] : [])));
+    return { stripName, days: own, point: pooled("sd_point_pct"), range: pooled("sd_range_pct") };
+  });
+  return { programme: { id: programme.id, name: programme.name }, strips };
+}

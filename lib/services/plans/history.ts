@@ -1,0 +1,78 @@
+import type { Queryable } from "@/db/client";
+import { type StoredScatter, selectRoadDayPlaces, selectStoredScatter } from "@/db/queries/repeatability";
+import { digestOf } from "@/lib/canonical-json";
+import { type NullTestOutcome, nullTestOutcome } from "@/lib/compare/null-test";
+import { type PlanBasis, placesSeen, pooledScatter, STARTING_SD_PCT } from "@/lib/compare/plan-scatter";
+import type { RepeatabilityResult } from "@/lib/measure/types";
+import { STANDARD_SETTINGS, toCampaignSettings } from "@/lib/services/comparisons/schema";
+
+/** What one road day says of the workshop's own scatter. */
+export interface ScatterDay {
+  roadDayId: string;
+  day: string;
+  stripName: string;
+  sample: boolean;
+  /** Null while no comparison that uses the day has a result. */
+  figures: RepeatabilityResult | null;
+  /** The comparison that the figures are from, and its analysis version. */
+  comparison: { id: string; a: number; b: number; analysisVersion: string } | null;
+  /** What came of it where the day is a null test; null on other days and while nothing is computed. */
+  nullTest: NullTestOutcome | null;
+  isNullTest: boolean;
+}
+
+const STANDARD_SHA256 = digestOf(toCampaignSettings(STANDARD_SETTINGS));
+
+/** The figures of a road day from the comparison that leaves most degrees of freedom; a day may be part of several. */
+function bestOf(stored: readonly StoredScatter[], roadDayId: string) {
+  const found = stored.flatMap((row) => {
+    const figures = row.repeatability?.find((entry) => entry.road_day === roadDayId);
+    return figures ? [{ row, figures }] : [];
+  });
+  found.sort((x, y) => y.figures.df - x.figures.df || x.row.comparisonId.localeCompare(y.row.comparisonId));
+  return found[0] ?? null;
+}
+
+/** Every road day of a programme with its scatter, in the order driven, and the bands that its comparisons drew. */
+export async function scatterHistory(
+  db: Queryable,
+  place: { workspaceId: string; programmeId: string },
+): Promise<{ days: ScatterDay[]; bands: { criticalValue: number; df: number }[] }> {
+  const stored = await selectStoredScatter(db, { ...place, settingsSha256: STANDARD_SHA256 });
+  const roadDays = await selectRoadDayPlaces(db, place);
+  const days = roadDays.map((row): ScatterDay => {
+    const best = bestOf(stored, row.id);
+    const test = stored.find((entry) => entry.nullTestRoadDayId === row.id);
+    return {
+      roadDayId: row.id,
+      day: row.day,
+      stripName: row.stripName,
+      sample: row.sample,
+      figures: best?.figures ?? null,
+      comparison: best && {
+        id: best.row.comparisonId,
+        a: best.row.a,
+        b: best.row.b,
+        analysisVersion: best.row.analysisVersion,
+      },
+      nullTest: test ? nullTestOutcome(test.delta) : null,
+      isNullTest: row.nullTestRevisionId !== null,
+    };
+  });
+  const bands = stored.flatMap(({ delta }) =>
+    delta?.band ? [{ criticalValue: delta.band.critical_value, df: delta.band.df }] : [],
+  );
+  return { days, bands };
+}
+
+/** Pools the scatter of road days into what a plan rests on; starting values where there is none. */
+export function planBasis({ days, bands }: Awaited<ReturnType<typeof scatterHistory>>): PlanBasis {
+  const figures = days.flatMap((day) => day.figures ?? []);
+  const pooled = (key: "sd_range_pct" | "sd_point_pct") =>
+    pooledScatter(figures.map((entry) => ({ sdPct: entry[key], df: entry.df })));
+  return {
+    range: pooled("sd_range_pct") ?? { sdPct: STARTING_SD_PCT.range, df: null },
+    point: pooled("sd_point_pct") ?? { sdPct: STARTING_SD_PCT.point, df: null },
+    places: placesSeen(bands),
+  };
+}

@@ -1,0 +1,71 @@
+import type { z } from "zod";
+import { type DriveFigures, USUAL_DRIVE } from "@/lib/compare/plan-cost";
+import { MOST_TWINS } from "@/lib/compare/plan-twins";
+import { requiredNumber } from "@/lib/services/number-field";
+
+/** What a plan is asked for. It lives in the page's address, so that a link shows the same plan and nothing needs saving. */
+const FIELDS = {
+  wanted: requiredNumber({ min: 0.1, max: 30, unit: "%" }),
+  strip: requiredNumber({ min: 100, max: 20_000, unit: "m" }),
+  leg: requiredNumber({ min: 0.5, max: 60, unit: "min" }),
+  write: requiredNumber({ min: 0, max: 240, unit: "min" }),
+  fuel: requiredNumber({ min: 1, max: 300, unit: "l/100 km" }),
+} satisfies Record<string, z.ZodType<number>>;
+
+export type PlanField = keyof typeof FIELDS;
+
+/** Wanted difference when nothing is said: the loss that the starting gate plan still has to tell from none. */
+const WANTED_PCT = 1;
+
+export interface PlanQuery {
+  wantedPct: number;
+  /** Twins a side that somebody chose; null: what is needed. */
+  twins: number | null;
+  drive: DriveFigures;
+  /** As typed, or what stands for an empty field. */
+  texts: Record<PlanField, string>;
+  errors: Partial<Record<PlanField, string>>;
+}
+
+type Query = Record<string, string | string[] | undefined>;
+
+/**
+ * Reads the address of the plan page. A field that is empty or missing takes its usual value, one that makes no sense too, and
+ * says so.
+ * @param stripM length of the strip driven last, m; null when none was written down
+ */
+export function readPlanQuery(query: Query, stripM: number | null): PlanQuery {
+  const usual: Record<PlanField, number> = {
+    wanted: WANTED_PCT,
+    strip: stripM ?? USUAL_DRIVE.stripM,
+    leg: USUAL_DRIVE.minutesPerLeg,
+    write: USUAL_DRIVE.minutesPerWrite,
+    fuel: USUAL_DRIVE.litresPer100Km,
+  };
+  const texts = {} as Record<PlanField, string>;
+  const values = { ...usual };
+  const errors: PlanQuery["errors"] = {};
+  for (const name of Object.keys(FIELDS) as PlanField[]) {
+    const raw = query[name];
+    const text = typeof raw === "string" ? raw.trim() : "";
+    texts[name] = text === "" ? String(usual[name]) : text;
+    const parsed = FIELDS[name].safeParse(texts[name]);
+    if (parsed.success) values[name] = parsed.data;
+    else
+      errors[name] =
+        `${parsed.error.issues[0]?.message ?? "Makes no sense."} Shown for ${usual[name]} instead.`;
+  }
+  const twins = Number(query.twins);
+  return {
+    wantedPct: values.wanted,
+    twins: Number.isInteger(twins) && twins >= 1 && twins <= MOST_TWINS ? twins : null,
+    drive: {
+      stripM: values.strip,
+      minutesPerLeg: values.leg,
+      minutesPerWrite: values.write,
+      litresPer100Km: values.fuel,
+    },
+    texts,
+    errors,
+  };
+}
