@@ -1,27 +1,14 @@
 import { Formula, Method } from "@/app/methods/method";
 
-/** From runs to a claim: uncertainty, difference, band, planning, gates, fingerprints. */
+/** From runs to a claim: difference, band, planning, gates, fingerprints. */
 export function ComparisonMethods() {
   return (
     <>
       <Method
-        id="uncertainty"
-        title="Uncertainty of an absolute figure"
-        source="Root sum of squares of independent parts: JCGM 100:2008 (GUM), 5.1. Coverage factor 2 (about 95 %). 1.5 % for a mass nobody weighed: common practice, no source."
-        limits="It holds for this car on these days. It says nothing about another fuel, temperature, gear or engine speed. It is kept apart from the uncertainty of a difference, in which most parts cancel."
-      >
-        <p>
-          Each peak has a budget: mass and inertias by their share of the force, the scale of speed twice (it
-          enters speed and acceleration), mesh efficiency in full, resistance from the scatter of the road
-          day, noise from the smoothing. The parts are added as squares; the figure printed behind ± is twice
-          the root.
-        </p>
-      </Method>
-      <Method
         id="difference"
         title="The difference of two revisions, and its band"
-        source="Permutation of residual curves with the largest |t| over the whole curve; the level was checked on simulated campaigns. Residuals of a model under permutation: Freedman and Lane 1983. Bonferroni t where a side has three runs."
-        limits="Fewer than three usable runs a side give two curves and no band. The replicate is the run, not the sample: a hundred samples of one pull are one witness. A band of the whole curve is wider than one for a single engine speed, and it is the one that allows a claim “somewhere”."
+        source="Permutation of residual curves with the largest |t| over the whole curve. Freedman and Lane 1983 permute residuals of the model without the side; here they are those of the whole model, and the level was checked on simulated campaigns. Bonferroni t where a side has three runs. Pooling of neighbouring variances: our own, checked likewise."
+        limits="Fewer than three usable runs a side give two curves and no band. The replicate is the run, not the sample: a hundred samples of one pull are one witness. A band of the whole curve is wider than one for a single engine speed, and it is the one that allows a claim “somewhere”. Pooling takes the scatter as even over 800 per minute: where it jumps within that, the band is too narrow on one side of the jump and too wide on the other."
       >
         <p>
           At every engine speed a linear model is fitted to the logarithm of torque, one value a run, with
@@ -35,9 +22,13 @@ export function ComparisonMethods() {
         </p>
         <Formula>low, high = exp(effect ∓ c · s) − 1</Formula>
         <p>
-          s is the standard error, c the critical value: the rows of residuals are permuted as wholes, the
-          model is fitted again, and c is the 95 % point of the largest |t| over the curve. The seed and the
-          number of resamples are stored, so that the same input gives the same numbers.
+          s is the standard error. With a handful of runs the scatter at one engine speed is luck, so its
+          variance is pooled with that of the engine speeds up to 400 per minute to each side, near ones
+          counting more (triangular weights). c is the critical value: the rows of residuals, scaled by √(n/(n
+          − p)) for n runs and p columns of the model, are permuted as wholes, the model is fitted again with
+          the same pooling, and c is the 95 % point of the largest |t| over the curve in 2000 resamples. A gap
+          of a run is filled from its neighbours for this only. Seed and number are stored, so that the same
+          input gives the same numbers.
         </p>
         <p>
           Where the whole band lies above zero, a gain is shown; where it lies below, a loss; elsewhere

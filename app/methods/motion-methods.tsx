@@ -26,14 +26,22 @@ export function MotionMethods() {
       <Method
         id="smoothing"
         title="Smoothing, and acceleration from it"
-        source="Restricted maximum likelihood for penalised splines: Wahba 1985 (Annals of Statistics 13); Ruppert, Wand and Carroll 2003, chapter 4."
-        limits="A feature shorter than the smoothing time is flattened. A log that knows only a slow GPS can't show a narrow dip in torque."
+        source="Restricted maximum likelihood for penalised splines: Wahba 1985 (Annals of Statistics 13); Ruppert, Wand and Carroll 2003, chapters 4 and 17 (penalties that vary along the curve), from memory. Expectation-maximisation: Dempster, Laird and Rubin 1977. Cells of speed and least width: our own."
+        limits="A feature shorter than the smoothing time is flattened. A log that knows only a slow GPS can’t show a narrow dip in torque. Detail is judged by all runs together: a bend that one run alone has is smoothed like its surroundings."
       >
         <p>
           Differences of neighbouring samples magnify noise, so speed is first drawn through by a smooth curve
           (a penalised spline), and acceleration is its slope. How strongly it smooths is chosen from the data
           by likelihood, once for all pulls of a campaign: side A and side B are never smoothed differently.
-          The smoothing time is given in seconds and is never less than two samples of the fastest channel.
+        </p>
+        <p>
+          In the last round the smoothing follows the torque. Where all pulls together show that it bends
+          sharply with speed (boost building up, the edge of a changed region) it is weak, elsewhere strong:
+          the third derivative of speed is taken as noise whose strength depends on the road speed, in cells
+          of 0.8 m/s that lean on their neighbours, and that strength is estimated over the pulls of both
+          sides. As the pulls of a side are averaged, each may keep more detail than it could alone: the
+          penalty is divided by the number of pulls of the smaller side. A least width, from the rate of the
+          fastest channel, keeps single samples from showing.
         </p>
       </Method>
       <Method

@@ -3,6 +3,7 @@ import { AirMethods } from "@/app/methods/air-methods";
 import { ComparisonMethods } from "@/app/methods/comparison-methods";
 import { METHOD_CONTENTS } from "@/app/methods/contents";
 import { MotionMethods } from "@/app/methods/motion-methods";
+import { UncertaintyMethods } from "@/app/methods/uncertainty-methods";
 import { AppShell } from "@/components/features/shell/app-shell";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 
@@ -36,6 +37,7 @@ export default function MethodsPage() {
         <div className="flex min-w-0 flex-col gap-8">
           <MotionMethods />
           <AirMethods />
+          <UncertaintyMethods />
           <ComparisonMethods />
           <p className="max-w-prose border-line border-t pt-6 text-13 text-ink2">
             Inside, all quantities are SI: metre, kilogram, second, newton, pascal, kelvin. Conversion happens

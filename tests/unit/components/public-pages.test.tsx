@@ -4,12 +4,14 @@ import { AirMethods } from "@/app/methods/air-methods";
 import { ComparisonMethods } from "@/app/methods/comparison-methods";
 import { METHOD_CONTENTS } from "@/app/methods/contents";
 import { MotionMethods } from "@/app/methods/motion-methods";
+import { UncertaintyMethods } from "@/app/methods/uncertainty-methods";
 import { FACTOR_RULES } from "@/lib/measure/air/atmosphere";
 
 const markup = renderToStaticMarkup(
   <>
     <MotionMethods />
     <AirMethods />
+    <UncertaintyMethods />
     <ComparisonMethods />
   </>,
 );
@@ -32,7 +34,9 @@ describe("the methods page", () => {
   });
 
   it("lists every weather factor that the computation knows, with its formula", () => {
-    const rows = [...page.querySelectorAll("tbody tr")].map((row) => row.textContent ?? "");
+    const rows = [...page.querySelectorAll("tbody tr")]
+      .filter((row) => row.querySelector("th code"))
+      .map((row) => row.textContent ?? "");
     expect(rows).toHaveLength(Object.keys(FACTOR_RULES).length);
     for (const [id, rule] of Object.entries(FACTOR_RULES)) {
       expect(rows.some((row) => row.startsWith(id) && row.includes(rule.formula))).toBe(true);
