@@ -23,8 +23,9 @@ export interface TraceSegment {
 export interface TraceMask {
   fromS: number;
   toS: number;
-  /** Why it was left out, e.g. "wheel spin". */
+  /** Why it was left out or is warned of, e.g. "wheel spin". */
   why: string;
+  kind: "masked" | "noted";
 }
 
 export interface TraceChartProps {
@@ -36,6 +37,8 @@ export interface TraceChartProps {
   masks?: readonly TraceMask[];
   notes?: readonly string[];
   still?: boolean;
+  /** Name by which links on the page zoom this chart to a span: see `spanHash`. */
+  anchor?: string;
 }
 
 /** What the logger recorded, one small panel a channel over time, with the stretches found in it. */
@@ -47,6 +50,7 @@ export function TraceChart({
   masks = [],
   notes,
   still,
+  anchor,
 }: TraceChartProps) {
   const data = useMemo<StackData>(
     () => ({
@@ -60,7 +64,7 @@ export function TraceChart({
         lines: [{ values, kind: "one" }],
       })),
       spans: segments.map((segment) => ({ from: segment.fromS, to: segment.toS, label: segment.kind })),
-      masks: masks.map((mask) => ({ from: mask.fromS, to: mask.toS, why: mask.why })),
+      masks: masks.map(({ fromS, toS, why, kind }) => ({ from: fromS, to: toS, why, kind })),
     }),
     [timeS, traces, segments, masks],
   );
@@ -72,6 +76,7 @@ export function TraceChart({
       notes={notes}
       caption={`${traces.map((trace) => trace.label).join(", ")} over time`}
       still={still}
+      anchor={anchor}
     />
   );
 }
@@ -86,11 +91,17 @@ export function describeTraces({
   const span = (from: number, to: number) => `from ${seconds(from)} to ${seconds(to)} s`;
   const length = (timeS.at(-1) ?? 0) - (timeS[0] ?? 0);
   const found = segments.map((segment) => `${segment.kind} ${span(segment.fromS, segment.toS)}`);
-  const left = masks.map((mask) => `${span(mask.fromS, mask.toS)} (${mask.why})`);
+  const told = (kind: TraceMask["kind"]) =>
+    masks
+      .filter((mask) => mask.kind === kind)
+      .map((mask) => `${span(mask.fromS, mask.toS)} (${mask.why})`)
+      .join("; ");
+  const [left, noted] = [told("masked"), told("noted")];
   return [
     `${numberText(length, { decimals: 1 })} s recorded.`,
     found.length > 0 ? `Found: ${found.join("; ")}.` : "No pull, coast-down or sprint was found.",
-    left.length > 0 ? `Left out: ${left.join("; ")}.` : "",
+    left && `Left out: ${left}.`,
+    noted && `Warned of: ${noted}.`,
   ]
     .filter(Boolean)
     .join(" ");

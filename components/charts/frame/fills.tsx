@@ -2,14 +2,15 @@ export interface FillIds {
   hatch: string;
   dots: string;
   masked: string;
+  noted: string;
 }
 
 /** Names of the three fills of one chart; `base` must be unique on the page (from `useId`). */
 export function fillIds(base: string): FillIds {
-  return { hatch: `${base}hatch`, dots: `${base}dots`, masked: `${base}masked` };
+  return { hatch: `${base}hatch`, dots: `${base}dots`, masked: `${base}masked`, noted: `${base}noted` };
 }
 
-/** Hatch: B higher. Dots: A higher. Thin grey hatch: left out of the computation. They tell apart without colour. */
+/** Hatch: B higher. Dots: A higher. Thin grey hatch: left out of the computation; wide upright one: warned of. They tell apart without colour. */
 export function FillDefs({ ids }: { ids: FillIds }) {
   return (
     <defs>
@@ -34,6 +35,9 @@ export function FillDefs({ ids }: { ids: FillIds }) {
         patternTransform="rotate(-45)"
       >
         <line x1="1" x2="1" y1="0" y2="5" strokeWidth="1" strokeOpacity="0.8" className="stroke-ink2" />
+      </pattern>
+      <pattern id={ids.noted} width="6" height="6" patternUnits="userSpaceOnUse">
+        <line x1="3" x2="3" y1="0" y2="6" strokeWidth="1.5" className="stroke-ink2" />
       </pattern>
     </defs>
   );

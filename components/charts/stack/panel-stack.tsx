@@ -13,6 +13,7 @@ import { stackLayout } from "@/components/charts/stack/stack-layout";
 import { StackPlot } from "@/components/charts/stack/stack-plot";
 import { StackTable } from "@/components/charts/stack/stack-table";
 import type { StackData } from "@/components/charts/stack/stack-types";
+import { useSpanHash } from "@/components/charts/stack/use-span-hash";
 import { Button } from "@/components/ui/action/button";
 import { numberText } from "@/components/ui/data/number-text";
 
@@ -26,10 +27,21 @@ export interface PanelStackProps {
   /** Grid index whose values the strip shows while the cursor rests, and what that point is. */
   rest?: { index: number; note: string } | null;
   still?: boolean;
+  /** Name by which links on the page zoom this chart: see `spanHash`. */
+  anchor?: string;
 }
 
 /** Small multiples on one x axis with one cursor. The base of the trace and the curve chart. */
-export function PanelStack({ title, data, summary, notes, caption, rest, still = false }: PanelStackProps) {
+export function PanelStack({
+  title,
+  data,
+  summary,
+  notes,
+  caption,
+  rest,
+  still = false,
+  anchor,
+}: PanelStackProps) {
   const base = useId();
   const { ref, width } = useChartWidth();
   const [store] = useState(createCursorStore);
@@ -59,6 +71,10 @@ export function PanelStack({ title, data, summary, notes, caption, rest, still =
     store.set(null);
     setRange(next);
   };
+  useSpanHash(anchor, data.x, (next) => {
+    choose(next);
+    ref.current?.scrollIntoView({ block: "center" });
+  });
 
   return (
     <ChartFigure

@@ -5,7 +5,7 @@ import { FillDefs, type FillIds } from "@/components/charts/frame/fills";
 import { shiftLabels } from "@/components/charts/frame/label-shift";
 import { thinIndices } from "@/components/charts/frame/thin";
 import type { PanelBox, StackLayout } from "@/components/charts/stack/stack-layout";
-import type { StackData, StackLine } from "@/components/charts/stack/stack-types";
+import type { StackData, StackLine, StackMask } from "@/components/charts/stack/stack-types";
 
 const LINE_CLASS: Record<StackLine["kind"], string> = {
   a: "series-a overprint",
@@ -49,13 +49,13 @@ export const StackPlot = memo(function StackPlot({ data, layout, fills, clipId }
         <Panel key={box.panel.id} data={data} layout={layout} box={box} clip={`${clipId}${index}`} />
       ))}
       {visible(data.masks).map((mask) => (
-        <rect
-          key={`${mask.why}${mask.from}`}
+        <Mask
+          key={`${mask.kind}${mask.why}${mask.from}`}
+          mask={mask}
           x={within(mask.from)}
-          y={top}
           width={Math.max(2, within(mask.to) - within(mask.from))}
-          height={bottom - top}
-          fill={`url(#${fills.masked})`}
+          layout={layout}
+          fills={fills}
         />
       ))}
       <BaseAxis
@@ -68,6 +68,42 @@ export const StackPlot = memo(function StackPlot({ data, layout, fills, clipId }
     </>
   );
 });
+
+interface MaskProps {
+  mask: StackMask;
+  x: number;
+  width: number;
+  layout: StackLayout;
+  fills: FillIds;
+}
+
+/** Height of the strip that marks what was only warned of, px: it covers no curve. */
+const NOTED_HEIGHT = 6;
+
+function Mask({ mask, x, width, layout: { boxes, top, bottom }, fills }: MaskProps) {
+  if (mask.kind === "masked") {
+    return (
+      <rect x={x} y={top} width={width} height={bottom - top} fill={`url(#${fills.masked})`}>
+        <title>{`left out: ${mask.why}`}</title>
+      </rect>
+    );
+  }
+  return (
+    <g>
+      <title>{`warned: ${mask.why}`}</title>
+      {boxes.map((box) => (
+        <rect
+          key={box.panel.id}
+          x={x}
+          y={box.top - 3}
+          width={width}
+          height={NOTED_HEIGHT}
+          fill={`url(#${fills.noted})`}
+        />
+      ))}
+    </g>
+  );
+}
 
 interface PanelProps {
   data: StackData;

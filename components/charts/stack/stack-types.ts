@@ -28,11 +28,12 @@ export interface StackSpan {
   label: string;
 }
 
-/** A stretch that the computation left out, hatched through all panels. */
+/** A stretch that was left out, hatched through all panels, or only warned of ("noted"): a hatched strip on top of each panel. */
 export interface StackMask {
   from: number;
   to: number;
   why: string;
+  kind: "masked" | "noted";
 }
 
 export interface StackAxis {

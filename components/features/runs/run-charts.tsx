@@ -1,6 +1,8 @@
 import { CurveChart, type CurveQuantity } from "@/components/charts/curve-chart";
-import { TraceChart, type TraceSegment } from "@/components/charts/trace-chart";
+import { TraceChart, type TraceMask, type TraceSegment } from "@/components/charts/trace-chart";
+import { TRACES_ANCHOR } from "@/components/features/runs/traces-anchor";
 import { Disclosure } from "@/components/ui/layout/disclosure";
+import { consequenceOf } from "@/lib/measure/judge/consequence";
 import type { RunTraces } from "@/lib/measure/run/traces";
 import type { Note, RunResult } from "@/lib/measure/types";
 
@@ -26,13 +28,14 @@ function segmentsOf({ segments }: RunTraces): TraceSegment[] {
   return found;
 }
 
-/** Why a masked stretch was left out: the note that overlaps it. */
-function whyMasked(span: { from_s: number; to_s: number }, notes: readonly Note[]): string {
-  const note = notes.find(
-    ({ from_s, to_s }) =>
-      from_s !== undefined && to_s !== undefined && from_s < span.to_s && to_s > span.from_s,
-  );
-  return note ? note.code.replaceAll("_", " ") : "left out";
+/** The spans of the findings, those that are left out and those only warned of. */
+function masksOf(notes: readonly Note[]): TraceMask[] {
+  return notes.flatMap((note): TraceMask[] => {
+    const { code, from_s, to_s } = note;
+    if (from_s === undefined || to_s === undefined) return [];
+    const kind = consequenceOf(note) === "masked" ? "masked" : "noted";
+    return [{ fromS: from_s, toS: to_s, why: code.replaceAll("_", " "), kind }];
+  });
 }
 
 /** What one looks at first; a log often holds a speed or a pedal several times over. */
@@ -63,8 +66,10 @@ function TraceStack({
   traces,
   channels,
   notes,
+  anchor,
 }: {
   title: string;
+  anchor?: string;
   traces: RunTraces;
   channels: Channels;
   notes: readonly Note[];
@@ -81,13 +86,11 @@ function TraceStack({
         values,
       }))}
       segments={segmentsOf(traces)}
-      masks={traces.masked.map((span) => ({
-        fromS: span.from_s,
-        toS: span.to_s,
-        why: whyMasked(span, notes),
-      }))}
+      masks={masksOf(notes)}
+      anchor={anchor}
       notes={[
         "Time counts from the log's first kept row. Thinned for drawing; the computation used every row.",
+        "Hatched through: left out of the figures. Hatched strip on top: warned of. The verdict says why.",
       ]}
     />
   );
@@ -99,7 +102,13 @@ export function RunTraceChart({ traces, notes }: { traces: RunTraces; notes: rea
   const shown = first.length > 0 ? first : others;
   return (
     <div className="flex flex-col gap-2">
-      <TraceStack title="Channels over time" traces={traces} channels={shown} notes={notes} />
+      <TraceStack
+        title="Channels over time"
+        traces={traces}
+        channels={shown}
+        notes={notes}
+        anchor={TRACES_ANCHOR}
+      />
       {first.length > 0 && others.length > 0 && (
         <Disclosure summary="The other channels of the log" aside={`${others.length}`}>
           <TraceStack title="Other channels" traces={traces} channels={others} notes={notes} />

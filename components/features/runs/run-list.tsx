@@ -1,5 +1,5 @@
 import Link from "next/link";
-import { VerdictMark } from "@/components/features/runs/verdict-mark";
+import { ConsequenceMark, VerdictMark } from "@/components/features/runs/verdict-mark";
 import { Quantity } from "@/components/ui/data/quantity";
 import { Tag } from "@/components/ui/data/tag";
 import type { RunLine } from "@/lib/services/runs/schema";
@@ -46,6 +46,20 @@ function RunItem({ run }: { run: RunLine }) {
             {sentence}
           </p>
         ))}
+        {run.finding && (
+          <p className="flex flex-wrap items-baseline gap-x-2 text-15">
+            <ConsequenceMark consequence={run.finding.consequence} />
+            <span>
+              {run.finding.sentence}
+              {run.notes > 1 && (
+                <span className="text-ink2">
+                  {" "}
+                  And {run.notes - 1} more {run.notes === 2 ? "finding" : "findings"}.
+                </span>
+              )}
+            </span>
+          </p>
+        )}
         {run.next && (
           <p className="text-15">
             <strong>Next: </strong>
@@ -54,7 +68,6 @@ function RunItem({ run }: { run: RunLine }) {
         )}
         <p className="break-all text-13 text-ink2">
           {run.fileName} · {run.testerName}
-          {run.notes > 0 && ` · ${run.notes} ${run.notes === 1 ? "note" : "notes"}`}
         </p>
       </div>
     </li>

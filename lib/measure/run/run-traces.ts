@@ -1,6 +1,5 @@
 import { heldOnRows } from "@/lib/logs/held-on-rows";
 import type { KnownChannel, LogTable } from "@/lib/logs/types";
-import { maskedSpans } from "@/lib/measure/judge/consequence";
 import type { RunTraces, TraceChannel } from "@/lib/measure/run/traces";
 import type { RunResult } from "@/lib/measure/types";
 
@@ -44,13 +43,11 @@ export function runTraces(log: LogTable, result: RunResult): RunTraces {
   };
   const rounded = (value: number) => (Number.isFinite(value) ? Number(value.toPrecision(6)) : null);
   const segments = { ...result.segments };
-  const masked = maskedSpans(result.notes);
   if (rows <= MOST_POINTS) {
     return {
       timeS: Array.from(table.timeS, (t) => Number(t.toFixed(4))),
       channels: channels.map((c, k) => traceOf(Array.from(c.values, rounded), k)),
       segments,
-      masked,
     };
   }
   const columns = MOST_POINTS / 2;
@@ -68,7 +65,6 @@ export function runTraces(log: LogTable, result: RunResult): RunTraces {
     timeS,
     channels: channels.map((channel, k) => traceOf(extremes(channel.values, edges).map(rounded), k)),
     segments,
-    masked,
   };
 }
 

@@ -13,5 +13,4 @@ export interface RunTraces {
   timeS: number[];
   channels: TraceChannel[];
   segments: { pull?: Span; coast?: Span; sprint?: Span };
-  masked: Span[];
 }

@@ -1,10 +1,21 @@
 import { selectRunsOfRoadDay } from "@/db/queries/runs";
+import { findingsOf } from "@/lib/measure/judge/consequence";
+import type { RunResult } from "@/lib/measure/types";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { loadRoadDay } from "@/lib/services/road-days/load";
 import { nextStep } from "@/lib/services/runs/next-step";
 import type { RoadDayRuns, RunLine } from "@/lib/services/runs/schema";
 
 type Row = Awaited<ReturnType<typeof selectRunsOfRoadDay>>[number];
+
+/** The worst of what masks or warns, in its first sentence. */
+function worstFinding(result: RunResult): RunLine["finding"] {
+  for (const { consequence, message } of findingsOf(result)) {
+    if (consequence === "refused") continue;
+    return { consequence, sentence: message.split(/(?<=[.;:]) (?=\p{L})/u)[0].replace(/[;:]$/, ".") };
+  }
+  return null;
+}
 
 function lineOf({ run, revisionNumber, testerName, result }: Row): RunLine {
   const setAside = run.setAsideAt !== null;
@@ -28,6 +39,7 @@ function lineOf({ run, revisionNumber, testerName, result }: Row): RunLine {
     why,
     next: run.state === "refused" && !setAside ? nextStep(reasons[0]?.code) : null,
     notes: result?.notes.length ?? 0,
+    finding: why.length === 0 && result ? worstFinding(result) : null,
     peakKw: peak?.engine_kw ?? null,
     peakUncertaintyKw: peak?.uncertainty_kw ?? null,
   };

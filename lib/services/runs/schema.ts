@@ -73,6 +73,8 @@ export const runLine = z.object({
   next: z.string().nullable(),
   /** Findings that mask or warn; how many. */
   notes: z.number().int(),
+  /** The worst of them in its first sentence; null without any, and where `why` speaks. */
+  finding: z.object({ consequence: z.enum(["masked", "warned"]), sentence: z.string() }).nullable(),
   /** Crank estimate in the air of the day. */
   peakKw: z.number().nullable(),
   /** Its ±, about 95 %; null where none is stated. */

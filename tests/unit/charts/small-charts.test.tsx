@@ -4,6 +4,7 @@ import { afterEach, describe, expect, it } from "vitest";
 import { CurveChart, describeCurves } from "@/components/charts/curve-chart";
 import { DeltaStrip } from "@/components/charts/delta-strip";
 import { HeatTable, heatStep } from "@/components/charts/heat-table";
+import { readSpanHash, spanHash, withSurroundings } from "@/components/charts/stack/span-hash";
 import { describeTraces, TraceChart } from "@/components/charts/trace-chart";
 
 afterEach(cleanup);
@@ -20,7 +21,7 @@ const TRACES = [
   },
 ];
 const SEGMENTS = [{ kind: "pull" as const, fromS: 2, toS: 7.5 }];
-const MASKS = [{ fromS: 3, toS: 3.4, why: "wheel spin" }];
+const MASKS = [{ fromS: 3, toS: 3.4, why: "wheel spin", kind: "masked" as const }];
 
 function trace() {
   return <TraceChart title="Run 12" timeS={TIME} traces={TRACES} segments={SEGMENTS} masks={MASKS} />;
@@ -43,6 +44,43 @@ describe("TraceChart", () => {
     const paths = [...box.querySelectorAll("path.series-one")].map((path) => path.getAttribute("d") ?? "");
     expect(paths.map((path) => path.match(/M/g)?.length)).toEqual([1, 2]);
     expect(box.innerHTML).not.toMatch(/\sstyle=/);
+  });
+
+  it("marks what is only warned of by a hatched strip on top of each panel, and says so", () => {
+    const noted = [{ fromS: 5, toS: 6, why: "jitter", kind: "noted" as const }];
+    const box = document.createElement("div");
+    box.innerHTML = renderToStaticMarkup(
+      <TraceChart title="Run 12" timeS={TIME} traces={TRACES} masks={noted} />,
+    );
+    expect(box.querySelectorAll('rect[fill$="noted)"]')).toHaveLength(2);
+    expect(box.querySelectorAll('rect[fill$="masked)"]')).toHaveLength(0);
+    expect(describeTraces({ timeS: TIME, traces: TRACES, masks: noted })).toContain(
+      "Warned of: from 5.00 to 6.00 s (jitter).",
+    );
+  });
+
+  it("zooms to the span that a link asks for, with its surroundings, and again after a reset", () => {
+    Element.prototype.scrollIntoView = () => undefined;
+    window.location.hash = "";
+    const { container } = render(<TraceChart title="Run 12" timeS={TIME} traces={TRACES} anchor="traces" />);
+    expect(screen.queryByRole("button", { name: "Whole range" })).toBeNull();
+    window.location.hash = spanHash("traces", 3, 3.4);
+    fireEvent(window, new HashChangeEvent("hashchange"));
+    fireEvent.click(screen.getByRole("button", { name: "Whole range" }));
+    expect(screen.queryByRole("button", { name: "Whole range" })).toBeNull();
+    const link = document.createElement("a");
+    link.setAttribute("href", "#traces:3.00,3.40");
+    container.append(link);
+    fireEvent.click(link);
+    expect(screen.getByRole("button", { name: "Whole range" })).toBeDefined();
+    window.location.hash = "";
+  });
+
+  it("reads only its own address, and keeps the surroundings on the axis", () => {
+    expect(readSpanHash("traces", "#traces:3.10,3.62")).toEqual({ from: 3.1, to: 3.62 });
+    for (const other of ["#others:3,4", "#traces", "#traces:4,3", "#traces:a,b", ""])
+      expect(readSpanHash("traces", other)).toBeNull();
+    expect(withSurroundings({ from: 0.5, to: 2.5 }, [0, 1, 2, 3, 9])).toEqual({ from: 0, to: 4.5 });
   });
 
   it("moves one cursor through all panels and docks the values", () => {

@@ -2,7 +2,7 @@ import { cleanup, render, screen, within } from "@testing-library/react";
 import { afterEach, describe, expect, it, vi } from "vitest";
 import { type OrderCardRow, OrderCardTable } from "@/components/features/road-days/order-card-table";
 import { RunFields } from "@/components/features/runs/run-fields";
-import { RunPeak, RunTimes } from "@/components/features/runs/run-figures";
+import { RunPeak } from "@/components/features/runs/run-figures";
 import { RunList } from "@/components/features/runs/run-list";
 import { VerdictCard } from "@/components/features/runs/verdict-card";
 import type { RunLine } from "@/lib/services/runs/schema";
@@ -26,6 +26,7 @@ const LINE: RunLine = {
   why: [],
   next: null,
   notes: 0,
+  finding: null,
   peakKw: 184.06,
   peakUncertaintyKw: 5.52,
 };
@@ -60,6 +61,15 @@ describe("RunList", () => {
     expect(screen.getByRole("listitem").textContent).toContain("kW (± not stated)");
   });
 
+  it("tells the worst finding at once, and how many more there are", () => {
+    const finding = { consequence: "masked", sentence: "The driven wheels spin." } as const;
+    render(<RunList runs={[{ ...LINE, finding, notes: 3 }]} />);
+    expect(screen.getByText("Left out")).toBeTruthy();
+    expect(screen.getByRole("listitem").textContent).toContain(
+      "The driven wheels spin. And 2 more findings.",
+    );
+  });
+
   it("shows no figure of a run that is set aside", () => {
     render(<RunList runs={[{ ...LINE, setAside: true, why: ["a gust"] }]} />);
     expect(screen.getByText("Set aside")).toBeTruthy();
@@ -70,12 +80,45 @@ describe("RunList", () => {
 describe("VerdictCard", () => {
   const shown = { verdict: "usable", reasons: [], notes: [], next: null, setAside: null } as const;
 
-  it("lists notes with their code and the stretch they are about", () => {
-    const notes = [{ code: "wheel_spin", message: "The driven wheels spun.", from_s: 3.1, to_s: 3.64 }];
+  const notes = [
+    { code: "jitter", message: "Rows come early or late.", consequence: "warned" as const },
+    { code: "lift", message: "The pedal falls.", from_s: 6, to_s: 6.6, consequence: "masked" as const },
+    { code: "wheel_spin", message: "The driven wheels spun.", from_s: 3.1, to_s: 3.64 },
+  ];
+
+  it("lists findings by consequence, what is left out first, each with its code and span", () => {
     render(<VerdictCard {...shown} notes={notes} />);
-    const row = screen.getByRole("row", { name: /The driven wheels spun/ });
-    expect(within(row).getByText("wheel_spin")).toBeTruthy();
-    expect(within(row).getByText("3.10–3.64 s")).toBeTruthy();
+    const sections = screen.getAllByRole("region", { name: /Left out|Warned/ });
+    expect(sections.map((one) => within(one).getByRole("heading").textContent)).toEqual([
+      expect.stringContaining("Left out"),
+      expect.stringContaining("Warned"),
+    ]);
+    const items = within(sections[0]).getAllByRole("listitem");
+    expect(items.map((item) => item.textContent)).toEqual([
+      "The driven wheels spun.3.10 to 3.64 swheel_spin",
+      "The pedal falls.6.00 to 6.60 slift",
+    ]);
+    expect(within(sections[1]).getByRole("listitem").textContent).toBe(
+      "Rows come early or late.whole logjitter",
+    );
+  });
+
+  it("tells what refuses a run before all else", () => {
+    const reasons = [{ code: "pull_too_short", message: "The pull covers 20 %." }];
+    render(<VerdictCard {...shown} verdict="refused" reasons={reasons} notes={notes} />);
+    const [first] = screen.getAllByRole("region", { name: /Refused|Left out|Warned/ });
+    expect(first.textContent).toContain("pull_too_short");
+  });
+
+  it("links a span to the traces where the page draws them", () => {
+    render(<VerdictCard {...shown} notes={notes} hasTraces />);
+    const link = screen.getByRole("link", { name: "Show in the traces: 3.10 to 3.64 s" });
+    expect(link.getAttribute("href")).toBe("#traces:3.10,3.64");
+  });
+
+  it("says so where nothing was found", () => {
+    render(<VerdictCard {...shown} />);
+    expect(screen.getByText(/Nothing was found against this run/)).toBeTruthy();
   });
 
   it("says whether the result could be seen when the run was set aside", () => {
@@ -85,33 +128,6 @@ describe("VerdictCard", () => {
     cleanup();
     render(<VerdictCard {...shown} setAside={{ ...aside, resultWasVisible: false }} />);
     expect(screen.getByText(/could not be seen yet/)).toBeTruthy();
-  });
-});
-
-describe("RunTimes", () => {
-  const result = { id: "1", usable: true, reasons: [], notes: [] };
-
-  it("prints ± as twice the stated standard uncertainty, and only columns that hold something", () => {
-    render(
-      <RunTimes
-        result={{ ...result, times_s: { "80-120": 3.4 }, times_uncertainty_s: { "80-120": 0.006 } }}
-      />,
-    );
-    expect(screen.getByRole("row", { name: /80-120 \(km\/h\)/ }).textContent).toContain("3.400 ± 0.012");
-    expect(screen.queryByText(/Trap/)).toBeNull();
-  });
-
-  it("leaves no time and no speed without its ± or the word that none is stated", () => {
-    const times = { times_s: { "201.168 m": 9.1 }, speed_at_kmh: { "201.168 m": 121.3 } };
-    render(<RunTimes result={{ ...result, ...times, trap_kmh: { "201.168 m": 119.8 } }} />);
-    expect(screen.getByRole("row", { name: /9\.100/ }).textContent).toContain("s (± not stated)");
-    for (const name of [/Speed at its end/, /Trap/])
-      expect(screen.getByRole("columnheader", { name }).textContent).toContain("± not stated");
-  });
-
-  it("says so when no range is covered", () => {
-    render(<RunTimes result={result} />);
-    expect(screen.getByText(/covers none/)).toBeTruthy();
   });
 });
 

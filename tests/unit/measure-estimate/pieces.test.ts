@@ -21,6 +21,7 @@ function table(
 ): LogTable {
   const timeS = Float64Array.from({ length: Math.round(seconds * rateHz) }, (_, i) => i / rateHz);
   return {
+    format: "delimited",
     timeS,
     channels: Object.entries(columns).map(([channel, value]) => ({
       channel: channel as KnownChannel,
@@ -262,11 +263,10 @@ describe("Traces for the run page", () => {
     expect(engine?.values).toHaveLength(traces.timeS.length);
     expect(Math.max(...(engine?.values ?? []).map((v) => v ?? 0))).toBe(7000);
   });
-  it("leaves positions out, gaps are null, segments and masks come along", () => {
+  it("leaves positions out, gaps are null, segments come along", () => {
     expect(traces.channels.map((c) => c.channel)).toEqual(["engine_speed", "pedal"]);
     expect(traces.channels[1].values[0]).toBeNull();
     expect(traces.segments.pull).toEqual({ from_s: 1, to_s: 9 });
-    expect(traces.masked).toEqual([{ from_s: 3, to_s: 4 }]);
   });
   it("keeps a short log whole", () => {
     const short = table({ gps_speed: (t) => t }, 10, 50);

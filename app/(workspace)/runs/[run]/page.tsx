@@ -5,7 +5,8 @@ import { RunBasis } from "@/app/(workspace)/runs/[run]/run-basis";
 import { RunBudget } from "@/components/features/runs/run-budget";
 import { RunCurveChart, RunTraceChart } from "@/components/features/runs/run-charts";
 import { RunFacts } from "@/components/features/runs/run-facts";
-import { RunPeak, RunTimes } from "@/components/features/runs/run-figures";
+import { RunPeak } from "@/components/features/runs/run-figures";
+import { RunTimes } from "@/components/features/runs/run-times";
 import { RunWatch } from "@/components/features/runs/run-watch";
 import { VerdictCard } from "@/components/features/runs/verdict-card";
 import { buttonStyle } from "@/components/ui/action/button-style";
@@ -79,6 +80,7 @@ export default async function RunPage({ params }: PageProps<"/runs/[run]">) {
             reasons={result?.reasons ?? []}
             notes={result?.notes ?? []}
             next={view.next}
+            hasTraces={verdict?.traces != null}
             setAside={setAsideOf(view)}
           />
           {result?.usable && (
