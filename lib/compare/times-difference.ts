@@ -104,8 +104,8 @@ function oneTime(rows: readonly TimedRun[], name: string, settings: Sides): Time
 /** The fullest model that leaves degrees of freedom: with order from three runs a side on, else without; null when none does. */
 function timeDesign(rows: readonly TimedRun[], { b }: Sides, smallest: number): RunDesign | null {
   if (smallest < 2) return null;
-  const full: ReturnType<typeof runDesign> = smallest >= LEAST_RUNS ? runDesign(rows, b) : { warnings: [] };
-  if ("matrix" in full && rows.length - full.columns >= 2) return full;
+  const full = runDesign(rows, b);
+  if (smallest >= LEAST_RUNS && "matrix" in full && rows.length - full.columns >= 2) return full;
   const plain = runDesign(
     rows.map((run) => ({ ...run, order: null })),
     b,

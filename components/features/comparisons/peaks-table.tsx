@@ -1,3 +1,4 @@
+import { TimesTable } from "@/components/features/comparisons/times-table";
 import { decimalsForHalfWidth, numberText } from "@/components/ui/data/number-text";
 import { Quantity } from "@/components/ui/data/quantity";
 import { Table } from "@/components/ui/data/table";
@@ -44,20 +45,7 @@ function lines(result: CampaignResult): Line[] {
     halfWidth: peaks?.half_width_nm ?? null,
     n,
   };
-  const times = Object.entries(result.delta?.times_difference ?? {}).map(
-    ([name, time]): Line => ({
-      what: /^\d+-\d+$/.test(name) ? `${name} km/h` : name,
-      unit: "s",
-      a: time.a_s,
-      b: time.b_s,
-      own: [null, null],
-      at: null,
-      difference: time.difference_s,
-      halfWidth: time.half_width_s,
-      n: [time.n_a, time.n_b],
-    }),
-  );
-  return [power, torque, ...times];
+  return [power, torque];
 }
 
 /** The air that both sides' peaks are referred to, in words. */
@@ -69,7 +57,7 @@ function basisWords({ sides, runs }: CampaignResult): string {
 
 /** Peaks and times of both sides; a difference always with its ± and its n, or it is not claimed. */
 export function PeaksTable({ result, labels }: { result: CampaignResult; labels: { a: string; b: string } }) {
-  const digits = (line: Line) => decimalsForHalfWidth(line.halfWidth, line.unit === "s" ? 2 : 1);
+  const digits = (line: Line) => decimalsForHalfWidth(line.halfWidth, 1);
   const side = (line: Line, which: 0 | 1) => (
     <>
       <Quantity
@@ -85,7 +73,7 @@ export function PeaksTable({ result, labels }: { result: CampaignResult; labels:
   return (
     <>
       <Table
-        caption={`Peaks (crank estimate, ${basisWords(result)}) and times of both sides with their difference`}
+        caption={`Peaks (crank estimate, ${basisWords(result)}) of both sides with their difference`}
         dense
         rows={lines(result)}
         rowKey={(line) => line.what}
@@ -113,6 +101,7 @@ export function PeaksTable({ result, labels }: { result: CampaignResult; labels:
         about 95 %; what it is made of is listed further down. B − A of the peaks comes from the model with
         leg and order taken out and so need not equal the plain difference.
       </p>
+      <TimesTable result={result} labels={labels} />
     </>
   );
 }
