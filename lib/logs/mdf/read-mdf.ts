@@ -183,6 +183,8 @@ function readGroup(
   const why = whyNoNumbers(master, group.dataBytes);
   if (why) return drop("group_without_time", `its time channel ${why}`);
   const records = countRows(reading, name, group, bytes, unfinished);
+  const wanted = group.channels.filter((c) => !isText(c) && !whyNoNumbers(c, group.dataBytes));
+  claim(reading, records.rows * wanted.length);
   const timeS = readTime(reading, records, master);
   if (!timeS) return drop("group_without_time", "its time channel can't be converted");
   const columns: RawColumn[] = [];
@@ -194,9 +196,9 @@ function readGroup(
   return { name, timeColumn: master.name, timeS, columns };
 }
 
-/** Claims room for the values of one channel before it is taken. */
-function claim({ values }: Reading, rows: number): void {
-  values.taken += rows;
+/** Claims room for the values of a group before any of it is taken. */
+function claim({ values }: Reading, count: number): void {
+  values.taken += count;
   const limit = Math.min(MOST_VALUES, Math.max(FEWEST_VALUES_REFUSED, values.allowed));
   if (values.taken <= limit) return;
   throw new FileRefusedError(
@@ -210,7 +212,6 @@ const isWhole = (channel: MdfChannel) => channel.dataType < 4;
 function readTime(reading: Reading, records: RecordRows, master: MdfChannel): Float64Array | null {
   const conversion = reading.conversions(master.conversionAt, isWhole(master));
   if (conversion.problem || conversion.hasWords) return null;
-  claim(reading, records.rows);
   const timeS = readNumbers(records, master);
   applyConversion(timeS, conversion);
   const unit = parseUnit(master.unit ?? conversion.unit);
@@ -245,7 +246,6 @@ function readColumn(
     problems.push({ code: "channel_left_out", message: `"${name}" ${why}; it is left out.` });
     return null;
   }
-  claim(reading, records.rows);
   let values = readNumbers(records, channel);
   const raw = conversion.hasWords ? values.slice() : values;
   applyConversion(values, conversion);
