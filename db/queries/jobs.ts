@@ -20,13 +20,13 @@ let wording: PgBoss | undefined;
  */
 export async function insertJob(
   tx: Queryable,
-  { name, data }: { name: JobName; data: object },
+  { name, data, priority }: { name: JobName; data: object; priority: number },
 ): Promise<void> {
   wording ??= new PgBoss({ db: { executeSql: () => Promise.reject(new Error("no transaction given")) } });
   const db: PgBoss.Db = {
     executeSql: async (text, values) => ({ rows: (await tx.execute(template(text, values))).rows }),
   };
-  const id = await wording.send(name, data, { db });
+  const id = await wording.send(name, data, { db, priority });
   if (id === null) throw new Error(`There is no queue "${name}": the database is not migrated.`);
   await tx.execute(sql`select pg_notify(${JOB_CHANNEL}, ${name})`);
 }

@@ -6,7 +6,10 @@ export type Job =
   | { name: "judge-run"; data: { workspaceId: string; runId: string } }
   | { name: "compute-comparison"; data: { workspaceId: string; comparisonId: string } };
 
-/** Puts a job into its queue in the caller's transaction: change and job commit together or not at all. */
-export async function enqueueJob(tx: Queryable, job: Job): Promise<void> {
-  await insertJob(tx, job);
+/**
+ * Puts a job into its queue in the caller's transaction: change and job commit together or not at all.
+ * @param background true: taken only when nobody's job waits in its queue
+ */
+export async function enqueueJob(tx: Queryable, job: Job, { background = false } = {}): Promise<void> {
+  await insertJob(tx, { ...job, priority: background ? -1 : 0 });
 }

@@ -8,6 +8,7 @@ import {
   selectKeptDigests,
 } from "@/db/queries/sweep";
 import { enqueueJob } from "@/lib/jobs/enqueue";
+import { renewOutdated } from "@/lib/jobs/renew-outdated";
 import type { System } from "@/lib/jobs/system";
 import { logger } from "@/lib/logger";
 import { type SweepReport, sweepStore } from "@/storage/sweep";
@@ -16,7 +17,8 @@ import { type SweepReport, sweepStore } from "@/storage/sweep";
 const REHASH_HOUR_UTC = 3;
 
 /**
- * Clears uploads that nobody finished and counts of tries that are over, has runs judged that wait without a job, and looks
+ * Clears uploads that nobody finished and counts of tries that are over, has runs judged that wait without a job, has what an older
+ * analysis version computed computed anew, and looks
  * whether every row still has its file. What is missing or damaged is logged as `integrity.failed` for people to act on; it is never mended here.
  */
 export async function sweepLeftovers({ db, store }: System, now = new Date()): Promise<SweepReport> {
@@ -39,6 +41,7 @@ export async function sweepLeftovers({ db, store }: System, now = new Date()): P
   );
   const forgotten = await selectForgottenRuns(db);
   for (const data of forgotten) await enqueueJob(db, { name: "judge-run", data });
+  const computedAnew = await renewOutdated(db);
   const { rowWithoutObject, digestMismatch, ...counts } = report;
   for (const row of rowWithoutObject)
     logger().error({ event: "integrity.failed", what: "file missing", ...row });
@@ -50,6 +53,7 @@ export async function sweepLeftovers({ db, store }: System, now = new Date()): P
     countsForgotten,
     mailEmptied,
     judgedAgain: forgotten.length,
+    computedAnew,
     ...counts,
   });
   return report;

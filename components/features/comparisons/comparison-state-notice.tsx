@@ -1,3 +1,5 @@
+import type { Route } from "next";
+import Link from "next/link";
 import { ComparisonWatch } from "@/components/features/comparisons/comparison-watch";
 import { RecomputeForm, type RecomputeFormProps } from "@/components/features/comparisons/recompute-form";
 import { Notice } from "@/components/ui/status/notice";
@@ -5,7 +7,19 @@ import { Skeleton } from "@/components/ui/status/skeleton";
 import type { ComparisonView } from "@/lib/services/comparisons/schema";
 
 export interface ComparisonStateNoticeProps extends Pick<RecomputeFormProps, "action" | "blockedBecause"> {
-  view: Pick<ComparisonView, "id" | "state" | "recomputing" | "inputSha256" | "failure" | "moved" | "result">;
+  view: Pick<
+    ComparisonView,
+    | "id"
+    | "state"
+    | "recomputing"
+    | "inputSha256"
+    | "failure"
+    | "moved"
+    | "versionOnly"
+    | "basis"
+    | "programme"
+    | "result"
+  >;
 }
 
 /** How the result stands towards what counts now: on its way, stale with what moved, failed with why, or with warnings. */
@@ -37,7 +51,11 @@ export function ComparisonStateNotice({ view, action, blockedBecause }: Comparis
       return (
         <Notice
           tone="caution"
-          title="Stale: this result belongs to earlier inputs"
+          title={
+            view.versionOnly
+              ? `Computed with analysis version ${view.basis?.analysisVersion}`
+              : "Stale: this result belongs to earlier inputs"
+          }
           actions={view.recomputing ? undefined : recompute}
         >
           <ul className="list-disc pl-5">
@@ -45,6 +63,15 @@ export function ComparisonStateNotice({ view, action, blockedBecause }: Comparis
               <li key={sentence}>{sentence}</li>
             ))}
           </ul>
+          {view.versionOnly && (
+            <p>
+              The runs are the same, and this result stays as it was. The worker computes it anew by itself;{" "}
+              <Link href={`/programmes/${view.programme.id}/analysis` as Route} className="link">
+                what that moves
+              </Link>{" "}
+              is then shown beside it.
+            </p>
+          )}
           {view.recomputing ? "It is being computed anew. " : ""}
           {watch}
         </Notice>

@@ -10,6 +10,7 @@ import {
 } from "@/db/queries/comparisons";
 import { isShared, selectProgramme } from "@/db/queries/programmes";
 import type { ComparisonInput } from "@/db/schema/comparisons";
+import { digestOf } from "@/lib/canonical-json";
 import { NotFoundError } from "@/lib/errors";
 import type { CampaignResult } from "@/lib/measure/types";
 import { RELEASED_STATES } from "@/lib/policy/released";
@@ -31,6 +32,8 @@ export interface ComparisonStanding {
   failure: string | null;
   /** What moved since the result shown, one sentence each; only when stale. */
   moved: string[];
+  /** Nothing but the analysis version moved. */
+  versionOnly: boolean;
   /** The result shown; of an earlier input when stale. */
   shown: { inputSha256: string; input: ComparisonInput; result: CampaignResult; at: Date } | null;
 }
@@ -52,13 +55,23 @@ export async function comparisonStanding(
     inputSha256: current.inputSha256,
   };
   const now = await selectResult(db, key);
-  const base = { comparison, current, moved: [], failure: null, recomputing: false };
+  const base = {
+    comparison,
+    current,
+    moved: [],
+    versionOnly: false,
+    failure: null,
+    recomputing: false,
+  };
   if (now?.state === "ready") return { ...base, state: "ready", shown: shownOf(now) };
   const earlier = shownOf(await selectEarlierResult(db, key));
   if (now?.state === "failed") return { ...base, state: "failed", failure: now.failure, shown: null };
   if (!earlier) return { ...base, state: "waiting", recomputing: now !== null, shown: null };
   const moved = whatMoved(earlier.input, current.input, current.runs);
-  return { ...base, state: "stale", recomputing: now?.state === "waiting", moved, shown: earlier };
+  const { analysisVersion } = earlier.input;
+  const versionOnly = digestOf({ ...current.input, analysisVersion }) === earlier.inputSha256;
+  const recomputing = now?.state === "waiting";
+  return { ...base, state: "stale", recomputing, moved, versionOnly, shown: earlier };
 }
 
 async function readComparison(ctx: Ctx, comparisonId: string, action: Action) {
@@ -120,6 +133,7 @@ export async function getComparison(
     inputSha256: current.inputSha256,
     failure: standing.failure,
     moved: standing.moved,
+    versionOnly: standing.versionOnly,
     result: shown?.result ?? null,
     computedAt: shown?.at.toISOString() ?? null,
     basis: shown && {

@@ -138,6 +138,8 @@ export interface ComparisonView extends ComparisonState {
   settings: CampaignSettings;
   failure: string | null;
   moved: string[];
+  /** Stale only because the analysis version went on: the runs, settings and sheet are still those of the result. */
+  versionOnly: boolean;
   result: CampaignResult | null;
   computedAt: string | null;
   /** Digest and versions of what the result shown was computed from. */
@@ -149,10 +151,11 @@ export interface ComparisonView extends ComparisonState {
 }
 
 /** How both sides are called: on a null test one image twice, the second time with a prime. */
-export function sideLabels(view: Pick<ComparisonView, "a" | "b" | "nullTestRoadDayId">): {
-  a: string;
-  b: string;
-} {
+export function sideLabels(view: {
+  a: { number: number };
+  b: { number: number };
+  nullTestRoadDayId: string | null;
+}): { a: string; b: string } {
   return { a: `R${view.a.number}`, b: `R${view.b.number}${view.nullTestRoadDayId === null ? "" : "′"}` };
 }
 

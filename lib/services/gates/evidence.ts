@@ -1,4 +1,5 @@
 import type { EvidenceRun, GateEvidence } from "@/lib/gates/evidence";
+import type { CampaignResult } from "@/lib/measure/types";
 import type { VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 import { campaignRunId, massOf } from "@/lib/services/comparisons/build-campaign";
 import type { ComparisonStanding } from "@/lib/services/comparisons/load";
@@ -8,7 +9,10 @@ import type { ComparisonStanding } from "@/lib/services/comparisons/load";
  * @param comparison null when nothing stands or nobody has compared yet: every gate then has too little
  */
 export function gateEvidence(
-  comparison: ComparisonStanding | null,
+  comparison: {
+    current: ComparisonStanding["current"];
+    shown: { result: CampaignResult } | null;
+  } | null,
   sheet: Pick<VehicleSheetFigures, "redlineRpm" | "engine" | "aspiration"> | null,
 ): GateEvidence {
   const vehicle = {
