@@ -61,6 +61,7 @@ function pullNotes(
     notes.push({
       code: "gear_change",
       consequence: "masked",
+      ...segments.gearChange,
       message:
         "The gear changes within the full-load part; only the longest part in one gear is used. Stay in one gear to the red line.",
     });

@@ -1,7 +1,7 @@
 import { accelerationRows } from "@/lib/measure/run/acceleration-rows";
 import { findCoasts } from "@/lib/measure/run/find-coasts";
 import type { RunSignals } from "@/lib/measure/run/run-signals";
-import type { CampaignVehicle, Reason, Span } from "@/lib/measure/types";
+import type { CampaignVehicle, Note, Span } from "@/lib/measure/types";
 import { lowerBound } from "@/lib/signal/local-quadratic";
 import { median, quantile } from "@/lib/signal/statistics";
 
@@ -14,25 +14,28 @@ export interface Segments {
   coasts: Span[];
   /** The one of them over the widest range of speed. */
   coast: Span | null;
-  /** True when full load was held through a change of gear: only one gear's part is the pull. */
-  gearChange: boolean;
-  reason: Reason | null;
+  /** A change of gear through which full load was held, next to the pull: only one gear's part is the pull. */
+  gearChange: Span | null;
+  /** Why there is no pull, with the span of what came nearest to one. */
+  reason: Note | null;
 }
 
 /** Least share of the way from the start of the pull to the red line (campaign.md start value). */
 const LEAST_RISE = 0.4;
 const LEAST_SAMPLES = 30;
+/** Pieces of full load farther apart than this, s, are not cut by one change of gear but by a lift. */
+const LONGEST_CHANGE_S = 1;
 
 /**
  * Finds the pull (full load, one gear, rising engine speed), the steady part before it and the neutral coast-down.
  * Works from pedal or throttle where logged, else from the acceleration; from engine speed where logged, else road speed.
  */
 export function findSegments(signals: RunSignals, vehicle: CampaignVehicle, perMps: number | null): Segments {
-  const none = (reason: Reason): Segments => ({
+  const none = (reason: Note): Segments => ({
     pull: null,
     cruise: null,
     ...coastsOf(signals, null, perMps),
-    gearChange: false,
+    gearChange: null,
     reason,
   });
   const spans = signals.loadRows ? fullLoadSpans(signals, signals.loadRows) : risingSpans(signals);
@@ -73,6 +76,7 @@ export function findSegments(signals: RunSignals, vehicle: CampaignVehicle, perM
         : `${Math.round(best.from)} to ${Math.round(best.to)} 1/min, ${Math.round(100 * rise)} % of the way to the red line (at least ${100 * LEAST_RISE} %)`;
     return none({
       code: "pull_too_short",
+      ...pull,
       message: `The pull covers ${what}. Hold full load for longer, from lower engine speed.`,
     });
   }
@@ -81,9 +85,23 @@ export function findSegments(signals: RunSignals, vehicle: CampaignVehicle, perM
     pull,
     cruise: findCruise(signals, first),
     ...coastsOf(signals, [first, last], locked),
-    gearChange: pieces.length > spans.length,
+    gearChange: changeBeside(signals, pieces, best.span),
     reason: null,
   };
+}
+
+/** What lies between the pull and the nearest other piece of full load cut off by a change of gear; null where there is none. */
+function changeBeside(
+  { timeS }: RunSignals,
+  pieces: readonly [number, number][],
+  pull: [number, number],
+): Span | null {
+  const at = pieces.indexOf(pull);
+  const gap = (a: [number, number] | undefined, b: [number, number] | undefined): Span | null =>
+    a && b && timeS[b[0]] - timeS[a[1]] < LONGEST_CHANGE_S
+      ? { from_s: timeS[a[1]], to_s: timeS[b[0]] }
+      : null;
+  return gap(pieces[at - 1], pull) ?? gap(pull, pieces[at + 1]);
 }
 
 /** Engine speed per finding speed in the pull, as logged: what the coast-down's engine speed must part from. */

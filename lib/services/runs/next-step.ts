@@ -14,6 +14,9 @@ const NEXT: Readonly<Record<string, string>> = {
     "Export numbers only, without texts in the columns, and drop the new file on the road-day page.",
   too_few_samples: "Record longer, at 5 Hz or more, and drive this place again.",
   rate_too_low: "Set the logger to 5 rows a second or more, better 20, and drive this place again.",
+  speed_units_disagree:
+    "State the units of both speeds in a channel key, or leave the wrong channel out, and drop the log again.",
+  speed_implausible: "State the unit of the speed in a channel key and drop the log again.",
   engine_speed_not_known: "Log engine speed, or write a speed at an engine speed into the vehicle sheet.",
   too_many_missing: "Check the sensor's cable, then drive this place again.",
   no_speed_channel: "Switch on a road-speed channel (a wheel or satellite speed) and drive this place again.",

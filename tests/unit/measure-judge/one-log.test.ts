@@ -184,6 +184,8 @@ describe("Findings of one log", () => {
       const { notes, segments } = judged(shifted);
       expect(notes.map((note) => [note.code, note.consequence])).toEqual([["gear_change", "masked"]]);
       expect(segments?.pull?.from_s).toBeGreaterThan(4);
+      between(notes[0].from_s, 3.4, 4);
+      between(notes[0].to_s, 4, 4.6);
     });
     it("refuses a pull over less than 40 % of the way to the red line, and one of under 30 samples", () => {
       const short = judged(changed(LOG, "pedal", (v, t) => (t > 4.5 && t < 20 ? 20 : v)));
