@@ -1,7 +1,8 @@
-import { curveDeviation } from "@/lib/measure/engine/curve-deviation";
+import { curveDeviations } from "@/lib/measure/engine/curve-deviation";
 import type { CurveAnomaly, Smoothness } from "@/lib/measure/engine/smoothness-types";
 import type { Series } from "@/lib/measure/types";
 import { tQuantile } from "@/lib/signal/distributions";
+import { standardDeviation } from "@/lib/signal/statistics";
 
 /** Below this the curve builds up boost and takes up the driveline, 1/min over its first point [common practice, no source]. */
 const SETTLED_RPM = 800;
@@ -20,6 +21,9 @@ const MARGIN_RPM = 100;
 const NEAR_RPM = 350;
 /** Marks smaller than this share of the largest near them are the smoothing's echo of it. */
 const ECHO_SHARE = 0.75;
+/** Half a step of the curve within this, 1/min, explains deviations up to its size over `STEP_ECHO` [by simulation]. */
+const STEP_NEAR_RPM = 250;
+const STEP_ECHO = 2;
 const MOST_MARKS = 12;
 
 /** A side's deviations from the local fit: of its mean, and of each run. */
@@ -27,6 +31,8 @@ interface SideState {
   logs: Float64Array[];
   leftOut: Uint8Array;
   runs: Float64Array[];
+  /** Half the step of the curve at each point, and the largest near it. */
+  steps: { here: Float64Array; near: Float64Array };
   mean: Float64Array;
   marks: Mark[];
 }
@@ -44,7 +50,8 @@ export interface FoundOnCurve {
 }
 
 /**
- * Finds spikes and ripple on the mean curves of the sides. A run's deviation from its local fit is taken point by point; the
+ * Finds spikes and ripple on the mean curves of the sides. A run's deviation from its local fit is taken point by point, less
+ * what a step of the curve explains (a new torque level is neither); the
  * mean of a side's runs is marked where it exceeds both 1 % and t·s/√n, s being the scatter between runs pooled over sides and
  * ± 400 1/min, t Bonferroni's over the independent stretches of the curve: only what repeats over the runs is marked. A marked
  * stretch is left out of the fits and the search goes on. Three or more marks of turning sign close together are a ripple; marks
@@ -63,10 +70,7 @@ export function findAnomalies(
     const logs = runs.map((run) =>
       Float64Array.from(run, (nm) => (nm !== null && nm > 0 ? Math.log(nm) : Number.NaN)),
     );
-    states.set(
-      name,
-      refreshed(grid, { logs, leftOut: new Uint8Array(rpm.length), runs: [], mean: grid, marks: [] }),
-    );
+    states.set(name, begun(grid, logs));
   }
   for (let round = 0; round < MOST_MARKS; round++) {
     const scatter = pooledScatter(rpm, [...states.values()]);
@@ -103,18 +107,43 @@ export function findAnomalies(
   );
 }
 
-function refreshed(grid: Float64Array, state: SideState): SideState {
-  // Where a mark takes too much out of a fit, the deviation stays as it was before.
-  const runs = state.logs.map((log, r) =>
-    curveDeviation(grid, log, state.leftOut).map((x, k) =>
-      Number.isNaN(x) && state.runs[r] ? state.runs[r][k] : x,
+/** A side with the deviations of its runs and of their mean, before anything is marked. */
+function begun(grid: Float64Array, logs: Float64Array[]): SideState {
+  const leftOut = new Uint8Array(grid.length);
+  const found = curveDeviations(stepOf(grid), logs, leftOut);
+  const here = grid.map((_, k) => Math.abs(meanOf(found.map((one) => one.halfStep[k]))));
+  const near = Math.round(STEP_NEAR_RPM / stepOf(grid));
+  const steps = {
+    here: here.map((x) => x || 0),
+    near: here.map((_, k) =>
+      here.subarray(Math.max(0, k - near), k + near + 1).reduce((most, x) => (x > most ? x : most), 0),
     ),
+  };
+  const runs = found.map(({ deviation }) => deviation);
+  return { logs, leftOut, runs, steps, mean: sideMean(runs, steps), marks: [] };
+}
+
+/** The side after another stretch was left out. Where that takes too much out of a fit, the deviation stays as it was. */
+function refreshed(grid: Float64Array, state: SideState): SideState {
+  const runs = curveDeviations(stepOf(grid), state.logs, state.leftOut).map(({ deviation }, r) =>
+    deviation.map((x, k) => (Number.isNaN(x) ? state.runs[r][k] : x)),
   );
-  const mean = grid.map((_, k) => {
-    const own = runs.flatMap((run) => (Number.isNaN(run[k]) ? [] : [run[k]]));
-    return own.length < LEAST_RUNS ? Number.NaN : own.reduce((sum, x) => sum + x, 0) / own.length;
+  return { ...state, runs, mean: sideMean(runs, state.steps) };
+}
+
+/** Mean deviation of the runs, less what a step of the curve at the point or near it explains. */
+function sideMean(runs: readonly Float64Array[], { here, near }: SideState["steps"]): Float64Array {
+  return here.map((step, k) => {
+    const mean = meanOf(runs.map((run) => run[k]));
+    const left = Math.max(0, Math.abs(mean) - step);
+    return near[k] > STEP_ECHO * left ? 0 * mean : Math.sign(mean) * left;
   });
-  return { ...state, runs, mean };
+}
+
+/** Mean of what is there; NaN when fewer than three are. */
+function meanOf(values: readonly number[]): number {
+  const there = values.filter((x) => !Number.isNaN(x));
+  return there.length < LEAST_RUNS ? Number.NaN : there.reduce((sum, x) => sum + x, 0) / there.length;
 }
 
 /** Deviations are judged from `SETTLED_RPM` above the first point that the side's runs reach. */
@@ -123,7 +152,7 @@ function judged(rpm: readonly number[], { logs }: SideState, k: number): boolean
   return first >= 0 && rpm[k] >= rpm[first] + SETTLED_RPM;
 }
 
-function stepOf(rpm: readonly number[]): number {
+function stepOf(rpm: ArrayLike<number>): number {
   return rpm.length > 1 ? rpm[1] - rpm[0] : INDEPENDENT_RPM;
 }
 
@@ -134,15 +163,12 @@ function pooledScatter(
 ): { variance: Float64Array; df: Float64Array } {
   const squares = new Float64Array(rpm.length);
   const df = new Float64Array(rpm.length);
-  for (const { runs, mean } of states) {
+  for (const { runs } of states) {
     rpm.forEach((_, k) => {
-      if (Number.isNaN(mean[k])) return;
-      df[k]--;
-      for (const run of runs) {
-        if (Number.isNaN(run[k])) continue;
-        squares[k] += (run[k] - mean[k]) ** 2;
-        df[k]++;
-      }
+      const own = runs.flatMap((run) => (Number.isNaN(run[k]) ? [] : [run[k]]));
+      if (own.length < LEAST_RUNS) return;
+      squares[k] += standardDeviation(own) ** 2 * (own.length - 1);
+      df[k] += own.length - 1;
     });
   }
   const pool = Math.round(POOL_RPM / stepOf(rpm));

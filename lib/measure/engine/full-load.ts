@@ -12,8 +12,8 @@ import {
 import { type TimedChannel, timedChannel } from "@/lib/measure/engine/timed-channel";
 import type { CampaignVehicle, Series, Span } from "@/lib/measure/types";
 
-/** Engine channels change slowly and are noisy: their grid is no finer than this, 1/min. */
-const LEAST_STEP_RPM = 100;
+/** Engine channels change slowly and are noisy: their grid is no finer than this, 1/min; extremes are told apart from it. */
+const LEAST_STEP_RPM = 200;
 /** Sensors and control follow the step of load within this, s; extremes and means are read after it [common practice, no source]. */
 const FOLLOW_S = 1;
 /** A value counts as lowest or highest when it holds this long, s [common practice, no source]. */
@@ -108,8 +108,11 @@ function timeAt({ rpm, timeS }: Pick<GridCurve, "rpm" | "timeS">, x: number): nu
   return before === null || after === null ? null : before + (place - low) * (after - before);
 }
 
-/** Engine speed at a time, 1/min; null outside the curve and inside masked spans. */
+/** Engine speed at a time, 1/min; that of the curve's end before and after it, null inside masked spans. */
 function speedAt({ rpm, timeS }: Pick<GridCurve, "rpm" | "timeS">, t: number): number | null {
+  const last = rpm.length - 1;
+  if (t <= (timeS[0] ?? Number.NEGATIVE_INFINITY)) return rpm[0];
+  if (t >= (timeS[last] ?? Number.POSITIVE_INFINITY)) return rpm[last];
   for (let k = 1; k < rpm.length; k++) {
     const [a, b] = [timeS[k - 1], timeS[k]];
     if (a === null || b === null || t < a || t > b || b === a) continue;
