@@ -123,6 +123,7 @@ export async function selectComparedRuns(
       humidityPct: runs.humidityPct,
       logSha256: runs.logSha256,
       logFileName: runs.logFileName,
+      logBytes: runs.logBytes,
       state: runs.state,
       setAsideAt: runs.setAsideAt,
       setAsideReason: runs.setAsideReason,

@@ -1,13 +1,12 @@
 import { closeResult, openResult, selectComparison, selectResult } from "@/db/queries/comparisons";
-import { FileRefusedError, TwinpassError, UnavailableError } from "@/lib/errors";
+import { type FileRefusedError, TwinpassError, UnavailableError } from "@/lib/errors";
 import type { System } from "@/lib/jobs/system";
 import { logger } from "@/lib/logger";
-import { readLog } from "@/lib/logs/read-log";
 import type { LogTable } from "@/lib/logs/types";
 import { analyseCampaign } from "@/lib/measure/analyse-campaign";
-import { readBlob } from "@/lib/services/blobs";
 import { buildCampaign, campaignRunId } from "@/lib/services/comparisons/build-campaign";
 import { type CurrentInput, currentInput } from "@/lib/services/comparisons/current-input";
+import { readStoredLog } from "@/lib/services/runs/read-stored-log";
 
 interface ComparisonJob {
   workspaceId: string;
@@ -27,18 +26,17 @@ async function readLogs(
   const { drive } = current.sheet;
   for (const run of current.runs) {
     if (!run.counts) continue;
-    const bytes = await readBlob({ store: system.store, workspaceId }, run.logSha256).catch((error) => {
+    const log = await readStoredLog(
+      { store: system.store, workspaceId },
+      { sha256: run.logSha256, sizeBytes: run.logBytes },
+      { fileName: run.logFileName, drive },
+    ).catch((error) => {
       throw new UnavailableError(
         "log_unavailable",
         `The log of run ${run.number} can't be had from the store: ${error instanceof TwinpassError ? error.message : "it does not answer."}`,
       );
     });
-    try {
-      logs.set(campaignRunId(run), readLog(bytes, { fileName: run.logFileName, drive }));
-    } catch (error) {
-      if (!(error instanceof FileRefusedError)) throw error;
-      logs.set(campaignRunId(run), error);
-    }
+    logs.set(campaignRunId(run), log);
   }
   return logs;
 }

@@ -5,7 +5,6 @@ import { digestOf } from "@/lib/canonical-json";
 import { FileRefusedError } from "@/lib/errors";
 import type { System } from "@/lib/jobs/system";
 import { logger } from "@/lib/logger";
-import { readLog } from "@/lib/logs/read-log";
 import type { LogTable } from "@/lib/logs/types";
 import { analyseRun } from "@/lib/measure/analyse-campaign";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
@@ -14,9 +13,9 @@ import type { RunTraces } from "@/lib/measure/run/traces";
 import { toTimingSettings } from "@/lib/measure/sprint/sheet-timings";
 import type { CampaignRun, CampaignSettings, CampaignVehicle, RunResult } from "@/lib/measure/types";
 import { toCampaignVehicle } from "@/lib/measure/vehicle/vehicle-sheet";
-import { readBlob } from "@/lib/services/blobs";
 import { refreshComparisonsOf } from "@/lib/services/comparisons/refresh";
 import { STANDARD_SETTINGS, toCampaignSettings } from "@/lib/services/comparisons/schema";
+import { readStoredLog } from "@/lib/services/runs/read-stored-log";
 
 interface JudgeJob {
   workspaceId: string;
@@ -67,15 +66,11 @@ async function readInput(
   return { found, input, inputSha256: digestOf(input) };
 }
 
-/** Reads the log and analyses it. A log that is refused is a verdict, not an error. */
-function judge(input: JudgeInput, bytes: Uint8Array): { result: RunResult; traces: RunTraces | null } {
-  let log: LogTable | FileRefusedError;
-  try {
-    log = readLog(bytes, { fileName: input.run.file, drive: input.vehicle.drive });
-  } catch (error) {
-    if (!(error instanceof FileRefusedError)) throw error;
-    log = error;
-  }
+/** Analyses a log. One that is refused is a verdict, not an error. */
+function judge(
+  input: JudgeInput,
+  log: LogTable | FileRefusedError,
+): { result: RunResult; traces: RunTraces | null } {
   const result = analyseRun(input.vehicle, input.run, log, input.settings);
   return { result, traces: log instanceof FileRefusedError ? null : runTraces(log, result) };
 }
@@ -114,9 +109,13 @@ async function keep(
 export async function judgeRun(system: System, job: JudgeJob): Promise<void> {
   const read = await readInput(system.db, job);
   if (!read) return;
-  const { input, inputSha256 } = read;
-  const bytes = await readBlob({ store: system.store, workspaceId: job.workspaceId }, input.logSha256);
-  const verdict = judge(input, bytes);
+  const { found, input, inputSha256 } = read;
+  const log = await readStoredLog(
+    { store: system.store, workspaceId: job.workspaceId },
+    { sha256: input.logSha256, sizeBytes: found.run.logBytes },
+    { fileName: input.run.file, drive: input.vehicle.drive },
+  );
+  const verdict = judge(input, log);
   await keep(system, job, { input, inputSha256, ...verdict });
   const { usable, reasons } = verdict.result;
   logger().info({ event: "run.judged", ...job, usable, reasons: reasons.map((reason) => reason.code) });

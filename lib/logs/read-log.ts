@@ -28,7 +28,7 @@ export const LOG_REFUSALS = [
 ] as const;
 
 /** A packed log may grow to this size; more is refused before it is held in memory. */
-const MAX_INFLATED_BYTES = 256 * 1024 * 1024;
+export const MAX_INFLATED_BYTES = 256 * 1024 * 1024;
 
 export interface ReadLogOptions {
   /** Saved mapping of columns; wins over what the file says. */
@@ -41,20 +41,32 @@ export interface ReadLogOptions {
   maxInflatedBytes?: number;
 }
 
+/** @param limit bytes it grew beyond; null: it can't be unpacked at all */
+export function gzipRefusal(limit: number | null): FileRefusedError {
+  if (limit === null)
+    return new FileRefusedError(
+      "gzip_damaged",
+      "The packed log can't be unpacked: the file is damaged or cut off. Upload it again.",
+    );
+  return new FileRefusedError(
+    "inflates_too_large",
+    `The packed log grows beyond ${Math.floor(limit / 1024 / 1024)} MB. Split the recording and upload the parts.`,
+  );
+}
+
+/** @param what e.g. "a spreadsheet or ZIP archive" */
+export function formatRefusal(what: string, fileName?: string): FileRefusedError {
+  return new FileRefusedError(
+    "format_not_supported",
+    `${fileName ? `"${fileName}"` : "This file"} is ${what}, which is not read yet. Export the log as CSV.`,
+  );
+}
+
 function inflate(bytes: Uint8Array, limit: number): Uint8Array {
   try {
     return gunzipSync(bytes, { maxOutputLength: limit });
   } catch (error) {
-    if (error instanceof RangeError) {
-      throw new FileRefusedError(
-        "inflates_too_large",
-        `The packed log grows beyond ${Math.floor(limit / 1024 / 1024)} MB. Split the recording and upload the parts.`,
-      );
-    }
-    throw new FileRefusedError(
-      "gzip_damaged",
-      "The packed log can't be unpacked: the file is damaged or cut off. Upload it again.",
-    );
+    throw gzipRefusal(error instanceof RangeError ? limit : null);
   }
 }
 
@@ -72,13 +84,8 @@ export function readLog(bytes: Uint8Array, options: ReadLogOptions = {}): LogTab
   }
   if (sniffed.kind === "empty")
     throw new FileRefusedError("empty_file", "The file is empty. Export the log again.");
-  if (sniffed.kind === "unsupported" || sniffed.kind === "gzip") {
-    const what = sniffed.kind === "gzip" ? "a file packed twice" : sniffed.name;
-    throw new FileRefusedError(
-      "format_not_supported",
-      `${options.fileName ? `"${options.fileName}"` : "This file"} is ${what}, which is not read yet. Export the log as CSV.`,
-    );
-  }
+  if (sniffed.kind === "gzip") throw formatRefusal("a file packed twice", options.fileName);
+  if (sniffed.kind === "unsupported") throw formatRefusal(sniffed.name, options.fileName);
   const maxInflatedBytes = options.maxInflatedBytes ?? MAX_INFLATED_BYTES;
   if (sniffed.kind === "mdf") return readMdf(content, { ...options, maxInflatedBytes });
   if (sniffed.kind === "nmea") return readNmea(content, options.key ?? {});

@@ -17,30 +17,31 @@ function refuse(where: Where, sha256: string): never {
 }
 
 /**
- * Reads a whole stored file and checks its fingerprint.
+ * A stored file piece by piece; its fingerprint is checked after the last piece, so nothing read on the way counts before.
  * @throws NotFoundError when the store does not hold it; UnavailableError `integrity_failed` when its bytes have changed
  */
-export async function readBlob(where: Where, sha256: string): Promise<Uint8Array> {
+export async function* streamBlob(where: Where, sha256: string): AsyncGenerator<Uint8Array, void> {
   const { body } = await where.store.get(blobKey(where.workspaceId, sha256));
   const hash = createHash("sha256");
-  const chunks: Uint8Array[] = [];
   for await (const chunk of body as AsyncIterable<Uint8Array>) {
     hash.update(chunk);
-    chunks.push(chunk);
+    yield chunk;
   }
   if (hash.digest("hex") !== sha256) refuse(where, sha256);
+}
+
+/** Reads a whole stored file and checks its fingerprint. @throws as streamBlob */
+export async function readBlob(where: Where, sha256: string): Promise<Uint8Array> {
+  const chunks: Uint8Array[] = [];
+  for await (const chunk of streamBlob(where, sha256)) chunks.push(chunk);
   return Buffer.concat(chunks);
 }
 
 /**
  * Opens a stored file for a download after having read it once to check its fingerprint; memory stays flat.
- * @throws as readBlob
+ * @throws as streamBlob
  */
 export async function openBlob(where: Where, sha256: string): Promise<StoredBytes> {
-  const key = blobKey(where.workspaceId, sha256);
-  const hash = createHash("sha256");
-  const { body } = await where.store.get(key);
-  for await (const chunk of body as AsyncIterable<Uint8Array>) hash.update(chunk);
-  if (hash.digest("hex") !== sha256) refuse(where, sha256);
-  return await where.store.get(key);
+  for await (const _ of streamBlob(where, sha256));
+  return await where.store.get(blobKey(where.workspaceId, sha256));
 }

@@ -66,7 +66,9 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
     from: 0,
     end: 0,
   };
-  let waiting: Uint8Array = new Uint8Array(0);
+  /** Pieces of the line that has no end yet. */
+  let waiting: Uint8Array[] = [];
+  let waitingBytes = 0;
 
   /** First position after the line that begins at `from`, quotes minded; −1 when a quoted cell is not closed before `to`. */
   function logicalEnd(bytes: Uint8Array, from: number, to: number): number {
@@ -192,11 +194,25 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
     return i;
   }
 
+  function wait(bytes: Uint8Array): void {
+    if (bytes.length === 0) return;
+    if (waitingBytes + bytes.length > LONGEST_LINE) refuseLine(line + 1);
+    waiting.push(bytes.slice());
+    waitingBytes += bytes.length;
+  }
+
+  /** What waited with `tail` behind it; nothing waits then. */
   function join(tail: Uint8Array): Uint8Array {
     if (waiting.length === 0) return tail;
-    const joined = new Uint8Array(waiting.length + tail.length);
-    joined.set(waiting);
-    joined.set(tail, waiting.length);
+    const joined = new Uint8Array(waitingBytes + tail.length);
+    let at = 0;
+    for (const piece of waiting) {
+      joined.set(piece, at);
+      at += piece.length;
+    }
+    joined.set(tail, at);
+    waiting = [];
+    waitingBytes = 0;
     return joined;
   }
 
@@ -205,33 +221,22 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
     texts: (): string[] => split(textLine(current.bytes, current.from, current.end)),
     push(bytes: Uint8Array): void {
       const last = bytes.lastIndexOf(lineEnd) + 1;
-      if (last === 0) {
-        if (waiting.length + bytes.length > LONGEST_LINE) refuseLine(line + 1);
-        waiting = join(bytes).slice();
-        return;
-      }
-      // Only the line that was cut in two is copied; an open quote makes the whole piece wait.
-      let from = 0;
-      if (waiting.length > 0) {
-        const first = bytes.indexOf(lineEnd) + 1;
+      if (last > 0) {
+        // Only the line that was cut in two is copied, unless a quote in it is still open.
+        const first = waitingBytes > 0 ? bytes.indexOf(lineEnd) + 1 : 0;
         const cut = join(bytes.subarray(0, first));
-        const read = scan(cut, 0, cut.length, false);
-        from = first;
-        waiting = cut.subarray(read);
-        if (waiting.length > 0) {
-          const rest = join(bytes.subarray(first, last));
-          waiting = rest.slice(scan(rest, 0, rest.length, false));
-          from = last;
-        }
+        wait(cut.subarray(scan(cut, 0, cut.length, false)));
+        const whole = join(bytes.subarray(first, last));
+        wait(whole.subarray(scan(whole, 0, whole.length, false)));
       }
-      if (from < last) waiting = bytes.subarray(scan(bytes, from, last, false), last);
-      waiting = join(bytes.subarray(last)).slice();
+      wait(bytes.subarray(last));
     },
     finish(): void {
-      const rest = join(new Uint8Array([lineEnd]));
-      waiting = new Uint8Array(0);
-      let from = 0;
-      while (from < rest.length) from = scan(rest, from, rest.length, true);
+      const rest = join(new Uint8Array());
+      const closed = new Uint8Array(rest.length + 1);
+      closed.set(rest);
+      closed[rest.length] = lineEnd;
+      for (let from = 0; from < closed.length; ) from = scan(closed, from, closed.length, true);
     },
   };
 }
