@@ -7,6 +7,7 @@ export const METHOD_CONTENTS = [
   ["power", "Power and torque"],
   ["gearing", "Engine and road speed"],
   ["sprints", "Times and distances"],
+  ["judging", "Judging each run"],
   ["air", "Air"],
   ["factors", "Weather factors"],
   ["uncertainty", "Absolute uncertainty"],

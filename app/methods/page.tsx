@@ -2,6 +2,7 @@ import type { Metadata } from "next";
 import { AirMethods } from "@/app/methods/air-methods";
 import { ComparisonMethods } from "@/app/methods/comparison-methods";
 import { METHOD_CONTENTS } from "@/app/methods/contents";
+import { JudgingMethods } from "@/app/methods/judging-methods";
 import { MotionMethods } from "@/app/methods/motion-methods";
 import { UncertaintyMethods } from "@/app/methods/uncertainty-methods";
 import { AppShell } from "@/components/features/shell/app-shell";
@@ -36,6 +37,7 @@ export default function MethodsPage() {
         </nav>
         <div className="flex min-w-0 flex-col gap-8">
           <MotionMethods />
+          <JudgingMethods />
           <AirMethods />
           <UncertaintyMethods />
           <ComparisonMethods />
