@@ -64,6 +64,8 @@ export function driveRoadDay(args: {
   effectA: Effect;
   effectB: Effect;
   tempC: number;
+  /** Size of the gusts, m/s; a sheltered strip where nothing is said. */
+  gustMps?: number;
   seed: number;
 }): DemoRun[] {
   const random = randomStream(args.seed, 7);
@@ -81,7 +83,7 @@ export function driveRoadDay(args: {
       pressureHpa: 1008,
       rhPct: 52,
       windMps: 1.1 + 0.3 * random.nextNormal(),
-      gustMps: 0.3,
+      gustMps: args.gustMps ?? 0.3,
       gustTimeS: 3,
       powerFactor: 1 - 0.0006 * index + 0.004 * random.nextNormal(),
       gain: effect.gain,

@@ -1,4 +1,5 @@
 import { randomUUID } from "node:crypto";
+import { selectComparisonsOf } from "@/db/queries/comparisons";
 import { demoImage, type Patch } from "@/db/seed/demo-image";
 import { driveRoadDay, type Effect } from "@/db/seed/demo-logs";
 import type { DemoPerson } from "@/db/seed/demo-people";
@@ -51,32 +52,57 @@ export async function addDemoRevision(
   return { id: made.revisionId, number: made.number };
 }
 
-/** A tester drives one road day on two images, attaches every run, and the comparison of the two is computed. */
-export async function driveDemoDay(
-  people: People,
-  args: {
-    programmeId: string;
-    day: string;
-    a: DemoRevision & { effect: Effect };
-    b: DemoRevision & { effect: Effect };
-    twinsPerSide: number;
-    tempC: number;
-    seed: number;
-  },
-): Promise<{ comparisonId: string }> {
+export interface DemoStrip {
+  name: string;
+  lengthM: number;
+  gustMps: number;
+  windNote: string;
+}
+
+/** Long, level and sheltered by woods. */
+export const AIRFIELD: DemoStrip = {
+  name: "Old airfield, runway 04/22 (sample)",
+  lengthM: 2900,
+  gustMps: 0.3,
+  windNote: "1 m/s along the strip, a few gusts",
+};
+/** The same length beside open water: gusts. */
+export const HARBOUR: DemoStrip = {
+  name: "Harbour quay road, closed (sample)",
+  lengthM: 2900,
+  gustMps: 1.2,
+  windNote: "1 m/s along the quay, gusts off the water",
+};
+
+interface DemoDay {
+  programmeId: string;
+  day: string;
+  strip?: DemoStrip;
+  a: DemoRevision & { effect: Effect };
+  b: DemoRevision & { effect: Effect };
+  twinsPerSide: number;
+  tempC: number;
+  seed: number;
+}
+
+/** A tester opens a road day, drives it in the order of the card and attaches every run, which is judged at once. */
+async function driveDay(people: People, args: DemoDay & { isNullTest: boolean }): Promise<string> {
   const { sam } = people;
+  const { strip = AIRFIELD, isNullTest } = args;
   const roadDay = await createRoadDay(sam, {
     programmeId: args.programmeId,
+    nullTestRevisionId: isNullTest ? args.a.id : null,
+    plannedTwins: args.twinsPerSide,
     day: args.day,
     zone: "Europe/Stockholm",
-    stripName: "Old airfield, runway 04/22 (sample)",
-    stripLengthM: 2900,
+    stripName: strip.name,
+    stripLengthM: strip.lengthM,
     driver: "Sam Okabe",
     recorder: "Mia Torvald",
     tempC: args.tempC,
     pressureHpa: 1008,
     humidityPct: 52,
-    windNote: "1 m/s along the strip, a few gusts",
+    windNote: strip.windNote,
     fuelNote: "98 octane, one batch, filled before the first run",
     tyrePressureFrontKpa: 240,
     tyrePressureRearKpa: 230,
@@ -85,7 +111,8 @@ export async function driveDemoDay(
   });
   await confirmChecklist(sam, { roadDayId: roadDay.id, confirmed: CHECKLIST.map(({ item }) => item) });
   const system = { db: sam.db, store: sam.store };
-  const runs = driveRoadDay({ ...args, effectA: args.a.effect, effectB: args.b.effect });
+  const { gustMps } = strip;
+  const runs = driveRoadDay({ ...args, gustMps, effectA: args.a.effect, effectB: args.b.effect });
   for (const run of runs) {
     const revision = run.side === "A" ? args.a : args.b;
     const fileName = `${args.day}-run-${String(run.order).padStart(2, "0")}-${run.leg}.csv`;
@@ -98,6 +125,7 @@ export async function driveDemoDay(
         kind: "pull",
         leg: run.leg,
         driveOrder: run.order,
+        letter: isNullTest ? run.side : null,
         gear: 3,
         note: "",
         startedAt: null,
@@ -110,7 +138,27 @@ export async function driveDemoDay(
     );
     await judgeRun(system, { workspaceId: sam.workspaceId, runId });
   }
+  return roadDay.id;
+}
+
+/** One road day on two images, and the comparison of the two computed. */
+export async function driveDemoDay(people: People, args: DemoDay): Promise<{ comparisonId: string }> {
+  const { sam } = people;
+  await driveDay(people, { ...args, isNullTest: false });
   const { comparisonId } = await openComparison(sam, { revisionAId: args.a.id, revisionBId: args.b.id });
-  await computeComparison(system, { workspaceId: sam.workspaceId, comparisonId });
+  await computeComparison({ db: sam.db, store: sam.store }, { workspaceId: sam.workspaceId, comparisonId });
   return { comparisonId };
+}
+
+/** One image against itself; its comparison was opened with the first run. */
+export async function driveDemoNullTest(
+  people: People,
+  { image, ...args }: Omit<DemoDay, "a" | "b"> & { image: DemoDay["a"] },
+): Promise<void> {
+  const { sam } = people;
+  const { workspaceId } = sam;
+  const nullTestRoadDayId = await driveDay(people, { ...args, a: image, b: image, isNullTest: true });
+  const sides = { workspaceId, revisionAId: image.id, revisionBId: image.id, nullTestRoadDayId };
+  for (const { id: comparisonId } of await selectComparisonsOf(sam.db, sides))
+    await computeComparison({ db: sam.db, store: sam.store }, { workspaceId, comparisonId });
 }

@@ -1,7 +1,14 @@
 import { HATCH_SHEET } from "@/db/seed/demo-car";
 import { EFFECTS } from "@/db/seed/demo-effects";
 import { PATCHES } from "@/db/seed/demo-image";
-import { addDemoRevision, type DemoRevision, driveDemoDay, type People } from "@/db/seed/demo-steps";
+import {
+  addDemoRevision,
+  type DemoRevision,
+  driveDemoDay,
+  driveDemoNullTest,
+  HARBOUR,
+  type People,
+} from "@/db/seed/demo-steps";
 import { DEMO_PASSPHRASE } from "@/lib/demo";
 import type { Ctx } from "@/lib/services/ctx";
 import { getDecisionDesk } from "@/lib/services/decisions/load-desk";
@@ -61,6 +68,18 @@ export async function tellStory(people: People): Promise<void> {
     secondReadEqual: true,
     passphrase,
   });
+
+  // Before the first change: how well does this car repeat itself, on either strip?
+  const again = { programmeId, image: { ...asFound, effect: EFFECTS.asFound } };
+  await driveDemoNullTest(people, {
+    ...again,
+    day: "2026-08-22",
+    strip: HARBOUR,
+    twinsPerSide: 2,
+    tempC: 18,
+    seed: 9,
+  });
+  await driveDemoNullTest(people, { ...again, day: "2026-08-29", twinsPerSide: 3, tempC: 17, seed: 10 });
 
   const midRange = await addDemoRevision(mia, {
     programmeId,
