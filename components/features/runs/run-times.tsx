@@ -1,6 +1,7 @@
 import { decimalsForHalfWidth, numberText } from "@/components/ui/data/number-text";
 import { Quantity } from "@/components/ui/data/quantity";
 import { type Column, Table } from "@/components/ui/data/table";
+import type { FallSource } from "@/lib/measure/sprint/time-types";
 import type { RunResult } from "@/lib/measure/types";
 
 /** Stated uncertainties of times are standard ones; ± on this page is about 95 %, twice that (GUM, JCGM 100:2008, 6.3). */
@@ -104,6 +105,12 @@ function columnsFor(rows: readonly TimeRow[], fromRest: boolean): Column<TimeRow
   return columns.filter(({ of }) => !of || rows.some((row) => of(row).value !== null));
 }
 
+const FALL_SOURCE: Record<FallSource, string> = {
+  altitude: "this run’s altitude",
+  "pooled altitude": "the altitude of the road day’s runs",
+  "road day": "the slope that the road day’s coast-downs tell",
+};
+
 /** The net fall of the run with its ±, in words. */
 function fallWords({
   net_fall_pct: pct,
@@ -112,8 +119,7 @@ function fallWords({
 }: RunResult): string {
   if (pct === null || pct === undefined) return "Net fall of the road: not known, since no altitude tells.";
   const half = COVERAGE * (u ?? 0);
-  const source = from === "pooled altitude" ? "the altitude of the road day’s runs" : "this run’s altitude";
-  return `Net fall of the road: ${numberText(Math.abs(pct), { decimals: 2 })} ± ${numberText(half, { decimals: 2 })} % ${pct >= 0 ? "downhill" : "uphill"}, by ${source}. What the fall adds is in the time and not taken out; the mean of out and back is the result.`;
+  return `Net fall of the road: ${numberText(Math.abs(pct), { decimals: 2 })} ± ${numberText(half, { decimals: 2 })} % ${pct >= 0 ? "downhill" : "uphill"}, by ${from ? FALL_SOURCE[from] : "an unnamed source"}. What the fall adds is in the time and not taken out; the mean of out and back is the result.`;
 }
 
 /** Times and speeds of the run: from rest on both clocks, and between two speeds. */

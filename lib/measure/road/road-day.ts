@@ -20,6 +20,8 @@ export interface RoadDay {
   f2NPerMps2: number;
   /** Resistance at a speed and position in one run, wind and slope of that run in it, N. */
   resistanceN: (run: number, speedMps: number, positionM: number) => number;
+  /** Rise per metre travelled of one run at a position. */
+  slope: (run: number, positionM: number) => number;
   /** Joint uncertainty of all unknowns of the day. */
   variance: RoadVariance;
   /** How many runs have a coast-down; 0: all figures are priors only. */
@@ -103,6 +105,7 @@ function roadDay(
       const slopeN = own * STANDARD_GRAVITY_MPS2 * profile.slopeAt(x, r, s);
       return rolling + x[2] * densityRatio * air * Math.abs(air) + slopeN;
     },
+    slope: (r, s) => profile.slopeAt(x, r, s),
     variance,
     coastRuns: runs.filter((run) => run.segments.coast).length,
     coveredMps: unionMps(observations.windows),

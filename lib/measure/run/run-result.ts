@@ -14,6 +14,7 @@ import { SPEED_SOURCES, type SpeedSource } from "@/lib/measure/speed/speed-model
 import { motionTrace } from "@/lib/measure/sprint/acceleration";
 import type { FallInput } from "@/lib/measure/sprint/add-falls";
 import { ownFall } from "@/lib/measure/sprint/net-fall";
+import { roadFall } from "@/lib/measure/sprint/road-fall";
 import { rollOnTimes } from "@/lib/measure/sprint/roll-on";
 import { timingsOf } from "@/lib/measure/sprint/timings";
 import type {
@@ -117,7 +118,9 @@ export function pullResult(
   const basis = budgetBasis(estimate, campaign.vehicle, index);
   return {
     grid,
-    fall: ownFall(signals.altitude, motionTrace(points.t, speedMps), pull.tipInS, pull.toS),
+    fall:
+      roadFall(estimate.roads[index], points.t, speedMps) ??
+      ownFall(signals.altitude, motionTrace(points.t, speedMps), pull.tipInS, pull.toS),
     sensitivityS: times.sensitivityS,
     sensitivityAt,
     basis,

@@ -21,7 +21,7 @@ const END_S = 1.5;
 const LEAST_WAY_M = 50;
 /** Runs on one road agree on its fall within this many standard deviations (root mean square). */
 const AGREEMENT = 2;
-/** A run without height is taken to have its road day's fall to within this, percent. */
+/** Out and back, or a run without height, may see another stretch whose fall differs by this, %; common practice, no source. */
 const OTHER_STRETCH_PCT = 0.15;
 /** The effect of a fall is worked out to first order and without rotating masses: good to this share. */
 const FIRST_ORDER = 0.15;
@@ -57,24 +57,30 @@ interface FallOfRun {
 }
 
 /**
- * Pools the falls of one road day: out and back legs see the same road with opposite signs, so the weighted mean is known
- * better than each, and a run without height has it too. Where the runs do not agree (another stretch), each keeps its own.
+ * Pools the falls of one road day: runs of one leg see the same road, those of the other leg see it with the opposite sign and
+ * only about the same stretch, so they weigh less. The weighted mean is known better than each, and a run without height has
+ * it too; what the coast-downs tell is one estimate of the day already. Where the runs do not agree, each keeps its own.
  */
 export function pooledFalls(runs: readonly FallOfRun[]): (NetFall | null)[] {
   return runs.map((run) => {
     const mates = runs.flatMap((mate) =>
-      mate.fall && mate.leg && mate.roadDay === run.roadDay
-        ? [{ pct: mate.leg === "out" ? mate.fall.pct : -mate.fall.pct, u: mate.fall.uncertaintyPct }]
+      mate.fall?.from === "altitude" && mate.leg && mate.roadDay === run.roadDay
+        ? [
+            {
+              pct: mate.leg === run.leg ? mate.fall.pct : -mate.fall.pct,
+              u: Math.hypot(mate.fall.uncertaintyPct, mate.leg === run.leg ? 0 : OTHER_STRETCH_PCT),
+            },
+          ]
         : [],
     );
-    if (!run.leg || mates.length < 2) return run.fall;
+    if (!run.leg || mates.length < 2 || run.fall?.from === "road day") return run.fall;
     const weight = mates.reduce((sum, { u }) => sum + 1 / (u * u), 0);
     const pct = mates.reduce((sum, mate) => sum + mate.pct / mate.u ** 2, 0) / weight;
     const chi = Math.sqrt(mean(mates.map((mate) => ((mate.pct - pct) / mate.u) ** 2)));
     if (chi > AGREEMENT) return run.fall;
     const own = 1 / Math.sqrt(weight);
     return {
-      pct: run.leg === "out" ? pct : -pct,
+      pct,
       uncertaintyPct: run.fall ? own : Math.hypot(own, OTHER_STRETCH_PCT),
       from: "pooled altitude",
     };

@@ -2,7 +2,7 @@
 export type TimesByName = Record<string, number>;
 
 /** Where the fall of a run is known from. */
-export type FallSource = "altitude" | "pooled altitude";
+export type FallSource = "altitude" | "pooled altitude" | "road day";
 
 /** Times and speeds of a run, and what the fall of the road does to them. Uncertainties are standard ones. */
 export interface RunTimings {

@@ -127,9 +127,10 @@ describe("net fall and its effect", () => {
       { leg: "back", roadDay: "d", fall: fall(-0.2) },
       { leg: "back", roadDay: "d", fall: null },
     ]);
-    expectClose(out?.pct, 0.25, { abs: 1e-12 });
-    expectClose(out?.uncertaintyPct, 0.1 / Math.SQRT2, { abs: 1e-12 });
-    expectClose(back?.pct, -0.25, { abs: 1e-12 });
+    // Weights 1/0.1² and, for the other leg, 1/(0.1² + 0.15²) = 100 and 30.769.
+    expectClose(out?.pct, (0.3 * 100 + 0.2 * 30.76923) / 130.76923, { abs: 1e-6 });
+    expectClose(out?.uncertaintyPct, 1 / Math.sqrt(130.76923), { abs: 1e-6 });
+    expectClose(back?.pct, -(0.2 * 100 + 0.3 * 30.76923) / 130.76923, { abs: 1e-6 });
     expect(blind?.from).toBe("pooled altitude");
     expect(blind?.uncertaintyPct).toBeGreaterThan(out?.uncertaintyPct ?? 0);
     const apart = pooledFalls([
