@@ -19,7 +19,7 @@ const ROWS: readonly PartRow[] = [
     enters:
       "Twice, by speed and by acceleration. Where the gearing is typed instead of measured, torque once by each.",
     figure:
-      "GPS 0.1 %; a wheel that nothing checks 1 %; a typed circumference as typed, else 0.5 %; a speed read off 0.5 %; a tyre marking 1.5 %.",
+      "GPS 0.1 %; a wheel that nothing checks 1 %; a typed circumference as typed, else 0.5 %; a speed read off 0.5 %; a tyre marking 1.5 %. Where only driven wheels tell the speed, 1.5 parts in a million of slip for each newton on top.",
   },
   {
     part: "Wind, grade, rolling and air resistance",
@@ -85,7 +85,7 @@ export function UncertaintyMethods() {
             torque”.
           </>
         }
-        limits="It holds for this car on these days. It does not hold what the model leaves out: drag of the gearbox that differs between neutral and gear, tyres that roll otherwise under drive, a weather formula that does not fit this engine. It is kept apart from the uncertainty of a difference, in which most parts cancel."
+        limits="It holds for this car on these days and says nothing about another fuel, temperature, gear or engine speed. It does not hold what the model leaves out: drag of the gearbox that differs between neutral and gear, tyres that roll otherwise under drive, a weather formula that does not fit this engine. It is kept apart from the uncertainty of a difference, in which most parts cancel."
       >
         <p>
           Each peak has a budget: for each thing that could be wrong, by how much of the power, as one

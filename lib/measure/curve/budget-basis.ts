@@ -1,6 +1,7 @@
 import { READING_LIMITS } from "@/lib/measure/air/weather-uncertainty";
 import { roadSpeedUncertainty } from "@/lib/measure/curve/power-sensitivity";
 import type { CampaignEstimate } from "@/lib/measure/estimate-campaign";
+import { slips } from "@/lib/measure/speed/speed-model";
 import type { BudgetComponent, CampaignVehicle } from "@/lib/measure/types";
 import { drivelineFigures, rpmPerMps, type StatedFigure, testMass } from "@/lib/measure/vehicle/vehicle";
 
@@ -56,7 +57,10 @@ function scaleBasis(estimate: CampaignEstimate, vehicle: CampaignVehicle, index:
     gearingFrom === "measured" || !gearing
       ? ""
       : ` Engine speed per road speed: ${gearing.source}, right to ${percent(gearing.uncertainty / gearing.value)}.`;
-  return `${from}; it enters twice, by speed and by acceleration.${engine}`;
+  const slip = slips(model.base)
+    ? " Only driven wheels tell the speed: a usual tyre's slip is taken out, and how well that is known is in the figure."
+    : "";
+  return `${from}; it enters twice, by speed and by acceleration.${slip}${engine}`;
 }
 
 function roadBasis(

@@ -3,6 +3,8 @@ import type { GridCurve } from "@/lib/measure/curve/pull-curve";
 import type { CampaignEstimate } from "@/lib/measure/estimate-campaign";
 import { positionAt } from "@/lib/measure/road/road-observations";
 import type { RoadVariance } from "@/lib/measure/road/road-variance";
+import { PRIOR } from "@/lib/measure/speed/calibrate-speed";
+import { slips } from "@/lib/measure/speed/speed-model";
 import type { BudgetComponent, CampaignVehicle } from "@/lib/measure/types";
 import { drivelineFigures, rollingCircumference, rpmPerMps, testMass } from "@/lib/measure/vehicle/vehicle";
 import { bandedSolve } from "@/lib/signal/banded-cholesky";
@@ -62,7 +64,7 @@ export function powerSensitivity(
   const relative = (figure: { value: number; uncertainty: number } | null) =>
     figure ? figure.uncertainty / figure.value : 0;
   const rotating = wheelShare / (massKg + wheelMassKg);
-  const scale = scaleParts(estimate, vehicle, index, wheelShare, engineShare);
+  const scale = scaleParts(estimate, vehicle, index, forceN, engineShare);
   const typed = estimate.runs[index].run;
   const dragShare = (day.f2NPerMps2 * run.densityRatio * v * v) / forceN;
   return {
@@ -99,16 +101,20 @@ export function roadSpeedUncertainty(
 /**
  * What an error of the speed scale does. Gearing measured with it: force and way per turn move together, power and torque by
  * twice the error of the wheel part. Gearing typed: power by twice, torque once by the speed and once by the gearing.
+ * Where only driven wheels tell the speed, how well their slip under the force is known comes on top.
  */
 function scaleParts(
   estimate: CampaignEstimate,
   vehicle: CampaignVehicle,
   index: number,
-  wheelShare: number,
+  forceN: number,
   engineShare: number,
 ): { power: number; torque: number } {
-  const scale = roadSpeedUncertainty(estimate, vehicle, index);
-  if (estimate.gearingFrom === "measured" || estimate.model.scaleFrom === "engine speed") {
+  const { model } = estimate;
+  const slip = slips(model.base) ? PRIOR.slipSd * forceN : 0;
+  const scale = Math.hypot(roadSpeedUncertainty(estimate, vehicle, index), slip);
+  const wheelShare = 1 - engineShare;
+  if (estimate.gearingFrom === "measured" || model.scaleFrom === "engine speed") {
     return { power: 2 * wheelShare * scale, torque: 2 * wheelShare * scale };
   }
   const stated = rpmPerMps(vehicle, estimate.runs[index].run.gear);

@@ -26,7 +26,7 @@ import { type SplineFit, splineAt } from "@/lib/signal/penalised-spline";
 import { median } from "@/lib/signal/statistics";
 
 /** What is believed before any log is read. Slip of a car tyre: 1 to 3 % at full load (from memory), here per newton. */
-const PRIOR = { slipPerN: 2e-6, slipSd: 1.5e-6, lagSd: 0.15, wheelScaleSd: 0.03, engineScaleSd: 0.03 };
+export const PRIOR = { slipPerN: 2e-6, slipSd: 1.5e-6, lagSd: 0.15, wheelScaleSd: 0.03, engineScaleSd: 0.03 };
 
 /** Drive force in N of a run at a road speed, an acceleration and a time. */
 export type ForceModel = (run: SpeedRun, speedMps: number, accelerationMps2: number, t: number) => number;

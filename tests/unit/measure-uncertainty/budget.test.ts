@@ -117,6 +117,24 @@ describe("Each part against the same campaign analysed again with that figure mo
     expect(100 * (fast.engine_nm / right.engine_nm - 1)).toBeGreaterThan(1.7);
   }, 60_000);
 
+  it("slip, where only driven wheels tell the speed: a tyre that slips more by the standard uncertainty", () => {
+    const sensors = { rateHz: 25, undrivenWheel: false, gps: false, position: false };
+    // The simulator's slip is force over stiffness: 2.56e-6 per newton, then 1.5e-6 more.
+    const [usual, soft] = [390_000, 1 / (1 / 390_000 + 1.5e-6)].map((slipStiffnessN) => {
+      const one = simulateCampaign(
+        { order: "ABBA", directions: "+-+-", sensors, physics: { slipStiffnessN } },
+        313,
+      );
+      return peakOf(analyseCampaign(typedWrong(one.campaign, "hatch", 313, EXACT), one.logs));
+    });
+    const moved = 100 * (soft.engine_kw / usual.engine_kw - 1);
+    // Twice 1 % of the wheel part is the scale that nothing checks; the rest of the squares is the slip.
+    const wheelShare = partOf(usual, "mesh efficiency") / (1 / (typed.vehicle.mesh_efficiency ?? 1));
+    const slip = Math.sqrt(partOf(usual, "speed scale") ** 2 - (2 * wheelShare) ** 2);
+    expect(moved / slip).toBeGreaterThan(0.75);
+    expect(moved / slip).toBeLessThan(1.25);
+  }, 60_000);
+
   it("weather, through the factor: readings moved by 4.04 hPa, the standard uncertainty of ±0.7 kPa", () => {
     const runs = typed.runs.map((run) => ({
       ...run,
