@@ -23,8 +23,6 @@ export interface Segments {
 /** Least share of the way from the start of the pull to the red line (campaign.md start value). */
 const LEAST_RISE = 0.4;
 const LEAST_SAMPLES = 30;
-/** Pieces of full load farther apart than this, s, are not cut by one change of gear but by a lift. */
-const LONGEST_CHANGE_S = 1;
 
 /**
  * Finds the pull (full load, one gear, rising engine speed), the steady part before it and the neutral coast-down.
@@ -85,20 +83,22 @@ export function findSegments(signals: RunSignals, vehicle: CampaignVehicle, perM
     pull,
     cruise: findCruise(signals, first),
     ...coastsOf(signals, [first, last], locked),
-    gearChange: changeBeside(signals, pieces, best.span),
+    gearChange: changeBeside(signals, spans, pieces, best.span),
     reason: null,
   };
 }
 
-/** What lies between the pull and the nearest other piece of full load cut off by a change of gear; null where there is none. */
+/** What lies between the pull and a neighbouring piece of the same stretch of full load; null where there is none. */
 function changeBeside(
   { timeS }: RunSignals,
+  spans: readonly [number, number][],
   pieces: readonly [number, number][],
   pull: [number, number],
 ): Span | null {
   const at = pieces.indexOf(pull);
+  const whole = spans.find(([a, b]) => a <= pull[0] && b >= pull[1]);
   const gap = (a: [number, number] | undefined, b: [number, number] | undefined): Span | null =>
-    a && b && timeS[b[0]] - timeS[a[1]] < LONGEST_CHANGE_S
+    whole && a && b && a[0] >= whole[0] && b[1] <= whole[1]
       ? { from_s: timeS[a[1]], to_s: timeS[b[0]] }
       : null;
   return gap(pieces[at - 1], pull) ?? gap(pull, pieces[at + 1]);

@@ -3,6 +3,7 @@ import { describe, expect, it } from "vitest";
 import { AirMethods } from "@/app/methods/air-methods";
 import { ComparisonMethods } from "@/app/methods/comparison-methods";
 import { METHOD_CONTENTS } from "@/app/methods/contents";
+import { JudgingMethods } from "@/app/methods/judging-methods";
 import { MotionMethods } from "@/app/methods/motion-methods";
 import { UncertaintyMethods } from "@/app/methods/uncertainty-methods";
 import { FACTOR_RULES } from "@/lib/measure/air/atmosphere";
@@ -10,6 +11,7 @@ import { FACTOR_RULES } from "@/lib/measure/air/atmosphere";
 const markup = renderToStaticMarkup(
   <>
     <MotionMethods />
+    <JudgingMethods />
     <AirMethods />
     <UncertaintyMethods />
     <ComparisonMethods />
