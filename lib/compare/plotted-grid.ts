@@ -1,3 +1,4 @@
+import type { CurveAnomaly } from "@/lib/measure/engine/smoothness-types";
 import type { CampaignResult, DeltaRegion, RunResult, Series, SideResult } from "@/lib/measure/types";
 import { shaftPowerW } from "@/lib/measure/vehicle/vehicle";
 
@@ -9,6 +10,8 @@ export interface PlottedSide {
   /** Single usable runs on the same basis, one curve a run. */
   runsKw: Series[];
   runsNm: Series[];
+  /** Spikes and ripple of the side's mean curve. */
+  anomalies?: readonly CurveAnomaly[];
 }
 
 /** What the comparison draws, tabulates and exports: both sides and B − A on one grid of engine speeds. */
@@ -93,6 +96,7 @@ export function plottedGrid(
     n: found?.n ?? 0,
     kw: found ? valuesAt(grid, found.rpm, found.engine_kw) : gap,
     nm: found ? valuesAt(grid, found.rpm, found.engine_nm) : gap,
+    ...(found?.anomalies && { anomalies: found.anomalies }),
     ...runCurves(
       result.runs.filter((run) => sideOf(run.id) === name),
       grid,

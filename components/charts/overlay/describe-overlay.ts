@@ -1,4 +1,5 @@
 import {
+  type CurveMark,
   type DeltaView,
   halfWidthAt,
   largestIndex,
@@ -22,6 +23,17 @@ export function deltaText(delta: DeltaView, index: number): string {
  * what was gained.
  */
 export function describeOverlay(data: OverlayData, delta: DeltaView): string {
+  return [describeDifference(data, delta), ...(data.marks ?? []).map(describeMark)].join(" ");
+}
+
+function describeMark({ side, code, fromRpm, toRpm, sizePct }: CurveMark): string {
+  const what = code === "spike" ? "a spike" : "ripple";
+  const span =
+    fromRpm === toRpm ? `at ${numberText(fromRpm)}` : `from ${numberText(fromRpm)} to ${numberText(toRpm)}`;
+  return `The mean curve of ${side.toUpperCase()} has ${what} ${span} per minute, ${numberText(sizePct, { decimals: 1, signed: true })} % off its local fit.`;
+}
+
+function describeDifference(data: OverlayData, delta: DeltaView): string {
   const hasBand = delta.low.some((value) => value !== null);
   if (!hasBand) {
     return `There is no band, so no difference is claimed: at least three usable runs a side are needed (now ${data.nA} on A, ${data.nB} on B).`;

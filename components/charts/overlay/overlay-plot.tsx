@@ -6,6 +6,7 @@ import type { Series } from "@/components/charts/frame/series";
 import { CurveLine, type OverlayPlotProps } from "@/components/charts/overlay/curve-shapes";
 import { OverlayDelta } from "@/components/charts/overlay/overlay-delta";
 import { OVERLAY_BOX } from "@/components/charts/overlay/overlay-layout";
+import { OverlayMarks } from "@/components/charts/overlay/overlay-marks";
 
 /** Everything that stays still while the cursor moves. */
 export const OverlayPlot = memo(function OverlayPlot(props: OverlayPlotProps) {
@@ -62,6 +63,7 @@ export const OverlayPlot = memo(function OverlayPlot(props: OverlayPlotProps) {
         {line(quantity.a, "series-a overprint")}
         <Markers {...props} />
       </g>
+      <OverlayMarks {...props} />
       <EndLabel side="a" x={right} y={labelYA} end={ends[0]} scale={curves} text={`A ${data.labelA}`} />
       <EndLabel side="b" x={right} y={labelYB} end={ends[1]} scale={curves} text={`B ${data.labelB}`} />
       <OverlayDelta {...props} />

@@ -8,6 +8,16 @@ export interface VerdictRegion {
   verdict: "gain" | "loss";
 }
 
+/** A stretch of one side's mean curve with a spike or ripple. */
+export interface CurveMark {
+  side: "a" | "b";
+  code: "spike" | "ripple";
+  fromRpm: number;
+  toRpm: number;
+  /** Largest deviation from the local fit, percent, signed. */
+  sizePct: number;
+}
+
 /** One quantity over engine speed for both sides, on the grid of the chart. */
 export interface OverlayQuantity {
   /** Stable name for the view, e.g. "torque". */
@@ -56,6 +66,7 @@ export interface OverlayData {
   nB: number;
   /** Smallest difference worth having, percent; drawn as two thin lines in percent mode. */
   worthwhilePct?: number | null;
+  marks?: readonly CurveMark[];
 }
 
 /** What the lower panel and the strip show in the chosen mode. */

@@ -1,4 +1,4 @@
-import { answerSentences } from "@/components/features/comparisons/answer-line";
+import { anomalySentences, answerSentences } from "@/components/features/comparisons/answer-line";
 import { Card } from "@/components/ui/layout/card";
 import type { CampaignResult } from "@/lib/measure/types";
 
@@ -20,6 +20,11 @@ export function AnswerCard({ result, labels, stale = false, note }: AnswerCardPr
       <p className="font-semibold text-17">{first}</p>
       {rest.length > 0 && <p className="mt-1 max-w-prose text-15">{rest.join(" ")}</p>}
       {note && <p className="mt-2 max-w-prose text-15 text-thin">{note}</p>}
+      {anomalySentences(sides, labels).map((sentence) => (
+        <p key={sentence} className="mt-2 max-w-prose text-15">
+          {sentence}
+        </p>
+      ))}
       {(delta.warnings ?? []).map((warning) => (
         <p key={warning.code + warning.message} className="mt-2 max-w-prose text-15 text-thin">
           {warning.message}

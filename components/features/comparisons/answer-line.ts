@@ -1,10 +1,10 @@
 import { decimalsForHalfWidth, numberText } from "@/components/ui/data/number-text";
-import type { DeltaRegion, DeltaResult } from "@/lib/measure/types";
+import type { CampaignResult, DeltaRegion, DeltaResult } from "@/lib/measure/types";
 
 /** Runs behind each side. */
 type Counts = { a: number; b: number };
 
-const span = (region: DeltaRegion) =>
+const span = (region: Pick<DeltaRegion, "from_rpm" | "to_rpm">) =>
   `${numberText(region.from_rpm)}–${numberText(region.to_rpm)} per minute`;
 
 const list = (items: readonly string[]) =>
@@ -48,4 +48,18 @@ export function answerSentences(delta: DeltaResult, labels: { a: string; b: stri
       ? null
       : `These runs could have shown a difference of about ${numberText(typical, { decimals: 1 })} % at a typical engine speed.`,
   ].filter((sentence) => sentence !== null);
+}
+
+/** Spikes and ripple of both sides' mean curves, one sentence each; B first, which is the one to be decided on. */
+export function anomalySentences(sides: CampaignResult["sides"], labels: { a: string; b: string }): string[] {
+  return [
+    { label: labels.b, found: sides.B?.anomalies ?? [] },
+    { label: labels.a, found: sides.A?.anomalies ?? [] },
+  ].flatMap(({ label, found }) =>
+    found.map(({ code, from_rpm, to_rpm, size_pct, runs }) => {
+      const what = code === "spike" ? "a spike" : "ripple";
+      const size = numberText(size_pct, { decimals: 1, signed: true });
+      return `The mean curve of ${label} has ${what} at ${span({ from_rpm, to_rpm })}: ${size} % off its local fit, seen in ${runs.showing} of ${runs.of} runs.`;
+    }),
+  );
 }

@@ -41,5 +41,14 @@ export function overlayData(grid: PlottedGrid, labels: { a: string; b: string })
     labelB: labels.b,
     nA: grid.a.n,
     nB: grid.b.n,
+    marks: (["a", "b"] as const).flatMap((side) =>
+      (grid[side].anomalies ?? []).map((found) => ({
+        side,
+        code: found.code,
+        fromRpm: found.from_rpm,
+        toRpm: found.to_rpm,
+        sizePct: found.size_pct,
+      })),
+    ),
   };
 }

@@ -111,13 +111,11 @@ export function findAnomalies(
 function begun(grid: Float64Array, logs: Float64Array[]): SideState {
   const leftOut = new Uint8Array(grid.length);
   const found = curveDeviations(stepOf(grid), logs, leftOut);
-  const here = grid.map((_, k) => Math.abs(meanOf(found.map((one) => one.halfStep[k]))));
+  const here = grid.map((_, k) => Math.abs(meanOf(found.map((one) => one.halfStep[k]))) || 0);
   const near = Math.round(STEP_NEAR_RPM / stepOf(grid));
   const steps = {
-    here: here.map((x) => x || 0),
-    near: here.map((_, k) =>
-      here.subarray(Math.max(0, k - near), k + near + 1).reduce((most, x) => (x > most ? x : most), 0),
-    ),
+    here,
+    near: here.map((_, k) => Math.max(...here.subarray(Math.max(0, k - near), k + near + 1))),
   };
   const runs = found.map(({ deviation }) => deviation);
   return { logs, leftOut, runs, steps, mean: sideMean(runs, steps), marks: [] };

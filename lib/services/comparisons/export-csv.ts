@@ -1,6 +1,9 @@
 import Papa from "papaparse";
 import { type PlottedGrid, plottedGrid } from "@/lib/compare/plotted-grid";
 import { ConflictError } from "@/lib/errors";
+import { ENGINE_CHANNELS, ENGINE_UNITS } from "@/lib/measure/engine/full-load-types";
+import { valuesOn } from "@/lib/measure/engine/values-on";
+import type { CampaignResult } from "@/lib/measure/types";
 import { getComparison } from "@/lib/services/comparisons/load";
 import { sideLabels, sideOfRun } from "@/lib/services/comparisons/schema";
 import { type Ctx, withTransaction } from "@/lib/services/ctx";
@@ -11,9 +14,14 @@ const FORMULA_START = /^[=+\-@\t\r\n\0]/;
 
 /**
  * The plotted grid as CSV (RFC 4180): units in the header, decimal point always, a gap is an empty cell.
+ * Engine channels stand at the points of their own, coarser grid.
  * @param labels how the sides are called, e.g. "R14"
  */
-export function gridCsv(grid: PlottedGrid, labels: { a: string; b: string }): string {
+export function gridCsv(
+  grid: PlottedGrid,
+  labels: { a: string; b: string },
+  result: CampaignResult | null = null,
+): string {
   const { a, b } = grid;
   const basis = grid.basis === "reference" ? "reference air" : "air of the day";
   const columns: [string, readonly (number | null)[]][] = [
@@ -31,12 +39,53 @@ export function gridCsv(grid: PlottedGrid, labels: { a: string; b: string }): st
     ["torque B minus A [N.m]", grid.nm.delta],
     ["torque band low [N.m]", grid.nm.low],
     ["torque band high [N.m]", grid.nm.high],
+    ...(result ? engineColumns(grid.rpm, labels, result) : []),
   ];
   const rows = grid.rpm.map((_, index) => columns.map(([, values]) => values[index] ?? null));
   return `${Papa.unparse(
     { fields: columns.map(([title]) => title), data: rows },
     { escapeFormulae: FORMULA_START },
   )}\r\n`;
+}
+
+/** Deviation of each mean curve from its local fit, and every engine channel that a side carries. */
+function engineColumns(
+  rpm: readonly number[],
+  labels: { a: string; b: string },
+  { sides, delta }: CampaignResult,
+): [string, readonly (number | null)[]][] {
+  const named = [
+    { side: sides.A, name: `A ${labels.a}` },
+    { side: sides.B, name: `B ${labels.b}` },
+  ];
+  const columns: [string, readonly (number | null)[]][] = named.flatMap(({ side, name }) =>
+    side?.smoothness
+      ? [
+          [
+            `deviation from the local fit ${name} [%]`,
+            valuesOn(rpm, side.smoothness.rpm, side.smoothness.deviation_pct),
+          ] as [string, readonly (number | null)[]],
+        ]
+      : [],
+  );
+  for (const channel of ENGINE_CHANNELS) {
+    const title = channel.replaceAll("_", " ");
+    const unit = `[${ENGINE_UNITS[channel]}]`;
+    for (const { side, name } of named) {
+      const load = side?.full_load;
+      const found = load?.channels[channel];
+      if (load && found) columns.push([`${title} ${name} ${unit}`, valuesOn(rpm, load.rpm, found.values)]);
+    }
+    const difference = delta?.channels?.[channel];
+    if (!difference) continue;
+    const differenceUnit = unit.replace("°C", "K");
+    columns.push(
+      [`${title} B minus A ${differenceUnit}`, valuesOn(rpm, difference.rpm, difference.difference)],
+      [`${title} band low ${differenceUnit}`, valuesOn(rpm, difference.rpm, difference.low)],
+      [`${title} band high ${differenceUnit}`, valuesOn(rpm, difference.rpm, difference.high)],
+    );
+  }
+  return columns;
 }
 
 /**
@@ -68,6 +117,6 @@ export async function exportComparison(
   const names = view.nullTestRoadDayId === null ? `${labels.a}-${labels.b}` : `${labels.a}-null-test`;
   return {
     fileName: `${names}-${view.inputSha256.slice(0, 8)}.csv`,
-    csv: gridCsv(grid, labels),
+    csv: gridCsv(grid, labels, view.result),
   };
 }

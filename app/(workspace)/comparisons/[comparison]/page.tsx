@@ -5,9 +5,11 @@ import { AnswerCard } from "@/components/features/comparisons/answer-card";
 import { ComparisonFigure } from "@/components/features/comparisons/comparison-figure";
 import { ComparisonStateNotice } from "@/components/features/comparisons/comparison-state-notice";
 import { ConditionsTable } from "@/components/features/comparisons/conditions-table";
+import { EngineSection } from "@/components/features/comparisons/engine/engine-section";
 import { viewFromParameters } from "@/components/features/comparisons/figure-view";
 import { methodNotes } from "@/components/features/comparisons/method-notes";
 import { PeaksTable } from "@/components/features/comparisons/peaks-table";
+import { RangeMeansTable } from "@/components/features/comparisons/range-means-table";
 import { RunsTable } from "@/components/features/comparisons/runs-table";
 import { SettingsForm } from "@/components/features/comparisons/settings-form";
 import { SideBudgets } from "@/components/features/comparisons/side-budgets";
@@ -19,6 +21,7 @@ import { LinkButton } from "@/components/ui/action/link-button";
 import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
 import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
+import { Tabs } from "@/components/ui/layout/tabs";
 import { requireCtx } from "@/lib/auth/current";
 import { plottedGrid } from "@/lib/compare/plotted-grid";
 import { orNotFound } from "@/lib/http/page";
@@ -114,6 +117,15 @@ export default async function ComparisonPage({
               keepInAddress
             />
           )}
+          {result?.delta && (
+            <Card
+              title="Mean difference by range"
+              description="Torque, over the compared range and its thirds."
+              flush
+            >
+              <RangeMeansTable means={result.delta.range_means ?? []} level={result.delta.level} />
+            </Card>
+          )}
           {result && (
             <Card title="Peaks and times" flush>
               <PeaksTable result={result} labels={labels} />
@@ -129,21 +141,32 @@ export default async function ComparisonPage({
               <SideBudgets result={result} labels={labels} />
             </Card>
           )}
-          <Card title="Conditions side by side" flush>
-            <ConditionsTable conditions={view.conditions} labels={labels} />
-          </Card>
-          <Card
-            title="Runs"
-            description="In the order driven. What does not count is listed with the reason."
-            flush
-          >
-            <RunsTable runs={view.runs} />
-          </Card>
-          {result?.delta && (
-            <Card title="Twins" description="How well the out and the back run of a pair agree." flush>
-              <TwinsTable delta={result.delta} />
+          {result && (
+            <Card
+              title="Engine at full load"
+              description="Worst values first. What a log does not carry is listed, never taken as fine."
+              id="engine"
+              flush
+            >
+              <EngineSection result={result} labels={labels} />
             </Card>
           )}
+          <Card title="What it rests on">
+            <Tabs
+              label="What the comparison rests on"
+              tabs={[
+                { id: "runs", label: "Runs", content: <RunsTable runs={view.runs} /> },
+                {
+                  id: "conditions",
+                  label: "Conditions",
+                  content: <ConditionsTable conditions={view.conditions} labels={labels} />,
+                },
+                ...(result?.delta
+                  ? [{ id: "twins", label: "Twins", content: <TwinsTable delta={result.delta} /> }]
+                  : []),
+              ]}
+            />
+          </Card>
         </div>
         <aside className="flex min-w-0 flex-col gap-6">
           {view.b.state === "in_review" && !isNullTest && (
