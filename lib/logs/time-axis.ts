@@ -59,9 +59,16 @@ function longestPiece(
   return { piece: best, pieces: pieces.length, swapped };
 }
 
+/** A time further off than this (30,000 years) is none: its nanoseconds would be lost in the number. */
+const FURTHEST_S = 1e12;
+
+function isTime(t: number): boolean {
+  return Math.abs(t) <= FURTHEST_S;
+}
+
 function isRising(timeS: Float64Array): boolean {
   for (let i = 1; i < timeS.length; i++) if (!(timeS[i] > timeS[i - 1])) return false;
-  return timeS.length > 0 && Number.isFinite(timeS[0]) && Number.isFinite(timeS[timeS.length - 1]);
+  return timeS.length > 0;
 }
 
 /** Times from the first one, to the nanosecond: what lies below is rounding of the file's own numbers. */
@@ -73,23 +80,26 @@ function fromFirst(count: number, timeAt: (i: number) => number, t0: number): Fl
 
 /**
  * Brings rows into strictly rising time. Short swaps are sorted, equal times keep the last row, a longer jump back
- * splits the log and the longest piece is kept: each with a problem entry. Rows with NaN time are left out.
+ * splits the log and the longest piece is kept, rows without a time are left out: each with a problem entry. Times are equal
+ * when no whole nanosecond lies between them.
  * Throws FileRefusedError `time_not_increasing`.
  */
 export function buildTimeAxis(rawS: Float64Array): TimeAxis {
-  if (isRising(rawS)) {
+  const problems: LogProblem[] = [];
+  if (rawS.length > 0 && isTime(rawS[0]) && isTime(rawS[rawS.length - 1])) {
     const timeS = fromFirst(rawS.length, (i) => rawS[i], rawS[0]);
-    const problems: LogProblem[] = [];
-    return { order: null, timeS, ...ratesAndGaps(timeS, problems), problems };
+    if (isRising(timeS)) return { order: null, timeS, ...ratesAndGaps(timeS, problems), problems };
   }
   const rows: number[] = [];
-  for (let i = 0; i < rawS.length; i++) if (Number.isFinite(rawS[i])) rows.push(i);
+  for (let i = 0; i < rawS.length; i++) if (isTime(rawS[i])) rows.push(i);
   const { piece, pieces, swapped } = longestPiece(rows, rawS);
   const kept: number[] = [];
   let repeated = 0;
+  const t0 = rawS[piece[0] ?? 0];
+  const nanoseconds = (row: number) => Math.round((rawS[row] - t0) * 1e9);
   for (const row of piece) {
     const last = kept[kept.length - 1];
-    if (last !== undefined && rawS[last] === rawS[row]) {
+    if (last !== undefined && nanoseconds(last) === nanoseconds(row)) {
       kept[kept.length - 1] = row;
       repeated++;
     } else kept.push(row);
@@ -100,7 +110,11 @@ export function buildTimeAxis(rawS: Float64Array): TimeAxis {
       "The time column does not rise: every row carries the same time. Export the log with the time of each sample.",
     );
   }
-  const problems: LogProblem[] = [];
+  if (rows.length < rawS.length)
+    problems.push({
+      code: "rows_without_time",
+      message: `${rawS.length - rows.length} rows have no time and were left out.`,
+    });
   if (swapped > 0)
     problems.push({
       code: "rows_out_of_order",
@@ -117,7 +131,6 @@ export function buildTimeAxis(rawS: Float64Array): TimeAxis {
       message: `The time jumps back ${pieces - 1} times; the longest of the ${pieces} pieces was kept (${piece.length} of ${rows.length} rows).`,
     });
   }
-  const t0 = rawS[kept[0] ?? 0] ?? 0;
   const timeS = fromFirst(kept.length, (i) => rawS[kept[i]], t0);
   return { order: Uint32Array.from(kept), timeS, ...ratesAndGaps(timeS, problems), problems };
 }

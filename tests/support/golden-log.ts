@@ -6,7 +6,7 @@ import type { LogChannel, LogTable } from "@/lib/logs/types";
 
 /** Bytes of a file of tests/golden/logs, unpacked. */
 export function goldenLog(name: string): Uint8Array {
-  return gunzipSync(readFileSync(new URL(`../golden/logs/${name}.gz`, import.meta.url)));
+  return new Uint8Array(gunzipSync(readFileSync(new URL(`../golden/logs/${name}.gz`, import.meta.url))));
 }
 
 /** The channel of a column, which must be there. */

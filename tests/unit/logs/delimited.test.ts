@@ -313,7 +313,10 @@ describe("containers and other formats", () => {
       median: 10.1388888889,
       max: 10.1388888889,
       missing: 0,
+      rows: 20,
+      rate_hz: 10,
     });
+    expect(report.format).toBe("delimited");
     expect(report.time).toEqual({
       column: "Time [s]",
       form: "s",

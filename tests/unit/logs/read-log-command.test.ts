@@ -4,6 +4,7 @@ import { tmpdir } from "node:os";
 import { join } from "node:path";
 import { fileURLToPath } from "node:url";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
+import { goldenLog } from "@/tests/support/golden-log";
 
 const home = fileURLToPath(new URL("../../../", import.meta.url));
 let folder = "";
@@ -28,7 +29,7 @@ beforeAll(() => {
 });
 afterAll(() => rmSync(folder, { recursive: true }));
 
-describe("read-log", () => {
+describe("read-log", { timeout: 30_000 }, () => {
   it("prints what was understood with the key, status 0", () => {
     const got = run(join(folder, "run.csv"), "--key", join(folder, "key.json"));
     expect(got.stderr).toBe("");
@@ -51,6 +52,19 @@ describe("read-log", () => {
     const got = run(join(folder, "empty.csv"));
     expect([got.status, got.stdout]).toEqual([1, ""]);
     expect(got.stderr).toMatch(/^empty_file: The file is empty\./);
+  });
+  it("a binary measurement: no encoding, no delimiter, its format named", () => {
+    writeFileSync(join(folder, "run.mf4"), goldenLog("mdf/made_dz1_transposed.mf4"));
+    const got = run(join(folder, "run.mf4"));
+    expect(got.status).toBe(0);
+    expect(JSON.parse(got.stdout)).toMatchObject({
+      format: "mdf4",
+      encoding: null,
+      delimiter: null,
+      decimal: null,
+      rows_read: 2000,
+      left_out: ["state_text"],
+    });
   });
   it("a wrong call or a missing file: status 2", () => {
     expect(run().status).toBe(2);
