@@ -50,7 +50,7 @@ export function UncertaintyTable({ caption, showCaption, parts, unit, total }: U
       key: "part",
       header: "Part",
       rowHeader: true,
-      className: "min-w-56",
+      className: "min-w-44",
       cell: (row) => (
         <span className="flex flex-col">
           <span>{row.name}</span>
@@ -59,24 +59,25 @@ export function UncertaintyTable({ caption, showCaption, parts, unit, total }: U
       ),
     },
     {
-      key: "bar",
-      header: "Share",
-      className: "w-1/5",
-      cell: (row) => row.share !== null && <Bar share={row.share} />,
-    },
-    {
       key: "pct",
-      header: "One standard deviation",
+      header: "Standard",
       unit: "%",
       numeric: true,
       cell: (row) => <Figure value={row.pct} decimals={2} whole={row.share === null} />,
     },
     {
       key: "value",
-      header: "The same",
+      header: "Standard",
       unit,
       numeric: true,
       cell: (row) => <Figure value={row.value} decimals={digits} whole={row.share === null} />,
+    },
+    // Last: on a phone the figures are what stays in sight.
+    {
+      key: "bar",
+      header: "Share",
+      className: "w-1/5",
+      cell: (row) => row.share !== null && <Bar share={row.share} />,
     },
   ];
   return (
