@@ -1,4 +1,4 @@
-import { LANES, projectColumns } from "@/lib/signal/project-columns";
+import { projectColumns } from "@/lib/signal/project-columns";
 import { randomStream, shuffle } from "@/lib/signal/random";
 
 /** Columns of a band that are present in the same runs, and the directions of their linear model. */
@@ -10,6 +10,9 @@ export interface ColumnGroup {
   /** Orthonormal basis of the model over all runs, one direction after the other, 0 where a run is missing; the side is last. */
   basis: Float64Array;
 }
+
+/** Directions in one pass of `projectColumns`. */
+const LANES = 3;
 
 interface Kernel {
   columns: Int32Array;

@@ -22,67 +22,61 @@ export function leastSquares(x: Float64Array, y: Float64Array, columns: number):
   if (x.length !== rows * columns || rows < columns) {
     throw new InvalidInputError("too_few_rows", `${rows} rows can't fit ${columns} coefficients.`);
   }
+  // Column after column, each scaled to length 1: the inner loops run over neighbours.
+  const q = new Float64Array(x.length);
+  for (let i = 0, at = 0; i < rows; i++) for (let j = 0; j < columns; j++) q[j * rows + i] = x[at++];
   const scale = new Float64Array(columns);
   for (let j = 0; j < columns; j++) {
-    let sum = 0;
-    for (let i = 0; i < rows; i++) sum += x[i * columns + j] ** 2;
-    scale[j] = Math.sqrt(sum) || 1;
+    const column = q.subarray(j * rows, (j + 1) * rows);
+    scale[j] = Math.sqrt(dot(column, column, 0)) || 1;
+    const factor = 1 / scale[j];
+    for (let i = 0; i < rows; i++) column[i] *= factor;
   }
-  const q = new Float64Array(x.length);
-  for (let i = 0; i < rows; i++)
-    for (let j = 0; j < columns; j++) q[i * columns + j] = x[i * columns + j] / scale[j];
   const diagonal = new Float64Array(columns);
   for (let j = 0; j < columns; j++) {
-    let norm = 0;
-    for (let i = j; i < rows; i++) norm += q[i * columns + j] ** 2;
-    norm = Math.sqrt(norm);
+    const reflector = q.subarray(j * rows, (j + 1) * rows);
+    const norm = Math.sqrt(dot(reflector, reflector, j));
     if (!(norm > 1e-12)) {
       throw new InvalidInputError(
         "rank_deficient",
         `Column ${j + 1} of the regression depends on the ones before it.`,
       );
     }
-    const alpha = q[j * columns + j] > 0 ? -norm : norm;
+    const alpha = reflector[j] > 0 ? -norm : norm;
     diagonal[j] = alpha;
-    q[j * columns + j] -= alpha;
-    const beta = -alpha * q[j * columns + j];
+    reflector[j] -= alpha;
+    const beta = -alpha * reflector[j];
     for (let k = j + 1; k < columns; k++) {
-      let sum = 0;
-      for (let i = j; i < rows; i++) sum += q[i * columns + j] * q[i * columns + k];
-      sum /= beta;
-      for (let i = j; i < rows; i++) q[i * columns + k] -= sum * q[i * columns + j];
+      const column = q.subarray(k * rows, (k + 1) * rows);
+      subtract(column, dot(reflector, column, j) / beta, reflector, j);
     }
   }
   const solve = (right: Float64Array): Float64Array => {
     const b = right.slice();
     for (let j = 0; j < columns; j++) {
-      let sum = 0;
-      for (let i = j; i < rows; i++) sum += q[i * columns + j] * b[i];
-      sum /= -diagonal[j] * q[j * columns + j];
-      for (let i = j; i < rows; i++) b[i] -= sum * q[i * columns + j];
+      const reflector = q.subarray(j * rows, (j + 1) * rows);
+      subtract(b, dot(reflector, b, j) / (-diagonal[j] * reflector[j]), reflector, j);
     }
     const out = new Float64Array(columns);
     for (let j = columns - 1; j >= 0; j--) {
       let sum = b[j];
-      for (let k = j + 1; k < columns; k++) sum -= q[j * columns + k] * out[k];
+      for (let k = j + 1; k < columns; k++) sum -= q[k * rows + j] * out[k];
       out[j] = sum / diagonal[j];
     }
     return out;
   };
   const residualsOf = (scaled: Float64Array): Float64Array => {
-    const residuals = new Float64Array(rows);
-    for (let i = 0; i < rows; i++) {
-      let sum = y[i];
-      for (let j = 0; j < columns; j++) sum -= (x[i * columns + j] / scale[j]) * scaled[j];
-      residuals[i] = sum;
-    }
+    const factors = scaled.map((value, j) => value / scale[j]);
+    const residuals = y.slice();
+    for (let i = 0, at = 0; i < rows; i++)
+      for (let j = 0; j < columns; j++) residuals[i] -= x[at++] * factors[j];
     return residuals;
   };
   const scaled = solve(y);
   const correction = solve(residualsOf(scaled));
   for (let j = 0; j < columns; j++) scaled[j] += correction[j];
   const residuals = residualsOf(scaled);
-  const inverse = inverseOfR(q, diagonal, columns);
+  const inverse = inverseOfR(q, rows, diagonal);
   const unscaledCovariance = new Float64Array(columns * columns);
   for (let a = 0; a < columns; a++) {
     for (let b = 0; b < columns; b++) {
@@ -93,9 +87,7 @@ export function leastSquares(x: Float64Array, y: Float64Array, columns: number):
     }
   }
   const df = rows - columns;
-  let sumOfSquares = 0;
-  for (let i = 0; i < rows; i++) sumOfSquares += residuals[i] ** 2;
-  const residualSd = df > 0 ? Math.sqrt(sumOfSquares / df) : Number.NaN;
+  const residualSd = df > 0 ? Math.sqrt(dot(residuals, residuals, 0) / df) : Number.NaN;
   return {
     coefficients: scaled.map((value, j) => value / scale[j]),
     standardErrors: scaled.map((_, j) => residualSd * Math.sqrt(unscaledCovariance[j * columns + j])),
@@ -106,13 +98,37 @@ export function leastSquares(x: Float64Array, y: Float64Array, columns: number):
   };
 }
 
-function inverseOfR(q: Float64Array, diagonal: Float64Array, columns: number): Float64Array {
+/** Σ a[i]·b[i] from index `from` on, in four sums: one alone would wait for its own last addition. */
+function dot(a: Float64Array, b: Float64Array, from: number): number {
+  let s0 = 0;
+  let s1 = 0;
+  let s2 = 0;
+  let s3 = 0;
+  let i = from;
+  for (; i + 3 < a.length; i += 4) {
+    s0 += a[i] * b[i];
+    s1 += a[i + 1] * b[i + 1];
+    s2 += a[i + 2] * b[i + 2];
+    s3 += a[i + 3] * b[i + 3];
+  }
+  for (; i < a.length; i++) s0 += a[i] * b[i];
+  return s0 + s1 + (s2 + s3);
+}
+
+/** Takes `factor` times `column` from `target` in place, from index `from` on. */
+function subtract(target: Float64Array, factor: number, column: Float64Array, from: number): void {
+  for (let i = from; i < target.length; i++) target[i] -= factor * column[i];
+}
+
+/** R⁻¹ of the factor whose diagonal is apart and whose upper part lies in the columns of `q`. */
+function inverseOfR(q: Float64Array, rows: number, diagonal: Float64Array): Float64Array {
+  const columns = diagonal.length;
   const inverse = new Float64Array(columns * columns);
   for (let j = columns - 1; j >= 0; j--) {
     inverse[j * columns + j] = 1 / diagonal[j];
     for (let i = j - 1; i >= 0; i--) {
       let sum = 0;
-      for (let k = i + 1; k <= j; k++) sum += q[i * columns + k] * inverse[k * columns + j];
+      for (let k = i + 1; k <= j; k++) sum += q[k * rows + i] * inverse[k * columns + j];
       inverse[i * columns + j] = -sum / diagonal[i];
     }
   }

@@ -1,9 +1,7 @@
-/** Directions taken in one pass. Two columns side by side make six sums, which stay in a processor's registers. */
-export const LANES = 3;
-
 /**
  * Projects columns of `n` numbers on three directions at once: the third projection goes to `last`, the sum of the three
- * squares is added to `squares`, both at the column's own index. O(columns · n).
+ * squares is added to `squares`, both at the column's own index. Two columns side by side make six sums, which stay in a
+ * processor's registers. O(columns · n).
  * @param data columns one after the other, padded with a column of zeros to an even count
  * @param directions `n` rows of three weights; a direction that is not needed is zero
  * @param columns index of each column in `last` and `squares`

@@ -73,23 +73,37 @@ export function savitzkyGolay(
   const m = (windowLength - 1) / 2;
   const scale = 1 / step ** derivative;
   const out = new Float64Array(n);
-  const centre = savitzkyGolayWeights(windowLength, degree, derivative);
-  for (let i = m; i < n - m; i++) {
-    let sum = 0;
-    for (let k = 0; k < windowLength; k++) sum += centre[k] * values[i - m + k];
-    out[i] = sum * scale;
+  // Weights of a centred fit are even or odd with the derivative: pairs at equal distance share one product.
+  const centre = savitzkyGolayWeights(windowLength, degree, derivative).map((weight) => weight * scale);
+  const sign = derivative % 2 === 0 ? 1 : -1;
+  // Two samples at a time: each sum would wait for its own last addition.
+  let i = m;
+  for (; i + 1 < n - m; i += 2) {
+    let first = centre[m] * values[i];
+    let second = centre[m] * values[i + 1];
+    for (let k = 1; k <= m; k++) {
+      const weight = centre[m + k];
+      first += weight * (values[i + k] + sign * values[i - k]);
+      second += weight * (values[i + 1 + k] + sign * values[i + 1 - k]);
+    }
+    out[i] = first;
+    out[i + 1] = second;
+  }
+  if (i < n - m) {
+    out[i] = centre[m] * values[i];
+    for (let k = 1; k <= m; k++) out[i] += centre[m + k] * (values[i + k] + sign * values[i - k]);
   }
   for (let end = 0; end < m; end++) {
-    const left = savitzkyGolayWeights(windowLength, degree, derivative, end - m);
-    const right = savitzkyGolayWeights(windowLength, degree, derivative, m - end);
+    // The fit at the right end is the mirror image of the one at the left.
+    const weights = savitzkyGolayWeights(windowLength, degree, derivative, end - m);
     let first = 0;
     let last = 0;
     for (let k = 0; k < windowLength; k++) {
-      first += left[k] * values[k];
-      last += right[k] * values[n - windowLength + k];
+      first += weights[k] * values[k];
+      last += weights[k] * values[n - 1 - k];
     }
     out[end] = first * scale;
-    out[n - 1 - end] = last * scale;
+    out[n - 1 - end] = sign * last * scale;
   }
   return out;
 }

@@ -1,0 +1,58 @@
+/** One line of the bench: what is measured, against what, and the budget that the ratio (or the seconds) must keep. */
+export interface BenchLine {
+  what: string;
+  ours: () => unknown;
+  /** What the ratio is taken against: work in this process, or a program that states its own CPU ms. Null: plain CPU seconds. */
+  reference: { name: string; work: () => unknown } | { name: string; cpuMs: () => number } | null;
+  /** Why the line can't be run here; null when it can. */
+  notRun: string | null;
+  /** Highest ratio or CPU seconds; null = shown only. */
+  budget: number | null;
+  /** Finds out whether both sides give the same, and says so; throws when they don't. */
+  agreement?: () => string;
+}
+
+const ROUNDS = 5;
+const BATCH_MS = 100;
+const WARM_MS = 600;
+
+/** CPU milliseconds of one call, over as many calls as fill `leastMs`. */
+function cpuMs(work: () => unknown, leastMs: number): number {
+  let calls = 0;
+  let spentMs = 0;
+  while (spentMs < leastMs) {
+    const before = process.cpuUsage();
+    work();
+    const spent = process.cpuUsage(before);
+    spentMs += (spent.user + spent.system) / 1000;
+    calls++;
+  }
+  return spentMs / calls;
+}
+
+/** One round: ours and the reference right after each other. */
+function round({ ours, reference }: BenchLine): number {
+  const own = cpuMs(ours, BATCH_MS);
+  if (reference === null) return own / 1000;
+  return own / ("work" in reference ? cpuMs(reference.work, BATCH_MS) : reference.cpuMs());
+}
+
+/** Warms a line up, runs its rounds and prints the middle one. Returns whether it kept its budget; null without one or when not run. */
+export function printLine(line: BenchLine): boolean | null {
+  const { what, reference, budget } = line;
+  const against = (reference ? `x ${reference.name}` : "CPU seconds").padEnd(40);
+  if (line.notRun !== null) {
+    console.log(`not run  ${against} ${what}: ${line.notRun}`);
+    return null;
+  }
+  cpuMs(line.ours, WARM_MS);
+  if (reference && "work" in reference) cpuMs(reference.work, WARM_MS);
+  const values = Array.from({ length: ROUNDS }, () => round(line)).sort((a, b) => a - b);
+  const value = values[ROUNDS >> 1];
+  const inside = budget === null ? null : value <= budget;
+  const verdict = inside === null ? "no budget" : `${inside ? "inside" : "OUTSIDE"} ${budget}`;
+  const spread = `${values[0].toFixed(3)} to ${values[ROUNDS - 1].toFixed(3)}`;
+  const same = line.agreement ? `; ${line.agreement()}` : "";
+  console.log(`${value.toFixed(3).padStart(7)}  ${against} ${what}: ${verdict} (rounds ${spread}${same})`);
+  return inside;
+}
