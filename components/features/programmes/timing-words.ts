@@ -3,7 +3,7 @@ import type { SheetTimings } from "@/lib/measure/sprint/sheet-timings";
 type Pair = SheetTimings["speedPairs"][number];
 
 /** One pair as it is typed and read: "90-130" (km/h) or "30-90 mph". */
-export const pairText = ({ from, to, unit }: Pair): string => `${from}-${to}${unit === "mph" ? " mph" : ""}`;
+const pairText = ({ from, to, unit }: Pair): string => `${from}-${to}${unit === "mph" ? " mph" : ""}`;
 
 /** A programme's own timings as its form holds them. */
 export interface TypedTimings {

@@ -2,7 +2,7 @@ import { z } from "zod";
 import { readTypedNumber } from "@/lib/format/typed-number";
 import type { VehicleSheetFigures } from "@/lib/measure/vehicle/vehicle-sheet";
 import { optionalNumber, requiredNumber } from "@/lib/services/number-field";
-import { sheetTimings } from "@/lib/services/vehicle-sheets/timings";
+import { sheetTimings } from "@/lib/services/vehicle-sheets/schema-timings";
 
 /** The limits only catch slips of the keyboard; common practice, no source. */
 const LIMITS = {

@@ -8,7 +8,7 @@ import { rollOnTimes } from "@/lib/measure/sprint/roll-on";
 import { toTimingSettings } from "@/lib/measure/sprint/sheet-timings";
 import { STANDARD_TIMINGS, timingsOf } from "@/lib/measure/sprint/timings";
 import type { CampaignRun, RunResult } from "@/lib/measure/types";
-import { sheetTimings } from "@/lib/services/vehicle-sheets/timings";
+import { sheetTimings } from "@/lib/services/vehicle-sheets/schema-timings";
 import { checkValue, checkValues } from "../../support/check-values";
 import { expectClose } from "../../support/expect-close";
 
