@@ -237,7 +237,7 @@ function sidesAndDelta(
   const model = compare && { ...compare, level: settings.level, seed: settings.seed, resamples: RESAMPLES };
   const curves = model && compareSides(rpm, compared, { ...model, basis, ranges: settings.rpm_ranges });
   const pullIds = new Set(pulls.map(({ run }) => run.id));
-  const delta = model && addTimes(curves ?? null, campaign, results, pullIds, basis);
+  const delta = model ? addTimes(curves ?? null, campaign, results, pullIds, basis) : undefined;
   if (delta && model) delta.channels = compareChannels(loaded, { ...model, engine: campaign.vehicle.engine });
   return { repeatability: compare ? repeatability(rpm, compared) : undefined, sides, delta, warnings };
 }
