@@ -7,8 +7,6 @@ import { joinGroups } from "@/lib/logs/join-groups";
 import type { ChannelKey, LogProblem, LogTable, RefusedRow } from "@/lib/logs/types";
 
 const MOST_REFUSED_LISTED = 1000;
-/** Problem entry of a log whose GPS speed is not the receiver's own. */
-export const SPEED_FROM_POSITIONS = "speed_from_positions";
 
 /**
  * Reads a GPX track (1.0 and 1.1): positions, elevations, times, and speeds where the file states them. Without a stated speed one is
@@ -68,7 +66,7 @@ function columnsOf(points: readonly GpxPoint[], timeS: Float64Array, problems: L
   if (isThere(stated)) return [stated, ...columns];
   const segment = points.map((point) => point.segment);
   problems.push({
-    code: SPEED_FROM_POSITIONS,
+    code: "speed_from_positions",
     message:
       "The track states no speed; it was derived from the positions, which is too coarse for a decision. Record the receiver's own speed.",
   });
