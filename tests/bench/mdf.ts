@@ -69,7 +69,7 @@ const line = (
     ours: () => readLog(bytes),
     reference: null,
     notRun: null,
-    budget: form === "plain" ? megabytes / 100 : null,
+    budget: form === "plain" ? Math.round(10 * megabytes) / 1000 : null,
     agreement: () => {
       const { rowsRead, time, channels: read } = readLog(bytes);
       if (rowsRead !== ROWS || read.length !== channels.length || time.rateHz !== 1000)
