@@ -54,7 +54,7 @@ export interface FoundOnCurve {
  * what a step of the curve explains (a new torque level is neither); the
  * mean of a side's runs is marked where it exceeds both 1 % and t·s/√n, s being the scatter between runs pooled over sides and
  * ± 400 1/min, t Bonferroni's over the independent stretches of the curve: only what repeats over the runs is marked. A marked
- * stretch is left out of the fits and the search goes on. Three or more marks of turning sign close together are a ripple; marks
+ * stretch is left out of the fits and the search goes on. Marks of turning sign and like size close together are a ripple; marks
  * much smaller than one beside them are its echo in the smoothing and are not told.
  * @param sides torque of each usable run on `rpm` (even grid), null = gap
  */
@@ -121,10 +121,10 @@ function begun(grid: Float64Array, logs: Float64Array[]): SideState {
   return { logs, leftOut, runs, steps, mean: sideMean(runs, steps), marks: [] };
 }
 
-/** The side after another stretch was left out. Where that takes too much out of a fit, the deviation stays as it was. */
+/** The side after another stretch was left out. Inside one, where a fit lacks points, the deviation stays as it was. */
 function refreshed(grid: Float64Array, state: SideState): SideState {
   const runs = curveDeviations(stepOf(grid), state.logs, state.leftOut).map(({ deviation }, r) =>
-    deviation.map((x, k) => (Number.isNaN(x) ? state.runs[r][k] : x)),
+    deviation.map((x, k) => (Number.isNaN(x) && state.leftOut[k] ? state.runs[r][k] : x)),
   );
   return { ...state, runs, mean: sideMean(runs, state.steps) };
 }
@@ -237,7 +237,7 @@ function described(rpm: readonly number[], state: SideState, limit: Float64Array
     const largest = Math.max(...told.map(({ size_pct }) => Math.abs(size_pct)));
     const strong = told.filter(({ size_pct }) => Math.abs(size_pct) >= ECHO_SHARE * largest);
     const turning = strong.every(({ size_pct }, i) => i === 0 || size_pct * strong[i - 1].size_pct < 0);
-    if (strong.length < 3 || !turning) return strong;
+    if (strong.length < 2 || !turning) return strong;
     return [anomaly("ripple", rpm, state, limit, group[0].first, group[group.length - 1].last)];
   });
 }
