@@ -11,7 +11,7 @@ export interface TypingErrors {
   weather: { tempC: number; pressureHpa: number; rhPct: number };
 }
 
-export const USUAL_ERRORS: TypingErrors = {
+const USUAL_ERRORS: TypingErrors = {
   massKg: 15,
   circumference: 0.005,
   inertia: 0.1,
