@@ -223,6 +223,7 @@ function sidesAndDelta(
       order: m.run.order ?? null,
       roadDay: m.run.road_day ?? null,
       engineNm,
+      kernelRpm: rpm.map((x) => m.pull.kernelRpm[m.pull.grid.rpm.indexOf(x)] ?? null),
       peakKw: peak?.engine_kw ?? null,
       peakNm: peak?.engine_nm ?? null,
     };

@@ -87,18 +87,24 @@ function withoutBrakes({ timeS, speedRows }: RunSignals, span: Span): Span[] {
 
 /**
  * True when engine speed falls in proportion to road speed: some gear is in. An idling engine keeps its speed, one that spins
- * down falls much faster than the car. Compares the means of the first and the last third, after the engine has come down.
+ * down falls much faster than the car. Asked twice, of the first and of the middle third against the last, since an engine that
+ * comes to its idle in between falls like the car by chance.
  */
 function inGear({ timeS, speedRows, engineRows, gearRows }: RunSignals, from: number, to: number): boolean {
   if (!engineRows) return false;
   if (gearRows?.subarray(from, to + 1).every((gear) => Math.round(gear) === 0)) return false;
   const start = timeS[to] - timeS[from] > 5 ? lowerBound(timeS, timeS[from] + 2) : from;
   const third = Math.floor((to - start) / 3);
-  const mean = (rows: Float64Array, a: number) => {
-    const values = rows.subarray(a, a + third).filter((x) => x > 0);
-    return values.reduce((sum, x) => sum + x, 0) / values.length;
+  const fall = (rows: Float64Array, part: number) => {
+    const mean = (a: number) => {
+      const values = rows.subarray(a, a + third).filter((x) => x > 0);
+      return values.reduce((sum, x) => sum + x, 0) / values.length;
+    };
+    return Math.log(mean(start + part * third) / mean(start + 2 * third));
   };
-  const engine = Math.log(mean(engineRows, start) / mean(engineRows, to - third));
-  const road = Math.log(mean(speedRows, start) / mean(speedRows, to - third));
-  return road > 0.015 && engine / road > 0.5 && engine / road < 1.5;
+  return [0, 1].every((part) => {
+    const road = fall(speedRows, part);
+    const share = fall(engineRows, part) / road;
+    return road > 0.007 && share > 0.5 && share < 1.5;
+  });
 }

@@ -1,6 +1,7 @@
 import { chooseFactor, weatherFactor } from "@/lib/measure/air/atmosphere";
 import { factorUncertainty } from "@/lib/measure/air/weather-uncertainty";
 import { type BudgetBasis, budgetBasis } from "@/lib/measure/curve/budget-basis";
+import { kernelWidthRpm } from "@/lib/measure/curve/kernel-width";
 import { peakOfCurve } from "@/lib/measure/curve/peak-of-curve";
 import { type PowerSensitivity, powerSensitivity } from "@/lib/measure/curve/power-sensitivity";
 import { type GridCurve, gridCurve, pullPoints } from "@/lib/measure/curve/pull-curve";
@@ -10,17 +11,16 @@ import { maskedSpans } from "@/lib/measure/judge/consequence";
 import { judgePull } from "@/lib/measure/judge/judge-pull";
 import { lossSource } from "@/lib/measure/road/loss-source";
 import { carriesAbsolute } from "@/lib/measure/road/road-day";
+import { pullTimes } from "@/lib/measure/run/pull-times";
 import { SPEED_SOURCES, type SpeedSource } from "@/lib/measure/speed/speed-model";
 import { motionTrace } from "@/lib/measure/sprint/acceleration";
 import type { FallInput } from "@/lib/measure/sprint/add-falls";
 import { ownFall } from "@/lib/measure/sprint/net-fall";
 import { roadFall } from "@/lib/measure/sprint/road-fall";
-import { rollOnTimes } from "@/lib/measure/sprint/roll-on";
 import { timingsOf } from "@/lib/measure/sprint/timings";
 import type {
   Campaign,
   CampaignRun,
-  CampaignVehicle,
   FactorResult,
   Note,
   PowerCurve,
@@ -59,6 +59,8 @@ export interface PullResult extends FallInput {
     "speed_source" | "loss" | "factor" | "curve" | "peak" | "times_s" | "times_uncertainty_s" | "notes"
   >;
   grid: GridCurve;
+  /** How far smoothing reaches at each grid point, 1/min. */
+  kernelRpm: (number | null)[];
   /** What moves the power at an engine speed of the grid; null elsewhere. */
   sensitivityAt: (rpm: number) => PowerSensitivity | null;
   basis: BudgetBasis;
@@ -84,7 +86,8 @@ export function pullResult(
     estimate.model.slipPerN,
     estimate.roads[index].resistanceN,
   );
-  const spans = [...pull.slipping, ...maskedSpans(extra)];
+  const broken = maskedSpans(extra);
+  const spans = [...pull.slipping, ...broken];
   const inside = (t: number) => spans.some((s) => t >= s.from_s && t <= s.to_s);
   const grid = gridCurve(points, campaign.settings.rpm_step, inside);
   const factor = runFactor(campaign, run);
@@ -105,9 +108,10 @@ export function pullResult(
   notes.push(...judgePull(estimate, index, campaign.vehicle, { factor, absolute, torqueNm: grid.engineNm }));
   const curve = absolute ? powerCurve(grid, factor) : null;
   const speedMps = evaluateSpline(pull.fit, points.t);
-  const times = rollOnTimes(
+  const times = pullTimes(
     points.t,
     speedMps,
+    broken,
     { deviationMps: 0.01, scale: estimate.model.scaleUncertainty },
     timingsOf(campaign.settings).pairs,
   );
@@ -118,6 +122,7 @@ export function pullResult(
   const basis = budgetBasis(estimate, campaign.vehicle, index);
   return {
     grid,
+    kernelRpm: kernelWidthRpm(pull, grid, estimate.drivelines[index]),
     fall:
       roadFall(estimate.roads[index], points.t, speedMps) ??
       ownFall(signals.altitude, motionTrace(points.t, speedMps), pull.tipInS, pull.toS),

@@ -1,6 +1,7 @@
 import { adaptiveSmoothing } from "@/lib/measure/speed/adaptive-smoothing";
 import {
   chooseSmoothing,
+  kernelWidthS,
   type SpeedSeries,
   type SpeedStretch,
   smoothSpeed,
@@ -25,6 +26,8 @@ export interface PullSpeed {
   fromS: number;
   toS: number;
   tipInS: number;
+  /** Width of the smoothing kernel at a time, s: detail much finer than it is rounded off. */
+  kernelS: (t: number) => number;
   /** False for a first fit on driven channels alone: their slip is still in it. */
   slipTaken: boolean;
   /** Spans in which the driven wheels or the clutch slipped beyond drive creep. */
@@ -82,6 +85,7 @@ export function pullSpeeds(
       fromS: tipInS(runs[index].segments),
       toS: pull.to_s,
       tipInS: tipInS(runs[index].segments),
+      kernelS: (t) => kernelWidthS(stretch, smoothing, t),
       slipTaken: earlier !== null || !slips(model.base),
       slipping,
     };

@@ -61,6 +61,11 @@ export function smoothSpeed(stretch: SpeedStretch, smoothing: Smoothing): Spline
   return solveSpline(stretch.system, smoothing.lambda, scale ? (t) => scale(stretch, t) : undefined);
 }
 
+/** Width w of the equivalent kernel at a time, s: the smoother answers a wave of frequency ω by 1/(1 + (ω·w)⁶). */
+export function kernelWidthS(stretch: SpeedStretch, { lambda, scale }: Smoothing, t: number): number {
+  return ((lambda * (scale ? scale(stretch, t) : 1)) / stretch.density) ** (1 / 6);
+}
+
 /** Mean information a second of some stretches. */
 export function meanDensity(stretches: readonly SpeedStretch[]): number {
   return stretches.reduce((sum, s) => sum + s.density, 0) / stretches.length;
