@@ -1,4 +1,5 @@
 export { blobs, idempotencyKeys, uploadPurposeEnum, uploadStateEnum, uploads } from "@/db/schema/blobs";
+export { channelKeys } from "@/db/schema/channel-keys";
 export { comparisonResults, comparisonStateEnum, comparisons } from "@/db/schema/comparisons";
 export { decisionKindEnum, decisions, waivers } from "@/db/schema/decisions";
 export { ledger, ledgerHeads, mailQueue } from "@/db/schema/ledger";

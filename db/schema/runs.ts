@@ -17,6 +17,7 @@ import {
 import type { RunTraces } from "@/lib/measure/run/traces";
 import type { RunResult } from "@/lib/measure/types";
 import { blobs } from "./blobs";
+import { channelKeys } from "./channel-keys";
 import { createdAt, idColumn, instant, wholeNumber } from "./column";
 import { users } from "./people";
 import { revisions } from "./revisions";
@@ -53,6 +54,10 @@ export const runs = pgTable(
     logSha256: text("log_sha256").notNull(),
     logFileName: text("log_file_name").notNull(),
     logBytes: wholeNumber("log_bytes").notNull(),
+    /** Fingerprint of the log's header, by which channel keys fit; null where the log has no header that can be read. */
+    headerSha256: text("header_sha256"),
+    /** The version of the channel key that the log is read with; null: by what the file says alone. */
+    channelKeyId: uuid("channel_key_id"),
     state: runStateEnum("state").notNull().default("waiting"),
     setAsideAt: instant("set_aside_at"),
     setAsideBy: uuid("set_aside_by").references(() => users.id),
@@ -81,6 +86,10 @@ export const runs = pgTable(
       foreignColumns: [revisions.workspaceId, revisions.id],
     }),
     foreignKey({ columns: [t.workspaceId, t.logSha256], foreignColumns: [blobs.workspaceId, blobs.sha256] }),
+    foreignKey({
+      columns: [t.workspaceId, t.channelKeyId],
+      foreignColumns: [channelKeys.workspaceId, channelKeys.id],
+    }),
   ],
 );
 
