@@ -41,9 +41,7 @@ function altitudeFault(altitude: SampledChannel | null): Note | null {
     return {
       code: "altitude_jump",
       consequence: "masked",
-      from_s: times[i - 1],
-      to_s: times[i],
-      message: `The altitude jumps by ${fixed(jump, 1)} m within ${fixed(pause, 2)} s; it is left out of the slope. Give the receiver a clear sky and time to settle.`,
+      message: `The altitude jumps by ${fixed(jump, 1)} m at ${fixed(times[i], 1)} s; it is left out of the slope. Give the receiver a clear sky and time to settle.`,
     };
   }
   return null;

@@ -63,6 +63,10 @@ describe("What is masked is out of torque, speed and losses (truth: lib/simulate
     expect(hidden(run).length).toBeGreaterThan(3);
     expect(hidden(runOf(result, "r01"))).toEqual([]);
     expect(worstPct(clean, clean.result, run)).toBeLessThan(0.5);
+    // 60-100 km/h runs through the lift at 6 s and is no time of full load.
+    expect(runOf(clean.result, "r02").times_s?.["60-100"]).toBeGreaterThan(2);
+    expect(run.times_s?.["60-100"]).toBeUndefined();
+    expect(runOf(result, "r01").times_s?.["60-100"]).toBeGreaterThan(2);
   });
 
   it("hides a frozen speed where nothing else tells it; the rest stays true", () => {
