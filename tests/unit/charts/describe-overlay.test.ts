@@ -29,6 +29,18 @@ describe("describeOverlay", () => {
     );
   });
 
+  it("names spikes and ripple of a side, also where nothing leaves the band", () => {
+    const marks = [
+      { side: "b", code: "spike", fromRpm: 5200, toRpm: 5300, sizePct: 2.44 },
+      { side: "a", code: "ripple", fromRpm: 3000, toRpm: 4000, sizePct: -1.5 },
+    ] as const;
+    expect(words(createOverlay({ regions: [], marks }))).toBe(
+      "Nowhere is the difference outside the band: neither a gain nor a loss is shown. " +
+        "The mean curve of B has a spike from 5 200 to 5 300 per minute, +2.4 % off its local fit. " +
+        "The mean curve of A has ripple from 3 000 to 4 000 per minute, \u22121.5 % off its local fit.",
+    );
+  });
+
   it("says what is missing where there is no band", () => {
     const none = Array.from({ length: 9 }, () => null);
     expect(words(createOverlay({ lowPct: none, highPct: none, regions: [], nA: 2, nB: 3 }))).toBe(

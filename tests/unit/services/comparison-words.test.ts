@@ -5,7 +5,7 @@ import { viewFromParameters, viewToParameters } from "@/components/features/comp
 import type { ComparisonInput } from "@/db/schema/comparisons";
 import { canonicalJson } from "@/lib/canonical-json";
 import type { PlottedGrid } from "@/lib/compare/plotted-grid";
-import type { DeltaResult } from "@/lib/measure/types";
+import type { CampaignResult, DeltaResult } from "@/lib/measure/types";
 import { gridCsv } from "@/lib/services/comparisons/export-csv";
 import { whatMoved } from "@/lib/services/comparisons/what-moved";
 import { retryLost, sqlState } from "@/lib/services/decisions/retry";
@@ -152,6 +152,21 @@ test("the grid as a file survives a spreadsheet: no cell is a formula, numbers s
   expect(header.filter((title) => /^[=+\-@\t\r\n\0]/.test(title))).toEqual([]);
   expect(cells.slice(0, 7)).toEqual(["3000", "90.25", "90.25", "-3.1", "-3.1", "-3.1", "-3.1"]);
   expect(cells[7]).toBe("");
+  // Engine channels with their unit, a difference of temperatures in K; a point off their grid is empty.
+  const engine = (value: number) => ({ rpm: [3000], channels: { exhaust_temperature: { values: [value] } } });
+  const result = {
+    sides: { A: { full_load: engine(850) }, B: { full_load: engine(870) } },
+    delta: { channels: { exhaust_temperature: { rpm: [3200], difference: [20], low: [18], high: [22] } } },
+  } as unknown as CampaignResult;
+  const wide = Papa.parse<string[]>(gridCsv(grid, { a: "R1", b: "R2" }, result).trimEnd()).data;
+  expect(wide[0].slice(14)).toEqual([
+    "exhaust temperature A R1 [°C]",
+    "exhaust temperature B R2 [°C]",
+    "exhaust temperature B minus A [K]",
+    "exhaust temperature band low [K]",
+    "exhaust temperature band high [K]",
+  ]);
+  expect(wide[1].slice(14)).toEqual(["850", "870", "", "", ""]);
 });
 
 describe("typed numbers", () => {
