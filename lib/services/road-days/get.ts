@@ -1,6 +1,9 @@
+import { selectComparisonsOf } from "@/db/queries/comparisons";
 import { type RoadDayRow, selectNewestRoadDay, selectStripNames } from "@/db/queries/road-days";
 import { selectDrivableRevisions } from "@/db/queries/runs";
+import type { CampaignResult } from "@/lib/measure/types";
 import { toCampaignVehicle } from "@/lib/measure/vehicle/vehicle-sheet";
+import { type ComparisonStanding, comparisonStanding } from "@/lib/services/comparisons/load";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { type LoadedProgramme, loadProgramme } from "@/lib/services/programmes/load";
 import { loadRoadDay } from "@/lib/services/road-days/load";
@@ -20,6 +23,26 @@ export interface RoadDayView {
   /** Test mass of the newest vehicle sheet, kg. */
   sheetMassKg: number;
   runs: RoadDayRuns;
+  /** What came of a null test; null on every other day and before its first run. */
+  nullTest: {
+    comparisonId: string;
+    state: ComparisonStanding["state"];
+    result: CampaignResult | null;
+  } | null;
+}
+
+/** The null test under the standard settings, which is the one that its road day shows. */
+async function nullTestOf(
+  ctx: Ctx,
+  { id: nullTestRoadDayId, nullTestRevisionId }: RoadDayRow,
+): Promise<RoadDayView["nullTest"]> {
+  if (nullTestRevisionId === null) return null;
+  const { workspaceId } = ctx;
+  const sides = { revisionAId: nullTestRevisionId, revisionBId: nullTestRevisionId, nullTestRoadDayId };
+  const [comparison] = await selectComparisonsOf(ctx.db, { workspaceId, ...sides });
+  if (!comparison) return null;
+  const { state, shown } = await comparisonStanding(ctx.db, comparison);
+  return { comparisonId: comparison.id, state, result: shown?.result ?? null };
 }
 
 function twinsAskedBy(plan: LoadedProgramme["plan"]): number | null {
@@ -53,6 +76,7 @@ export async function getRoadDay(ctx: Ctx, roadDayId: string): Promise<RoadDayVi
     gearOfSheet: sheet.figures.speedAtRpm?.gear ?? null,
     sheetMassKg: toCampaignVehicle(sheet.figures).mass_kg,
     runs,
+    nullTest: await nullTestOf(ctx, roadDay),
   };
 }
 

@@ -1,9 +1,11 @@
 import type { Metadata, Route } from "next";
+import Link from "next/link";
 import { Checklist } from "@/app/(workspace)/road-days/[roadDay]/checklist";
 import { chooseCard } from "@/app/(workspace)/road-days/[roadDay]/choose-card";
 import { OrderCardSection } from "@/app/(workspace)/road-days/[roadDay]/order-card";
 import { RoadDayRuns } from "@/app/(workspace)/road-days/[roadDay]/road-day-runs";
 import { editRoadDayAction } from "@/app/(workspace)/road-days/actions";
+import { NullTestCard } from "@/components/features/null-tests/null-test-card";
 import { RoadDayFacts } from "@/components/features/road-days/road-day-facts";
 import { RoadDayForm } from "@/components/features/road-days/road-day-form";
 import { Tag } from "@/components/ui/data/tag";
@@ -14,12 +16,38 @@ import { PageHeading } from "@/components/ui/layout/page-heading";
 import { requireCtx } from "@/lib/auth/current";
 import { orNotFound } from "@/lib/http/page";
 import { can } from "@/lib/policy/can";
-import { getRoadDay } from "@/lib/services/road-days/get";
+import { getRoadDay, type RoadDayView } from "@/lib/services/road-days/get";
 import { openLines } from "@/lib/services/road-days/schema";
 
 export const metadata: Metadata = { title: "Road day" };
 
 const asText = (value: number | null) => (value === null ? "" : String(value));
+
+/** What the null test came to so far, with the way to the figure. */
+function NullTestOutcome({
+  nullTest,
+  image,
+}: {
+  nullTest: NonNullable<RoadDayView["nullTest"]>;
+  image: string;
+}) {
+  const { comparisonId, state, result } = nullTest;
+  const more = (
+    <p>
+      <Link href={`/comparisons/${comparisonId}` as Route} className="link inline-flex min-h-6 items-center">
+        {result ? "The figure behind it" : "The null test"}
+      </Link>
+      {state === "stale" && ", of earlier inputs; it is being computed anew"}.
+    </p>
+  );
+  if (result) return <NullTestCard result={result} image={image} more={more} />;
+  return (
+    <Card title="Null test">
+      <p className="text-15">It is computed as the runs get their verdicts.</p>
+      {more}
+    </Card>
+  );
+}
 
 /** One day on one strip: safety first, then what to drive, the drop area, and each log's verdict as it comes. */
 export default async function RoadDayPage({ params, searchParams }: PageProps<"/road-days/[roadDay]">) {
@@ -72,6 +100,7 @@ export default async function RoadDayPage({ params, searchParams }: PageProps<"/
         blockedBecause={blockedBecause}
         initial={runs}
       />
+      {view.nullTest && chosen && <NullTestOutcome nullTest={view.nullTest} image={chosen.names.A} />}
       <Card title="Weather at the car and the car's state" id="facts">
         <RoadDayFacts roadDay={roadDay} sheetMassKg={sheetMassKg} />
         <Disclosure summary="Correct these figures" className="mt-4">
