@@ -92,7 +92,7 @@ function piecesOf(file: MdfFile, link: number, kind: string, budget: InflateBudg
 }
 
 /** Undoes the transposition: whole rows of `width` bytes were written column by column, the rest follows as it is. */
-export function transposeBack(packed: Uint8Array, width: number): Uint8Array {
+function transposeBack(packed: Uint8Array, width: number): Uint8Array {
   const rows = width > 0 ? Math.floor(packed.length / width) : 0;
   if (rows < 2 || width < 2) return packed;
   const out = new Uint8Array(packed.length);
