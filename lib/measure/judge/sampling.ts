@@ -25,7 +25,7 @@ const SPEEDS = [
 ] as const;
 
 /** Fresh samples a second by the usual distance between them; 0 for a channel that is absent. */
-export function freshRateHz(channel: SampledChannel | null): number {
+function freshRateHz(channel: SampledChannel | null): number {
   if (!channel || channel.times.length < 3) return 0;
   return 1 / median(channel.times.subarray(1).map((t, k) => t - channel.times[k]));
 }
