@@ -83,6 +83,10 @@ const settings = z
       ])
       .default("auto"),
     rpm_step: z.number().min(5).max(500).default(50),
+    rpm_ranges: z
+      .array(z.tuple([positive, positive]).refine(([from, to]) => from < to, "must rise, e.g. [2500, 4500]"))
+      .max(20)
+      .nullish(),
     level: z.number().gt(0.5).lt(1).default(0.95),
     seed: z.int().nonnegative().default(1),
     speed_pairs: known(z.array(speedPair).max(20)),
