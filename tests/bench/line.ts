@@ -13,7 +13,9 @@ export interface BenchLine {
 }
 
 const ROUNDS = 5;
-const BATCH_MS = 100;
+/** A batch of calls lasts at least this, so that a coarse clock does no harm; short work is taken in several batches. */
+const BATCH_MS = 25;
+const BATCHES = 7;
 const WARM_MS = 600;
 
 /** CPU milliseconds of one call, over as many calls as fill `leastMs`. */
@@ -30,11 +32,19 @@ function cpuMs(work: () => unknown, leastMs: number): number {
   return spentMs / calls;
 }
 
+/** The middle of several batches as the references take it; one call alone where it lasts long. */
+function middleMs(work: () => unknown): number {
+  const first = cpuMs(work, BATCH_MS);
+  if (first > 4 * BATCH_MS) return first;
+  const batches = Array.from({ length: BATCHES }, () => cpuMs(work, BATCH_MS)).sort((a, b) => a - b);
+  return batches[BATCHES >> 1];
+}
+
 /** One round: ours and the reference right after each other. */
 function round({ ours, reference }: BenchLine): number {
-  const own = cpuMs(ours, BATCH_MS);
+  const own = middleMs(ours);
   if (reference === null) return own / 1000;
-  return own / ("work" in reference ? cpuMs(reference.work, BATCH_MS) : reference.cpuMs());
+  return own / ("work" in reference ? middleMs(reference.work) : reference.cpuMs());
 }
 
 /** Warms a line up, runs its rounds and prints the middle one. Returns whether it kept its budget; null without one or when not run. */
@@ -50,7 +60,8 @@ export function printLine(line: BenchLine): boolean | null {
   const values = Array.from({ length: ROUNDS }, () => round(line)).sort((a, b) => a - b);
   const value = values[ROUNDS >> 1];
   const inside = budget === null ? null : value <= budget;
-  const verdict = inside === null ? "no budget" : `${inside ? "inside" : "OUTSIDE"} ${budget}`;
+  const verdict =
+    inside === null ? "no budget" : `${inside ? "inside" : "OUTSIDE"} ${Number(budget?.toPrecision(3))}`;
   const spread = `${values[0].toFixed(3)} to ${values[ROUNDS - 1].toFixed(3)}`;
   const same = line.agreement ? `; ${line.agreement()}` : "";
   console.log(`${value.toFixed(3).padStart(7)}  ${against} ${what}: ${verdict} (rounds ${spread}${same})`);

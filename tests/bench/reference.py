@@ -60,24 +60,24 @@ def band(load):
     kernel = np.clip(1 - distance / (pool + 1), 0, None)
     random = np.random.default_rng(1)
     rows = np.arange(len(given))[:, None]
+    # Room that every call uses again: fresh pages would cost more than the products.
+    back, weights = np.empty_like(given), np.empty(given.shape)
+    side, left, variance = (np.empty((len(given), columns)) for _ in range(3))
 
     def critical(order):
         basis = np.linalg.qr(design)[0]
         residuals = values - basis @ (basis.T @ values)
         whole = np.einsum("rk,rk->k", residuals, residuals)
-        back = np.empty_like(order)
         back[rows, order] = np.arange(runs)
-        left = None
+        left[:] = whole
         for direction in basis.T[1:]:
-            side = direction[back] @ residuals
+            np.take(direction, back, out=weights, mode="clip")
+            np.matmul(weights, residuals, out=side)
             np.square(side, out=side)
-            if left is None:
-                left = whole - side
-            else:
-                left -= side
-        variance = left @ kernel
-        variance /= kernel.sum(axis=0) * (runs - design.shape[1])
-        side /= variance
+            np.subtract(left, side, out=left)
+        np.matmul(left, kernel, out=variance)
+        np.divide(variance, kernel.sum(axis=0) * (runs - design.shape[1]), out=variance)
+        np.divide(side, variance, out=side)
         largest = np.sort(side.max(axis=1))
         return np.sqrt(largest[int(np.ceil((len(order) + 1) * level)) - 1])
 
