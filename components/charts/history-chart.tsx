@@ -70,7 +70,7 @@ export function HistoryChart({
 }
 
 /** The course in words: first, last and largest value of each quantity. */
-export function describeHistory(
+function describeHistory(
   occasions: readonly string[],
   quantities: readonly HistoryQuantity[],
 ): string {

@@ -60,7 +60,7 @@ export interface DemoStrip {
 }
 
 /** Long, level and sheltered by woods. */
-export const AIRFIELD: DemoStrip = {
+const AIRFIELD: DemoStrip = {
   name: "Old airfield, runway 04/22 (sample)",
   lengthM: 2900,
   gustMps: 0.3,

@@ -5,7 +5,7 @@ import { tQuantile } from "@/lib/signal/distributions";
 import { noncentralTCdf } from "@/lib/signal/noncentral-t";
 
 /** Chance with which a plan shows the difference it is made for, and two-sided level of what it shows. */
-export const PLANNED_POWER = 0.8;
+const PLANNED_POWER = 0.8;
 const LEVEL = 0.95;
 /** Most twins a side that fit a road day (common practice, no source); more is not one plan but several days. */
 export const MOST_TWINS = 12;

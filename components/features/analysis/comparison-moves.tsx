@@ -6,7 +6,7 @@ import { Card } from "@/components/ui/layout/card";
 import { STATE_WORD } from "@/components/ui/status/state-mark";
 import type { MovedValue, ResultMove } from "@/lib/compare/result-moves";
 import type { DeltaRegion } from "@/lib/measure/types";
-import type { ComparisonMoves } from "@/lib/services/analysis/get-moves";
+import type { ComparisonMoves } from "@/lib/services/analysis/schema";
 import { FACTOR_WORDS } from "@/lib/services/comparisons/schema";
 
 function Value({ move, of }: { move: ResultMove; of: MovedValue }) {

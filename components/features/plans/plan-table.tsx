@@ -2,7 +2,7 @@ import type { Route } from "next";
 import Link from "next/link";
 import { numberText } from "@/components/ui/data/number-text";
 import { Table } from "@/components/ui/data/table";
-import type { PlanRow } from "@/lib/services/plans/get";
+import type { PlanRow } from "@/lib/services/plans/schema";
 
 export interface PlanTableProps {
   rows: readonly PlanRow[];

@@ -8,8 +8,7 @@ import { Card } from "@/components/ui/layout/card";
 import { StateMark } from "@/components/ui/status/state-mark";
 import { type Scatter, scatterInterval } from "@/lib/compare/plan-scatter";
 import { repeatabilityLimit } from "@/lib/compare/two-means";
-import type { StripScatter } from "@/lib/services/plans/get";
-import type { ScatterDay } from "@/lib/services/plans/history";
+import type { ScatterDay, StripScatter } from "@/lib/services/plans/schema";
 
 const pct = (value: number | null | undefined) => numberText(value, { decimals: 2 });
 

@@ -5,38 +5,16 @@ import {
 } from "@/db/queries/analysis-versions";
 import { type ComparisonRow, selectComparedRevisions, selectResult } from "@/db/queries/comparisons";
 import { digestOf } from "@/lib/canonical-json";
-import { type ResultMoves, resultMoves } from "@/lib/compare/result-moves";
+import { resultMoves } from "@/lib/compare/result-moves";
 import { evaluateGates } from "@/lib/gates/evaluate-gates";
-import type { GateState } from "@/lib/gates/plan";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
-import type { CampaignResult, CampaignSettings } from "@/lib/measure/types";
+import type { CampaignResult } from "@/lib/measure/types";
+import type { ComparisonMoves, GateMove } from "@/lib/services/analysis/schema";
 import { type CurrentInput, currentInput } from "@/lib/services/comparisons/current-input";
 import { STANDARD_SETTINGS, sideLabels, toCampaignSettings } from "@/lib/services/comparisons/schema";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { gateEvidence } from "@/lib/services/gates/evidence";
 import { type LoadedProgramme, loadProgramme } from "@/lib/services/programmes/load";
-
-/** A gate whose state differs between the two computations, under the newest gate plan. */
-export interface GateMove {
-  id: string;
-  title: string;
-  before: GateState;
-  after: GateState;
-}
-
-/** One comparison that was computed under an older version. */
-export interface ComparisonMoves {
-  comparisonId: string;
-  labels: { a: string; b: string };
-  settings: CampaignSettings;
-  isNullTest: boolean;
-  oldVersion: string;
-  /** `other input`: runs, settings or sheet have changed since, so what the version alone moves can't be told. */
-  state: "told" | "being computed" | "other input";
-  moves: ResultMoves | null;
-  /** Null where no gate rests on the comparison. */
-  gates: GateMove[] | null;
-}
 
 export interface AnalysisMoves {
   programme: { id: string; name: string };

@@ -1,43 +1,22 @@
 import { selectNewestRoadDay } from "@/db/queries/road-days";
-import { type OrderCard, proposeOrder } from "@/lib/compare/order-card";
-import { type CardCost, cardCost } from "@/lib/compare/plan-cost";
-import { type PlanBasis, pooledScatter, type Scatter } from "@/lib/compare/plan-scatter";
-import {
-  MOST_TWINS,
-  type ShownBy,
-  shownBy,
-  type TwinsNeeded,
-  twinsFor,
-  twinsForInterval,
-} from "@/lib/compare/plan-twins";
+import { proposeOrder } from "@/lib/compare/order-card";
+import { cardCost } from "@/lib/compare/plan-cost";
+import { pooledScatter } from "@/lib/compare/plan-scatter";
+import { MOST_TWINS, shownBy, twinsFor, twinsForInterval } from "@/lib/compare/plan-twins";
 import { can } from "@/lib/policy/can";
 import { authorise, type Ctx } from "@/lib/services/ctx";
-import { planBasis, type ScatterDay, scatterHistory } from "@/lib/services/plans/history";
-import { type PlanQuery, readPlanQuery } from "@/lib/services/plans/schema";
+import { planBasis, scatterHistory } from "@/lib/services/plans/history";
+import {
+  type PlanRow,
+  type PlanView,
+  type RepeatabilityView,
+  readPlanQuery,
+  type StripScatter,
+} from "@/lib/services/plans/schema";
 import { loadProgramme } from "@/lib/services/programmes/load";
 
 /** Twins a side that the table lists. */
 const LISTED = [2, 3, 4, 5, 6, 7, 8];
-
-export interface PlanRow extends ShownBy {
-  cost: CardCost;
-}
-
-/** Everything the plan page shows. */
-export interface PlanView {
-  programme: { id: string; name: string };
-  query: PlanQuery;
-  basis: PlanBasis;
-  /** Road days that the scatter was pooled from. */
-  days: number;
-  needed: TwinsNeeded;
-  /** The same at both ends of what the scatter can be; null for starting values. */
-  neededBetween: { fewest: TwinsNeeded; most: TwinsNeeded } | null;
-  rows: PlanRow[];
-  chosen: PlanRow;
-  card: OrderCard;
-  mayOpenRoadDay: ReturnType<typeof can>;
-}
 
 /**
  * The plan before driving: how many twins a side show a difference, from the programme's own scatter.
@@ -75,19 +54,6 @@ export async function getPlan(
       ? { ok: false, reason: "This programme is archived." }
       : can(ctx, "road_day.edit"),
   };
-}
-
-/** The scatter of one strip over its road days. */
-export interface StripScatter {
-  stripName: string;
-  days: ScatterDay[];
-  point: Scatter | null;
-  range: Scatter | null;
-}
-
-export interface RepeatabilityView {
-  programme: { id: string; name: string };
-  strips: StripScatter[];
 }
 
 /**

@@ -1,25 +1,10 @@
 import type { Queryable } from "@/db/client";
 import { type StoredScatter, selectRoadDayPlaces, selectStoredScatter } from "@/db/queries/repeatability";
 import { digestOf } from "@/lib/canonical-json";
-import { type NullTestOutcome, nullTestOutcome } from "@/lib/compare/null-test";
+import { nullTestOutcome } from "@/lib/compare/null-test";
 import { type PlanBasis, placesSeen, pooledScatter, STARTING_SD_PCT } from "@/lib/compare/plan-scatter";
-import type { RepeatabilityResult } from "@/lib/measure/types";
 import { STANDARD_SETTINGS, toCampaignSettings } from "@/lib/services/comparisons/schema";
-
-/** What one road day says of the workshop's own scatter. */
-export interface ScatterDay {
-  roadDayId: string;
-  day: string;
-  stripName: string;
-  sample: boolean;
-  /** Null while no comparison that uses the day has a result. */
-  figures: RepeatabilityResult | null;
-  /** The comparison that the figures are from, and its analysis version. */
-  comparison: { id: string; a: number; b: number; analysisVersion: string } | null;
-  /** What came of it where the day is a null test; null on other days and while nothing is computed. */
-  nullTest: NullTestOutcome | null;
-  isNullTest: boolean;
-}
+import type { ScatterDay } from "@/lib/services/plans/schema";
 
 const STANDARD_SHA256 = digestOf(toCampaignSettings(STANDARD_SETTINGS));
 

@@ -1,6 +1,11 @@
 import type { z } from "zod";
-import { type DriveFigures, USUAL_DRIVE } from "@/lib/compare/plan-cost";
-import { MOST_TWINS } from "@/lib/compare/plan-twins";
+import type { NullTestOutcome } from "@/lib/compare/null-test";
+import type { OrderCard } from "@/lib/compare/order-card";
+import { type CardCost, type DriveFigures, USUAL_DRIVE } from "@/lib/compare/plan-cost";
+import type { PlanBasis, Scatter } from "@/lib/compare/plan-scatter";
+import { MOST_TWINS, type ShownBy, type TwinsNeeded } from "@/lib/compare/plan-twins";
+import type { RepeatabilityResult } from "@/lib/measure/types";
+import type { Verdict } from "@/lib/policy/actor";
 import { requiredNumber } from "@/lib/services/number-field";
 
 /** What a plan is asked for. It lives in the page's address, so that a link shows the same plan and nothing needs saving. */
@@ -68,4 +73,53 @@ export function readPlanQuery(query: Query, stripM: number | null): PlanQuery {
     texts,
     errors,
   };
+}
+
+/** One number of twins: what it shows and what it costs. */
+export interface PlanRow extends ShownBy {
+  cost: CardCost;
+}
+
+/** Everything the plan page shows. */
+export interface PlanView {
+  programme: { id: string; name: string };
+  query: PlanQuery;
+  basis: PlanBasis;
+  /** Road days that the scatter was pooled from. */
+  days: number;
+  needed: TwinsNeeded;
+  /** The same at both ends of what the scatter can be; null for starting values. */
+  neededBetween: { fewest: TwinsNeeded; most: TwinsNeeded } | null;
+  rows: PlanRow[];
+  chosen: PlanRow;
+  card: OrderCard;
+  mayOpenRoadDay: Verdict;
+}
+
+/** What one road day says of the workshop's own scatter. */
+export interface ScatterDay {
+  roadDayId: string;
+  day: string;
+  stripName: string;
+  sample: boolean;
+  /** Null while no comparison that uses the day has a result. */
+  figures: RepeatabilityResult | null;
+  /** The comparison that the figures are from, and its analysis version. */
+  comparison: { id: string; a: number; b: number; analysisVersion: string } | null;
+  /** What came of it where the day is a null test; null on other days and while nothing is computed. */
+  nullTest: NullTestOutcome | null;
+  isNullTest: boolean;
+}
+
+/** The scatter of one strip over its road days. */
+export interface StripScatter {
+  stripName: string;
+  days: ScatterDay[];
+  point: Scatter | null;
+  range: Scatter | null;
+}
+
+export interface RepeatabilityView {
+  programme: { id: string; name: string };
+  strips: StripScatter[];
 }

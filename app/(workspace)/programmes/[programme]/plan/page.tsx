@@ -11,7 +11,8 @@ import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { requireCtx } from "@/lib/auth/current";
 import { orNotFound } from "@/lib/http/page";
-import { getPlan, type PlanView } from "@/lib/services/plans/get";
+import { getPlan } from "@/lib/services/plans/get";
+import type { PlanView } from "@/lib/services/plans/schema";
 
 export const metadata: Metadata = { title: "Plan" };
 
