@@ -70,10 +70,7 @@ export function HistoryChart({
 }
 
 /** The course in words: first, last and largest value of each quantity. */
-function describeHistory(
-  occasions: readonly string[],
-  quantities: readonly HistoryQuantity[],
-): string {
+function describeHistory(occasions: readonly string[], quantities: readonly HistoryQuantity[]): string {
   return quantities
     .map(({ label, unit, decimals, values }) => {
       const known = values.flatMap((value, index) => (typeof value === "number" ? [{ value, index }] : []));
