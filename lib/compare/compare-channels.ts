@@ -1,5 +1,5 @@
 import { deltaBand } from "@/lib/compare/delta-band";
-import { type ComparedRun, type RunDesign, runDesign } from "@/lib/compare/run-design";
+import { type ComparedRun, carriedBy, type RunDesign, runDesign } from "@/lib/compare/run-design";
 import { LEAST_RUNS, sideEffect } from "@/lib/compare/side-effect";
 import {
   type ChannelDifference,
@@ -60,10 +60,11 @@ function compareOne(
   const all = [...new Set(runs.flatMap(({ fullLoad }) => fullLoad.rpm))].sort((x, y) => x - y);
   const rows = runs.map(({ fullLoad }) => valuesOn(all, fullLoad.rpm, fullLoad.channels[name]?.values ?? []));
   const least = design ? LEAST_RUNS : 1;
+  const carried = design && carriedBy(design);
   const kept = all.flatMap((_, k) => {
-    const at = (side: string) => rows.filter((row, r) => runs[r].side === side && row[k] !== null).length;
-    const [a, b] = [at(settings.a), at(settings.b)];
-    return a >= least && b >= least && (!design || a + b - design.columns >= 2) ? [k] : [];
+    const there = rows.flatMap((row, r) => (row[k] === null ? [] : [r]));
+    const at = (side: string) => there.filter((r) => runs[r].side === side).length;
+    return Math.min(at(settings.a), at(settings.b)) >= least && (!carried || carried(there)) ? [k] : [];
   });
   const rpm = kept.map((k) => all[k]);
   const values = rows.map((row) => kept.map((k) => row[k]));

@@ -1,6 +1,6 @@
 import { deltaBand } from "@/lib/compare/delta-band";
 import { defaultRanges, rangeMeans } from "@/lib/compare/range-means";
-import { type ComparedRun, type RunDesign, runDesign } from "@/lib/compare/run-design";
+import { type ComparedRun, carriedBy, type RunDesign, runDesign } from "@/lib/compare/run-design";
 import { LEAST_RUNS, sideEffect } from "@/lib/compare/side-effect";
 import { smoothingBias } from "@/lib/compare/smoothing-bias";
 import { findTwins } from "@/lib/compare/twins";
@@ -66,13 +66,11 @@ export function compareSides(
   const twins = findTwins(runs, (r) => logs[r]);
   const usable =
     "matrix" in design && smallest >= LEAST_RUNS && runs.length - design.columns >= 2 ? design : null;
+  const carried = usable && carriedBy(usable);
+  const least = usable ? LEAST_RUNS : 1;
   const kept = rpm.flatMap((_, k) => {
-    const [a, b] = counts[k];
-    return a >= (usable ? LEAST_RUNS : 1) &&
-      b >= (usable ? LEAST_RUNS : 1) &&
-      (!usable || a + b - usable.columns >= 2)
-      ? [k]
-      : [];
+    const there = logs.flatMap((log, r) => (Number.isNaN(log[k]) ? [] : [r]));
+    return Math.min(...counts[k]) >= least && (!carried || carried(there)) ? [k] : [];
   });
   const grid = kept.map((k) => rpm[k]);
   const empty = grid.map(() => null);
@@ -87,7 +85,7 @@ export function compareSides(
     range_means: rangeMeans(rpm, runs, settings.ranges ?? defaultRanges(grid), usable, settings),
     warnings,
   };
-  if (!usable) {
+  if (!usable || kept.length === 0) {
     const pct = kept.map((k, i) => 100 * Math.expm1(meanLog(runs, logs, settings.b, k) - meanA[i]));
     return {
       ...common,
@@ -96,7 +94,7 @@ export function compareSides(
       high_pct: empty,
       abs_nm: pct.map((p, i) => (p / 100) * Math.exp(meanA[i])),
       simultaneous: false,
-      method: noBandReason(smallest, "matrix" in design),
+      method: noBandReason(smallest, "matrix" in design, usable !== null),
       regions: [],
       resolvable_pct: empty,
       drift_pct_per_run: null,
@@ -137,7 +135,10 @@ export function compareSides(
   };
 }
 
-function noBandReason(smallest: number, separable: boolean): string {
+function noBandReason(smallest: number, separable: boolean, fits: boolean): string {
+  if (fits) {
+    return "No engine speed is covered by enough usable runs of both sides and legs, so there is nothing to compare.";
+  }
   if (smallest < LEAST_RUNS) {
     return `Difference of the sides' means only: a band needs at least ${LEAST_RUNS} usable runs a side, here a side has ${smallest}.`;
   }

@@ -97,3 +97,34 @@ export function runDesign(runs: readonly ComparedRun[], b: string): RunDesign | 
     return { warnings };
   }
 }
+
+/** Degrees of freedom that a fit must leave to tell scatter. */
+const LEAST_DF = 2;
+
+/**
+ * Tells of any rows of a design whether its model can still be fitted to them with scatter left to tell: not where they all went
+ * the same way, say, since the other leg did not reach this engine speed. Each choice of rows is tried once.
+ */
+export function carriedBy({
+  matrix,
+  columns,
+}: Pick<RunDesign, "matrix" | "columns">): (rows: readonly number[]) => boolean {
+  const known = new Map<string, boolean>();
+  const tried = (rows: readonly number[]): boolean => {
+    if (rows.length - columns < LEAST_DF) return false;
+    const x = Float64Array.from(rows.flatMap((r) => [...matrix.subarray(r * columns, (r + 1) * columns)]));
+    try {
+      leastSquares(x, new Float64Array(rows.length), columns);
+      return true;
+    } catch (error) {
+      if (!(error instanceof InvalidInputError)) throw error;
+      return false;
+    }
+  };
+  return (rows) => {
+    const key = rows.join();
+    const found = known.get(key) ?? tried(rows);
+    known.set(key, found);
+    return found;
+  };
+}

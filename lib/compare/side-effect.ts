@@ -1,4 +1,4 @@
-import type { ComparedRun, RunDesign } from "@/lib/compare/run-design";
+import { type ComparedRun, carriedBy, type RunDesign } from "@/lib/compare/run-design";
 import { tQuantile } from "@/lib/signal/distributions";
 import { leastSquares } from "@/lib/signal/least-squares";
 
@@ -33,7 +33,7 @@ export function sideEffect(
   const [a, b] = [of(settings.a), of(settings.b)];
   const counts = { nA: a.length, nB: b.length };
   if (a.length === 0 || b.length === 0) return null;
-  if (!design || Math.min(a.length, b.length) < LEAST_RUNS || rows.length - design.columns < 2) {
+  if (!design || Math.min(a.length, b.length) < LEAST_RUNS || !carriedBy(design)(rows)) {
     return { effect: average(b) - average(a), half: null, resolvable: null, ...counts };
   }
   const x = Float64Array.from(

@@ -5,7 +5,7 @@ const LEAST_REGION_RPM = 100;
 
 /**
  * Engine-speed regions in which the whole band lies above zero (gain) or below (loss). `rpm` rises; NaN low or high ends a
- * region. Regions narrower than `LEAST_REGION_RPM` are left out.
+ * region, and so does a hole in `rpm`, where too few runs were compared. Regions narrower than `LEAST_REGION_RPM` are left out.
  */
 export function verdictRegions(
   rpm: readonly number[],
@@ -13,10 +13,12 @@ export function verdictRegions(
   high: ArrayLike<number>,
 ): DeltaRegion[] {
   const regions: DeltaRegion[] = [];
+  const step = rpm.slice(1).reduce((least, x, k) => Math.min(least, x - rpm[k]), Number.POSITIVE_INFINITY);
   let current: DeltaRegion | null = null;
   rpm.forEach((x, k) => {
     const verdict = low[k] > 0 ? "gain" : high[k] < 0 ? "loss" : null;
-    if (current && verdict === current.verdict) current.to_rpm = x;
+    const goesOn = k > 0 && x - rpm[k - 1] < 1.5 * step;
+    if (current && goesOn && verdict === current.verdict) current.to_rpm = x;
     else {
       current = verdict && { from_rpm: x, to_rpm: x, verdict };
       if (current) regions.push(current);

@@ -55,6 +55,26 @@ describe("Comparison of two sides", () => {
     expect(delta?.pct.every((x) => x !== null)).toBe(true);
   });
 
+  it("gives no band where one leg alone reaches, since drift of the wind can't be told there", () => {
+    const runs = pulls("ABBABAABABBA", "+-+-+-+-+-+-", 0, 1).map((run) => ({
+      ...run,
+      engineNm: run.engineNm.map((nm, k) => (run.leg === "back" && RPM[k] > 4000 ? null : nm)),
+    }));
+    const delta = compareSides(RPM, runs, SETTINGS);
+    expect(delta?.rpm).toEqual(RPM.filter((n) => n <= 4000));
+    expect(delta?.simultaneous).toBe(true);
+  });
+
+  it("compares nothing where the sides share no engine speed", () => {
+    const runs = pulls("ABBABAABABBA", "+-+-+-+-+-+-", 0, 1).map((run) => ({
+      ...run,
+      engineNm: run.engineNm.map((nm, k) => (RPM[k] > 3500 === (run.side === "A") ? nm : null)),
+    }));
+    const delta = compareSides(RPM, runs, SETTINGS);
+    expect(delta).toMatchObject({ rpm: [], pct: [], simultaneous: false, regions: [] });
+    expect(delta?.method).toMatch(/^No engine speed is covered/);
+  });
+
   it("uses Bonferroni's t when a side has three runs", () => {
     const delta = compareSides(RPM, pulls("ABBABA", "+-+-+-", 0, 1), SETTINGS);
     expect(delta?.method).toMatch(/Bonferroni t.*a side has only three runs/);

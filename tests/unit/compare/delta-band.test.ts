@@ -171,4 +171,18 @@ describe("Verdict regions", () => {
     ]);
     expect(verdictRegions([2000, 2050], [Number.NaN, 1], [Number.NaN, 2])).toEqual([]);
   });
+
+  it("claims nothing across engine speeds that were not compared", () => {
+    const rpm = [2000, 2050, 2100, 3000, 3050, 3100];
+    expect(
+      verdictRegions(
+        rpm,
+        rpm.map(() => 1),
+        rpm.map(() => 2),
+      ),
+    ).toEqual([
+      { from_rpm: 2000, to_rpm: 2100, verdict: "gain" },
+      { from_rpm: 3000, to_rpm: 3100, verdict: "gain" },
+    ]);
+  });
 });
