@@ -64,18 +64,23 @@ function bandVerdict(
         : "The revision does not gain what the plan asks for; change the revision or the plan.",
     );
   }
-  const step = delta.rpm.length > 1 ? delta.rpm[1] - delta.rpm[0] : 0;
+  // Engine speeds that too few runs carry are not in the comparison at all, so holes are told by the finest step.
+  const steps = delta.rpm.slice(1).map((rpm, k) => rpm - delta.rpm[k]);
+  const step = steps.length > 0 ? Math.min(...steps) : 0;
+  const hole = points.findIndex((p, k) => k > 0 && p.rpm - points[k - 1].rpm > 1.5 * step);
   const covered =
     points.length > 0 && points[0].rpm <= from + step && points[points.length - 1].rpm >= to - step;
   const gap = points.find((p) => p.low === null);
-  if (!covered || gap || !delta.simultaneous) {
+  if (!covered || gap || hole > 0 || !delta.simultaneous) {
     const why = !delta.simultaneous
       ? `There is no simultaneous band. ${delta.method}`
       : gap
         ? `At ${figure(gap.rpm, 0)} per minute there is no band.`
         : points.length === 0
           ? "The pulls do not reach this region."
-          : `The band covers ${span(points[0].rpm, points[points.length - 1].rpm)} only.`;
+          : covered
+            ? `Too few pulls cover ${span(points[hole - 1].rpm, points[hole].rpm)}: there is no band in between.`
+            : `The band covers ${span(points[0].rpm, points[points.length - 1].rpm)} only.`;
     return tooLittle(why, "Drive further twins that cover the whole region at full load.");
   }
   const open = points.filter((p) => (p.low ?? 0) < limitPct);

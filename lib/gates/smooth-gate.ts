@@ -47,6 +47,14 @@ function verdictOn(smoothness: Smoothness, withinPct: number): Verdict {
     return notMet(`${at(clear)}.`, "Look at the maps around this engine speed; make a new revision.");
   const open = worstBy((point) => point.size + point.half);
   const judged = `judged from ${figure(points[0].rpm, 0)} to ${figure(last.rpm, 0)} per minute`;
+  const unjudged = smoothness.rpm.find(
+    (rpm, k) => rpm > points[0].rpm && rpm < last.rpm && smoothness.deviation_pct[k] === null,
+  );
+  if (open.size + open.half <= withinPct && unjudged !== undefined)
+    return tooLittle(
+      `${at(open)}; ${judged}, but not at ${figure(unjudged, 0)} per minute, where too few pulls give a curve.`,
+      "Drive further twins that cover the whole range at full load.",
+    );
   return open.size + open.half <= withinPct
     ? met(`${at(open)}, nowhere more; ${judged}.`)
     : tooLittle(`${at(open)}; ${judged}.`, "Drive further twins: the interval gets narrower with every one.");

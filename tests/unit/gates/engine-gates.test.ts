@@ -127,6 +127,17 @@ describe("Smooth curve", () => {
     expect(one(gate, smooth(deviation, half)).state).toBe(state);
   });
 
+  it("is too little where the curve has a hole inside the judged range", () => {
+    const smoothness = {
+      rpm: [3000, 3050, 3100],
+      deviation_pct: [0.1, null, 0.1],
+      half_width_pct: [0.5, null, 0.5],
+    };
+    const found = one(gate, evidence([fullLoad()], {}, { smoothness }));
+    expect(found.state).toBe("too_little");
+    expect(found.why).toContain("3,050 per minute");
+  });
+
   it("is too little with few pulls, without any, and on an older result", () => {
     expect(one(gate, evidence([fullLoad()], {}, { smoothness: null })).state).toBe("too_little");
     expect(one(gate, evidence([fullLoad()])).next).toBe("Recompute the comparison.");

@@ -149,6 +149,14 @@ describe("Decision rule on the band", () => {
     expect(one(NO_LOSS, cut).state).toBe("too_little");
     expect(one(NO_LOSS, cut).why).toContain("only");
   });
+
+  it("is too little where engine speeds inside the region were not compared at all", () => {
+    const holed = RPM.filter((n) => n < 3500 || n > 4000);
+    const changes = { rpm: holed, low_pct: holed.map(() => 0), high_pct: holed.map(() => 2) };
+    const found = one(NO_LOSS, evidence(changes));
+    expect(found.state).toBe("too_little");
+    expect(found.why).toContain("3,450 to 4,050 per minute");
+  });
 });
 
 describe("Sprint", () => {
