@@ -1,6 +1,6 @@
 import { and, asc, desc, eq, inArray, isNull, ne, or, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
-import { comparisonResults, comparisons, revisions, roadDays, runs, users } from "@/db/tables";
+import { channelKeys, comparisonResults, comparisons, revisions, roadDays, runs, users } from "@/db/tables";
 
 export type ComparisonRow = typeof comparisons.$inferSelect;
 export type ComparisonResultRow = typeof comparisonResults.$inferSelect;
@@ -124,6 +124,8 @@ export async function selectComparedRuns(
       logSha256: runs.logSha256,
       logFileName: runs.logFileName,
       logBytes: runs.logBytes,
+      channelKeyId: runs.channelKeyId,
+      channelKey: channelKeys.key,
       state: runs.state,
       setAsideAt: runs.setAsideAt,
       setAsideReason: runs.setAsideReason,
@@ -143,6 +145,7 @@ export async function selectComparedRuns(
     .from(runs)
     .innerJoin(roadDays, eq(roadDays.id, runs.roadDayId))
     .innerJoin(users, eq(users.id, runs.testerId))
+    .leftJoin(channelKeys, eq(channelKeys.id, runs.channelKeyId))
     .where(
       and(
         eq(runs.workspaceId, workspaceId),

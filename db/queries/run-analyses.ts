@@ -1,6 +1,6 @@
 import { and, desc, eq, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
-import { type decisions, roadDays, runAnalyses, runs } from "@/db/tables";
+import { channelKeys, type decisions, roadDays, runAnalyses, runs } from "@/db/tables";
 
 export type RunAnalysisRow = typeof runAnalyses.$inferSelect;
 type Key = { workspaceId: string; runId: string };
@@ -8,9 +8,10 @@ type Key = { workspaceId: string; runId: string };
 /** What a run's verdict is computed from, beside its log and the vehicle sheet. */
 export async function selectRunForJudging(db: Queryable, key: Key) {
   const [row] = await db
-    .select({ run: runs, massKg: roadDays.massKg })
+    .select({ run: runs, massKg: roadDays.massKg, channelKey: channelKeys.key })
     .from(runs)
     .innerJoin(roadDays, eq(roadDays.id, runs.roadDayId))
+    .leftJoin(channelKeys, eq(channelKeys.id, runs.channelKeyId))
     .where(and(eq(runs.workspaceId, key.workspaceId), eq(runs.id, key.runId)));
   return row ?? null;
 }

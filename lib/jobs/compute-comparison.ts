@@ -29,7 +29,7 @@ async function readLogs(
     const log = await readStoredLog(
       { store: system.store, workspaceId },
       { sha256: run.logSha256, sizeBytes: run.logBytes },
-      { fileName: run.logFileName, drive },
+      { fileName: run.logFileName, drive, key: run.channelKey ?? undefined },
     ).catch((error) => {
       throw new UnavailableError(
         "log_unavailable",

@@ -5,7 +5,8 @@ import { digestOf } from "@/lib/canonical-json";
 import { FileRefusedError } from "@/lib/errors";
 import type { System } from "@/lib/jobs/system";
 import { logger } from "@/lib/logger";
-import type { LogTable } from "@/lib/logs/types";
+import { MAX_REFUSED_LISTED } from "@/lib/logs/delimited/collect-rows";
+import type { ChannelKey, LogTable } from "@/lib/logs/types";
 import { analyseRun } from "@/lib/measure/analyse-campaign";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
 import { runTraces } from "@/lib/measure/run/run-traces";
@@ -29,6 +30,8 @@ interface JudgeInput {
   analysisVersion: string;
   sheetVersion: number;
   logSha256: string;
+  /** Absent where the log is read by what it says alone. */
+  channelKey?: { id: string; key: ChannelKey };
   vehicle: CampaignVehicle;
   run: CampaignRun;
   settings: CampaignSettings;
@@ -43,13 +46,14 @@ async function readInput(
   const { workspaceId } = job;
   const found = await selectRunForJudging(db, job);
   if (!found) return null;
-  const { run, massKg } = found;
+  const { run, massKg, channelKey } = found;
   const sheet = await selectVehicleSheet(db, { workspaceId, programmeId: run.programmeId });
   if (!sheet) return null;
   const input: JudgeInput = {
     analysisVersion: ANALYSIS_VERSION,
     sheetVersion: sheet.version,
     logSha256: run.logSha256,
+    ...(run.channelKeyId !== null && channelKey && { channelKey: { id: run.channelKeyId, key: channelKey } }),
     vehicle: toCampaignVehicle(sheet.figures, massKg),
     run: {
       id: String(run.number),
@@ -66,13 +70,21 @@ async function readInput(
   return { found, input, inputSha256: digestOf(input) };
 }
 
+/** What the run page shows of the rows that the run goes on without. */
+function refusedRowsOf({ rowsRefused }: LogTable): Pick<RunTraces, "refusedRows"> {
+  const total = rowsRefused.length;
+  if (total === 0) return {};
+  return { refusedRows: { total, atLeast: total >= MAX_REFUSED_LISTED, first: rowsRefused.slice(0, 5) } };
+}
+
 /** Analyses a log. One that is refused is a verdict, not an error. */
 function judge(
   input: JudgeInput,
   log: LogTable | FileRefusedError,
 ): { result: RunResult; traces: RunTraces | null } {
   const result = analyseRun(input.vehicle, input.run, log, input.settings);
-  return { result, traces: log instanceof FileRefusedError ? null : runTraces(log, result) };
+  if (log instanceof FileRefusedError) return { result, traces: null };
+  return { result, traces: { ...runTraces(log, result), ...refusedRowsOf(log) } };
 }
 
 /** Keeps the verdict, unless the run or the sheet has changed meanwhile: then a later job brings the one that counts. */
@@ -113,7 +125,7 @@ export async function judgeRun(system: System, job: JudgeJob): Promise<void> {
   const log = await readStoredLog(
     { store: system.store, workspaceId: job.workspaceId },
     { sha256: input.logSha256, sizeBytes: found.run.logBytes },
-    { fileName: input.run.file, drive: input.vehicle.drive },
+    { fileName: input.run.file, drive: input.vehicle.drive, key: input.channelKey?.key },
   );
   const verdict = judge(input, log);
   await keep(system, job, { input, inputSha256, ...verdict });

@@ -48,7 +48,8 @@ function usualRate(timeS: Float64Array): number {
   return step > 0 ? Math.round(1e6 / step) / 1e6 : 0;
 }
 
-function channelReport(channel: LogChannel, table: LogTable): ChannelReport {
+/** What was understood of one channel. */
+export function channelReport(channel: LogChannel, table: LogTable): ChannelReport {
   const present = channel.values.filter((value) => !Number.isNaN(value)).sort();
   return {
     column: channel.column,

@@ -10,9 +10,11 @@ import {
 import { sniffLog } from "@/lib/logs/sniff-log";
 import type { LogTable } from "@/lib/logs/types";
 
-type Pieces = AsyncIterator<Uint8Array, unknown>;
+/** Bytes of a file in order. */
+export type Pieces = AsyncIterator<Uint8Array, unknown>;
 
-function joined(pieces: readonly Uint8Array[]): Uint8Array {
+/** The pieces as one. */
+export function joined(pieces: readonly Uint8Array[]): Uint8Array {
   const whole = new Uint8Array(pieces.reduce((sum, piece) => sum + piece.length, 0));
   let at = 0;
   for (const piece of pieces) {
@@ -23,7 +25,10 @@ function joined(pieces: readonly Uint8Array[]): Uint8Array {
 }
 
 /** At least the first `atLeast` bytes, or all there are. */
-async function take(pieces: Pieces, atLeast: number): Promise<{ head: Uint8Array; complete: boolean }> {
+export async function take(
+  pieces: Pieces,
+  atLeast: number,
+): Promise<{ head: Uint8Array; complete: boolean }> {
   const taken: Uint8Array[] = [];
   let size = 0;
   while (size < atLeast) {
@@ -50,7 +55,7 @@ async function feed(gunzip: Gunzip, head: Uint8Array, pieces: Pieces): Promise<v
 }
 
 /** Unpacks piece by piece. @throws FileRefusedError `inflates_too_large`, `gzip_damaged`; what the source throws as it is */
-async function* inflated(head: Uint8Array, pieces: Pieces, limit: number): AsyncGenerator<Uint8Array> {
+export async function* inflated(head: Uint8Array, pieces: Pieces, limit: number): AsyncGenerator<Uint8Array> {
   const gunzip = createGunzip();
   let sourceError: unknown = null;
   const fed = feed(gunzip, head, pieces).catch((error) => {
@@ -100,7 +105,7 @@ export async function readLogStream(
     for (let next = await pieces.next(); !next.done; next = await pieces.next()) rest.push(next.value);
     return readLog(joined(rest), options);
   }
-  const reader = openDelimited(head, size, options.key ?? {}, options.drive);
+  const reader = openDelimited(head, size, options.key ?? {}, options.drive, options.maxRefusedRows);
   reader.push(head);
   for (let next = await pieces.next(); !next.done; next = await pieces.next()) reader.push(next.value);
   return reader.finish();

@@ -37,6 +37,8 @@ export interface ReadLogOptions {
   fileName?: string;
   /** Driven axle: tells front and rear wheel speeds apart. Without it they stay free channels, with a problem entry. */
   drive?: "FWD" | "RWD" | "AWD";
+  /** Refused rows that are listed; 1,000 when absent. */
+  maxRefusedRows?: number;
   /** Size that a packed log may grow to; 256 MiB when absent. */
   maxInflatedBytes?: number;
 }
@@ -91,7 +93,13 @@ export function readLog(bytes: Uint8Array, options: ReadLogOptions = {}): LogTab
   if (sniffed.kind === "nmea") return readNmea(content, options.key ?? {});
   if (sniffed.kind === "gpx") return readGpx(content, options.key ?? {});
   const head = content.subarray(0, HEAD_BYTES);
-  const reader = openDelimited(head, content.length, options.key ?? {}, options.drive);
+  const reader = openDelimited(
+    head,
+    content.length,
+    options.key ?? {},
+    options.drive,
+    options.maxRefusedRows,
+  );
   reader.push(content);
   return reader.finish();
 }

@@ -59,6 +59,11 @@ export const RULES = {
   "run.set_aside": { row: "N04", doing: "set this run aside", cells: { tester: "own", lead: "allow" } },
   "run.bring_back": { row: "N05", doing: "bring this run back", cells: { lead: "allow" } },
   "run.download": { row: "N06", doing: "download logs", cells: staff },
+  "channel_key.save": {
+    row: "K05",
+    doing: "choose the columns of a log",
+    cells: { tester: "allow", calibrator: "allow" },
+  },
   "comparison.settings": { row: "N08", doing: "set analysis settings", cells: staff },
   "comparison.view": { row: "C01", doing: "see this comparison", cells: { reader: "granted", ...staff } },
   "comparison.export": {

@@ -26,9 +26,12 @@ export interface CollectOptions {
   decode: (bytes: Uint8Array) => string;
   /** A guess, for the memory taken at first. */
   expectedRows: number;
+  /** Refused rows that are listed; the rest is counted only. */
+  listAtMost?: number;
 }
 
-const MAX_REFUSED_LISTED = 1000;
+/** Refused rows that are listed unless more are asked for. */
+export const MAX_REFUSED_LISTED = 1000;
 /** Jumps back beyond this many are the mark of a column that is no time. */
 const MAX_STARTS = 10_000;
 
@@ -41,7 +44,7 @@ export const hasNumber = (column: Float64Array): boolean => column.some((value) 
  * counted. One pass; memory is that of the columns.
  */
 export function createCollector(options: CollectOptions) {
-  const { form, timeIndex, timeForm, lineEnd, decode } = options;
+  const { form, timeIndex, timeForm, lineEnd, decode, listAtMost = MAX_REFUSED_LISTED } = options;
   const width = form.titles.length;
   const { decimal } = form;
   const store = createColumnStore(width, options.expectedRows);
@@ -56,7 +59,7 @@ export function createCollector(options: CollectOptions) {
 
   const refuse = (row: RefusedRow) => {
     refusedCount++;
-    if (refused.length < MAX_REFUSED_LISTED) refused.push(row);
+    if (refused.length < listAtMost) refused.push(row);
   };
   const isHead = (cells: readonly string[], head: readonly string[] | null) =>
     head?.every((title, c) => (cells[c] ?? "").trim() === title) ?? false;

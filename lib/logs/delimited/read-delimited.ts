@@ -119,12 +119,14 @@ export interface DelimitedReader {
  * Reader of a delimited text log (CSV and its relatives). Its form is settled from `head`, the first HEAD_BYTES or the whole
  * file; then every byte is pushed, those of the head as well. Throws FileRefusedError here or later; see readLog.
  * @param sizeBytes size of the file, null where it is not known before its end
+ * @param listAtMost refused rows that are listed; 1,000 when absent
  */
 export function openDelimited(
   head: Uint8Array,
   sizeBytes: number | null,
   key: ChannelKey,
   drive?: Drive,
+  listAtMost?: number,
 ): DelimitedReader {
   const complete = head.length === sizeBytes;
   const text = openText(head, complete, key.encoding);
@@ -139,6 +141,7 @@ export function openDelimited(
     timeForm: time.form,
     lineEnd: text.head.includes("\n") ? "\n" : "\r",
     decode: text.decode,
+    listAtMost,
     expectedRows: guessRows(text.head, sizeBytes, form.titles.length),
   });
   return {

@@ -37,6 +37,8 @@ function runFields(run: ComparedRun): Record<string, unknown> {
     pressure: run.pressureHpa,
     humidity: run.humidityPct,
     mass: run.massKg,
+    // Left out where there is none, so that inputs from before there were keys keep their digests.
+    ...(run.channelKeyId !== null && { "channel key": run.channelKeyId }),
   };
 }
 

@@ -3,6 +3,8 @@ import type { RoadDayRow } from "@/db/queries/road-days";
 import { insertRun, selectRunWithLog, selectTakenPlaces, takeRunNumber } from "@/db/queries/runs";
 import { ConflictError, InvalidInputError } from "@/lib/errors";
 import { enqueueJob } from "@/lib/jobs/enqueue";
+import { requireFitting } from "@/lib/services/channel-keys/apply";
+import { headerOfLog } from "@/lib/services/channel-keys/run-head";
 import { findOrOpen } from "@/lib/services/comparisons/question";
 import { STANDARD_SETTINGS } from "@/lib/services/comparisons/schema";
 import { authorise, type Ctx } from "@/lib/services/ctx";
@@ -85,7 +87,7 @@ async function requireNew(tx: Transaction, roadDay: RoadDayRow, input: AttachRun
  * Makes a run of an uploaded log and has it judged: the bytes are under their fingerprint before any row names them, and
  * run, ledger entry and job commit together. The same key gives the same run again.
  * @throws ForbiddenError; NotFoundError; InvalidInputError; ConflictError `checklist_open`, `wrong_state`,
- *   `already_attached`, `place_taken` (details.number = the run in the way)
+ *   `already_attached`, `place_taken` (details.number = the run in the way); InvalidInputError `key_does_not_fit`
  */
 export async function attachRun(
   ctx: Ctx,
@@ -95,6 +97,7 @@ export async function attachRun(
   authorise(ctx, "run.attach");
   const { uploadId } = input;
   const sealed = await sealUpload(ctx, { uploadId, purpose: "log" });
+  const headerSha256 = await headerOfLog(ctx, sealed.sha256);
   const attached = await once(ctx, { key: idempotencyKey, request: input }, async (tx, inner) => {
     const { workspaceId, userId } = inner;
     const roadDay = await loadRoadDay(inner, input.roadDayId);
@@ -104,6 +107,7 @@ export async function attachRun(
     requireChecklist(roadDay);
     const revision = await requireDrivable(tx, inner, input, roadDay);
     const letter = requireLetter(roadDay, input);
+    const key = input.channelKeyId ? await requireFitting(inner, input.channelKeyId, headerSha256) : null;
     // Its row lock also puts attachments of the workspace one after the other, so the checks below can't race.
     const number = await takeRunNumber(tx, { workspaceId });
     await requireNew(tx, roadDay, input, sealed);
@@ -128,6 +132,8 @@ export async function attachRun(
       logSha256: sealed.sha256,
       logFileName: sealed.fileName,
       logBytes: sealed.sizeBytes,
+      headerSha256,
+      channelKeyId: key?.id ?? null,
       testerId: userId,
       sample: sample ?? false,
     });
@@ -149,6 +155,7 @@ export async function attachRun(
         ...(letter && { letter }),
         gear,
         vehicleSheet: sheet.version,
+        ...(key && { channelKey: { name: key.name, version: key.version } }),
         clock: startedAt === null ? "the log's own" : "typed",
       },
     });

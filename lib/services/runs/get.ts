@@ -1,3 +1,4 @@
+import { selectChannelKey } from "@/db/queries/channel-keys";
 import { selectDecisionsOfProgramme } from "@/db/queries/decisions";
 import { selectUser } from "@/db/queries/people";
 import { selectLineage } from "@/db/queries/programme-overview";
@@ -27,6 +28,7 @@ export interface RunActs {
   bringBack: string | null;
   editNote: string | null;
   download: string | null;
+  chooseColumns: string | null;
 }
 
 async function actsOn(ctx: Ctx, run: RunRow, cited: string | null): Promise<RunActs> {
@@ -38,6 +40,7 @@ async function actsOn(ctx: Ctx, run: RunRow, cited: string | null): Promise<RunA
     bringBack: reason(canBringBack(ctx, { setAsideBy: run.setAsideBy, otherActive })) ?? cited,
     editNote: reason(can(ctx, "run.edit", own)) ?? cited,
     download: reason(can(ctx, "run.download")),
+    chooseColumns: reason(can(ctx, "channel_key.save")) ?? cited,
   };
 }
 
@@ -76,15 +79,17 @@ export async function getRun(ctx: Ctx, runId: string) {
   const { workspaceId, db } = ctx;
   const { revisionId } = run;
   const { programme, sheet } = await loadProgramme(ctx, run.programmeId);
-  const [roadDay, revision, analyses, allCiting, allCompared, tester, setAsideBy] = await Promise.all([
-    loadRoadDay(ctx, run.roadDayId),
-    selectRevision(db, { workspaceId, revisionId }),
-    selectRunAnalyses(db, { workspaceId, runId }),
-    selectCitingRecords(db, { workspaceId, runIds: [runId] }),
-    selectComparisonsWithRevision(db, { workspaceId, revisionId }),
-    selectUser(db, { userId: run.testerId }),
-    run.setAsideBy ? selectUser(db, { userId: run.setAsideBy }) : null,
-  ]);
+  const [roadDay, revision, analyses, allCiting, allCompared, tester, setAsideBy, channelKey] =
+    await Promise.all([
+      loadRoadDay(ctx, run.roadDayId),
+      selectRevision(db, { workspaceId, revisionId }),
+      selectRunAnalyses(db, { workspaceId, runId }),
+      selectCitingRecords(db, { workspaceId, runIds: [runId] }),
+      selectComparisonsWithRevision(db, { workspaceId, revisionId }),
+      selectUser(db, { userId: run.testerId }),
+      run.setAsideBy ? selectUser(db, { userId: run.setAsideBy }) : null,
+      run.channelKeyId ? selectChannelKey(db, { workspaceId, channelKeyId: run.channelKeyId }) : null,
+    ]);
   if (!revision) throw noRevision();
   const all = { citing: allCiting, comparisons: allCompared };
   const { citing, comparisons } = await releasedOnly(ctx, programme.id, all);
@@ -102,6 +107,7 @@ export async function getRun(ctx: Ctx, runId: string) {
     roadDay,
     testerName: tester?.name ?? "somebody",
     setAsideByName: setAsideBy?.name ?? null,
+    channelKey: channelKey && { name: channelKey.name, version: channelKey.version },
     verdict,
     next: run.state === "refused" ? nextStep(verdict?.result.reasons[0]?.code) : null,
     newestSheetVersion: sheet.version,

@@ -24,6 +24,8 @@ export const attachRunSchema = z.strictObject({
   tempC: z.number().min(-40).max(60).optional(),
   pressureHpa: z.number().min(550).max(1_090).optional(),
   humidityPct: z.number().min(0).max(100).optional(),
+  /** The saved key that the log is read with; it must be of the log's header. */
+  channelKeyId: z.uuid().nullish(),
 });
 export type AttachRunForm = z.input<typeof attachRunSchema>;
 export type AttachRun = z.output<typeof attachRunSchema>;

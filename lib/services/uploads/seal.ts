@@ -20,7 +20,7 @@ const wasCancelled = () =>
   new ConflictError("upload_closed", "This upload was cancelled. Choose the file again.");
 
 /** The bytes of an upload in order, from its parts in the store. */
-async function* readStaged(ctx: Pick<Ctx, "store">, row: Pick<UploadRow, "stagingKey">): ByteSource {
+export async function* readStaged(ctx: Pick<Ctx, "store">, row: Pick<UploadRow, "stagingKey">): ByteSource {
   const prefix = prefixOf(parseStagingKey(row.stagingKey));
   let after: string | undefined;
   do {

@@ -1,8 +1,10 @@
 "use client";
 
 import { useQuery, useQueryClient } from "@tanstack/react-query";
+import type { Route } from "next";
 import Link from "next/link";
 import { useState } from "react";
+import { UploadReadingLine } from "@/components/features/channel-keys/upload-reading";
 import { RunFields, type RunFieldValues } from "@/components/features/runs/run-fields";
 import { VerdictMark } from "@/components/features/runs/verdict-mark";
 import { UploadList } from "@/components/features/uploads/upload-list";
@@ -46,6 +48,7 @@ export function DropLogs(props: DropLogsProps) {
   const runsQuery = roadDayRunsQuery(roadDayId);
   const { data } = useQuery(runsQuery);
   const [fields, setFields] = useState<Record<string, RunFieldValues>>({});
+  const [keys, setKeys] = useState<Record<string, string | null>>({});
   const [made, setMade] = useState<Record<string, AttachedRun>>({});
   const change = (id: string, values: Partial<RunFieldValues>) =>
     setFields((all) => {
@@ -80,7 +83,13 @@ export function DropLogs(props: DropLogsProps) {
     uploads.attach(item, async (uploadId, idempotencyKey) => {
       const values = fields[item.id];
       const letter = letters && values ? letterAt(card, values.driveOrder) : null;
-      const asked = attachRunSchema.safeParse({ uploadId, roadDayId, ...values, letter });
+      const asked = attachRunSchema.safeParse({
+        uploadId,
+        roadDayId,
+        ...values,
+        letter,
+        channelKeyId: keys[item.id] ?? null,
+      });
       if (!asked.success) throw new Error(asked.error.issues[0]?.message ?? "Fill the fields in first.");
       try {
         const answer = await callApi("/api/runs", { method: "POST", json: asked.data, idempotencyKey });
@@ -124,14 +133,25 @@ export function DropLogs(props: DropLogsProps) {
           const values = fields[item.id];
           return (
             values && (
-              <RunFields
-                fileName={item.file.name}
-                values={values}
-                revisions={revisions}
-                gears={gears}
-                cardSays={cardSays(values)}
-                onChange={(changed) => change(item.id, changed)}
-              />
+              <div className="flex flex-col gap-3">
+                {item.uploadId && item.phase === "sent" && (
+                  <UploadReadingLine
+                    uploadId={item.uploadId}
+                    roadDayId={roadDayId}
+                    fileName={item.file.name}
+                    usedKeyId={keys[item.id] ?? null}
+                    onUse={(key) => setKeys((all) => ({ ...all, [item.id]: key?.id ?? null }))}
+                  />
+                )}
+                <RunFields
+                  fileName={item.file.name}
+                  values={values}
+                  revisions={revisions}
+                  gears={gears}
+                  cardSays={cardSays(values)}
+                  onChange={(changed) => change(item.id, changed)}
+                />
+              </div>
             )
           );
         }}
@@ -172,6 +192,9 @@ function Outcome({
           Run {run.number}
         </Link>
         <VerdictMark verdict={line?.verdict ?? "waiting"} setAside={line?.setAside ?? false} />
+        <Link href={`/runs/${run.runId}/channel-key` as Route} className="link">
+          Choose columns
+        </Link>
       </p>
       {line?.why.map((sentence) => (
         <p key={sentence}>{sentence}</p>

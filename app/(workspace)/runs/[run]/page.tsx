@@ -2,6 +2,7 @@ import { Download } from "lucide-react";
 import type { Metadata, Route } from "next";
 import { RunActsCard } from "@/app/(workspace)/runs/[run]/run-acts";
 import { RunBasis } from "@/app/(workspace)/runs/[run]/run-basis";
+import { RefusedRowsCard } from "@/components/features/runs/refused-rows";
 import { RunBudget } from "@/components/features/runs/run-budget";
 import { RunCurveChart, RunTraceChart } from "@/components/features/runs/run-charts";
 import { RunFacts } from "@/components/features/runs/run-facts";
@@ -83,6 +84,13 @@ export default async function RunPage({ params }: PageProps<"/runs/[run]">) {
             hasTraces={verdict?.traces != null}
             setAside={setAsideOf(view)}
           />
+          {verdict?.traces?.refusedRows && (
+            <RefusedRowsCard
+              runId={run.id}
+              refused={verdict.traces.refusedRows}
+              blockedBecause={acts.download}
+            />
+          )}
           {result?.usable && (
             <Card title="Figures of this run alone" description="± is about 95 %." id="figures">
               <div className="flex flex-col gap-6">

@@ -1,3 +1,4 @@
+import type { Route } from "next";
 import Link from "next/link";
 import { DateTime } from "@/components/ui/data/date-time";
 import { DescriptionList } from "@/components/ui/data/description-list";
@@ -7,7 +8,7 @@ import type { RunView } from "@/lib/services/runs/get";
 
 /** What the verdict was computed with, and where the run is used. */
 export function RunBasis({ view }: { view: RunView }) {
-  const { verdict, newestSheetVersion, comparisons, records, programme, roadDay } = view;
+  const { verdict, newestSheetVersion, comparisons, records, programme, roadDay, channelKey, acts } = view;
   const isOld = verdict !== null && verdict.sheetVersion < newestSheetVersion;
   return (
     <Card title="Computed with, used in" id="basis">
@@ -39,6 +40,23 @@ export function RunBasis({ view }: { view: RunView }) {
           {
             term: "Input",
             description: verdict ? <Fingerprint value={verdict.inputSha256} /> : "not judged yet",
+          },
+          {
+            term: "Channel key",
+            description: (
+              <span className="flex flex-wrap gap-x-4">
+                <span>
+                  {channelKey
+                    ? `${channelKey.name} v${channelKey.version}`
+                    : "none: read by what the log says alone"}
+                </span>
+                {acts.chooseColumns === null && (
+                  <Link href={`/runs/${view.run.id}/channel-key` as Route} className="link">
+                    Choose columns
+                  </Link>
+                )}
+              </span>
+            ),
           },
           {
             term: "Losses",

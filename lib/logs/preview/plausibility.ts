@@ -1,0 +1,75 @@
+import { CHANNEL_UNITS } from "@/lib/logs/channel-names";
+import { channelWords } from "@/lib/logs/channel-words";
+import type { KnownChannel } from "@/lib/logs/types";
+
+/** What a look at the range of a channel says. */
+export interface Plausibility {
+  looksRight: boolean;
+  /** E.g. "engine speed 0 to 8,200 1/min: looks right". */
+  sentence: string;
+}
+
+/** A drive whose largest value stays below this is misread or still: common practice, no source. */
+const LOWEST_TOP: Partial<Record<KnownChannel, number>> = {
+  engine_speed: 300,
+  wheel_speed_undriven: 3,
+  wheel_speed_driven: 3,
+  gps_speed: 3,
+  pedal: 1.5,
+  throttle: 1.5,
+  coolant_temperature: 5,
+};
+const KMH_IN_MPS = 1 / 3.6;
+
+/** Canonical unit and factor that a range is told in: speeds as on the speedometer. */
+export function shownUnit(unit: string): { unit: string; factor: number } {
+  return unit === "m/s" ? { unit: "km/h", factor: 1 / KMH_IN_MPS } : { unit, factor: 1 };
+}
+
+function figure(value: number): string {
+  const rounded = Number(value.toPrecision(3));
+  const text = String(Number(Math.abs(rounded).toFixed(6)));
+  const [whole = "0", fraction] = text.split(".");
+  const grouped = whole.replace(/\B(?=(\d{3})+$)/g, "\u202f");
+  return `${rounded < 0 ? "\u2212" : ""}${grouped}${fraction ? `.${fraction}` : ""}`;
+}
+
+/** What may be wrong with a range that does not fit: a shift by tens is the mark of a decimal sign, anything else of a unit. */
+function doubt(channel: KnownChannel, min: number, max: number): string {
+  const { plausible, withoutUnit } = CHANNEL_UNITS[channel];
+  const [low, high] = plausible;
+  const lowestTop = LOWEST_TOP[channel] ?? low;
+  const fits = (factor: number) => min * factor >= low && max * factor <= high && max * factor >= lowestTop;
+  const byTens = [10, 100, 1000, 0.1, 0.01, 0.001].some(fits);
+  if (max < lowestTop && max >= low && (channel === "pedal" || channel === "throttle"))
+    return "a fraction instead of per cent?";
+  if (!byTens) return "unit?";
+  return withoutUnit === null ? "unit or decimal mark?" : "decimal mark?";
+}
+
+/**
+ * Whether the range of a known channel, in its canonical unit, can be that of a car on a road.
+ * @param range null where the column holds no value at all
+ */
+export function plausibility(
+  channel: KnownChannel,
+  range: { min: number; max: number } | null,
+): Plausibility {
+  const words = channelWords(channel);
+  if (range === null) return { looksRight: false, sentence: `${words}: the column holds no value` };
+  const { min, max } = range;
+  const { unit, factor } = shownUnit(CHANNEL_UNITS[channel].unit);
+  const shown = unit === "1" ? "" : ` ${unit}`;
+  const text = `${words} ${figure(min * factor)} to ${figure(max * factor)}${shown}`;
+  const [low, high] = CHANNEL_UNITS[channel].plausible;
+  if (min < low || max > high) return { looksRight: false, sentence: `${text}: ${doubt(channel, min, max)}` };
+  if (min === max && channel !== "gear")
+    return { looksRight: false, sentence: `${text}: it never changes; is the sensor connected?` };
+  const lowestTop = LOWEST_TOP[channel];
+  if (lowestTop !== undefined && max < lowestTop)
+    return {
+      looksRight: false,
+      sentence: `${text}: ${max <= 0 ? "did the car move?" : doubt(channel, min, max)}`,
+    };
+  return { looksRight: true, sentence: `${text}: looks right` };
+}

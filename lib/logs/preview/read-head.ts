@@ -1,0 +1,37 @@
+import { FileRefusedError } from "@/lib/errors";
+import { openDelimited } from "@/lib/logs/delimited/read-delimited";
+import type { LogHead } from "@/lib/logs/preview/gather-head";
+import { type ReadLogOptions, readLog } from "@/lib/logs/read-log";
+import { sniffLog } from "@/lib/logs/sniff-log";
+import type { LogTable } from "@/lib/logs/types";
+
+const LF = 10;
+const CR = 13;
+
+/** Number of bytes up to the end of the last whole line, also of UTF-16; all where there is no line end. */
+function wholeLines(bytes: Uint8Array): number {
+  let at = bytes.lastIndexOf(LF);
+  if (at < 0) at = bytes.lastIndexOf(CR);
+  if (at < 0) return bytes.length;
+  // The second byte of a line end in UTF-16, little-endian.
+  return bytes[at + 1] === 0 && at % 2 === 0 ? at + 2 : at + 1;
+}
+
+/**
+ * Reads the beginning of a log by the very parse that the import of the whole file uses: the same bytes settle its form.
+ * @throws FileRefusedError as readLog; `too_large_to_preview` where a format can't be read in part
+ */
+export function readHead(head: LogHead, options: ReadLogOptions): LogTable {
+  const { bytes, complete } = head;
+  if (complete) return readLog(bytes, options);
+  const { kind } = sniffLog(bytes);
+  if (kind === "unsupported" || kind === "gzip") return readLog(bytes, options);
+  if (kind !== "delimited")
+    throw new FileRefusedError(
+      "too_large_to_preview",
+      "A log of this format can only be read whole, and this one is too large to be read before it is attached. It is read after that.",
+    );
+  const reader = openDelimited(bytes, null, options.key ?? {}, options.drive);
+  reader.push(bytes.subarray(0, wholeLines(bytes)));
+  return reader.finish();
+}
