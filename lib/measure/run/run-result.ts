@@ -11,21 +11,14 @@ import { maskedSpans } from "@/lib/measure/judge/consequence";
 import { judgePull } from "@/lib/measure/judge/judge-pull";
 import { lossSource } from "@/lib/measure/road/loss-source";
 import { carriesAbsolute } from "@/lib/measure/road/road-day";
-import { pullTimes } from "@/lib/measure/run/pull-times";
+import { pullTimes, speedDeviationMps } from "@/lib/measure/run/pull-times";
 import { SPEED_SOURCES, type SpeedSource } from "@/lib/measure/speed/speed-model";
 import { motionTrace } from "@/lib/measure/sprint/acceleration";
 import type { FallInput } from "@/lib/measure/sprint/add-falls";
 import { ownFall } from "@/lib/measure/sprint/net-fall";
 import { roadFall } from "@/lib/measure/sprint/road-fall";
 import { timingsOf } from "@/lib/measure/sprint/timings";
-import type {
-  Campaign,
-  CampaignRun,
-  FactorResult,
-  Note,
-  PowerCurve,
-  RunResult,
-} from "@/lib/measure/types";
+import type { Campaign, CampaignRun, FactorResult, Note, PowerCurve, RunResult } from "@/lib/measure/types";
 import { evaluateSpline } from "@/lib/signal/penalised-spline";
 import { RPM_RADPS } from "@/lib/units/constants";
 
@@ -112,7 +105,7 @@ export function pullResult(
     points.t,
     speedMps,
     broken,
-    { deviationMps: 0.01, scale: estimate.model.scaleUncertainty },
+    { deviationMps: speedDeviationMps(pull), scale: estimate.model.scaleUncertainty },
     timingsOf(campaign.settings).pairs,
   );
   const sensitivities = new Map(
