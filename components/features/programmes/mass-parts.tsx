@@ -76,7 +76,7 @@ export function MassParts({ control, register, errorOf }: MassPartsProps) {
           {spreads.length > 0 && (
             <span className="tabular text-ink2">
               {" "}
-              ± {numberText(Math.hypot(...spreads), { decimals: 1 })}
+              ± {numberText(Math.hypot(...spreads), { decimals: 1 })} (standard uncertainty)
             </span>
           )}
         </p>

@@ -24,7 +24,7 @@ export function VehicleCard({
       <p className="text-15">
         {figures.label}
         <br />
-        {DRIVE_WORDS[figures.drive]} driven, <TestMass sheet={figures} />, limiter{" "}
+        {DRIVE_WORDS[figures.drive]} driven, <TestMass sheet={figures} coverage={2} />, limiter{" "}
         <Quantity value={figures.redlineRpm} unit="1/min" decimals={0} />
       </p>
       <Link href={`/programmes/${programmeId}/vehicle-sheet` as Route} className={more}>

@@ -18,13 +18,14 @@ function figure(written: Figure | null, unit: string) {
 const single = (value: number | null, unit: string) =>
   figure(value === null ? null : { value, uncertainty: null }, unit);
 
-/** The mass that a result stands on: the sum of the parts. */
-export function TestMass({ sheet }: { sheet: VehicleSheetFigures }) {
+/** The mass that a result stands on: the sum of the parts. `coverage` times its standard uncertainty is printed as ±. */
+export function TestMass({ sheet, coverage }: { sheet: VehicleSheetFigures; coverage: 1 | 2 }) {
   const vehicle = toCampaignVehicle(sheet);
+  const standard = vehicle.mass_uncertainty_kg ?? null;
   return (
     <Quantity
       value={vehicle.mass_kg}
-      halfWidth={vehicle.mass_uncertainty_kg ?? null}
+      halfWidth={standard === null ? null : coverage * standard}
       unit="kg"
       decimals={0}
     />
@@ -33,6 +34,18 @@ export function TestMass({ sheet }: { sheet: VehicleSheetFigures }) {
 
 /** Every figure of one version of a vehicle sheet, to read. */
 export function VehicleSheetView({ sheet }: { sheet: VehicleSheetFigures }) {
+  return (
+    <>
+      <SheetFigures sheet={sheet} />
+      <p className="mt-4 text-13 text-ink2">
+        ± on this sheet is the standard uncertainty, as it was written; ± on results is about 95 %, twice
+        that.
+      </p>
+    </>
+  );
+}
+
+function SheetFigures({ sheet }: { sheet: VehicleSheetFigures }) {
   const read = sheet.speedAtRpm;
   return (
     <DescriptionList
@@ -44,7 +57,7 @@ export function VehicleSheetView({ sheet }: { sheet: VehicleSheetFigures }) {
         { term: "Displacement", description: single(sheet.displacementL, "L") },
         { term: "Idle speed", description: single(sheet.idleRpm, "1/min") },
         { term: "Speed limiter", description: single(sheet.redlineRpm, "1/min") },
-        { term: "Test mass", description: <TestMass sheet={sheet} /> },
+        { term: "Test mass", description: <TestMass sheet={sheet} coverage={1} /> },
         ...sheet.massPartsKg.map((part) => ({
           term: <span className="pl-4">{part.part}</span>,
           description: figure(part, "kg"),
