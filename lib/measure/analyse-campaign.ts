@@ -12,7 +12,7 @@ import { runFullLoad } from "@/lib/measure/engine/full-load";
 import type { RunFullLoad } from "@/lib/measure/engine/full-load-types";
 import { sideFullLoad } from "@/lib/measure/engine/side-full-load";
 import { type CampaignEstimate, estimateCampaign, type ReadyRun } from "@/lib/measure/estimate-campaign";
-import { withConsequences } from "@/lib/measure/judge/consequence";
+import { maskedSpans, withConsequences } from "@/lib/measure/judge/consequence";
 import { judgeTogether } from "@/lib/measure/judge/judge-together";
 import { roundResult } from "@/lib/measure/round-result";
 import { type PreparedRun, prepareRun } from "@/lib/measure/run/prepare-run";
@@ -142,7 +142,8 @@ function runResult(
     }
     return { ...base, usable: reasons.length === 0, speed_source: signals.speedName };
   }
-  const fullLoad = segments?.pull && runFullLoad(table, pull.grid, segments.pull, vehicle);
+  const fullLoad =
+    segments?.pull && runFullLoad(table, pull.grid, segments.pull, vehicle, maskedSpans(notes));
   return {
     ...base,
     ...pull.result,

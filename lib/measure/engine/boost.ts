@@ -16,19 +16,19 @@ const OTHER_ZERO_KPA = 60;
 
 /**
  * Overshoot of manifold pressure in a pull: its greatest excess over a logged target of the same zero point, else its peak
- * while it builds up over the plateau that follows; both held for `holdS`. Null without a manifold pressure. `atS`: when.
+ * while it builds up over the plateau that follows; both held for `holdS` within the stretches of full load. Null without a manifold pressure. `atS`: when.
  */
 export function boostAtLoad(
   timeS: Float64Array,
   rows: EngineRows,
-  pull: Span,
+  stretches: readonly Span[],
   holdS: number,
 ): { found: Omit<BoostAtLoad, "at_rpm">; atS: number } | null {
   const name = rows.channels.has("manifold_pressure") ? "manifold_pressure" : "manifold_pressure_gauge";
   const own = rows.channels.get(name);
   const pressure = own && timedChannel(timeS, own);
   if (!pressure) return null;
-  const held = pressure.heldMeans(pull.from_s, pull.to_s, holdS);
+  const held = pressure.heldMeans(stretches, holdS);
   if (held.length < 3) return null;
   const highest = held.reduce((best, one) => (one.value > best.value ? one : best));
   const least = held[0].value + THERE * (highest.value - held[0].value);

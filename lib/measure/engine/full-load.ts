@@ -24,25 +24,28 @@ const ENDS_S = 0.5;
 /**
  * Engine channels of one pull: mean over engine speed, extremes that held, rise, time at load. `grid` tells when which engine
  * speed was passed (null inside masked spans), `pull` is tip-in to lift. What is not in the log is listed, never taken as fine;
- * knock retard is not asked of a compression-ignition engine.
+ * knock retard is not asked of a compression-ignition engine. `broken`: spans of the pull that are not full load (a lift) or not
+ * recorded; nothing extreme is read there.
  */
 export function runFullLoad(
   table: LogTable,
   grid: Pick<GridCurve, "rpm" | "timeS">,
   pull: Span,
   vehicle: Pick<CampaignVehicle, "engine" | "aspiration">,
+  broken: readonly Span[] = [],
 ): RunFullLoad {
   const rows = findEngineChannels(table);
   const step = stepOf(grid.rpm);
   const rpm = grid.rpm.filter((x) => x % step === 0);
   const edges = rpm.map((x) => [timeAt(grid, x - step / 2), timeAt(grid, x), timeAt(grid, x + step / 2)]);
+  const held = stretchesOf(pull, broken);
   const channels: RunFullLoad["channels"] = {};
   for (const [name, values] of rows.channels) {
     const channel = timedChannel(table.timeS, values);
-    const found = channel && channelAtLoad(channel, edges, grid, pull);
+    const found = channel && channelAtLoad(channel, edges, grid, { pull, held });
     if (found) channels[name] = found;
   }
-  const boost = vehicle.aspiration === "natural" ? null : boostAtLoad(table.timeS, rows, pull, HOLD_S);
+  const boost = vehicle.aspiration === "natural" ? null : boostAtLoad(table.timeS, rows, held, HOLD_S);
   return {
     load_s: pull.to_s - pull.from_s,
     rpm,
@@ -50,6 +53,20 @@ export function runFullLoad(
     ...(boost && { boost: { ...boost.found, at_rpm: speedAt(grid, boost.atS) } }),
     not_recorded: notRecorded(channels, vehicle),
   };
+}
+
+/** The parts of a span that lie outside the others, in order of time. */
+function stretchesOf(span: Span, others: readonly Span[]): Span[] {
+  return others.reduce<Span[]>(
+    (parts, other) =>
+      parts
+        .flatMap(({ from_s, to_s }) => [
+          { from_s, to_s: Math.min(to_s, other.from_s) },
+          { from_s: Math.max(from_s, other.to_s), to_s },
+        ])
+        .filter((part) => part.to_s > part.from_s),
+    [span],
+  );
 }
 
 /** Channels that a log of this engine could carry and does not; one manifold pressure is enough. */
@@ -70,7 +87,7 @@ function channelAtLoad(
   channel: TimedChannel,
   edges: readonly (number | null)[][],
   grid: Pick<GridCurve, "rpm" | "timeS">,
-  pull: Span,
+  { pull, held: stretches }: { pull: Span; held: readonly Span[] },
 ): ChannelAtLoad | null {
   const values: Series = edges.map(([before, at, after]) => {
     const from = before ?? at;
@@ -78,7 +95,10 @@ function channelAtLoad(
     return from === null || to === null || to <= from ? null : channel.meanBetween(from, to);
   });
   const from = pull.from_s + FOLLOW_S;
-  const held = channel.heldMeans(from, pull.to_s, HOLD_S);
+  const held = channel.heldMeans(
+    stretches.map((span) => ({ ...span, from_s: Math.max(from, span.from_s) })),
+    HOLD_S,
+  );
   const mean = channel.meanBetween(from, pull.to_s);
   if (held.length === 0 || mean === null) return null;
   const extreme = (sign: 1 | -1): Extreme => {

@@ -1,4 +1,5 @@
 import { sampledChannel } from "@/lib/measure/run/run-signals";
+import type { Span } from "@/lib/measure/types";
 import { lowerBound } from "@/lib/signal/local-quadratic";
 
 /** Samples further apart than this are not joined, s. */
@@ -8,8 +9,8 @@ const LONGEST_JOIN_S = 1;
 export interface TimedChannel {
   /** Mean over a span; null where a part of it is not covered. */
   meanBetween: (fromS: number, toS: number) => number | null;
-  /** Means over `holdS` around each sample in a span, cut at its ends. */
-  heldMeans: (fromS: number, toS: number, holdS: number) => { t: number; value: number }[];
+  /** Means over `holdS` around each sample of the stretches, cut at their ends. */
+  heldMeans: (stretches: readonly Span[], holdS: number) => { t: number; value: number }[];
   /** Value at a time; null outside and in gaps. */
   at: (t: number) => number | null;
 }
@@ -41,17 +42,19 @@ export function timedChannel(timeS: Float64Array, rows: Float64Array): TimedChan
       if (before === null || last === null || toS <= fromS) return null;
       return (sum + ((before + last) / 2) * (toS - since)) / (toS - fromS);
     },
-    heldMeans: (fromS, toS, holdS) => {
+    heldMeans: (stretches, holdS) => {
       const out: { t: number; value: number }[] = [];
-      for (let i = lowerBound(times, fromS); i < times.length && times[i] <= toS; i++) {
-        const first = lowerBound(times, Math.max(fromS, times[i] - holdS / 2));
-        let sum = 0;
-        let n = 0;
-        for (let j = first; j < times.length && times[j] <= Math.min(toS, times[i] + holdS / 2); j++) {
-          sum += values[j];
-          n++;
+      for (const { from_s, to_s } of stretches) {
+        for (let i = lowerBound(times, from_s); i < times.length && times[i] <= to_s; i++) {
+          const first = lowerBound(times, Math.max(from_s, times[i] - holdS / 2));
+          let sum = 0;
+          let n = 0;
+          for (let j = first; j < times.length && times[j] <= Math.min(to_s, times[i] + holdS / 2); j++) {
+            sum += values[j];
+            n++;
+          }
+          out.push({ t: times[i], value: sum / n });
         }
-        out.push({ t: times[i], value: sum / n });
       }
       return out;
     },

@@ -55,6 +55,18 @@ describe("Engine channels of one pull", () => {
     expect(found?.max.rpm).toBeCloseTo(2000 + 500 * ((found?.max.at_s ?? 0) - 2), 0);
   });
 
+  it("reads no extreme in a span that is not full load: the lean spike of a lift is no finding", () => {
+    const lift = { from_s: 6, to_s: 7 };
+    const lambda = (t: number) => (t > lift.from_s && t < lift.to_s ? 1.9 : t > 9 && t < 9.5 ? 0.9 : 0.86);
+    const boost = (t: number) => (t > lift.from_s && t < lift.to_s ? 260 : 200);
+    const logged = table(["lambda", "Lambda", "1", lambda], ["manifold_pressure", "MAP", "kPa", boost]);
+    const { channels, boost: found } = runFullLoad(logged, GRID, PULL, PETROL, [lift]);
+    expect(channels.lambda?.max.value).toBeCloseTo(0.9, 6);
+    expect(channels.lambda?.min.value).toBeCloseTo(0.86, 6);
+    expect(found?.peak_kpa).toBe(200);
+    expect(runFullLoad(logged, GRID, PULL, PETROL).channels.lambda?.max.value).toBeCloseTo(1.9, 6);
+  });
+
   it("lists what is not recorded and never fills it in", () => {
     const load = runFullLoad(table(["lambda", "Lambda", "1", () => 0.86]), GRID, PULL, PETROL);
     expect(Object.keys(load.channels)).toEqual(["lambda"]);
