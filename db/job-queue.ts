@@ -5,7 +5,7 @@ import PgBoss from "pg-boss";
 export const JOB_CHANNEL = "twinpass_jobs";
 
 /**
- * Every queue there is, in the order in which the worker asks them. A job whose worker died is found by its missing lock
+ * Every queue there is, in the order in which the worker asks them among jobs of one priority. A job whose worker died is found by its missing lock
  * (see openJobQueue), long before `expireInSeconds`, which only stands for a worker whose machine vanished.
  */
 export const JOB_QUEUES = {
@@ -44,7 +44,7 @@ export async function installQueue(ownerUrl: string): Promise<void> {
 
 /** The queue as a worker sees it. One worker does one job at a time. */
 export interface JobQueue {
-  /** The next job that is due, by the order of JOB_QUEUES, oldest first; null when none is. */
+  /** The next job that is due: by priority, then by the order of JOB_QUEUES, oldest first; null when none is. */
   take(): Promise<TakenJob | null>;
   complete(job: TakenJob): Promise<void>;
   /** Hands a job back for another try, later each time; after the last try it stays failed. */
@@ -90,7 +90,13 @@ export async function openJobQueue(
 
   return {
     async take() {
-      for (const name of NAMES) {
+      // Background work of one queue waits for what people wait for in another.
+      const { rows } = await pool.query<{ name: JobName }>(
+        `select name from pgboss.job where name = any($1) and state < 'active' and start_after <= now()
+         group by name order by max(priority) desc, array_position($1::text[], name)`,
+        [NAMES],
+      );
+      for (const { name } of rows) {
         const [job] = await boss.fetch<object>(name, { includeMetadata: true });
         if (!job) continue;
         await locks.tryLock(lockKey(job.id));

@@ -128,6 +128,21 @@ describe("a job", () => {
     expect(most).toBe(1);
   });
 
+  test("in the background waits for what people wait for, in whichever queue that is", async ({
+    database,
+  }) => {
+    const { handlers, done } = noting();
+    const workspaceId = randomUUID();
+    const background: Job = { name: "judge-run", data: { workspaceId, runId: "outdated" } };
+    await enqueueJob(database.db, background, { background: true });
+    await enqueueJob(database.db, {
+      name: "compute-comparison",
+      data: { workspaceId, comparisonId: "asked for" },
+    });
+    await working(database, handlers);
+    await vi.waitFor(() => expect(done).toEqual(["asked for", "outdated"]), { timeout: 5_000 });
+  });
+
   test("to a queue that is not there is refused, never dropped", async ({ database }) => {
     const unknown = { name: "judge-nothing", data: {} } as unknown as Job;
     await expect(enqueueJob(database.db, unknown)).rejects.toThrow('no queue "judge-nothing"');
