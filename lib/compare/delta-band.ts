@@ -6,6 +6,7 @@ import { leastSquares } from "@/lib/signal/least-squares";
 export interface DeltaBand {
   effect: Float64Array;
   standardError: Float64Array;
+  /** Degrees of freedom: of the column with fewest runs for Bonferroni's t, else of the middle column. */
   df: number;
   critical: number;
   method: "permutation max-t" | "Bonferroni t";
@@ -75,7 +76,7 @@ export function deltaBand(
       for (const r of pattern.rows) residuals[r * count + k] = y[r] * scale;
     }
   }
-  const df = Math.min(...patterns.map((pattern) => pattern.df));
+  const df = options.small ? Math.min(...dfs) : dfs.slice().sort()[count >> 1];
   const pooledSquares = pooled(squares, options.pool);
   const pooledDf = pooled(dfs, options.pool);
   for (const { columns: members, sideVariance } of patterns)

@@ -65,6 +65,18 @@ describe("Comparison of two sides", () => {
     expect(delta?.simultaneous).toBe(true);
   });
 
+  it("states the degrees of freedom of the curve, not of its end that few runs reach", () => {
+    const reach = new Set(["r1", "r2", "r3", "r4", "r5", "r6"]);
+    const runs = pulls("ABBABAABABBA", "+--++-+-+-+-", 0, 1).map((run) => ({
+      ...run,
+      engineNm: run.engineNm.map((nm, k) => (RPM[k] > 4800 && !reach.has(run.id) ? null : nm)),
+    }));
+    // Twelve runs less mean, side, leg and order; at the end six runs less the same.
+    const delta = compareSides(RPM, runs, SETTINGS);
+    expect(delta?.rpm.at(-1)).toBe(5000);
+    expect(delta?.band?.df).toBe(8);
+  });
+
   it("compares nothing where the sides share no engine speed", () => {
     const runs = pulls("ABBABAABABBA", "+-+-+-+-+-+-", 0, 1).map((run) => ({
       ...run,
