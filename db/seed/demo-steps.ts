@@ -2,10 +2,12 @@ import { randomUUID } from "node:crypto";
 import { selectComparisonsOf } from "@/db/queries/comparisons";
 import { demoImage, type Patch } from "@/db/seed/demo-image";
 import { driveRoadDay, type Effect } from "@/db/seed/demo-logs";
+import { asOlderBox, OLDER_BOX_KEY } from "@/db/seed/demo-odd-log";
 import type { DemoPerson } from "@/db/seed/demo-people";
 import { uploadFile } from "@/db/seed/upload";
 import { computeComparison } from "@/lib/jobs/compute-comparison";
 import { judgeRun } from "@/lib/jobs/judge-run";
+import { saveChannelKey } from "@/lib/services/channel-keys/save";
 import { openComparison } from "@/lib/services/comparisons/open";
 import type { Ctx } from "@/lib/services/ctx";
 import { addRevision } from "@/lib/services/revisions/create";
@@ -83,6 +85,8 @@ interface DemoDay {
   twinsPerSide: number;
   tempC: number;
   seed: number;
+  /** Place of the one run that was recorded with the older recorder, whose columns a key explains. */
+  olderBoxAt?: number;
 }
 
 /** A tester opens a road day, drives it in the order of the card and attaches every run, which is judged at once. */
@@ -115,11 +119,12 @@ async function driveDay(people: People, args: DemoDay & { isNullTest: boolean })
   const runs = driveRoadDay({ ...args, gustMps, effectA: args.a.effect, effectB: args.b.effect });
   for (const run of runs) {
     const revision = run.side === "A" ? args.a : args.b;
+    const isOlderBox = run.order === args.olderBoxAt;
     const fileName = `${args.day}-run-${String(run.order).padStart(2, "0")}-${run.leg}.csv`;
     const { runId } = await attachRun(
       sam,
       {
-        uploadId: await uploadFile(sam, "log", fileName, run.csv),
+        uploadId: await uploadFile(sam, "log", fileName, isOlderBox ? asOlderBox(run.csv) : run.csv),
         roadDayId: roadDay.id,
         revisionId: revision.id,
         kind: "pull",
@@ -136,6 +141,10 @@ async function driveDay(people: People, args: DemoDay & { isNullTest: boolean })
       },
       { idempotencyKey: randomUUID() },
     );
+    await judgeRun(system, { workspaceId: sam.workspaceId, runId });
+    if (!isOlderBox) continue;
+    const key = { name: "Older black box", basedOnVersion: 0, key: OLDER_BOX_KEY, everyRun: true };
+    await saveChannelKey(sam, { runId, ...key });
     await judgeRun(system, { workspaceId: sam.workspaceId, runId });
   }
   return roadDay.id;

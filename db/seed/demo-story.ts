@@ -154,6 +154,7 @@ export async function tellStory(people: People): Promise<void> {
     b: { ...ignition, effect: EFFECTS.ignition },
     tempC: 7,
     seed: 13,
+    olderBoxAt: 16,
   });
   await askForDecision(sam, { revisionId: ignition.id });
 }

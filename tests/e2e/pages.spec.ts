@@ -38,6 +38,7 @@ async function addresses(page: Page): Promise<Record<string, string>> {
     revision,
     comparison: new URL(page.url()).pathname,
     run,
+    "channel-key": `${run}/channel-key`,
     "road-day": roadDay ?? "",
     "revision-new": `/revisions/new?programme=${programme.split("/").at(-1)}`,
     "road-day-new": `/road-days/new?programme=${programme.split("/").at(-1)}`,

@@ -11,7 +11,7 @@ import { readUpload } from "@/lib/services/channel-keys/read-upload";
 import { saveChannelKey } from "@/lib/services/channel-keys/save";
 import type { SaveChannelKey } from "@/lib/services/channel-keys/schema";
 import { currentInput } from "@/lib/services/comparisons/current-input";
-import { STANDARD_SETTINGS } from "@/lib/services/comparisons/schema";
+import { STANDARD_SETTINGS, toCampaignSettings } from "@/lib/services/comparisons/schema";
 import { whatMoved } from "@/lib/services/comparisons/what-moved";
 import type { Ctx } from "@/lib/services/ctx";
 import { getRun } from "@/lib/services/runs/get";
@@ -152,7 +152,7 @@ describe("a channel key", () => {
     const [odd = ""] = await attachAll(tx, side, [oddLog()]);
     const question = {
       ...{ workspaceId: side.workspaceId, programmeId: side.programmeId, nullTestRoadDayId: null },
-      ...{ revisionAId: side.r1, revisionBId: side.r2, settings: STANDARD_SETTINGS },
+      ...{ revisionAId: side.r1, revisionBId: side.r2, settings: toCampaignSettings(STANDARD_SETTINGS) },
     };
     const before = await currentInput(tx, question);
     await saveChannelKey(side.tester, keyOf(odd));

@@ -9,7 +9,7 @@ import type { FittingKey, UploadReading } from "@/lib/services/channel-keys/sche
 type Found = NonNullable<UploadReading["withKey"]>;
 
 /** "12 columns, 50 rows a second; engine speed, GPS speed; left out: Sats." */
-export function readingWords({ columnCount, rateHz, found, leftOut }: Found): string {
+function readingWords({ columnCount, rateHz, found, leftOut }: Found): string {
   const rate =
     rateHz === null ? "" : `, ${numberText(rateHz, { decimals: rateHz < 10 ? 1 : 0 })} rows a second`;
   const names = found.length === 0 ? "no channel understood" : found.join(", ");

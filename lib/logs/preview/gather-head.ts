@@ -11,7 +11,7 @@ export interface LogHead {
 }
 
 /** Formats that are no text table can only be read whole; larger ones of them are not looked at before the worker reads them. */
-export const WHOLE_BYTES_AT_MOST = 8 * 1024 * 1024;
+const WHOLE_BYTES_AT_MOST = { mdf: 16 * 1024 * 1024, nmea: 4 * 1024 * 1024, gpx: 4 * 1024 * 1024 };
 
 /** Lets go of a source that is not read to its end. */
 async function close(pieces: Pieces): Promise<void> {
@@ -19,8 +19,8 @@ async function close(pieces: Pieces): Promise<void> {
 }
 
 /**
- * Takes so much of a log as its form is settled by: the first mebibyte of a text table, at most 8 MiB of another format; of a
- * packed log no more is unpacked than that. Nothing beyond is read.
+ * Takes so much of a log as its form is settled by: the first mebibyte of a text table, at most 16 MiB of MDF 4 and 4 MiB of
+ * NMEA 0183 or GPX; of a packed log no more is unpacked than that. Nothing beyond is read.
  * @throws FileRefusedError `gzip_damaged`; what the source throws
  */
 export async function gatherHead(source: AsyncIterable<Uint8Array>): Promise<LogHead> {
@@ -35,9 +35,9 @@ export async function gatherHead(source: AsyncIterable<Uint8Array>): Promise<Log
     const { head, complete } = taken;
     if (complete) return { bytes: head, complete };
     const { kind } = sniffLog(head);
-    if (kind === "delimited" || kind === "gzip" || kind === "unsupported")
+    if (kind !== "mdf" && kind !== "nmea" && kind !== "gpx")
       return { bytes: head.subarray(0, HEAD_BYTES), complete: false };
-    const rest = await take(pieces, WHOLE_BYTES_AT_MOST - head.length);
+    const rest = await take(pieces, WHOLE_BYTES_AT_MOST[kind] - head.length);
     return { bytes: joined([head, rest.head]), complete: rest.complete };
   } finally {
     if (pieces !== raw) await close(pieces);

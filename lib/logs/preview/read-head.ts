@@ -7,6 +7,7 @@ import type { LogTable } from "@/lib/logs/types";
 
 const LF = 10;
 const CR = 13;
+const GROWS_TO_AT_MOST = 64 * 1024 * 1024;
 
 /** Number of bytes up to the end of the last whole line, also of UTF-16; all where there is no line end. */
 function wholeLines(bytes: Uint8Array): number {
@@ -17,20 +18,31 @@ function wholeLines(bytes: Uint8Array): number {
   return bytes[at + 1] === 0 && at % 2 === 0 ? at + 2 : at + 1;
 }
 
+const tooLarge = () =>
+  new FileRefusedError(
+    "too_large_to_preview",
+    "A log of this format can only be read whole, and this one is too large for that here; only the worker reads it. To choose its columns, export a shorter recording, or CSV.",
+  );
+
+/** A whole file that was small enough; what its compressed parts grow to is bounded more tightly than in the worker. */
+function readWhole(bytes: Uint8Array, options: ReadLogOptions): LogTable {
+  try {
+    return readLog(bytes, { ...options, maxInflatedBytes: GROWS_TO_AT_MOST });
+  } catch (error) {
+    if (error instanceof FileRefusedError && error.code === "inflates_too_large") throw tooLarge();
+    throw error;
+  }
+}
+
 /**
  * Reads the beginning of a log by the very parse that the import of the whole file uses: the same bytes settle its form.
  * @throws FileRefusedError as readLog; `too_large_to_preview` where a format can't be read in part
  */
 export function readHead(head: LogHead, options: ReadLogOptions): LogTable {
   const { bytes, complete } = head;
-  if (complete) return readLog(bytes, options);
   const { kind } = sniffLog(bytes);
-  if (kind === "unsupported" || kind === "gzip") return readLog(bytes, options);
-  if (kind !== "delimited")
-    throw new FileRefusedError(
-      "too_large_to_preview",
-      "A log of this format can only be read whole, and this one is too large to be read before it is attached. It is read after that.",
-    );
+  if (complete || kind === "unsupported" || kind === "gzip") return readWhole(bytes, options);
+  if (kind !== "delimited") throw tooLarge();
   const reader = openDelimited(bytes, null, options.key ?? {}, options.drive);
   reader.push(bytes.subarray(0, wholeLines(bytes)));
   return reader.finish();

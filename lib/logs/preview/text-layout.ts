@@ -5,6 +5,9 @@ import { openText } from "@/lib/logs/delimited/text-bytes";
 import type { LogHead } from "@/lib/logs/preview/gather-head";
 import type { ChannelKey } from "@/lib/logs/types";
 
+/** A longer cell is no number; it is cut so that a made-up file does not fill the page. */
+const SHOWN_CELL = 200;
+
 /** How a text table is laid out, as far as it can be told without its values being read. */
 export interface TextLayout {
   encoding: string;
@@ -45,6 +48,6 @@ export function textLayout(head: LogHead, key: ChannelKey, rowCount: number): Te
     rows: lines
       .filter((row) => row.line > form.lastHeadLine)
       .slice(0, rowCount)
-      .map((row) => row.cells.slice(0, form.titles.length)),
+      .map((row) => row.cells.slice(0, form.titles.length).map((cell) => cell.slice(0, SHOWN_CELL))),
   };
 }

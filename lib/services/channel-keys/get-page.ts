@@ -37,4 +37,3 @@ export async function getChannelKeyPage(ctx: Ctx, runId: string) {
     ...(await previewRunRow(ctx, run, key)),
   };
 }
-export type ChannelKeyPage = Awaited<ReturnType<typeof getChannelKeyPage>>;
