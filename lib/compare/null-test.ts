@@ -4,7 +4,7 @@ import type { DeltaRegion, DeltaResult } from "@/lib/measure/types";
 export interface NullTestOutcome {
   /** `too little`: no band yet, so nothing could have been claimed. */
   verdict: "claims nothing" | "claims something" | "too little";
-  /** What it wrongly claims. */
+  /** What it wrongly claims, losses first. */
   regions: DeltaRegion[];
   /** Half-width of the band at a typical engine speed, %; null without a band. */
   halfWidthPct: number | null;
@@ -26,6 +26,7 @@ export function nullTestOutcome(
 ): NullTestOutcome {
   const halfWidthPct = delta ? typicalHalfWidth(delta) : null;
   if (!delta || halfWidthPct === null) return { verdict: "too little", regions: [], halfWidthPct: null };
-  const { regions } = delta;
+  const named = (verdict: DeltaRegion["verdict"]) => delta.regions.filter((r) => r.verdict === verdict);
+  const regions = [...named("loss"), ...named("gain")];
   return { verdict: regions.length > 0 ? "claims something" : "claims nothing", regions, halfWidthPct };
 }

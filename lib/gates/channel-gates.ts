@@ -70,7 +70,11 @@ function verdictOn(gate: ChannelLimitGate, words: QuantityWords, evidence: GateE
   const open = (["not_met", "too_little"] as const).flatMap((state) =>
     verdicts.filter((verdict) => verdict.state === state),
   );
-  return open[0] ?? met(verdicts.map((verdict) => verdict.why).join(" "));
+  const verdict = open[0] ?? met(verdicts.map(({ why }) => why).join(" "));
+  const silent = runs.length - pulls.length;
+  return silent === 0
+    ? verdict
+    : { ...verdict, why: `${verdict.why} Not told by ${counted(silent, "other pull")} on side B.` };
 }
 
 /** Holds the worst value of each pull against one limit; `end` says which end of the quantity it is. */

@@ -14,10 +14,14 @@ function Value({ move, of }: { move: ResultMove; of: MovedValue }) {
   return <Quantity value={value} halfWidth={halfWidth} unit="" signed={move.isDifference} orNotStated />;
 }
 
+/** Losses before gains. */
 const regionsText = (regions: readonly DeltaRegion[]) =>
   regions.length === 0
     ? "nothing shown"
-    : regions.map(({ verdict, from_rpm, to_rpm }) => `${verdict} ${from_rpm}–${to_rpm}`).join(", ");
+    : (["loss", "gain"] as const)
+        .flatMap((first) => regions.filter(({ verdict }) => verdict === first))
+        .map(({ verdict, from_rpm, to_rpm }) => `${verdict} ${from_rpm}–${to_rpm}`)
+        .join(", ");
 
 /** Verdict regions, runs and gates, each as "before → now" or as unchanged. */
 function Words({ moves, gates }: Pick<ComparisonMoves, "moves" | "gates">) {

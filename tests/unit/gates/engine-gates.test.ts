@@ -59,6 +59,11 @@ describe("Limit of an engine channel", () => {
     expect(got.why).toBe("Highest 1.2° in run r3; the mean of 4 pulls is 1.1 ± 0.1°, the limit 3°.");
   });
 
+  it("says of how many pulls it knows nothing", () => {
+    const some = [...knock(1, 1.1, 1.2, 1.1), fullLoad({ channels: {} })];
+    expect(one(limit({}), evidence(some)).why).toMatch(/Not told by 1 other pull on side B\.$/);
+  });
+
   it("is too little where the channel is not recorded, and says so", () => {
     const bare = evidence([fullLoad({ channels: {} }), fullLoad({ channels: {} })]);
     expect(one(limit({}), bare)).toMatchObject({ state: "too_little", why: "Not recorded on side B." });
