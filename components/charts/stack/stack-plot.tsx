@@ -23,6 +23,10 @@ export interface StackPlotProps {
 /** Everything that stays still while the cursor moves. */
 export const StackPlot = memo(function StackPlot({ data, layout, fills, clipId }: StackPlotProps) {
   const { x, left, right, boxes, bottom, top } = layout;
+  // Occasions and engine speeds are whole: no tick stands between two of them.
+  const baseTicks = fittingTicks(x, right - left, 96).filter(
+    (tick) => data.axis.decimals > 0 || Number.isInteger(tick),
+  );
   const within = (value: number) => Math.min(right, Math.max(left, x(value)));
   const visible = <T extends { from: number; to: number }>(spans: readonly T[] = []) =>
     spans.filter((span) => within(span.to) > within(span.from));
@@ -58,13 +62,7 @@ export const StackPlot = memo(function StackPlot({ data, layout, fills, clipId }
           fills={fills}
         />
       ))}
-      <BaseAxis
-        scale={x}
-        top={bottom}
-        ticks={fittingTicks(x, right - left, 96)}
-        title={data.axis.title}
-        right={right}
-      />
+      <BaseAxis scale={x} top={bottom} ticks={baseTicks} title={data.axis.title} right={right} />
     </>
   );
 });

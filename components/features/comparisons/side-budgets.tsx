@@ -1,5 +1,6 @@
 import { UncertaintyTable } from "@/components/ui/data/uncertainty-table";
-import { adviceSentence } from "@/lib/measure/curve/budget-advice";
+import { Disclosure } from "@/components/ui/layout/disclosure";
+import { adviceSentence, componentName } from "@/lib/measure/curve/budget-advice";
 import type { CampaignResult } from "@/lib/measure/types";
 
 /** What the ± of each side's own peak power is made of. The difference of the sides has a ± of its own, where most of it cancels. */
@@ -25,20 +26,30 @@ export function SideBudgets({
   return (
     <div className="flex flex-col divide-y divide-line">
       {sides.map(({ side, label, n, budget }) => (
-        <div key={side} className="px-2 py-3">
-          <UncertaintyTable
-            caption={`${side}, ${label}: peak power of ${n} run${n === 1 ? "" : "s"}`}
-            showCaption
-            unit="kW"
-            parts={budget.parts.map((part) => ({
-              name: part.component[0].toUpperCase() + part.component.slice(1),
-              pct: part.standard_pct,
-              value: part.standard_kw,
-              basis: part.basis,
-            }))}
-            total={{ factor: budget.coverage_factor, pct: budget.expanded_pct, value: budget.expanded_kw }}
-          />
-          <p className="px-2 pt-3 text-15">{adviceSentence(budget)}</p>
+        <div key={side} className="px-4 py-3 md:px-5">
+          <p className="text-15">
+            <strong>
+              {side}, {label}: ± {budget.expanded_pct.toFixed(1)} %
+            </strong>{" "}
+            of its peak power (n {n}). {adviceSentence(budget)}
+          </p>
+          <Disclosure summary="Every part">
+            <UncertaintyTable
+              caption={`${side}, ${label}: peak power of ${n} run${n === 1 ? "" : "s"}`}
+              unit="kW"
+              parts={budget.parts.map((part) => ({
+                name: componentName(part.component),
+                pct: part.standard_pct,
+                value: part.standard_kw,
+                basis: part.basis,
+              }))}
+              total={{
+                factor: budget.coverage_factor,
+                pct: budget.expanded_pct,
+                value: budget.expanded_kw,
+              }}
+            />
+          </Disclosure>
         </div>
       ))}
     </div>

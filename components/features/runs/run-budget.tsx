@@ -1,5 +1,5 @@
 import { UncertaintyTable } from "@/components/ui/data/uncertainty-table";
-import { adviceSentence } from "@/lib/measure/curve/budget-advice";
+import { adviceSentence, componentName } from "@/lib/measure/curve/budget-advice";
 import type { UncertaintyBudget } from "@/lib/measure/types";
 
 /** What the ± of the run's peak power is made of, and what would shrink it most. */
@@ -10,7 +10,7 @@ export function RunBudget({ budget }: { budget: UncertaintyBudget }) {
         caption="What the uncertainty of the peak power is made of"
         unit="kW"
         parts={budget.parts.map((part) => ({
-          name: part.component[0].toUpperCase() + part.component.slice(1),
+          name: componentName(part.component),
           pct: part.standard_pct,
           value: part.standard_kw,
           basis: part.basis,

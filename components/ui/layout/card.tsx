@@ -36,6 +36,7 @@ export function Card({
   return (
     <Box
       id={id}
+      data-sheet
       aria-labelledby={title ? headingId : undefined}
       className={cn(
         "relative min-w-0 rounded border border-line",

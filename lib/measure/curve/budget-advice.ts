@@ -29,11 +29,16 @@ export function budgetAdvice(
   };
 }
 
+/** A part's name as it begins a line. The speed scale is where the rolling circumference comes in. */
+export function componentName(component: BudgetComponent): string {
+  if (component === "speed scale") return "Rolling circumference, speed scale";
+  return component[0].toUpperCase() + component.slice(1);
+}
+
 /** The advice as a sentence. */
 export function adviceSentence(budget: UncertaintyBudget): string | null {
   const advice = budgetAdvice(budget);
   if (!advice) return null;
   const [now, left] = [budget.expanded_pct, advice.leftPct].map((pct) => pct.toFixed(1));
-  const name = advice.component[0].toUpperCase() + advice.component.slice(1);
-  return `${name} is the largest part. To shrink it, ${advice.remedy}; were it known exactly, ± ${now} % would be ± ${left} %.`;
+  return `${componentName(advice.component)} is the largest part. To shrink it, ${advice.remedy}; were it known exactly, ± ${now} % would be ± ${left} %.`;
 }

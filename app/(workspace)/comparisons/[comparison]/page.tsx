@@ -184,7 +184,7 @@ export default async function ComparisonPage({
               title="Gates"
               description={`Plan version ${gatesHere.planVersion ?? "–"}: ${gateCount(gatesHere.results)}`}
             >
-              <GateList gates={gatesHere.results} />
+              <GateList gates={gatesHere.results} foldSettled />
             </Card>
           )}
           <Card title="Settings">

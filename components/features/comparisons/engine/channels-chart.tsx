@@ -20,13 +20,15 @@ export interface ChannelsChartProps {
   labels: { a: string; b: string };
   title: string;
   summary: string;
+  /** Shown first; all of them when absent. */
+  first?: EngineChannel;
 }
 
 const ALL = "all";
 
 /** Engine channels of both sides over engine speed, one panel a channel on one axis; one can be looked at alone. */
-export function ChannelsChart({ rpm, curves, labels, title, summary }: ChannelsChartProps) {
-  const [chosen, setChosen] = useState<string>(ALL);
+export function ChannelsChart({ rpm, curves, labels, title, summary, first }: ChannelsChartProps) {
+  const [chosen, setChosen] = useState<string>(first ?? ALL);
   const data = useMemo<StackData>(() => {
     const shown = curves.filter(({ channel }) => chosen === ALL || channel === chosen);
     return {

@@ -2,7 +2,7 @@ import { CHANNEL_WORDS } from "@/components/features/comparisons/engine/channel-
 import { type ChannelCurves, ChannelsChart } from "@/components/features/comparisons/engine/channels-chart";
 import { ChannelsTable } from "@/components/features/comparisons/engine/channels-table";
 import { numberText } from "@/components/ui/data/number-text";
-import { ENGINE_CHANNELS, type SideFullLoad } from "@/lib/measure/engine/full-load-types";
+import { ENGINE_CHANNELS, type EngineChannel, type SideFullLoad } from "@/lib/measure/engine/full-load-types";
 import { valuesOn } from "@/lib/measure/engine/values-on";
 import type { CampaignResult } from "@/lib/measure/types";
 
@@ -56,11 +56,23 @@ export function EngineSection({ result, labels }: { result: CampaignResult; labe
             labels={labels}
             title="Engine channels over engine speed"
             summary={bandSummary(result)}
+            first={mostMoved(result, curves)}
           />
         )}
       </div>
     </>
   );
+}
+
+/** The channel in which B parts from A at most engine speeds: what one wants to look at first. */
+function mostMoved(result: CampaignResult, curves: readonly ChannelCurves[]): EngineChannel | undefined {
+  const places = (channel: EngineChannel) => {
+    const found = result.delta?.channels?.[channel];
+    if (!found?.simultaneous) return 0;
+    return found.rpm.filter((_, k) => (found.low[k] ?? 0) > 0 || (found.high[k] ?? 0) < 0).length;
+  };
+  const names = curves.map((curve) => curve.channel);
+  return names.sort((x, y) => places(y) - places(x))[0];
 }
 
 function OvershootLine({
