@@ -1,3 +1,5 @@
+import { channelOf } from "@/lib/logs/titles/known-titles";
+import { choiceOf, foldTitle, isTimePhrase, meaningOf } from "@/lib/logs/titles/title-meaning";
 import type { KnownChannel } from "@/lib/logs/types";
 import type { Dimension } from "@/lib/units/unit-text";
 import { parseUnit } from "@/lib/units/unit-text";
@@ -15,6 +17,12 @@ export interface TitleReading {
   pressureReference: "absolute" | "gauge" | null;
   /** A pressure title that usually means gauge pressure but does not say so. */
   boostWord: boolean;
+  /** Without a unit the title may mean something else. */
+  needsUnit: boolean;
+  /** A word beside the channel's that is not understood: the channel is then a question, not an answer. */
+  unknownWord: string | null;
+  /** Two things that the title can be, in words, where it is ambiguous. */
+  choice: string | null;
 }
 
 /** Dimension that a known channel must have, its canonical unit, and what a missing unit means (null = doubt). */
@@ -51,73 +59,16 @@ export const CHANNEL_UNITS: Readonly<
   },
 };
 
-const EXCLUDED =
-  /\b(target|desired|soll|setpoint|set ?point|request(ed)?|commanded|cmd|demand|error|status|valid|flag|accuracy|heading|sats|ratio|limit|raw|steering|lenkrad|brake|brems\w*|clutch|kupplung\w*)\b/;
-const FRONT = /\b(front|vorne?|va|f|fl|fr|vl|vr|v)\b/;
-const REAR = /\b(rear|hinten|ha|r|rl|rr|hl|hr|h|back)\b/;
-
-const RULES: readonly [KnownChannel, RegExp][] = [
-  [
-    "gps_speed",
-    /\b(gps|gnss)\b.*\b(speed|geschwindigkeit|velocity|vel)\b|\b(speed|velocity) (gps|gnss|over ground)\b|^sog$/,
-  ],
-  [
-    "engine_speed",
-    /\b(engine|eng|motor|crank)\b.*\b(speed|rpm|drehzahl|revs?)\b|^rpm$|^motordrehzahl$|^drehzahl$|^n ?(mot(or)?|eng(ine)?)$|^n$|^revs$|^engine speed$/,
-  ],
-  [
-    "pedal",
-    /\b(accelerator|accel|gas|throttle|fahr)? ?pedal\b|^(fahr|gas)pedal\w*|^app$|\baccelerator (position|pos)\b/,
-  ],
-  ["throttle", /\bthrottle\b|^drosselklappe\w*|^tps$/],
-  [
-    "manifold_pressure",
-    /\bmanifold\b.*\bpress(ure)?\b|^map( sensor)?$|\bsaugrohrdruck\b|\bladedruck\b|\bboost( press(ure)?)?$|\bcharge (air )?press(ure)?\b|\bmanifold abs(olute)?\b|\bintake (manifold )?press(ure)?\b/,
-  ],
-  ["lambda", /^lambda( \d| value| act(ual)?| ist| bank ?\d| sensor)?$|^wideband lambda$/],
-  [
-    "ignition_advance",
-    /\bignition( (advance|timing|angle|adv))?$|\bign (adv|advance|timing|angle)\b|\b(spark|timing) adv(ance)?\b|\bz(ue|u)ndwinkel\b/,
-  ],
-  ["knock_retard", /\bknock( (retard|correction|retardation))?$|\bklopfregelung\b|\bknock ret\b/],
-  [
-    "intake_temperature",
-    /\b(intake|inlet|charge)( air)? temp(erature)?\b|^iat$|\bansaugluft ?temp(eratur)?\b|\bladeluft ?temp(eratur)?\b/,
-  ],
-  [
-    "coolant_temperature",
-    /\b(coolant|engine coolant|water)( temp(erature)?)?$|^ect$|^clt$|\bk(ue|u)hlmittel ?(temp(eratur)?)?\b|\bk(ue|u)hlwasser ?temp\w*\b/,
-  ],
-  ["exhaust_temperature", /\bexhaust( gas)? temp(erature)?\b|^egt( ?\d)?$|\babgas ?temp(eratur)?\b/],
-  ["gear", /^(current |selected |actual )?gear( position| number| no)?$|^gang$/],
-  [
-    "longitudinal_acceleration",
-    /\blong(itudinal)?\b.*\b(acc|accel|acceleration|g)\b|\b(acc|accel|acceleration) long(itudinal)?\b|\bl(ae|a)ngsbeschleunigung\b/,
-  ],
-  ["latitude", /^(gps |gnss )?lat(itude)?$|^(geographische )?breite(ngrad)?$/],
-  ["longitude", /^(gps |gnss )?(lon|long|lng|longitude)$|^(geographische )?l(ae|a)nge(ngrad)?$/],
-  ["altitude", /^(gps |gnss )?(alt|altitude|elevation|height)$|^(gps )?h(oe|o)he$/],
-];
-const WHEEL =
-  /\bwheel\b|\bwhl\b|\brad\b|\bradgeschwindigkeit\b|\braddrehzahl\b|\bundriven\b|\bnon driven\b|\bdriven\b|\bangetrieben\b/;
-const VEHICLE_SPEED =
-  /^(vehicle|veh|car|road|dyno|cyc|ground|obd|ecu)? ?(speed|spd|velocity|mps|kmh|mph|geschwindigkeit)( (obd|ecu|can))?$|^v$|^fahrgeschwindigkeit$|^vss$|^v ?veh(icle)?$/;
+/** Letters of an axle, beside a word for wheel only. */
+const FRONT_LETTERS = new Set(["f", "fl", "fr", "va", "vl", "vr", "v"]);
+const REAR_LETTERS = new Set(["r", "rl", "rr", "ha", "hl", "hr", "h"]);
+/** Whole titles of one letter. */
+const LETTER_TITLES: Readonly<Record<string, KnownTitle>> = {
+  n: { channel: "engine_speed" },
+  v: { channel: "wheel_speed_driven", speedKindOpen: true },
+};
 const TIME =
-  /^((device|gps|utc|local|log|elapsed|relative|session) )?(time|zeit)\b|^(elapsed|timestamp|time stamp|date ?time|uhrzeit|clock|zeitstempel|cyc secs?|cycle secs?|secs?|seconds)\b|^t$/;
-
-function fold(title: string): string {
-  return title
-    .normalize("NFKC")
-    .replace(/([a-z])([A-Z])/g, "$1 $2")
-    .toLowerCase()
-    .replaceAll("ä", "ae")
-    .replaceAll("ö", "oe")
-    .replaceAll("ü", "ue")
-    .replaceAll("ß", "ss")
-    .replaceAll("λ", "lambda")
-    .replace(/[^a-z0-9]+/g, " ")
-    .trim();
-}
+  /^((device|gps|utc|local|log|elapsed|relative|session) )?(time|zeit)\b|^(elapsed|timestamp|uhrzeit|clock|zeitstempel)\b|^t$/;
 
 /** Splits `Name [unit]`, `Name (unit)` or `name_unit` into the name and the unit text. */
 export function splitTitle(title: string): { name: string; unitText: string | null } {
@@ -136,39 +87,69 @@ export function splitTitle(title: string): { name: string; unitText: string | nu
 
 /** True when the title names a time column. */
 export function isTimeTitle(title: string): boolean {
-  return TIME.test(fold(splitTitle(title).name)) || TIME.test(fold(title));
+  return [foldTitle(splitTitle(title).name), foldTitle(title)].some(
+    (folded) => TIME.test(folded) || isTimePhrase(folded),
+  );
 }
 
-function knownFrom(folded: string): Pick<TitleReading, "channel" | "axle" | "speedKindOpen"> {
-  const none = { channel: null, axle: null, speedKindOpen: false } as const;
-  if (EXCLUDED.test(folded) && !/\bpedal\b/.test(folded)) return none;
-  if (/\b(brake|clutch|brems\w*|kupplung\w*)\b/.test(folded)) return none;
-  if (WHEEL.test(folded)) {
-    if (/\b(undriven|non driven|nicht angetrieben|free rolling)\b/.test(folded))
-      return { ...none, channel: "wheel_speed_undriven" };
-    if (/\b(driven|angetrieben|drive)\b/.test(folded)) return { ...none, channel: "wheel_speed_driven" };
-    if (FRONT.test(folded)) return { ...none, axle: "front" };
-    if (REAR.test(folded)) return { ...none, axle: "rear" };
-    return /\b(speed|geschwindigkeit|spd)\b|radgeschwindigkeit/.test(folded)
-      ? { ...none, channel: "wheel_speed_driven", speedKindOpen: true }
-      : none;
+type KnownTitle = Partial<
+  Pick<TitleReading, "channel" | "axle" | "speedKindOpen" | "needsUnit" | "unknownWord">
+>;
+
+/** Wheel speeds: driven or not, or by axle. */
+function wheelTitle(has: (meaning: string) => boolean, words: readonly string[]): KnownTitle {
+  if (has("undriven")) return { channel: "wheel_speed_undriven" };
+  if (has("driven")) return { channel: "wheel_speed_driven" };
+  if (has("front") || words.some((word) => FRONT_LETTERS.has(word))) return { axle: "front" };
+  if (has("rear") || words.some((word) => REAR_LETTERS.has(word))) return { axle: "rear" };
+  return has("speed") ? { channel: "wheel_speed_driven", speedKindOpen: true } : {};
+}
+
+const WHEEL_MEANINGS = new Set(["wheel", "speed", "driven", "undriven", "front", "rear", "gps", "vehicle"]);
+
+function knownFrom(folded: string): KnownTitle {
+  const letter = LETTER_TITLES[folded];
+  if (letter) return letter;
+  const { meanings, unknown, other } = meaningOf(folded);
+  if (other || meanings.size === 0) return {};
+  const has = (meaning: string) => meanings.has(meaning);
+  if (has("wheel") || has("undriven") || (has("driven") && has("speed"))) {
+    const letters = (word: string) => FRONT_LETTERS.has(word) || REAR_LETTERS.has(word);
+    if (!unknown.every(letters) || ![...meanings].every((meaning) => WHEEL_MEANINGS.has(meaning))) return {};
+    return wheelTitle(has, folded.split(" "));
   }
-  for (const [channel, rule] of RULES) if (rule.test(folded)) return { ...none, channel };
-  if (VEHICLE_SPEED.test(folded)) return { ...none, channel: "wheel_speed_driven", speedKindOpen: true };
-  return none;
+  if (has("speed") && [...meanings].every((meaning) => meaning === "speed" || meaning === "vehicle"))
+    return unknown.length === 0 ? { channel: "wheel_speed_driven", speedKindOpen: true } : {};
+  const found = channelOf(meanings);
+  if (found === null) return {};
+  return unknown.length === 0 ? found : { channel: found.channel, unknownWord: unknown[0] };
 }
 
-/** Reads a column title: channel, unit text, axle. A title that is not understood gives channel null, never a guess. */
+/**
+ * Reads a column title: channel, unit text, axle. Words are found in ten languages (titles/title-words.ts). A title that is
+ * not understood gives channel null, never a guess; one that is understood but for a word carries that word.
+ */
 export function readTitle(title: string): TitleReading {
   const { name, unitText } = splitTitle(title);
-  const whole = fold(title);
-  const short = fold(name);
+  const whole = foldTitle(title);
+  const short = foldTitle(name);
   let known = knownFrom(short);
-  if (known.channel === null && known.axle === null && whole !== short) known = knownFrom(whole);
-  const pressureReference = /\b(gauge|rel|relativ|ueberdruck)\b/.test(short)
-    ? "gauge"
-    : /\b(abs|absolut|absolute|map)\b/.test(short)
-      ? "absolute"
-      : null;
-  return { ...known, unitText, pressureReference, boostWord: /\b(boost|ladedruck|charge)\b/.test(short) };
+  const found = ({ channel, axle, unknownWord }: KnownTitle) => (channel || axle) && !unknownWord;
+  if (!found(known) && whole !== short) {
+    const other = knownFrom(whole);
+    if (found(other) || !(known.channel || known.axle)) known = other;
+  }
+  const { pressureReference, meanings } = meaningOf(short);
+  return {
+    channel: null,
+    axle: null,
+    speedKindOpen: false,
+    needsUnit: false,
+    unknownWord: null,
+    choice: choiceOf(short),
+    ...known,
+    unitText,
+    pressureReference,
+    boostWord: meanings.has("boost") || meanings.has("turbo"),
+  };
 }

@@ -3,7 +3,7 @@ import type { ChannelKey, KnownChannel, LogChannel, LogProblem } from "@/lib/log
 import { KNOWN_CHANNELS } from "@/lib/logs/types";
 import { type ParsedUnit, parseUnit, toCanonical } from "@/lib/units/unit-text";
 
-/** A column as read: title, unit row cell, raw values in file order of kept rows (NaN = missing). */
+/** A column as read: title, unit row cell, raw values in file order of kept rows (NaN = missing); no other column shares them. */
 export interface RawColumn {
   title: string;
   unitRowText: string | null;
@@ -20,7 +20,8 @@ function isKnown(name: string | null): name is KnownChannel {
 function range(values: Float64Array): { min: number; max: number } {
   let min = Number.POSITIVE_INFINITY;
   let max = Number.NEGATIVE_INFINITY;
-  for (const value of values) {
+  for (let i = 0; i < values.length; i++) {
+    const value = values[i];
     if (value < min) min = value;
     if (value > max) max = value;
   }
@@ -68,7 +69,7 @@ function pressureChannel(
 /**
  * Turns raw columns into channels in canonical units. A known quantity whose unit is missing or does not fit keeps
  * its raw values as a free channel with a problem entry. The first of two columns of one channel wins.
- * `drive` tells which axle is driven; without it front and rear wheel speeds stay free channels.
+ * Values are converted in place. `drive` tells which axle is driven; without it front and rear wheel speeds stay free channels.
  */
 export function buildChannels(
   columns: readonly RawColumn[],
@@ -77,7 +78,7 @@ export function buildChannels(
   problems: LogProblem[],
 ): LogChannel[] {
   const taken = new Set<string>();
-  return columns.map((column) => {
+  const channels = columns.map((column) => {
     const built = buildChannel(column, key, drive, problems);
     if (built.channel === null) return built;
     if (taken.has(built.channel)) {
@@ -90,6 +91,21 @@ export function buildChannels(
     taken.add(built.channel);
     return built;
   });
+  for (const { title } of columns) {
+    if (key.columns?.[title]) continue;
+    const { channel, unknownWord, choice } = readTitle(title);
+    if (choice)
+      problems.push({
+        code: "title_ambiguous",
+        message: `"${title}" can be ${choice}; it is kept as a free channel. Choose in a channel key.`,
+      });
+    else if (unknownWord && channel && !taken.has(channel))
+      problems.push({
+        code: "title_in_doubt",
+        message: `"${title}" looks like ${channel}, but "${unknownWord}" in it is not understood; it is kept as a free channel. Choose in a channel key.`,
+      });
+  }
+  return channels;
 }
 
 function buildChannel(
@@ -122,7 +138,7 @@ function buildChannel(
       channel =
         (drive === "FWD") === (reading.axle === "front") ? "wheel_speed_driven" : "wheel_speed_undriven";
   }
-  if (channel === null) return asFound(column, unitFound);
+  if (channel === null || (reading.unknownWord && !stated)) return asFound(column, unitFound);
   const expected = CHANNEL_UNITS[channel];
   let parsed: ParsedUnit | null = parseUnit(unitFound);
   const fits =
@@ -132,7 +148,8 @@ function buildChannel(
   if (!fits && unitFound !== null && !stated?.unit && !column.unitRowText && !/[[({]/.test(title))
     unitFound = null;
   if (!fits) {
-    if (unitFound === null && expected.withoutUnit !== null) parsed = parseUnit(expected.withoutUnit);
+    if (unitFound === null && expected.withoutUnit !== null && !reading.needsUnit)
+      parsed = parseUnit(expected.withoutUnit);
     else {
       problems.push({
         code: unitFound === null ? "unit_unknown" : "unit_does_not_fit",
@@ -143,10 +160,9 @@ function buildChannel(
   }
   if (parsed === null) return asFound(column, unitFound);
   const from = parsed;
-  const values =
-    from.factor === 1 && from.offset === 0
-      ? column.values
-      : column.values.map((value) => toCanonical(value, from));
+  const { values } = column;
+  if (from.factor !== 1 || from.offset !== 0)
+    for (let i = 0; i < values.length; i++) values[i] = toCanonical(values[i], from);
   if (channel === "manifold_pressure" && !stated) {
     channel = pressureChannel(
       from.reference ?? reading.pressureReference,

@@ -47,21 +47,30 @@ const unit = (dimension: Dimension, factor: number, offset = 0): ParsedUnit => (
 });
 
 const SPELLINGS: readonly [ParsedUnit, string][] = [
-  [unit("time", 1), "s sec secs second seconds sek sekunden"],
+  [
+    unit("time", 1),
+    "s sec secs second seconds sek sekunden seconde secondes secondi segundo segundos seconden sekunder sekund sekundy",
+  ],
   [unit("time", 1e-3), "ms msec millisecond milliseconds millis"],
   [unit("time", 1e-6), "us μs µs usec microseconds"],
   [unit("time", 1e-9), "ns nanoseconds"],
   [unit("time", 60), "min minute minutes minuten"],
   [unit("time", 3600), "h hr hour hours stunden"],
   [unit("speed", 1), "m/s mps meterspersecond meters/second m/sec"],
-  [unit("speed", KMH_MPS), "km/h kmh kph kmph km/hr km/std"],
+  [unit("speed", KMH_MPS), "km/h kmh kph kmph km/hr km/std km/u km/t km/tim km/godz km/hod"],
   [unit("speed", MPH_MPS), "mph mi/h mile/h miles/h milesperhour miles/hour"],
   [unit("speed", KNOT_MPS), "kn kt kts knot knots knoten"],
   [unit("speed", FPS_MPS), "ft/s fps"],
-  [unit("rotation", 1), "rpm 1/min min-1 min^-1 /min r/min rev/min u/min upm umin"],
+  [
+    unit("rotation", 1),
+    "rpm 1/min min-1 min^-1 /min r/min rev/min u/min upm umin tr/min trs/min tours/min giri/min omw/min toeren/min t/min varv/min v/min rot/min obr/min obr./min ot/min ot./min",
+  ],
   [unit("rotation", 60), "1/s rps rev/s hz"],
   [unit("rotation", 1 / RPM_RADPS), "rad/s"],
-  [unit("ratio", 1), "% pct percent prozent"],
+  [
+    unit("ratio", 1),
+    "% pct percent prozent procent procenta pourcent pourcentage porcentaje porcentagem percento",
+  ],
   [unit("pressure", 1e-3), "pa"],
   [unit("pressure", 0.1), "hpa mbar millibar"],
   [unit("pressure", 1), "kpa"],
@@ -72,12 +81,15 @@ const SPELLINGS: readonly [ParsedUnit, string][] = [
   [unit("pressure", MMHG_KPA), "mmhg"],
   [unit("pressure", ATMOSPHERE_KPA), "atm"],
   [unit("pressure", TECHNICAL_ATMOSPHERE_KPA), "kgf/cm2 kg/cm2"],
-  [unit("temperature", 1), "°c c degc deg.c celsius gradc"],
-  [unit("temperature", 5 / 9, -160 / 9), "°f f degf deg.f fahrenheit"],
+  [unit("temperature", 1), "°c c degc deg.c celsius gradc degcelsius °celsius gradcelsius"],
+  [unit("temperature", 5 / 9, -160 / 9), "°f f degf deg.f fahrenheit °fahrenheit"],
   [unit("temperature", 1, -ZERO_CELSIUS_K), "k kelvin degk"],
-  [unit("angle", 1), "° deg degs degree degrees grad °kw °ca °crk °btdc degbtdc degca degcrk °kurbelwinkel"],
+  [
+    unit("angle", 1),
+    "° deg degs degree degrees grad °kw °ca °crk °btdc degbtdc degca degcrk °kurbelwinkel °v.ot °vot °vil °dv grados gradi graden grader stopnie stupně °avpmh",
+  ],
   [unit("angle", RADIAN_DEG), "rad"],
-  [unit("length", 1), "m metre metres meter meters"],
+  [unit("length", 1), "m metre metres meter meters mètre mètres metro metros metri"],
   [unit("length", 1000), "km"],
   [unit("length", FOOT_M), "ft foot feet"],
   [unit("length", MILE_M), "mi mile miles"],
@@ -89,7 +101,8 @@ const SPELLINGS: readonly [ParsedUnit, string][] = [
 const TABLE = new Map<string, ParsedUnit>();
 for (const [parsed, names] of SPELLINGS) for (const name of names.split(" ")) TABLE.set(name, parsed);
 
-const PRESSURE_REFERENCE = /^(.*?)[\s(._-]*(abs|absolute|absolut|a|g|gauge|rel|relativ|relative|ü)\)?$/;
+const PRESSURE_REFERENCE =
+  /^(.*?)[\s(._-]*(abs|absolute|absolut|absolue|absoluta|assoluta|a|g|gauge|rel|relativ|relative|relativa|ü)\.?\)?$/;
 
 function fold(text: string): string {
   // The masculine ordinal is a common slip for the degree sign; NFKC turns ² into 2 and a superscript minus into U+2212.
