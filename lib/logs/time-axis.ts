@@ -1,5 +1,6 @@
 import { FileRefusedError } from "@/lib/errors";
 import type { LogProblem } from "@/lib/logs/types";
+import { quantile } from "@/lib/signal/statistics";
 
 /** Rows to keep, in rising time, with their time from the first kept sample. */
 export interface TimeAxis {
@@ -138,7 +139,7 @@ export function buildTimeAxis(rawS: Float64Array): TimeAxis {
 function ratesAndGaps(timeS: Float64Array, problems: LogProblem[]): Pick<TimeAxis, "rateHz" | "gaps"> {
   const steps = new Float64Array(Math.max(0, timeS.length - 1));
   for (let i = 0; i < steps.length; i++) steps[i] = timeS[i + 1] - timeS[i];
-  const step = steps.slice().sort()[steps.length >> 1] ?? 0;
+  const step = steps.length > 0 ? quantile(steps, 0.5) : 0;
   const gaps: { fromS: number; toS: number }[] = [];
   for (let i = 0; i < steps.length; i++) {
     if ((steps[i] ?? 0) > GAP_STEPS * step) gaps.push({ fromS: timeS[i] ?? 0, toS: timeS[i + 1] ?? 0 });

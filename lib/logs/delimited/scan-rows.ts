@@ -32,17 +32,29 @@ export interface RowTarget {
 /** Exact powers of ten: the whole-number mantissa of up to 15 digits and 10^k are exact, so one division rounds once. */
 const TEN = Float64Array.from({ length: 16 }, (_, k) => Number(`1e${k}`));
 const MOST_DIGITS = 15;
+/** So many digits fit a machine word. */
+const WORD_DIGITS = 9;
 /** A quoted cell with line ends in it may be this long; beyond, the quote is taken as a mark of its own. */
 const LONGEST_QUOTED_LINE = 1 << 20;
 /** No table of numbers has such a line; the bound keeps a made-up file from claiming memory. */
 const LONGEST_LINE = 8 << 20;
-const [TAB, CR, SPACE, QUOTE, PLUS, MINUS, ZERO, NINE] = [9, 13, 32, 34, 43, 45, 48, 57];
+const [TAB, CR, SPACE, QUOTE, PLUS, MINUS, ZERO] = [9, 13, 32, 34, 43, 45, 48];
 
 function refuseLine(line: number): never {
   throw new FileRefusedError(
     "line_too_long",
     `Line ${line} is longer than ${LONGEST_LINE >> 20} MB, which no table of numbers has. Export the log again with one row a line.`,
   );
+}
+
+/** Digits of [from, to) as one whole number, the decimal sign passed over; exact up to 15 digits. */
+function longMantissa(bytes: Uint8Array, from: number, to: number): number {
+  let mantissa = 0;
+  for (let i = from; i < to; i++) {
+    const digit = bytes[i] - ZERO;
+    if (digit >>> 0 < 10) mantissa = mantissa * 10 + digit;
+  }
+  return mantissa;
 }
 
 /**
@@ -114,6 +126,15 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
 
   /** Reads whole lines of [from, to), the last byte of which is a line end; gives the position up to which it came. */
   function scan(bytes: Uint8Array, from: number, to: number, final: boolean): number {
+    // The engine keeps locals of a hot loop in registers, but reads what a closure holds again and again.
+    const [cellEnd, rowEnd, point, tab, cells, asText] = [
+      delimiter,
+      lineEnd,
+      decimal,
+      whiteTab,
+      width,
+      textColumn,
+    ];
     let i = from;
     lines: while (i < to) {
       const start = i;
@@ -128,68 +149,71 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
       for (; ; column++) {
         const cellStart = i;
         let c = bytes[i];
-        while (c === SPACE || c === whiteTab) c = bytes[++i];
+        if (c <= SPACE) while (c === SPACE || c === tab) c = bytes[++i];
         const negative = c === MINUS;
         if (negative || c === PLUS) c = bytes[++i];
+        const first = i;
         let mantissa = 0;
-        let first = i;
-        while (c >= ZERO && c <= NINE) {
-          mantissa = mantissa * 10 + (c - ZERO);
+        let digit = c - ZERO;
+        while (digit >>> 0 < 10) {
+          mantissa = (Math.imul(mantissa, 10) + digit) | 0;
           c = bytes[++i];
+          digit = c - ZERO;
         }
         let digits = i - first;
         let fraction = 0;
-        if (c === decimal) {
+        if (c === point) {
           c = bytes[++i];
-          first = i;
-          while (c >= ZERO && c <= NINE) {
-            mantissa = mantissa * 10 + (c - ZERO);
+          digit = c - ZERO;
+          const begin = i;
+          while (digit >>> 0 < 10) {
+            mantissa = (Math.imul(mantissa, 10) + digit) | 0;
             c = bytes[++i];
+            digit = c - ZERO;
           }
-          fraction = i - first;
+          fraction = i - begin;
           digits += fraction;
         }
-        while (c === SPACE || c === whiteTab) c = bytes[++i];
-        if (c === CR && bytes[i + 1] === lineEnd) c = bytes[++i];
+        const stop = i;
+        if (c <= SPACE) {
+          while (c === SPACE || c === tab) c = bytes[++i];
+          if (c === CR && bytes[i + 1] === rowEnd) c = bytes[++i];
+        }
         let value: number;
-        if (
-          (c === delimiter || c === lineEnd) &&
-          digits > 0 &&
-          digits <= MOST_DIGITS &&
-          column !== textColumn
-        ) {
-          value = fraction > 0 ? mantissa / TEN[fraction] : mantissa;
+        if ((c === cellEnd || c === rowEnd) && digits > 0 && digits <= MOST_DIGITS && column !== asText) {
+          value = digits <= WORD_DIGITS ? mantissa : longMantissa(bytes, first, stop);
+          if (fraction > 0) value /= TEN[fraction];
           if (negative) value = -value;
           filled = column + 1;
         } else {
-          while (c !== delimiter && c !== lineEnd && c !== QUOTE) c = bytes[++i];
+          while (c !== cellEnd && c !== rowEnd && c !== QUOTE) c = bytes[++i];
           if (c === QUOTE) {
             i = slowLine(bytes, start, to, final);
             if (i === start) return start;
             continue lines;
           }
-          const stop = c === lineEnd && i > cellStart && bytes[i - 1] === CR ? i - 1 : i;
+          const textEnd = c === rowEnd && i > cellStart && bytes[i - 1] === CR ? i - 1 : i;
           value = Number.NaN;
-          if (stop > cellStart) {
-            const text = decode(bytes.subarray(cellStart, stop));
+          if (textEnd > cellStart) {
+            const text = decode(bytes.subarray(cellStart, textEnd));
             if (text.trim() !== "") {
               filled = column + 1;
-              if (column < width) value = target.oddCell(column, text);
+              if (column < cells) value = target.oddCell(column, text);
             }
           }
         }
-        if (column < width) columns[column][row] = value;
+        if (column < cells) columns[column][row] = value;
         i++;
-        if (c === lineEnd) break;
+        if (c === rowEnd) break;
       }
       line++;
-      const cells = column + 1;
-      if (filled === 0 && (cells === 1 || blankDelimiter)) continue;
-      for (let k = cells; k < width; k++) columns[k][row] = Number.NaN;
+      const found = column + 1;
+      if (filled === 0 && (found === 1 || blankDelimiter)) continue;
+      for (let k = found; k < cells; k++) columns[k][row] = Number.NaN;
       current.bytes = bytes;
       current.from = start;
       current.end = i;
-      target.endRow(line, cells, filled);
+      target.endRow(line, found, filled);
     }
     return i;
   }
