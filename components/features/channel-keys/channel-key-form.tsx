@@ -5,6 +5,7 @@ import { appliedWords, type KeyAnswer } from "@/components/features/channel-keys
 import { ColumnRow, type StatedColumn } from "@/components/features/channel-keys/column-row";
 import { LayoutFields } from "@/components/features/channel-keys/layout-fields";
 import { RowsAsParsed } from "@/components/features/channel-keys/rows-as-parsed";
+import { UnitLists } from "@/components/features/channel-keys/unit-lists";
 import { type KeyPreview, usePreview } from "@/components/features/channel-keys/use-preview";
 import { Button } from "@/components/ui/action/button";
 import { Checkbox } from "@/components/ui/form/checkbox";
@@ -83,6 +84,7 @@ export function ChannelKeyForm(props: ChannelKeyFormProps) {
           description="Every column is a channel or left out. The figures are least, median and most."
           id="columns"
         >
+          <UnitLists />
           <ul aria-label="Columns" className="flex flex-col" aria-busy={isReading}>
             {preview.columns.map((column, index) => (
               <ColumnRow

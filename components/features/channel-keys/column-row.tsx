@@ -1,6 +1,7 @@
 "use client";
 
 import { SparkLine } from "@/components/features/channel-keys/spark-line";
+import { unitListId } from "@/components/features/channel-keys/unit-lists";
 import { numberText } from "@/components/ui/data/number-text";
 import { Select } from "@/components/ui/form/select";
 import { TextInput } from "@/components/ui/form/text-input";
@@ -19,19 +20,6 @@ const OWN = "own name";
 const CHANNELS = KNOWN_CHANNELS.filter((channel) => channel !== "time");
 const isKnown = (channel: string): channel is KnownChannel =>
   (KNOWN_CHANNELS as readonly string[]).includes(channel);
-
-/** Common units by dimension; any other that the reader knows can be typed. */
-const UNITS: Record<string, readonly string[]> = {
-  speed: ["km/h", "mph", "m/s", "knots"],
-  rotation: ["1/min", "1/s", "rad/s"],
-  ratio: ["%"],
-  pressure: ["kPa", "bar", "mbar", "hPa", "psi", "bar gauge", "bar abs"],
-  temperature: ["°C", "°F", "K"],
-  angle: ["°", "rad"],
-  length: ["m", "ft", "km"],
-  acceleration: ["m/s²", "g"],
-  number: ["1"],
-};
 
 function rangeText({ min, median, max, unit }: PreviewColumn): string {
   if (min === null || max === null) return "no values";
@@ -55,7 +43,7 @@ export function ColumnRow({ column, stated, required, onChange }: ColumnRowProps
   const shown = stated ? stated.channel : column.channel;
   const selected = shown === null ? "" : isKnown(shown) ? shown : OWN;
   const dimension = selected !== "" && isKnown(selected) ? CHANNEL_UNITS[selected].dimension : null;
-  const listId = dimension === null ? undefined : `units-${dimension}`;
+  const listId = dimension === null ? undefined : unitListId(dimension);
   const state =
     selected === "" ? "left out" : role === "free" && selected !== OWN ? "not understood yet" : null;
   return (
@@ -124,13 +112,6 @@ export function ColumnRow({ column, stated, required, onChange }: ColumnRowProps
             />
           )}
         </div>
-      )}
-      {listId && dimension && (
-        <datalist id={listId}>
-          {UNITS[dimension]?.map((unit) => (
-            <option key={unit} value={unit} />
-          ))}
-        </datalist>
       )}
       {state && <p className="text-13 text-ink2">{state}</p>}
       {plausible && (

@@ -3,7 +3,7 @@ import type { LogPreview } from "@/lib/logs/preview/preview-log";
 
 /** A preview in a few words for one line: what was found, what is left out, what is in doubt. */
 export function previewWords({ columns, problems, refusal }: LogPreview) {
-  const inDoubt = problems.filter((problem) => DOUBTS.has(problem.code)).map((problem) => problem.message);
+  const inDoubt = problems.filter((problem) => !PLAIN.has(problem.code)).map((problem) => problem.message);
   const odd = columns.flatMap(({ plausible }) =>
     plausible && !plausible.looksRight ? [plausible.sentence] : [],
   );
@@ -11,22 +11,31 @@ export function previewWords({ columns, problems, refusal }: LogPreview) {
     found: columns.flatMap(({ role, channel }) =>
       role === "channel" && channel ? [channelWords(channel)] : [],
     ),
-    leftOut: columns.filter(({ role }) => role === "free" || role === "text").map(({ title }) => title),
+    leftOut: columns
+      .filter(({ role, channel }) => role === "text" || (role === "free" && channel === null))
+      .map(({ title }) => title),
     inDoubt: [...(refusal ? [refusal.message] : []), ...inDoubt, ...odd],
   };
 }
 
-/** Findings about which the file leaves a choice that a person can make. */
-const DOUBTS = new Set([
-  "unit_unknown",
-  "unit_does_not_fit",
-  "axle_drive_unknown",
-  "speed_kind_assumed",
-  "second_column_of_channel",
-  "time_unit_assumed",
-  "pressure_taken_as_absolute",
-  "pressure_taken_as_gauge",
-  "key_column_not_found",
-  "text_in_column",
-  "rows_refused",
+/** Findings that leave nothing to choose: what the recording is like, or told in the column's own line. Any other is a doubt. */
+const PLAIN = new Set([
+  "channel_left_out",
+  "fix_missing",
+  "gaps",
+  "group_left_out",
+  "implausible_values",
+  "midnight_passed",
+  "other_lines",
+  "points_left_out",
+  "preamble",
+  "repeated_header",
+  "repeated_time",
+  "rows_out_of_order",
+  "rows_without_time",
+  "several_segments",
+  "speed_from_positions",
+  "text_channels_left_out",
+  "time_jumps_back",
+  "time_unit_stated",
 ]);

@@ -23,6 +23,7 @@ export const channelKeySchema = z.strictObject({
           .trim()
           .min(1, "Write a name, or leave the column out.")
           .max(60, "A channel's name has at most 60 characters.")
+          .refine((channel) => channel !== "time", "The time column is chosen above the columns.")
           .nullable(),
         unit: z.string().trim().max(20, "A unit has at most 20 characters.").optional(),
       }),

@@ -3,11 +3,13 @@ import { cleanup, fireEvent, render, screen, waitFor, within } from "@testing-li
 import { afterEach, describe, expect, it, vi } from "vitest";
 import { appliedWords } from "@/components/features/channel-keys/applied-words";
 import { ChannelKeyWork } from "@/components/features/channel-keys/channel-key-work";
+import { UnitLists } from "@/components/features/channel-keys/unit-lists";
 import { UploadReadingLine } from "@/components/features/channel-keys/upload-reading";
 import { RefusedRowsCard } from "@/components/features/runs/refused-rows";
 import { previewLog } from "@/lib/logs/preview/preview-log";
 import type { ChannelKey } from "@/lib/logs/types";
 import type { StatedKey, UploadReading } from "@/lib/services/channel-keys/schema";
+import { parseUnit } from "@/lib/units/unit-text";
 
 const RUN = "6f0c0c5e-2a0b-4d52-9f0f-0a4b2d1c9e11";
 const KEY = "6f0c0c5e-2a0b-4d52-9f0f-0a4b2d1c9e22";
@@ -128,6 +130,13 @@ describe("the channel-key page", () => {
   it("says when nothing changes", () => {
     expect(appliedWords({ judgedAgain: [], cited: [] })).toBe("No run is read differently.");
   });
+});
+
+it("offers only units that the reader knows", () => {
+  const { container } = render(<UnitLists />);
+  const options = [...container.querySelectorAll("option")].map((option) => option.value);
+  expect(options.length).toBeGreaterThan(20);
+  for (const unit of options) expect(parseUnit(unit), unit).not.toBeNull();
 });
 
 describe("the line below a sent log", () => {

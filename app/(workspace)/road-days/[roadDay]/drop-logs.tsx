@@ -127,7 +127,7 @@ export function DropLogs(props: DropLogsProps) {
         uploads={uploads}
         purpose="log"
         title="Drop run logs here"
-        hint="CSV or other delimited text, plain or packed as .gz, many at once. Each is prefilled from the order card and can be changed."
+        hint="CSV or other delimited text, MDF 4, NMEA 0183 or GPX, plain or packed as .gz, many at once. Each is prefilled from the order card and can be changed."
         onAdded={prefill}
         renderFields={(item) => {
           const values = fields[item.id];
