@@ -15,7 +15,7 @@ const TEXT =
   /\.(ts|tsx|mts|mjs|cjs|js|json|css|sql|csv|md|svg|yml|yaml|html|txt|sh)$|(^|\/)(run|\.gitignore)$/;
 const PRODUCT = /^(app|components|db|lib|storage|docker-less-setup)\//;
 const MAY_READ_ENVIRONMENT =
-  /^lib\/env\.ts$|^docker-less-setup\/|^[^/]+\.config\.\w+$|^tests\/(support|e2e|architecture)\//;
+  /^lib\/env\.ts$|^docker-less-setup\/|^[^/]+\.config\.\w+$|^tests\/(support|e2e|architecture|bench)\//;
 /** Where words for the screen, for mail and for prints stand. */
 const SCREEN_TEXT = /^(app|components|lib\/(format|gates|jobs|mail|services))\//;
 /** This file and its test name what they forbid. */
