@@ -27,7 +27,8 @@ interface Pull {
 
 /**
  * Limits of an engine quantity at full load on side B. Met: every pull's worst value and the whole interval of their mean lie
- * inside, over pulls that are long enough. Not met: the whole interval lies beyond. Else too little, also when not recorded.
+ * inside, over pulls that are long enough, and no usable pull lacks the quantity: what was not recorded may have been beyond.
+ * Not met: the whole interval lies beyond. Else too little.
  */
 export function channelLimitGate(gate: ChannelLimitGate, evidence: GateEvidence): GateResult {
   const words = QUANTITIES[gate.quantity];
@@ -70,11 +71,15 @@ function verdictOn(gate: ChannelLimitGate, words: QuantityWords, evidence: GateE
   const open = (["not_met", "too_little"] as const).flatMap((state) =>
     verdicts.filter((verdict) => verdict.state === state),
   );
-  const verdict = open[0] ?? met(verdicts.map(({ why }) => why).join(" "));
   const silent = runs.length - pulls.length;
-  return silent === 0
-    ? verdict
-    : { ...verdict, why: `${verdict.why} Not told by ${counted(silent, "other pull")} on side B.` };
+  if (silent === 0) return open[0] ?? met(verdicts.map(({ why }) => why).join(" "));
+  const unknown = `${silent} of ${counted(runs.length, "usable pull")} on side B ${silent === 1 ? "does" : "do"} not tell it.`;
+  return open[0]
+    ? { ...open[0], why: `${open[0].why} ${unknown}` }
+    : tooLittle(
+        `${verdicts.map(({ why }) => why).join(" ")} ${unknown}`,
+        "Log this channel on every pull, and drive those that do not tell it again.",
+      );
 }
 
 /** Holds the worst value of each pull against one limit; `end` says which end of the quantity it is. */

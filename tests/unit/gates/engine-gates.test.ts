@@ -59,9 +59,26 @@ describe("Limit of an engine channel", () => {
     expect(got.why).toBe("Highest 1.2° in run r3; the mean of 4 pulls is 1.1 ± 0.1°, the limit 3°.");
   });
 
-  it("says of how many pulls it knows nothing", () => {
-    const some = [...knock(1, 1.1, 1.2, 1.1), fullLoad({ channels: {} })];
-    expect(one(limit({}), evidence(some)).why).toMatch(/Not told by 1 other pull on side B\.$/);
+  it("is not met while usable pulls do not tell it, and says how many and what to do", () => {
+    const bare = fullLoad({ channels: {} });
+    const told = knock(1, 1.1, 1.2, 1.1);
+    const some = one(limit({}), evidence([...told, bare]));
+    expect(some.state).toBe("too_little");
+    expect(some.why).toMatch(/the limit 3°\. 1 of 5 usable pulls on side B does not tell it\.$/);
+    expect(some.next).toContain("Log this channel on every pull");
+    const few = one(limit({}), evidence([...told.slice(1), ...Array.from({ length: 9 }, () => bare)]));
+    expect(few).toMatchObject({ state: "too_little", why: expect.stringContaining("9 of 12 usable pulls") });
+    // Whoever is beyond in the recorded pulls is beyond, whatever the others did.
+    expect(one(limit({}), evidence([...knock(3.9, 4, 4.1, 4), bare]))).toMatchObject({
+      state: "not_met",
+      why: expect.stringContaining("1 of 5 usable pulls on side B does not tell it."),
+    });
+  });
+
+  it("does not ask it of a pull that is not usable", () => {
+    const scene = evidence([...knock(1, 1.1, 1.2, 1.1), fullLoad({ channels: {} })]);
+    if (scene.result) scene.result.runs[4].usable = false;
+    expect(one(limit({}), scene).state).toBe("met");
   });
 
   it("is too little where the channel is not recorded, and says so", () => {
