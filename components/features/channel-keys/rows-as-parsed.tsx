@@ -1,14 +1,18 @@
+import { numberText } from "@/components/ui/data/number-text";
 import { Table } from "@/components/ui/data/table";
 import { Card } from "@/components/ui/layout/card";
 import type { LogPreview } from "@/lib/logs/preview/preview-log";
+import { previewWords } from "@/lib/logs/preview/preview-words";
 
 /** The first rows of values, cell by cell, as the import takes them. */
 export function RowsAsParsed({ preview }: { preview: LogPreview }) {
-  const { columns, rows, rowsRefused, wholeFile, rowsRead } = preview;
+  const { columns, rows, rowsRefused, wholeFile, rowsRead, time } = preview;
+  const { remarks } = previewWords(preview);
+  const rate = time ? `, ${numberText(time.rateHz, { decimals: time.rateHz < 10 ? 1 : 0 })} a second` : "";
   return (
     <Card
       title="First rows as parsed"
-      description={`${rowsRead} rows read${wholeFile ? "" : " of the beginning of the file"}; the import parses the same way.`}
+      description={`${numberText(rowsRead)} rows read${rate}${wholeFile ? "" : " of the beginning of the file"}; the import parses the same way.`}
       id="rows"
       flush
     >
@@ -37,6 +41,13 @@ export function RowsAsParsed({ preview }: { preview: LogPreview }) {
                 </>
               )}
             </li>
+          ))}
+        </ul>
+      )}
+      {remarks.length > 0 && (
+        <ul aria-label="Also found" className="flex flex-col gap-1 border-line border-t px-4 py-3 text-13">
+          {remarks.map((remark) => (
+            <li key={remark}>{remark}</li>
           ))}
         </ul>
       )}

@@ -14,6 +14,10 @@ export function previewWords({ columns, problems, refusal }: LogPreview) {
     leftOut: columns
       .filter(({ role, channel }) => role === "text" || (role === "free" && channel === null))
       .map(({ title }) => title),
+    /** What else was found; it leaves nothing to choose. */
+    remarks: problems
+      .filter(({ code }) => PLAIN.has(code) && code !== "implausible_values")
+      .map(({ message }) => message),
     inDoubt: [...(refusal ? [refusal.message] : []), ...inDoubt, ...odd],
   };
 }

@@ -38,8 +38,8 @@ export function runTraces(log: LogTable, result: RunResult): RunTraces {
   );
   const rows = table.timeS.length;
   const traceOf = (values: (number | null)[], k: number): TraceChannel => {
-    const { channel, column, unit } = channels[k];
-    return { channel: channel ?? column, label: (channel && LABELS[channel]) ?? column, unit, values };
+    const { channel, unit, column, name = column } = channels[k];
+    return { channel: channel ?? name, label: (channel && LABELS[channel]) ?? name, unit, values };
   };
   const rounded = (value: number) => (Number.isFinite(value) ? Number(value.toPrecision(6)) : null);
   const segments = { ...result.segments };

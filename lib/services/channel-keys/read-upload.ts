@@ -13,7 +13,9 @@ import { readStaged } from "@/lib/services/uploads/seal";
 
 function summary(preview: LogPreview) {
   const { time, rowsRead, columns } = preview;
-  return { rateHz: time?.rateHz ?? null, rowsRead, columnCount: columns.length, ...previewWords(preview) };
+  const { found, leftOut, inDoubt } = previewWords(preview);
+  const rateHz = time?.rateHz ?? null;
+  return { rateHz, rowsRead, columnCount: columns.length, found, leftOut, inDoubt };
 }
 
 /**

@@ -7,7 +7,9 @@ import { previewLog } from "@/lib/logs/preview/preview-log";
 import { previewWords } from "@/lib/logs/preview/preview-words";
 import { readLog } from "@/lib/logs/read-log";
 
-test("the demo's older recorder is refused by itself and read to the same values with its key", () => {
+test("the demo's older recorder is refused by itself and read to the same values with its key", {
+  timeout: 60_000,
+}, () => {
   const effects = { effectA: EFFECTS.asFound, effectB: EFFECTS.asFound };
   const [run] = driveRoadDay({ twinsPerSide: 1, ...effects, tempC: 16, seed: 3 });
   const csv = run?.csv ?? Buffer.alloc(0);

@@ -134,7 +134,7 @@ export function DropLogs(props: DropLogsProps) {
           return (
             values && (
               <div className="flex flex-col gap-3">
-                {item.uploadId && item.phase === "sent" && (
+                {item.uploadId && (
                   <UploadReadingLine
                     uploadId={item.uploadId}
                     roadDayId={roadDayId}
