@@ -1,4 +1,6 @@
 import { CHANNEL_UNITS, readTitle } from "@/lib/logs/channel-names";
+import { channelWords } from "@/lib/logs/channel-words";
+import { rangeDoubt, speedUnitDoubts } from "@/lib/logs/range-doubt";
 import type { ChannelKey, KnownChannel, LogChannel, LogProblem } from "@/lib/logs/types";
 import { KNOWN_CHANNELS } from "@/lib/logs/types";
 import { type ParsedUnit, parseUnit, toCanonical } from "@/lib/units/unit-text";
@@ -105,6 +107,7 @@ export function buildChannels(
         message: `"${title}" looks like ${channel}, but "${unknownWord}" in it is not understood; it is kept as a free channel. Choose in a channel key.`,
       });
   }
+  problems.push(...speedUnitDoubts(channels));
   return channels;
 }
 
@@ -179,12 +182,11 @@ function buildChannel(
     });
   }
   const { min, max } = range(values);
-  const [low, high] = CHANNEL_UNITS[channel].plausible;
-  if (min < low || max > high) {
+  const doubt = rangeDoubt(channel, { min, max });
+  if (doubt)
     problems.push({
       code: "implausible_values",
-      message: `"${title}" runs from ${min.toPrecision(4)} to ${max.toPrecision(4)} ${expected.unit}, which is not plausible for ${channel}. Check its unit.`,
+      message: `"${title}" runs from ${min.toPrecision(4)} to ${max.toPrecision(4)} ${expected.unit === "1" ? "" : `${expected.unit} `}as ${channelWords(channel)}: ${doubt} Check the column, or state its unit in a channel key.`,
     });
-  }
   return { channel, column: title, unitFound, unit: expected.unit, values };
 }

@@ -3,6 +3,7 @@ import { isTimeTitle, splitTitle } from "@/lib/logs/channel-names";
 import { buildChannels, type RawColumn } from "@/lib/logs/channel-values";
 import { type CollectedTable, createCollector, hasNumber } from "@/lib/logs/delimited/collect-rows";
 import { firstRows } from "@/lib/logs/delimited/delimited-rows";
+import { spreadTimes } from "@/lib/logs/delimited/spread-times";
 import { findTableForm, type TableForm } from "@/lib/logs/delimited/table-form";
 import { openText } from "@/lib/logs/delimited/text-bytes";
 import { checkMissing } from "@/lib/logs/missing-values";
@@ -172,6 +173,8 @@ function buildTable(read: {
       message: "The clock passes midnight; time was carried on into the next day.",
     });
   }
+  const others = table.columns.filter((_, c) => c !== time.index);
+  spreadTimes(rawS, others, problems);
   const axis = buildTimeAxis(rawS);
   problems.push(...axis.problems);
   const { columns, leftOut } = takeColumns(table, axis.order, form, time.index);

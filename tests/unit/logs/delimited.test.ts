@@ -219,9 +219,12 @@ describe("time", () => {
     expect(table.channels[0].values[0]).toBeCloseTo(30.5 / 3.6, 12);
     expect(table.problems.map((p) => p.code)).toContain("time_jumps_back");
   });
-  it("equal times keep the last row", () => {
-    const table = read(rows("Time [s],GPS speed [m/s]", (i) => `${Math.floor(i / 2) / 10},${i}.5`, 40));
-    expect(Array.from(table.channels[0].values.slice(0, 3))).toEqual([1.5, 3.5, 5.5]);
+  it("a time that slips in twice keeps its last row", () => {
+    const table = read(
+      rows("Time [s],GPS speed [m/s]", (i) => `${(i % 5 === 1 ? i - 1 : i) / 10},${i}.5`, 40),
+    );
+    expect(Array.from(table.channels[0].values.slice(0, 3))).toEqual([1.5, 2.5, 3.5]);
+    expect(table.problems.map((p) => p.code)).toContain("repeated_time");
   });
   it.each([
     ["day first", (i: number) => `01.12.2030 23:59:59,${String(100 + i * 10).padStart(3, "0")}`, "iso"],
