@@ -36,7 +36,7 @@ export function addTimes(
   const counts = (run: CampaignRun, k: number) =>
     results[k].usable && (run.kind === "sprint" || pullIds.has(run.id));
   const timed = runs.flatMap((run, k) => {
-    const { times_s, times_uncertainty_s, fall_effect_s } = results[k];
+    const { times_s, times_uncertainty_s, fall_effect_s, fall_effect_uncertainty_s } = results[k];
     if (run.kind === "coast-down" || !counts(run, k) || !times_s) return [];
     return [
       {
@@ -49,6 +49,7 @@ export function addTimes(
         timesS: times_s,
         uncertaintiesS: times_uncertainty_s ?? {},
         fallEffectsS: fall_effect_s ?? {},
+        fallUncertaintiesS: fall_effect_uncertainty_s ?? {},
       },
     ];
   });

@@ -5,12 +5,13 @@ import type { Reason } from "@/lib/measure/types";
 import { tQuantile } from "@/lib/signal/distributions";
 import { leastSquares } from "@/lib/signal/least-squares";
 
-/** A usable run with its times, its standard uncertainties and what the road's fall adds to each time (absent: not known). */
+/** A usable run with its times and what the road's fall adds to each (absent: not known), with their standard uncertainties. */
 export interface TimedRun extends ComparedRun {
   kind: "pull" | "sprint";
   timesS: Readonly<Record<string, number>>;
   uncertaintiesS: Readonly<Record<string, number>>;
   fallEffectsS: Readonly<Record<string, number>>;
+  fallUncertaintiesS: Readonly<Record<string, number>>;
 }
 
 interface Sides {
@@ -78,7 +79,7 @@ function oneTime(rows: readonly TimedRun[], name: string, settings: Sides): Time
         ? 1
         : 0,
   );
-  const valueAt = (sideB: number, ownS: number) => {
+  const valueAt = (sideB: number, ownS: number | null) => {
     const x = place.slice();
     x[side] = sideB;
     let value = 0;
@@ -87,7 +88,8 @@ function oneTime(rows: readonly TimedRun[], name: string, settings: Sides): Time
       value += x[i] * fit.coefficients[i];
       for (let j = 0; j < columns; j++) variance += x[i] * x[j] * fit.unscaledCovariance[i * columns + j];
     }
-    return { value, half: Math.hypot(t * fit.residualSd * Math.sqrt(Math.max(0, variance)), ownS) };
+    const scatter = t * fit.residualSd * Math.sqrt(Math.max(0, variance));
+    return { value, half: ownS === null ? null : Math.hypot(scatter, ownS) };
   };
   const [atA, atB] = [valueAt(0, own.a), valueAt(1, own.b)];
   return {
@@ -121,24 +123,35 @@ function legMean(runs: readonly TimedRun[], name: string): number {
   return known ? average(legs.map(average)) : average(runs.map((run) => run.timesS[name]));
 }
 
-/** What a side's time is uncertain by beside its scatter: instruments, and on one leg the fall, which no mean takes out. */
-function ownHalf(runs: readonly TimedRun[], name: string): number {
+/**
+ * What a side's time is uncertain by beside its scatter: instruments, and on one leg the fall, which no mean takes out: its effect
+ * and twice the uncertainty of that. Null where the fall is not known: nothing bounds its effect then.
+ */
+function ownHalf(runs: readonly TimedRun[], name: string): number | null {
   const instruments = COVERAGE * rms(runs.map((run) => run.uncertaintiesS[name] ?? 0));
   const { out, back } = legCounts(runs);
-  return out > 0 && back > 0 ? instruments : Math.hypot(instruments, fallOf(runs, name) ?? 0);
+  if (out > 0 && back > 0) return instruments;
+  const fall = fallOf(runs, name);
+  return fall && Math.hypot(instruments, fall.effectS, COVERAGE * fall.uncertaintyS);
 }
 
-const fallOf = (runs: readonly TimedRun[], name: string): number | null => {
-  const known = runs.flatMap((run) => run.fallEffectsS[name] ?? []);
-  return known.length === 0 ? null : average(known);
-};
+/** The fall's mean effect on a time. Runs of one road share what is uncertain about its fall, so their mean is no better known. */
+function fallOf(runs: readonly TimedRun[], name: string): { effectS: number; uncertaintyS: number } | null {
+  const known = runs.flatMap(
+    ({ fallEffectsS: { [name]: effectS }, fallUncertaintiesS: { [name]: uncertaintyS } }) =>
+      effectS === undefined || uncertaintyS === undefined ? [] : [{ effectS, uncertaintyS }],
+  );
+  if (known.length === 0) return null;
+  const over = (key: "effectS" | "uncertaintyS") => average(known.map((fall) => fall[key]));
+  return { effectS: over("effectS"), uncertaintyS: over("uncertaintyS") };
+}
 
-/** All runs on one leg: what the fall did to the sides differently, s. Out and back take it out otherwise. */
+/** All runs on one leg: what the fall did to the sides differently, s; what is uncertain about it is common to both. */
 function fallBetween(a: readonly TimedRun[], b: readonly TimedRun[], name: string): number {
   const legs = new Set([...a, ...b].map((run) => run.leg));
   if (legs.size > 1 && !legs.has(null)) return 0;
   const [fallA, fallB] = [fallOf(a, name), fallOf(b, name)];
-  return fallA === null || fallB === null ? 0 : Math.abs(fallB - fallA);
+  return fallA && fallB ? Math.abs(fallB.effectS - fallA.effectS) : 0;
 }
 
 function legCounts(runs: readonly TimedRun[]): LegCounts {
@@ -159,10 +172,16 @@ function legWarnings(runs: readonly TimedRun[], settings: Sides): Reason[] {
         },
       ];
     }
+    const names = [...new Set(members.flatMap((run) => Object.keys(run.timesS)))];
+    const untold = names.filter((name) => !fallOf(members, name));
+    const inIt =
+      untold.length === 0
+        ? "the fall's effect and its uncertainty are in its ±, the wind's are not."
+        : `what the fall does to ${untold.length === names.length ? "them" : untold.join(", ")} is not known, so no ± of the side's own is stated there. Log altitude.`;
     return [
       {
         code: "sprints_one_leg",
-        message: `Side ${side}: the sprints went ${out > 0 ? "out" : "back"} only, so wind and slope stay in their times; the fall's effect is in its ±. Drive both ways: the mean of out and back is the result.`,
+        message: `Side ${side}: the sprints went ${out > 0 ? "out" : "back"} only, so wind and slope stay in their times; ${inIt} Drive both ways: the mean of out and back is the result.`,
       },
     ];
   });

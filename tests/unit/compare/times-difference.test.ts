@@ -12,6 +12,7 @@ function run(changes: Partial<TimedRun> & { seconds: number }, order: number): T
     timesS: { "0-100": seconds },
     uncertaintiesS: { "0-100": 0.005 },
     fallEffectsS: {},
+    fallUncertaintiesS: {},
     ...rest,
   };
 }
@@ -82,14 +83,38 @@ describe("Difference of times", () => {
     expect(times["80-120"].half_width_s).toBeNull();
   });
 
-  it("on one leg: warns, and the fall's effect widens each side's ±", () => {
-    const runs = [6.8, 6.6, 6.6, 6.8].map((seconds, k) =>
-      run({ side: "ABBA"[k], seconds, fallEffectsS: { "0-100": -0.06 } }, k + 1),
+  const oneLeg = (falls: Partial<TimedRun>) =>
+    timesDifference(
+      [6.8, 6.6, 6.6, 6.8].map((seconds, k) => run({ side: "ABBA"[k], seconds, ...falls }, k + 1)),
+      SETTINGS,
     );
-    const { times, warnings } = timesDifference(runs, SETTINGS);
+
+  it("on one leg: warns, and the fall's effect and its uncertainty widen each side's ± (by hand)", () => {
+    const { times, warnings } = oneLeg({
+      fallEffectsS: { "0-100": -0.06 },
+      fallUncertaintiesS: { "0-100": 0.02 },
+    });
     expect(warnings.map((warning) => warning.code)).toEqual(["sprints_one_leg", "sprints_one_leg"]);
-    expect(times["0-100"].a_half_width_s).toBeGreaterThanOrEqual(0.06);
+    expect(warnings[0].message).toContain("the fall's effect and its uncertainty are in its ±");
+    // Nothing scatters: twice 0.005 s of instruments, 0.06 s of fall and twice 0.02 s of its uncertainty, √(0.0001 + 0.0036 + 0.0016).
+    expectClose(times["0-100"].a_half_width_s, Math.sqrt(0.0053), { abs: 1e-6 });
+    expectClose(times["0-100"].b_half_width_s, Math.sqrt(0.0053), { abs: 1e-6 });
     expectClose(times["0-100"].difference_s, -0.2, { abs: 1e-9 });
+  });
+
+  it("on one leg with a fall that is level by a poor altitude: the uncertainty alone widens it", () => {
+    const { times } = oneLeg({ fallEffectsS: { "0-100": 0 }, fallUncertaintiesS: { "0-100": 0.05 } });
+    expectClose(times["0-100"].a_half_width_s, Math.hypot(0.01, 0.1), { abs: 1e-6 });
+  });
+
+  it("on one leg without a known fall: states no ± of a side's own time, and does not say that the fall is in it", () => {
+    for (const falls of [{}, { fallEffectsS: { "0-100": -0.06 } }]) {
+      const { times, warnings } = oneLeg(falls);
+      expect(times["0-100"]).toMatchObject({ a_half_width_s: null, b_half_width_s: null });
+      expect(times["0-100"].half_width_s).not.toBeNull();
+      expect(warnings[0].message).toContain("is not known, so no ± of the side's own is stated there");
+      expect(warnings[0].message).not.toContain("in its ±");
+    }
   });
 
   it("claims nothing when the side goes hand in hand with the leg", () => {
