@@ -1,5 +1,6 @@
-import { and, asc, desc, eq, ne, sql } from "drizzle-orm";
+import { and, asc, desc, eq, ne, type SQL, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
+import type { JobName } from "@/db/job-queue";
 import type { ComparisonRow } from "@/db/queries/comparisons";
 import { comparisonResults, comparisons, decisions, revisions } from "@/db/tables";
 
@@ -67,27 +68,38 @@ export async function selectOlderDecisions(
     .orderBy(desc(decisions.recordNumber));
 }
 
-/** Comparisons that have a result, but none under this analysis version, and no job on its way. */
+/**
+ * True where a job on this item is on its way, or failed for good within a day: what could not be computed is not tried again every
+ * hour. Failed jobs move to the queue's archive after some hours.
+ */
+function hasOwnJob(name: JobName, key: string, id: SQL): SQL {
+  const failedToday = sql`state = 'failed' and completed_on > now() - interval '1 day'`;
+  return sql`(
+    exists (select from pgboss.job
+      where name = ${name} and data->>${key} = ${id}::text and (state < 'completed' or ${failedToday}))
+    or exists (select from pgboss.archive
+      where name = ${name} and data->>${key} = ${id}::text and ${failedToday}))`;
+}
+
+/** Comparisons that have a result, but none under this analysis version, and no job of their own (hasOwnJob), newest first. */
 export async function selectOutdatedComparisons(
   db: Queryable,
-  { analysisVersion }: { analysisVersion: string },
+  { analysisVersion, most }: { analysisVersion: string; most: number },
 ): Promise<{ workspaceId: string; comparisonId: string }[]> {
   const { rows } = await db.execute<{ workspaceId: string; comparisonId: string }>(sql`
     select c.workspace_id as "workspaceId", c.id as "comparisonId" from comparisons c
     where exists (select from comparison_results r where r.comparison_id = c.id)
       and not exists (
         select from comparison_results r where r.comparison_id = c.id and r.analysis_version = ${analysisVersion})
-      and not exists (
-        select from pgboss.job
-        where name = 'compute-comparison' and state < 'completed' and data->>'comparisonId' = c.id::text)
-    order by c.created_at desc`);
+      and not ${hasOwnJob("compute-comparison", "comparisonId", sql`c.id`)}
+    order by c.created_at desc limit ${most}`);
   return rows;
 }
 
-/** Runs that have a verdict, but none under this analysis version, and no job on its way; those set aside stay as they are. */
+/** Runs that have a verdict, but none under this analysis version, and no job of their own; those set aside stay as they are. */
 export async function selectOutdatedRuns(
   db: Queryable,
-  { analysisVersion }: { analysisVersion: string },
+  { analysisVersion, most }: { analysisVersion: string; most: number },
 ): Promise<{ workspaceId: string; runId: string }[]> {
   const { rows } = await db.execute<{ workspaceId: string; runId: string }>(sql`
     select r.workspace_id as "workspaceId", r.id as "runId" from runs r
@@ -95,9 +107,7 @@ export async function selectOutdatedRuns(
       and exists (select from run_analyses a where a.run_id = r.id)
       and not exists (
         select from run_analyses a where a.run_id = r.id and a.analysis_version = ${analysisVersion})
-      and not exists (
-        select from pgboss.job
-        where name = 'judge-run' and state < 'completed' and data->>'runId' = r.id::text)
-    order by r.created_at desc`);
+      and not ${hasOwnJob("judge-run", "runId", sql`r.id`)}
+    order by r.created_at desc limit ${most}`);
   return rows;
 }

@@ -62,6 +62,29 @@ describe("a new analysis version", () => {
     expect(await db.select().from(comparisonResults)).toHaveLength(2);
   });
 
+  test("is not tried again for a day where it failed for good, and fills the queue a slice at a time", async ({
+    database: { db },
+  }) => {
+    const scene = await createScene(db);
+    await age(scene);
+    const [{ id: runId }] = await db.select().from(runs).limit(1);
+    const verdict = { runId, workspaceId: scene.workspaceId, inputSha256: "old", sheetVersion: 1 };
+    const result = { id: "1", usable: true, reasons: [], notes: [] };
+    await db.insert(runAnalyses).values({ ...verdict, analysisVersion: OLD, result });
+    await db.execute(sql`delete from pgboss.job`);
+    expect(await renewOutdated(db, 1)).toBe(1);
+    expect(await renewOutdated(db, 1)).toBe(1);
+    expect(await renewOutdated(db, 1)).toBe(0);
+    await db.execute(sql`update pgboss.job set state = 'failed', completed_on = now() - interval '23 hours'`);
+    expect(await renewOutdated(db)).toBe(0);
+    // The queue's housekeeping moves failed jobs there.
+    await db.execute(sql`insert into pgboss.archive select job.*, now() from pgboss.job`);
+    await db.execute(sql`delete from pgboss.job`);
+    expect(await renewOutdated(db)).toBe(0);
+    await db.execute(sql`update pgboss.archive set completed_on = now() - interval '25 hours'`);
+    expect(await renewOutdated(db)).toBe(2);
+  });
+
   test("shows what it moves, comparison by comparison, gates included", async ({ database: { db } }) => {
     const scene = await createScene(db);
     const { lead, programmeId, comparisonId } = scene;
