@@ -10,6 +10,7 @@ import { checkMissing } from "@/lib/logs/missing-values";
 import { buildTimeAxis, unwrapMidnight } from "@/lib/logs/time-axis";
 import { findTimeForm, TIME_FORMS, type TimeForm } from "@/lib/logs/time-forms";
 import type { ChannelKey, LogProblem, LogTable } from "@/lib/logs/types";
+import { parseUnit } from "@/lib/units/unit-text";
 
 /** Fewer rows than this carry no run. */
 const MIN_ROWS = 10;
@@ -35,6 +36,9 @@ function findTimeColumn(text: string, form: TableForm, key: ChannelKey, problems
     ? [form.titles.indexOf(key.time.column)].filter((index) => index >= 0)
     : form.titles.flatMap((title, index) => (isTimeTitle(title) || /^column 1$/.test(title) ? [index] : []));
   for (const index of candidates) {
+    const dimension = parseUnit(unitOf(form, index))?.dimension ?? "time";
+    // A word for time in some language beside the unit of a speed, a temperature …: no time.
+    if (!key.time && dimension !== "time" && dimension !== "number") continue;
     const cells = rows.map((row) => row.cells[index] ?? "");
     if (statedForm) return { index, form: statedForm };
     const found = findTimeForm(cells, unitOf(form, index), form.decimal);

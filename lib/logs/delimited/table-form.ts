@@ -163,6 +163,13 @@ export function findTableForm(text: string, key: ChannelKey = {}): TableForm {
   const { width } = commonWidth(rows.length > 8 ? rows.slice(Math.floor(rows.length / 4)) : rows.slice(-3));
   const at = key.header_rows === undefined ? findHeader(rows, width) : key.header_rows - 1;
   const header = at >= 0 ? rows[at] : undefined;
+  const columns = header ? filledWidth(header.cells) : width;
+  if (width > MAX_COLUMNS || columns > MAX_COLUMNS) {
+    throw new FileRefusedError(
+      "too_many_columns",
+      `The log has ${Math.max(width, columns)} columns; at most ${MAX_COLUMNS} are read. Export fewer channels.`,
+    );
+  }
   const after = rows.slice(at + 1);
   const next = after[0];
   const withUnits = next !== undefined && (key.unit_row ?? (header !== undefined && isUnitRow(next.cells)));
@@ -174,16 +181,8 @@ export function findTableForm(text: string, key: ChannelKey = {}): TableForm {
     );
   }
   const titles = header
-    ? header.cells
-        .slice(0, Math.max(filledWidth(header.cells), 1))
-        .map((title) => title.trim().slice(0, MAX_TITLE_LENGTH))
+    ? header.cells.slice(0, Math.max(columns, 1)).map((title) => title.trim().slice(0, MAX_TITLE_LENGTH))
     : Array.from({ length: Math.max(1, width) }, (_, i) => `column ${i + 1}`);
-  if (titles.length > MAX_COLUMNS) {
-    throw new FileRefusedError(
-      "too_many_columns",
-      `The log has ${titles.length} columns; at most ${MAX_COLUMNS} are read. Export fewer channels.`,
-    );
-  }
   if (header && /^\s*(#|\/\/|%)\s*/.test(titles[0] ?? ""))
     titles[0] = (titles[0] ?? "").replace(/^\s*(#|\/\/|%)\s*/, "");
   return {
