@@ -97,7 +97,7 @@ for (const scheme of ["light", "dark"] as const) {
   for (const width of [1280, 390]) {
     const view = width === 1280 ? scheme : `${scheme}-phone`;
     test(`every page is in order, ${scheme}, ${width} px`, async ({ browser }) => {
-      test.setTimeout(300_000);
+      test.setTimeout(600_000);
       const context = await browser.newContext({
         colorScheme: scheme,
         viewport: { width, height: width === 1280 ? 900 : 844 },
