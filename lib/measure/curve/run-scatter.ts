@@ -6,13 +6,13 @@ const POOL_RPM = 200;
 /** Relative standard deviation of single runs about their side's mean at each point; null where no side has two runs. */
 export interface RunScatter {
   relative: Series;
-  /** Degrees of freedom: runs less sides, at the points with all of them. */
-  degrees: number;
+  /** Degrees of freedom at each point: runs less sides of those that reach it; 0 where no side has two. */
+  degrees: number[];
 }
 
 /**
  * Scatter of runs, pooled over sides (squares about each side's mean over n − 1) and over ±200 1/min, so that the luck of one
- * point does not decide. Neighbouring points are nearly the same witness: the degrees of freedom are those of one point.
+ * point does not decide. Neighbouring points are nearly the same witness: the degrees of freedom are those of the point itself.
  */
 export function runScatter(
   rpm: readonly number[],
@@ -37,6 +37,6 @@ export function runScatter(
       const sum = (values: Float64Array) => values.subarray(from, k + reach + 1).reduce((a, b) => a + b, 0);
       return degrees[k] > 0 ? Math.sqrt(sum(squares) / sum(degrees)) : null;
     }),
-    degrees: degrees.reduce((most, one) => Math.max(most, one), 0),
+    degrees: [...degrees],
   };
 }

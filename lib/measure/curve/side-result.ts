@@ -95,7 +95,7 @@ function ownParts(runs: readonly PowerSensitivity[], scatter: RunScatter, k: num
   if (n === 0) return {};
   const spread = scatter.relative[k];
   if (spread !== null) {
-    return { repeatability: ((spread / Math.sqrt(n)) * tQuantile(0.975, scatter.degrees)) / COVERAGE };
+    return { repeatability: ((spread / Math.sqrt(n)) * tQuantile(0.975, scatter.degrees[k])) / COVERAGE };
   }
   const noise = Math.hypot(...runs.map((run) => run.noise)) / n;
   const gust = Math.hypot(...runs.map((run) => run.gust)) / n;
@@ -130,7 +130,7 @@ function peakUncertainty(
     partsAt(at, "power"),
     (component) => {
       if (component === "repeatability")
-        return repeatabilityBasis(scatter.relative[at] ?? 0, scatter.degrees, found[at].length);
+        return repeatabilityBasis(scatter.relative[at] ?? 0, scatter.degrees[at], found[at].length);
       const sentence = first.basis[component];
       return component === "weather" && first.factor
         ? `${sentence} On the reference basis also through the factor ${first.factor.id}.`

@@ -91,9 +91,36 @@ describe("runScatter", () => {
       { mean: [100], curves: [[98], [100], [102]] },
     ]);
     expectClose(found.relative[0] ?? 0, Math.sqrt(0.001 / 3), { rel: 1e-9 });
-    expect(found.degrees).toBe(3);
+    expect(found.degrees).toEqual([3]);
   });
   it("knows none where no side has two runs", () => {
-    expect(runScatter([2000], [{ mean: [100], curves: [[100]] }])).toEqual({ relative: [null], degrees: 0 });
+    expect(runScatter([2000], [{ mean: [100], curves: [[100]] }])).toEqual({
+      relative: [null],
+      degrees: [0],
+    });
+  });
+  it("has at each point the degrees of freedom of the runs that reach it, not of the point with most (by hand)", () => {
+    const found = runScatter(
+      [2000, 2050, 2100],
+      [
+        {
+          mean: [100, 100, 100],
+          curves: [
+            [99, 99, null],
+            [101, 101, 100],
+          ],
+        },
+        {
+          mean: [100, 100, null],
+          curves: [
+            [98, 98, null],
+            [100, null, null],
+            [102, 102, null],
+          ],
+        },
+      ],
+    );
+    expect(found.degrees).toEqual([3, 2, 0]);
+    expect(found.relative[2]).toBeNull();
   });
 });
