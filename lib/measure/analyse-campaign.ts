@@ -15,6 +15,7 @@ import { type CampaignEstimate, estimateCampaign, type ReadyRun } from "@/lib/me
 import { maskedSpans, withConsequences } from "@/lib/measure/judge/consequence";
 import { judgeTogether } from "@/lib/measure/judge/judge-together";
 import { roundResult } from "@/lib/measure/round-result";
+import { commonGear } from "@/lib/measure/run/common-gear";
 import { type PreparedRun, prepareRun } from "@/lib/measure/run/prepare-run";
 import { type PullResult, pullResult } from "@/lib/measure/run/run-result";
 import { addFalls, type FallInput } from "@/lib/measure/sprint/add-falls";
@@ -158,12 +159,12 @@ function sidesAndDelta(
   results: readonly RunResult[],
 ): Pick<CampaignResult, "repeatability" | "sides" | "delta" | "warnings"> {
   const warnings: Reason[] = [];
-  const gear = commonGear(usable);
+  const gear = commonGear(usable.map(({ run }) => run.gear ?? null));
   const pulls = usable.filter(({ run }) => (run.gear ?? null) === gear);
   if (pulls.length < usable.length) {
     warnings.push({
       code: "gears_differ",
-      message: `The pulls were driven in different gears; only those in gear ${gear} are compared.`,
+      message: `The pulls were driven in different gears; only those ${gear === null ? "without a stated gear" : `in gear ${gear}`} are compared.`,
     });
   }
   const everyFactor = pulls.length > 0 && pulls.every(({ pull }) => pull.result.factor?.applied);
@@ -242,12 +243,4 @@ function sidesAndDelta(
   const delta = model ? addTimes(curves ?? null, campaign, results, pullIds, basis) : undefined;
   if (delta && model) delta.channels = compareChannels(loaded, { ...model, engine: campaign.vehicle.engine });
   return { repeatability: compare ? repeatability(rpm, compared) : undefined, sides, delta, warnings };
-}
-
-function commonGear(usable: readonly AnalysedPull[]): number | null {
-  const counts = new Map<number | null, number>();
-  for (const { run } of usable) counts.set(run.gear ?? null, (counts.get(run.gear ?? null) ?? 0) + 1);
-  let best: number | null = null;
-  for (const [gear, n] of counts) if (n > (counts.get(best) ?? 0)) best = gear;
-  return best;
 }
