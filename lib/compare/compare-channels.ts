@@ -1,4 +1,4 @@
-import { deltaBand } from "@/lib/compare/delta-band";
+import { deltaBand, upTo } from "@/lib/compare/delta-band";
 import { type ComparedRun, carriedBy, type RunDesign, runDesign } from "@/lib/compare/run-design";
 import { LEAST_RUNS, sideEffect } from "@/lib/compare/side-effect";
 import {
@@ -81,9 +81,11 @@ function compareOne(
     simultaneous: band !== null,
     method: band
       ? `Linear model with ${band.names}; ${band.method}.`
-      : !design
-        ? "Difference of the sides' means only: too few runs, or the side can't be told apart from leg, order or road day."
-        : "Difference of the sides' means only: the channel does not scatter between runs (a coarse step), so its scatter is not known.",
+      : rpm.length === 0
+        ? "Nothing to compare: no engine speed carries this channel on enough runs of both sides."
+        : !design
+          ? "Difference of the sides' means only: too few runs, or the side can't be told apart from leg, order or road day."
+          : "Difference of the sides' means only: the channel does not scatter between runs (a coarse step), so its scatter is not known.",
     worst: worstOf(name, runs, design, settings),
   };
 }
@@ -108,14 +110,16 @@ function bandOf(
   });
   const scale = Math.max(...flat.map((value) => Math.abs(value || 0)));
   const effect = Array.from(band.effect);
-  const half = Array.from(band.standardError, (se) => (se > 1e-9 * scale ? band.critical * se : null));
+  const half = Array.from(band.standardError, (se, k) =>
+    se > 1e-9 * scale ? band.criticalAt[k] * se : null,
+  );
   if (half.every((width) => width === null)) return null;
   return {
     difference: effect,
     low: effect.map((x, k) => shifted(x, half[k], -1)),
     high: effect.map((x, k) => shifted(x, half[k], 1)),
     names: design.names.slice(1).join(", "),
-    method: `${band.method}, critical value ${band.critical.toFixed(3)}, ${band.df} degrees of freedom`,
+    method: `${band.method}, critical value ${upTo(band)}${band.critical.toFixed(3)}, ${band.df} degrees of freedom`,
   };
 }
 

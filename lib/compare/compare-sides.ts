@@ -1,4 +1,4 @@
-import { deltaBand } from "@/lib/compare/delta-band";
+import { deltaBand, upTo } from "@/lib/compare/delta-band";
 import { defaultRanges, rangeMeans } from "@/lib/compare/range-means";
 import { type ComparedRun, carriedBy, type RunDesign, runDesign } from "@/lib/compare/run-design";
 import { LEAST_RUNS, sideEffect } from "@/lib/compare/side-effect";
@@ -115,10 +115,14 @@ export function compareSides(
     effect,
     kept.map((k) => median(runs.map((run) => run.kernelRpm?.[k] ?? Number.NaN))),
   );
-  const half = Array.from(band.standardError, (se, k) => band.critical * se + ROUNDING_SHARE * rounded[k]);
+  const half = Array.from(
+    band.standardError,
+    (se, k) => band.criticalAt[k] * se + ROUNDING_SHARE * rounded[k],
+  );
   const low = effect.map((x, k) => pct(x - half[k]));
   const high = effect.map((x, k) => pct(x + half[k]));
-  const reach = band.critical + tQuantile(0.8, band.df);
+  // A claim must get past the whole half-width, what it allows for smoothing included, in 8 of 10 such campaigns.
+  const beyond = tQuantile(0.8, band.df);
   const drift = band.orderEffect.reduce((sum, x) => sum + x, 0) / Math.max(1, kept.length);
   return {
     ...common,
@@ -127,10 +131,10 @@ export function compareSides(
     high_pct: high,
     abs_nm: effect.map((x, i) => Math.expm1(x) * Math.exp(meanA[i])),
     simultaneous: true,
-    method: `Linear model of log torque with ${usable.names.slice(1).join(", ")}; ${band.method}, critical value ${band.critical.toFixed(3)}, ${band.df} degrees of freedom${band.method === "permutation max-t" ? `, ${settings.resamples} resamples, seed ${settings.seed}` : ", a side has only three runs"}; widened where smoothing may have rounded off an edge.`,
+    method: `Linear model of log torque with ${usable.names.slice(1).join(", ")}; ${band.method}, critical value ${upTo(band)}${band.critical.toFixed(3)}, ${band.df} degrees of freedom${band.method === "permutation max-t" ? `, ${settings.resamples} resamples, seed ${settings.seed}` : ", a side has only three runs"}; widened where smoothing may have rounded off an edge.`,
     regions: verdictRegions(grid, low, high),
     band: { critical_value: band.critical, df: band.df },
-    resolvable_pct: Array.from(band.standardError, (se) => pct(reach * se)),
+    resolvable_pct: Array.from(band.standardError, (se, k) => pct(half[k] + beyond * se)),
     drift_pct_per_run: usable.order === null || kept.length === 0 ? null : pct(drift),
   };
 }

@@ -9,6 +9,8 @@ export interface DeltaBand {
   /** Degrees of freedom: of the column with fewest runs for Bonferroni's t, else of the middle column. */
   df: number;
   critical: number;
+  /** Critical value at each column; for Bonferroni's t that of its own degrees of freedom, none above `critical`. */
+  criticalAt: Float64Array;
   method: "permutation max-t" | "Bonferroni t";
   /** Coefficient of another column of the design, e.g. the drift per run; NaN where it is not in the model. */
   orderEffect: Float64Array;
@@ -81,17 +83,30 @@ export function deltaBand(
   const pooledDf = pooled(dfs, options.pool);
   for (const { columns: members, sideVariance } of patterns)
     for (const k of members) standardError[k] = Math.sqrt((pooledSquares[k] / pooledDf[k]) * sideVariance);
+  const bonferroni = (own: number) => tQuantile(1 - (1 - options.level) / (2 * count), own);
   const critical = options.small
-    ? tQuantile(1 - (1 - options.level) / (2 * count), df)
+    ? bonferroni(df)
     : criticalMaxT(fillGaps(residuals, n, count), count, patterns, dfs, options);
+  const criticalAt = new Float64Array(count).fill(critical);
+  for (const pattern of options.small ? patterns : []) {
+    if (pattern.df === df) continue;
+    const own = bonferroni(pattern.df);
+    for (const k of pattern.columns) criticalAt[k] = own;
+  }
   return {
     effect,
     standardError,
     df,
     critical,
+    criticalAt,
     method: options.small ? "Bonferroni t" : "permutation max-t",
     orderEffect,
   };
+}
+
+/** "up to " in front of a critical value that not every column has. */
+export function upTo({ critical, criticalAt }: DeltaBand): string {
+  return criticalAt.some((own) => own < critical) ? "up to " : "";
 }
 
 /** Σ a[i]·b[from + i] over the length of a. */

@@ -45,6 +45,26 @@ describe("Comparison of two sides", () => {
     expect(delta?.twins.filter((twin) => twin.side === "A")).toHaveLength(3);
   });
 
+  it("could have shown only what gets past the allowance for smoothing too", () => {
+    const runs = pulls("ABBABAABABBA", "+-+-+-+-+-+-", 5, 3);
+    const plain = compareSides(RPM, runs, SETTINGS);
+    const smoothed = compareSides(
+      RPM,
+      runs.map((run) => ({ ...run, kernelRpm: RPM.map(() => 200) })),
+      SETTINGS,
+    );
+    const half = (of: typeof plain, k: number) =>
+      (Math.log1p((of?.high_pct[k] ?? 0) / 100) - Math.log1p((of?.low_pct[k] ?? 0) / 100)) / 2;
+    const shown = (of: typeof plain, k: number) => Math.log1p((of?.resolvable_pct[k] ?? 0) / 100);
+    // At the edge of the change the band is wider by what smoothing may have rounded off; so is what it takes to be shown.
+    const edge = RPM.indexOf(3000);
+    expect(half(smoothed, edge)).toBeGreaterThan(1.2 * half(plain, edge));
+    RPM.forEach((_, k) => {
+      expect(shown(smoothed, k) - shown(plain, k)).toBeCloseTo(half(smoothed, k) - half(plain, k), 10);
+      expect(shown(smoothed, k)).toBeGreaterThan(half(smoothed, k));
+    });
+  });
+
   it("gives the difference without a band below three runs a side, and says why", () => {
     const delta = compareSides(RPM, pulls("ABBA", "+-+-", 4, 1), SETTINGS);
     expect(delta?.simultaneous).toBe(false);

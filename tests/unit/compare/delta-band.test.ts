@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { deltaBand } from "@/lib/compare/delta-band";
+import { deltaBand, upTo } from "@/lib/compare/delta-band";
 import { type ComparedRun, runDesign } from "@/lib/compare/run-design";
 import { verdictRegions } from "@/lib/compare/verdict-regions";
 import { leastSquares } from "@/lib/signal/least-squares";
@@ -133,6 +133,25 @@ describe("Simultaneous band", () => {
     );
     expect(band.method).toBe("Bonferroni t");
     expect(band.critical).toBeCloseTo(28.258, 2);
+    expect([...band.criticalAt].every((own) => own === band.critical)).toBe(true);
+  });
+
+  it("each column has the Bonferroni t of its own degrees of freedom (closed form of Student's distribution with 3)", () => {
+    const runs = runsOf("ABBABAB", "+-+-+-+");
+    const design = designOf(runs);
+    const values = simulate(runs, 40, 1, () => 0);
+    for (let k = 30; k < 40; k++) values[6 * 40 + k] = Number.NaN;
+    const band = deltaBand(values, 40, design.matrix, design.columns, design.side, design.order, {
+      ...OPTIONS,
+      small: true,
+    });
+    // Seven runs less four unknowns where all reach, six at the end: scipy's t.ppf(1 − 0.05/80, 2) = 28.258 there alone.
+    const x = band.criticalAt[0] / Math.sqrt(3);
+    expect(0.5 + (x / (1 + x * x) + Math.atan(x)) / Math.PI).toBeCloseTo(1 - 0.05 / 80, 9);
+    expect(band.criticalAt[29]).toBe(band.criticalAt[0]);
+    expect(band.criticalAt[30]).toBeCloseTo(28.258, 2);
+    expect(band).toMatchObject({ critical: band.criticalAt[39], df: 2 });
+    expect(upTo(band)).toBe("up to ");
   });
 });
 

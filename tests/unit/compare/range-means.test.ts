@@ -134,6 +134,15 @@ describe("Difference of an engine channel", () => {
     expect(found?.method).toMatch(/does not scatter/);
   });
 
+  it("says that the sides share no engine speed, not that nothing scatters", () => {
+    const runs = loaded("ABBABAAB", () => 0.86).map((run) =>
+      run.side === "B" ? { ...run, fullLoad: { ...run.fullLoad, rpm: GRID.map((rpm) => rpm + 2000) } } : run,
+    );
+    const found = compareChannels(runs, settings).lambda;
+    expect(found).toMatchObject({ rpm: [], difference: [], simultaneous: false });
+    expect(found?.method).toMatch(/^Nothing to compare: no engine speed carries this channel/);
+  });
+
   it("leaves out what one side does not carry", () => {
     const runs = loaded("ABBA", () => 0.86).map((run) =>
       run.side === "B" ? { ...run, fullLoad: fullLoad({ rpm: GRID, channels: {} }) } : run,
