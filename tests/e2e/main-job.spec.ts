@@ -50,7 +50,7 @@ async function createProgramme(page: Page, name: string): Promise<string> {
 }
 
 test("the whole job: three roles, real files, promote, promote again, roll back", async ({ browser }) => {
-  test.setTimeout(600_000);
+  test.setTimeout(900_000);
   const image = (name: string) => golden(`images/${name}`);
   const firstImage = image("ASAP2_Demo_V171.hex");
   const secondImage = image("bincopy_in.hex");
