@@ -33,13 +33,13 @@ export function planPower(delta: number, df: number, critical: number): number {
   return 1 - noncentralTCdf(critical, df, delta) + noncentralTCdf(-critical, df, delta);
 }
 
-/** Smallest true effect in standard errors that is shown with the planned power; bisection to 1e-9. */
-function smallestDelta(df: number, critical: number): number {
+/** Smallest true effect in standard errors that is shown with `power`; bisection to 1e-10. */
+export function smallestDelta(df: number, critical: number, power = PLANNED_POWER): number {
   let low = 0;
   let high = 2 * critical + 4;
-  while (high - low > 1e-9) {
+  while (high - low > 1e-10) {
     const middle = (low + high) / 2;
-    if (planPower(middle, df, critical) < PLANNED_POWER) low = middle;
+    if (planPower(middle, df, critical) < power) low = middle;
     else high = middle;
   }
   return (low + high) / 2;

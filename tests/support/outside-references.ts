@@ -1,6 +1,5 @@
 import { readFileSync } from "node:fs";
 import { gunzipSync } from "node:zlib";
-import { runsPerSide } from "@/lib/compare/planning";
 import { groupOf, pooledT, welch } from "@/lib/compare/two-means";
 import {
   incompleteBeta,
@@ -15,6 +14,7 @@ import { savitzkyGolay } from "@/lib/signal/savitzky-golay";
 import { whittaker } from "@/lib/signal/whittaker";
 import * as constants from "@/lib/units/constants";
 import { differenceToCanonical, parseUnit } from "@/lib/units/unit-text";
+import { runsPerSide } from "@/tests/support/runs-per-side";
 
 /** One number of ours beside an outside program's, with the relative distance that is allowed (absolute below 1e-3). */
 export interface Comparison {

@@ -1,9 +1,10 @@
 import { describe, expect, it } from "vitest";
 import { orderLeakage } from "@/lib/compare/order-leakage";
-import { familyCriticals, runsPerSide, runsPerSideNormal, smallestDifference } from "@/lib/compare/planning";
+import { smallestDelta } from "@/lib/compare/plan-twins";
 import { groupOf, pooledT, repeatabilityLimit, welch } from "@/lib/compare/two-means";
-import { normalCdf, tQuantile } from "@/lib/signal/distributions";
+import { normalCdf, normalQuantile, tQuantile } from "@/lib/signal/distributions";
 import { checkValue, checkValues } from "../../support/check-values";
+import { runsPerSide } from "../../support/runs-per-side";
 
 const relative = (got: number | undefined, expected: number, tolerance: number) =>
   expect(Math.abs((got ?? Number.NaN) / expected - 1)).toBeLessThanOrEqual(tolerance);
@@ -55,26 +56,26 @@ describe("Planning (scipy noncentral t)", () => {
   for (const value of checkValues("cmp.n.")) {
     it(value.id, () => {
       const d = value.inputs.delta_over_sd;
-      relative(runsPerSideNormal(d), value.expected.n_z, 1e-9);
+      relative(2 * ((normalQuantile(0.975) + normalQuantile(0.8)) / d) ** 2, value.expected.n_z, 1e-9);
       expect(runsPerSide(d)).toBe(value.expected.n_t);
     });
   }
   for (const value of checkValues("cmp.mdd.")) {
-    it(value.id, () =>
-      expect(
-        Math.abs(smallestDifference(value.inputs.n_per_arm) - value.expected.mdd_in_sd),
-      ).toBeLessThanOrEqual(value.tolerance.abs),
-    );
+    it(value.id, () => {
+      const n = value.inputs.n_per_arm;
+      const df = 2 * n - 2;
+      const got = smallestDelta(df, tQuantile(0.975, df), 0.8) * Math.sqrt(2 / n);
+      expect(Math.abs(got - value.expected.mdd_in_sd)).toBeLessThanOrEqual(value.tolerance.abs);
+    });
   }
   it("90 % power needs 23, 11, 7, 4 runs a side for d 1, 1.5, 2, 3 (measurement notes, scipy)", () => {
     expect([1, 1.5, 2, 3].map((d) => runsPerSide(d, 0.05, 0.9))).toEqual([23, 11, 7, 4]);
   });
   it.each([10, 50, 100])("critical values for %d comparisons", (count) => {
     const { expected } = checkValue(`cmp.crit.K${count}`);
-    const got = familyCriticals(count, 8);
-    relative(got.sidakNormal, expected.sidak_z, 1e-9);
-    relative(got.bonferroniNormal, expected.bonf_z, 1e-9);
-    relative(got.bonferroniT, expected.bonf_t8, 1e-9);
+    relative(normalQuantile(1 - (1 - 0.95 ** (1 / count)) / 2), expected.sidak_z, 1e-9);
+    relative(normalQuantile(1 - 0.05 / (2 * count)), expected.bonf_z, 1e-9);
+    relative(tQuantile(1 - 0.05 / (2 * count), 8), expected.bonf_t8, 1e-9);
   });
   it("maps a Gaussian critical value to t", () => {
     const { inputs, expected } = checkValue("cmp.maxt.map");
