@@ -24,6 +24,8 @@ const MISSING = new Set([
 ]);
 const GROUPED_COMMA = /^[+-]?\d{1,3}(,\d{3})+(\.\d+)?$/;
 const GROUPED_DOT = /^[+-]?\d{1,3}(\.\d{3})+(,\d+)?$/;
+/** Thousands set off by a blank or an apostrophe. */
+const GROUPED_BLANK = /^[+-]?\d{1,3}([ \u00a0\u202f'’]\d{3})+([.,]\d+)?$/;
 const PLAIN = /^[+-]?(\d+\.?\d*|\.\d+)(e[+-]?\d+)?$/i;
 
 /** True for the ways in which loggers write "no value here" (empty, NaN, NA, --, Inf). */
@@ -66,14 +68,19 @@ export function parseNumber(cell: string, decimal: "." | ","): number | null {
   return negative ? -value : value;
 }
 
+/** A number without the blanks or apostrophes between its groups of thousands; any other text as it is. */
+export function ungrouped(cell: string): string {
+  return GROUPED_BLANK.test(cell) ? cell.replace(/[^\d.,+-]/g, "") : cell;
+}
+
 function slowNumber(text: string, decimal: "." | ","): number | null {
   if (isMissingMark(text)) return Number.NaN;
-  let plain = text;
+  let plain = ungrouped(text);
   if (decimal === ".") {
     if (GROUPED_COMMA.test(text)) plain = text.replaceAll(",", "");
   } else {
     if (GROUPED_DOT.test(text)) plain = text.replaceAll(".", "");
-    else if (text.includes(".")) return null;
+    else if (plain.includes(".")) return null;
     plain = plain.replace(",", ".");
   }
   if (!PLAIN.test(plain)) return null;

@@ -1,7 +1,7 @@
 import { FileRefusedError } from "@/lib/errors";
 import { isTimeTitle } from "@/lib/logs/channel-names";
 import { type DelimitedRow, firstRows } from "@/lib/logs/delimited/delimited-rows";
-import { isMissingMark, parseNumber } from "@/lib/logs/parse-number";
+import { isMissingMark, parseNumber, ungrouped } from "@/lib/logs/parse-number";
 import type { ChannelKey } from "@/lib/logs/types";
 import { parseUnit } from "@/lib/units/unit-text";
 
@@ -82,7 +82,7 @@ function findDecimal(rows: readonly DelimitedRow[]): "." | "," {
   let commaOpen: string | null = null;
   for (const row of rows) {
     for (const raw of row.cells) {
-      const cell = raw.trim();
+      const cell = ungrouped(raw.trim());
       const match = /^[+-]?(\d*)([.,])(\d+)(e[+-]?\d+)?$/i.exec(cell);
       if (match) {
         const [, whole = "", sign, fraction = ""] = match;
@@ -134,10 +134,11 @@ function isUnitRow(cells: readonly string[]): boolean {
   return units.length >= filled.length / 2;
 }
 
-/** The row of titles: the nearest row without a number above the data, as wide as the data. -1: there is none. */
+/** The row of titles: a row without a number above the data, as wide as the data; the one that names a time, else the first. -1: there is none. */
 function findHeader(rows: readonly DelimitedRow[], width: number): number {
-  const first = rows.findIndex((row) => Math.abs(row.cells.length - width) <= 1 && isDataRow(row.cells));
+  const first = rows.findIndex((row) => row.cells.length >= width && isDataRow(row.cells));
   const limit = first < 0 ? rows.length : first;
+  let found = -1;
   for (let i = 0; i < limit; i++) {
     const cells = rows[i]?.cells ?? [];
     const filled = filledWidth(cells);
@@ -146,9 +147,15 @@ function findHeader(rows: readonly DelimitedRow[], width: number): number {
       const next = rows[i + 1]?.cells ?? [];
       if (!hasNumber(next) && filledWidth(next) >= width - 1 && !isUnitRow(next)) continue;
     }
-    return i;
+    if (cells.some(isTimeTitle) && !isUnitRow(cells)) return i;
+    if (found < 0) found = i;
   }
-  return -1;
+  if (found >= 0) return found;
+  // Lines of a preamble can look like values; then the row of titles is the one that names a time.
+  return rows.findIndex(
+    ({ cells }) =>
+      filledWidth(cells) >= Math.max(2, width - 1) && !hasNumber(cells) && cells.some(isTimeTitle),
+  );
 }
 
 /**
