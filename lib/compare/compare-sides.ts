@@ -115,10 +115,8 @@ export function compareSides(
     effect,
     kept.map((k) => median(runs.map((run) => run.kernelRpm?.[k] ?? Number.NaN))),
   );
-  const half = Array.from(
-    band.standardError,
-    (se, k) => band.criticalAt[k] * se + ROUNDING_SHARE * rounded[k],
-  );
+  const allowed = Array.from(rounded, (bias) => ROUNDING_SHARE * bias);
+  const half = Array.from(band.standardError, (se, k) => band.criticalAt[k] * se + allowed[k]);
   const low = effect.map((x, k) => pct(x - half[k]));
   const high = effect.map((x, k) => pct(x + half[k]));
   // A claim must get past the whole half-width, what it allows for smoothing included, in 8 of 10 such campaigns.
@@ -133,7 +131,7 @@ export function compareSides(
     simultaneous: true,
     method: `Linear model of log torque with ${usable.names.slice(1).join(", ")}; ${band.method}, critical value ${upTo(band)}${band.critical.toFixed(3)}, ${band.df} degrees of freedom${band.method === "permutation max-t" ? `, ${settings.resamples} resamples, seed ${settings.seed}` : ", a side has only three runs"}; widened where smoothing may have rounded off an edge.`,
     regions: verdictRegions(grid, low, high),
-    band: { critical_value: band.critical, df: band.df },
+    band: { critical_value: band.critical, df: band.df, smoothing_pct: pct(median(allowed)) },
     resolvable_pct: Array.from(band.standardError, (se, k) => pct(half[k] + beyond * se)),
     drift_pct_per_run: usable.order === null || kept.length === 0 ? null : pct(drift),
   };

@@ -14,6 +14,8 @@ export interface PlanBasis {
   point: Scatter;
   /** How many independent places the band is worth: its critical value is that of so many t tests at once. */
   places: { count: number; comparisons: number };
+  /** What a band allows for smoothing beside scatter, %: median of past bands; null = none has told it, none is counted. */
+  smoothingPct: number | null;
 }
 
 /**

@@ -50,7 +50,7 @@ export interface ShownBy {
   twins: number;
   /** Mean over a range of the width that the scatter was taken over. */
   rangePct: number | null;
-  /** At one engine speed, told by the band that holds the whole curve at once. */
+  /** At one engine speed, told by the band that holds the whole curve at once, past what that allows for smoothing. */
   curvePct: number | null;
 }
 
@@ -65,12 +65,15 @@ export function shownBy(twins: number, basis: PlanBasis): ShownBy {
   const design = designOf(proposeOrder({ twinsPerSide: twins }));
   if (!design || 2 * twins < LEAST_RUNS) return { twins, rangePct: null, curvePct: null };
   const { df, seFactor } = design;
-  const pct = (scatter: Scatter, critical: number) =>
-    100 * Math.expm1(smallestDelta(df, critical) * seFactor * Math.log1p(scatter.sdPct / 100));
+  const pct = (scatter: Scatter, critical: number, beyondPct = 0) =>
+    100 *
+    Math.expm1(
+      smallestDelta(df, critical) * seFactor * Math.log1p(scatter.sdPct / 100) + Math.log1p(beyondPct / 100),
+    );
   return {
     twins,
     rangePct: pct(basis.range, tQuantile((1 + LEVEL) / 2, df)),
-    curvePct: pct(basis.point, bandCritical(basis.places.count, df, LEVEL)),
+    curvePct: pct(basis.point, bandCritical(basis.places.count, df, LEVEL), basis.smoothingPct ?? 0),
   };
 }
 

@@ -240,8 +240,11 @@ export interface DeltaResult {
   method: string;
   regions: DeltaRegion[];
   resolvable_pct: Series;
-  /** What the half-width of the band is made of besides the standard error; null without a band. */
-  band?: { critical_value: number; df: number } | null;
+  /**
+   * What the half-width of the band is made of besides the standard error; null without a band. `smoothing_pct`: what it allows
+   * for smoothing, median over the curve; older results do not state it.
+   */
+  band?: { critical_value: number; df: number; smoothing_pct?: number } | null;
   drift_pct_per_run: number | null;
   twins: { side: string; out: string; back: string; closure_pct: number | null }[];
   /** Difference of the two sides' peaks (B − A) with the half-width of its own interval. */

@@ -26,7 +26,7 @@ async function storeScatter({ db, comparisonId, roadDayId }: Scene): Promise<Rep
     .where(eq(comparisonResults.comparisonId, comparisonId));
   const result = row.result;
   if (!result?.delta) throw new Error("the scene has no result");
-  const delta = { ...result.delta, band: { critical_value: 3.5, df: 8 } };
+  const delta = { ...result.delta, band: { critical_value: 3.5, df: 8, smoothing_pct: 0.2 } };
   await db
     .update(comparisonResults)
     .set({ result: { ...result, delta, repeatability: [scatter] } })
@@ -42,12 +42,18 @@ describe("the plan before driving", () => {
     const { tester, programmeId } = scene;
     const before = await getPlan(tester, programmeId, {});
     expect(before).toMatchObject({ days: 0, neededBetween: null });
+    expect(before.basis.smoothingPct).toBeNull();
     expect(before.basis.range).toEqual({ sdPct: STARTING_SD_PCT.range, df: null });
     await storeScatter(scene);
     const after = await getPlan(tester, programmeId, {});
     expect(after).toMatchObject({
       days: 1,
-      basis: { range: { sdPct: 0.4, df: 8 }, point: { sdPct: 0.6, df: 8 }, places: { comparisons: 1 } },
+      basis: {
+        range: { sdPct: 0.4, df: 8 },
+        point: { sdPct: 0.6, df: 8 },
+        places: { comparisons: 1 },
+        smoothingPct: 0.2,
+      },
     });
     expect(after.needed.range).toBeLessThan(before.needed.range ?? 0);
     expect(after.neededBetween?.most.range).toBeGreaterThanOrEqual(after.needed.range ?? 99);

@@ -35,7 +35,7 @@ export function PlanAnswer({
   view: Pick<PlanView, "query" | "basis" | "days" | "needed" | "neededBetween">;
 }) {
   const { query, basis, days, needed, neededBetween: between } = view;
-  const { range, point, places } = basis;
+  const { range, point, places, smoothingPct } = basis;
   const unknown = range.df === null || point.df === null;
   return (
     <Card title={`To show ${pct(query.wantedPct)}`}>
@@ -69,6 +69,9 @@ export function PlanAnswer({
             {places.comparisons === 0
               ? "assumed from simulated campaigns"
               : `as in ${places.comparisons === 1 ? "1 past comparison" : `${places.comparisons} past comparisons`} (median)`}
+            {smoothingPct === null
+              ? "; what it allows for smoothing is not known from a past comparison and not counted"
+              : `; ${pct(smoothingPct)} are added at one engine speed for what smoothing may round off`}
             .
           </p>
         )}

@@ -5,8 +5,16 @@ import { nullTestOutcome } from "@/lib/compare/null-test";
 import { type PlanBasis, placesSeen, pooledScatter, STARTING_SD_PCT } from "@/lib/compare/plan-scatter";
 import { STANDARD_SETTINGS, toCampaignSettings } from "@/lib/services/comparisons/schema";
 import type { ScatterDay } from "@/lib/services/plans/schema";
+import { median } from "@/lib/signal/statistics";
 
 const STANDARD_SHA256 = digestOf(toCampaignSettings(STANDARD_SETTINGS));
+
+/** What a past comparison's band tells a plan; `smoothingPct` null in results that do not state it. */
+interface PastBand {
+  criticalValue: number;
+  df: number;
+  smoothingPct: number | null;
+}
 
 /** The figures of a road day from the comparison that leaves most degrees of freedom; a day may be part of several. */
 function bestOf(stored: readonly StoredScatter[], roadDayId: string) {
@@ -22,7 +30,7 @@ function bestOf(stored: readonly StoredScatter[], roadDayId: string) {
 export async function scatterHistory(
   db: Queryable,
   place: { workspaceId: string; programmeId: string },
-): Promise<{ days: ScatterDay[]; bands: { criticalValue: number; df: number }[] }> {
+): Promise<{ days: ScatterDay[]; bands: PastBand[] }> {
   const stored = await selectStoredScatter(db, { ...place, settingsSha256: STANDARD_SHA256 });
   const roadDays = await selectRoadDayPlaces(db, place);
   const days = roadDays.map((row): ScatterDay => {
@@ -45,7 +53,15 @@ export async function scatterHistory(
     };
   });
   const bands = stored.flatMap(({ delta }) =>
-    delta?.band ? [{ criticalValue: delta.band.critical_value, df: delta.band.df }] : [],
+    delta?.band
+      ? [
+          {
+            criticalValue: delta.band.critical_value,
+            df: delta.band.df,
+            smoothingPct: delta.band.smoothing_pct ?? null,
+          },
+        ]
+      : [],
   );
   return { days, bands };
 }
@@ -55,9 +71,11 @@ export function planBasis({ days, bands }: Awaited<ReturnType<typeof scatterHist
   const figures = days.flatMap((day) => day.figures ?? []);
   const pooled = (key: "sd_range_pct" | "sd_point_pct") =>
     pooledScatter(figures.map((entry) => ({ sdPct: entry[key], df: entry.df })));
+  const smoothing = bands.flatMap((band) => band.smoothingPct ?? []);
   return {
     range: pooled("sd_range_pct") ?? { sdPct: STARTING_SD_PCT.range, df: null },
     point: pooled("sd_point_pct") ?? { sdPct: STARTING_SD_PCT.point, df: null },
     places: placesSeen(bands),
+    smoothingPct: smoothing.length > 0 ? median(smoothing) : null,
   };
 }

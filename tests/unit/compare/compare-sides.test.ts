@@ -59,6 +59,8 @@ describe("Comparison of two sides", () => {
     // At the edge of the change the band is wider by what smoothing may have rounded off; so is what it takes to be shown.
     const edge = RPM.indexOf(3000);
     expect(half(smoothed, edge)).toBeGreaterThan(1.2 * half(plain, edge));
+    expect(plain?.band?.smoothing_pct).toBe(0);
+    expect(smoothed?.band?.smoothing_pct).toBeGreaterThan(0);
     RPM.forEach((_, k) => {
       expect(shown(smoothed, k) - shown(plain, k)).toBeCloseTo(half(smoothed, k) - half(plain, k), 10);
       expect(shown(smoothed, k)).toBeGreaterThan(half(smoothed, k));

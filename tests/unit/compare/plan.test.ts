@@ -19,6 +19,7 @@ const BASIS: PlanBasis = {
   range: { sdPct: 0.5, df: 12 },
   point: { sdPct: 0.8, df: 12 },
   places: { count: 8, comparisons: 3 },
+  smoothingPct: null,
 };
 
 describe("the power of a plan", () => {
@@ -76,6 +77,13 @@ describe("twins a side", () => {
       if (before) expect(row.rangePct).toBeLessThan(before.rangePct ?? Number.NaN);
     }
     expect(shownBy(1, BASIS)).toEqual({ twins: 1, rangePct: null, curvePct: null });
+  });
+
+  it("must show a difference at one engine speed past what the band allows for smoothing, and over a range not", () => {
+    const [plain, smoothed] = [null, 0.5].map((smoothingPct) => shownBy(4, { ...BASIS, smoothingPct }));
+    // Ratios multiply: the allowance comes on top of what scatter asks for.
+    expect(1 + (smoothed.curvePct ?? 0) / 100).toBeCloseTo(1.005 * (1 + (plain.curvePct ?? 0) / 100), 12);
+    expect(smoothed.rangePct).toBe(plain.rangePct);
   });
 
   it("is the fewest that show what is wanted, and none where a day can't", () => {
