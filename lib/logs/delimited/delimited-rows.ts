@@ -13,7 +13,7 @@ type OnRow = (row: DelimitedRow) => boolean | undefined;
  * quoted cell holds a line end papaparse reads the whole (delimiter always given, it never guesses). Blank lines are
  * skipped. Line ends may be LF, CRLF or CR. Cells are not trimmed. Return false from `onRow` to stop.
  */
-export function forEachRow(text: string, delimiter: string, onRow: OnRow): void {
+function forEachRow(text: string, delimiter: string, onRow: OnRow): void {
   const quoted = text.includes('"');
   if (quoted && hasQuotedLineEnd(text)) {
     forEachParsedRow(text, delimiter, onRow);

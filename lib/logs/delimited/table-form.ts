@@ -37,7 +37,7 @@ function looksNumeric(cell: string): boolean {
 }
 
 /** Number of cells without empty ones at the end (a trailing delimiter makes one). */
-export function filledWidth(cells: readonly string[]): number {
+function filledWidth(cells: readonly string[]): number {
   let width = cells.length;
   while (width > 0 && (cells[width - 1] ?? "").trim() === "") width--;
   return width;
