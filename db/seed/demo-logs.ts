@@ -1,5 +1,5 @@
 import { HATCH, RECORDER } from "@/db/seed/demo-car";
-import { proposeOrder } from "@/lib/compare/order-card";
+import { proposeOrder } from "@/lib/compare/plan/order-card";
 import type { LogTable } from "@/lib/logs/types";
 import { randomStream } from "@/lib/signal/random";
 import { driveRun } from "@/lib/simulate/drive-run";

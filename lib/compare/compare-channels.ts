@@ -1,6 +1,6 @@
-import { deltaBand, upTo } from "@/lib/compare/delta-band";
-import { type ComparedRun, carriedBy, type RunDesign, runDesign } from "@/lib/compare/run-design";
-import { LEAST_RUNS, sideEffect } from "@/lib/compare/side-effect";
+import { deltaBand, upTo } from "@/lib/compare/band/delta-band";
+import { type ComparedRun, carriedBy, type RunDesign, runDesign } from "@/lib/compare/band/run-design";
+import { LEAST_RUNS, sideEffect } from "@/lib/compare/band/side-effect";
 import {
   type ChannelDifference,
   ENGINE_CHANNELS,

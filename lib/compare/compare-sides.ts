@@ -1,10 +1,10 @@
-import { deltaBand, upTo } from "@/lib/compare/delta-band";
+import { deltaBand, upTo } from "@/lib/compare/band/delta-band";
+import { type ComparedRun, carriedBy, type RunDesign, runDesign } from "@/lib/compare/band/run-design";
+import { LEAST_RUNS, sideEffect } from "@/lib/compare/band/side-effect";
+import { smoothingBias } from "@/lib/compare/band/smoothing-bias";
+import { verdictRegions } from "@/lib/compare/band/verdict-regions";
 import { defaultRanges, rangeMeans } from "@/lib/compare/range-means";
-import { type ComparedRun, carriedBy, type RunDesign, runDesign } from "@/lib/compare/run-design";
-import { LEAST_RUNS, sideEffect } from "@/lib/compare/side-effect";
-import { smoothingBias } from "@/lib/compare/smoothing-bias";
 import { findTwins } from "@/lib/compare/twins";
-import { verdictRegions } from "@/lib/compare/verdict-regions";
 import type { DeltaResult, Reason } from "@/lib/measure/types";
 import { tQuantile } from "@/lib/signal/distributions";
 import { median } from "@/lib/signal/statistics";

@@ -1,5 +1,5 @@
-import type { ComparedRun, RunDesign } from "@/lib/compare/run-design";
-import { sideEffect } from "@/lib/compare/side-effect";
+import type { ComparedRun, RunDesign } from "@/lib/compare/band/run-design";
+import { sideEffect } from "@/lib/compare/band/side-effect";
 import { meanCurve } from "@/lib/measure/curve/mean-curve";
 import type { RangeMean, Series } from "@/lib/measure/types";
 

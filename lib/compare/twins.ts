@@ -1,4 +1,4 @@
-import type { ComparedRun } from "@/lib/compare/run-design";
+import type { ComparedRun } from "@/lib/compare/band/run-design";
 import type { DeltaResult } from "@/lib/measure/types";
 
 /**

@@ -1,4 +1,4 @@
-import { orderLeakage } from "@/lib/compare/order-leakage";
+import { orderLeakage } from "@/lib/compare/plan/order-leakage";
 import { type GateEvidence, usableRuns } from "@/lib/gates/evidence";
 import type { EvidenceGate, GateResult } from "@/lib/gates/plan";
 import { counted, figure, gateResult, met, notMet, tooLittle, type Verdict } from "@/lib/gates/verdict";

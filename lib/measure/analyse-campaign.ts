@@ -1,7 +1,7 @@
-import { addTimes } from "@/lib/compare/add-times";
 import { compareChannels } from "@/lib/compare/compare-channels";
 import { type ComparedPull, compareSides } from "@/lib/compare/compare-sides";
-import { repeatability } from "@/lib/compare/repeatability";
+import { repeatability } from "@/lib/compare/plan/repeatability";
+import { addTimes } from "@/lib/compare/times/add-times";
 import type { FileRefusedError } from "@/lib/errors";
 import type { LogTable } from "@/lib/logs/types";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";

@@ -1,6 +1,6 @@
+import { deltaBand } from "@/lib/compare/band/delta-band";
+import { runDesign } from "@/lib/compare/band/run-design";
 import { type ComparedPull, compareSides } from "@/lib/compare/compare-sides";
-import { deltaBand } from "@/lib/compare/delta-band";
-import { runDesign } from "@/lib/compare/run-design";
 import { leastSquares } from "@/lib/signal/least-squares";
 import { randomStream, shuffle } from "@/lib/signal/random";
 import { savitzkyGolay } from "@/lib/signal/savitzky-golay";

@@ -1,7 +1,7 @@
 import { eq } from "drizzle-orm";
 import { describe, expect } from "vitest";
 import { comparisonResults, programmes } from "@/db/tables";
-import { STARTING_SD_PCT } from "@/lib/compare/plan-scatter";
+import { STARTING_SD_PCT } from "@/lib/compare/plan/plan-scatter";
 import type { RepeatabilityResult } from "@/lib/measure/types";
 import { getPlan, getRepeatability } from "@/lib/services/plans/get";
 import { test } from "@/tests/support/database";

@@ -1,6 +1,6 @@
 import { readFileSync } from "node:fs";
 import { gunzipSync } from "node:zlib";
-import { groupOf, pooledT, welch } from "@/lib/compare/two-means";
+import { groupOf, pooledT, welch } from "@/lib/compare/band/two-means";
 import {
   incompleteBeta,
   logGamma,

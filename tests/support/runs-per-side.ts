@@ -1,4 +1,4 @@
-import { planPower } from "@/lib/compare/plan-twins";
+import { planPower } from "@/lib/compare/plan/plan-twins";
 import { tQuantile } from "@/lib/signal/distributions";
 
 /**

@@ -1,8 +1,8 @@
 import type { ReactNode } from "react";
 import { numberText } from "@/components/ui/data/number-text";
 import { Card } from "@/components/ui/layout/card";
+import { repeatabilityLimit } from "@/lib/compare/band/two-means";
 import { type NullTestOutcome, nullTestOutcome } from "@/lib/compare/null-test";
-import { repeatabilityLimit } from "@/lib/compare/two-means";
 import type { CampaignResult, RepeatabilityResult } from "@/lib/measure/types";
 
 export interface NullTestCardProps {

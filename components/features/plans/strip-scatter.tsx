@@ -6,8 +6,8 @@ import { Table } from "@/components/ui/data/table";
 import { Tag } from "@/components/ui/data/tag";
 import { Card } from "@/components/ui/layout/card";
 import { StateMark } from "@/components/ui/status/state-mark";
-import { type Scatter, scatterInterval } from "@/lib/compare/plan-scatter";
-import { repeatabilityLimit } from "@/lib/compare/two-means";
+import { repeatabilityLimit } from "@/lib/compare/band/two-means";
+import { type Scatter, scatterInterval } from "@/lib/compare/plan/plan-scatter";
 import type { ScatterDay, StripScatter } from "@/lib/services/plans/schema";
 
 const pct = (value: number | null | undefined) => numberText(value, { decimals: 2 });

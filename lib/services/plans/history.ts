@@ -2,7 +2,7 @@ import type { Queryable } from "@/db/client";
 import { type StoredScatter, selectRoadDayPlaces, selectStoredScatter } from "@/db/queries/repeatability";
 import { digestOf } from "@/lib/canonical-json";
 import { nullTestOutcome } from "@/lib/compare/null-test";
-import { type PlanBasis, placesSeen, pooledScatter, STARTING_SD_PCT } from "@/lib/compare/plan-scatter";
+import { type PlanBasis, placesSeen, pooledScatter, STARTING_SD_PCT } from "@/lib/compare/plan/plan-scatter";
 import { STANDARD_SETTINGS, toCampaignSettings } from "@/lib/services/comparisons/schema";
 import type { ScatterDay } from "@/lib/services/plans/schema";
 import { median } from "@/lib/signal/statistics";

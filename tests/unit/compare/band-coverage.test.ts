@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { deltaBand } from "@/lib/compare/delta-band";
+import { deltaBand } from "@/lib/compare/band/delta-band";
 import { randomStream } from "@/lib/signal/random";
 import { checkValue } from "../../support/check-values";
 

@@ -1,7 +1,7 @@
 import { describe, expect, it } from "vitest";
-import { deltaBand, upTo } from "@/lib/compare/delta-band";
-import { type ComparedRun, runDesign } from "@/lib/compare/run-design";
-import { verdictRegions } from "@/lib/compare/verdict-regions";
+import { deltaBand, upTo } from "@/lib/compare/band/delta-band";
+import { type ComparedRun, runDesign } from "@/lib/compare/band/run-design";
+import { verdictRegions } from "@/lib/compare/band/verdict-regions";
 import { leastSquares } from "@/lib/signal/least-squares";
 import { randomStream } from "@/lib/signal/random";
 

@@ -1,6 +1,6 @@
 import fc from "fast-check";
 import { describe, expect, test } from "vitest";
-import { freePlaces, type OrderCard, proposeOrder } from "@/lib/compare/order-card";
+import { freePlaces, type OrderCard, proposeOrder } from "@/lib/compare/plan/order-card";
 
 const twins = (card: OrderCard) =>
   card.places

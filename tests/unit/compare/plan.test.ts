@@ -1,6 +1,6 @@
 import { describe, expect, it } from "vitest";
-import { proposeOrder } from "@/lib/compare/order-card";
-import { cardCost, USUAL_DRIVE } from "@/lib/compare/plan-cost";
+import { proposeOrder } from "@/lib/compare/plan/order-card";
+import { cardCost, USUAL_DRIVE } from "@/lib/compare/plan/plan-cost";
 import {
   bandCritical,
   bandPlaces,
@@ -9,8 +9,8 @@ import {
   pooledScatter,
   STARTING_PLACES,
   scatterInterval,
-} from "@/lib/compare/plan-scatter";
-import { MOST_TWINS, planPower, shownBy, twinsFor, twinsForInterval } from "@/lib/compare/plan-twins";
+} from "@/lib/compare/plan/plan-scatter";
+import { MOST_TWINS, planPower, shownBy, twinsFor, twinsForInterval } from "@/lib/compare/plan/plan-twins";
 import { tQuantile } from "@/lib/signal/distributions";
 import { leastSquares } from "@/lib/signal/least-squares";
 import { randomStream } from "@/lib/signal/random";

@@ -1,7 +1,7 @@
 import { describe, expect, it } from "vitest";
+import { type RunDesign, runDesign } from "@/lib/compare/band/run-design";
 import { compareChannels, type LoadedPull } from "@/lib/compare/compare-channels";
 import { defaultRanges, rangeMeans } from "@/lib/compare/range-means";
-import { type RunDesign, runDesign } from "@/lib/compare/run-design";
 import { randomStream } from "@/lib/signal/random";
 import { channelBetween, fullLoad } from "../gates/full-load-sample";
 

@@ -1,6 +1,6 @@
 import { describe, expect, it } from "vitest";
-import { proposeOrder } from "@/lib/compare/order-card";
-import { type RepeatedPull, repeatability } from "@/lib/compare/repeatability";
+import { proposeOrder } from "@/lib/compare/plan/order-card";
+import { type RepeatedPull, repeatability } from "@/lib/compare/plan/repeatability";
 import { randomStream } from "@/lib/signal/random";
 
 const RPM = Array.from({ length: 21 }, (_, k) => 2000 + 200 * k);

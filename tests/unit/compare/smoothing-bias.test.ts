@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { smoothingBias } from "@/lib/compare/smoothing-bias";
+import { smoothingBias } from "@/lib/compare/band/smoothing-bias";
 
 const rpm = Array.from({ length: 201 }, (_, k) => 2000 + 20 * k);
 

@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { type TimedRun, timesDifference } from "@/lib/compare/times-difference";
+import { type TimedRun, timesDifference } from "@/lib/compare/times/times-difference";
 import { randomStream } from "@/lib/signal/random";
 import { expectClose } from "../../support/expect-close";
 

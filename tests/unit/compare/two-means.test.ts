@@ -1,7 +1,7 @@
 import { describe, expect, it } from "vitest";
-import { orderLeakage } from "@/lib/compare/order-leakage";
-import { smallestDelta } from "@/lib/compare/plan-twins";
-import { groupOf, pooledT, repeatabilityLimit, welch } from "@/lib/compare/two-means";
+import { groupOf, pooledT, repeatabilityLimit, welch } from "@/lib/compare/band/two-means";
+import { orderLeakage } from "@/lib/compare/plan/order-leakage";
+import { smallestDelta } from "@/lib/compare/plan/plan-twins";
 import { normalCdf, normalQuantile, tQuantile } from "@/lib/signal/distributions";
 import { checkValue, checkValues } from "../../support/check-values";
 import { runsPerSide } from "../../support/runs-per-side";

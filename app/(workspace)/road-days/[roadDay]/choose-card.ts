@@ -1,4 +1,4 @@
-import { type OrderCard, proposeOrder } from "@/lib/compare/order-card";
+import { type OrderCard, proposeOrder } from "@/lib/compare/plan/order-card";
 import type { RoadDayView } from "@/lib/services/road-days/get";
 
 /** What an order card is made for. */

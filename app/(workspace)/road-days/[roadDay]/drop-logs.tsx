@@ -12,7 +12,7 @@ import { type UploadItem, useUploads } from "@/components/features/uploads/use-u
 import { Button } from "@/components/ui/action/button";
 import { ApiError, callApi } from "@/lib/client/api";
 import { roadDayRunsQuery } from "@/lib/client/road-day-runs";
-import { freePlaces, type OrderCard } from "@/lib/compare/order-card";
+import { freePlaces, type OrderCard } from "@/lib/compare/plan/order-card";
 import { type AttachedRun, attachedRun, attachRunSchema } from "@/lib/services/runs/schema";
 
 export interface DropLogsProps {

@@ -5,8 +5,8 @@ import { numberText } from "@/components/ui/data/number-text";
 import { Card } from "@/components/ui/layout/card";
 import { Disclosure } from "@/components/ui/layout/disclosure";
 import { EmptyState } from "@/components/ui/status/empty-state";
-import { freePlaces } from "@/lib/compare/order-card";
-import { cardMetres } from "@/lib/compare/plan-cost";
+import { freePlaces } from "@/lib/compare/plan/order-card";
+import { cardMetres } from "@/lib/compare/plan/plan-cost";
 import type { RoadDayView } from "@/lib/services/road-days/get";
 
 type Props = { view: RoadDayView; chosen: ChosenCard | null };

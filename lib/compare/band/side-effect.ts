@@ -1,4 +1,4 @@
-import { type ComparedRun, carriedBy, type RunDesign } from "@/lib/compare/run-design";
+import { type ComparedRun, carriedBy, type RunDesign } from "@/lib/compare/band/run-design";
 import { tQuantile } from "@/lib/signal/distributions";
 import { leastSquares } from "@/lib/signal/least-squares";
 

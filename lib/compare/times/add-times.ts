@@ -1,4 +1,4 @@
-import { timesDifference } from "@/lib/compare/times-difference";
+import { timesDifference } from "@/lib/compare/times/times-difference";
 import type { Campaign, CampaignRun, DeltaResult, RunResult } from "@/lib/measure/types";
 
 /** A comparison of times alone: no curve, no band, nothing claimed over engine speed. */

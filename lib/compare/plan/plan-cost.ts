@@ -1,4 +1,4 @@
-import type { OrderCard } from "@/lib/compare/order-card";
+import type { OrderCard } from "@/lib/compare/plan/order-card";
 
 /** What a workshop knows of its own strip and bench. */
 export interface DriveFigures {

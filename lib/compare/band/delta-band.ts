@@ -1,4 +1,4 @@
-import { type ColumnGroup, criticalMaxT, pooled } from "@/lib/compare/permutation-max-t";
+import { type ColumnGroup, criticalMaxT, pooled } from "@/lib/compare/band/permutation-max-t";
 import { tQuantile } from "@/lib/signal/distributions";
 import { leastSquares } from "@/lib/signal/least-squares";
 

@@ -1,6 +1,6 @@
-import { type OrderCard, proposeOrder } from "@/lib/compare/order-card";
-import { bandCritical, type PlanBasis, type Scatter, scatterInterval } from "@/lib/compare/plan-scatter";
-import { runDesign } from "@/lib/compare/run-design";
+import { runDesign } from "@/lib/compare/band/run-design";
+import { type OrderCard, proposeOrder } from "@/lib/compare/plan/order-card";
+import { bandCritical, type PlanBasis, type Scatter, scatterInterval } from "@/lib/compare/plan/plan-scatter";
 import { tQuantile } from "@/lib/signal/distributions";
 import { noncentralTCdf } from "@/lib/signal/noncentral-t";
 

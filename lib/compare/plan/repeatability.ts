@@ -1,4 +1,4 @@
-import type { ComparedRun } from "@/lib/compare/run-design";
+import type { ComparedRun } from "@/lib/compare/band/run-design";
 import { findTwins } from "@/lib/compare/twins";
 import { InvalidInputError } from "@/lib/errors";
 import type { RepeatabilityResult } from "@/lib/measure/types";

@@ -1,5 +1,5 @@
-import { type ComparedRun, type RunDesign, runDesign } from "@/lib/compare/run-design";
-import { LEAST_RUNS } from "@/lib/compare/side-effect";
+import { type ComparedRun, type RunDesign, runDesign } from "@/lib/compare/band/run-design";
+import { LEAST_RUNS } from "@/lib/compare/band/side-effect";
 import type { LegCounts, TimeDifference } from "@/lib/measure/sprint/time-types";
 import type { Reason } from "@/lib/measure/types";
 import { tQuantile } from "@/lib/signal/distributions";
