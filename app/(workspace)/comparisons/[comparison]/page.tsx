@@ -16,9 +16,9 @@ import { SideBudgets } from "@/components/features/comparisons/side-budgets";
 import { TwinsTable } from "@/components/features/comparisons/twins-table";
 import { GateList, gateCount } from "@/components/features/gates/gate-list";
 import { NullTestCard } from "@/components/features/null-tests/null-test-card";
+import { ProgrammeCrumbs } from "@/components/features/shell/programme-crumbs";
 import { buttonStyle } from "@/components/ui/action/button-style";
 import { LinkButton } from "@/components/ui/action/link-button";
-import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
 import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { Tabs } from "@/components/ui/layout/tabs";
@@ -52,13 +52,7 @@ export default async function ComparisonPage({
     <div className="flex flex-col gap-6">
       <PageHeading
         above={
-          <Breadcrumbs
-            items={[
-              { label: "Programmes", href: "/programmes" },
-              { label: view.programme.name, href: `/programmes/${view.programme.id}` as Route },
-              { label: `${labels.a} and ${labels.b}` },
-            ]}
-          />
+          <ProgrammeCrumbs programme={view.programme} then={[{ label: `${labels.a} and ${labels.b}` }]} />
         }
         title={`${labels.a} against ${labels.b}`}
         lead={

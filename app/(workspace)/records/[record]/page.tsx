@@ -11,8 +11,8 @@ import { RecordRuns } from "@/components/features/decisions/record-runs";
 import { RecordSeal } from "@/components/features/decisions/record-seal";
 import { recordTitle, STALE_EVIDENCE } from "@/components/features/decisions/record-words";
 import { GateList, gateCount } from "@/components/features/gates/gate-list";
+import { ProgrammeCrumbs } from "@/components/features/shell/programme-crumbs";
 import { LinkButton } from "@/components/ui/action/link-button";
-import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
 import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { requireCtx } from "@/lib/auth/current";
@@ -44,10 +44,9 @@ export default async function RecordPage({ params }: PageProps<"/records/[record
     <article className="flex flex-col gap-6">
       <PageHeading
         above={
-          <Breadcrumbs
-            items={[
-              { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` as Route },
+          <ProgrammeCrumbs
+            programme={programme}
+            then={[
               { label: `R${revision.number}`, href: `/revisions/${revision.id}` as Route },
               { label: recordName(decision.recordNumber) },
             ]}

@@ -1,4 +1,4 @@
-import type { Metadata, Route } from "next";
+import type { Metadata } from "next";
 import { openComparisonAction } from "@/app/(workspace)/comparisons/actions";
 import {
   adoptAction,
@@ -18,8 +18,8 @@ import { RevisionDecisions } from "@/components/features/revisions/revision-deci
 import { RevisionFacts } from "@/components/features/revisions/revision-facts";
 import { RevisionRuns } from "@/components/features/revisions/revision-runs";
 import { REVISION_STATE_WORDS } from "@/components/features/revisions/words";
+import { ProgrammeCrumbs } from "@/components/features/shell/programme-crumbs";
 import { Tag } from "@/components/ui/data/tag";
-import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
 import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { Notice } from "@/components/ui/status/notice";
@@ -59,15 +59,7 @@ export default async function RevisionPage({ params }: PageProps<"/revisions/[re
   return (
     <div className="flex flex-col gap-6">
       <PageHeading
-        above={
-          <Breadcrumbs
-            items={[
-              { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` as Route },
-              { label: `R${revision.number}` },
-            ]}
-          />
-        }
+        above={<ProgrammeCrumbs programme={programme} then={[{ label: `R${revision.number}` }]} />}
         title={`R${revision.number} ${revision.title}`}
         marks={<Tag tone={revision.state === "promoted" ? "strong" : "plain"}>{state}</Tag>}
         actions={

@@ -1,6 +1,6 @@
-import type { Metadata, Route } from "next";
+import type { Metadata } from "next";
 import { NewRevisionForm } from "@/app/(workspace)/revisions/new/new-revision-form";
-import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
+import { ProgrammeCrumbs } from "@/components/features/shell/programme-crumbs";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { Notice } from "@/components/ui/status/notice";
 import { requireCtx } from "@/lib/auth/current";
@@ -18,15 +18,7 @@ export default async function NewRevisionPage({ searchParams }: PageProps<"/revi
   return (
     <div className="flex flex-col gap-6">
       <PageHeading
-        above={
-          <Breadcrumbs
-            items={[
-              { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` as Route },
-              { label: "Add a revision" },
-            ]}
-          />
-        }
+        above={<ProgrammeCrumbs programme={programme} then={[{ label: "Add a revision" }]} />}
         title="Add a revision"
         lead="One immutable image with the reason for its change. A changed image is a new revision."
       />

@@ -8,8 +8,8 @@ import { editRoadDayAction } from "@/app/(workspace)/road-days/actions";
 import { NullTestCard } from "@/components/features/null-tests/null-test-card";
 import { RoadDayFacts } from "@/components/features/road-days/road-day-facts";
 import { RoadDayForm } from "@/components/features/road-days/road-day-form";
+import { ProgrammeCrumbs } from "@/components/features/shell/programme-crumbs";
 import { Tag } from "@/components/ui/data/tag";
-import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
 import { Card } from "@/components/ui/layout/card";
 import { Disclosure } from "@/components/ui/layout/disclosure";
 import { PageHeading } from "@/components/ui/layout/page-heading";
@@ -70,15 +70,7 @@ export default async function RoadDayPage({ params, searchParams }: PageProps<"/
   return (
     <div className="flex flex-col gap-6">
       <PageHeading
-        above={
-          <Breadcrumbs
-            items={[
-              { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` as Route },
-              { label: `Road day ${day}` },
-            ]}
-          />
-        }
+        above={<ProgrammeCrumbs programme={programme} then={[{ label: `Road day ${day}` }]} />}
         title={`${day}, ${stripName}`}
         marks={
           <>

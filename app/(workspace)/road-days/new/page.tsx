@@ -1,8 +1,8 @@
 import type { Metadata, Route } from "next";
 import { createRoadDayAction } from "@/app/(workspace)/road-days/actions";
 import { RoadDayForm } from "@/components/features/road-days/road-day-form";
+import { ProgrammeCrumbs } from "@/components/features/shell/programme-crumbs";
 import { LinkButton } from "@/components/ui/action/link-button";
-import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
 import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { requireCtx } from "@/lib/auth/current";
@@ -30,15 +30,7 @@ export default async function NewRoadDayPage({ searchParams }: PageProps<"/road-
   return (
     <div className="flex flex-col gap-6">
       <PageHeading
-        above={
-          <Breadcrumbs
-            items={[
-              { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` as Route },
-              { label: "New road day" },
-            ]}
-          />
-        }
+        above={<ProgrammeCrumbs programme={programme} then={[{ label: "New road day" }]} />}
         title="New road day"
         actions={
           <LinkButton href={`/programmes/${programme.id}/plan` as Route}>Plan how many twins</LinkButton>

@@ -10,10 +10,10 @@ import { RunPeak } from "@/components/features/runs/run-figures";
 import { RunTimes } from "@/components/features/runs/run-times";
 import { RunWatch } from "@/components/features/runs/run-watch";
 import { VerdictCard } from "@/components/features/runs/verdict-card";
+import { ProgrammeCrumbs } from "@/components/features/shell/programme-crumbs";
 import { buttonStyle } from "@/components/ui/action/button-style";
 import { dateTimeText } from "@/components/ui/data/date-time";
 import { Tag } from "@/components/ui/data/tag";
-import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
 import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { requireCtx } from "@/lib/auth/current";
@@ -53,10 +53,9 @@ export default async function RunPage({ params }: PageProps<"/runs/[run]">) {
     <div className="flex flex-col gap-6">
       <PageHeading
         above={
-          <Breadcrumbs
-            items={[
-              { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` as Route },
+          <ProgrammeCrumbs
+            programme={programme}
+            then={[
               { label: `Road day ${roadDay.day}`, href: `/road-days/${roadDay.id}` as Route },
               { label: `Run ${run.number}` },
             ]}

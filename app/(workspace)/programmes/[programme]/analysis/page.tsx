@@ -1,7 +1,7 @@
 import type { Metadata, Route } from "next";
 import Link from "next/link";
 import { ComparisonMovesCard } from "@/components/features/analysis/comparison-moves";
-import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
+import { ProgrammeCrumbs } from "@/components/features/shell/programme-crumbs";
 import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { EmptyState } from "@/components/ui/status/empty-state";
@@ -43,15 +43,7 @@ export default async function AnalysisPage({ params }: PageProps<"/programmes/[p
   return (
     <div className="flex flex-col gap-6">
       <PageHeading
-        above={
-          <Breadcrumbs
-            items={[
-              { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` as Route },
-              { label: "Analysis version" },
-            ]}
-          />
-        }
+        above={<ProgrammeCrumbs programme={programme} then={[{ label: "Analysis version" }]} />}
         title={`Analysis version ${version}`}
         lead="Every result names the version that computed it, and stays. When the version goes on, the same runs are computed anew beside it, and what moves stands here."
       />

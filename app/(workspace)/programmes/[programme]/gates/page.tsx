@@ -4,7 +4,7 @@ import { saveGatePlanAction } from "@/app/(workspace)/programmes/actions";
 import { GatePlanForm } from "@/components/features/programmes/gate-plan-form";
 import { GatePlanView } from "@/components/features/programmes/gate-plan-view";
 import { VersionList } from "@/components/features/programmes/version-list";
-import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
+import { ProgrammeCrumbs } from "@/components/features/shell/programme-crumbs";
 import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { Notice } from "@/components/ui/status/notice";
@@ -32,15 +32,7 @@ export default async function GatePlanPage({
   return (
     <div className="flex flex-col gap-8">
       <PageHeading
-        above={
-          <Breadcrumbs
-            items={[
-              { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` as Route },
-              { label: "Gate plan" },
-            ]}
-          />
-        }
+        above={<ProgrammeCrumbs programme={programme} then={[{ label: "Gate plan" }]} />}
         title={plan.version === 0 ? "Gate plan, not saved yet" : `Gate plan, version ${plan.version}`}
         lead="What a revision has to show. A must blocks a promotion unless a lead waives it with a reason; a should is shown; off is not asked."
       />

@@ -4,9 +4,9 @@ import { PlanForm } from "@/components/features/plans/plan-form";
 import { PlanTable } from "@/components/features/plans/plan-table";
 import { PolicyLink } from "@/components/features/programmes/policy-link";
 import { OrderCardTable } from "@/components/features/road-days/order-card-table";
+import { ProgrammeCrumbs } from "@/components/features/shell/programme-crumbs";
 import { LinkButton } from "@/components/ui/action/link-button";
 import { numberText } from "@/components/ui/data/number-text";
-import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
 import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { requireCtx } from "@/lib/auth/current";
@@ -38,15 +38,7 @@ export default async function PlanPage({ params, searchParams }: PageProps<"/pro
   return (
     <div className="flex flex-col gap-6">
       <PageHeading
-        above={
-          <Breadcrumbs
-            items={[
-              { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` as Route },
-              { label: "Plan" },
-            ]}
-          />
-        }
+        above={<ProgrammeCrumbs programme={programme} then={[{ label: "Plan" }]} />}
         title="Plan"
         lead="How many twins a side show the difference you look for, in which order, and what they cost."
         actions={

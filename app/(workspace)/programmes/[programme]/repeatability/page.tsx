@@ -1,7 +1,7 @@
 import type { Metadata, Route } from "next";
 import { StripScatterCard } from "@/components/features/plans/strip-scatter";
+import { ProgrammeCrumbs } from "@/components/features/shell/programme-crumbs";
 import { LinkButton } from "@/components/ui/action/link-button";
-import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { EmptyState } from "@/components/ui/status/empty-state";
 import { requireCtx } from "@/lib/auth/current";
@@ -19,15 +19,7 @@ export default async function RepeatabilityPage({
   return (
     <div className="flex flex-col gap-6">
       <PageHeading
-        above={
-          <Breadcrumbs
-            items={[
-              { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` as Route },
-              { label: "Own scatter" },
-            ]}
-          />
-        }
+        above={<ProgrammeCrumbs programme={programme} then={[{ label: "Own scatter" }]} />}
         title="Own scatter"
         lead="How far runs of one image differ, with side, leg and drift taken out. The smaller it is, the smaller the difference that a day can show."
         actions={<LinkButton href={`/programmes/${programme.id}/plan` as Route}>Plan</LinkButton>}

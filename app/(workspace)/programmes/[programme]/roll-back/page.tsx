@@ -1,10 +1,10 @@
-import type { Metadata, Route } from "next";
+import type { Metadata } from "next";
 import { rollBackAction } from "@/app/(workspace)/programmes/[programme]/roll-back/actions";
 import { Cautions } from "@/components/features/decisions/cautions";
 import { EarlierList } from "@/components/features/decisions/earlier-list";
 import { RollBackChanges } from "@/components/features/decisions/roll-back-changes";
 import { RollBackForm } from "@/components/features/decisions/roll-back-form";
-import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
+import { ProgrammeCrumbs } from "@/components/features/shell/programme-crumbs";
 import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { EmptyState } from "@/components/ui/status/empty-state";
@@ -31,15 +31,7 @@ export default async function RollBackPage({
   return (
     <div className="flex flex-col gap-6">
       <PageHeading
-        above={
-          <Breadcrumbs
-            items={[
-              { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` as Route },
-              { label: "Roll back" },
-            ]}
-          />
-        }
+        above={<ProgrammeCrumbs programme={programme} then={[{ label: "Roll back" }]} />}
         title="Roll back"
         lead={
           standing

@@ -4,7 +4,7 @@ import { saveVehicleSheetAction } from "@/app/(workspace)/programmes/actions";
 import { VehicleSheetForm } from "@/components/features/programmes/sheet-form";
 import { VehicleSheetView } from "@/components/features/programmes/sheet-view";
 import { VersionList } from "@/components/features/programmes/version-list";
-import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
+import { ProgrammeCrumbs } from "@/components/features/shell/programme-crumbs";
 import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { Notice } from "@/components/ui/status/notice";
@@ -31,15 +31,7 @@ export default async function VehicleSheetPage({
   return (
     <div className="flex flex-col gap-8">
       <PageHeading
-        above={
-          <Breadcrumbs
-            items={[
-              { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` as Route },
-              { label: "Vehicle sheet" },
-            ]}
-          />
-        }
+        above={<ProgrammeCrumbs programme={programme} then={[{ label: "Vehicle sheet" }]} />}
         title={`Vehicle sheet, version ${sheet.version}`}
         lead="What the computation needs to know of the car, each figure with its unit and its standard uncertainty."
       />

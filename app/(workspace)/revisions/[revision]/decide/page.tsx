@@ -13,8 +13,8 @@ import { Cautions } from "@/components/features/decisions/cautions";
 import { DecisionForm } from "@/components/features/decisions/decision-form";
 import { DeskFacts } from "@/components/features/decisions/desk-facts";
 import { GateList, gateCount } from "@/components/features/gates/gate-list";
+import { ProgrammeCrumbs } from "@/components/features/shell/programme-crumbs";
 import { LinkButton } from "@/components/ui/action/link-button";
-import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
 import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { EmptyState } from "@/components/ui/status/empty-state";
@@ -44,10 +44,9 @@ export default async function DecidePage({ params }: PageProps<"/revisions/[revi
     <div className="flex flex-col gap-6">
       <PageHeading
         above={
-          <Breadcrumbs
-            items={[
-              { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` as Route },
+          <ProgrammeCrumbs
+            programme={programme}
+            then={[
               { label: `R${revision.number}`, href: `/revisions/${revision.id}` as Route },
               { label: "Decision" },
             ]}

@@ -4,8 +4,8 @@ import {
   saveChannelKeyAction,
 } from "@/app/(workspace)/runs/[run]/channel-key/actions";
 import { ChannelKeyWork } from "@/components/features/channel-keys/channel-key-work";
+import { ProgrammeCrumbs } from "@/components/features/shell/programme-crumbs";
 import { dateTimeText } from "@/components/ui/data/date-time";
-import { Breadcrumbs } from "@/components/ui/layout/breadcrumbs";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { requireCtx } from "@/lib/auth/current";
 import { orNotFound } from "@/lib/http/page";
@@ -22,10 +22,9 @@ export default async function ChannelKeyPage({ params }: PageProps<"/runs/[run]/
     <div className="flex flex-col gap-6">
       <PageHeading
         above={
-          <Breadcrumbs
-            items={[
-              { label: "Programmes", href: "/programmes" },
-              { label: programme.name, href: `/programmes/${programme.id}` as Route },
+          <ProgrammeCrumbs
+            programme={programme}
+            then={[
               { label: `Run ${run.number}`, href: `/runs/${run.id}` as Route },
               { label: "Channel key" },
             ]}
