@@ -43,8 +43,11 @@ export async function take(
 async function feed(gunzip: Gunzip, head: Uint8Array, pieces: Pieces): Promise<void> {
   const settled = () =>
     new Promise<void>((resolve) => {
-      gunzip.once("drain", resolve);
-      gunzip.once("close", resolve);
+      const done = () => {
+        gunzip.off("drain", done).off("close", done);
+        resolve();
+      };
+      gunzip.on("drain", done).on("close", done);
     });
   for (let piece: Uint8Array | null = head; piece && !gunzip.destroyed; ) {
     if (!gunzip.write(piece)) await settled();
@@ -63,6 +66,7 @@ export async function* inflated(head: Uint8Array, pieces: Pieces, limit: number)
     gunzip.destroy(error as Error);
   });
   let size = 0;
+  let damaged = false;
   try {
     for await (const piece of gunzip) {
       size += piece.length;
@@ -70,12 +74,14 @@ export async function* inflated(head: Uint8Array, pieces: Pieces, limit: number)
       yield piece;
     }
   } catch {
-    throw sourceError ?? gzipRefusal(null);
+    damaged = true;
   } finally {
     gunzip.destroy();
   }
-  if (size > limit) throw gzipRefusal(limit);
+  // What the source throws in the piece under way goes before any refusal of what was unpacked.
   await fed;
+  if (sourceError) throw sourceError;
+  if (damaged || size > limit) throw gzipRefusal(damaged ? null : limit);
 }
 
 /**
@@ -105,7 +111,13 @@ export async function readLogStream(
     for (let next = await pieces.next(); !next.done; next = await pieces.next()) rest.push(next.value);
     return readLog(joined(rest), options);
   }
-  const reader = openDelimited(head, size, options.key ?? {}, options.drive, options.maxRefusedRows);
+  const reader = openDelimited(
+    head.subarray(0, HEAD_BYTES),
+    size,
+    options.key ?? {},
+    options.drive,
+    options.maxRefusedRows,
+  );
   reader.push(head);
   for (let next = await pieces.next(); !next.done; next = await pieces.next()) reader.push(next.value);
   return reader.finish();

@@ -16,13 +16,16 @@ export async function readStoredLog(
   options: ReadLogOptions,
 ): Promise<LogTable | FileRefusedError> {
   const pieces = streamBlob(where, log.sha256);
-  // The iterator is kept open past a refusal, so that the rest of the bytes still counts into the fingerprint.
+  // The iterator is kept open, so that bytes which the reader left (after a refusal, behind a packed log) still count into the fingerprint.
   const source = { [Symbol.asyncIterator]: () => ({ next: () => pieces.next() }) };
   try {
-    return await readLogStream(source, log.sizeBytes, options);
-  } catch (error) {
-    if (!(error instanceof FileRefusedError)) throw error;
+    const outcome = await readLogStream(source, log.sizeBytes, options).catch((error) => {
+      if (error instanceof FileRefusedError) return error;
+      throw error;
+    });
     while (!(await pieces.next()).done);
-    return error;
+    return outcome;
+  } finally {
+    await pieces.return();
   }
 }

@@ -44,6 +44,15 @@ describe("a log read as it arrives", () => {
     // Whether its size is known matters for memory only.
     expect(told(await readLogStream(inPieces(log), null))).toEqual(told(table));
   });
+  it("takes the form from the same bytes, wherever the pieces end", async () => {
+    const odd = Buffer.from(log);
+    // The first letter that is no UTF-8 lies behind the first mebibyte, but in the piece in which that ends.
+    odd[odd.indexOf("n, ", (1 << 20) + 100)] = 0xe9;
+    async function* uneven() {
+      for (let at = 0; at < odd.length; at += 700_000) yield new Uint8Array(odd.subarray(at, at + 700_000));
+    }
+    expect(told(await readLogStream(uneven(), odd.length))).toEqual(told(readLog(odd)));
+  });
   it("unpacks on the way", async () => {
     expect(told(await readLogStream(inPieces(gzipSync(log)), null))).toEqual(told(readLog(log)));
   });
