@@ -22,8 +22,8 @@ const MISSING = new Set([
   "#num!",
   "#div/0!",
 ]);
-const GROUPED_COMMA = /^[+-]?\d{1,3}(,\d{3})+(\.\d+)?$/;
-const GROUPED_DOT = /^[+-]?\d{1,3}(\.\d{3})+(,\d+)?$/;
+const GROUPED_COMMA = /^[+-]?[1-9]\d{0,2}(,\d{3})+(\.\d+)?$/;
+const GROUPED_DOT = /^[+-]?[1-9]\d{0,2}(\.\d{3})+(,\d+)?$/;
 /** Thousands set off by a blank or an apostrophe. */
 const GROUPED_BLANK = /^[+-]?\d{1,3}([ \u00a0\u202f'’]\d{3})+([.,]\d+)?$/;
 const PLAIN = /^[+-]?(\d+\.?\d*|\.\d+)(e[+-]?\d+)?$/i;

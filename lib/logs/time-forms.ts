@@ -152,8 +152,11 @@ export function findTimeForm(
   const filled = cells.map((cell) => cell.trim()).filter((cell) => !isMissingMark(cell));
   if (filled.length === 0) return null;
   const enough = (count: number) => count >= 0.8 * filled.length;
-  if (enough(filled.filter((cell) => clockSeconds(cell) !== null).length))
-    return { form: "clock", assumed: null };
+  if (enough(filled.filter((cell) => clockSeconds(cell) !== null).length)) {
+    const open = filled.every((cell) => /^\d{1,3}:\d{2}$/.test(cell));
+    const assumed = `Times like "${filled[0]}" can be hours and minutes; they are taken as minutes and seconds. Record the time with seconds.`;
+    return { form: "clock", assumed: open ? assumed : null };
+  }
   if (enough(filled.filter((cell) => isoMilliseconds(cell) !== null).length))
     return { form: "iso", assumed: null };
   const numbers = filled

@@ -1,3 +1,4 @@
+import { FileRefusedError } from "@/lib/errors";
 import { createColumnStore } from "@/lib/logs/delimited/column-store";
 import { createRowScanner, type RowTarget } from "@/lib/logs/delimited/scan-rows";
 import type { TableForm } from "@/lib/logs/delimited/table-form";
@@ -32,8 +33,20 @@ export interface CollectOptions {
 
 /** Refused rows that are listed unless more are asked for. */
 export const MAX_REFUSED_LISTED = 1000;
+/** A longer cell is no time; cut, it fits a page and a database. */
+const LONGEST_RAW = 200;
 /** Jumps back beyond this many are the mark of a column that is no time. */
 const MAX_STARTS = 10_000;
+
+/** A number with a comma, in a log whose first rows told no decimal sign. */
+const COMMA_NUMBER = /^\s*[+-]?\d*,\d+(e[+-]?\d+)?\s*$/i;
+
+function refuseDecimal(cell: string): never {
+  throw new FileRefusedError(
+    "ambiguous_decimal",
+    `The first rows of this log hold whole numbers only; then comes "${cell.trim().slice(0, 40)}", so the decimal sign is in doubt. State it in a channel key ("decimal": "." or ",").`,
+  );
+}
 
 /** True when a column holds any number at all. */
 export const hasNumber = (column: Float64Array): boolean => column.some((value) => !Number.isNaN(value));
@@ -68,7 +81,7 @@ export function createCollector(options: CollectOptions) {
     const cells = scanner.texts();
     if (isHead(cells, form.titles)) headers++;
     else if (!isHead(cells, form.unitRow)) {
-      const raw = cells[timeIndex] ?? "";
+      const raw = (cells[timeIndex] ?? "").slice(0, LONGEST_RAW);
       refuse({ row: line, column: form.titles[timeIndex], raw, reason: "has no readable time" });
     }
   }
@@ -104,6 +117,7 @@ export function createCollector(options: CollectOptions) {
     columns: store.piece(),
     row: 0,
     oddCell(column, cell) {
+      if (form.decimalOpen && COMMA_NUMBER.test(cell)) refuseDecimal(cell);
       if (column === timeIndex) return readTimeCell(cell, timeForm, decimal);
       const value = parseNumber(cell, decimal);
       if (value === null) oddTexts.push([column, cell]);

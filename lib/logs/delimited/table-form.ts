@@ -9,6 +9,8 @@ import { parseUnit } from "@/lib/units/unit-text";
 export interface TableForm {
   delimiter: string;
   decimal: "." | ",";
+  /** No cell of the first rows and no key tells the decimal sign: it is a point until a cell says otherwise. */
+  decimalOpen: boolean;
   /** Column titles as written; `column 1`, … when the file has no header row. */
   titles: string[];
   /** Unit row cells by column, or null. */
@@ -76,7 +78,7 @@ function findDelimiter(text: string): string {
 }
 
 /** Decides the decimal sign from the cells themselves; contradicting or undecidable evidence is refused. */
-function findDecimal(rows: readonly DelimitedRow[]): "." | "," {
+function findDecimal(rows: readonly DelimitedRow[]): { decimal: "." | ","; decimalOpen: boolean } {
   let dot: string | null = null;
   let comma: string | null = null;
   let commaOpen: string | null = null;
@@ -100,14 +102,14 @@ function findDecimal(rows: readonly DelimitedRow[]): "." | "," {
       `Both "${dot}" and "${comma}" occur as numbers, so the decimal sign is in doubt. State it in a channel key ("decimal": "." or ",").`,
     );
   }
-  if (comma !== null) return ",";
+  if (comma !== null) return { decimal: ",", decimalOpen: false };
   if (dot === null && commaOpen !== null) {
     throw new FileRefusedError(
       "ambiguous_decimal",
       `"${commaOpen}" can be a decimal number or a whole one with a thousands mark, and no other cell decides it. State the decimal sign in a channel key.`,
     );
   }
-  return ".";
+  return { decimal: ".", decimalOpen: dot === null };
 }
 
 const hasNumber = (cells: readonly string[]) => cells.some((cell) => looksNumeric(cell));
@@ -194,7 +196,7 @@ export function findTableForm(text: string, key: ChannelKey = {}): TableForm {
     titles[0] = (titles[0] ?? "").replace(/^\s*(#|\/\/|%)\s*/, "");
   return {
     delimiter,
-    decimal: key.decimal ?? findDecimal(data),
+    ...(key.decimal ? { decimal: key.decimal, decimalOpen: false } : findDecimal(data)),
     titles,
     unitRow: withUnits && next ? next.cells.map(stripBrackets) : null,
     lastHeadLine: withUnits && next ? next.line : (header?.line ?? (stated ? 1 : 0)),

@@ -91,6 +91,10 @@ describe("odd bytes", () => {
     expect(table.rowsRead).toBe(51);
     expect(table.rowsRefused).toHaveLength(1);
   });
+  it("a refused row keeps the beginning of its raw text, not megabytes of it", () => {
+    const table = readLog(text(`${HEAD}\n${sound}\n${"x".repeat(1 << 20)},50\n`));
+    expect(table.rowsRefused.map(({ raw }) => raw)).toEqual(["x".repeat(200)]);
+  });
   it("one column is no table", () => {
     expect(refusalOf(() => readLog(text(lines(50, (i) => `${i}`))))).toBe("no_time_column");
     const timeOnly = refusalOf(() => readLog(text(`Time [s]\n${lines(50, (i) => `${i / 10}`)}`)));

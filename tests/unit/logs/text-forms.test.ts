@@ -122,6 +122,27 @@ describe("forms of a text log", () => {
     expect(of("1\u202f648,5", "0,25")).toBe(1648.5);
     expect(of("1'648.5", "0.25")).toBe(1648.5);
   });
+  it("a decimal comma after hundreds of whole numbers is asked for, not taken for a mark of thousands", () => {
+    const late = (cell: string, key = {}) =>
+      readLog(
+        Buffer.from(table("Time [s];GPS speed [km/h]", (i) => `${i};${i < 300 ? i % 90 : cell}`, 400)),
+        {
+          key,
+        },
+      );
+    for (const cell of ["12,345", "12,5", "0,512"])
+      expect(refusalOf(() => late(cell))).toBe("ambiguous_decimal");
+    const stated = late("12,345", { decimal: "," }).channels[0].values;
+    expect(3.6 * stated[399]).toBeCloseTo(12.345, 9);
+    // With a leading zero it is no number of thousands, whatever the decimal sign.
+    expect(late("0,512", { decimal: "." }).channels[0].values[399]).toBeNaN();
+  });
+  it("14:03 is minutes and seconds, and that is told: it may be a wall clock without seconds", () => {
+    const of = (time: (i: number) => string) =>
+      codesOf(read(table("Time;GPS speed [km/h]", (i) => `${time(i)};${speed(i)}`)));
+    expect(of((i) => `14:${10 + i}`)).toContain("time_unit_assumed");
+    expect(of((i) => `14:${10 + i}.0`)).not.toContain("time_unit_assumed");
+  });
   it("a clock set back splits the log; the longer piece is kept, and that is told", () => {
     const log = read(table(HEAD, (i) => `${i < 30 ? i / 10 + 50 : i / 10 - 3};${speed(i)};1`, 100));
     expect(log.rowsRead).toBe(70);
