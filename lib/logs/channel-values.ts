@@ -174,7 +174,11 @@ function buildChannel(
       title,
       problems,
     );
-  }
+  } else if (from.reference && (from.reference === "gauge") !== (channel === "manifold_pressure_gauge"))
+    problems.push({
+      code: "pressure_reference_disagrees",
+      message: `"${title}" is taken as ${channelWords(channel)} as the channel key says, but its unit "${unitFound}" says ${from.reference}. Check both in the channel key.`,
+    });
   if (reading.speedKindOpen && !stated) {
     problems.push({
       code: "speed_kind_assumed",

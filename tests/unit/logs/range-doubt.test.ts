@@ -13,6 +13,20 @@ function doubts(columns: readonly [title: string, low: number, high: number][]):
 }
 
 // What a petrol or diesel engine can show: common practice, no source.
+describe("a key that contradicts its own unit about the zero of a pressure", () => {
+  it.each([
+    ["manifold_pressure", "bar gauge", 1],
+    ["manifold_pressure_gauge", "bar abs", 1],
+    ["manifold_pressure", "bar abs", 0],
+    ["manifold_pressure_gauge", "bar", 0],
+  ])("%s in %s: %d doubts", (channel, unit, count) => {
+    const rows = Array.from({ length: 40 }, (_, i) => `${i / 10};${(1 + i / 100).toFixed(2)}`);
+    const key = { columns: { P: { channel, unit } } };
+    const { problems } = readLog(Buffer.from(["Time [s];P", ...rows].join("\n")), { key });
+    expect(problems.filter(({ code }) => code === "pressure_reference_disagrees")).toHaveLength(count);
+  });
+});
+
 describe("a range that no engine has names the doubt", () => {
   it.each([
     [["Lambda", 98, 140], /decimal mark\?/],
