@@ -41,6 +41,8 @@ export interface ReadLogOptions {
   maxRefusedRows?: number;
   /** Size that a packed log may grow to; 256 MiB when absent. */
   maxInflatedBytes?: number;
+  /** Values that an MDF file may hold; 64 Mi when absent. */
+  maxValues?: number;
 }
 
 /** @param limit bytes it grew beyond; null: it can't be unpacked at all */
@@ -90,8 +92,8 @@ export function readLog(bytes: Uint8Array, options: ReadLogOptions = {}): LogTab
   if (sniffed.kind === "unsupported") throw formatRefusal(sniffed.name, options.fileName);
   const maxInflatedBytes = options.maxInflatedBytes ?? MAX_INFLATED_BYTES;
   if (sniffed.kind === "mdf") return readMdf(content, { ...options, maxInflatedBytes });
-  if (sniffed.kind === "nmea") return readNmea(content, options.key ?? {});
-  if (sniffed.kind === "gpx") return readGpx(content, options.key ?? {});
+  if (sniffed.kind === "nmea") return readNmea(content, options.key ?? {}, options.maxRefusedRows);
+  if (sniffed.kind === "gpx") return readGpx(content, options.key ?? {}, options.maxRefusedRows);
   const head = content.subarray(0, HEAD_BYTES);
   const reader = openDelimited(
     head,

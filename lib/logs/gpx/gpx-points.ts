@@ -30,6 +30,8 @@ export interface GpxPoints {
 const DEEPEST = 64;
 const LONGEST_TEXT = 100;
 const PIECE = 1 << 16;
+/** Points that are held at once: ten hours at 25 a second. */
+const MOST_POINTS = 1_000_000;
 
 class CutOff extends Error {}
 
@@ -54,7 +56,7 @@ function decimal(text: string | undefined): number {
 
 /**
  * Reads the track points of a GPX text (1.0 and 1.1). Entities of its own are an error, nothing outside is fetched. A text that ends
- * too early gives the points before its end. Throws FileRefusedError `file_damaged`.
+ * too early gives the points before its end. Throws FileRefusedError `file_damaged`, `too_many_values`.
  */
 export function readGpxPoints(text: string): GpxPoints {
   const parser = new SaxesParser({ xmlns: false, position: true });
@@ -106,6 +108,11 @@ export function readGpxPoints(text: string): GpxPoints {
     if (!point) return;
     const inPoint = path[path.length - 1] === "trkpt";
     if (local === "trkpt") {
+      if (result.points.length >= MOST_POINTS)
+        throw new FileRefusedError(
+          "too_many_values",
+          `The GPX file holds more than ${MOST_POINTS} track points; a log of one run has far fewer. Export only the time that is needed.`,
+        );
       result.points.push(point);
       point = null;
     } else if (local === "ele" && inPoint) point.elevationM = decimal(gathered);

@@ -10,9 +10,9 @@ const MOST_REFUSED_LISTED = 1000;
 
 /**
  * Reads a GPX track (1.0 and 1.1): positions, elevations, times, and speeds where the file states them. Without a stated speed one is
- * derived from the positions, and a problem entry says so. A point without a time is refused with its line. Throws FileRefusedError.
+ * derived from the positions, and a problem entry says so. A point without a time is refused with its line; `listAtMost` are listed. Throws FileRefusedError.
  */
-export function readGpx(bytes: Uint8Array, key: ChannelKey): LogTable {
+export function readGpx(bytes: Uint8Array, key: ChannelKey, listAtMost = MOST_REFUSED_LISTED): LogTable {
   const { text, encoding } = decodeText(bytes, key.encoding);
   const read = readGpxPoints(text);
   const refused: RefusedRow[] = [];
@@ -21,7 +21,7 @@ export function readGpx(bytes: Uint8Array, key: ChannelKey): LogTable {
     if (!Number.isNaN(point.timeMs)) return true;
     refusedCount++;
     const reason = point.timeText === "" ? "has no time" : "has no readable time";
-    if (refused.length < MOST_REFUSED_LISTED)
+    if (refused.length < listAtMost)
       refused.push({ row: point.line, column: "time", raw: point.timeText, reason });
     return false;
   });

@@ -13,6 +13,8 @@ export interface MdfFile {
   seen: Set<number>;
   /** Address of the block nearest to the end that was read. */
   furthest: number;
+  /** Links that may still be read: every one takes eight bytes, and no block is read more than a few times. */
+  linksLeft: number;
   /** Address of a data block whose length was never written: it runs to the end of the file. 0 = none. */
   openBlockAt: number;
 }
@@ -21,7 +23,7 @@ export interface MdfFile {
 export interface MdfBlock {
   id: string;
   at: number;
-  links: number[];
+  readonly links: number[];
   dataAt: number;
   dataEnd: number;
 }
@@ -41,6 +43,7 @@ export function openMdf(bytes: Uint8Array): MdfFile {
     view: new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength),
     seen: new Set(),
     furthest: 0,
+    linksLeft: bytes.length >> 1,
     openBlockAt: 0,
   };
 }
@@ -81,8 +84,24 @@ export function readBlock(file: MdfFile, at: number, ids: readonly string[]): Md
     refuseDamaged(
       `The data block at byte ${file.openBlockAt} was never finished and a ${id.slice(2)} block follows it`,
     );
-  const links = Array.from({ length: count }, (_, i) => readU64(file.view, at + HEAD_BYTES + 8 * i));
-  return { id: id.slice(2), at, links, dataAt: at + HEAD_BYTES + 8 * count, dataEnd: at + length };
+  let links: number[] | null = null;
+  return {
+    id: id.slice(2),
+    at,
+    get links() {
+      links ??= readLinks(file, at, count);
+      return links;
+    },
+    dataAt: at + HEAD_BYTES + 8 * count,
+    dataEnd: at + length,
+  };
+}
+
+/** Blocks that overlap may claim the same bytes again and again as links; together they get no more than the file can hold. */
+function readLinks(file: MdfFile, at: number, count: number): number[] {
+  file.linksLeft -= count;
+  if (file.linksLeft < 0) refuseDamaged("The blocks state more links than the file has room for");
+  return Array.from({ length: count }, (_, i) => readU64(file.view, at + HEAD_BYTES + 8 * i));
 }
 
 /** Reads a block that may be reached once only: a second way to it is a loop. */

@@ -11,6 +11,8 @@ const FUNCTIONS: Readonly<Record<string, (...values: number[]) => number>> = {
 };
 const TOKEN = /\s*(?:(\d+\.?\d*(?:e[+-]?\d+)?|\.\d+(?:e[+-]?\d+)?)|([a-z]\w*)|([-+*/(),]))/iy;
 const DEEPEST = 50;
+/** No sensor's curve is longer; a made-up formula must not claim time for every value of a log. */
+const MOST_TOKENS = 128;
 
 /**
  * Compiles a conversion formula of one variable, X or X1: numbers, + − * /, brackets, abs, sqrt, exp, sin, cos, tan (radians) and
@@ -22,7 +24,7 @@ export function compileFormula(text: string): Evaluate | null {
   const source = text.trimEnd();
   while (TOKEN.lastIndex < source.length) {
     const match = TOKEN.exec(source);
-    if (!match) return null;
+    if (!match || tokens.length >= MOST_TOKENS) return null;
     tokens.push((match[1] ?? match[2] ?? match[3]).toLowerCase());
   }
   let at = 0;

@@ -30,7 +30,7 @@ interface Reading {
   /** Titles of channels whose numbers stand for words: no known channel may be made of them. */
   words: Set<string>;
   texts: string[];
-  values: { taken: number; allowed: number };
+  values: { taken: number; allowed: number; most: number };
 }
 
 /**
@@ -39,7 +39,7 @@ interface Reading {
  */
 export function readMdf(
   bytes: Uint8Array,
-  options: { key?: ChannelKey; drive?: "FWD" | "RWD" | "AWD"; maxInflatedBytes: number },
+  options: { key?: ChannelKey; drive?: "FWD" | "RWD" | "AWD"; maxInflatedBytes: number; maxValues?: number },
 ): LogTable {
   const file = openMdf(bytes);
   const key = options.key ?? {};
@@ -54,7 +54,7 @@ export function readMdf(
     leftOut: [],
     words: new Set(),
     texts: [],
-    values: { taken: 0, allowed: 0 },
+    values: { taken: 0, allowed: 0, most: options.maxValues ?? MOST_VALUES },
   };
   unfinished.settle(tree);
   if (unfinished.problem) reading.problems.push(unfinished.problem);
@@ -199,7 +199,7 @@ function readGroup(
 /** Claims room for the values of a group before any of it is taken. */
 function claim({ values }: Reading, count: number): void {
   values.taken += count;
-  const limit = Math.min(MOST_VALUES, Math.max(FEWEST_VALUES_REFUSED, values.allowed));
+  const limit = Math.min(values.most, Math.max(FEWEST_VALUES_REFUSED, values.allowed));
   if (values.taken <= limit) return;
   throw new FileRefusedError(
     "too_many_values",

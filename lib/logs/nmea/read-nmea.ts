@@ -6,6 +6,8 @@ import { readSentence } from "@/lib/logs/nmea/nmea-sentence";
 import type { ChannelKey, LogProblem, LogTable, RefusedRow } from "@/lib/logs/types";
 
 const MOST_REFUSED_LISTED = 1000;
+/** Moments that are held at once: ten hours at 25 a second. */
+const MOST_EPOCHS = 1_000_000;
 const DAY_MS = 86_400_000;
 
 interface SentenceCounts {
@@ -29,9 +31,9 @@ function* lines(bytes: Uint8Array): Generator<string> {
 
 /**
  * Reads the log of a satellite receiver (NMEA 0183): RMC, VTG, GGA and ZDA of any talker, one row a moment. A sentence counts only
- * when its checksum holds; the others are listed. Without a fix a value is missing, never 0. Throws FileRefusedError; see readLog.
+ * when its checksum holds; the others are listed, `listAtMost` of them. Without a fix a value is missing, never 0. Throws FileRefusedError; see readLog.
  */
-export function readNmea(bytes: Uint8Array, key: ChannelKey): LogTable {
+export function readNmea(bytes: Uint8Array, key: ChannelKey, listAtMost = MOST_REFUSED_LISTED): LogTable {
   const counts: SentenceCounts = { good: 0, refused: 0, firstRefused: [], otherLines: 0 };
   const { add, result } = collectEpochs();
   let row = 0;
@@ -42,11 +44,16 @@ export function readNmea(bytes: Uint8Array, key: ChannelKey): LogTable {
       if (line.trim() !== "" && !line.startsWith("#")) counts.otherLines++;
     } else if (typeof read === "string") {
       counts.refused++;
-      if (counts.firstRefused.length < MOST_REFUSED_LISTED)
+      if (counts.firstRefused.length < listAtMost)
         counts.firstRefused.push({ row, raw: line.trim().slice(0, 100), reason: read });
     } else {
       counts.good++;
       add(read);
+      if (result.epochs.length > MOST_EPOCHS)
+        throw new FileRefusedError(
+          "too_many_values",
+          `The receiver log holds more than ${MOST_EPOCHS} moments; a log of one run has far fewer. Export only the time that is needed.`,
+        );
     }
   }
   const { epochs } = result;

@@ -1,3 +1,4 @@
+import type { FileRefusedError } from "@/lib/errors";
 import { HEAD_BYTES } from "@/lib/logs/delimited/read-delimited";
 import { MAX_INFLATED_BYTES } from "@/lib/logs/read-log";
 import { inflated, joined, type Pieces, take } from "@/lib/logs/read-log-stream";
@@ -8,6 +9,8 @@ export interface LogHead {
   bytes: Uint8Array;
   /** Whether `bytes` are the whole file. */
   complete: boolean;
+  /** Why nothing of it can be had. */
+  refusal?: FileRefusedError;
 }
 
 /** Formats that are no text table can only be read whole; larger ones of them are not looked at before the worker reads them. */

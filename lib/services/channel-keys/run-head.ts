@@ -6,15 +6,12 @@ import { findHeader, headerFingerprint } from "@/lib/logs/preview/header-fingerp
 import { streamBlob } from "@/lib/services/blobs";
 import type { Ctx } from "@/lib/services/ctx";
 
-/** Nothing can be read of a log that can't be unpacked. */
-const NOTHING: LogHead = { bytes: new Uint8Array(), complete: true };
-
-/** The beginning of bytes on their way or in the store; a log that can't be unpacked has none. @throws what the source throws */
+/** The beginning of bytes on their way or in the store; a log that can't be unpacked has none, but the reason. @throws what the source throws */
 export async function headOf(source: AsyncIterable<Uint8Array>): Promise<LogHead> {
   try {
     return await gatherHead(source);
   } catch (error) {
-    if (error instanceof FileRefusedError) return NOTHING;
+    if (error instanceof FileRefusedError) return { bytes: new Uint8Array(), complete: true, refusal: error };
     throw error;
   }
 }

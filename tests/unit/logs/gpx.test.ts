@@ -121,6 +121,9 @@ describe("hostile texts", () => {
     }
     expect(refusalOf(() => read(track(ten(() => "<name>&b;</name>"))))).toBe("file_damaged");
   });
+  it("a flood of points is refused before it fills the memory", { timeout: 60_000 }, () => {
+    expect(refusalOf(() => read(track("<trkpt/>".repeat(1_000_001))))).toBe("too_many_values");
+  });
   it("a million elements inside one another are refused", () => {
     expect(refusalOf(() => read(`<gpx>${"<a>".repeat(1_000_000)}`))).toBe("file_damaged");
   });

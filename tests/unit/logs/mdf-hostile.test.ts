@@ -151,6 +151,38 @@ describe("what is not read is said", () => {
   });
 });
 
+describe("blocks that all claim the same eight megabytes as their links", () => {
+  /** A thousand channels; every block of a kind says that it goes on to the end of the file. */
+  const claiming = (id: string) => {
+    const channels = Array.from({ length: 1000 }, (_, k) => ({
+      name: `c${k}`,
+      dataType: 0,
+      byteOffset: 8,
+      bitCount: 8,
+    }));
+    const plain = writeMdf([data({}, { channels: [TIME, ...channels] })]);
+    const bytes = new Uint8Array(plain.length + (8 << 20));
+    bytes.set(plain);
+    const view = new DataView(bytes.buffer);
+    for (let at = 64; at < plain.length; at += 8) {
+      if (String.fromCharCode(...bytes.subarray(at, at + 4)) !== `##${id}`) continue;
+      const links = Math.floor((bytes.length - at - 256) / 8);
+      view.setBigUint64(at + 8, BigInt(bytes.length - at), true);
+      view.setBigUint64(at + 16, BigInt(links), true);
+    }
+    return bytes;
+  };
+  it.each([
+    ["CN", "file_damaged"],
+    ["TX", "read"],
+  ])("%s: %s, at once", (id, outcome) => {
+    const bytes = claiming(id);
+    const began = performance.now();
+    expect(refused(bytes)).toBe(outcome);
+    expect(performance.now() - began).toBeLessThan(2000);
+  });
+});
+
 describe("files that their logger did not finish", () => {
   const open = (unfinished: number, more: Partial<WrittenData> = {}, custom = 0) =>
     writeMdf([data(more, { cycles: 0 })], { unfinished, custom }, (w, [dg]) => {

@@ -22,6 +22,19 @@ const rmc = (s: number, knots: number | "", date = "311230", status = "A", talke
   );
 const read = (lines: string[]) => readLog(bytes(lines.join("\r\n")));
 
+describe("many sentences", { timeout: 60_000 }, () => {
+  it("as many refused ones are listed as are asked for", () => {
+    const lines = Array.from({ length: 3000 }, (_, i) => (i % 2 ? rmc(i / 10, 20) : "$GPRMC,1*00"));
+    const listed = (maxRefusedRows?: number) =>
+      readLog(bytes(lines.join("\n")), { maxRefusedRows }).rowsRefused.length;
+    expect([listed(), listed(5000)]).toEqual([1000, 1500]);
+  });
+  it("a flood of moments is refused before it fills the memory", () => {
+    const two = `${sentence("GPZDA,000000")}\n${sentence("GPZDA,000001")}\n`;
+    expect(refusalOf(() => readLog(bytes(two.repeat(500_001))))).toBe("too_many_values");
+  });
+});
+
 describe("recordings of real receivers", () => {
   // Counts: every sentence whose checksum holds, counted with pynmea2; 37 of 224 RMC without a fix in the second file.
   test.each([
