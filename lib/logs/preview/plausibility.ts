@@ -1,5 +1,6 @@
 import { CHANNEL_UNITS } from "@/lib/logs/channel-names";
 import { channelWords } from "@/lib/logs/channel-words";
+import { rangeDoubt } from "@/lib/logs/range-doubt";
 import type { KnownChannel } from "@/lib/logs/types";
 
 /** What a look at the range of a channel says. */
@@ -71,5 +72,7 @@ export function plausibility(
       looksRight: false,
       sentence: `${text}: ${max <= 0 ? "did the car move?" : doubt(channel, min, max)}`,
     };
+  const slip = rangeDoubt(channel, range);
+  if (slip) return { looksRight: false, sentence: `${text}: ${slip}` };
   return { looksRight: true, sentence: `${text}: looks right` };
 }

@@ -29,6 +29,8 @@ export interface LogPreview {
   /** First rows of values as parsed, cell by cell in the order of `columns`. */
   rows: string[][];
   columns: PreviewColumn[];
+  /** What else the file holds and is not read: texts, raw frames, groups without a time. It has no cells to choose from. */
+  notRead: string[];
   rowsRead: number;
   /** The first five. */
   rowsRefused: RefusedRow[];
@@ -93,6 +95,7 @@ export function previewLog(head: LogHead, options: ReadLogOptions): LogPreview {
     columns: table
       ? previewColumns(table, layout?.form.titles ?? null, rows)
       : unreadColumns(layout?.form.titles ?? [], layout?.form.unitRow ?? null, rows),
+    notRead: layout ? [] : (table?.leftOut ?? []),
     rowsRead: table?.rowsRead ?? 0,
     rowsRefused: table?.rowsRefused.slice(0, LISTED_REFUSED) ?? [],
     problems: table?.problems ?? [],

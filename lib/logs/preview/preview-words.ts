@@ -2,7 +2,7 @@ import { channelWords } from "@/lib/logs/channel-words";
 import type { LogPreview } from "@/lib/logs/preview/preview-log";
 
 /** A preview in a few words for one line: what was found, what is left out, what is in doubt. */
-export function previewWords({ columns, problems, refusal }: LogPreview) {
+export function previewWords({ columns, notRead, problems, refusal }: LogPreview) {
   const inDoubt = problems.filter((problem) => !PLAIN.has(problem.code)).map((problem) => problem.message);
   const odd = columns.flatMap(({ plausible }) =>
     plausible && !plausible.looksRight ? [plausible.sentence] : [],
@@ -11,9 +11,12 @@ export function previewWords({ columns, problems, refusal }: LogPreview) {
     found: columns.flatMap(({ role, channel }) =>
       role === "channel" && channel ? [channelWords(channel)] : [],
     ),
-    leftOut: columns
-      .filter(({ role, channel }) => role === "text" || (role === "free" && channel === null))
-      .map(({ title }) => title),
+    leftOut: [
+      ...columns
+        .filter(({ role, channel }) => role === "text" || (role === "free" && channel === null))
+        .map(({ title }) => title),
+      ...notRead,
+    ],
     /** What else was found; it leaves nothing to choose. */
     remarks: problems
       .filter(({ code }) => PLAIN.has(code) && code !== "implausible_values")

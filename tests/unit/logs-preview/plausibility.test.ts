@@ -13,6 +13,9 @@ const CASES: [KnownChannel, number, number, boolean, string][] = [
   ["gps_speed", 0, 0, false, "GPS speed 0 to 0 km/h: it never changes; is the sensor connected?"],
   ["pedal", 0, 1, false, "pedal 0 to 1 %: a fraction instead of per cent?"],
   ["coolant_temperature", 353, 371, false, "coolant temperature 353 to 371 °C: unit or decimal mark?"],
+  // Inside the range of any car, but the reader knows the slip by name: the page must not call it right.
+  ["coolant_temperature", 140, 190, false, "coolant temperature 140 to 190 °C: in °F?"],
+  ["lambda", 11.2, 14.7, false, "lambda 11.2 to 14.7: an air-fuel ratio instead of lambda?"],
   ["latitude", 200, 201, false, "latitude 200 to 201 deg: decimal mark?"],
   ["intake_temperature", -12.5, 31, true, "intake temperature \u221212.5 to 31 °C: looks right"],
 ];

@@ -3,10 +3,12 @@ import { describe, expect, test } from "vitest";
 import { FileRefusedError } from "@/lib/errors";
 import { gatherHead, type LogHead } from "@/lib/logs/preview/gather-head";
 import { previewLog } from "@/lib/logs/preview/preview-log";
+import { previewWords } from "@/lib/logs/preview/preview-words";
 import { readLog } from "@/lib/logs/read-log";
 import { randomStream } from "@/lib/signal/random";
 import { mutate } from "@/tests/fuzz/mutate";
 import { READERS, seedFiles } from "@/tests/fuzz/seed-files";
+import { writeMdf } from "@/tests/support/mdf-writer";
 
 const FILES = 60;
 
@@ -31,6 +33,36 @@ async function headOrRefusal(bytes: Uint8Array): Promise<LogHead | string> {
     throw error;
   }
 }
+
+describe("what a preview takes upon itself is less than what the worker may", () => {
+  test("a small file whose channels share their bytes is not spread out in the web process", () => {
+    const channels = Array.from({ length: 30 }, (_, k) => ({
+      name: `c${k}`,
+      dataType: 0,
+      byteOffset: 8 + (k % 8),
+      bitCount: 8,
+    }));
+    const time = { name: "t", unit: "s", type: 2, sync: 1, dataType: 4, byteOffset: 0, bitCount: 64 };
+    const cycles = 200_000;
+    const stream = new Uint8Array(16 * cycles);
+    const view = new DataView(stream.buffer);
+    for (let i = 0; i < cycles; i++) view.setFloat64(16 * i, i / 100, true);
+    const bytes = writeMdf([{ groups: [{ channels: [time, ...channels], dataBytes: 16, cycles }], stream }]);
+    expect(previewLog({ bytes, complete: true }, {}).refusal?.code).toBe("too_large_to_preview");
+    expect(imported(bytes)).toEqual({ refused: null, rows: cycles });
+  });
+  test("what an MDF file holds beside its numbers is named as left out", () => {
+    const bytes = seedFiles("mdf")[0];
+    const { leftOut } = previewWords(previewLog({ bytes, complete: true }, {}));
+    expect(leftOut).toEqual(expect.arrayContaining(["word", "map"]));
+  });
+  test("a log that can't be unpacked is told as that, not as an empty one", () => {
+    const refusal = new FileRefusedError("gzip_damaged", "The packed log can't be unpacked.");
+    const preview = previewLog({ bytes: new Uint8Array(), complete: true, refusal }, {});
+    expect(preview.refusal).toEqual({ code: "gzip_damaged", message: refusal.message });
+    expect(preview.headerSha256).toBeNull();
+  });
+});
 
 describe("a mutated log is previewed as it is imported, never with another outcome", () => {
   test.each(READERS)("%s", { timeout: 120_000 }, async (reader) => {
