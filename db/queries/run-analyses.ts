@@ -41,6 +41,16 @@ export async function selectRunAnalyses(
     .limit(10);
 }
 
+/** Whether a run was ever judged. */
+export async function hasRunAnalysis(db: Queryable, { workspaceId, runId }: Key): Promise<boolean> {
+  const [row] = await db
+    .select({ runId: runAnalyses.runId })
+    .from(runAnalyses)
+    .where(and(eq(runAnalyses.workspaceId, workspaceId), eq(runAnalyses.runId, runId)))
+    .limit(1);
+  return row !== undefined;
+}
+
 /** A record whose decision rests on a run. */
 export interface CitingRecord {
   runId: string;

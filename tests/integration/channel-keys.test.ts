@@ -16,6 +16,7 @@ import { whatMoved } from "@/lib/services/comparisons/what-moved";
 import type { Ctx } from "@/lib/services/ctx";
 import { getRun } from "@/lib/services/runs/get";
 import { listRefusedRows, refusedRowsCsv } from "@/lib/services/runs/refused-rows";
+import { setRunAside } from "@/lib/services/runs/set-aside";
 import { citeRun } from "@/tests/support/cite-run";
 import { test } from "@/tests/support/database";
 import { createMember } from "@/tests/support/factories";
@@ -79,6 +80,18 @@ describe("a channel key", () => {
     expect(usual?.result.peak?.engine_kw).toBeGreaterThan(0);
     const entries = await tx.select().from(ledger).where(eq(ledger.event, "channel_key.saved"));
     expect(entries.at(-1)?.data).toMatchObject({ name: "Black box", version: 1, runs: [1] });
+  });
+
+  test("does not make a result unseen: a run set aside while it waits anew says that its result was visible", async ({
+    tx,
+  }) => {
+    const side = await createRoadSide(tx, files.store);
+    const [odd = ""] = await attachAll(tx, side, [oddLog()]);
+    await saveChannelKey(side.tester, keyOf(odd));
+    const { run } = await getRun(side.tester, odd);
+    expect(run.state).toBe("waiting");
+    const change = { runId: odd, rowVersion: run.rowVersion, reason: "a gust" };
+    expect((await setRunAside(side.tester, change)).resultWasVisible).toBe(true);
   });
 
   test("keeps its old versions, and is saved on what one looked at only", async ({ tx }) => {

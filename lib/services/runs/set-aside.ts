@@ -1,3 +1,4 @@
+import { hasRunAnalysis } from "@/db/queries/run-analyses";
 import { type RunRow, updateRun } from "@/db/queries/runs";
 import { ConflictError } from "@/lib/errors";
 import { refreshComparisonsOf } from "@/lib/services/comparisons/refresh";
@@ -20,7 +21,10 @@ export async function setRunAside(ctx: Ctx, input: SetAsideRun): Promise<RunRow>
     await refuseCited(tx, inner, `Run ${run.number}`, [run.id]);
     if (run.setAsideAt)
       throw new ConflictError("already_set_aside", `Run ${run.number} is set aside already.`);
-    const resultWasVisible = run.state !== "waiting";
+    // A run waits again under another channel key, but what it showed before was seen.
+    const resultWasVisible =
+      run.state !== "waiting" ||
+      (await hasRunAnalysis(tx, { workspaceId: inner.workspaceId, runId: run.id }));
     const { at } = await appendLedger(tx, inner, {
       event: "run.excluded",
       subjectType: "run",
