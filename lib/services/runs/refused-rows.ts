@@ -1,5 +1,5 @@
 import Papa from "papaparse";
-import { selectRunForJudging } from "@/db/queries/run-analyses";
+import { selectRunAnalyses, selectRunForJudging } from "@/db/queries/run-analyses";
 import { ConflictError, FileRefusedError } from "@/lib/errors";
 import type { RefusedRow } from "@/lib/logs/types";
 import { type Ctx, withTransaction } from "@/lib/services/ctx";
@@ -29,11 +29,16 @@ export function refusedRowsCsv(rows: readonly RefusedRow[], most = MOST_ROWS): s
 /**
  * Reads a run's log once more, piece by piece, as it is read for its verdict, and lists every row that was refused; noted in the
  * ledger as a download.
- * @throws ForbiddenError; NotFoundError; UnavailableError; ConflictError `log_refused` when the log as a whole can't be read
+ * @throws ForbiddenError; NotFoundError; UnavailableError; ConflictError `no_rows_refused`,
+ *   `log_refused` when the log as a whole can't be read
  */
 export async function listRefusedRows(ctx: Ctx, runId: string): Promise<{ fileName: string; csv: string }> {
   const run = await loadRun(ctx, runId, "run.download");
   const { workspaceId } = ctx;
+  // Reading a large log again is work: it is done only where its verdict says that there is something to list.
+  const [verdict] = await selectRunAnalyses(ctx.db, { workspaceId, runId });
+  if (!verdict?.result.notes.some((note) => note.code === "rows_refused"))
+    throw new ConflictError("no_rows_refused", "No row of this log was refused, so there is no list.");
   const { sheet } = await loadProgramme(ctx, run.programmeId);
   const found = await selectRunForJudging(ctx.db, { workspaceId, runId });
   const log = await readStoredLog(
