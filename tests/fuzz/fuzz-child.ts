@@ -8,7 +8,20 @@ import { type FuzzedReader, seedFiles } from "@/tests/fuzz/seed-files";
 // Reads mutated files one after the other and says before each which one it is, so that the parent knows where it hung or died.
 const [reader, seed, from, count] = process.argv.slice(2);
 const files = seedFiles(reader as FuzzedReader);
-const say = (line: string) => writeSync(1, `${line}\n`);
+const pause = new Int32Array(new SharedArrayBuffer(4));
+
+/** Writes a line before anything else happens; a parent that is behind with reading is waited for. */
+function say(line: string): void {
+  for (;;) {
+    try {
+      writeSync(1, `${line}\n`);
+      return;
+    } catch (error) {
+      if ((error as NodeJS.ErrnoException).code !== "EAGAIN") throw error;
+      Atomics.wait(pause, 0, 0, 5);
+    }
+  }
+}
 
 for (let i = Number(from); i < Number(count); i++) {
   say(`start ${i}`);

@@ -139,6 +139,11 @@ export function openDelimited(
     throw new FileRefusedError("empty_file", "The file is empty. Export the log again.");
   const problems: LogProblem[] = [];
   const form = findTableForm(text.head, key);
+  if (form.decimalDisagrees)
+    problems.push({
+      code: "key_decimal_disagrees",
+      message: `The channel key states "${form.decimal}" as the decimal sign, but the cells of this log are written with the other one. Check the values, and give this log a key of its own.`,
+    });
   const time = findTimeColumn(text.head, form, key, problems);
   const collector = createCollector({
     form,

@@ -11,6 +11,8 @@ export interface TableForm {
   decimal: "." | ",";
   /** No cell of the first rows and no key tells the decimal sign: it is a point until a cell says otherwise. */
   decimalOpen: boolean;
+  /** The key states another decimal sign than the cells show. */
+  decimalDisagrees: boolean;
   /** Column titles as written; `column 1`, … when the file has no header row. */
   titles: string[];
   /** Unit row cells by column, or null. */
@@ -112,6 +114,21 @@ function findDecimal(rows: readonly DelimitedRow[]): { decimal: "." | ","; decim
   return { decimal: ".", decimalOpen: dot === null };
 }
 
+type Decimal = Pick<TableForm, "decimal" | "decimalOpen" | "decimalDisagrees">;
+
+/** The decimal sign as the key states it, else as the cells show it; cells that contradict a key are told, not obeyed. */
+function chooseDecimal(rows: readonly DelimitedRow[], stated: "." | "," | undefined): Decimal {
+  if (!stated) return { ...findDecimal(rows), decimalDisagrees: false };
+  const common = { decimal: stated, decimalOpen: false };
+  try {
+    const found = findDecimal(rows);
+    return { ...common, decimalDisagrees: !found.decimalOpen && found.decimal !== stated };
+  } catch (error) {
+    if (!(error instanceof FileRefusedError)) throw error;
+    return { ...common, decimalDisagrees: false };
+  }
+}
+
 const hasNumber = (cells: readonly string[]) => cells.some((cell) => looksNumeric(cell));
 const stripBrackets = (cell: string) => cell.trim().replace(/^[([{]\s*|\s*[)\]}]$/g, "");
 
@@ -196,7 +213,7 @@ export function findTableForm(text: string, key: ChannelKey = {}): TableForm {
     titles[0] = (titles[0] ?? "").replace(/^\s*(#|\/\/|%)\s*/, "");
   return {
     delimiter,
-    ...(key.decimal ? { decimal: key.decimal, decimalOpen: false } : findDecimal(data)),
+    ...chooseDecimal(data, key.decimal),
     titles,
     unitRow: withUnits && next ? next.cells.map(stripBrackets) : null,
     lastHeadLine: withUnits && next ? next.line : (header?.line ?? (stated ? 1 : 0)),

@@ -263,6 +263,15 @@ describe("titles", () => {
   });
 });
 
+describe("a channel key against the file", () => {
+  const text = rows("time [s];gps speed [km/h]", (i) => `${i};${i + 1}.345`);
+  const codes = (decimal: "." | ",") => read(text, { key: { decimal } }).problems.map((p) => p.code);
+  it("tells where the key's decimal sign is not the one that the cells show", () => {
+    expect(codes(",")).toContain("key_decimal_disagrees");
+    expect(codes(".")).not.toContain("key_decimal_disagrees");
+  });
+});
+
 describe("containers and other formats", () => {
   const text = rows("Time [s],GPS speed [km/h]", (i) => `${i / 10},36.5`);
   it("gzip is read; a damaged or doubly packed file is refused", () => {
