@@ -12,9 +12,13 @@ export interface LeastSquaresFit {
   df: number;
 }
 
+/** What is left of a column of length 1 beside the ones before it; above this, one solution is exact to rounding. */
+const WELL_CONDITIONED = 0.1;
+const leastOf = (diagonal: Float64Array) => diagonal.reduce((least, d) => Math.min(least, Math.abs(d)), 1);
+
 /**
  * Least squares by Householder QR of column-scaled X (`rows` × `columns`, row-major), with one step of iterative
- * refinement. Columns that are (nearly) dependent raise InvalidInputError `rank_deficient` naming the column.
+ * refinement unless the columns are well apart. Columns that are (nearly) dependent raise InvalidInputError `rank_deficient` naming the column.
  * No intercept is added. O(rows · columns²). Source: Golub and Van Loan, Matrix Computations, 5.3.
  */
 export function leastSquares(x: Float64Array, y: Float64Array, columns: number): LeastSquaresFit {
@@ -68,14 +72,20 @@ export function leastSquares(x: Float64Array, y: Float64Array, columns: number):
   const residualsOf = (scaled: Float64Array): Float64Array => {
     const factors = scaled.map((value, j) => value / scale[j]);
     const residuals = y.slice();
-    for (let i = 0, at = 0; i < rows; i++)
-      for (let j = 0; j < columns; j++) residuals[i] -= x[at++] * factors[j];
+    for (let i = 0, at = 0; i < rows; i++) {
+      let rest = residuals[i];
+      for (let j = 0; j < columns; j++) rest -= x[at++] * factors[j];
+      residuals[i] = rest;
+    }
     return residuals;
   };
   const scaled = solve(y);
-  const correction = solve(residualsOf(scaled));
-  for (let j = 0; j < columns; j++) scaled[j] += correction[j];
-  const residuals = residualsOf(scaled);
+  let residuals = residualsOf(scaled);
+  if (leastOf(diagonal) < WELL_CONDITIONED) {
+    const correction = solve(residuals);
+    for (let j = 0; j < columns; j++) scaled[j] += correction[j];
+    residuals = residualsOf(scaled);
+  }
   const inverse = inverseOfR(q, rows, diagonal);
   const unscaledCovariance = new Float64Array(columns * columns);
   for (let a = 0; a < columns; a++) {
@@ -117,7 +127,14 @@ function dot(a: Float64Array, b: Float64Array, from: number): number {
 
 /** Takes `factor` times `column` from `target` in place, from index `from` on. */
 function subtract(target: Float64Array, factor: number, column: Float64Array, from: number): void {
-  for (let i = from; i < target.length; i++) target[i] -= factor * column[i];
+  let i = from;
+  for (; i + 3 < target.length; i += 4) {
+    target[i] -= factor * column[i];
+    target[i + 1] -= factor * column[i + 1];
+    target[i + 2] -= factor * column[i + 2];
+    target[i + 3] -= factor * column[i + 3];
+  }
+  for (; i < target.length; i++) target[i] -= factor * column[i];
 }
 
 /** R⁻¹ of the factor whose diagonal is apart and whose upper part lies in the columns of `q`. */
