@@ -1,6 +1,6 @@
 import { numberText } from "@/components/ui/data/number-text";
 import { Card } from "@/components/ui/layout/card";
-import { MOST_TWINS } from "@/lib/compare/plan/plan-twins";
+import { MOST_TWINS } from "@/lib/compare/plan/order-card";
 import type { PlanView } from "@/lib/services/plans/schema";
 
 const pct = (value: number) => `${numberText(value, { decimals: value < 10 ? 2 : 1 })} %`;

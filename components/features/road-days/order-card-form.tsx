@@ -1,5 +1,6 @@
 import { Button } from "@/components/ui/action/button";
 import { Select } from "@/components/ui/form/select";
+import { MOST_TWINS } from "@/lib/compare/plan/order-card";
 
 export interface OrderCardFormProps {
   /** The two images to choose from; null on a null test, which has one. */
@@ -11,7 +12,7 @@ export interface OrderCardFormProps {
   twins: number;
 }
 
-const TWINS = [1, 2, 3, 4, 5, 6, 7, 8, 9, 10, 11, 12];
+const TWINS = Array.from({ length: MOST_TWINS }, (_, i) => String(i + 1));
 
 /** Chooses what the order card is for; works without script, since it only asks for the page again. */
 export function OrderCardForm({ sides, twins }: OrderCardFormProps) {
@@ -31,7 +32,7 @@ export function OrderCardForm({ sides, twins }: OrderCardFormProps) {
         label="Twins a side"
         name="twins"
         defaultValue={String(twins)}
-        options={TWINS.map((count) => ({ value: String(count), label: String(count) }))}
+        options={TWINS.map((count) => ({ value: count, label: count }))}
       />
       <Button type="submit">Show</Button>
     </form>

@@ -1,5 +1,6 @@
 import { Checkbox } from "@/components/ui/form/checkbox";
 import { Select } from "@/components/ui/form/select";
+import { MOST_TWINS } from "@/lib/compare/plan/order-card";
 import type { RoadDayPurpose } from "@/lib/services/road-days/schema";
 
 export interface PurposeFieldsProps {
@@ -9,8 +10,7 @@ export interface PurposeFieldsProps {
   onChange: (value: RoadDayPurpose) => void;
 }
 
-const AS_THE_PLAN = "";
-const TWINS = Array.from({ length: 12 }, (_, i) => String(i + 1));
+const TWINS = Array.from({ length: MOST_TWINS }, (_, i) => String(i + 1));
 
 /** What the day is opened for: two images, or one against itself. Fixed once the day is open. */
 export function PurposeFields({ revisions, value, onChange }: PurposeFieldsProps) {
@@ -31,7 +31,7 @@ export function PurposeFields({ revisions, value, onChange }: PurposeFieldsProps
       />
       <Select
         label="Twins a side"
-        value={value.plannedTwins ? String(value.plannedTwins) : AS_THE_PLAN}
+        value={value.plannedTwins ? String(value.plannedTwins) : ""}
         emptyLabel="As the gate plan asks"
         onChange={(event) =>
           onChange({ ...value, plannedTwins: event.target.value ? Number(event.target.value) : null })

@@ -2,6 +2,9 @@ import type { Leg } from "@/lib/measure/types";
 
 export type Side = "A" | "B";
 
+/** Most twins a side that fit a road day (common practice, no source); more is not one plan but several days. */
+export const MOST_TWINS = 12;
+
 /** One drive of the order card. */
 export interface OrderPlace {
   /** Place in the driven order, first = 1. */
@@ -59,8 +62,8 @@ export function proposeOrder({
   twinsPerSide: number;
   sameImage?: boolean;
 }): OrderCard {
-  if (!Number.isInteger(twinsPerSide) || twinsPerSide < 1 || twinsPerSide > 12)
-    throw new RangeError(`twins a side must be a whole number from 1 to 12, not ${twinsPerSide}`);
+  if (!Number.isInteger(twinsPerSide) || twinsPerSide < 1 || twinsPerSide > MOST_TWINS)
+    throw new RangeError(`twins a side must be a whole number from 1 to ${MOST_TWINS}, not ${twinsPerSide}`);
   const sides = twinSides(twinsPerSide);
   const places = sides.flatMap((side, index): OrderPlace[] => [
     {

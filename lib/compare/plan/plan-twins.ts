@@ -1,5 +1,5 @@
 import { runDesign } from "@/lib/compare/band/run-design";
-import { type OrderCard, proposeOrder } from "@/lib/compare/plan/order-card";
+import { MOST_TWINS, type OrderCard, proposeOrder } from "@/lib/compare/plan/order-card";
 import { bandCritical, type PlanBasis, type Scatter, scatterInterval } from "@/lib/compare/plan/plan-scatter";
 import { tQuantile } from "@/lib/signal/distributions";
 import { noncentralTCdf } from "@/lib/signal/noncentral-t";
@@ -7,8 +7,6 @@ import { noncentralTCdf } from "@/lib/signal/noncentral-t";
 /** Chance with which a plan shows the difference it is made for, and two-sided level of what it shows. */
 const PLANNED_POWER = 0.8;
 const LEVEL = 0.95;
-/** Most twins a side that fit a road day (common practice, no source); more is not one plan but several days. */
-export const MOST_TWINS = 12;
 
 /** What the runs of an order card leave to tell a difference with, under the model of the comparison. */
 interface CardDesign {

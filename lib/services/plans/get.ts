@@ -1,8 +1,8 @@
 import { selectNewestRoadDay } from "@/db/queries/road-days";
-import { proposeOrder } from "@/lib/compare/plan/order-card";
+import { MOST_TWINS, proposeOrder } from "@/lib/compare/plan/order-card";
 import { cardCost } from "@/lib/compare/plan/plan-cost";
 import { pooledScatter } from "@/lib/compare/plan/plan-scatter";
-import { MOST_TWINS, shownBy, twinsFor, twinsForInterval } from "@/lib/compare/plan/plan-twins";
+import { shownBy, twinsFor, twinsForInterval } from "@/lib/compare/plan/plan-twins";
 import { can } from "@/lib/policy/can";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { planBasis, scatterHistory } from "@/lib/services/plans/history";

@@ -1,9 +1,9 @@
 import type { z } from "zod";
 import type { NullTestOutcome } from "@/lib/compare/null-test";
-import type { OrderCard } from "@/lib/compare/plan/order-card";
+import { MOST_TWINS, type OrderCard } from "@/lib/compare/plan/order-card";
 import { type CardCost, type DriveFigures, USUAL_DRIVE } from "@/lib/compare/plan/plan-cost";
 import type { PlanBasis, Scatter } from "@/lib/compare/plan/plan-scatter";
-import { MOST_TWINS, type ShownBy, type TwinsNeeded } from "@/lib/compare/plan/plan-twins";
+import type { ShownBy, TwinsNeeded } from "@/lib/compare/plan/plan-twins";
 import type { RepeatabilityResult } from "@/lib/measure/types";
 import type { Verdict } from "@/lib/policy/actor";
 import { requiredNumber } from "@/lib/services/number-field";

@@ -1,4 +1,5 @@
 import { z } from "zod";
+import { MOST_TWINS } from "@/lib/compare/plan/order-card";
 import { optionalNumber, requiredNumber } from "@/lib/services/number-field";
 
 /** The safety checklist. Every line must be confirmed at the road side before a run can be attached. */
@@ -73,7 +74,7 @@ export const roadDayPurpose = z.object({
   nullTestRevisionId: z.uuid("Choose the revision that the null test drives.").nullish(),
   /** Null test only: the same image is written anew wherever the letter changes. */
   nullTestRewrites: z.boolean().optional(),
-  plannedTwins: z.coerce.number().int().min(1).max(12).nullish(),
+  plannedTwins: z.coerce.number().int().min(1).max(MOST_TWINS).nullish(),
 });
 export type RoadDayPurpose = z.output<typeof roadDayPurpose>;
 

@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { proposeOrder } from "@/lib/compare/plan/order-card";
+import { MOST_TWINS, proposeOrder } from "@/lib/compare/plan/order-card";
 import { cardCost, USUAL_DRIVE } from "@/lib/compare/plan/plan-cost";
 import {
   bandCritical,
@@ -10,7 +10,7 @@ import {
   STARTING_PLACES,
   scatterInterval,
 } from "@/lib/compare/plan/plan-scatter";
-import { MOST_TWINS, planPower, shownBy, twinsFor, twinsForInterval } from "@/lib/compare/plan/plan-twins";
+import { planPower, shownBy, twinsFor, twinsForInterval } from "@/lib/compare/plan/plan-twins";
 import { tQuantile } from "@/lib/signal/distributions";
 import { leastSquares } from "@/lib/signal/least-squares";
 import { randomStream } from "@/lib/signal/random";

@@ -1,4 +1,4 @@
-import { type OrderCard, proposeOrder } from "@/lib/compare/plan/order-card";
+import { MOST_TWINS, type OrderCard, proposeOrder } from "@/lib/compare/plan/order-card";
 import type { RoadDayView } from "@/lib/services/road-days/get";
 
 /** What an order card is made for. */
@@ -12,7 +12,6 @@ export interface ChosenCard {
   card: OrderCard;
 }
 
-const TWINS_MOST = 12;
 /** Closed twins a side that the starting gate plan asks for. */
 const TWINS_USUAL = 3;
 
@@ -62,7 +61,7 @@ export function chooseCard(
   // An even number a side lets steady drift cancel; a day that holds more runs already shows them all.
   const usual = roadDay.plannedTwins ?? Math.max(least + (least % 2), Math.ceil(driven / 4));
   const wanted = Number(query.twins ?? usual);
-  const twins = Number.isInteger(wanted) && wanted >= 1 && wanted <= TWINS_MOST ? wanted : usual;
+  const twins = Number.isInteger(wanted) && wanted >= 1 && wanted <= MOST_TWINS ? wanted : usual;
   const isNullTest = roadDay.nullTestRevisionId !== null;
   const sameImage = isNullTest && !roadDay.nullTestRewrites;
   return { ...sides, isNullTest, twins, card: proposeOrder({ twinsPerSide: twins, sameImage }) };

@@ -6,7 +6,7 @@ import { LinkButton } from "@/components/ui/action/link-button";
 import { Card } from "@/components/ui/layout/card";
 import { PageHeading } from "@/components/ui/layout/page-heading";
 import { requireCtx } from "@/lib/auth/current";
-import { MOST_TWINS } from "@/lib/compare/plan/plan-twins";
+import { MOST_TWINS } from "@/lib/compare/plan/order-card";
 import { orNotFound } from "@/lib/http/page";
 import { prepareRoadDay } from "@/lib/services/road-days/get";
 
