@@ -5,8 +5,7 @@ import { digestOf } from "@/lib/canonical-json";
 import { FileRefusedError } from "@/lib/errors";
 import type { System } from "@/lib/jobs/system";
 import { logger } from "@/lib/logger";
-import { MAX_REFUSED_LISTED } from "@/lib/logs/delimited/collect-rows";
-import type { ChannelKey, LogTable } from "@/lib/logs/types";
+import { type ChannelKey, type LogTable, MOST_REFUSED_LISTED } from "@/lib/logs/types";
 import { analyseRun } from "@/lib/measure/analyse-campaign";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
 import { runTraces } from "@/lib/measure/run/run-traces";
@@ -74,7 +73,7 @@ async function readInput(
 function refusedRowsOf({ rowsRefused }: LogTable): Pick<RunTraces, "refusedRows"> {
   const total = rowsRefused.length;
   if (total === 0) return {};
-  return { refusedRows: { total, atLeast: total >= MAX_REFUSED_LISTED, first: rowsRefused.slice(0, 5) } };
+  return { refusedRows: { total, atLeast: total >= MOST_REFUSED_LISTED, first: rowsRefused.slice(0, 5) } };
 }
 
 /** Analyses a log. One that is refused is a verdict, not an error. */

@@ -43,6 +43,9 @@ export interface LogChannel {
   axle?: "front" | "rear";
 }
 
+/** Refused rows that are listed unless more are asked for. */
+export const MOST_REFUSED_LISTED = 1000;
+
 export interface RefusedRow {
   /** Line number in the file, first line = 1. */
   row: number;

@@ -4,7 +4,7 @@ import { createRowScanner, type RowTarget } from "@/lib/logs/delimited/scan-rows
 import type { TableForm } from "@/lib/logs/delimited/table-form";
 import { parseNumber } from "@/lib/logs/parse-number";
 import { countsToSeconds, readTimeCell, type TimeForm } from "@/lib/logs/time-forms";
-import type { LogProblem, RefusedRow } from "@/lib/logs/types";
+import { type LogProblem, MOST_REFUSED_LISTED, type RefusedRow } from "@/lib/logs/types";
 
 /** Values by column in file order; the time column in seconds. */
 export interface CollectedTable {
@@ -31,8 +31,6 @@ export interface CollectOptions {
   listAtMost?: number;
 }
 
-/** Refused rows that are listed unless more are asked for. */
-export const MAX_REFUSED_LISTED = 1000;
 /** A longer cell is no time; cut, it fits a page and a database. */
 const LONGEST_RAW = 200;
 /** Jumps back beyond this many are the mark of a column that is no time. */
@@ -57,7 +55,7 @@ export const hasNumber = (column: Float64Array): boolean => column.some((value) 
  * counted. One pass; memory is that of the columns.
  */
 export function createCollector(options: CollectOptions) {
-  const { form, timeIndex, timeForm, lineEnd, decode, listAtMost = MAX_REFUSED_LISTED } = options;
+  const { form, timeIndex, timeForm, lineEnd, decode, listAtMost = MOST_REFUSED_LISTED } = options;
   const width = form.titles.length;
   const { decimal } = form;
   const store = createColumnStore(width, options.expectedRows);

@@ -4,9 +4,13 @@ import { decodeText } from "@/lib/logs/delimited/decode-text";
 import { type GpxPoint, type GpxPoints, readGpxPoints } from "@/lib/logs/gpx/gpx-points";
 import { positionSpeed } from "@/lib/logs/gpx/position-speed";
 import { joinGroups } from "@/lib/logs/join-groups";
-import type { ChannelKey, LogProblem, LogTable, RefusedRow } from "@/lib/logs/types";
-
-const MOST_REFUSED_LISTED = 1000;
+import {
+  type ChannelKey,
+  type LogProblem,
+  type LogTable,
+  MOST_REFUSED_LISTED,
+  type RefusedRow,
+} from "@/lib/logs/types";
 
 /**
  * Reads a GPX track (1.0 and 1.1): positions, elevations, times, and speeds where the file states them. Without a stated speed one is

@@ -3,9 +3,14 @@ import type { RawColumn } from "@/lib/logs/channel-values";
 import { joinGroups } from "@/lib/logs/join-groups";
 import { collectEpochs, epochSeconds, type NmeaEpoch, type NmeaEpochs } from "@/lib/logs/nmea/nmea-epochs";
 import { readSentence } from "@/lib/logs/nmea/nmea-sentence";
-import type { ChannelKey, LogProblem, LogTable, RefusedRow } from "@/lib/logs/types";
+import {
+  type ChannelKey,
+  type LogProblem,
+  type LogTable,
+  MOST_REFUSED_LISTED,
+  type RefusedRow,
+} from "@/lib/logs/types";
 
-const MOST_REFUSED_LISTED = 1000;
 /** Moments that are held at once: ten hours at 25 a second. */
 const MOST_EPOCHS = 1_000_000;
 const DAY_MS = 86_400_000;
