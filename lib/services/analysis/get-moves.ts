@@ -11,7 +11,8 @@ import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
 import type { CampaignResult } from "@/lib/measure/types";
 import type { ComparisonMoves, GateMove } from "@/lib/services/analysis/schema";
 import { type CurrentInput, currentInput } from "@/lib/services/comparisons/current-input";
-import { STANDARD_SETTINGS, sideLabels, toCampaignSettings } from "@/lib/services/comparisons/schema";
+import { sideLabels } from "@/lib/services/comparisons/schema";
+import { STANDARD_SHA256 } from "@/lib/services/comparisons/standard-digest";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { gateEvidence } from "@/lib/services/gates/evidence";
 import { type LoadedProgramme, loadProgramme } from "@/lib/services/programmes/load";
@@ -27,8 +28,6 @@ export interface AnalysisMoves {
     stands: boolean;
   })[];
 }
-
-const STANDARD_SHA256 = digestOf(toCampaignSettings(STANDARD_SETTINGS));
 
 /** Digest of an input with its version left out: equal = only the version differs. */
 const digestWithoutVersion = (input: CurrentInput["input"]) => digestOf({ ...input, analysisVersion: "" });

@@ -4,12 +4,11 @@ import { selectGatePlan } from "@/db/queries/gate-plans";
 import { selectProgramme } from "@/db/queries/programmes";
 import { type RevisionRow, selectRevision } from "@/db/queries/revisions";
 import { selectVehicleSheet } from "@/db/queries/vehicle-sheets";
-import { digestOf } from "@/lib/canonical-json";
 import { NotFoundError } from "@/lib/errors";
 import { evaluateGates } from "@/lib/gates/evaluate-gates";
 import type { GateResult } from "@/lib/gates/plan";
 import { type ComparisonStanding, comparisonStanding } from "@/lib/services/comparisons/load";
-import { STANDARD_SETTINGS, toCampaignSettings } from "@/lib/services/comparisons/schema";
+import { STANDARD_SHA256 } from "@/lib/services/comparisons/standard-digest";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { gateEvidence } from "@/lib/services/gates/evidence";
 
@@ -28,7 +27,6 @@ export interface GateDesk extends Omit<GateStatus, "comparisonId"> {
   comparison: ComparisonStanding | null;
 }
 
-const STANDARD_SHA256 = digestOf(toCampaignSettings(STANDARD_SETTINGS));
 /** States in which gates are asked; a decision froze those of the others. */
 const ASKED = new Set<RevisionRow["state"]>(["draft", "validating", "in_review"]);
 

@@ -1,13 +1,10 @@
 import type { Queryable } from "@/db/client";
 import { type StoredScatter, selectRoadDayPlaces, selectStoredScatter } from "@/db/queries/repeatability";
-import { digestOf } from "@/lib/canonical-json";
 import { nullTestOutcome } from "@/lib/compare/null-test";
 import { type PlanBasis, placesSeen, pooledScatter, STARTING_SD_PCT } from "@/lib/compare/plan/plan-scatter";
-import { STANDARD_SETTINGS, toCampaignSettings } from "@/lib/services/comparisons/schema";
+import { STANDARD_SHA256 } from "@/lib/services/comparisons/standard-digest";
 import type { ScatterDay } from "@/lib/services/plans/schema";
 import { median } from "@/lib/signal/statistics";
-
-const STANDARD_SHA256 = digestOf(toCampaignSettings(STANDARD_SETTINGS));
 
 /** What a past comparison's band tells a plan; `smoothingPct` null in results that do not state it. */
 interface PastBand {
