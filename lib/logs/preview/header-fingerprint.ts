@@ -57,3 +57,9 @@ export function findHeader(head: LogHead): LogHeader | null {
     throw error;
   }
 }
+
+/** Fingerprint of the header of a log; null where it has none that can be read. */
+export function fingerprintOfHead(head: LogHead): string | null {
+  const header = findHeader(head);
+  return header && headerFingerprint(header);
+}

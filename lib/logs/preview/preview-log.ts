@@ -1,6 +1,6 @@
 import { FileRefusedError } from "@/lib/errors";
 import type { LogHead } from "@/lib/logs/preview/gather-head";
-import { findHeader, headerFingerprint } from "@/lib/logs/preview/header-fingerprint";
+import { findHeader } from "@/lib/logs/preview/header-fingerprint";
 import { type PreviewColumn, previewColumns, unreadColumns } from "@/lib/logs/preview/preview-columns";
 import { readHead } from "@/lib/logs/preview/read-head";
 import { type TextLayout, textLayout } from "@/lib/logs/preview/text-layout";
@@ -19,9 +19,8 @@ export interface PreviewLayout {
 
 /** What reading the beginning of a log gives, for a page: plain values, gaps null. */
 export interface LogPreview {
-  format: LogFormat | null;
   /** Null where the file has no header that can be read. */
-  headerSha256: string | null;
+  format: LogFormat | null;
   /** Whether all of the file was looked at. */
   wholeFile: boolean;
   layout: PreviewLayout | null;
@@ -74,14 +73,12 @@ function valueRows(table: LogTable): string[][] {
 
 /** Reads the beginning of a log under a key, as the import does, and tells what came of it. A refusal is part of the answer. */
 export function previewLog(head: LogHead, options: ReadLogOptions): LogPreview {
-  const header = findHeader(head);
   const layout = layoutOf(head, options.key ?? {});
   const read = tableOf(head, options);
   const table = read instanceof FileRefusedError ? null : read;
   const rows = layout?.rows ?? (table ? valueRows(table) : []);
   return {
-    format: table?.format ?? header?.format ?? null,
-    headerSha256: header && headerFingerprint(header),
+    format: table?.format ?? findHeader(head)?.format ?? null,
     wholeFile: head.complete,
     layout: layout && {
       delimiter: layout.form.delimiter,

@@ -1,4 +1,5 @@
 import { ConflictError, InvalidInputError } from "@/lib/errors";
+import { fingerprintOfHead } from "@/lib/logs/preview/header-fingerprint";
 import { type LogPreview, previewLog } from "@/lib/logs/preview/preview-log";
 import { previewWords } from "@/lib/logs/preview/preview-words";
 import { streamBlob } from "@/lib/services/blobs";
@@ -42,7 +43,7 @@ export async function readUpload(
   const head = await headOf(isStaged ? readStaged(ctx, upload) : streamBlob(ctx, declaredSha256));
   const about = { fileName, drive: sheet.figures.drive };
   const preview = previewLog(head, about);
-  const key = await findFittingKey(ctx, preview.headerSha256);
+  const key = await findFittingKey(ctx, fingerprintOfHead(head));
   return {
     ...summary(preview),
     wholeFile: preview.wholeFile,

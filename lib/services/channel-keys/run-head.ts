@@ -2,7 +2,7 @@ import { setRunHeader } from "@/db/queries/channel-keys";
 import type { RunRow } from "@/db/queries/runs";
 import { FileRefusedError } from "@/lib/errors";
 import { gatherHead, type LogHead } from "@/lib/logs/preview/gather-head";
-import { findHeader, headerFingerprint } from "@/lib/logs/preview/header-fingerprint";
+import { fingerprintOfHead } from "@/lib/logs/preview/header-fingerprint";
 import { streamBlob } from "@/lib/services/blobs";
 import type { Ctx } from "@/lib/services/ctx";
 
@@ -21,8 +21,7 @@ export async function headerOfLog(
   ctx: Pick<Ctx, "store" | "workspaceId">,
   sha256: string,
 ): Promise<string | null> {
-  const header = findHeader(await headOf(streamBlob(ctx, sha256)));
-  return header && headerFingerprint(header);
+  return fingerprintOfHead(await headOf(streamBlob(ctx, sha256)));
 }
 
 /** The header that was noted when the run was attached, or now where it was not. */

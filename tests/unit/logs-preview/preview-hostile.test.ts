@@ -2,6 +2,7 @@ import { gzipSync } from "node:zlib";
 import { describe, expect, test } from "vitest";
 import { FileRefusedError } from "@/lib/errors";
 import { gatherHead, type LogHead } from "@/lib/logs/preview/gather-head";
+import { fingerprintOfHead } from "@/lib/logs/preview/header-fingerprint";
 import { previewLog } from "@/lib/logs/preview/preview-log";
 import { previewWords } from "@/lib/logs/preview/preview-words";
 import { readLog } from "@/lib/logs/read-log";
@@ -58,9 +59,10 @@ describe("what a preview takes upon itself is less than what the worker may", ()
   });
   test("a log that can't be unpacked is told as that, not as an empty one", () => {
     const refusal = new FileRefusedError("gzip_damaged", "The packed log can't be unpacked.");
-    const preview = previewLog({ bytes: new Uint8Array(), complete: true, refusal }, {});
+    const head = { bytes: new Uint8Array(), complete: true, refusal };
+    const preview = previewLog(head, {});
     expect(preview.refusal).toEqual({ code: "gzip_damaged", message: refusal.message });
-    expect(preview.headerSha256).toBeNull();
+    expect(fingerprintOfHead(head)).toBeNull();
   });
 });
 
