@@ -9,7 +9,7 @@ export interface ValueRange {
 }
 
 const within = (value: number, [low, high]: readonly [number, number]) => value >= low && value <= high;
-const MANIFOLD_KPA = [5, 800] as const;
+const MANIFOLD_KPA = CHANNEL_UNITS.manifold_pressure.plausible;
 /** Coolant of a running engine, °C. Common practice, no source. */
 const COOLANT_C = [40, 130] as const;
 /** A mixture leaner than this over a whole run is none; petrol burns at about 14.7 parts of air to one of fuel. */
@@ -21,7 +21,7 @@ function unitSlip(channel: KnownChannel, { min, max }: ValueRange): string | nul
   if (channel === "lambda" && min > LEANEST_OF_ALL && max < 40) return "an air-fuel ratio instead of lambda?";
   if (channel.startsWith("manifold_pressure")) {
     if (min >= 0 && max < 8 && within(100 * max, MANIFOLD_KPA)) return "in bar?";
-    if (max > 800 && within(max / 10, MANIFOLD_KPA)) return "in mbar?";
+    if (max > MANIFOLD_KPA[1] && within(max / 10, MANIFOLD_KPA)) return "in mbar?";
   }
   if (channel === "coolant_temperature") {
     if (max > COOLANT_C[1] && within((max - 32) / 1.8, COOLANT_C)) return "in °F?";
@@ -30,6 +30,12 @@ function unitSlip(channel: KnownChannel, { min, max }: ValueRange): string | nul
   if ((channel === "throttle" || channel === "pedal") && min >= 0 && max > 0.3 && max <= 1.02)
     return "a fraction instead of per cent?";
   return null;
+}
+
+/** Whether a range would fit its channel if it were shifted by tens, the mark of a decimal sign; `lowestTop`: its max must reach this. */
+export function fitsByTens(channel: KnownChannel, { min, max }: ValueRange, lowestTop = -Infinity): boolean {
+  const { plausible } = CHANNEL_UNITS[channel];
+  return SHIFTS.some((f) => within(min * f, plausible) && within(max * f, plausible) && max * f >= lowestTop);
 }
 
 /**
@@ -42,8 +48,7 @@ export function rangeDoubt(channel: KnownChannel, range: ValueRange): string | n
   if (slip) return slip;
   const { plausible, withoutUnit } = CHANNEL_UNITS[channel];
   if (within(range.min, plausible) && within(range.max, plausible)) return null;
-  const byTens = SHIFTS.some((f) => within(range.min * f, plausible) && within(range.max * f, plausible));
-  if (!byTens) return "another unit?";
+  if (!fitsByTens(channel, range)) return "another unit?";
   return withoutUnit === null ? "another unit, or the decimal mark?" : "the decimal mark?";
 }
 

@@ -1,7 +1,8 @@
 import { CHANNEL_UNITS } from "@/lib/logs/channel-names";
 import { channelWords } from "@/lib/logs/channel-words";
-import { rangeDoubt } from "@/lib/logs/range-doubt";
+import { fitsByTens, rangeDoubt, type ValueRange } from "@/lib/logs/range-doubt";
 import type { KnownChannel } from "@/lib/logs/types";
+import { KMH_MPS } from "@/lib/units/constants";
 
 /** What a look at the range of a channel says. */
 export interface Plausibility {
@@ -20,11 +21,10 @@ const LOWEST_TOP: Partial<Record<KnownChannel, number>> = {
   throttle: 1.5,
   coolant_temperature: 5,
 };
-const KMH_IN_MPS = 1 / 3.6;
 
 /** Canonical unit and factor that a range is told in: speeds as on the speedometer. */
 export function shownUnit(unit: string): { unit: string; factor: number } {
-  return unit === "m/s" ? { unit: "km/h", factor: 1 / KMH_IN_MPS } : { unit, factor: 1 };
+  return unit === "m/s" ? { unit: "km/h", factor: 1 / KMH_MPS } : { unit, factor: 1 };
 }
 
 function figure(value: number): string {
@@ -35,16 +35,13 @@ function figure(value: number): string {
   return `${rounded < 0 ? "\u2212" : ""}${grouped}${fraction ? `.${fraction}` : ""}`;
 }
 
-/** What may be wrong with a range that does not fit: a shift by tens is the mark of a decimal sign, anything else of a unit. */
-function doubt(channel: KnownChannel, min: number, max: number): string {
+/** What may be wrong with a range that does not fit, in the few words of a line. */
+function doubt(channel: KnownChannel, range: ValueRange): string {
   const { plausible, withoutUnit } = CHANNEL_UNITS[channel];
-  const [low, high] = plausible;
-  const lowestTop = LOWEST_TOP[channel] ?? low;
-  const fits = (factor: number) => min * factor >= low && max * factor <= high && max * factor >= lowestTop;
-  const byTens = [10, 100, 1000, 0.1, 0.01, 0.001].some(fits);
-  if (max < lowestTop && max >= low && (channel === "pedal" || channel === "throttle"))
+  const lowestTop = LOWEST_TOP[channel] ?? plausible[0];
+  if (range.max < lowestTop && range.max >= plausible[0] && (channel === "pedal" || channel === "throttle"))
     return "a fraction instead of per cent?";
-  if (!byTens) return "unit?";
+  if (!fitsByTens(channel, range, lowestTop)) return "unit?";
   return withoutUnit === null ? "unit or decimal mark?" : "decimal mark?";
 }
 
@@ -52,10 +49,7 @@ function doubt(channel: KnownChannel, min: number, max: number): string {
  * Whether the range of a known channel, in its canonical unit, can be that of a car on a road.
  * @param range null where the column holds no value at all
  */
-export function plausibility(
-  channel: KnownChannel,
-  range: { min: number; max: number } | null,
-): Plausibility {
+export function plausibility(channel: KnownChannel, range: ValueRange | null): Plausibility {
   const words = channelWords(channel);
   if (range === null) return { looksRight: false, sentence: `${words}: the column holds no value` };
   const { min, max } = range;
@@ -63,14 +57,14 @@ export function plausibility(
   const shown = unit === "1" ? "" : ` ${unit}`;
   const text = `${words} ${figure(min * factor)} to ${figure(max * factor)}${shown}`;
   const [low, high] = CHANNEL_UNITS[channel].plausible;
-  if (min < low || max > high) return { looksRight: false, sentence: `${text}: ${doubt(channel, min, max)}` };
+  if (min < low || max > high) return { looksRight: false, sentence: `${text}: ${doubt(channel, range)}` };
   if (min === max && channel !== "gear")
     return { looksRight: false, sentence: `${text}: it never changes; is the sensor connected?` };
   const lowestTop = LOWEST_TOP[channel];
   if (lowestTop !== undefined && max < lowestTop)
     return {
       looksRight: false,
-      sentence: `${text}: ${max <= 0 ? "did the car move?" : doubt(channel, min, max)}`,
+      sentence: `${text}: ${max <= 0 ? "did the car move?" : doubt(channel, range)}`,
     };
   const slip = rangeDoubt(channel, range);
   if (slip) return { looksRight: false, sentence: `${text}: ${slip}` };

@@ -1,7 +1,7 @@
 import { readTitle } from "@/lib/logs/channel-names";
 import { channelReport } from "@/lib/logs/log-report";
 import { type Plausibility, plausibility, shownUnit } from "@/lib/logs/preview/plausibility";
-import type { KnownChannel, LogChannel, LogTable } from "@/lib/logs/types";
+import type { LogChannel, LogTable } from "@/lib/logs/types";
 
 /** One column of the file, in its order, with what it was read as. */
 export interface PreviewColumn {
@@ -74,7 +74,7 @@ function channelColumn(channel: LogChannel, table: LogTable, samples: string[]):
     min: shown(min),
     median: shown(report.median),
     max: shown(max),
-    plausible: channel.channel === null ? null : plausibility(channel.channel as KnownChannel, range),
+    plausible: channel.channel === null ? null : plausibility(channel.channel, range),
   };
 }
 
