@@ -1,5 +1,6 @@
 import { spawnSync } from "node:child_process";
 import { fileURLToPath } from "node:url";
+import { python } from "../bench/python";
 import {
   type Comparison,
   distance,
@@ -24,19 +25,18 @@ function judge(name: string, comparisons: Comparison[]): boolean {
 }
 
 function againstScipy(): boolean {
-  const script = fileURLToPath(new URL("./references.py", import.meta.url));
-  for (const command of ["python3", "/usr/bin/python3"]) {
-    if (spawnSync(command, ["-c", "import scipy"]).status !== 0) continue;
-    const done = spawnSync(command, [script], { encoding: "utf8" });
-    if (done.status !== 0) {
-      say(`scipy: the reference program failed: ${done.stderr}`);
-      return false;
-    }
-    const reference = JSON.parse(done.stdout) as ScipyReference;
-    return judge(`scipy ${JSON.stringify(reference.versions)}`, scipyComparisons(reference));
+  if (!python) {
+    say("scipy: not run, no python3 with scipy (Debian package python3-scipy)");
+    return true;
   }
-  say("scipy: not run, no python3 with scipy (Debian package python3-scipy)");
-  return true;
+  const script = fileURLToPath(new URL("./references.py", import.meta.url));
+  const done = spawnSync(python.command, [script], { encoding: "utf8" });
+  if (done.status !== 0) {
+    say(`scipy: the reference program failed: ${done.stderr}`);
+    return false;
+  }
+  const reference = JSON.parse(done.stdout) as ScipyReference;
+  return judge(`scipy ${JSON.stringify(reference.versions)}`, scipyComparisons(reference));
 }
 
 function againstUnits(): boolean {
