@@ -70,7 +70,7 @@ function pieceOf(file: MdfFile, at: number, kind: string, budget: InflateBudget)
   return { block, length };
 }
 
-/** All pieces behind a data link, in order: one block, or lists of them. `last`: bytes of the last block of an unfinished file. */
+/** All pieces behind a data link, in order: one block, or lists of them. */
 function piecesOf(file: MdfFile, link: number, kind: string, budget: InflateBudget): Piece[] {
   if (link === 0) return [];
   const id = readId(file, link);

@@ -1,6 +1,5 @@
 import { type MdfFile, readU64 } from "@/lib/logs/mdf/mdf-blocks";
-import type { InflateBudget } from "@/lib/logs/mdf/mdf-data";
-import { readStream } from "@/lib/logs/mdf/mdf-data";
+import { type InflateBudget, readStream } from "@/lib/logs/mdf/mdf-data";
 import type { MdfChannel } from "@/lib/logs/mdf/mdf-tree";
 import type { RecordRows } from "@/lib/logs/mdf/mdf-values";
 

@@ -50,7 +50,7 @@ export interface MdfDataGroup {
 }
 
 export interface MdfTree {
-  /** Start of the recording: ns since 1970 as ms, and whether it is local time. */
+  /** Start of the recording, ms since 1970; by a local clock where `startIsLocal`. */
   startMs: number;
   startIsLocal: boolean;
   dataGroups: MdfDataGroup[];
