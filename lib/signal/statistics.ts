@@ -75,3 +75,13 @@ export function robustDeviation(values: ArrayLike<number>): number {
   const centre = median(values);
   return 1.4826 * median(Float64Array.from(values, (value) => Math.abs(value - centre)));
 }
+
+/** Sums over neighbours with triangular weights: 1 at the element itself, falling to 0 at `pool` + 1 elements away. O(n · pool). */
+export function triangularSums(values: Float64Array, pool: number): Float64Array {
+  return values.map((_, k) => {
+    let sum = 0;
+    for (let j = Math.max(0, k - pool); j <= Math.min(values.length - 1, k + pool); j++)
+      sum += (1 - Math.abs(j - k) / (pool + 1)) * values[j];
+    return sum;
+  });
+}

@@ -1,6 +1,7 @@
-import { type ColumnGroup, criticalMaxT, pooled } from "@/lib/compare/band/permutation-max-t";
+import { type ColumnGroup, criticalMaxT } from "@/lib/compare/band/permutation-max-t";
 import { tQuantile } from "@/lib/signal/distributions";
 import { leastSquares } from "@/lib/signal/least-squares";
+import { triangularSums } from "@/lib/signal/statistics";
 
 /** Effect of the side at each column with its standard error and the critical value of the simultaneous band. */
 export interface DeltaBand {
@@ -79,8 +80,8 @@ export function deltaBand(
     }
   }
   const df = options.small ? Math.min(...dfs) : dfs.slice().sort()[count >> 1];
-  const pooledSquares = pooled(squares, options.pool);
-  const pooledDf = pooled(dfs, options.pool);
+  const pooledSquares = triangularSums(squares, options.pool);
+  const pooledDf = triangularSums(dfs, options.pool);
   for (const { columns: members, sideVariance } of patterns)
     for (const k of members) standardError[k] = Math.sqrt((pooledSquares[k] / pooledDf[k]) * sideVariance);
   const bonferroni = (own: number) => tQuantile(1 - (1 - options.level) / (2 * count), own);

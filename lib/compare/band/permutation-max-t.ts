@@ -1,5 +1,6 @@
 import { projectColumns } from "@/lib/signal/project-columns";
 import { randomStream, shuffle } from "@/lib/signal/random";
+import { triangularSums } from "@/lib/signal/statistics";
 
 /** Columns of a band that are present in the same runs, and the directions of their linear model. */
 export interface ColumnGroup {
@@ -44,8 +45,8 @@ export function criticalMaxT(
   const width = pool + 1;
   // Both times `width`, which saves a division in every column of every resample.
   const whole = {
-    squares: pooled(total, pool).map((sum) => sum * width),
-    df: pooled(dfs, pool).map((df) => df * width),
+    squares: triangularSums(total, pool).map((sum) => sum * width),
+    df: triangularSums(dfs, pool).map((df) => df * width),
   };
   const random = randomStream(options.seed);
   const order = Int32Array.from({ length: n }, (_, i) => i);
@@ -90,16 +91,6 @@ function largestSquare(
     if (t > top) top = t;
   }
   return top;
-}
-
-/** Sums over neighbours with triangular weights: 1 at the column itself, falling to 0 at `pool` + 1 columns away. */
-export function pooled(values: Float64Array, pool: number): Float64Array {
-  return values.map((_, k) => {
-    let sum = 0;
-    for (let j = Math.max(0, k - pool); j <= Math.min(values.length - 1, k + pool); j++)
-      sum += (1 - Math.abs(j - k) / (pool + 1)) * values[j];
-    return sum;
-  });
 }
 
 /** Lays a group out for `refit` and writes its columns' sums of squares, less what no permutation changes, to `total`. */

@@ -2,7 +2,7 @@ import { curveDeviations } from "@/lib/measure/engine/curve-deviation";
 import type { CurveAnomaly, Smoothness } from "@/lib/measure/engine/smoothness-types";
 import type { Series } from "@/lib/measure/types";
 import { tQuantile } from "@/lib/signal/distributions";
-import { standardDeviation } from "@/lib/signal/statistics";
+import { standardDeviation, triangularSums } from "@/lib/signal/statistics";
 
 /** Below this the curve builds up boost and takes up the driveline, 1/min over its first point [common practice, no source]. */
 const SETTLED_RPM = 800;
@@ -170,17 +170,8 @@ function pooledScatter(
     });
   }
   const pool = Math.round(POOL_RPM / stepOf(rpm));
-  const variance = squares.map((_, k) => {
-    let top = 0;
-    let bottom = 0;
-    for (let j = Math.max(0, k - pool); j <= Math.min(rpm.length - 1, k + pool); j++) {
-      const weight = 1 - Math.abs(j - k) / (pool + 1);
-      top += weight * squares[j];
-      bottom += weight * df[j];
-    }
-    return top / bottom;
-  });
-  return { variance, df };
+  const pooledDf = triangularSums(df, pool);
+  return { variance: triangularSums(squares, pool).map((sum, k) => sum / pooledDf[k]), df };
 }
 
 /** What the mean deviation of a side must exceed at each point; NaN where it can't be judged. */
