@@ -5,9 +5,9 @@ export function spanHash(anchor: string, from: number, to: number): `#${string}`
   return `#${anchor}:${from.toFixed(2)},${to.toFixed(2)}`;
 }
 
-/** The span that an address asks the chart `anchor` for; null when it asks nothing of it. */
+/** The span that an address asks the chart `anchor` for, escaped or not; null when it asks nothing of it. */
 export function readSpanHash(anchor: string, hash: string): Range | null {
-  const match = /^#([\w-]+):(-?[\d.]+),(-?[\d.]+)$/.exec(decodeURIComponent(hash));
+  const match = /^#([\w-]+)(?::|%3a)(-?[\d.]+)(?:,|%2c)(-?[\d.]+)$/i.exec(hash);
   const [from, to] = [Number(match?.[2]), Number(match?.[3])];
   return match?.[1] === anchor && to >= from ? { from, to } : null;
 }

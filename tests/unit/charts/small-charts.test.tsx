@@ -78,7 +78,8 @@ describe("TraceChart", () => {
 
   it("reads only its own address, and keeps the surroundings on the axis", () => {
     expect(readSpanHash("traces", "#traces:3.10,3.62")).toEqual({ from: 3.1, to: 3.62 });
-    for (const other of ["#others:3,4", "#traces", "#traces:4,3", "#traces:a,b", ""])
+    expect(readSpanHash("traces", "#traces%3A3.10%2C3.62")).toEqual({ from: 3.1, to: 3.62 });
+    for (const other of ["#others:3,4", "#traces", "#traces:4,3", "#traces:a,b", "#traces:%", ""])
       expect(readSpanHash("traces", other)).toBeNull();
     expect(withSurroundings({ from: 0.5, to: 2.5 }, [0, 1, 2, 3, 9])).toEqual({ from: 0, to: 4.5 });
   });
