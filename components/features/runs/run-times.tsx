@@ -35,7 +35,7 @@ const stated = (values: Values, uncertainties: Values, name: string): Stated => 
 };
 
 /** Speeds without a unit in their name are km/h. */
-const rangeWords = (name: string) => `${name}${/^[\d.]+-[\d.]+$/.test(name) ? " (km/h)" : ""}`;
+const rangeWords = (name: string) => `${name}${/^[\d.]+-[\d.]+$/.test(name) ? " km/h" : ""}`;
 
 /** A time with the clock from 0.3048 m stands beside its own from rest. */
 function timeRow(result: RunResult, name: string): TimeRow {
@@ -66,7 +66,13 @@ const figure = ({ value, halfWidth }: Stated, unit: string, decimals: number, si
 
 function columnsFor(rows: readonly TimeRow[], fromRest: boolean): Column<TimeRow>[] {
   const columns: (Column<TimeRow> & { of?: (row: TimeRow) => Stated })[] = [
-    { key: "name", header: "Range", rowHeader: true, cell: (row) => row.name },
+    {
+      key: "name",
+      header: "Range",
+      rowHeader: true,
+      className: "whitespace-nowrap",
+      cell: (row) => row.name,
+    },
     {
       key: "time",
       header: fromRest ? "From rest" : "Time",
@@ -118,8 +124,12 @@ function fallWords({
   net_fall_from: from,
 }: RunResult): string {
   if (pct === null || pct === undefined) return "Net fall of the road: not known, since no altitude tells.";
-  const half = COVERAGE * (u ?? 0);
-  return `Net fall of the road: ${numberText(Math.abs(pct), { decimals: 2 })} ± ${numberText(half, { decimals: 2 })} % ${pct >= 0 ? "downhill" : "uphill"}, by ${from ? FALL_SOURCE[from] : "an unnamed source"}. What the fall adds is in the time and not taken out; the mean of out and back is the result.`;
+  const size = numberText(Math.abs(pct), { decimals: 2 });
+  const stated =
+    u === null || u === undefined
+      ? `${size} % (± not stated)`
+      : `${size} ± ${numberText(COVERAGE * u, { decimals: 2 })} %`;
+  return `Net fall of the road: ${stated} ${pct >= 0 ? "downhill" : "uphill"}, by ${from ? FALL_SOURCE[from] : "an unnamed source"}. What the fall adds is in the time and not taken out; the mean of out and back is the result.`;
 }
 
 /** Times and speeds of the run: from rest on both clocks, and between two speeds. */

@@ -62,6 +62,11 @@ describe("RunTimes", () => {
     expect(screen.getByRole("row", { name: /9\.100/ }).textContent?.match(/± not stated/g)).toHaveLength(3);
   });
 
+  it("takes a fall whose ± is not stated for no exact one", () => {
+    render(<RunTimes result={{ ...result, times_s: { "201.168 m": 9.1 }, net_fall_pct: -0.2 }} />);
+    expect(screen.getByText(/0\.20 % \(± not stated\) uphill/)).toBeTruthy();
+  });
+
   it("says so when no range is covered", () => {
     render(<RunTimes result={result} />);
     expect(screen.getByText(/covers none/)).toBeTruthy();
