@@ -1,5 +1,6 @@
 import type { Route } from "next";
 import Link from "next/link";
+import { numberText } from "@/components/ui/data/number-text";
 import { Quantity } from "@/components/ui/data/quantity";
 import { Table } from "@/components/ui/data/table";
 import { Card } from "@/components/ui/layout/card";
@@ -20,7 +21,10 @@ const regionsText = (regions: readonly DeltaRegion[]) =>
     ? "nothing shown"
     : (["loss", "gain"] as const)
         .flatMap((first) => regions.filter(({ verdict }) => verdict === first))
-        .map(({ verdict, from_rpm, to_rpm }) => `${verdict} ${from_rpm}–${to_rpm}`)
+        .map(
+          ({ verdict, from_rpm, to_rpm }) =>
+            `${verdict} ${numberText(from_rpm)}–${numberText(to_rpm)} per minute`,
+        )
         .join(", ");
 
 /** Verdict regions, runs and gates, each as "before → now" or as unchanged. */
@@ -69,7 +73,7 @@ export function ComparisonMovesCard({
           {labels.a} against {labels.b}
         </Link>
       }
-      description={`${comparison.isNullTest ? "Null test. " : ""}${FACTOR_WORDS[settings.factor]}, grid ${settings.rpm_step}. Computed with ${oldVersion} before.`}
+      description={`${comparison.isNullTest ? "Null test. " : ""}${FACTOR_WORDS[settings.factor]}, grid ${settings.rpm_step} per minute. Computed with ${oldVersion} before.`}
       flush
     >
       {state !== "told" || !moves ? (

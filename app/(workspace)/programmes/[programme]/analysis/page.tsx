@@ -8,6 +8,7 @@ import { EmptyState } from "@/components/ui/status/empty-state";
 import { requireCtx } from "@/lib/auth/current";
 import { orNotFound } from "@/lib/http/page";
 import { type AnalysisMoves, getAnalysisMoves } from "@/lib/services/analysis/get-moves";
+import { recordName } from "@/lib/services/decisions/record-name";
 
 export const metadata: Metadata = { title: "Analysis version" };
 
@@ -22,10 +23,9 @@ function OlderDecisions({ decisions, version }: Pick<AnalysisMoves, "decisions" 
       <ul className="flex flex-col gap-1 text-15">
         {decisions.map((row) => (
           <li key={row.id}>
-            <Link
-              href={`/records/${row.id}` as Route}
-              className="link inline-flex min-h-6 items-center"
-            >{`Record ${String(row.recordNumber).padStart(3, "0")}`}</Link>
+            <Link href={`/records/${row.id}` as Route} className="link inline-flex min-h-6 items-center">
+              {recordName(row.recordNumber)}
+            </Link>
             : {row.kind.replaceAll("_", " ")} R{row.revisionNumber}, on {row.analysisVersion}
             {row.stands && <strong>, which stands</strong>}.
           </li>
