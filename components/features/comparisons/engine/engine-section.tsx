@@ -114,7 +114,8 @@ function bandSummary(result: CampaignResult): string {
       return [`${name} of B is ${low ? "lower" : "higher"} than of A ${span} per minute.`];
     });
   });
+  const level = numberText(100 * (result.delta?.level ?? 0.95));
   return sentences.length > 0
-    ? `Outside each channel's own 95 % band: ${sentences.join(" ")}`
-    : "In no channel does B differ from A by more than that channel's 95 % band.";
+    ? `Outside each channel’s own ${level} % band: ${sentences.join(" ")}`
+    : `In no channel does B differ from A by more than that channel’s ${level} % band.`;
 }
