@@ -1,3 +1,4 @@
+import { numberText } from "@/components/ui/data/number-text";
 import { UncertaintyTable } from "@/components/ui/data/uncertainty-table";
 import { Disclosure } from "@/components/ui/layout/disclosure";
 import { adviceSentence, componentName } from "@/lib/measure/curve/budget-advice";
@@ -18,8 +19,8 @@ export function SideBudgets({
   if (sides.length === 0) {
     return (
       <p className="px-4 pb-4 text-15 text-ink2 md:px-5">
-        No budget: it takes a coast-down, and a result that was computed after budgets were added. Compute
-        again to see it.
+        No budget: it takes a coast-down, and a result of an analysis version that states one. Recompute the
+        comparison.
       </p>
     );
   }
@@ -29,7 +30,7 @@ export function SideBudgets({
         <div key={side} className="px-4 py-3 md:px-5">
           <p className="text-15">
             <strong>
-              {side}, {label}: ± {budget.expanded_pct.toFixed(1)} %
+              {side}, {label}: ± {numberText(budget.expanded_pct, { decimals: 1 })} %
             </strong>{" "}
             of its peak power (n {n}). {adviceSentence(budget)}
           </p>

@@ -63,7 +63,7 @@ describe("SideBudgets", () => {
   it("says of an older result that it has none", () => {
     render(<SideBudgets result={result(null)} labels={labels} />);
     expect(screen.queryByRole("table")).toBeNull();
-    expect(screen.getByText(/Compute\s+again/)).toBeTruthy();
+    expect(screen.getByText(/Recompute the\s+comparison/)).toBeTruthy();
   });
 
   it("prints the ± of peak torque too", () => {
