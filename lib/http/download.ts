@@ -2,13 +2,31 @@ import { Readable } from "node:stream";
 import type { StoredBytes } from "@/storage/port";
 
 /** File name for Content-Disposition (RFC 6266): an ASCII fall-back and the full name in RFC 8187 form. */
-export function contentDisposition(fileName: string): string {
+function contentDisposition(fileName: string): string {
   const plain = fileName.replaceAll(/[^\w.-]/g, "_");
   const encoded = encodeURIComponent(fileName).replaceAll(
     /['()*]/g,
     (c) => `%${c.charCodeAt(0).toString(16).toUpperCase()}`,
   );
   return `attachment; filename="${plain}"; filename*=UTF-8''${encoded}`;
+}
+
+/** What keeps a download out of shared caches and any browser from rendering it. */
+const GUARDED = {
+  "cache-control": "private, no-store",
+  "x-content-type-options": "nosniff",
+  "content-security-policy": "sandbox",
+};
+
+/** A table made on the way as a download that no browser renders. */
+export function downloadCsv({ fileName, csv }: { fileName: string; csv: string }): Response {
+  return new Response(csv, {
+    headers: {
+      "content-type": "text/csv; charset=utf-8",
+      "content-disposition": contentDisposition(fileName),
+      ...GUARDED,
+    },
+  });
 }
 
 /** A stored file as a download that no browser renders, with its fingerprint (RFC 9530) beside it. */
@@ -21,9 +39,7 @@ export function download(file: StoredBytes & { fileName: string; sha256: string 
       "content-disposition": contentDisposition(file.fileName),
       "repr-digest": `sha-256=:${Buffer.from(file.sha256, "hex").toString("base64")}:`,
       "x-fingerprint": file.sha256,
-      "cache-control": "private, no-store",
-      "x-content-type-options": "nosniff",
-      "content-security-policy": "sandbox",
+      ...GUARDED,
     },
   });
 }
