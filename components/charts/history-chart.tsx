@@ -26,18 +26,10 @@ export interface HistoryChartProps {
   occasionName: string;
   quantities: readonly HistoryQuantity[];
   notes?: readonly string[];
-  still?: boolean;
 }
 
 /** A few quantities over occasions in the order of time, one panel each; occasions stand at even distances. */
-export function HistoryChart({
-  title,
-  occasions,
-  occasionName,
-  quantities,
-  notes,
-  still,
-}: HistoryChartProps) {
+export function HistoryChart({ title, occasions, occasionName, quantities, notes }: HistoryChartProps) {
   const data = useMemo<StackData>(
     () => ({
       x: occasions.map((_, index) => index + 1),
@@ -50,7 +42,10 @@ export function HistoryChart({
       },
       panelHeight: 110,
       panels: quantities.map(({ id, label, unit, decimals, values, low, high }) => ({
-        ...{ id, label, unit, decimals },
+        id,
+        label,
+        unit,
+        decimals,
         fromZero: true,
         lines: [{ values, low, high, kind: "one" as const }],
       })),
@@ -64,7 +59,6 @@ export function HistoryChart({
       summary={describeHistory(occasions, quantities)}
       notes={notes}
       caption={`${quantities.map((quantity) => quantity.label).join(" and ")} by ${occasionName}`}
-      still={still}
     />
   );
 }

@@ -5,7 +5,7 @@ export interface FillIds {
   noted: string;
 }
 
-/** Names of the three fills of one chart; `base` must be unique on the page (from `useId`). */
+/** Names of the four fills of one chart; `base` must be unique on the page (from `useId`). */
 export function fillIds(base: string): FillIds {
   return { hatch: `${base}hatch`, dots: `${base}dots`, masked: `${base}masked`, noted: `${base}noted` };
 }

@@ -48,13 +48,19 @@ function quantities(days: readonly ScatterDay[]): HistoryQuantity[] {
   });
   return [
     {
-      ...{ id: "sd", label: "Standard deviation between runs, one engine speed", unit: "%", decimals: 2 },
+      id: "sd",
+      label: "Scatter between runs (sd)",
+      unit: "%",
+      decimals: 2,
       values: days.map((day) => scatterOf(day, "sd_point_pct")?.sdPct ?? null),
       low: intervals.map((interval) => interval?.lowPct ?? null),
       high: intervals.map((interval) => interval?.highPct ?? null),
     },
     {
-      ...{ id: "closure", label: "Closure of the twins, root mean square", unit: "%", decimals: 2 },
+      id: "closure",
+      label: "Closure of the twins (rms)",
+      unit: "%",
+      decimals: 2,
       values: days.map((day) => day.figures?.closure.rms_pct ?? null),
     },
   ];

@@ -78,9 +78,7 @@ export function RoadDayForm({
 
   return (
     <form onSubmit={send} noValidate className="flex flex-col gap-6">
-      {purpose && (
-        <PurposeFields revisions={purpose.revisions} value={chosen} onChange={(next) => setChosen(next)} />
-      )}
+      {purpose && <PurposeFields revisions={purpose.revisions} value={chosen} onChange={setChosen} />}
       <fieldset className="grid gap-4 sm:grid-cols-2">
         <legend className="mb-2 font-head font-semibold text-17">Place and people</legend>
         <TextInput

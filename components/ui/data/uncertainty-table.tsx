@@ -11,7 +11,6 @@ export interface UncertaintyPart {
 
 export interface UncertaintyTableProps {
   caption: string;
-  showCaption?: boolean;
   parts: readonly UncertaintyPart[];
   unit: string;
   /** Half-width of the whole: `factor` times the root of the sum of squares. */
@@ -33,14 +32,16 @@ function Bar({ share }: { share: number }) {
 }
 
 /** What an uncertainty is made of, the largest part first, and what it comes to. */
-export function UncertaintyTable({ caption, showCaption, parts, unit, total }: UncertaintyTableProps) {
+export function UncertaintyTable({ caption, parts, unit, total }: UncertaintyTableProps) {
   const sorted = [...parts].sort((a, b) => b.pct - a.pct);
   const most = sorted[0]?.pct ?? 0;
   const rows: Row[] = [
     ...sorted.map((part) => ({ ...part, share: most > 0 ? part.pct / most : 0 })),
     {
       name: `Together, times ${numberText(total.factor)}: ±`,
-      ...{ pct: total.pct, value: total.value, share: null },
+      pct: total.pct,
+      value: total.value,
+      share: null,
       basis: "Root of the sum of squares, then times the coverage factor: about 95 %.",
     },
   ];
@@ -80,16 +81,7 @@ export function UncertaintyTable({ caption, showCaption, parts, unit, total }: U
       cell: (row) => row.share !== null && <Bar share={row.share} />,
     },
   ];
-  return (
-    <Table
-      caption={caption}
-      showCaption={showCaption}
-      dense
-      columns={columns}
-      rows={rows}
-      rowKey={(row) => row.name}
-    />
-  );
+  return <Table caption={caption} dense columns={columns} rows={rows} rowKey={(row) => row.name} />;
 }
 
 function Figure({ value, decimals, whole }: { value: number; decimals: number; whole: boolean }) {
