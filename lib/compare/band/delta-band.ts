@@ -1,4 +1,5 @@
 import { type ColumnGroup, criticalMaxT } from "@/lib/compare/band/permutation-max-t";
+import { rowsOf } from "@/lib/compare/band/run-design";
 import { tQuantile } from "@/lib/signal/distributions";
 import { leastSquares } from "@/lib/signal/least-squares";
 import { triangularSums } from "@/lib/signal/statistics";
@@ -138,7 +139,7 @@ function fitPattern(
   order: number | null,
   rows: readonly number[],
 ): Omit<Pattern, "columns"> {
-  const x = Float64Array.from(rows.flatMap((r) => [...design.subarray(r * columns, (r + 1) * columns)]));
+  const x = rowsOf(design, columns, rows);
   // Refuses a column that depends on the others.
   const { unscaledCovariance } = leastSquares(x, new Float64Array(rows.length), columns);
   const contrast = (column: number) => {

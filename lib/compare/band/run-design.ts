@@ -98,6 +98,11 @@ export function runDesign(runs: readonly ComparedRun[], b: string): RunDesign | 
   }
 }
 
+/** The rows of a row-major matrix that are named, in that order. */
+export function rowsOf(matrix: Float64Array, columns: number, rows: readonly number[]): Float64Array {
+  return Float64Array.from(rows.flatMap((r) => [...matrix.subarray(r * columns, (r + 1) * columns)]));
+}
+
 /** Degrees of freedom that a fit must leave to tell scatter. */
 const LEAST_DF = 2;
 
@@ -112,9 +117,8 @@ export function carriedBy({
   const known = new Map<string, boolean>();
   const tried = (rows: readonly number[]): boolean => {
     if (rows.length - columns < LEAST_DF) return false;
-    const x = Float64Array.from(rows.flatMap((r) => [...matrix.subarray(r * columns, (r + 1) * columns)]));
     try {
-      leastSquares(x, new Float64Array(rows.length), columns);
+      leastSquares(rowsOf(matrix, columns, rows), new Float64Array(rows.length), columns);
       return true;
     } catch (error) {
       if (!(error instanceof InvalidInputError)) throw error;

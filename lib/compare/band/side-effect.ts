@@ -1,4 +1,4 @@
-import { type ComparedRun, carriedBy, type RunDesign } from "@/lib/compare/band/run-design";
+import { type ComparedRun, carriedBy, type RunDesign, rowsOf } from "@/lib/compare/band/run-design";
 import { tQuantile } from "@/lib/signal/distributions";
 import { leastSquares } from "@/lib/signal/least-squares";
 
@@ -36,11 +36,8 @@ export function sideEffect(
   if (!design || Math.min(a.length, b.length) < LEAST_RUNS || !carriedBy(design)(rows)) {
     return { effect: average(b) - average(a), half: null, resolvable: null, ...counts };
   }
-  const x = Float64Array.from(
-    rows.flatMap((r) => [...design.matrix.subarray(r * design.columns, (r + 1) * design.columns)]),
-  );
   const fit = leastSquares(
-    x,
+    rowsOf(design.matrix, design.columns, rows),
     Float64Array.from(rows, (r) => values[r] ?? 0),
     design.columns,
   );
