@@ -2,7 +2,13 @@ import { FileRefusedError } from "@/lib/errors";
 import { buildChannels, type RawColumn } from "@/lib/logs/channel-values";
 import { checkMissing } from "@/lib/logs/missing-values";
 import { buildTimeAxis, type TimeAxis } from "@/lib/logs/time-axis";
-import type { ChannelKey, LogChannel, LogProblem, LogTable } from "@/lib/logs/types";
+import {
+  type ChannelKey,
+  type LogChannel,
+  type LogProblem,
+  type LogTable,
+  ROAD_SPEEDS,
+} from "@/lib/logs/types";
 
 /** Columns that were sampled together, with the time of each sample. */
 export interface SampledGroup {
@@ -17,7 +23,7 @@ export interface SampledGroup {
 /** Fewer samples than this are no recording. */
 const LEAST_SAMPLES = 3;
 /** The table's rows are those of the group that holds the first of these: the road speed is what a run is found by. */
-const ROW_CHANNELS = ["wheel_speed_undriven", "gps_speed", "wheel_speed_driven", "engine_speed"] as const;
+const ROW_CHANNELS = [...ROAD_SPEEDS, "engine_speed"] as const;
 
 interface TimedGroup {
   group: SampledGroup;

@@ -1,7 +1,7 @@
 import { FileRefusedError } from "@/lib/errors";
-import type { LogChannel } from "@/lib/logs/types";
+import { type LogChannel, ROAD_SPEEDS } from "@/lib/logs/types";
 
-const MOTION = new Set(["wheel_speed_undriven", "wheel_speed_driven", "gps_speed", "engine_speed"]);
+const MOTION = new Set<string>([...ROAD_SPEEDS, "engine_speed"]);
 /** Above this share of missing cells a channel is only sound if its samples come at a steady, slower rate. */
 const MAX_MISSING_SHARE = 0.9;
 /** A steady slower channel has at least this share of its spacings within a quarter of the median (random ones: 17 %). */

@@ -1,5 +1,5 @@
 import { CHANNEL_UNITS } from "@/lib/logs/channel-names";
-import type { KnownChannel, LogChannel, LogProblem } from "@/lib/logs/types";
+import { type KnownChannel, type LogChannel, type LogProblem, ROAD_SPEEDS } from "@/lib/logs/types";
 import { KMH_MPS, KNOT_MPS, MPH_MPS } from "@/lib/units/constants";
 
 /** Least and largest value of a channel in its canonical unit. */
@@ -52,7 +52,7 @@ export function rangeDoubt(channel: KnownChannel, range: ValueRange): string | n
   return withoutUnit === null ? "another unit, or the decimal mark?" : "the decimal mark?";
 }
 
-const SPEEDS = new Set(["wheel_speed_undriven", "wheel_speed_driven", "gps_speed"]);
+const SPEEDS = new Set<string>(ROAD_SPEEDS);
 const SPEED_PAIRS: readonly [string, number][] = [
   ["km/h and m/s", 1 / KMH_MPS],
   ["mph and km/h", MPH_MPS / KMH_MPS],

@@ -1,13 +1,12 @@
 import { FileRefusedError } from "@/lib/errors";
-import type { KnownChannel, LogChannel, LogTable } from "@/lib/logs/types";
+import { type LogChannel, type LogTable, ROAD_SPEEDS } from "@/lib/logs/types";
 
-const SPEED_CHANNELS: readonly KnownChannel[] = ["wheel_speed_undriven", "gps_speed", "wheel_speed_driven"];
 /** Below this top speed (1 km/h) a car has not moved; GPS noise at rest stays under it. */
 const MOVED_MPS = 1 / 3.6;
 
 /** Road speed channels of a log, best first: undriven wheel, GPS, driven wheel. */
 function roadSpeedChannels(table: LogTable): LogChannel[] {
-  return SPEED_CHANNELS.flatMap((name) => table.channels.filter((channel) => channel.channel === name));
+  return ROAD_SPEEDS.flatMap((name) => table.channels.filter((channel) => channel.channel === name));
 }
 
 /**

@@ -23,6 +23,9 @@ export const KNOWN_CHANNELS = [
 ] as const;
 export type KnownChannel = (typeof KNOWN_CHANNELS)[number];
 
+/** Channels that hold a road speed, best first. */
+export const ROAD_SPEEDS = ["wheel_speed_undriven", "gps_speed", "wheel_speed_driven"] as const;
+
 /** One column of a log, converted to its canonical unit (m/s, 1/min, %, kPa, °C, °, m, m/s², deg, or as found). */
 export interface LogChannel {
   /** A known channel, or null for a free one. */

@@ -1,7 +1,7 @@
+import { ROAD_SPEEDS } from "@/lib/logs/types";
+
 /** What a kind of run can't do without; the names are those of the run itself. */
 export type RequiringKind = "pull" | "coast-down" | "sprint";
-
-const SPEEDS = ["wheel_speed_undriven", "gps_speed", "wheel_speed_driven"];
 
 /** A need of a kind of run, met by any of its channels. */
 export interface Requirement {
@@ -14,7 +14,7 @@ export interface Requirement {
  * @param engineSpeedFromSheet the vehicle sheet tells engine speed from road speed
  */
 export function requiredChannels(kind: RequiringKind, engineSpeedFromSheet: boolean): Requirement[] {
-  const speed = { anyOf: SPEEDS, words: "a road speed (undriven wheel, GPS or driven wheel)" };
+  const speed = { anyOf: ROAD_SPEEDS, words: "a road speed (undriven wheel, GPS or driven wheel)" };
   if (kind !== "pull" || engineSpeedFromSheet) return [speed];
   return [{ anyOf: ["engine_speed"], words: "engine speed" }, speed];
 }
