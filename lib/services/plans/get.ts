@@ -1,11 +1,10 @@
 import { selectNewestRoadDay } from "@/db/queries/road-days";
 import { MOST_TWINS, proposeOrder } from "@/lib/compare/plan/order-card";
 import { cardCost } from "@/lib/compare/plan/plan-cost";
-import { pooledScatter } from "@/lib/compare/plan/plan-scatter";
 import { shownBy, twinsFor, twinsForInterval } from "@/lib/compare/plan/plan-twins";
 import { can } from "@/lib/policy/can";
 import { authorise, type Ctx } from "@/lib/services/ctx";
-import { planBasis, scatterHistory } from "@/lib/services/plans/history";
+import { planBasis, poolDays, scatterHistory } from "@/lib/services/plans/history";
 import {
   type PlanRow,
   type PlanView,
@@ -67,9 +66,8 @@ export async function getRepeatability(ctx: Ctx, programmeId: string): Promise<R
   const names = [...new Set([...days].reverse().map((day) => day.stripName))];
   const strips = names.map((stripName): StripScatter => {
     const own = days.filter((day) => day.stripName === stripName);
-    const pooled = (key: "sd_range_pct" | "sd_point_pct") =>
-      pooledScatter(own.flatMap(({ figures }) => (figures ? [{ sdPct: figures[key], df: figures.df }] : [])));
-    return { stripName, days: own, point: pooled("sd_point_pct"), range: pooled("sd_range_pct") };
+    const [point, range] = [poolDays(own, "sd_point_pct"), poolDays(own, "sd_range_pct")];
+    return { stripName, days: own, point, range };
   });
   return { programme: { id: programme.id, name: programme.name }, strips };
 }

@@ -1,7 +1,13 @@
 import type { Queryable } from "@/db/client";
 import { type StoredScatter, selectRoadDayPlaces, selectStoredScatter } from "@/db/queries/repeatability";
 import { nullTestOutcome } from "@/lib/compare/null-test";
-import { type PlanBasis, placesSeen, pooledScatter, STARTING_SD_PCT } from "@/lib/compare/plan/plan-scatter";
+import {
+  type PlanBasis,
+  placesSeen,
+  pooledScatter,
+  type Scatter,
+  STARTING_SD_PCT,
+} from "@/lib/compare/plan/plan-scatter";
 import { STANDARD_SHA256 } from "@/lib/services/comparisons/standard-digest";
 import type { ScatterDay } from "@/lib/services/plans/schema";
 import { median } from "@/lib/signal/statistics";
@@ -63,15 +69,18 @@ export async function scatterHistory(
   return { days, bands };
 }
 
+/** One figure of the scatter pooled over road days; null where none has it. */
+export function poolDays(days: readonly ScatterDay[], key: "sd_range_pct" | "sd_point_pct"): Scatter | null {
+  const figures = days.flatMap((day) => day.figures ?? []);
+  return pooledScatter(figures.map((entry) => ({ sdPct: entry[key], df: entry.df })));
+}
+
 /** Pools the scatter of road days into what a plan rests on; starting values where there is none. */
 export function planBasis({ days, bands }: Awaited<ReturnType<typeof scatterHistory>>): PlanBasis {
-  const figures = days.flatMap((day) => day.figures ?? []);
-  const pooled = (key: "sd_range_pct" | "sd_point_pct") =>
-    pooledScatter(figures.map((entry) => ({ sdPct: entry[key], df: entry.df })));
   const smoothing = bands.flatMap((band) => band.smoothingPct ?? []);
   return {
-    range: pooled("sd_range_pct") ?? { sdPct: STARTING_SD_PCT.range, df: null },
-    point: pooled("sd_point_pct") ?? { sdPct: STARTING_SD_PCT.point, df: null },
+    range: poolDays(days, "sd_range_pct") ?? { sdPct: STARTING_SD_PCT.range, df: null },
+    point: poolDays(days, "sd_point_pct") ?? { sdPct: STARTING_SD_PCT.point, df: null },
     places: placesSeen(bands),
     smoothingPct: smoothing.length > 0 ? median(smoothing) : null,
   };
