@@ -9,6 +9,12 @@ import {
 } from "@/lib/services/comparisons/schema";
 import { authorise, type Ctx, withTransaction } from "@/lib/services/ctx";
 
+async function openAndCompute(tx: Transaction, ctx: Ctx, question: Parameters<typeof findOrOpen>[2]) {
+  const { comparison, created } = await findOrOpen(tx, ctx, question);
+  await enqueueCompute(tx, comparison);
+  return { comparisonId: comparison.id, created };
+}
+
 /**
  * Opens the comparison of two revisions of one programme; the same question has one comparison.
  * Other settings are another comparison, so that bases never mix. The result is computed by the worker.
@@ -21,11 +27,7 @@ export async function openComparison(
 ): Promise<{ comparisonId: string; created: boolean }> {
   authorise(ctx, "comparison.create");
   const question = { ...openComparisonInput.parse(raw), nullTestRoadDayId: null };
-  return await withTransaction(ctx, async (tx, inner) => {
-    const { comparison, created } = await findOrOpen(tx, inner, question);
-    await enqueueCompute(tx, comparison);
-    return { comparisonId: comparison.id, created };
-  });
+  return await withTransaction(ctx, (tx, inner) => openAndCompute(tx, inner, question));
 }
 
 async function loadComparison(tx: Transaction, ctx: Ctx, comparisonId: string): Promise<ComparisonRow> {
@@ -47,9 +49,7 @@ export async function changeSettings(
   return await withTransaction(ctx, async (tx, inner) => {
     const { revisionAId, revisionBId, nullTestRoadDayId } = await loadComparison(tx, inner, comparisonId);
     const question = { revisionAId, revisionBId, nullTestRoadDayId, settings: { factor, rpmStep } };
-    const { comparison, created } = await findOrOpen(tx, inner, question);
-    await enqueueCompute(tx, comparison);
-    return { comparisonId: comparison.id, created };
+    return await openAndCompute(tx, inner, question);
   });
 }
 
