@@ -14,7 +14,7 @@ export async function getGatePlan(ctx: Ctx, programmeId: string, version?: numbe
   const place = { workspaceId: ctx.workspaceId, programmeId };
   const start = {
     version: 0,
-    plan: startingPlan(sheet?.figures),
+    plan: startingPlan(sheet.figures),
     createdAt: programme.createdAt,
     createdByName: null,
   };
@@ -25,7 +25,7 @@ export async function getGatePlan(ctx: Ctx, programmeId: string, version?: numbe
   return {
     programme,
     plan,
-    offered: gatesNotIn(plan.plan, sheet?.figures),
+    offered: gatesNotIn(plan.plan, sheet.figures),
     newestVersion: newest?.version ?? 0,
     versions: await selectGatePlanVersions(ctx.db, place),
   };
