@@ -80,17 +80,17 @@ function inflate(bytes: Uint8Array, limit: number): Uint8Array {
  * problem entry or a refusal. Throws FileRefusedError with a code of LOG_REFUSALS.
  */
 export function readLog(bytes: Uint8Array, options: ReadLogOptions = {}): LogTable {
+  const maxInflatedBytes = options.maxInflatedBytes ?? MAX_INFLATED_BYTES;
   let content = bytes;
   let sniffed = sniffLog(content);
   if (sniffed.kind === "gzip") {
-    content = inflate(bytes, options.maxInflatedBytes ?? MAX_INFLATED_BYTES);
+    content = inflate(bytes, maxInflatedBytes);
     sniffed = sniffLog(content);
   }
   if (sniffed.kind === "empty")
     throw new FileRefusedError("empty_file", "The file is empty. Export the log again.");
   if (sniffed.kind === "gzip") throw formatRefusal("a file packed twice", options.fileName);
   if (sniffed.kind === "unsupported") throw formatRefusal(sniffed.name, options.fileName);
-  const maxInflatedBytes = options.maxInflatedBytes ?? MAX_INFLATED_BYTES;
   if (sniffed.kind === "mdf") return readMdf(content, { ...options, maxInflatedBytes });
   if (sniffed.kind === "nmea") return readNmea(content, options.key ?? {}, options.maxRefusedRows);
   if (sniffed.kind === "gpx") return readGpx(content, options.key ?? {}, options.maxRefusedRows);
