@@ -57,7 +57,7 @@ export function ColumnRow({ column, stated, required, onChange }: ColumnRowProps
         <span className="tabular break-all">{samples.join(" · ")}</span>
         {role !== "time" && role !== "text" && (
           <span className="tabular">
-            <span className="sr-only">least, median, most: </span>
+            <span className="font-sans">least, median, most: </span>
             {rangeText(column)}
           </span>
         )}

@@ -78,7 +78,13 @@ export function PeaksTable({ result, labels }: { result: CampaignResult; labels:
         rows={lines(result)}
         rowKey={(line) => line.what}
         columns={[
-          { key: "what", header: "Quantity", rowHeader: true, cell: (line) => `${line.what}, ${line.unit}` },
+          {
+            key: "what",
+            header: "Quantity",
+            rowHeader: true,
+            className: "min-w-32",
+            cell: (line) => `${line.what}, ${line.unit}`,
+          },
           // The difference first: on a phone it is what stays in sight.
           {
             key: "d",

@@ -26,6 +26,7 @@ export function RangeMeansTable({ means, level }: { means: readonly RangeMean[];
             key: "range",
             header: "Range, 1/min",
             rowHeader: true,
+            className: "whitespace-nowrap",
             cell: (mean) => `${numberText(mean.from_rpm)}–${numberText(mean.to_rpm)}`,
           },
           {

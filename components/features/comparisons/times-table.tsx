@@ -31,7 +31,7 @@ function columns(labels: { a: string; b: string }): Column<Row>[] {
     <Quantity value={value} halfWidth={halfWidth ?? null} unit="" decimals={digits(row)} orNotStated />
   );
   return [
-    { key: "name", header: "Time", unit: "s", rowHeader: true, cell: rangeWords },
+    { key: "name", header: "Time", unit: "s", rowHeader: true, className: "min-w-32", cell: rangeWords },
     // The difference first: on a phone it is what stays in sight.
     {
       key: "d",

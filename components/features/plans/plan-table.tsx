@@ -47,7 +47,7 @@ export function PlanTable({ rows, chosen, hrefFor }: PlanTableProps) {
         },
         {
           key: "curve",
-          header: "anywhere on the curve",
+          header: "Shows anywhere on the curve",
           unit: "%",
           numeric: true,
           cell: (row) => pct(row.curvePct),

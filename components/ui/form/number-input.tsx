@@ -42,12 +42,20 @@ export function NumberInput({
             {...rest}
             {...control}
             type="text"
-            className={cn(controlBox, "tabular text-right", unit && "pr-16", className)}
+            className={cn(
+              controlBox,
+              "tabular text-right",
+              unit && (unit.length > 6 ? "pr-24" : "pr-16"),
+              className,
+            )}
           />
           {unit && (
             <span
               aria-hidden
-              className="pointer-events-none absolute inset-y-0 right-0 flex w-14 items-center pl-1 text-15 text-ink2"
+              className={cn(
+                "pointer-events-none absolute inset-y-0 right-0 flex items-center whitespace-nowrap pl-1 text-15 text-ink2",
+                unit.length > 6 ? "w-22" : "w-14",
+              )}
             >
               {unit}
             </span>

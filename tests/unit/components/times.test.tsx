@@ -19,7 +19,7 @@ describe("RunTimes", () => {
         result={{ ...result, times_s: { "80-120": 3.4 }, times_uncertainty_s: { "80-120": 0.006 } }}
       />,
     );
-    expect(screen.getByRole("row", { name: /80-120 \(km\/h\)/ }).textContent).toContain("3.400 ± 0.012");
+    expect(screen.getByRole("row", { name: /80-120 km\/h/ }).textContent).toContain("3.400 ± 0.012");
     expect(screen.queryByText(/Trap/)).toBeNull();
   });
 

@@ -69,6 +69,7 @@ export function ChannelsTable({ result, labels }: { result: CampaignResult; labe
           key: "what",
           header: "Channel",
           rowHeader: true,
+          className: "min-w-36",
           cell: (channel) =>
             `${CHANNEL_WORDS[channel].name}, ${worstEnd(result, channel) === "max" ? "highest" : "lowest"}`,
         },
