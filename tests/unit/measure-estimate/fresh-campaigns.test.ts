@@ -131,6 +131,23 @@ describe("Fresh campaigns (truth: lib/simulate)", () => {
     expect(blocked.score.halfWidthPp).toBeGreaterThan(1.5 * balanced.score.halfWidthPp);
   });
 
+  it("never mixes bases: one run without weather leaves every side in the air of its day, told", () => {
+    const { campaign, logs } = simulateCampaign({ order: "ABBA", directions: "+-+-" }, 9);
+    const whole = analyseCampaign(campaign, logs);
+    expect([whole.sides.A.basis, whole.sides.B.basis, whole.delta?.basis]).toEqual(
+      Array(3).fill("reference"),
+    );
+    const runs = campaign.runs.map((run) => (run.id === "r02" ? { ...run, weather: null } : run));
+    const open = analyseCampaign({ ...campaign, runs }, logs);
+    expect([open.sides.A.basis, open.sides.B.basis, open.delta?.basis]).toEqual(Array(3).fill("day"));
+    expect(open.warnings?.map(({ code }) => code)).toContain("factor_not_for_all");
+    const factor = whole.runs[0].factor?.value ?? 1;
+    expect(Math.abs(factor - 1)).toBeGreaterThan(0.003);
+    // Side A has the same air all day: uncorrected is corrected over its factor.
+    const [corrected, plain] = [whole, open].map((of) => of.sides.A.peak?.engine_kw ?? Number.NaN);
+    expect(Math.abs((plain * factor) / corrected - 1)).toBeLessThan(0.002);
+  });
+
   it("tells a factor outside its range and a scale that nothing checks", () => {
     expect(codes(analysed({ car: "estate", tempC: 2 }, 7))).toContain("factor_out_of_range");
     expect(codes(analysed({ sensors: { gps: false, position: false } }, 8))).toContain("scale_not_checked");
