@@ -38,6 +38,13 @@ describe("Accuracy on campaigns with known truth (simulator's truth.json; limits
   it("curve error at most 0.6 % RMS", () => expect(mean((s) => s.curveRmsPct)).toBeLessThanOrEqual(0.6));
   it("delta within 0.4 percentage points of what was realised", () =>
     expect(mean((s) => s.deltaVsRealisedPp)).toBeLessThanOrEqual(0.4));
+  it.each(IDS)("%s alone: delta within 0.4 with an undriven wheel's channel, within 0.75 without", (id) => {
+    const hasWheel = [...goldenCampaign(id).logs.values()].every((log) =>
+      log.channels.some(({ channel }) => channel === "wheel_speed_undriven"),
+    );
+    expect(hasWheel).toBe(id !== "p3-estate-a-b");
+    expect(scores.get(id)?.deltaVsRealisedPp).toBeLessThanOrEqual(hasWheel ? 0.4 : 0.75);
+  });
 
   it("shows the gain of 6 % of p1 and p3 where it is, and claims nothing on p2", () => {
     for (const id of ["p1-hatch-a-b", "p3-estate-a-b"]) {
