@@ -111,6 +111,15 @@ export function buildChannels(
   return channels;
 }
 
+/** Problem entries for the columns that a channel key names and a log with these titles does not have. */
+export function missingKeyColumns(key: ChannelKey, titles: readonly string[]): LogProblem[] {
+  const named = Object.keys(key.columns ?? {}).filter((name) => !titles.includes(name));
+  return named.map((name) => ({
+    code: "key_column_not_found",
+    message: `The channel key names a column "${name}" that this log does not have.`,
+  }));
+}
+
 function buildChannel(
   column: RawColumn,
   key: ChannelKey,

@@ -1,5 +1,5 @@
 import { FileRefusedError } from "@/lib/errors";
-import { buildChannels, type RawColumn } from "@/lib/logs/channel-values";
+import { buildChannels, missingKeyColumns, type RawColumn } from "@/lib/logs/channel-values";
 import { checkMissing } from "@/lib/logs/missing-values";
 import { buildTimeAxis, type TimeAxis } from "@/lib/logs/time-axis";
 import {
@@ -112,13 +112,8 @@ export function joinGroups(
     }),
   );
   const channels = buildChannels(columns, about.key, about.drive, problems);
-  for (const name of Object.keys(about.key.columns ?? {})) {
-    if (!columns.some((column) => column.title === name))
-      problems.push({
-        code: "key_column_not_found",
-        message: `The channel key names a column "${name}" that this log does not have.`,
-      });
-  }
+  const titles = columns.map(({ title }) => title);
+  problems.push(...missingKeyColumns(about.key, titles));
   const base = usable[rowGroup(groupOf, channels)];
   const times = usable.map((each) => {
     if (each === base) return undefined;

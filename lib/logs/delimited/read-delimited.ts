@@ -1,6 +1,6 @@
 import { FileRefusedError } from "@/lib/errors";
 import { isTimeTitle, splitTitle } from "@/lib/logs/channel-names";
-import { buildChannels, type RawColumn } from "@/lib/logs/channel-values";
+import { buildChannels, missingKeyColumns, type RawColumn } from "@/lib/logs/channel-values";
 import { type CollectedTable, createCollector, hasNumber } from "@/lib/logs/delimited/collect-rows";
 import { firstRows } from "@/lib/logs/delimited/delimited-rows";
 import { spreadTimes } from "@/lib/logs/delimited/spread-times";
@@ -188,13 +188,7 @@ function buildTable(read: {
   problems.push(...axis.problems);
   const { columns, leftOut } = takeColumns(table, axis.order, form, time.index);
   const channels = buildChannels(columns, key, drive, problems);
-  for (const name of Object.keys(key.columns ?? {})) {
-    if (!form.titles.includes(name))
-      problems.push({
-        code: "key_column_not_found",
-        message: `The channel key names a column "${name}" that this log does not have.`,
-      });
-  }
+  problems.push(...missingKeyColumns(key, form.titles));
   checkMissing(axis.timeS, channels);
   if (form.preambleLines > 0)
     problems.push({
