@@ -186,6 +186,28 @@ describe("One run alone", () => {
     expect(Math.abs((result.peak?.engine_kw ?? 0) / top - 1)).toBeLessThan(0.04);
     expect(result.peak?.uncertainty_kw).toBeGreaterThan(0);
   });
+  it("keeps tractive, wheel and crank power apart by what turns between them (closed form of the sheet's figures)", () => {
+    const { curve, loss } = analyseRun(VEHICLE, RUN, logOf(), SETTINGS);
+    if (!curve || !loss) throw new Error("no curve");
+    // 63.4 km/h at 3,000 per minute with 1.5 × 3.7 between engine and wheel: the radius; wheels of 4.1 kg·m² weigh J/r².
+    const mpsPerRpm = 63.4 / 3.6 / 3000;
+    const radiusM = (mpsPerRpm * 30 * 1.5 * 3.7) / Math.PI;
+    const wheelMassKg = 4.1 / radiusM ** 2;
+    expect(curve.engine_kw.filter((kw) => kw !== null).length).toBeGreaterThan(60);
+    curve.rpm.forEach((rpm, k) => {
+      const [tractiveKw, wheelKw, engineKw] = [curve.tractive_kw[k], curve.wheel_kw[k], curve.engine_kw[k]];
+      if (tractiveKw === null || wheelKw === null || engineKw === null) return;
+      const v = rpm * mpsPerRpm;
+      const rollingKw = (v * (loss.f0_n + loss.f1_n_per_mps * v + loss.f2_n_per_mps2 * v * v)) / 1000;
+      const turningKw = (wheelMassKg / (1420 + wheelMassKg)) * (wheelKw - rollingKw);
+      // Wind, slope and slip of the tyre are left out here.
+      expect((wheelKw - tractiveKw) / turningKw).toBeGreaterThan(0.92);
+      expect((wheelKw - tractiveKw) / turningKw).toBeLessThan(1.08);
+      // Mesh efficiency 0.95; the engine's own inertia, 0.16 kg·m² · (3.7 · 1.5 / r)² = 51 kg beside 1,462, and slip come on top.
+      expect(engineKw / (wheelKw / 0.95)).toBeGreaterThan(1.02);
+      expect(engineKw / (wheelKw / 0.95)).toBeLessThan(1.06);
+    });
+  });
   it("changes nothing in its input", () => {
     const before = JSON.stringify([...logOf().channels[0].values.subarray(0, 50)]);
     Object.freeze(RUN);
