@@ -131,6 +131,25 @@ describe("Fresh campaigns (truth: lib/simulate)", () => {
     expect(blocked.score.halfWidthPp).toBeGreaterThan(1.5 * balanced.score.halfWidthPp);
   });
 
+  it("knows an undulating road by altitude pooled over its runs: without one the curve errs at least twice as much", () => {
+    const rms = (altitude: boolean) =>
+      [41, 42, 43].reduce((sum, seed) => {
+        const sensors = { accelerometer: false, rateHz: 25 };
+        const { campaign, logs, truth } = simulateCampaign(
+          { undulation: 2, order: "ABBA", directions: "+-+-", sensors },
+          seed,
+        );
+        const kept = new Map(
+          [...logs].map(([id, log]) => [
+            id,
+            { ...log, channels: log.channels.filter((c) => altitude || c.channel !== "altitude") },
+          ]),
+        );
+        return sum + scoreCampaign(analyseCampaign(campaign, kept), truth).curveRmsPct / 3;
+      }, 0);
+    expect(rms(true)).toBeLessThan(0.5 * rms(false));
+  });
+
   it("never mixes bases: one run without weather leaves every side in the air of its day, told", () => {
     const { campaign, logs } = simulateCampaign({ order: "ABBA", directions: "+-+-" }, 9);
     const whole = analyseCampaign(campaign, logs);
