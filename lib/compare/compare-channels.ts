@@ -9,6 +9,7 @@ import {
 } from "@/lib/measure/engine/full-load-types";
 import { valuesOn } from "@/lib/measure/engine/values-on";
 import type { CampaignVehicle, Series } from "@/lib/measure/types";
+import { mean } from "@/lib/signal/statistics";
 
 /** A usable pull with its engine channels. */
 export interface LoadedPull extends ComparedRun {
@@ -124,11 +125,12 @@ function bandOf(
 }
 
 function meanOf(values: readonly Series[], runs: readonly ComparedRun[], side: string, k: number): number {
-  const there = values.flatMap((row, r) => {
-    const value = row[k];
-    return runs[r].side === side && value !== null ? [value] : [];
-  });
-  return there.reduce((sum, x) => sum + x, 0) / there.length;
+  return mean(
+    values.flatMap((row, r) => {
+      const value = row[k];
+      return runs[r].side === side && value !== null ? [value] : [];
+    }),
+  );
 }
 
 /** A petrol engine runs hot when lean, a diesel smokes when rich; of all else the highest value is the worst. */
@@ -145,13 +147,13 @@ function worstOf(
     return of === "max" ? Math.max(...own) : Math.min(...own);
   };
   const [a, b] = [worst(settings.a), worst(settings.b)];
-  const mean = sideEffect(runs, values, design, settings);
+  const found = sideEffect(runs, values, design, settings);
   return {
     of,
     a,
     b,
     difference: b - a,
-    mean_difference: mean?.effect ?? b - a,
-    half_width: mean?.half || null,
+    mean_difference: found?.effect ?? b - a,
+    half_width: found?.half || null,
   };
 }

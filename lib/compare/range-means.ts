@@ -2,6 +2,7 @@ import type { ComparedRun, RunDesign } from "@/lib/compare/band/run-design";
 import { sideEffect } from "@/lib/compare/band/side-effect";
 import { meanCurve } from "@/lib/measure/curve/mean-curve";
 import type { RangeMean, Series } from "@/lib/measure/types";
+import { mean } from "@/lib/signal/statistics";
 
 /** A run counts in a range when it covers this share of it. */
 const LEAST_COVER = 0.8;
@@ -35,11 +36,11 @@ export function rangeMeans(
     const points = rpm.flatMap((x, k) => (x >= from && x <= to && shared[k] !== null ? [k] : []));
     const values = runs.map(({ engineNm }) => {
       const own = points.flatMap((k) => {
-        const [nm, mean] = [engineNm[k], shared[k]];
-        return nm !== null && mean !== null && nm > 0 ? [Math.log(nm / mean)] : [];
+        const [nm, common] = [engineNm[k], shared[k]];
+        return nm !== null && common !== null && nm > 0 ? [Math.log(nm / common)] : [];
       });
       if (own.length === 0 || own.length < LEAST_COVER * points.length) return null;
-      return own.reduce((sum, x) => sum + x, 0) / own.length;
+      return mean(own);
     });
     const found = sideEffect(runs, values, design, settings);
     if (!found) return [];

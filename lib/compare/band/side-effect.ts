@@ -1,6 +1,7 @@
 import { type ComparedRun, carriedBy, type RunDesign, rowsOf } from "@/lib/compare/band/run-design";
 import { tQuantile } from "@/lib/signal/distributions";
 import { leastSquares } from "@/lib/signal/least-squares";
+import { mean } from "@/lib/signal/statistics";
 
 /** Fewer runs a side carry no interval. */
 export const LEAST_RUNS = 3;
@@ -29,12 +30,11 @@ export function sideEffect(
 ): SideEffect | null {
   const rows = values.flatMap((value, r) => (value === null ? [] : [r]));
   const of = (side: string) => rows.filter((r) => runs[r].side === side).map((r) => values[r] ?? 0);
-  const average = (list: number[]) => list.reduce((sum, x) => sum + x, 0) / list.length;
   const [a, b] = [of(settings.a), of(settings.b)];
   const counts = { nA: a.length, nB: b.length };
   if (a.length === 0 || b.length === 0) return null;
   if (!design || Math.min(a.length, b.length) < LEAST_RUNS || !carriedBy(design)(rows)) {
-    return { effect: average(b) - average(a), half: null, resolvable: null, ...counts };
+    return { effect: mean(b) - mean(a), half: null, resolvable: null, ...counts };
   }
   const fit = leastSquares(
     rowsOf(design.matrix, design.columns, rows),

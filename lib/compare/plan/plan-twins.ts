@@ -1,4 +1,5 @@
 import { runDesign } from "@/lib/compare/band/run-design";
+import { LEAST_RUNS } from "@/lib/compare/band/side-effect";
 import { MOST_TWINS, type OrderCard, proposeOrder } from "@/lib/compare/plan/order-card";
 import { bandCritical, type PlanBasis, type Scatter, scatterInterval } from "@/lib/compare/plan/plan-scatter";
 import { tQuantile } from "@/lib/signal/distributions";
@@ -51,9 +52,6 @@ export interface ShownBy {
   /** At one engine speed, told by the band that holds the whole curve at once, past what that allows for smoothing. */
   curvePct: number | null;
 }
-
-/** Fewest runs a side of a band, as in the comparison. */
-const LEAST_RUNS = 3;
 
 /**
  * What `twins` a side show with power 0.8 at the two-sided level 0.95, in the order that the card proposes and under the

@@ -1,9 +1,11 @@
 import { type ComparedRun, type RunDesign, runDesign } from "@/lib/compare/band/run-design";
 import { LEAST_RUNS } from "@/lib/compare/band/side-effect";
+import { COVERAGE } from "@/lib/measure/curve/uncertainty-budget";
 import type { LegCounts, TimeDifference } from "@/lib/measure/sprint/time-types";
 import type { Reason } from "@/lib/measure/types";
 import { tQuantile } from "@/lib/signal/distributions";
 import { leastSquares } from "@/lib/signal/least-squares";
+import { mean } from "@/lib/signal/statistics";
 
 /** A usable run with its times and what the road's fall adds to each (absent: not known), with their standard uncertainties. */
 export interface TimedRun extends ComparedRun {
@@ -20,11 +22,7 @@ interface Sides {
   level: number;
 }
 
-/** Standard uncertainties to intervals of about 95 % (GUM, JCGM 100:2008, 6.3). */
-const COVERAGE = 2;
-
-const average = (list: readonly number[]) => list.reduce((sum, x) => sum + x, 0) / list.length;
-const rms = (list: readonly number[]) => Math.sqrt(average(list.map((x) => x * x)));
+const rms = (list: readonly number[]) => Math.sqrt(mean(list.map((x) => x * x)));
 
 /**
  * Times of side B against side A, a roll-on of a pull and a sprint's kept apart: name as in `times_s`, with " in a sprint" where
@@ -74,7 +72,7 @@ function oneTime(rows: readonly TimedRun[], name: string, settings: Sides): Time
   // Leg and order are coded around their middle, so 0 is the mean of both legs; road days at their share of the runs.
   const place = Float64Array.from({ length: columns }, (_, j) =>
     design.names[j] === "road day"
-      ? average(rows.map((_run, r) => matrix[r * columns + j]))
+      ? mean(rows.map((_run, r) => matrix[r * columns + j]))
       : design.names[j] === "mean"
         ? 1
         : 0,
@@ -120,7 +118,7 @@ function legMean(runs: readonly TimedRun[], name: string): number {
   const of = (leg: string) => runs.filter((run) => run.leg === leg).map((run) => run.timesS[name]);
   const known = runs.every((run) => run.leg !== null);
   const legs = [of("out"), of("back")].filter((list) => list.length > 0);
-  return known ? average(legs.map(average)) : average(runs.map((run) => run.timesS[name]));
+  return known ? mean(legs.map(mean)) : mean(runs.map((run) => run.timesS[name]));
 }
 
 /**
@@ -142,7 +140,7 @@ function fallOf(runs: readonly TimedRun[], name: string): { effectS: number; unc
       effectS === undefined || uncertaintyS === undefined ? [] : [{ effectS, uncertaintyS }],
   );
   if (known.length === 0) return null;
-  const over = (key: "effectS" | "uncertaintyS") => average(known.map((fall) => fall[key]));
+  const over = (key: "effectS" | "uncertaintyS") => mean(known.map((fall) => fall[key]));
   return { effectS: over("effectS"), uncertaintyS: over("uncertaintyS") };
 }
 

@@ -1,5 +1,4 @@
 import {
-  type ChannelAtLoad,
   ENGINE_CHANNELS,
   type EngineChannel,
   type RunFullLoad,
@@ -8,6 +7,7 @@ import {
 } from "@/lib/measure/engine/full-load-types";
 import { valuesOn } from "@/lib/measure/engine/values-on";
 import type { Series } from "@/lib/measure/types";
+import { mean } from "@/lib/signal/statistics";
 
 /** A usable pull of a side with its engine channels. */
 export interface LoadedRun {
@@ -67,7 +67,7 @@ function sideChannel(
     values: rpm.map((_, k) => meanOfMost(carrying.map(({ values }) => values[k]))),
     min: extreme("min"),
     max: extreme("max"),
-    mean_rise: meanOfMost(carrying.map(({ channel }: { channel: ChannelAtLoad }) => channel.rise)),
+    mean_rise: meanOfMost(carrying.map(({ channel }) => channel.rise)),
   };
 }
 
@@ -75,5 +75,5 @@ function sideChannel(
 function meanOfMost(values: Series): number | null {
   const there = values.filter((value) => value !== null);
   if (there.length === 0 || 2 * there.length < values.length) return null;
-  return there.reduce((sum, value) => sum + value, 0) / there.length;
+  return mean(there);
 }
