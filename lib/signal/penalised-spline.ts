@@ -150,6 +150,14 @@ export function splineAt(
   );
 }
 
+/** Variance of a linear combination of a fit's coefficients, one weight a coefficient; never below 0. O(knots). */
+export function splineVariance({ factor }: Pick<SplineFit, "factor">, weights: Float64Array): number {
+  const solved = bandedSolve(factor, weights);
+  let variance = 0;
+  for (let k = 0; k < weights.length; k++) variance += weights[k] * solved[k];
+  return Math.max(0, variance);
+}
+
 /** The spline (or its derivative) at each time. */
 export function evaluateSpline(
   fit: Pick<SplineFit, "basis" | "coefficients">,

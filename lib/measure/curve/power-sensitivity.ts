@@ -7,8 +7,7 @@ import { PRIOR } from "@/lib/measure/speed/calibrate-speed";
 import { slips } from "@/lib/measure/speed/speed-model";
 import type { BudgetComponent, CampaignVehicle } from "@/lib/measure/types";
 import { drivelineFigures, rollingCircumference, rpmPerMps, testMass } from "@/lib/measure/vehicle/vehicle";
-import { bandedSolve } from "@/lib/signal/banded-cholesky";
-import { splineWeights } from "@/lib/signal/penalised-spline";
+import { splineVariance, splineWeights } from "@/lib/signal/penalised-spline";
 
 /** Parts that all runs of a side share, each relative to the power. */
 export type SharedComponent = Extract<
@@ -139,8 +138,5 @@ function accelerationDeviation(estimate: CampaignEstimate, index: number, t: num
     const first = splineWeights(fit.basis, time, 0, scratch);
     for (let k = 0; k < 4; k++) row[first + k] += (sign * scratch[k]) / (to - from);
   }
-  const solved = bandedSolve(fit.factor, row);
-  let variance = 0;
-  for (let k = 0; k < row.length; k++) variance += row[k] * solved[k];
-  return Math.sqrt(Math.max(0, variance));
+  return Math.sqrt(splineVariance(fit, row));
 }

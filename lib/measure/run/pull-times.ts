@@ -3,8 +3,8 @@ import { type RollOnTimes, rollOnTimes } from "@/lib/measure/sprint/roll-on";
 import type { TraceUncertainty } from "@/lib/measure/sprint/timing-uncertainty";
 import type { SpeedPair } from "@/lib/measure/sprint/timings";
 import type { Span } from "@/lib/measure/types";
-import { bandedSolve } from "@/lib/signal/banded-cholesky";
-import { splineWeights } from "@/lib/signal/penalised-spline";
+import { splineVariance, splineWeights } from "@/lib/signal/penalised-spline";
+import { mean } from "@/lib/signal/statistics";
 
 /** Never better known than this, m/s: what fits of several channels leave open between them [common practice, no source]. */
 const LEAST_DEVIATION_MPS = 0.01;
@@ -18,11 +18,9 @@ export function speedDeviationMps({ fit, fromS, toS }: Pick<PullSpeed, "fit" | "
     const row = new Float64Array(fit.basis.count);
     const first = splineWeights(fit.basis, fromS + share * (toS - fromS), 0, scratch);
     row.set(scratch, first);
-    const solved = bandedSolve(fit.factor, row);
-    return row.reduce((sum, weight, k) => sum + weight * solved[k], 0);
+    return splineVariance(fit, row);
   });
-  const mean = variances.reduce((sum, x) => sum + x, 0) / variances.length;
-  return Math.max(LEAST_DEVIATION_MPS, Math.sqrt(mean));
+  return Math.max(LEAST_DEVIATION_MPS, Math.sqrt(mean(variances)));
 }
 
 /**
