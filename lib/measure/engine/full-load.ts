@@ -10,6 +10,7 @@ import {
   type RunFullLoad,
 } from "@/lib/measure/engine/full-load-types";
 import { type TimedChannel, timedChannel } from "@/lib/measure/engine/timed-channel";
+import { spanWithout } from "@/lib/measure/run/span-without";
 import type { CampaignVehicle, Series, Span } from "@/lib/measure/types";
 
 /** Engine channels change slowly and are noisy: their grid is no finer than this, 1/min; extremes are told apart from it. */
@@ -38,7 +39,7 @@ export function runFullLoad(
   const step = stepOf(grid.rpm);
   const rpm = grid.rpm.filter((x) => x % step === 0);
   const edges = rpm.map((x) => [timeAt(grid, x - step / 2), timeAt(grid, x), timeAt(grid, x + step / 2)]);
-  const held = stretchesOf(pull, broken);
+  const held = spanWithout(pull, broken);
   const channels: RunFullLoad["channels"] = {};
   for (const [name, values] of rows.channels) {
     const channel = timedChannel(table.timeS, values);
@@ -53,20 +54,6 @@ export function runFullLoad(
     ...(boost && { boost: { ...boost.found, at_rpm: speedAt(grid, boost.atS) } }),
     not_recorded: notRecorded(channels, vehicle),
   };
-}
-
-/** The parts of a span that lie outside the others, in order of time. */
-function stretchesOf(span: Span, others: readonly Span[]): Span[] {
-  return others.reduce<Span[]>(
-    (parts, other) =>
-      parts
-        .flatMap(({ from_s, to_s }) => [
-          { from_s, to_s: Math.min(to_s, other.from_s) },
-          { from_s: Math.max(from_s, other.to_s), to_s },
-        ])
-        .filter((part) => part.to_s > part.from_s),
-    [span],
-  );
 }
 
 /** Channels that a log of this engine could carry and does not; one manifold pressure is enough. */

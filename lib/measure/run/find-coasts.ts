@@ -1,6 +1,7 @@
 import { brakedSpans } from "@/lib/measure/judge/braking";
 import { accelerationRows } from "@/lib/measure/run/acceleration-rows";
 import type { RunSignals } from "@/lib/measure/run/run-signals";
+import { spanWithout } from "@/lib/measure/run/span-without";
 import type { Span } from "@/lib/measure/types";
 import { lowerBound } from "@/lib/signal/local-quadratic";
 import { quantile } from "@/lib/signal/statistics";
@@ -48,7 +49,9 @@ export function findCoasts(
     if (!engineRows) return false;
     return perMps === null || Math.abs(engineRows[i] / (v * perMps) - 1) > OFF_RATIO;
   };
-  const pieces = stretches(signals, free).flatMap((span) => withoutBrakes(signals, span));
+  const pieces = stretches(signals, free).flatMap((span) =>
+    spanWithout(span, brakedSpans(timeS, speedRows, span)),
+  );
   return pieces.filter((span) => {
     const from = lowerBound(timeS, span.from_s);
     const to = Math.min(timeS.length - 1, lowerBound(timeS, span.to_s));
@@ -74,15 +77,6 @@ function stretches({ timeS, rateHz }: RunSignals, free: (row: number) => boolean
     last = i;
   }
   return out.filter((span) => span.to_s > span.from_s);
-}
-
-function withoutBrakes({ timeS, speedRows }: RunSignals, span: Span): Span[] {
-  const braked = brakedSpans(timeS, speedRows, span);
-  const edges = [span.from_s, ...braked.flatMap((b) => [b.from_s, b.to_s]), span.to_s];
-  return Array.from({ length: edges.length / 2 }, (_, k) => ({
-    from_s: edges[2 * k],
-    to_s: edges[2 * k + 1],
-  }));
 }
 
 /**
