@@ -35,6 +35,8 @@ interface SideState {
   steps: { here: Float64Array; near: Float64Array };
   mean: Float64Array;
   marks: Mark[];
+  /** Deviations are judged from here on, `SETTLED_RPM` above the first point that the runs reach; NaN: nowhere. */
+  judgedFromRpm: number;
 }
 
 interface Mark {
@@ -93,7 +95,7 @@ export function findAnomalies(
       if (!state) return [name, { smoothness: null, anomalies: [] }];
       const pct = (values: Float64Array) =>
         Array.from(values, (x, k) =>
-          Number.isNaN(state.mean[k]) || !judged(rpm, state, k) ? null : 100 * x,
+          Number.isNaN(state.mean[k]) || !(rpm[k] >= state.judgedFromRpm) ? null : 100 * x,
         );
       const halfWidth = limits(rpm, state, scatter, level, 0);
       return [
@@ -118,7 +120,9 @@ function begun(grid: Float64Array, logs: Float64Array[]): SideState {
     near: here.map((_, k) => Math.max(...here.subarray(Math.max(0, k - near), k + near + 1))),
   };
   const runs = found.map(({ deviation }) => deviation);
-  return { logs, leftOut, runs, steps, mean: sideMean(runs, steps), marks: [] };
+  const first = grid.find((_, k) => logs.filter((log) => !Number.isNaN(log[k])).length >= LEAST_RUNS);
+  const judgedFromRpm = (first ?? Number.NaN) + SETTLED_RPM;
+  return { logs, leftOut, runs, steps, mean: sideMean(runs, steps), marks: [], judgedFromRpm };
 }
 
 /** The side after another stretch was left out. Inside one, where a fit lacks points, the deviation stays as it was. */
@@ -142,12 +146,6 @@ function sideMean(runs: readonly Float64Array[], { here, near }: SideState["step
 function meanOf(values: readonly number[]): number {
   const there = values.filter((x) => !Number.isNaN(x));
   return there.length < LEAST_RUNS ? Number.NaN : there.reduce((sum, x) => sum + x, 0) / there.length;
-}
-
-/** Deviations are judged from `SETTLED_RPM` above the first point that the side's runs reach. */
-function judged(rpm: readonly number[], { logs }: SideState, k: number): boolean {
-  const first = rpm.findIndex((_, j) => logs.filter((log) => !Number.isNaN(log[j])).length >= LEAST_RUNS);
-  return first >= 0 && rpm[k] >= rpm[first] + SETTLED_RPM;
 }
 
 function stepOf(rpm: ArrayLike<number>): number {
@@ -202,7 +200,7 @@ function strongest(rpm: readonly number[], state: SideState, limit: Float64Array
   const { mean, leftOut } = state;
   let best = -1;
   mean.forEach((x, k) => {
-    if (leftOut[k] || !(Math.abs(x) > limit[k]) || !judged(rpm, state, k)) return;
+    if (leftOut[k] || !(Math.abs(x) > limit[k]) || !(rpm[k] >= state.judgedFromRpm)) return;
     if (best < 0 || Math.abs(x) / limit[k] > Math.abs(mean[best]) / limit[best]) best = k;
   });
   if (best < 0) return null;
