@@ -11,6 +11,7 @@ import { findAnomalies } from "@/lib/measure/engine/curve-anomalies";
 import { runFullLoad } from "@/lib/measure/engine/full-load";
 import type { RunFullLoad } from "@/lib/measure/engine/full-load-types";
 import { sideFullLoad } from "@/lib/measure/engine/side-full-load";
+import { valuesOn } from "@/lib/measure/engine/values-on";
 import { type CampaignEstimate, estimateCampaign, type ReadyRun } from "@/lib/measure/estimate-campaign";
 import { maskedSpans, withConsequences } from "@/lib/measure/judge/consequence";
 import { judgeTogether } from "@/lib/measure/judge/judge-together";
@@ -186,12 +187,8 @@ function sidesAndDelta(
       ? []
       : Array.from({ length: Math.round((high - low) / step) + 1 }, (_, k) => low + k * step);
   const torqueOf = ({ pull }: AnalysedPull): Series => {
-    const values = new Map(pull.grid.rpm.map((x, k) => [x, pull.grid.engineNm[k]]));
     const factor = basis === "reference" ? (pull.result.factor?.value ?? 1) : 1;
-    return rpm.map((x) => {
-      const nm = values.get(x) ?? null;
-      return nm === null ? null : nm * factor;
-    });
+    return valuesOn(rpm, pull.grid.rpm, pull.grid.engineNm).map((nm) => (nm === null ? null : nm * factor));
   };
   const names = [...new Set(pulls.flatMap(({ run }) => (run.side ? [run.side] : [])))].sort();
   const sides = sideResults(
@@ -225,7 +222,7 @@ function sidesAndDelta(
       order: m.run.order ?? null,
       roadDay: m.run.road_day ?? null,
       engineNm,
-      kernelRpm: rpm.map((x) => m.pull.kernelRpm[m.pull.grid.rpm.indexOf(x)] ?? null),
+      kernelRpm: valuesOn(rpm, m.pull.grid.rpm, m.pull.kernelRpm),
       peakKw: peak?.engine_kw ?? null,
       peakNm: peak?.engine_nm ?? null,
     };
