@@ -26,6 +26,16 @@ const EXHAUST_LAG_S = 4;
 const INTAKE_LAG_S = 9;
 const COOLANT_LAG_S = 60;
 
+/** What is recorded, in the order of the model's state. */
+const SENSORS: readonly { channel: KnownChannel; unit: string; step: number; noise: number }[] = [
+  { channel: "lambda", unit: "1", step: 0.001, noise: 0.004 },
+  { channel: "manifold_pressure", unit: "kPa", step: 0.1, noise: 0.4 },
+  { channel: "knock_retard", unit: "°", step: 0.1, noise: 0 },
+  { channel: "exhaust_temperature", unit: "°C", step: 1, noise: 1 },
+  { channel: "intake_temperature", unit: "°C", step: 0.5, noise: 0 },
+  { channel: "coolant_temperature", unit: "°C", step: 0.5, noise: 0 },
+];
+
 /**
  * Engine channels of a driven run as a logger records them: first-order lags towards what load and image ask for, sensor noise,
  * sensor steps. A stated simple model for exercising the product, not thermodynamics. One value a row of `timeS`.
@@ -46,32 +56,7 @@ export function recordEngine(
   let exhaust = 480;
   let intake = run.tempC + 11;
   let coolant = 88;
-  const rows: { channel: KnownChannel; unit: string; step: number; noise: number; values: Float64Array }[] = [
-    { channel: "lambda", unit: "1", step: 0.001, noise: 0.004, values: new Float64Array(timeS.length) },
-    {
-      channel: "manifold_pressure",
-      unit: "kPa",
-      step: 0.1,
-      noise: 0.4,
-      values: new Float64Array(timeS.length),
-    },
-    { channel: "knock_retard", unit: "°", step: 0.1, noise: 0, values: new Float64Array(timeS.length) },
-    { channel: "exhaust_temperature", unit: "°C", step: 1, noise: 1, values: new Float64Array(timeS.length) },
-    {
-      channel: "intake_temperature",
-      unit: "°C",
-      step: 0.5,
-      noise: 0,
-      values: new Float64Array(timeS.length),
-    },
-    {
-      channel: "coolant_temperature",
-      unit: "°C",
-      step: 0.5,
-      noise: 0,
-      values: new Float64Array(timeS.length),
-    },
-  ];
+  const rows = SENSORS.map((sensor) => ({ ...sensor, values: new Float64Array(timeS.length) }));
   let row = 0;
   for (let i = 0; i < trace.length && row < timeS.length; i++) {
     const rpm = trace.rpm[i];
