@@ -4,6 +4,7 @@ import type { RunSignals } from "@/lib/measure/run/run-signals";
 import type { CampaignRun, CampaignVehicle, Note } from "@/lib/measure/types";
 import { readTyreMarking, rollingCircumference, rpmPerMps } from "@/lib/measure/vehicle/vehicle";
 import { median, quantile } from "@/lib/signal/statistics";
+import { MILE_M } from "@/lib/units/constants";
 
 /** Neighbouring gears differ by more than 12 %; tyre wear and growth stay below 4 % [common practice, no source]. */
 const RATIO_LIMIT = 0.06;
@@ -12,7 +13,8 @@ const FITS = 0.04;
 const SHEET_LIMIT = 0.05;
 /** An engine overshoots its typed red line by less than this before the limiter has it. */
 const OVERSHOOT = 1.04;
-const MILE = 1.609344;
+/** Kilometres a mile. */
+const MILE = MILE_M / 1000;
 
 /** Findings from gear channel, engine speed and sheet before anything is estimated. All warn. */
 export function gearingNotes(

@@ -2,7 +2,7 @@ import { fixed } from "@/lib/measure/judge/words";
 import type { RunSignals, SampledChannel } from "@/lib/measure/run/run-signals";
 import type { CampaignRun, Note, Span } from "@/lib/measure/types";
 import { median, robustDeviation } from "@/lib/signal/statistics";
-import { RADIAN_DEG } from "@/lib/units/constants";
+import { RADIAN_DEG, STANDARD_GRAVITY_MPS2 } from "@/lib/units/constants";
 
 /** A road climbs less than this between two fixes [common practice, no source]: metres, and a share of the way. */
 const ALTITUDE_JUMP_M = 5;
@@ -75,7 +75,7 @@ function accelerationFault({ acceleration, speedRows, timeS, rateHz }: RunSignal
   const why =
     slope < -0.5
       ? "it points the other way"
-      : Math.abs(slope * 9.80665 - 1) < 0.3
+      : Math.abs(slope * STANDARD_GRAVITY_MPS2 - 1) < 0.3
         ? "it reads in g"
         : "scale or mounting is off";
   return {

@@ -1,7 +1,6 @@
-import { type MotionTrace, traceAt } from "@/lib/measure/sprint/acceleration";
+import { gradeAccelerationMps2, type MotionTrace, traceAt } from "@/lib/measure/sprint/acceleration";
 import { accelerationAt } from "@/lib/measure/sprint/timing-uncertainty";
 import { lowerBound } from "@/lib/signal/local-quadratic";
-import { STANDARD_GRAVITY_MPS2 } from "@/lib/units/constants";
 
 /** How a fall along the road acts on a trace. */
 export interface FallSensitivity {
@@ -12,7 +11,7 @@ export interface FallSensitivity {
 }
 
 /** A fall of 1 %: what it adds to the acceleration, g·sin(atan 0.01), m/s². */
-const PER_PCT_MPS2 = STANDARD_GRAVITY_MPS2 * Math.sin(Math.atan(0.01));
+const PER_PCT_MPS2 = gradeAccelerationMps2(0.01);
 /** Below this share of what follows within so many seconds, the drive is interrupted: a shift, or the start coming in. */
 const INTERRUPTED = 0.7;
 const FOLLOWS_S = 1.2;
