@@ -48,7 +48,6 @@ export interface ClimbObservation {
 
 /** Road speeds that one stretch of coasting covers. */
 export interface CoastWindow {
-  run: number;
   lowMps: number;
   highMps: number;
 }
@@ -85,7 +84,7 @@ export function roadObservations(runs: readonly RoadRun[], model: SpeedModel): R
     const { coasts, cruise, pull } = run.segments;
     for (const coast of coasts) {
       const blocks = coastBlocks(run.signals, model, coast.from_s, coast.to_s, COAST_BLOCK_S);
-      if (blocks.length > 0) out.windows.push(windowOf(index, blocks));
+      if (blocks.length > 0) out.windows.push(windowOf(blocks));
       for (const block of blocks) {
         out.coasts.push({
           run: index,
@@ -120,7 +119,7 @@ export function roadObservations(runs: readonly RoadRun[], model: SpeedModel): R
   return out;
 }
 
-function windowOf(run: number, blocks: readonly SpeedBlock[]): CoastWindow {
+function windowOf(blocks: readonly SpeedBlock[]): CoastWindow {
   let lowMps = Number.POSITIVE_INFINITY;
   let highMps = 0;
   for (const { speedMps, accelerationMps2, fromS, toS } of blocks) {
@@ -128,7 +127,7 @@ function windowOf(run: number, blocks: readonly SpeedBlock[]): CoastWindow {
     lowMps = Math.min(lowMps, speedMps - half);
     highMps = Math.max(highMps, speedMps + half);
   }
-  return { run, lowMps, highMps };
+  return { lowMps, highMps };
 }
 
 function meanBetween(channel: SampledChannel, fromS: number, toS: number): number {
