@@ -99,13 +99,10 @@ function sideOfLimit(
       `${named}; only ${counted(pulls.length, "pull")} on side B recorded it, ${LEAST_PULLS} are needed for an interval.`,
       "Log this channel on every pull.",
     );
-  const interval = (of: readonly Pull[]) => {
-    const values = of.map((pull) => pull[end]);
-    const half =
-      (tQuantile(0.5 + LEVEL / 2, values.length - 1) * standardDeviation(values)) / Math.sqrt(values.length);
-    return { centre: mean(values), half };
-  };
-  const { centre, half } = interval(pulls);
+  const values = pulls.map((pull) => pull[end]);
+  const centre = mean(values);
+  const half =
+    (tQuantile(0.5 + LEVEL / 2, values.length - 1) * standardDeviation(values)) / Math.sqrt(values.length);
   const why = `${named}; the mean of ${counted(pulls.length, "pull")} is ${figure(centre, words.digits)} ± ${text(half)}, the limit ${text(limit)}.`;
   if (beyond(centre - half) && beyond(centre + half))
     return notMet(why, "Bring the quantity back inside its limit in a new revision.");

@@ -30,11 +30,9 @@ export function commonParts(
   runs: readonly PowerSensitivity[],
   quantity: "power" | "torque" = "power",
 ): RelativeParts {
-  const mean = (of: (run: PowerSensitivity) => number) =>
-    runs.reduce((sum, run) => sum + of(run), 0) / runs.length;
   const parts: RelativeParts = {};
-  for (const component of SHARED) parts[component] = mean((run) => run.shared[component]);
-  if (quantity === "torque") parts["speed scale"] = mean((run) => run.torqueScale);
+  for (const component of SHARED) parts[component] = meanOf(runs, (run) => run.shared[component]);
+  if (quantity === "torque") parts["speed scale"] = meanOf(runs, (run) => run.torqueScale);
   const days = [...meanGradients(runs)].map(([variance, gradient]) => variance.parts(gradient));
   for (const source of ROAD_SOURCES) {
     parts[ROAD_COMPONENT[source]] = Math.sqrt(days.reduce((sum, day) => sum + day[source], 0));
@@ -50,12 +48,14 @@ export function runParts(run: PowerSensitivity, quantity: "power" | "torque" = "
 
 /** Root sum of squares of the common parts, without telling wind, slope and resistance apart. */
 export function commonUncertainty(runs: readonly PowerSensitivity[]): number {
-  const mean = (of: (run: PowerSensitivity) => number) =>
-    runs.reduce((sum, run) => sum + of(run), 0) / runs.length;
   let variance = 0;
-  for (const component of SHARED) variance += mean((run) => run.shared[component]) ** 2;
+  for (const component of SHARED) variance += meanOf(runs, (run) => run.shared[component]) ** 2;
   for (const [day, gradient] of meanGradients(runs)) variance += day.total(gradient);
   return Math.sqrt(variance);
+}
+
+function meanOf(runs: readonly PowerSensitivity[], part: (run: PowerSensitivity) => number): number {
+  return runs.reduce((sum, run) => sum + part(run), 0) / runs.length;
 }
 
 function meanGradients(runs: readonly PowerSensitivity[]): Map<RoadVariance, Float64Array> {

@@ -38,14 +38,10 @@ export function curveDeviations(
   return curves.map((curve) => {
     const usable = curve.map((y, k) => (Number.isNaN(y) || leftOut[k] ? 0 : 1));
     const key = usable.join("");
-    let fits = known.get(key);
-    if (!fits) {
-      fits = Array.from(curve, (_, k) => localFit(stepRpm, usable, k));
-      known.set(key, fits);
-    }
-    const at = fits;
+    const fits = known.get(key) ?? Array.from(curve, (_, k) => localFit(stepRpm, usable, k));
+    known.set(key, fits);
     const product = (k: number, row: (fit: LocalFit) => Float64Array) => {
-      const fit = at[k];
+      const fit = fits[k];
       if (!fit) return Number.NaN;
       let sum = 0;
       row(fit).forEach((weight, i) => {

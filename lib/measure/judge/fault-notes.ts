@@ -73,8 +73,8 @@ const WORDS = {
 
 function sentence(name: string, kind: SensorFault["kind"], fault: SensorFault, masked: boolean): string {
   const length = fixed(fault.to_s - fault.from_s, 2);
-  const what =
-    kind === "jump" ? `${fault.samples === 1 ? "one sample" : `${fault.samples} samples`}` : `${length} s`;
+  const samples = fault.samples === 1 ? "one sample" : `${fault.samples} samples`;
+  const what = kind === "jump" ? samples : `${length} s`;
   const how =
     kind === "jump"
       ? `The ${name} jumps away from its neighbours in ${what}`

@@ -94,9 +94,11 @@ export function pooledFalls(runs: readonly FallOfRun[]): (NetFall | null)[] {
 export function fallResult(fall: NetFall | null, sensitivityS: Readonly<Record<string, number>>): RunTimings {
   const effects: Record<string, number> = {};
   const uncertainties: Record<string, number> = {};
-  for (const [name, perPct] of fall ? Object.entries(sensitivityS) : []) {
-    effects[name] = -perPct * (fall?.pct ?? 0);
-    uncertainties[name] = Math.hypot(perPct * (fall?.uncertaintyPct ?? 0), FIRST_ORDER * effects[name]);
+  if (fall) {
+    for (const [name, perPct] of Object.entries(sensitivityS)) {
+      effects[name] = -perPct * fall.pct;
+      uncertainties[name] = Math.hypot(perPct * fall.uncertaintyPct, FIRST_ORDER * effects[name]);
+    }
   }
   return {
     net_fall_pct: fall?.pct ?? null,
