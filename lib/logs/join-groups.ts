@@ -1,7 +1,7 @@
 import { FileRefusedError } from "@/lib/errors";
-import { buildChannels, missingKeyColumns, type RawColumn } from "@/lib/logs/channel-values";
-import { checkMissing } from "@/lib/logs/missing-values";
-import { buildTimeAxis, type TimeAxis } from "@/lib/logs/time-axis";
+import { buildChannels, missingKeyColumns, type RawColumn } from "@/lib/logs/channels/channel-values";
+import { checkMissing } from "@/lib/logs/channels/missing-values";
+import { buildTimeAxis, type TimeAxis } from "@/lib/logs/times/time-axis";
 import {
   type ChannelKey,
   type LogChannel,

@@ -1,4 +1,4 @@
-import { splitTitle } from "@/lib/logs/channel-names";
+import { splitTitle } from "@/lib/logs/channels/channel-names";
 import type { LogChannel, LogFormat, LogProblem, LogTable, RefusedRow } from "@/lib/logs/types";
 
 /** What was understood of one column; min, median, max are null when every value is missing. */

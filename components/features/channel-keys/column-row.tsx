@@ -5,8 +5,8 @@ import { unitListId } from "@/components/features/channel-keys/unit-lists";
 import { numberText } from "@/components/ui/data/number-text";
 import { Select } from "@/components/ui/form/select";
 import { TextInput } from "@/components/ui/form/text-input";
-import { CHANNEL_UNITS } from "@/lib/logs/channel-names";
-import { channelWords } from "@/lib/logs/channel-words";
+import { CHANNEL_UNITS } from "@/lib/logs/channels/channel-names";
+import { channelWords } from "@/lib/logs/channels/channel-words";
 import type { PreviewColumn } from "@/lib/logs/preview/preview-columns";
 import { KNOWN_CHANNELS, type KnownChannel } from "@/lib/logs/types";
 

@@ -3,7 +3,7 @@
 import { Select } from "@/components/ui/form/select";
 import { TextInput } from "@/components/ui/form/text-input";
 import type { LogPreview } from "@/lib/logs/preview/preview-log";
-import { TIME_FORMS, type TimeForm } from "@/lib/logs/time-forms";
+import { TIME_FORMS, type TimeForm } from "@/lib/logs/times/time-forms";
 import { KEY_DELIMITERS, KEY_ENCODINGS, type StatedKey } from "@/lib/services/channel-keys/schema";
 
 const DELIMITER_WORDS: Record<string, string> = { ",": "comma", ";": "semicolon", "\t": "tab", "|": "bar" };

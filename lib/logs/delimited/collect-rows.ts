@@ -3,7 +3,7 @@ import { createColumnStore } from "@/lib/logs/delimited/column-store";
 import { createRowScanner, type RowTarget } from "@/lib/logs/delimited/scan-rows";
 import type { TableForm } from "@/lib/logs/delimited/table-form";
 import { parseNumber } from "@/lib/logs/parse-number";
-import { countsToSeconds, readTimeCell, type TimeForm } from "@/lib/logs/time-forms";
+import { countsToSeconds, readTimeCell, type TimeForm } from "@/lib/logs/times/time-forms";
 import { type LogProblem, MOST_REFUSED_LISTED, type RefusedRow } from "@/lib/logs/types";
 
 /** Values by column in file order; the time column in seconds. */

@@ -1,14 +1,14 @@
 import { FileRefusedError } from "@/lib/errors";
-import { isTimeTitle, splitTitle } from "@/lib/logs/channel-names";
-import { buildChannels, missingKeyColumns, type RawColumn } from "@/lib/logs/channel-values";
+import { isTimeTitle, splitTitle } from "@/lib/logs/channels/channel-names";
+import { buildChannels, missingKeyColumns, type RawColumn } from "@/lib/logs/channels/channel-values";
+import { checkMissing } from "@/lib/logs/channels/missing-values";
 import { type CollectedTable, createCollector, hasNumber } from "@/lib/logs/delimited/collect-rows";
 import { firstRows } from "@/lib/logs/delimited/delimited-rows";
 import { spreadTimes } from "@/lib/logs/delimited/spread-times";
 import { findTableForm, type TableForm } from "@/lib/logs/delimited/table-form";
 import { openText } from "@/lib/logs/delimited/text-bytes";
-import { checkMissing } from "@/lib/logs/missing-values";
-import { buildTimeAxis, unwrapMidnight } from "@/lib/logs/time-axis";
-import { findTimeForm, TIME_FORMS, type TimeForm } from "@/lib/logs/time-forms";
+import { buildTimeAxis, unwrapMidnight } from "@/lib/logs/times/time-axis";
+import { findTimeForm, TIME_FORMS, type TimeForm } from "@/lib/logs/times/time-forms";
 import type { ChannelKey, LogProblem, LogTable } from "@/lib/logs/types";
 import { parseUnit } from "@/lib/units/unit-text";
 

@@ -1,5 +1,5 @@
 import { FileRefusedError } from "@/lib/errors";
-import { isTimeTitle } from "@/lib/logs/channel-names";
+import { isTimeTitle } from "@/lib/logs/channels/channel-names";
 import { type DelimitedRow, firstRows } from "@/lib/logs/delimited/delimited-rows";
 import { isMissingMark, parseNumber, ungrouped } from "@/lib/logs/parse-number";
 import type { ChannelKey } from "@/lib/logs/types";

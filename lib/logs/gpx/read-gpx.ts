@@ -1,5 +1,5 @@
 import { FileRefusedError } from "@/lib/errors";
-import type { RawColumn } from "@/lib/logs/channel-values";
+import type { RawColumn } from "@/lib/logs/channels/channel-values";
 import { decodeText } from "@/lib/logs/delimited/decode-text";
 import { type GpxPoint, type GpxPoints, readGpxPoints } from "@/lib/logs/gpx/gpx-points";
 import { positionSpeed } from "@/lib/logs/gpx/position-speed";

@@ -1,5 +1,5 @@
 import { FileRefusedError } from "@/lib/errors";
-import type { RawColumn } from "@/lib/logs/channel-values";
+import type { RawColumn } from "@/lib/logs/channels/channel-values";
 import { joinGroups, type SampledGroup } from "@/lib/logs/join-groups";
 import { type MdfFile, openMdf } from "@/lib/logs/mdf/mdf-blocks";
 import { applyConversion, conversionReader, type MdfConversion } from "@/lib/logs/mdf/mdf-conversion";

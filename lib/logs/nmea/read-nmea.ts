@@ -1,5 +1,5 @@
 import { FileRefusedError } from "@/lib/errors";
-import type { RawColumn } from "@/lib/logs/channel-values";
+import type { RawColumn } from "@/lib/logs/channels/channel-values";
 import { joinGroups } from "@/lib/logs/join-groups";
 import { collectEpochs, epochSeconds, type NmeaEpoch, type NmeaEpochs } from "@/lib/logs/nmea/nmea-epochs";
 import { readSentence } from "@/lib/logs/nmea/nmea-sentence";

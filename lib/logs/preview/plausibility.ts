@@ -1,6 +1,6 @@
-import { CHANNEL_UNITS } from "@/lib/logs/channel-names";
-import { channelWords } from "@/lib/logs/channel-words";
-import { fitsByTens, rangeDoubt, type ValueRange } from "@/lib/logs/range-doubt";
+import { CHANNEL_UNITS } from "@/lib/logs/channels/channel-names";
+import { channelWords } from "@/lib/logs/channels/channel-words";
+import { fitsByTens, rangeDoubt, type ValueRange } from "@/lib/logs/channels/range-doubt";
 import type { KnownChannel } from "@/lib/logs/types";
 import { KMH_MPS } from "@/lib/units/constants";
 

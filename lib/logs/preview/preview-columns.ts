@@ -1,4 +1,4 @@
-import { readTitle } from "@/lib/logs/channel-names";
+import { readTitle } from "@/lib/logs/channels/channel-names";
 import { channelReport } from "@/lib/logs/log-report";
 import { type Plausibility, plausibility, shownUnit } from "@/lib/logs/preview/plausibility";
 import type { LogChannel, LogTable } from "@/lib/logs/types";

@@ -1,4 +1,4 @@
-import { channelWords } from "@/lib/logs/channel-words";
+import { channelWords } from "@/lib/logs/channels/channel-words";
 import type { LogPreview } from "@/lib/logs/preview/preview-log";
 
 /** A preview in a few words for one line: what was found, what is left out, what is in doubt. */

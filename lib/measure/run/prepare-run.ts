@@ -1,6 +1,6 @@
 import { FileRefusedError } from "@/lib/errors";
-import { heldOnRows } from "@/lib/logs/held-on-rows";
-import { requireRoadSpeed } from "@/lib/logs/road-speed";
+import { requireRoadSpeed } from "@/lib/logs/channels/road-speed";
+import { heldOnRows } from "@/lib/logs/times/held-on-rows";
 import type { LogTable } from "@/lib/logs/types";
 import { judgeLog, readerNotes } from "@/lib/measure/judge/judge-log";
 import { believableRoad } from "@/lib/measure/judge/road-signs";

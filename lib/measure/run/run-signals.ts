@@ -1,4 +1,4 @@
-import { heldOnRows } from "@/lib/logs/held-on-rows";
+import { heldOnRows } from "@/lib/logs/times/held-on-rows";
 import type { KnownChannel, LogTable } from "@/lib/logs/types";
 import { type SensorFault, sensorFaults, withoutFaults } from "@/lib/measure/judge/sensor-faults";
 import { findOutliers } from "@/lib/signal/outliers";

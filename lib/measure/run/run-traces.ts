@@ -1,4 +1,4 @@
-import { heldOnRows } from "@/lib/logs/held-on-rows";
+import { heldOnRows } from "@/lib/logs/times/held-on-rows";
 import type { KnownChannel, LogTable } from "@/lib/logs/types";
 import type { RunTraces, TraceChannel } from "@/lib/measure/run/traces";
 import type { RunResult } from "@/lib/measure/types";

@@ -1,6 +1,6 @@
 import { z } from "zod";
 import type { LogPreview } from "@/lib/logs/preview/preview-log";
-import { TIME_FORMS } from "@/lib/logs/time-forms";
+import { TIME_FORMS } from "@/lib/logs/times/time-forms";
 
 export const KEY_DELIMITERS = [",", ";", "\t", "|"] as const;
 export const KEY_ENCODINGS = ["utf-8", "utf-16le", "utf-16be", "windows-1252"] as const;

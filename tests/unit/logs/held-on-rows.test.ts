@@ -1,6 +1,6 @@
 import { describe, expect, it } from "vitest";
-import { heldOnRows } from "@/lib/logs/held-on-rows";
 import { readLog } from "@/lib/logs/read-log";
+import { heldOnRows } from "@/lib/logs/times/held-on-rows";
 import type { LogTable } from "@/lib/logs/types";
 import { runSignals } from "@/lib/measure/run/run-signals";
 import { columnOf } from "@/tests/support/golden-log";

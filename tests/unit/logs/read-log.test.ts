@@ -2,8 +2,8 @@ import { readFileSync } from "node:fs";
 import { gunzipSync } from "node:zlib";
 import { describe, expect, test } from "vitest";
 import { FileRefusedError } from "@/lib/errors";
+import { requireRoadSpeed } from "@/lib/logs/channels/road-speed";
 import { readLog } from "@/lib/logs/read-log";
-import { requireRoadSpeed } from "@/lib/logs/road-speed";
 import type { LogTable } from "@/lib/logs/types";
 
 const golden = (name: string) => readFileSync(new URL(`../../golden/logs/${name}.gz`, import.meta.url));

@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { isTimeTitle, readTitle } from "@/lib/logs/channel-names";
+import { isTimeTitle, readTitle } from "@/lib/logs/channels/channel-names";
 import { readLog } from "@/lib/logs/read-log";
 import { phrasesOf } from "@/lib/logs/titles/title-meaning";
 import { TITLE_WORDS } from "@/lib/logs/titles/title-words";

@@ -1,6 +1,6 @@
-import { CHANNEL_UNITS, readTitle } from "@/lib/logs/channel-names";
-import { channelWords } from "@/lib/logs/channel-words";
-import { rangeDoubt, speedUnitDoubts } from "@/lib/logs/range-doubt";
+import { CHANNEL_UNITS, readTitle } from "@/lib/logs/channels/channel-names";
+import { channelWords } from "@/lib/logs/channels/channel-words";
+import { rangeDoubt, speedUnitDoubts } from "@/lib/logs/channels/range-doubt";
 import type { ChannelKey, KnownChannel, LogChannel, LogProblem } from "@/lib/logs/types";
 import { KNOWN_CHANNELS } from "@/lib/logs/types";
 import { type ParsedUnit, parseUnit, toCanonical } from "@/lib/units/unit-text";

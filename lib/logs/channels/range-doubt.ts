@@ -1,4 +1,4 @@
-import { CHANNEL_UNITS } from "@/lib/logs/channel-names";
+import { CHANNEL_UNITS } from "@/lib/logs/channels/channel-names";
 import { type KnownChannel, type LogChannel, type LogProblem, ROAD_SPEEDS } from "@/lib/logs/types";
 import { KMH_MPS, KNOT_MPS, MPH_MPS } from "@/lib/units/constants";
 
