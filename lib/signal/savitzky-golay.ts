@@ -76,23 +76,7 @@ export function savitzkyGolay(
   // Weights of a centred fit are even or odd with the derivative: pairs at equal distance share one product.
   const centre = savitzkyGolayWeights(windowLength, degree, derivative).map((weight) => weight * scale);
   const sign = derivative % 2 === 0 ? 1 : -1;
-  // Two samples at a time: each sum would wait for its own last addition.
-  let i = m;
-  for (; i + 1 < n - m; i += 2) {
-    let first = centre[m] * values[i];
-    let second = centre[m] * values[i + 1];
-    for (let k = 1; k <= m; k++) {
-      const weight = centre[m + k];
-      first += weight * (values[i + k] + sign * values[i - k]);
-      second += weight * (values[i + 1 + k] + sign * values[i + 1 - k]);
-    }
-    out[i] = first;
-    out[i + 1] = second;
-  }
-  if (i < n - m) {
-    out[i] = centre[m] * values[i];
-    for (let k = 1; k <= m; k++) out[i] += centre[m + k] * (values[i + k] + sign * values[i - k]);
-  }
+  fillInterior(out, values, centre, sign);
   for (let end = 0; end < m; end++) {
     // The fit at the right end is the mirror image of the one at the left.
     const weights = savitzkyGolayWeights(windowLength, degree, derivative, end - m);
@@ -106,4 +90,30 @@ export function savitzkyGolay(
     out[n - 1 - end] = sign * last * scale;
   }
   return out;
+}
+
+/**
+ * The samples that have a full window around them, two at a time: each sum would wait for its own last addition. The odd one
+ * comes first, so that nothing follows the hot loop: the engine would compile it unseen and fall back at each call.
+ */
+function fillInterior(out: Float64Array, values: Float64Array, centre: Float64Array, sign: number): void {
+  const m = (centre.length - 1) / 2;
+  const end = values.length - m;
+  let i = m;
+  if ((end - i) % 2 === 1) {
+    out[i] = centre[m] * values[i];
+    for (let k = 1; k <= m; k++) out[i] += centre[m + k] * (values[i + k] + sign * values[i - k]);
+    i++;
+  }
+  for (; i < end; i += 2) {
+    let first = centre[m] * values[i];
+    let second = centre[m] * values[i + 1];
+    for (let k = 1; k <= m; k++) {
+      const weight = centre[m + k];
+      first += weight * (values[i + k] + sign * values[i - k]);
+      second += weight * (values[i + 1 + k] + sign * values[i + 1 - k]);
+    }
+    out[i] = first;
+    out[i + 1] = second;
+  }
 }

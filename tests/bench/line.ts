@@ -39,8 +39,9 @@ function middleMs(work: () => unknown): number {
   return batches[BATCHES >> 1];
 }
 
-/** One round: ours and the reference right after each other. */
+/** One round: ours and the reference right after each other; warmed up, since code that idled in between is forgotten. */
 function round({ ours, reference }: BenchLine): number {
+  cpuMs(ours, WARM_MS);
   const own = middleMs(ours);
   if (reference === null) return own / 1000;
   return own / ("work" in reference ? middleMs(reference.work) : reference.cpuMs());

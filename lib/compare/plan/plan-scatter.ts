@@ -1,5 +1,6 @@
 import { chiSquareQuantile } from "@/lib/signal/chi-square";
 import { tCdf, tQuantile } from "@/lib/signal/distributions";
+import { median } from "@/lib/signal/statistics";
 
 /** A standard deviation between runs, %, with the degrees of freedom it rests on; df null = a starting value that nobody measured. */
 export interface Scatter {
@@ -70,9 +71,6 @@ export function bandCritical(places: number, df: number, level = 0.95): number {
 
 /** Median of the places of past bands, or the starting value where there is none. */
 export function placesSeen(bands: readonly { criticalValue: number; df: number }[]): PlanBasis["places"] {
-  const counts = bands.map((band) => bandPlaces(band)).sort((a, b) => a - b);
-  const middle = counts.length / 2;
-  const count =
-    counts.length === 0 ? STARTING_PLACES : (counts[Math.ceil(middle) - 1] + counts[Math.floor(middle)]) / 2;
-  return { count, comparisons: counts.length };
+  const count = bands.length === 0 ? STARTING_PLACES : median(bands.map((band) => bandPlaces(band)));
+  return { count, comparisons: bands.length };
 }

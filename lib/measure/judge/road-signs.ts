@@ -1,4 +1,5 @@
 import { fixed } from "@/lib/measure/judge/words";
+import { EARTH_RADIUS_M } from "@/lib/measure/road/strip-position";
 import type { RunSignals, SampledChannel } from "@/lib/measure/run/run-signals";
 import type { CampaignRun, Note, Span } from "@/lib/measure/types";
 import { median, robustDeviation } from "@/lib/signal/statistics";
@@ -12,7 +13,6 @@ const ACCELERATION_SLOPE = [0.7, 1.5] as const;
 /** Way by positions against way by speed and time: beyond this, a clock or a unit is off. */
 const WAY_LIMIT = 0.03;
 const LEAST_WAY_M = 300;
-const EARTH_RADIUS_M = 6_371_000;
 /** Two legs differ visibly from this difference of deceleration on, m/s²: about 2 m/s of wind or 0.15 % of slope each way. */
 const LEAST_CONTRAST_MPS2 = 0.03;
 

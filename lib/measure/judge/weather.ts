@@ -1,4 +1,5 @@
 import type { LogTable } from "@/lib/logs/types";
+import { standardAtmosphere } from "@/lib/measure/air/air-density";
 import { fixed } from "@/lib/measure/judge/words";
 import type { Note, RunWeather } from "@/lib/measure/types";
 import { median, quantile } from "@/lib/signal/statistics";
@@ -7,11 +8,6 @@ import { median, quantile } from "@/lib/signal/statistics";
 const WEATHER_HPA = 45;
 /** Intake air is never colder than the air outside; sensors and lags allowed for, K. */
 const COLDER_K = 8;
-
-/** Standard pressure at a height, hPa: 1013.25 (1 − h/44 330.77 m)^5.25588 (ISO 2533, from memory). */
-export function standardPressureHpa(heightM: number): number {
-  return 1013.25 * (1 - heightM / 44_330.77) ** 5.25588;
-}
 
 /** Findings about typed weather: missing, a pressure that does not belong to the height, a temperature above the intake air's. */
 export function weatherNotes(table: LogTable, weather: RunWeather | null | undefined): Note[] {
@@ -29,7 +25,7 @@ export function weatherNotes(table: LogTable, weather: RunWeather | null | undef
   const values = (name: string) => table.channels.find((c) => c.channel === name)?.values ?? null;
   const altitude = values("altitude");
   const heightM = altitude ? median(altitude.filter((h) => h !== 0)) : Number.NaN;
-  const expected = standardPressureHpa(heightM);
+  const expected = standardAtmosphere(heightM).pressurePa / 100;
   const off = weather.pressure_hpa - expected;
   if (Math.abs(off) > WEATHER_HPA) {
     const seaLevel = Math.abs(weather.pressure_hpa - 1013.25) < WEATHER_HPA && heightM > 0;

@@ -13,7 +13,8 @@ export interface StripTrack {
   located: boolean;
 }
 
-const EARTH_RADIUS_M = 6_371_000;
+/** Mean radius of the earth, m. */
+export const EARTH_RADIUS_M = 6_371_000;
 /** Beyond this scatter of GPS position against integrated speed the road is no straight strip, or the position is poor. */
 const LARGEST_SCATTER_M = 25;
 

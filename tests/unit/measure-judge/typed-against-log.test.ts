@@ -1,7 +1,7 @@
 import { describe, expect, it } from "vitest";
 import type { LogTable } from "@/lib/logs/types";
+import { standardAtmosphere } from "@/lib/measure/air/air-density";
 import { resistanceNotes, torqueNotes } from "@/lib/measure/judge/plausible";
-import { standardPressureHpa } from "@/lib/measure/judge/weather";
 import { prepareRun } from "@/lib/measure/run/prepare-run";
 import type { CampaignRun, CampaignVehicle } from "@/lib/measure/types";
 import { expectClose } from "../../support/expect-close";
@@ -89,8 +89,8 @@ describe("Gear, gearing and sheet", () => {
 
 describe("Typed weather", () => {
   it("knows the standard pressure of a height (ISO 2533 table, from memory: 898.76 hPa at 1,000 m, 954.61 at 500 m)", () => {
-    expectClose(standardPressureHpa(1000), 898.76, { abs: 0.1 });
-    expectClose(standardPressureHpa(500), 954.61, { abs: 0.1 });
+    expectClose(standardAtmosphere(1000).pressurePa / 100, 898.76, { abs: 0.1 });
+    expectClose(standardAtmosphere(500).pressurePa / 100, 954.61, { abs: 0.1 });
   });
   it("warns where none is typed", () => expect(codes(LOG, { weather: null })).toEqual(["weather_missing"]));
   it("warns of a sea-level pressure typed at 800 m", () => {
