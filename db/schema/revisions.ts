@@ -12,7 +12,7 @@ import {
   uniqueIndex,
   uuid,
 } from "drizzle-orm/pg-core";
-import type { ImageSummary } from "@/lib/calibration/image-summary";
+import type { ImageSummary } from "@/lib/calibration/image/image-summary";
 import { blobs } from "./blobs";
 import { createdAt, idColumn, instant, wholeNumber } from "./column";
 import { users } from "./people";

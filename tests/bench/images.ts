@@ -1,4 +1,4 @@
-import { changedRanges } from "@/lib/calibration/changed-ranges";
+import { changedRanges } from "@/lib/calibration/image/changed-ranges";
 import type { BenchLine } from "./line";
 
 const SIZE = 8 * 1024 * 1024;

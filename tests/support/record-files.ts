@@ -1,4 +1,4 @@
-import type { ImageSegment } from "@/lib/calibration/types";
+import type { ImageSegment } from "@/lib/calibration/image/types";
 
 const hex = (value: number, digits: number) => value.toString(16).toUpperCase().padStart(digits, "0");
 

@@ -1,6 +1,6 @@
 import { addressText, bytesText } from "@/components/features/revisions/image-understood";
 import { Table } from "@/components/ui/data/table";
-import type { ImageDifference } from "@/lib/calibration/image-summary";
+import type { ImageDifference } from "@/lib/calibration/image/image-summary";
 
 /** Where two images differ, as address ranges: what can be said without a description. */
 export function ChangedRanges({

@@ -1,7 +1,7 @@
 import { DescriptionList } from "@/components/ui/data/description-list";
 import { Fingerprint } from "@/components/ui/data/fingerprint";
 import { Notice } from "@/components/ui/status/notice";
-import type { ImageSummary } from "@/lib/calibration/image-summary";
+import type { ImageSummary } from "@/lib/calibration/image/image-summary";
 
 const CONTAINER_WORDS: Record<string, string> = {
   "intel-hex": "Intel HEX",

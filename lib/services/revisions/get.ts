@@ -6,7 +6,7 @@ import {
   selectRunsOfRevision,
   selectStanding,
 } from "@/db/queries/revisions";
-import type { ImageDifference } from "@/lib/calibration/image-summary";
+import type { ImageDifference } from "@/lib/calibration/image/image-summary";
 import { FileRefusedError } from "@/lib/errors";
 import { isReaderOnly, RELEASED_STATES, RELEASING_KINDS } from "@/lib/policy/released";
 import { authorise, type Ctx } from "@/lib/services/ctx";

@@ -1,8 +1,8 @@
-import { changedRanges } from "@/lib/calibration/changed-ranges";
-import { imageIdentity } from "@/lib/calibration/image-identity";
-import type { ImageDifference, ImageSummary } from "@/lib/calibration/image-summary";
-import { readImage } from "@/lib/calibration/read-image";
-import type { CalibrationImage } from "@/lib/calibration/types";
+import { changedRanges } from "@/lib/calibration/image/changed-ranges";
+import { imageIdentity } from "@/lib/calibration/image/image-identity";
+import type { ImageDifference, ImageSummary } from "@/lib/calibration/image/image-summary";
+import { readImage } from "@/lib/calibration/image/read-image";
+import type { CalibrationImage } from "@/lib/calibration/image/types";
 import { readBlob } from "@/lib/services/blobs";
 import type { Ctx } from "@/lib/services/ctx";
 

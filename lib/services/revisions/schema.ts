@@ -1,5 +1,5 @@
 import { z } from "zod";
-import type { ImageDifference, ImageSummary } from "@/lib/calibration/image-summary";
+import type { ImageDifference, ImageSummary } from "@/lib/calibration/image/image-summary";
 
 const INTENDED_USES = ["road", "closed_course", "bench"] as const;
 

@@ -1,10 +1,10 @@
 import { createHash } from "node:crypto";
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
-import { changedRanges } from "@/lib/calibration/changed-ranges";
-import { imageIdentity } from "@/lib/calibration/image-identity";
-import { readImage } from "@/lib/calibration/read-image";
-import type { ImageSegment } from "@/lib/calibration/types";
+import { changedRanges } from "@/lib/calibration/image/changed-ranges";
+import { imageIdentity } from "@/lib/calibration/image/image-identity";
+import { readImage } from "@/lib/calibration/image/read-image";
+import type { ImageSegment } from "@/lib/calibration/image/types";
 import { FileRefusedError } from "@/lib/errors";
 import { hexRecord, records, sRecord } from "../../support/record-files";
 

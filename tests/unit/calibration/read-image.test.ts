@@ -2,10 +2,10 @@ import { createHash } from "node:crypto";
 import { readFileSync } from "node:fs";
 import { gunzipSync } from "node:zlib";
 import { describe, expect, it } from "vitest";
-import { changedRanges } from "@/lib/calibration/changed-ranges";
-import { imageIdentity } from "@/lib/calibration/image-identity";
-import { readImage } from "@/lib/calibration/read-image";
-import { type CalibrationImage, IMAGE_REFUSALS } from "@/lib/calibration/types";
+import { changedRanges } from "@/lib/calibration/image/changed-ranges";
+import { imageIdentity } from "@/lib/calibration/image/image-identity";
+import { readImage } from "@/lib/calibration/image/read-image";
+import { type CalibrationImage, IMAGE_REFUSALS } from "@/lib/calibration/image/types";
 import { FileRefusedError } from "@/lib/errors";
 import { hexRecord, sRecord } from "../../support/record-files";
 

@@ -1,5 +1,5 @@
 import { createHash } from "node:crypto";
-import type { CalibrationImage } from "@/lib/calibration/types";
+import type { CalibrationImage } from "@/lib/calibration/image/types";
 
 /**
  * Identity of an image's content, the same in any container: SHA-256 in lower-case hex over, for each merged segment in

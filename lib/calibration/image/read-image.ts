@@ -1,6 +1,6 @@
-import { readIntelHex } from "@/lib/calibration/read-intel-hex";
-import { readSRecord } from "@/lib/calibration/read-s-record";
-import { ADDRESS_LIMIT, type CalibrationImage, formatAddress } from "@/lib/calibration/types";
+import { readIntelHex } from "@/lib/calibration/image/read-intel-hex";
+import { readSRecord } from "@/lib/calibration/image/read-s-record";
+import { ADDRESS_LIMIT, type CalibrationImage, formatAddress } from "@/lib/calibration/image/types";
 import { FileRefusedError } from "@/lib/errors";
 
 export interface ReadImageOptions {

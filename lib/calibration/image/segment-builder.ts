@@ -1,5 +1,10 @@
-import { refuseLine } from "@/lib/calibration/record-bytes";
-import { ADDRESS_LIMIT, formatAddress, type ImageNote, type ImageSegment } from "@/lib/calibration/types";
+import { refuseLine } from "@/lib/calibration/image/record-bytes";
+import {
+  ADDRESS_LIMIT,
+  formatAddress,
+  type ImageNote,
+  type ImageSegment,
+} from "@/lib/calibration/image/types";
 
 const FIRST_CAPACITY = 1 << 16;
 

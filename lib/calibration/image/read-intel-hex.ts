@@ -1,6 +1,6 @@
-import { forEachRecordLine, hexByte, refuseLine } from "@/lib/calibration/record-bytes";
-import { SegmentBuilder } from "@/lib/calibration/segment-builder";
-import { type CalibrationImage, formatAddress, type ImageNote } from "@/lib/calibration/types";
+import { forEachRecordLine, hexByte, refuseLine } from "@/lib/calibration/image/record-bytes";
+import { SegmentBuilder } from "@/lib/calibration/image/segment-builder";
+import { type CalibrationImage, formatAddress, type ImageNote } from "@/lib/calibration/image/types";
 import { FileRefusedError } from "@/lib/errors";
 
 const COLON = 58;

@@ -1,4 +1,4 @@
-import type { CalibrationImage, ImageSegment } from "@/lib/calibration/types";
+import type { CalibrationImage, ImageSegment } from "@/lib/calibration/image/types";
 
 /** A run of addresses at which two images are not the same. */
 export interface ChangedRange {
