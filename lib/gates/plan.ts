@@ -68,6 +68,36 @@ export type ChannelLimitGate = Asked<"channel_limit"> & {
 /** No ripple or spike of B's mean curve beyond x % of its local fit. */
 export type SmoothCurveGate = Asked<"smooth_curve"> & { withinPct: number };
 
+/** Names as a description writes them; a function's name allows every characteristic that the description puts into it. */
+export interface NamedTables {
+  functions: string[];
+  characteristics: string[];
+}
+
+/** Only what is named changed against what stands (null = anything described); `uncovered`: bytes outside the description may. */
+export type TouchedGate = Asked<"touched"> & { allowed: NamedTables | null; uncovered: boolean };
+
+/**
+ * Limits on changed tables, `scope` naming them or their functions ([] = all). `measure`: "share" = % of the span of the values
+ * before (of the value's own size where they are all alike), "unit" = each table's own unit. A null limit is not asked.
+ */
+export type StepLimitGate = Asked<"step_limit"> & {
+  scope: string[];
+  measure: "share" | "unit";
+  maxNeighbourStep: number | null;
+  movedAtMost: number | null;
+  against: "parent" | "standing";
+};
+
+/** Usable runs of any kind visited at least x % of the cells that changed against what stands. */
+export type CoverageGate = Asked<"coverage"> & { atLeastPct: number };
+
+/** The image matches its fingerprint and its declared checksum regions. */
+export type IntegrityGate = Asked<"integrity">;
+
+/** What the revision says about emission and safety does not contradict what it changes. */
+export type DeclarationGate = Asked<"declaration">;
+
 export type Gate =
   | EvidenceGate
   | ConditionsGate

@@ -8,12 +8,19 @@ export interface AxisLink {
   by: "column" | "title" | "hand";
 }
 
-/** Samples of one run for coverage: same length, NaN = missing; only where the run is usable. */
+/** A channel of a run: one value a time of the run, or of its own strictly rising `timeS`; NaN = missing. */
+export interface CoverageChannel {
+  values: Float64Array;
+  unit: string;
+  timeS?: Float64Array;
+}
+
+/** Samples of one run for coverage, only where the run is usable; times in strictly rising seconds. */
 export interface CoverageRun {
   id: string;
   timeS: Float64Array;
   /** By the `channel` of a link, in the unit given. */
-  channels: ReadonlyMap<string, { values: Float64Array; unit: string }>;
+  channels: ReadonlyMap<string, CoverageChannel>;
 }
 
 export interface MapCoverage {
@@ -23,9 +30,10 @@ export interface MapCoverage {
   secondsByCell: number[];
   /** How many separate visits each cell had (entries after at least 0.5 s away), over all runs. */
   visitsByCell: number[];
-  /** Seconds beyond the ends of the axes, where interpolation holds the last cell. */
+  /** Those of the seconds above that lay beyond an end of an axis, where interpolation holds the last cell. */
   secondsOutside: number;
   changedCells: number;
+  /** Visited = at least 0.1 s of weight (common practice, no source). */
   changedVisited: number;
   /** Cell numbers (x fastest) that changed and were never visited. */
   changedNeverVisited: number[];
@@ -33,12 +41,16 @@ export interface MapCoverage {
   links: (AxisLink | null)[];
 }
 
+/** Why a characteristic's coverage can't be told; "no_axes": nothing moves through it, it is left out of the share. */
+export type NotToldCode = "no_axes" | "no_link" | "not_recorded" | "unit" | "axis_points";
+
 export interface Coverage {
   coverage: 1;
   runs: string[];
   maps: MapCoverage[];
   /** Changed characteristics whose coverage can't be told, and why (one value, axis without a link, channel not recorded …). */
-  notTold: { name: string; changedCells: number; reason: string }[];
+  notTold: { name: string; changedCells: number; code: NotToldCode; reason: string }[];
+  /** Of all maps and of what is not told but for "no_axes": those count as not visited. */
   changedCells: number;
   changedVisited: number;
 }

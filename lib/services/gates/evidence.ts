@@ -19,6 +19,7 @@ export function gateEvidence(
     redlineRpm: sheet?.redlineRpm ?? 0,
     engine: sheet?.engine ?? null,
     aspiration: sheet?.aspiration ?? null,
+    calibration: null,
   };
   if (!comparison) return { result: null, runs: [], ...vehicle };
   const { current, shown } = comparison;

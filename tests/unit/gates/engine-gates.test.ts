@@ -31,7 +31,8 @@ function evidence(
       B: { n: pulls.length, basis: "day", rpm: [], engine_kw: [], engine_nm: [], peak: null, ...side },
     },
   };
-  return { result, runs, redlineRpm: 6500, engine: "spark ignition", aspiration: "turbo", ...over };
+  const vehicle = { redlineRpm: 6500, engine: "spark ignition", aspiration: "turbo" } as const;
+  return { result, runs, ...vehicle, calibration: null, ...over };
 }
 
 const limit = (changes: Partial<ChannelLimitGate>): Gate => ({

@@ -76,7 +76,8 @@ function evidence(changes: Partial<DeltaResult> = {}, over: Partial<GateEvidence
     sides: { B: { ...SMOOTH, smoothness: SMOOTHNESS } },
     delta: delta(changes),
   };
-  return { result, runs: list, redlineRpm: 6500, engine: "spark ignition", aspiration: "turbo", ...over };
+  const vehicle = { redlineRpm: 6500, engine: "spark ignition", aspiration: "turbo" } as const;
+  return { result, runs: list, ...vehicle, calibration: null, ...over };
 }
 
 const results = (e: GateEvidence) => new Map(evaluateGates(startingPlan(), e).map((r) => [r.id, r]));
