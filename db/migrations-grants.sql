@@ -8,7 +8,9 @@ grant select, insert, update, delete on all tables in schema public to twinpass_
 grant usage, select on all sequences in schema public to twinpass_app;
 
 -- Append-only: what is recorded here is never changed and never removed.
-revoke update, delete on ledger, decisions, waivers, vehicle_sheets, gate_plans, channel_keys from twinpass_app;
+revoke update, delete on ledger, decisions, waivers, vehicle_sheets, gate_plans, channel_keys,
+  calibration_settings, second_agreements from twinpass_app;
+revoke delete on descriptions from twinpass_app;
 
 -- Readiness compares the migration that the code expects with the one that the database has.
 grant usage on schema drizzle to twinpass_app;

@@ -1,7 +1,19 @@
 export { blobs, idempotencyKeys, uploadPurposeEnum, uploadStateEnum, uploads } from "@/db/schema/blobs";
+export {
+  calibrationSettingEnum,
+  calibrationSettings,
+  changeSets,
+  computeStateEnum,
+  coverages,
+  imageChecks,
+  imageReadings,
+  lookedAt,
+  secondAgreements,
+} from "@/db/schema/change-sets";
 export { channelKeys } from "@/db/schema/channel-keys";
 export { comparisonResults, comparisonStateEnum, comparisons } from "@/db/schema/comparisons";
 export { decisionKindEnum, decisions, waivers } from "@/db/schema/decisions";
+export { descriptionStateEnum, descriptions } from "@/db/schema/descriptions";
 export { ledger, ledgerHeads, mailQueue } from "@/db/schema/ledger";
 export {
   rateLimits,

@@ -21,7 +21,7 @@ export const blobs = pgTable(
   ],
 );
 
-export const uploadPurposeEnum = pgEnum("upload_purpose", ["image", "log"]);
+export const uploadPurposeEnum = pgEnum("upload_purpose", ["image", "log", "description"]);
 export const uploadStateEnum = pgEnum("upload_state", ["open", "complete", "used", "cancelled"]);
 
 /** Bytes on their way in. Only its own user in its own workspace sees it. */

@@ -15,6 +15,7 @@ import {
 import type { ImageSummary } from "@/lib/calibration/image/image-summary";
 import { blobs } from "./blobs";
 import { createdAt, idColumn, instant, wholeNumber } from "./column";
+import { descriptions } from "./descriptions";
 import { users } from "./people";
 import { programmes } from "./programmes";
 import { workspaces } from "./workspaces";
@@ -56,6 +57,8 @@ export const revisions = pgTable(
     imageBytes: wholeNumber("image_bytes").notNull(),
     imageBaseAddress: wholeNumber("image_base_address"),
     imageSummary: jsonb("image_summary").$type<ImageSummary>().notNull(),
+    /** By which description the image is read; null where there is none. */
+    descriptionId: uuid("description_id"),
     authorId: uuid("author_id")
       .notNull()
       .references(() => users.id),
@@ -83,6 +86,11 @@ export const revisions = pgTable(
     foreignKey({
       columns: [t.workspaceId, t.imageSha256],
       foreignColumns: [blobs.workspaceId, blobs.sha256],
+    }),
+    foreignKey({
+      columns: [t.workspaceId, t.programmeId, t.descriptionId],
+      foreignColumns: [descriptions.workspaceId, descriptions.programmeId, descriptions.id],
+      name: "revisions_description",
     }),
     foreignKey({ columns: [t.workspaceId, t.parentId], foreignColumns: [t.workspaceId, t.id] }),
     check(

@@ -1,18 +1,10 @@
 import { z } from "zod";
 import type { ChangeSet } from "@/lib/calibration/changes/types";
 import type { AxisLink, Coverage } from "@/lib/calibration/coverage/types";
+import type { RegionResult } from "@/lib/calibration/image/checksum-regions";
 import type { ImageReading } from "@/lib/calibration/values/types";
-import type { relevanceMarkSchema } from "@/lib/services/calibration-settings/schema";
-
-/** How one of a programme's regions came out for an image. */
-export interface ShownRegion {
-  name: string;
-  state: "holds" | "broken" | "not_there";
-  /** Hex. */
-  found: string | null;
-  expected: string | null;
-  sentence: string;
-}
+import type { RelevanceMark } from "@/lib/services/calibration-settings/schema";
+import type { DescriptionSummary } from "@/lib/services/descriptions/schema";
 
 /** A description as pages show it. */
 export interface ShownDescription {
@@ -22,23 +14,6 @@ export interface ShownDescription {
   /** Why it was refused, in a sentence. */
   failure: string | null;
   summary: DescriptionSummary | null;
-}
-
-/** What was understood of a description. */
-export interface DescriptionSummary {
-  version: string | null;
-  project: string;
-  modules: { name: string; epk: string | null }[];
-  /** Characteristics by type, e.g. MAP: 12; AXIS_PTS for shared axes. */
-  counts: Record<string, number>;
-  functions: number;
-  groups: number;
-  /** First 200 of what was skipped, and how many there are. */
-  notRead: { keyword: string; name: string; reason: string; line: number }[];
-  notReadCount: number;
-  missingIncludes: string[];
-  /** First 200. */
-  notes: string[];
 }
 
 /** A quantity that moves along an axis of something changed, and which channel of the logs it is. */
@@ -90,12 +65,11 @@ export interface RevisionChangesView {
   /** Whether the stored image still has its fingerprint; null until checked. */
   fingerprintHolds: boolean | null;
   /** The declared checksum regions in this revision's image; null until checked, [] when none is declared. */
-  integrity: ShownRegion[] | null;
+  integrity: RegionResult[] | null;
   /** Whether this revision's image and description belong together; null without a reading. */
   epk: ImageReading["epk"] | null;
   inputQuantities: ShownQuantity[];
 }
-export type RelevanceMark = z.infer<typeof relevanceMarkSchema>;
 
 /** What a page polls while it waits. */
 export interface ChangeSetState {

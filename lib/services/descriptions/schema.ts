@@ -10,3 +10,20 @@ export const addDescriptionSchema = z.strictObject({
   uploadIds: descriptionUploads.min(1, "Choose the description's files."),
 });
 export type AddDescription = z.infer<typeof addDescriptionSchema>;
+
+/** What was understood of a description. */
+export interface DescriptionSummary {
+  version: string | null;
+  project: string;
+  modules: { name: string; epk: string | null }[];
+  /** Characteristics by type, e.g. MAP: 12; AXIS_PTS for shared axes. */
+  counts: Record<string, number>;
+  functions: number;
+  groups: number;
+  /** First 200 of what was skipped, and how many there are. */
+  notRead: { keyword: string; name: string; reason: string; line: number }[];
+  notReadCount: number;
+  missingIncludes: string[];
+  /** First 200. */
+  notes: string[];
+}

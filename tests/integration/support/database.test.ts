@@ -41,7 +41,16 @@ describe("the runtime role", () => {
   });
 
   // 42501 is insufficient_privilege in the table of PostgreSQL's error codes (appendix A of its manual).
-  for (const table of ["ledger", "decisions", "waivers", "vehicle_sheets", "gate_plans", "channel_keys"]) {
+  for (const table of [
+    "ledger",
+    "decisions",
+    "waivers",
+    "vehicle_sheets",
+    "gate_plans",
+    "channel_keys",
+    "calibration_settings",
+    "second_agreements",
+  ]) {
     for (const change of [
       `update ${table} set workspace_id = null`,
       `delete from ${table}`,
