@@ -1,4 +1,4 @@
-import { projectColumns } from "@/lib/signal/project-columns";
+import { type ColumnProjector, columnProjectors, LANES } from "@/lib/signal/project-columns";
 import { randomStream, shuffle } from "@/lib/signal/random";
 import { triangularSums } from "@/lib/signal/statistics";
 
@@ -12,13 +12,10 @@ export interface ColumnGroup {
   basis: Float64Array;
 }
 
-/** Directions in one pass of `projectColumns`. */
-const LANES = 3;
-
 interface Kernel {
   columns: Int32Array;
   missing: number[];
-  /** Residuals of a column one run after the other, columns padded to an even count. */
+  /** Residuals of a column one run after the other. */
   residuals: Float64Array;
   /** Passes over `LANES` directions each, interleaved by run; padded with directions of zeros in front. */
   passes: Float64Array[];
@@ -42,6 +39,10 @@ export function criticalMaxT(
   const { pool, resamples } = options;
   const total = new Float64Array(count);
   const kernels = groups.map((group) => kernelOf(group, residuals, n, count, total));
+  const projectors = columnProjectors(
+    kernels.map((kernel) => kernel.residuals),
+    n,
+  );
   const width = pool + 1;
   // Both times `width`, which saves a division in every column of every resample.
   const whole = {
@@ -50,15 +51,18 @@ export function criticalMaxT(
   };
   const random = randomStream(options.seed);
   const order = Int32Array.from({ length: n }, (_, i) => i);
-  const weights = new Float64Array(LANES * n);
-  const side = new Float64Array(count);
-  const explained = new Float64Array(count);
+  // Where one design holds for all columns in their order, its projections need no copying.
+  const isWhole = kernels.length === 1 && kernels[0].columns.every((column, c) => column === c);
+  const side = isWhole ? projectors[0].last : new Float64Array(count);
+  const explained = isWhole ? projectors[0].squares : new Float64Array(count);
   const sums = new Float64Array(count + 2 * width + 1);
   const largest = new Float64Array(resamples);
   for (let b = 0; b < resamples; b++) {
     shuffle(order, random);
-    explained.fill(0);
-    for (const kernel of kernels) refit(kernel, order, weights, side, explained);
+    for (let k = 0; k < kernels.length; k++) {
+      refit(kernels[k], projectors[k], order);
+      if (!isWhole) spread(kernels[k], projectors[k], side, explained);
+    }
     largest[b] = largestSquare(side, explained, whole, sums, width);
   }
   largest.sort();
@@ -74,7 +78,7 @@ function largestSquare(
   width: number,
 ): number {
   const { squares, df } = whole;
-  const count = side.length;
+  const count = squares.length;
   // Second running sums: their second difference over `width` columns is `width` times the triangular sum.
   let running = 0;
   let second = 0;
@@ -104,7 +108,7 @@ function kernelOf(
   const { basis } = group;
   const columns = Int32Array.from(group.columns);
   const missing = Array.from({ length: n }, (_, r) => r).filter((r) => !group.rows.includes(r));
-  const data = new Float64Array((columns.length + (columns.length % 2)) * n);
+  const data = new Float64Array(columns.length * n);
   const fixed = basis.subarray(0, n);
   const skip = basis.length > n && missing.length === 0 && fixed.every((x) => Math.abs(x - fixed[0]) < 1e-12);
   columns.forEach((column, c) => {
@@ -129,25 +133,39 @@ function kernelOf(
   return { columns, missing, residuals: data, passes };
 }
 
-/** Projects permuted residuals on the model: writes the side's part to `side` and adds all parts' squares to `explained`. */
+/** Projects permuted residuals on the model: the side's part to `last`, all parts' squares to `squares` of the projector. */
 function refit(
   { columns, missing, residuals, passes }: Kernel,
+  projector: ColumnProjector,
   order: Int32Array,
-  weights: Float64Array,
-  side: Float64Array,
-  explained: Float64Array,
 ): void {
+  const { directions, squares } = projector;
   const n = order.length;
-  for (const directions of passes) {
+  squares.fill(0);
+  for (const pass of passes) {
     // Permuting the weights back is the same as permuting the residuals, and moves a handful of numbers only.
     for (let r = 0; r < n; r++) {
       const to = LANES * order[r];
-      weights[to] = directions[LANES * r];
-      weights[to + 1] = directions[LANES * r + 1];
-      weights[to + 2] = directions[LANES * r + 2];
+      directions[to] = pass[LANES * r];
+      directions[to + 1] = pass[LANES * r + 1];
+      directions[to + 2] = pass[LANES * r + 2];
     }
-    projectColumns(residuals, weights, columns, side, explained);
+    projector.project();
   }
   for (const run of missing)
-    for (let c = 0; c < columns.length; c++) explained[columns[c]] += residuals[c * n + order[run]] ** 2;
+    for (let c = 0; c < columns.length; c++) squares[c] += residuals[c * n + order[run]] ** 2;
+}
+
+/** Puts the projections of a group's columns at their own places. */
+function spread(
+  { columns }: Kernel,
+  projector: ColumnProjector,
+  side: Float64Array,
+  explained: Float64Array,
+): void {
+  const { last, squares } = projector;
+  for (let c = 0; c < columns.length; c++) {
+    side[columns[c]] = last[c];
+    explained[columns[c]] = squares[c];
+  }
 }
