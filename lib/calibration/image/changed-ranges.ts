@@ -8,8 +8,10 @@ export interface ChangedRange {
   kind: "differs" | "only a" | "only b";
 }
 
-/** Block that is compared at once before single bytes are looked at. */
-const BLOCK = 1024;
+/** Windows that are compared at once: they grow from the smaller to the larger while nothing differs. */
+const WINDOW = { least: 512, most: 32_768 } as const;
+/** Stretch that is known to differ and so short that its bytes are looked at one by one. */
+const NARROW = 128;
 
 /** All addresses at which `a` and `b` differ or only one has bytes, in rising order, longest runs of one kind. */
 export function changedRanges(
@@ -52,23 +54,42 @@ export function changedRanges(
 
 const end = (segment: ImageSegment) => segment.address + segment.bytes.length;
 
-function compare(
-  a: ImageSegment,
-  b: ImageSegment,
-  from: number,
-  to: number,
-  add: (address: number, length: number, kind: "differs") => void,
-): void {
+type Add = (address: number, length: number, kind: "differs") => void;
+
+function compare(a: ImageSegment, b: ImageSegment, from: number, to: number, add: Add): void {
   const x = Buffer.from(a.bytes.buffer, a.bytes.byteOffset + from - a.address, to - from);
   const y = Buffer.from(b.bytes.buffer, b.bytes.byteOffset + from - b.address, to - from);
-  for (let block = 0; block < x.length; block += BLOCK) {
-    const stop = Math.min(block + BLOCK, x.length);
-    if (x.compare(y, block, stop, block, stop) === 0) continue;
-    for (let k = block; k < stop; ) {
-      let run = k;
-      while (run < stop && x[run] !== y[run]) run++;
-      add(from + k, run - k, "differs");
-      k = run === k ? k + 1 : run;
+  searchWindows(x, y, (at, length) => add(from + at, length, "differs"));
+}
+
+type OnRun = (at: number, length: number) => void;
+
+/** Compares in windows; a window that differs is halved down to the first difference, and the search goes on behind it. */
+function searchWindows(x: Buffer, y: Buffer, onRun: OnRun): void {
+  let window: number = WINDOW.most;
+  for (let at = 0; at < x.length; ) {
+    let stop = Math.min(at + window, x.length);
+    if (x.compare(y, at, stop, at, stop) === 0) {
+      at = stop;
+      window = Math.min(8 * window, WINDOW.most);
+      continue;
     }
+    while (stop - at > NARROW) {
+      const middle = (at + stop) >>> 1;
+      if (x.compare(y, at, middle, at, middle) === 0) at = middle;
+      else stop = middle;
+    }
+    searchBytes(x, y, at, stop, onRun);
+    at = stop;
+    window = WINDOW.least;
+  }
+}
+
+function searchBytes(x: Buffer, y: Buffer, from: number, to: number, onRun: OnRun): void {
+  for (let k = from; k < to; ) {
+    let run = k;
+    while (run < to && x[run] !== y[run]) run++;
+    if (run > k) onRun(k, run - k);
+    k = run === k ? k + 1 : run;
   }
 }

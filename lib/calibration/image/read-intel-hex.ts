@@ -1,4 +1,4 @@
-import { forEachRecordLine, hexByte, refuseLine } from "@/lib/calibration/image/record-bytes";
+import { forEachRecordLine, hexByte, hexRun, refuseLine } from "@/lib/calibration/image/record-bytes";
 import { SegmentBuilder } from "@/lib/calibration/image/segment-builder";
 import { type CalibrationImage, formatAddress, type ImageNote } from "@/lib/calibration/image/types";
 import { FileRefusedError } from "@/lib/errors";
@@ -53,11 +53,9 @@ export function readIntelHex(bytes: Uint8Array): CalibrationImage {
         }
         runsOn = true;
       }
-      const room = length > 0 ? builder.reserve(base + offset, length, line) : null;
-      for (let i = 0; i < length; i++) {
-        const value = hexByte(bytes, from + 9 + 2 * i, line);
-        sum += value;
-        if (room) room.into[room.offset + i] = value;
+      if (length > 0) {
+        const at = builder.reserve(base + offset, length, line);
+        sum += hexRun(bytes, from + 9, line, builder.data, at, length);
       }
     } else {
       if (type > 5) refuseLine("record_type_unknown", line, `record type ${type} is not known.`);

@@ -1,4 +1,4 @@
-import { forEachRecordLine, hexByte, refuseLine } from "@/lib/calibration/image/record-bytes";
+import { forEachRecordLine, hexByte, hexRun, refuseLine } from "@/lib/calibration/image/record-bytes";
 import { SegmentBuilder } from "@/lib/calibration/image/segment-builder";
 import type { CalibrationImage, ImageNote } from "@/lib/calibration/image/types";
 import { FileRefusedError } from "@/lib/errors";
@@ -52,14 +52,17 @@ export function readSRecord(bytes: Uint8Array): CalibrationImage {
       address = address * 256 + byte;
     }
     const isData = type >= 1 && type <= 3;
-    const room = isData && length > 0 ? builder.reserve(address, length, line) : null;
+    const data = from + 4 + 2 * width;
     let text = "";
-    for (let i = 0; i < length; i++) {
-      const byte = hexByte(bytes, from + 4 + 2 * (width + i), line);
-      sum += byte;
-      if (room) room.into[room.offset + i] = byte;
-      else if (type === 0 && byte !== 0) text += String.fromCharCode(byte);
-    }
+    if (isData && length > 0) {
+      const at = builder.reserve(address, length, line);
+      sum += hexRun(bytes, data, line, builder.data, at, length);
+    } else
+      for (let i = 0; i < length; i++) {
+        const byte = hexByte(bytes, data + 2 * i, line);
+        sum += byte;
+        if (type === 0 && byte !== 0) text += String.fromCharCode(byte);
+      }
     if (((sum + hexByte(bytes, to - 2, line)) & 0xff) !== 0xff) {
       refuseLine(
         "checksum_wrong",

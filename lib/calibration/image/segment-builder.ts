@@ -8,30 +8,36 @@ import {
 
 const FIRST_CAPACITY = 1 << 16;
 
+/** Records that followed each other without a gap: their address, and where their bytes lie in the gathered data. */
+interface Run {
+  address: number;
+  offset: number;
+  length: number;
+}
+
 /**
  * Gathers records in any order and makes sorted, merged segments of them. Memory goes with the data, never with the span
  * of addresses. Overlap with the same bytes is a note, with other bytes a refusal that names both lines.
  */
 export class SegmentBuilder {
-  private data = new Uint8Array(FIRST_CAPACITY);
+  /** Bytes of all records in the order given; replaced by a larger one as they grow. */
+  data = new Uint8Array(FIRST_CAPACITY);
   private used = 0;
-  /** Four numbers a record: address, offset in `data`, length, line. */
-  private readonly records: number[] = [];
+  private readonly runs: Run[] = [];
+  /** Of each record: where its bytes begin in `data`, and its line. */
+  private readonly offsets: number[] = [];
+  private readonly lines: number[] = [];
   private ordered = true;
+  /** One past the last byte of the record given last. */
+  lastEnd = 0;
 
   /** Number of records with data. */
   get count(): number {
-    return this.records.length / 4;
+    return this.offsets.length;
   }
 
-  /** One past the last byte of the record given last. */
-  get lastEnd(): number {
-    const n = this.records.length;
-    return n === 0 ? 0 : this.records[n - 4] + this.records[n - 2];
-  }
-
-  /** Room for `length` bytes of a record; returns where to put them. */
-  reserve(address: number, length: number, line: number): { into: Uint8Array; offset: number } {
+  /** Room for `length` bytes of a record; returns from where on in `data` to put them. */
+  reserve(address: number, length: number, line: number): number {
     if (address + length > ADDRESS_LIMIT) {
       refuseLine(
         "address_out_of_range",
@@ -39,46 +45,51 @@ export class SegmentBuilder {
         `the data end beyond address ${formatAddress(ADDRESS_LIMIT - 1)}.`,
       );
     }
-    if (this.used + length > this.data.length) {
-      const larger = new Uint8Array(Math.max(2 * this.data.length, this.used + length));
-      larger.set(this.data.subarray(0, this.used));
-      this.data = larger;
-    }
-    if (address < this.lastEnd) this.ordered = false;
-    this.records.push(address, this.used, length, line);
     const offset = this.used;
-    this.used += length;
-    return { into: this.data, offset };
+    if (offset + length > this.data.length) this.grow(offset + length);
+    if (address === this.lastEnd && this.runs.length > 0) this.runs[this.runs.length - 1].length += length;
+    else this.runs.push({ address, offset, length });
+    if (address < this.lastEnd) this.ordered = false;
+    this.lastEnd = address + length;
+    this.offsets.push(offset);
+    this.lines.push(line);
+    this.used = offset + length;
+    return offset;
+  }
+
+  private grow(least: number): void {
+    const larger = new Uint8Array(Math.max(2 * this.data.length, least));
+    larger.set(this.data.subarray(0, this.used));
+    this.data = larger;
   }
 
   /** Sorted, merged segments; adds a note where records repeat or stand out of order. */
   build(notes: ImageNote[]): ImageSegment[] {
-    const { records } = this;
-    const order = Array.from({ length: this.count }, (_, i) => 4 * i);
-    if (!this.ordered) order.sort((a, b) => records[a] - records[b] || a - b);
+    const runs = this.ordered
+      ? this.runs
+      : [...this.runs].sort((a, b) => a.address - b.address || a.offset - b.offset);
     const segments: ImageSegment[] = [];
     let repeated = 0;
-    for (let i = 0; i < order.length; ) {
-      const address = records[order[i]];
+    for (let i = 0; i < runs.length; ) {
+      const { address } = runs[i];
       let end = address;
       let j = i;
-      while (j < order.length && records[order[j]] <= end) {
-        end = Math.max(end, records[order[j]] + records[order[j] + 2]);
+      while (j < runs.length && runs[j].address <= end) {
+        end = Math.max(end, runs[j].address + runs[j].length);
         j++;
       }
       const bytes = new Uint8Array(end - address);
       let filled = address;
       for (let k = i; k < j; k++) {
-        const r = order[k];
-        const at = records[r];
-        const source = this.data.subarray(records[r + 1], records[r + 1] + records[r + 2]);
-        const overlap = Math.min(Math.max(0, filled - at), source.length);
+        const { address: at, offset, length } = runs[k];
+        const overlap = Math.min(Math.max(0, filled - at), length);
         for (let b = 0; b < overlap; b++) {
-          if (bytes[at - address + b] !== source[b]) this.refuseOverlap(order, i, k, at + b);
+          if (bytes[at - address + b] !== this.data[offset + b])
+            this.refuseOverlap(runs.slice(i, k), at + b, offset + b);
         }
-        if (overlap > 0) repeated++;
-        bytes.set(source.subarray(overlap), at - address + overlap);
-        filled = Math.max(filled, at + source.length);
+        if (overlap > 0) repeated += this.recordOf(offset + overlap - 1) - this.recordOf(offset) + 1;
+        bytes.set(this.data.subarray(offset + overlap, offset + length), at - address + overlap);
+        filled = Math.max(filled, at + length);
       }
       segments.push({ address, bytes });
       i = j;
@@ -96,14 +107,23 @@ export class SegmentBuilder {
     return segments;
   }
 
-  private refuseOverlap(order: readonly number[], from: number, to: number, address: number): never {
-    const { records } = this;
-    const own = records[order[to] + 3];
-    let other = own;
-    for (let k = from; k < to; k++) {
-      const at = records[order[k]];
-      if (at <= address && address < at + records[order[k] + 2]) other = records[order[k] + 3];
+  /** Number of the record that holds the byte at `offset` of the data, by bisection. */
+  private recordOf(offset: number): number {
+    let low = 0;
+    let high = this.offsets.length - 1;
+    while (low < high) {
+      const middle = (low + high + 1) >> 1;
+      if (this.offsets[middle] <= offset) low = middle;
+      else high = middle - 1;
     }
+    return low;
+  }
+
+  /** @param offset of the byte in the data; one of `earlier` gave another value for the same address */
+  private refuseOverlap(earlier: readonly Run[], address: number, offset: number): never {
+    const own = this.lines[this.recordOf(offset)];
+    const run = earlier.findLast((r) => r.address <= address && address < r.address + r.length);
+    const other = run ? this.lines[this.recordOf(run.offset + address - run.address)] : own;
     const [first, second] = [Math.min(own, other), Math.max(own, other)];
     refuseLine(
       "overlap_differs",
