@@ -13,8 +13,8 @@ export interface ReadAxis {
   decimals: number;
   /** Physical points in logical order. */
   points: PhysicalValue[];
-  /** Raw points, to tell a change from a rounding. */
-  raw: number[];
+  /** Raw points, to tell a change from a rounding; RES_AXIS: its pairs, CURVE_AXIS: the curve's values. Text as in `raw` of cells. */
+  raw: (number | string)[];
 }
 
 /** One stretch of an image. */
@@ -32,12 +32,12 @@ export interface ReadCharacteristic {
   unit: string;
   /** Decimals to show, from FORMAT or the conversion, 0 to 6. */
   decimals: number;
-  /** Cells by axis; [] for one value, [n] for a curve, a block or a shared axis. */
+  /** Cells by axis; [] for one value, [n] for a curve, a block or a shared axis, [2, n] for the pairs of a rescale axis. */
   dims: number[];
   axes: ReadAxis[];
   /** One a cell; [] for ASCII. */
   values: PhysicalValue[];
-  /** Raw, one a cell, for exact comparison; 64-bit whole numbers beyond 2^53 as decimal text. */
+  /** Raw, one a cell, for exact comparison; text where JSON has no number: beyond 2^53 in decimal, "-0", "NaN", "Infinity". */
   raw: (number | string)[];
   /** ASCII: the characters up to the first NUL. */
   characters: string | null;

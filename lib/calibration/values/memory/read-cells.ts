@@ -1,0 +1,32 @@
+import { type ByteOrder, DATA_TYPES } from "@/lib/calibration/a2l/types";
+import type { CellPlaces } from "@/lib/calibration/values/memory/cell-places";
+import { type Raw, readNumber } from "@/lib/calibration/values/memory/read-number";
+import { type ReadingContext, spendCells } from "@/lib/calibration/values/reading-context";
+
+/** Reads all cells in logical order, x fastest. Throws NotReadable where the image does not have all their bytes. */
+export function readCells(context: ReadingContext, cells: CellPlaces, order: ByteOrder): Raw[] {
+  const { type, address, strides, dims } = cells;
+  const total = dims.reduce((product, n) => product * n, 1);
+  spendCells(context, total);
+  let low = address;
+  let high = address;
+  for (const [k, n] of dims.entries()) {
+    const reach = (n - 1) * strides[k];
+    if (reach < 0) low += reach;
+    else high += reach;
+  }
+  const { view, offset } = context.memory.at(low, high - low + DATA_TYPES[type]);
+  const index = dims.map(() => 0);
+  const raw: Raw[] = [];
+  let at = offset + address - low;
+  for (let cell = 0; cell < total; cell++) {
+    raw.push(readNumber({ view, offset: at }, type, order));
+    for (let k = 0; k < dims.length; k++) {
+      at += strides[k];
+      if (++index[k] < dims[k]) break;
+      at -= dims[k] * strides[k];
+      index[k] = 0;
+    }
+  }
+  return raw;
+}

@@ -1,0 +1,89 @@
+import type { Description, DescriptionModule } from "@/lib/calibration/a2l/types";
+import type { CalibrationImage } from "@/lib/calibration/image/types";
+import { checkEpk } from "@/lib/calibration/values/check-epk";
+import { ConversionBook } from "@/lib/calibration/values/convert/conversion-book";
+import { ImageMemory } from "@/lib/calibration/values/memory/image-memory";
+import { setsByMember } from "@/lib/calibration/values/named-sets";
+import { NotReadable } from "@/lib/calibration/values/not-readable";
+import { readCharacteristic } from "@/lib/calibration/values/read-characteristic";
+import { MOST_CELLS_OF_ALL, type ReadingContext } from "@/lib/calibration/values/reading-context";
+import { sharedAxis } from "@/lib/calibration/values/shared-axis";
+import type { ImageReading, ReadCharacteristic } from "@/lib/calibration/values/types";
+
+/**
+ * Reads every characteristic and shared axis of a description from an image, in raw and in physical values. What can't be read is
+ * listed in `notRead` with its reason; nothing is guessed and nothing throws. At most 8 million cells are read altogether.
+ */
+export function readImageByDescription(
+  description: Description,
+  image: Pick<CalibrationImage, "segments">,
+): ImageReading {
+  const memory = new ImageMemory(image);
+  const reading: ImageReading = {
+    reading: 1,
+    characteristics: [],
+    notRead: [],
+    memorySegments: [],
+    epk: { state: "none", expected: null, found: null },
+    problems: [],
+  };
+  const names = new Set<string>();
+  let cellsLeft = MOST_CELLS_OF_ALL;
+  for (const module of description.modules) {
+    const context = contextOf(module, memory, cellsLeft);
+    readModule(context, names, reading);
+    cellsLeft = context.cellsLeft;
+    for (const { name, programType, address, length } of module.memorySegments) {
+      reading.memorySegments.push({ name, programType, address, length });
+    }
+    const { epk, problem } = checkEpk(module.epk, memory);
+    if (reading.epk.state === "none" || epk.state === "mismatch") reading.epk = epk;
+    if (problem !== null) reading.problems.push(problem);
+    reading.problems.push(...context.book.problems());
+    if (context.fallingAxes.size > 0) reading.problems.push(fallingAxesProblem([...context.fallingAxes]));
+  }
+  const byName = (a: { name: string }, b: { name: string }) =>
+    a.name < b.name ? -1 : a.name > b.name ? 1 : 0;
+  reading.characteristics.sort(byName);
+  reading.notRead.sort(byName);
+  return reading;
+}
+
+function contextOf(module: DescriptionModule, memory: ImageMemory, cellsLeft: number): ReadingContext {
+  return {
+    module,
+    memory,
+    book: new ConversionBook(module),
+    sharedAxes: new Map(),
+    functionsOf: setsByMember(module.functions),
+    groupsOf: setsByMember(module.groups),
+    fallingAxes: new Set(),
+    cellsLeft,
+  };
+}
+
+function readModule(context: ReadingContext, names: Set<string>, reading: ImageReading): void {
+  const attempt = (name: string, read: () => ReadCharacteristic) => {
+    try {
+      if (names.has(name))
+        throw new NotReadable("another module or block of the description has this name too");
+      names.add(name);
+      reading.characteristics.push(read());
+    } catch (error) {
+      if (!(error instanceof NotReadable)) throw error;
+      reading.notRead.push({ name, reason: `${error.message}.` });
+    }
+  };
+  for (const name of context.module.axisPoints.keys()) attempt(name, () => sharedAxis(context, name).read);
+  for (const wanted of context.module.characteristics.values()) {
+    attempt(wanted.name, () => readCharacteristic(context, wanted));
+  }
+}
+
+const NAMES_SHOWN = 5;
+
+function fallingAxesProblem(names: string[]): string {
+  const more = names.length - NAMES_SHOWN;
+  const list = `${names.slice(0, NAMES_SHOWN).join(", ")}${more > 0 ? ` and ${more} more` : ""}`;
+  return `An axis of ${list} is stored from its last point on (INDEX_DECR). The values on it were left in the order of addresses; the standard does not settle it for such records. Check one known cell.`;
+}

@@ -1,0 +1,60 @@
+import { type ByteOrder, DATA_TYPES, type DescriptionModule } from "@/lib/calibration/a2l/types";
+import type { ConversionBook } from "@/lib/calibration/values/convert/conversion-book";
+import type { Series } from "@/lib/calibration/values/memory/cell-places";
+import type { ImageMemory } from "@/lib/calibration/values/memory/image-memory";
+import { type Raw, readNumber } from "@/lib/calibration/values/memory/read-number";
+import { NotReadable } from "@/lib/calibration/values/not-readable";
+import type { ReadCharacteristic } from "@/lib/calibration/values/types";
+
+/** A shared axis as read, with what those that rest on it need to know. */
+export interface SharedAxis {
+  read: ReadCharacteristic;
+  raw: Raw[];
+  /** RES_AXIS: pairs of axis value and virtual index, in order. */
+  pairs: { value: Raw; index: number }[] | null;
+  /** Greatest virtual index that its data type can hold, for pairs. */
+  fullScale: number;
+  /** Stored from the last point to the first. */
+  falls: boolean;
+}
+
+/** What reading one module carries along. */
+export interface ReadingContext {
+  module: DescriptionModule;
+  memory: ImageMemory;
+  book: ConversionBook;
+  sharedAxes: Map<string, SharedAxis | NotReadable>;
+  functionsOf: ReadonlyMap<string, string[]>;
+  groupsOf: ReadonlyMap<string, string[]>;
+  /** Names whose values keep the order of addresses on an axis that is stored from the last point on. */
+  fallingAxes: Set<string>;
+  /** Cells that may still be read: overlapping records must not multiply an image. */
+  cellsLeft: number;
+}
+
+/** Cells read of one image at most, all characteristics together. */
+export const MOST_CELLS_OF_ALL = 8_000_000;
+
+/** Takes cells from what may still be read. Throws NotReadable when nothing is left. */
+export function spendCells(context: ReadingContext, cells: number): void {
+  if (cells > context.cellsLeft) {
+    throw new NotReadable(`the description asks for more than ${MOST_CELLS_OF_ALL} cells altogether`);
+  }
+  context.cellsLeft -= cells;
+}
+
+/** Reads equally spaced numbers, in the order of the series. Throws NotReadable where bytes are missing. */
+export function readSeries(context: ReadingContext, series: Series, order: ByteOrder): Raw[] {
+  spendCells(context, series.count);
+  const { view, offset } = wholeSeries(context.memory, series);
+  return Array.from({ length: series.count }, (_, k) =>
+    readNumber({ view, offset: offset + k * series.stride }, series.type, order),
+  );
+}
+
+function wholeSeries(memory: ImageMemory, { type, address, stride, count }: Series) {
+  const span = Math.abs(stride) * (count - 1);
+  const low = stride < 0 ? address - span : address;
+  const { view, offset } = memory.at(low, span + DATA_TYPES[type]);
+  return { view, offset: offset + (address - low) };
+}
