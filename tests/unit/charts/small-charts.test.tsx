@@ -3,7 +3,6 @@ import { renderToStaticMarkup } from "react-dom/server";
 import { afterEach, describe, expect, it } from "vitest";
 import { CurveChart, describeCurves } from "@/components/charts/curve-chart";
 import { DeltaStrip } from "@/components/charts/delta-strip";
-import { HeatTable, heatStep } from "@/components/charts/heat-table";
 import { readSpanHash, spanHash, withSurroundings } from "@/components/charts/stack/span-hash";
 import { describeTraces, TraceChart } from "@/components/charts/trace-chart";
 
@@ -149,49 +148,5 @@ describe("DeltaStrip", () => {
     ).replaceAll("\u202f", " ");
     expect(markup).toContain('aria-label="A higher 3 600 to 4 000; B higher 2 000 to 2 500 per minute"');
     expect(markup).not.toMatch(/\sstyle=/);
-  });
-});
-
-describe("HeatTable", () => {
-  it("steps by thirds of the largest difference, plain for none", () => {
-    expect([-9, -6.1, -6, -3, -0.1, 0, null, 0.1, 3.1, 9].map((value) => heatStep(value, 9))).toEqual([
-      "heat-a3",
-      "heat-a3",
-      "heat-a2",
-      "heat-a1",
-      "heat-a1",
-      "heat-0",
-      "heat-0",
-      "heat-b1",
-      "heat-b2",
-      "heat-b3",
-    ]);
-  });
-
-  it("prints the signed number in every cell and the axis points as heads", () => {
-    render(
-      <HeatTable
-        caption="Target pressure"
-        unit="kPa"
-        decimals={1}
-        x={{ label: "Engine speed", unit: "1/min", decimals: 0, points: [1000, 2000] }}
-        y={{ label: "Pedal", unit: "%", decimals: 0, points: [50, 100] }}
-        cells={[
-          [0, 1.5],
-          [-2, null],
-        ]}
-        unvisited={[
-          [false, true],
-          [false, false],
-        ]}
-      />,
-    );
-    expect(screen.getAllByRole("cell").map((cell) => cell.textContent)).toEqual([
-      "·",
-      "+1.5 not visited",
-      "\u22122.0",
-      "–",
-    ]);
-    expect(screen.getAllByRole("rowheader").map((head) => head.textContent)).toEqual(["50", "100"]);
   });
 });

@@ -1,0 +1,59 @@
+import { numberText } from "@/components/ui/data/number-text";
+import type { PhysicalValue } from "@/lib/calibration/values/types";
+
+/** Most digits behind the point that a physical value is shown with. */
+const MOST_DIGITS = 6;
+
+/**
+ * Digits behind the point such that no difference of a list is printed as zero: those declared, more where the smallest
+ * difference is finer, at most 6. Zeros and NaN are passed over.
+ */
+export function digitsFor(differences: readonly number[], declared: number): number {
+  let smallest = Number.POSITIVE_INFINITY;
+  for (const difference of differences) {
+    const size = Math.abs(difference);
+    if (size > 0 && size < smallest) smallest = size;
+  }
+  let digits = Math.min(declared, MOST_DIGITS);
+  while (digits < MOST_DIGITS && Number(smallest.toFixed(digits)) === 0) digits += 1;
+  return digits;
+}
+
+/** A physical value as it is shown; a text stands as it is, an en dash where the conversion has no value. */
+export function valueText(value: PhysicalValue | undefined, decimals: number): string {
+  return typeof value === "string" ? value : numberText(value, { decimals });
+}
+
+/** after − before; null for texts and where one of them has no value. */
+export function differenceOf(
+  before: PhysicalValue | undefined,
+  after: PhysicalValue | undefined,
+): number | null {
+  return typeof before === "number" && typeof after === "number" ? after - before : null;
+}
+
+/**
+ * The difference of a changed cell with its sign. "≈ 0": stored otherwise, but too little to be seen in six digits.
+ * Null where there is no difference to tell (texts).
+ */
+export function differenceText(
+  before: PhysicalValue | undefined,
+  after: PhysicalValue | undefined,
+  decimals: number,
+): string | null {
+  const difference = differenceOf(before, after);
+  if (difference === null) return null;
+  const text = numberText(difference, { decimals, signed: true });
+  return Number(difference.toFixed(decimals)) === 0 ? "≈\u202f0" : text;
+}
+
+/** "1 cell", "38 cells". */
+export function counted(count: number, one: string, many = `${one}s`): string {
+  return `${numberText(count)} ${count === 1 ? one : many}`;
+}
+
+/** "a", "a and b", "a, b and c". */
+export function listed(parts: readonly string[]): string {
+  if (parts.length < 2) return parts.join("");
+  return `${parts.slice(0, -1).join(", ")} and ${parts.at(-1)}`;
+}
