@@ -48,14 +48,26 @@ export interface RecordLayout {
 export type AxisLetter = "X" | "Y" | "Z" | "4" | "5";
 
 /** How raw becomes physical. */
-export type Conversion = { name: string; text: string; unit: string; decimals: number | null } & (
+export type Conversion = {
+  name: string;
+  text: string;
+  unit: string;
+  decimals: number | null;
+  /** Ranges of raw that are no number but a state (STATUS_STRING_REF), with its text. */
+  status?: readonly { from: number; to: number; text: string }[];
+} & (
   | { kind: "identical" }
   /** phys = a·raw + b */
   | { kind: "linear"; a: number; b: number }
   /** raw = (a·p² + b·p + c) / (d·p² + e·p + f), p physical */
   | { kind: "rational"; coefficients: readonly [number, number, number, number, number, number] }
   /** Pairs raw → physical; interpolated: between them; default: outside a table that is not interpolated. */
-  | { kind: "table"; interpolated: boolean; pairs: readonly (readonly [number, number])[]; fallback: number | null }
+  | {
+      kind: "table";
+      interpolated: boolean;
+      pairs: readonly (readonly [number, number])[];
+      fallback: number | null;
+    }
   /** Ranges of raw, both ends inside, with the text they mean. */
   | { kind: "words"; ranges: readonly { from: number; to: number; text: string }[]; fallback: string | null }
   /** A formula in X1; not evaluated by anything but the own parser. */
@@ -105,7 +117,15 @@ interface Placed {
   line: number;
 }
 
-export type CharacteristicType = "VALUE" | "CURVE" | "MAP" | "CUBOID" | "CUBE_4" | "CUBE_5" | "VAL_BLK" | "ASCII";
+export type CharacteristicType =
+  | "VALUE"
+  | "CURVE"
+  | "MAP"
+  | "CUBOID"
+  | "CUBE_4"
+  | "CUBE_5"
+  | "VAL_BLK"
+  | "ASCII";
 
 export interface Characteristic extends Placed {
   type: CharacteristicType;
