@@ -41,11 +41,18 @@ export function quantile(values: ArrayLike<number>, p: number): number {
   return below + (position - low) * (above - below);
 }
 
+/** Rounds of selection after which what is left is sorted, so that no made-up order takes quadratic time. */
+const MOST_ROUNDS = 100;
+
 /** The k-th smallest of the first `n` values, which are partly sorted in place around it (quickselect, Hoare 1961). */
 function select(values: Float64Array, n: number, k: number): number {
   let left = 0;
   let right = n - 1;
-  while (left < right) {
+  for (let round = 0; left < right; round++) {
+    if (round === MOST_ROUNDS) {
+      values.subarray(left, right + 1).sort();
+      break;
+    }
     const pivot = values[(left + right) >>> 1];
     let i = left;
     let j = right;

@@ -17,8 +17,9 @@ export interface ScanForm {
 
 /** Where the numbers go. */
 export interface RowTarget {
-  /** One array a column; the next row is written at place `row` of each and stays unless `endRow` moves `row`. */
-  columns: Float64Array[];
+  /** Column after column, `stride` places each; the next row is written at place `row` of each and stays unless `endRow` moves `row`. */
+  cells: Float64Array;
+  stride: number;
   row: number;
   /** Value of a cell that is no plain number, NaN = missing. */
   oddCell: (column: number, text: string) => number;
@@ -113,13 +114,13 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
     if (at <= lastHeadLine || text.trim() === "") return end;
     Object.assign(current, { bytes, from, end });
     const cells = split(text);
-    const { columns, row } = target;
+    const { cells: into, stride, row } = target;
     let filled = 0;
     for (let c = 0; c < cells.length; c++) {
       if (cells[c].trim() !== "") filled = c + 1;
-      if (c < width) columns[c][row] = target.oddCell(c, cells[c]);
+      if (c < width) into[c * stride + row] = target.oddCell(c, cells[c]);
     }
-    for (let c = cells.length; c < width; c++) columns[c][row] = Number.NaN;
+    for (let c = cells.length; c < width; c++) into[c * stride + row] = Number.NaN;
     target.endRow(at, cells.length, filled);
     return end;
   }
@@ -127,7 +128,7 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
   /** Reads whole lines of [from, to), the last byte of which is a line end; gives the position up to which it came. */
   function scan(bytes: Uint8Array, from: number, to: number, final: boolean): number {
     // The engine keeps locals of a hot loop in registers, but reads what a closure holds again and again.
-    const [cellEnd, rowEnd, point, tab, cells, asText] = [
+    const [cellEnd, rowEnd, point, tab, columns, asText] = [
       delimiter,
       lineEnd,
       decimal,
@@ -143,7 +144,8 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
         if (i === start) return start;
         continue;
       }
-      const { columns, row } = target;
+      const { cells, stride } = target;
+      let at = target.row;
       let column = 0;
       let filled = 0;
       for (; ; column++) {
@@ -198,18 +200,19 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
             const text = decode(bytes.subarray(cellStart, textEnd));
             if (text.trim() !== "") {
               filled = column + 1;
-              if (column < cells) value = target.oddCell(column, text);
+              if (column < columns) value = target.oddCell(column, text);
             }
           }
         }
-        if (column < cells) columns[column][row] = value;
+        if (column < columns) cells[at] = value;
+        at += stride;
         i++;
         if (c === rowEnd) break;
       }
       line++;
       const found = column + 1;
       if (filled === 0 && (found === 1 || blankDelimiter)) continue;
-      for (let k = found; k < cells; k++) columns[k][row] = Number.NaN;
+      for (let k = found; k < columns; k++, at += stride) cells[at] = Number.NaN;
       current.bytes = bytes;
       current.from = start;
       current.end = i;

@@ -179,7 +179,8 @@ describe("blocks that all claim the same eight megabytes as their links", () => 
     const bytes = claiming(id);
     const began = performance.now();
     expect(refused(bytes)).toBe(outcome);
-    expect(performance.now() - began).toBeLessThan(2000);
+    // No measure of speed: work that grows with the claim would take minutes.
+    expect(performance.now() - began).toBeLessThan(20_000);
   });
 });
 

@@ -76,16 +76,17 @@ function scan(bytes: Uint8Array, lengths: readonly number[], changes: Partial<Sc
     ...changes,
   };
   const out: Scanned = { values: [], lines: [], texts: [] };
-  const columns = Array.from({ length: form.width }, () => new Float64Array(1));
+  const cells = new Float64Array(form.width);
   const decoder = new TextDecoder();
   const scanner = createRowScanner(
     form,
     {
-      columns,
+      cells,
+      stride: 1,
       row: 0,
       oddCell: (_, text) => parseNumber(text, form.decimal) ?? Number.NaN,
       endRow: (line) => {
-        out.values.push(columns.map((column) => column[0]));
+        out.values.push([...cells]);
         out.lines.push(line);
         out.texts.push(scanner.texts());
       },
@@ -140,7 +141,7 @@ describe("row scanner", () => {
     const piece = new Uint8Array(1 << 20).fill(0x31);
     const scanner = createRowScanner(
       { delimiter: ",", decimal: ".", width: 1, lineEnd: "\n", lastHeadLine: 0, textColumn: -1 },
-      { columns: [new Float64Array(1)], row: 0, oddCell: () => Number.NaN, endRow: () => undefined },
+      { cells: new Float64Array(1), stride: 1, row: 0, oddCell: () => Number.NaN, endRow: () => undefined },
       () => "",
     );
     expect(() => {
