@@ -40,7 +40,7 @@ module.exports = {
     rule(
       "pure-lib-stays-pure",
       { path: PURE },
-      { path: "^(app|components|db|storage|lib)/", pathNot: `${PURE}|^lib/errors` },
+      { path: "^(app|components|db|storage|lib)/", pathNot: `${PURE}|^lib/(errors|canonical-json)` },
     ),
     rule(
       "pure-lib-no-framework",

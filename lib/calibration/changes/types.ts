@@ -1,4 +1,17 @@
-import type { ByteRange, PhysicalValue, ReadAxis, ReadCharacteristic } from "@/lib/calibration/values/types";
+import type { CalibrationImage } from "@/lib/calibration/image/types";
+import type {
+  ByteRange,
+  ImageReading,
+  PhysicalValue,
+  ReadAxis,
+  ReadCharacteristic,
+} from "@/lib/calibration/values/types";
+
+/** One revision: its image, and what a description tells of it where there is one. */
+export interface RevisionContent {
+  reading: ImageReading | null;
+  image: Pick<CalibrationImage, "segments">;
+}
 
 /** Where a value lies towards the description's limits; outside soft limits but inside the extended ones is "extended". */
 export type LimitState = "ok" | "extended" | "below" | "above";
@@ -23,7 +36,7 @@ export interface CharacteristicChange {
   decimals: number;
   functions: string[];
   groups: string[];
-  /** added / removed: only one of the two descriptions knows it. moved: other address, same content. */
+  /** added / removed: only one of the two descriptions knows it. The same content at another address is no change (a problem tells it). */
   kind: "changed" | "added" | "removed";
   cells: number;
   /** Cells whose raw value differs (logical place by place where the shapes are alike). */
@@ -51,7 +64,7 @@ export interface UncoveredRange extends ByteRange {
   /** Memory segment of the description that holds it, or null. */
   segment: string | null;
   programType: string | null;
-  /** Hex of up to 16 bytes from the range's start on, with up to 8 bytes in front and behind. */
+  /** Hex digits, two a byte, "--" where the image has none: 8 bytes in front, up to 16 of the range and, if that is all of it, 8 behind. */
   before: string | null;
   after: string | null;
   contextAddress: number;

@@ -44,6 +44,9 @@ function sharedOf(context: ReadingContext, axis: AxisDescription) {
   }
 }
 
+/** Raw point of a cell that no input leads to. */
+const NONE = "none";
+
 /** Reads one axis of a placed record. Throws NotReadable. */
 export function readAxis(
   context: ReadingContext,
@@ -91,12 +94,11 @@ export function readAxis(
     }
     case "RES_AXIS": {
       const shared = sharedOf(context, axis);
-      const points = pointsOfRescale(shared, count).map((raw) =>
-        raw === null ? null : converter.toPhysical(raw, limits),
-      );
+      const raw = pointsOfRescale(shared, count);
+      const points = raw.map((value) => (value === null ? null : converter.toPhysical(value, limits)));
       const quantity =
         axis.inputQuantity ?? context.module.axisPoints.get(shared.read.name)?.inputQuantity ?? null;
-      return { ...result(shared.raw, points), inputQuantity: quantity };
+      return { ...result([], points), raw: raw.map((value) => value ?? NONE), inputQuantity: quantity };
     }
     case "CURVE_AXIS": {
       if (axis.reference === null) throw new NotReadable("it names no curve for its axis");
@@ -110,7 +112,7 @@ export function readAxis(
         unit: input.unit,
         decimals: input.decimals,
         points: pointsOfCurve(curve.values, input.points, count),
-        raw: curve.raw,
+        raw: pointsOfCurve(curve.values, input.raw, count).map((value) => value ?? NONE),
       };
     }
   }

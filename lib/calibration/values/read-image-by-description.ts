@@ -63,7 +63,7 @@ function contextOf(module: DescriptionModule, memory: ImageMemory, cellsLeft: nu
 }
 
 function readModule(context: ReadingContext, names: Set<string>, reading: ImageReading): void {
-  const attempt = (name: string, read: () => ReadCharacteristic) => {
+  const attempt = (name: string, address: number | null, read: () => ReadCharacteristic) => {
     try {
       if (names.has(name))
         throw new NotReadable("another module or block of the description has this name too");
@@ -71,12 +71,15 @@ function readModule(context: ReadingContext, names: Set<string>, reading: ImageR
       reading.characteristics.push(read());
     } catch (error) {
       if (!(error instanceof NotReadable)) throw error;
-      reading.notRead.push({ name, reason: `${error.message}.` });
+      reading.notRead.push({ name, reason: `${error.message}.`, address });
     }
   };
-  for (const name of context.module.axisPoints.keys()) attempt(name, () => sharedAxis(context, name).read);
+  for (const { name, address } of context.module.axisPoints.values()) {
+    attempt(name, address, () => sharedAxis(context, name).read);
+  }
   for (const wanted of context.module.characteristics.values()) {
-    attempt(wanted.name, () => readCharacteristic(context, wanted));
+    const address = wanted.derived?.kind === "virtual" ? null : wanted.address;
+    attempt(wanted.name, address, () => readCharacteristic(context, wanted));
   }
 }
 

@@ -13,7 +13,7 @@ export interface ReadAxis {
   decimals: number;
   /** Physical points in logical order. */
   points: PhysicalValue[];
-  /** Raw points, to tell a change from a rounding; RES_AXIS: its pairs, CURVE_AXIS: the curve's values. Text as in `raw` of cells. */
+  /** One a point, to tell a change from a rounding; text as in `raw` of cells, "none" where nothing leads to a cell. */
   raw: (number | string)[];
 }
 
@@ -59,7 +59,8 @@ export interface ImageReading {
   reading: 1;
   /** Sorted by name. */
   characteristics: ReadCharacteristic[];
-  notRead: { name: string; reason: string }[];
+  /** `address`: where it would begin, null where it has no memory of its own. */
+  notRead: { name: string; reason: string; address: number | null }[];
   memorySegments: { name: string; programType: string; address: number; length: number }[];
   /** Whether description and image belong together by their EPK; "none" where the description has none. */
   epk: { state: "match" | "mismatch" | "none"; expected: string | null; found: string | null };

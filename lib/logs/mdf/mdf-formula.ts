@@ -7,6 +7,14 @@ const FUNCTIONS: Readonly<Record<string, (...values: number[]) => number>> = {
   sin: Math.sin,
   cos: Math.cos,
   tan: Math.tan,
+  asin: Math.asin,
+  acos: Math.acos,
+  atan: Math.atan,
+  sinh: Math.sinh,
+  cosh: Math.cosh,
+  tanh: Math.tanh,
+  ln: Math.log,
+  log10: Math.log10,
   pow: (base, exponent) => base ** exponent,
 };
 const TOKEN = /\s*(?:(\d+\.?\d*(?:e[+-]?\d+)?|\.\d+(?:e[+-]?\d+)?)|([a-z]\w*)|([-+*/(),]))/iy;
@@ -15,8 +23,9 @@ const DEEPEST = 50;
 const MOST_TOKENS = 128;
 
 /**
- * Compiles a conversion formula of one variable, X or X1: numbers, + − * /, brackets, abs, sqrt, exp, sin, cos, tan (radians) and
- * pow. Null for anything else: what a caret or a logarithm means differs between writers, so those are not guessed.
+ * Compiles a conversion formula of one variable, X or X1: numbers, + − * /, brackets, abs, sqrt, exp, ln, log10, pow and
+ * the circular and hyperbolic functions (radians). Null for anything else: what a caret or a bare "log" means differs between
+ * writers, so those are not guessed.
  */
 export function compileFormula(text: string): Evaluate | null {
   const tokens: string[] = [];

@@ -41,7 +41,7 @@ export function converterOf(conversion: Conversion): Converter {
     stepped: boolean,
     problem: string | null = null,
   ): Converter => ({
-    toPhysical,
+    toPhysical: withStates(conversion.status ?? [], toPhysical),
     unit: conversion.unit.trim(),
     decimals: conversion.decimals,
     stepped,
@@ -72,6 +72,16 @@ export function converterOf(conversion: Conversion): Converter {
     case "unknown":
       return of(() => null, false, conversion.reason);
   }
+}
+
+/** Raw numbers that mean a state ("sensor defect") and no number come first. */
+function withStates(
+  states: NonNullable<Conversion["status"]>,
+  toPhysical: Converter["toPhysical"],
+): Converter["toPhysical"] {
+  if (states.length === 0) return toPhysical;
+  const stateOf = words(states, null);
+  return (raw, limits) => stateOf(raw) ?? toPhysical(raw, limits);
 }
 
 function lookUp(pairs: readonly (readonly [number, number])[], fallback: number | null) {
