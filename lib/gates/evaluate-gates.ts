@@ -1,3 +1,8 @@
+import { coverageGate } from "@/lib/gates/calibration/coverage-gate";
+import { declarationGate } from "@/lib/gates/calibration/declaration-gate";
+import { integrityGate } from "@/lib/gates/calibration/integrity-gate";
+import { stepLimitGate } from "@/lib/gates/calibration/step-limit-gate";
+import { touchedGate } from "@/lib/gates/calibration/touched-gate";
 import { channelLimitGate } from "@/lib/gates/channel-gates";
 import { conditionsGate } from "@/lib/gates/condition-gates";
 import { gainGate, noLossGate, sprintGate } from "@/lib/gates/delta-gates";
@@ -31,5 +36,15 @@ function evaluate(gate: Gate, evidence: GateEvidence): GateResult {
       return channelLimitGate(gate, evidence);
     case "smooth_curve":
       return smoothCurveGate(gate, evidence);
+    case "touched":
+      return touchedGate(gate, evidence);
+    case "step_limit":
+      return stepLimitGate(gate, evidence);
+    case "coverage":
+      return coverageGate(gate, evidence);
+    case "integrity":
+      return integrityGate(gate, evidence);
+    case "declaration":
+      return declarationGate(gate, evidence);
   }
 }

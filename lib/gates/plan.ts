@@ -105,7 +105,12 @@ export type Gate =
   | NoLossGate
   | SprintGate
   | ChannelLimitGate
-  | SmoothCurveGate;
+  | SmoothCurveGate
+  | TouchedGate
+  | StepLimitGate
+  | CoverageGate
+  | IntegrityGate
+  | DeclarationGate;
 
 /** A versioned plan: the version is kept by whoever stores it. */
 export interface GatePlan {

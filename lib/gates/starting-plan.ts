@@ -29,6 +29,25 @@ function startingLimits({ engine, aspiration }: EngineKind): ChannelLimitGate[] 
   ];
 }
 
+/** Gates on what changed in the calibration. The step limits are off; their figures are common practice, no source. */
+const CALIBRATION: Gate[] = [
+  { id: "touched", kind: "touched", level: "must", allowed: null, uncovered: false },
+  {
+    ...{
+      id: "step_limit",
+      kind: "step_limit",
+      level: "off",
+      scope: [],
+      measure: "share",
+      against: "standing",
+    },
+    ...{ maxNeighbourStep: 50, movedAtMost: 20 },
+  },
+  { id: "coverage", kind: "coverage", level: "should", atLeastPct: 80 },
+  { id: "integrity", kind: "integrity", level: "must" },
+  { id: "declaration", kind: "declaration", level: "must" },
+];
+
 /** The plan a new programme starts with; a lead edits it. A gain is not asked until a lead asks for it. */
 export function startingPlan(
   engine: EngineKind = { engine: "spark ignition", aspiration: "turbo" },
@@ -65,11 +84,15 @@ export function startingPlan(
       { id: "sprint.100-200", kind: "sprint", level: "should", time: "100-200", notSlowerByS: 0.1 },
       ...startingLimits(engine),
       { id: "smooth", kind: "smooth_curve", level: "must", withinPct: 2 },
+      ...CALIBRATION,
     ],
   };
 }
 
-const OFFERED: ReadonlySet<Gate["kind"]> = new Set(["conditions", "channel_limit", "smooth_curve"]);
+const OFFERED: ReadonlySet<string> = new Set([
+  ...["conditions", "channel_limit", "smooth_curve"],
+  ...CALIBRATION.map(({ kind }) => kind),
+]);
 
 /** Gates that can be asked for by now and that an older plan does not name, switched off. */
 export function gatesNotIn(plan: GatePlan, engine?: EngineKind): Gate[] {

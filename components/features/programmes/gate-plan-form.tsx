@@ -5,7 +5,8 @@ import { Plus } from "lucide-react";
 import { useState } from "react";
 import { FormProvider, useFieldArray, useForm } from "react-hook-form";
 import type { z } from "zod";
-import { GateRow, type PlanFields } from "@/components/features/programmes/gate-row";
+import type { PlanFields } from "@/components/features/programmes/gate-field-words";
+import { GateRow } from "@/components/features/programmes/gate-row";
 import { GATE_GROUPS, SPRINT_TIMES } from "@/components/features/programmes/gate-words";
 import { Button } from "@/components/ui/action/button";
 import { Select } from "@/components/ui/form/select";
@@ -29,15 +30,20 @@ export interface GatePlanFormProps {
   }) => Promise<{ ok: boolean; message?: string; value?: { version: number } }>;
 }
 
+/** Kinds that a plan may hold several of, so that one can be taken out again. */
+const REPEATED: ReadonlySet<Gate["kind"]> = new Set(["gain", "sprint", "step_limit"]);
+
 type Fields = z.input<typeof gatePlanSchema>;
 
-/** Numbers as they are typed. */
+/** What a gate holds as it is typed: numbers as texts, names one a line. */
 function typed(gate: Gate): PlanFields["gates"][number] {
-  const entries = Object.entries(gate).map(([name, value]) => [
-    name,
-    typeof value === "number" ? String(value) : (value ?? ""),
-  ]);
-  return Object.fromEntries(entries);
+  const text = (value: unknown) =>
+    Array.isArray(value) ? value.join("\n") : typeof value === "number" ? String(value) : (value ?? "");
+  const entries = Object.entries(gate).map(([name, value]) => [name, text(value)]);
+  if (gate.kind !== "touched") return Object.fromEntries(entries);
+  const { functions = [], characteristics = [] } = gate.allowed ?? {};
+  const allowed = { functions: text(functions), characteristics: text(characteristics) };
+  return { ...Object.fromEntries(entries), allowed };
 }
 
 /** An id that the plan does not have yet: "gain.2", "sprint.0-100". */
@@ -74,6 +80,11 @@ export function GatePlanForm({
       ...{ id: freshId("gain", gates), kind: "gain", level: "should" },
       ...{ fromRpm: "2500", toRpm: "4500", atLeastPct: "1" },
     });
+  const addStepLimit = () =>
+    append({
+      ...{ id: freshId("step_limit", gates), kind: "step_limit", level: "should", scope: "" },
+      ...{ measure: "unit", against: "standing", maxNeighbourStep: "", movedAtMost: "" },
+    });
   const addSprint = () => {
     const base = `sprint.${time.replaceAll(/[^a-z0-9.-]+/g, "-")}`;
     append({ id: freshId(base, gates), kind: "sprint", level: "should", time, notSlowerByS: "0.1" });
@@ -104,9 +115,7 @@ export function GatePlanForm({
                       key={gate.key}
                       gate={gate}
                       index={index}
-                      onRemove={
-                        gate.kind === "gain" || gate.kind === "sprint" ? () => remove(index) : undefined
-                      }
+                      onRemove={REPEATED.has(gate.kind) ? () => remove(index) : undefined}
                     />
                   ),
               )}
@@ -114,6 +123,11 @@ export function GatePlanForm({
             {group.kinds.includes("gain") && (
               <Button size="compact" icon={<Plus />} onClick={addGain}>
                 Ask for a gain in another region
+              </Button>
+            )}
+            {group.kinds.includes("step_limit") && (
+              <Button size="compact" icon={<Plus />} onClick={addStepLimit}>
+                Limit the steps of other tables
               </Button>
             )}
             {group.kinds.includes("sprint") && (

@@ -1,4 +1,5 @@
 import { GATE_GROUPS, gateWords, LEVEL_WORDS } from "@/components/features/programmes/gate-words";
+import { extrasText } from "@/components/features/programmes/gate-words-calibration";
 import { Tag } from "@/components/ui/data/tag";
 import { SectionHeading } from "@/components/ui/layout/section-heading";
 import type { Gate, GatePlan } from "@/lib/gates/plan";
@@ -8,9 +9,11 @@ function numbersText(gate: Gate): string {
   return gateWords(gate)
     .numbers.flatMap(({ name, label, unit }) => {
       const value = values[name];
-      if (value === null) return gate.kind === "channel_limit" ? [] : `${label} open`;
+      if (value === null)
+        return gate.kind === "channel_limit" || gate.kind === "step_limit" ? [] : `${label} open`;
       return `${label} ${value}${unit ? `\u202f${unit}` : ""}`;
     })
+    .concat(extrasText(gate, gateWords(gate)))
     .join(", ");
 }
 

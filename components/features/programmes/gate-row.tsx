@@ -2,17 +2,13 @@
 
 import { Trash2 } from "lucide-react";
 import { useFormContext } from "react-hook-form";
+import { GateExtraFields } from "@/components/features/programmes/gate-extra-fields";
+import type { PlanFields } from "@/components/features/programmes/gate-field-words";
 import { gateWords, LEVEL_WORDS } from "@/components/features/programmes/gate-words";
 import { choices } from "@/components/features/programmes/sheet-words";
 import { NumberInput } from "@/components/ui/form/number-input";
 import { Select } from "@/components/ui/form/select";
 import type { Gate } from "@/lib/gates/plan";
-
-/** A plan as its form holds it: each gate a record of what is typed. */
-export interface PlanFields {
-  plan: 1;
-  gates: ({ id: string; level: string } & Record<string, unknown>)[];
-}
 
 interface GateRowProps {
   gate: Gate;
@@ -24,7 +20,8 @@ interface GateRowProps {
 /** One gate: how much it binds, and its numbers. */
 export function GateRow({ gate, index, onRemove }: GateRowProps) {
   const { register, formState } = useFormContext<PlanFields>();
-  const { title, note, numbers } = gateWords(gate);
+  const words = gateWords(gate);
+  const { title, note, numbers } = words;
   const errors = formState.errors.gates?.[index] as Record<string, { message?: string }> | undefined;
   return (
     <li className="grid gap-x-4 gap-y-2 border-line border-t py-3 first:border-t-0 md:grid-cols-[minmax(0,1fr)_8rem_22rem_2.75rem] md:items-start">
@@ -59,6 +56,7 @@ export function GateRow({ gate, index, onRemove }: GateRowProps) {
           <Trash2 aria-hidden size={18} />
         </button>
       )}
+      <GateExtraFields words={words} index={index} title={title} />
     </li>
   );
 }

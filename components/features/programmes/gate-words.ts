@@ -1,18 +1,7 @@
+import type { GateNumber, GateWords } from "@/components/features/programmes/gate-field-words";
+import { calibrationGateWords } from "@/components/features/programmes/gate-words-calibration";
 import type { Gate, LimitedQuantity } from "@/lib/gates/plan";
 import { QUANTITIES } from "@/lib/gates/quantities";
-
-/** One number of a gate as its form asks for it. */
-export interface GateNumber {
-  name: string;
-  label: string;
-  unit?: string;
-}
-
-export interface GateWords {
-  title: string;
-  note?: string;
-  numbers: GateNumber[];
-}
 
 /** Sprint times that the analysis knows, by their name in a result. */
 export const SPRINT_TIMES: { value: string; label: string }[] = [
@@ -118,6 +107,8 @@ export function gateWords(gate: Gate): GateWords {
         note: "No ripple or spike of the mean curve beyond this share of its local fit.",
         numbers: [{ name: "withinPct", label: "within", unit: "%" }],
       };
+    default:
+      return calibrationGateWords(gate);
   }
 }
 
@@ -133,6 +124,7 @@ export const GATE_GROUPS: { kinds: Gate["kind"][]; title: string }[] = [
   { kinds: ["gain", "no_loss"], title: "Gain and loss" },
   { kinds: ["sprint"], title: "Sprints" },
   { kinds: ["channel_limit", "smooth_curve"], title: "Engine at full load" },
+  { kinds: ["touched", "step_limit", "coverage", "integrity", "declaration"], title: "Calibration" },
 ];
 
 export const LEVEL_WORDS: Record<Gate["level"], string> = {

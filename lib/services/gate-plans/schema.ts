@@ -89,12 +89,62 @@ const channelLimit = z
 
 const smoothCurve = z.object({ id, level, kind: z.literal("smooth_curve"), withinPct: percent });
 
+const MOST_NAMES = 500;
+
+/** Names of characteristics and functions, as a list or as a text with blanks, commas or new lines between them. */
+const names = z.union([z.string().max(100_000), z.array(z.string().max(1100))]).transform((raw, context) => {
+  const list = typeof raw === "string" ? raw.split(/[\s,;]+/) : raw;
+  const once = [...new Set(list.filter((name) => name !== ""))];
+  if (once.length > MOST_NAMES)
+    context.addIssue({ code: "custom", message: `Name at most ${MOST_NAMES}; functions hold many.` });
+  return once;
+});
+
+const touched = z
+  .object({
+    ...{ id, level, kind: z.literal("touched"), uncovered: z.boolean() },
+    // Nothing named allows anything described, as null does.
+    allowed: z
+      .object({ functions: names, characteristics: names })
+      .nullable()
+      .transform((named) =>
+        named && named.functions.length + named.characteristics.length > 0 ? named : null,
+      ),
+  })
+  .refine((gate) => gate.level === "off" || gate.allowed !== null || !gate.uncovered, {
+    path: ["uncovered"],
+    message: "This allows every change. Name what may change, or set the gate to off.",
+  });
+
+const stepLimit = z
+  .object({
+    ...{ id, level, kind: z.literal("step_limit"), scope: names },
+    ...{ measure: z.enum(["share", "unit"]), against: z.enum(["parent", "standing"]) },
+    maxNeighbourStep: optionalNumber({ min: 0, max: 1e9 }),
+    movedAtMost: optionalNumber({ min: 0, max: 1e9 }),
+  })
+  .refine((gate) => gate.maxNeighbourStep !== null || gate.movedAtMost !== null, {
+    path: ["movedAtMost"],
+    message: "Give a largest step or a largest move.",
+  })
+  .refine((gate) => gate.measure === "share" || gate.scope.length > 0, {
+    path: ["scope"],
+    message: "Name the tables: a limit in their own unit means something else for each of the others.",
+  });
+
+const coverage = z.object({ id, level, kind: z.literal("coverage"), atLeastPct: percent });
+const integrity = z.object({ id, level, kind: z.literal("integrity") });
+const declaration = z.object({ id, level, kind: z.literal("declaration") });
+
+const road = [evidence, conditions, gain, noLoss, sprint, channelLimit, smoothCurve] as const;
+const calibration = [touched, stepLimit, coverage, integrity, declaration] as const;
+
 /** A whole plan. Takes what a form holds (texts) as well as a finished plan. */
 export const gatePlanSchema = z
   .object({
     plan: z.literal(1),
     gates: z
-      .array(z.union([evidence, conditions, gain, noLoss, sprint, channelLimit, smoothCurve]))
+      .array(z.union([...road, ...calibration]))
       .min(1, "A plan has at least one gate.")
       .max(60),
   })

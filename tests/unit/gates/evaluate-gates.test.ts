@@ -5,6 +5,7 @@ import type { Gate, GateState } from "@/lib/gates/plan";
 import { startingPlan } from "@/lib/gates/starting-plan";
 import { figure } from "@/lib/gates/verdict";
 import type { CampaignResult, DeltaResult } from "@/lib/measure/types";
+import { calibration } from "./calibration-sample";
 import { fullLoad } from "./full-load-sample";
 
 const RPM = Array.from({ length: 91 }, (_, k) => 1700 + 50 * k);
@@ -77,7 +78,7 @@ function evidence(changes: Partial<DeltaResult> = {}, over: Partial<GateEvidence
     delta: delta(changes),
   };
   const vehicle = { redlineRpm: 6500, engine: "spark ignition", aspiration: "turbo" } as const;
-  return { result, runs: list, ...vehicle, calibration: null, ...over };
+  return { result, runs: list, ...vehicle, calibration: calibration(), ...over };
 }
 
 const results = (e: GateEvidence) => new Map(evaluateGates(startingPlan(), e).map((r) => [r.id, r]));
@@ -103,7 +104,9 @@ describe("Starting plan", () => {
   });
 
   it("without a comparison everything is too little, nothing is met", () => {
-    const states = new Set([...results(evidence({}, { result: null })).values()].map((r) => r.state));
+    const states = new Set(
+      [...results(evidence({}, { result: null, calibration: null })).values()].map((r) => r.state),
+    );
     expect(states).toEqual(new Set(["too_little"]));
   });
 });
