@@ -1,6 +1,8 @@
 import { type DescriptionText, decodeDescription } from "@/lib/calibration/a2l/decode-description";
 import type { Findings, Place } from "@/lib/calibration/a2l/findings";
+import { NameTable } from "@/lib/calibration/a2l/name-table";
 import { NotClosed, scanToken, type TokenKind, type TokenState } from "@/lib/calibration/a2l/scan-token";
+import { tokenNumber } from "@/lib/calibration/a2l/token-number";
 import type { DescriptionFile } from "@/lib/calibration/a2l/types";
 import { FileRefusedError } from "@/lib/errors";
 
@@ -27,7 +29,8 @@ export class TokenSource {
   private file: OpenFile;
   private readonly open: OpenFile[];
   private readonly texts = new Map<string, DescriptionText>();
-  private readonly names = new Map<string, string>();
+  private readonly names = new NameTable();
+  private readonly makeText = () => this.text();
   private held = false;
   private inclusions = 0;
   private bytesOpened = 0;
@@ -90,11 +93,12 @@ export class TokenSource {
 
   /** The current token's text, one string for all tokens alike: names come again and again. */
   name(): string {
-    const text = this.text();
-    const known = this.names.get(text);
-    if (known !== undefined) return known;
-    this.names.set(text, text);
-    return text;
+    return this.names.find(this.file, this.makeText);
+  }
+
+  /** The current token as a number, NaN where it is none. */
+  number(): number {
+    return tokenNumber(this.file, this.makeText);
   }
 
   /** The current token cut to what fits into a sentence. */

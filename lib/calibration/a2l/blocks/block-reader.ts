@@ -1,7 +1,6 @@
 import { PASSED_BLOCKS, PASSED_KEYWORDS } from "@/lib/calibration/a2l/blocks/passed-keywords";
 import type { Findings, Place } from "@/lib/calibration/a2l/findings";
 import { passA2ml, wordIs } from "@/lib/calibration/a2l/scan-token";
-import { tokenNumber } from "@/lib/calibration/a2l/token-number";
 import type { TokenSource } from "@/lib/calibration/a2l/token-source";
 
 const KEYWORD = /^[A-Z][A-Z\d_]+$/;
@@ -153,7 +152,7 @@ export class BlockReader {
       this.lacks(what);
       return Number.NaN;
     }
-    const value = tokenNumber(this.source.state, () => this.source.text());
+    const value = this.source.number();
     if (Number.isNaN(value)) this.fault ??= `its ${what} "${this.source.shown()}" is no number`;
     return value;
   }
@@ -180,7 +179,7 @@ export class BlockReader {
   numbers(most: number): number[] {
     const values: number[] = [];
     while (values.length < most && this.source.next() === "word") {
-      const value = tokenNumber(this.source.state, () => this.source.text());
+      const value = this.source.number();
       if (Number.isNaN(value)) break;
       values.push(value);
       this.findings.keep(1, this.begun);

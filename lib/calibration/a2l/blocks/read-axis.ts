@@ -38,7 +38,8 @@ export function readAxis(reader: BlockReader): AxisDescription {
   const inputQuantity = reader.reference("input quantity", "NO_INPUT_QUANTITY");
   const conversion = reader.reference("axis conversion", "NO_COMPU_METHOD");
   const maxPoints = reader.whole("number of axis points");
-  const limits = { lowerLimit: reader.limit("lower limit"), upperLimit: reader.limit("upper limit") };
+  const lowerLimit = reader.limit("lower limit");
+  const upperLimit = reader.limit("upper limit");
   let reference: string | null = null;
   let fixedRaw: number[] | null = null;
   let byteOrder: ByteOrder | null = null;
@@ -84,7 +85,17 @@ export function readAxis(reader: BlockReader): AxisDescription {
     reader.fault ??= `its ${kind} does not name what it rests on`;
   reader.findings.keep(4, begun);
   return {
-    ...{ kind, inputQuantity, conversion, maxPoints, ...limits },
-    ...{ reference, fixedRaw, byteOrder, physUnit, format, line: begun.line },
+    kind,
+    inputQuantity,
+    conversion,
+    maxPoints,
+    lowerLimit,
+    upperLimit,
+    reference,
+    fixedRaw,
+    byteOrder,
+    physUnit,
+    format,
+    line: begun.line,
   };
 }
