@@ -11,6 +11,10 @@ export const JOB_CHANNEL = "twinpass_jobs";
 export const JOB_QUEUES = {
   "judge-run": { retryLimit: 4, retryDelay: 1, retryBackoff: true, expireInSeconds: 600 },
   "compute-comparison": { retryLimit: 4, retryDelay: 1, retryBackoff: true, expireInSeconds: 600 },
+  "read-description": { retryLimit: 4, retryDelay: 1, retryBackoff: true, expireInSeconds: 600 },
+  "read-image": { retryLimit: 4, retryDelay: 1, retryBackoff: true, expireInSeconds: 600 },
+  "compute-change-set": { retryLimit: 4, retryDelay: 1, retryBackoff: true, expireInSeconds: 600 },
+  "compute-coverage": { retryLimit: 4, retryDelay: 1, retryBackoff: true, expireInSeconds: 600 },
 } as const satisfies Record<string, Omit<PgBoss.Queue, "name">>;
 export type JobName = keyof typeof JOB_QUEUES;
 

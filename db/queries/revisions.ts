@@ -26,7 +26,7 @@ export async function lockRevision(
     .select()
     .from(revisions)
     .where(and(eq(revisions.workspaceId, workspaceId), eq(revisions.id, revisionId)))
-    .for("update");
+    .for("no key update");
   return row ?? null;
 }
 

@@ -12,11 +12,11 @@ import {
   unique,
   uuid,
 } from "drizzle-orm/pg-core";
+import type { RelevanceMark } from "@/lib/calibration/changes/relevance";
 import type { ChangeSet } from "@/lib/calibration/changes/types";
-import type { Coverage } from "@/lib/calibration/coverage/types";
-import type { RegionResult } from "@/lib/calibration/image/checksum-regions";
+import type { AxisLink, Coverage } from "@/lib/calibration/coverage/types";
+import type { ChecksumRegion, RegionResult } from "@/lib/calibration/image/checksum-regions";
 import type { ImageReading } from "@/lib/calibration/values/types";
-import type { AxisLink, ChecksumRegion, RelevanceMark } from "@/lib/services/calibration-settings/schema";
 import { blobs } from "./blobs";
 import { createdAt, idColumn } from "./column";
 import { descriptions } from "./descriptions";

@@ -13,7 +13,7 @@ import type { RunTraces } from "@/lib/measure/run/traces";
 import { toTimingSettings } from "@/lib/measure/sprint/sheet-timings";
 import type { CampaignRun, CampaignSettings, CampaignVehicle, RunResult } from "@/lib/measure/types";
 import { toCampaignVehicle } from "@/lib/measure/vehicle/vehicle-sheet";
-import { refreshComparisonsOf } from "@/lib/services/comparisons/refresh";
+import { refreshResultsOf } from "@/lib/services/comparisons/refresh";
 import { STANDARD_SETTINGS, toCampaignSettings } from "@/lib/services/comparisons/schema";
 import { readStoredLog } from "@/lib/services/runs/read-stored-log";
 
@@ -108,7 +108,7 @@ async function keep(
       traces,
     });
     await setRunState(tx, { ...job, state: result.usable ? "usable" : "refused" });
-    await refreshComparisonsOf(tx, { workspaceId }, { revisionId: run.revisionId });
+    await refreshResultsOf(tx, { workspaceId }, { revisionId: run.revisionId });
   });
 }
 

@@ -1,15 +1,19 @@
 import type { Queryable } from "@/db/client";
 import { selectOutdatedComparisons, selectOutdatedRuns } from "@/db/queries/analysis-versions";
+import { selectOutdatedPairs } from "@/db/queries/change-sets";
+import { selectOutdatedDescriptions } from "@/db/queries/descriptions";
+import { READER_VERSION } from "@/lib/calibration/reader-version";
 import { enqueueJob } from "@/lib/jobs/enqueue";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
+import { openPairs } from "@/lib/services/change-sets/refresh";
 
 /** Jobs that one sweep makes at most, so that a new version does not flood the queue; the next sweep goes on, newest first. */
 const MOST_A_SWEEP = 200;
 
 /**
- * Has everything that only an older analysis version computed computed anew, behind whatever people wait for. Old results and
- * verdicts stay as they are. What failed for good, e.g. because its log is gone, is left alone for a day. @returns how many jobs
- * were made, `most` at most
+ * Has everything that only an older analysis version or an older reader of calibrations computed computed anew, behind whatever people
+ * wait for. Old results and verdicts stay as they are. What failed for good, e.g. because its log is gone, is left alone for a day.
+ * @returns how many jobs were made, `most` at most of each of the two kinds
  */
 export async function renewOutdated(db: Queryable, most = MOST_A_SWEEP): Promise<number> {
   const version = { analysisVersion: ANALYSIS_VERSION };
@@ -18,5 +22,16 @@ export async function renewOutdated(db: Queryable, most = MOST_A_SWEEP): Promise
   for (const data of comparisons)
     await enqueueJob(db, { name: "compute-comparison", data }, { background: true });
   for (const data of runs) await enqueueJob(db, { name: "judge-run", data }, { background: true });
-  return runs.length + comparisons.length;
+  return runs.length + comparisons.length + (await renewReadings(db, most));
+}
+
+async function renewReadings(db: Queryable, most: number): Promise<number> {
+  const reader = { readerVersion: READER_VERSION };
+  const descriptions = await selectOutdatedDescriptions(db, { ...reader, most });
+  for (const data of descriptions)
+    await enqueueJob(db, { name: "read-description", data }, { background: true });
+  const pairs = await selectOutdatedPairs(db, { ...reader, most: most - descriptions.length });
+  for (const { workspaceId, ...pair } of pairs)
+    await db.transaction((tx) => openPairs(tx, { workspaceId }, [pair], { background: true }));
+  return descriptions.length + pairs.length;
 }

@@ -1,4 +1,8 @@
 import { env } from "@/lib/env";
+import { computeChangeSet, giveUpComparing } from "@/lib/jobs/calibration/compute-change-set";
+import { computeCoverage, giveUpCovering } from "@/lib/jobs/calibration/compute-coverage";
+import { readRevisionImage } from "@/lib/jobs/calibration/read-image";
+import { giveUpReadingDescription, readKeptDescription } from "@/lib/jobs/calibration/settle-description";
 import { computeComparison, giveUpComputing } from "@/lib/jobs/compute-comparison";
 import { giveUpJudging, judgeRun } from "@/lib/jobs/judge-run";
 import { startWorker } from "@/lib/jobs/start-worker";
@@ -18,6 +22,10 @@ async function main(): Promise<void> {
     handlers: {
       "judge-run": { run: judgeRun, giveUp: giveUpJudging },
       "compute-comparison": { run: computeComparison, giveUp: giveUpComputing },
+      "read-description": { run: readKeptDescription, giveUp: giveUpReadingDescription },
+      "read-image": { run: readRevisionImage },
+      "compute-change-set": { run: computeChangeSet, giveUp: giveUpComparing },
+      "compute-coverage": { run: computeCoverage, giveUp: giveUpCovering },
     },
     sendMail: sendDueMail,
     sweep: async (system) => {

@@ -32,6 +32,11 @@ export const RULES = {
   "programme.share": { row: "P04", doing: "share a programme", cells: { lead: "allow", admin: "allow" } },
   "vehicle.version": { row: "H01", doing: "change the vehicle sheet", cells: staff },
   "gate_plan.version": { row: "G01", doing: "change the gate plan", cells: { lead: "allow" } },
+  "relevance_marks.version": {
+    row: "G03",
+    doing: "mark emission- and safety-relevant functions",
+    cells: { lead: "allow" },
+  },
   "gate.waive": { row: "G02", doing: "waive a gate of this revision", cells: { lead: "not-author" } },
   "revision.view": { row: "V01", doing: "see this revision", cells: everybody },
   "revision.download": { row: "V02", doing: "download images", cells: staff },
@@ -45,6 +50,19 @@ export const RULES = {
   "revision.compare_images": { row: "V11", doing: "compare images", cells: { reader: "granted", ...staff } },
   "revision.ask": { row: "V12", doing: "ask for a decision", cells: { tester: "allow", calibrator: "own" } },
   "revision.adopt": { row: "V13", doing: "adopt an image as found", cells: { lead: "allow" } },
+  "revision.describe": {
+    row: "V15",
+    doing: "give this revision a description",
+    cells: { calibrator: "own" },
+  },
+  "change_set.ask": { row: "V16", doing: "have changes worked out", cells: staff },
+  "change_set.look_at": { row: "V17", doing: "mark changes as looked at", cells: staff },
+  "values.export": { row: "V18", doing: "download values", cells: staff },
+  "checksum_regions.version": {
+    row: "V19",
+    doing: "declare checksum regions",
+    cells: { calibrator: "allow", lead: "allow" },
+  },
   "revision.bar": { row: "V14", doing: "bar a revision", cells: { lead: "allow" } },
   "road_day.edit": {
     row: "O01",
@@ -64,6 +82,11 @@ export const RULES = {
     doing: "choose the columns of a log",
     cells: { tester: "allow", calibrator: "allow" },
   },
+  "axis_links.version": {
+    row: "K06",
+    doing: "link axes to channels",
+    cells: { tester: "allow", calibrator: "allow" },
+  },
   "comparison.settings": { row: "N08", doing: "set analysis settings", cells: staff },
   "comparison.view": { row: "C01", doing: "see this comparison", cells: { reader: "granted", ...staff } },
   "comparison.export": {
@@ -79,6 +102,7 @@ export const RULES = {
     doing: "turn down or hold this revision",
     cells: { lead: "not-author" },
   },
+  "decision.agree": { row: "D10", doing: "agree as second lead", cells: { lead: "not-author" } },
   "decision.roll_back": { row: "D05", doing: "roll back", cells: { lead: "allow" } },
   "ledger.view": { row: "T01", doing: "read the ledger", cells: { lead: "allow", admin: "allow" } },
   "history.view": { row: "T02", doing: "see this history", cells: { ...staff, admin: "allow" } },

@@ -1,4 +1,7 @@
 import { createHash } from "node:crypto";
+import type { Queryable } from "@/db/client";
+import { lockDigest } from "@/db/queries/sweep";
+import { insertBlob } from "@/db/queries/uploads";
 import { UnavailableError } from "@/lib/errors";
 import { logger } from "@/lib/logger";
 import type { Ctx } from "@/lib/services/ctx";
@@ -44,4 +47,38 @@ export async function readBlob(where: Where, sha256: string): Promise<Uint8Array
 export async function openBlob(where: Where, sha256: string): Promise<StoredBytes> {
   for await (const _ of streamBlob(where, sha256));
   return await where.store.get(blobKey(where.workspaceId, sha256));
+}
+
+/**
+ * Puts bytes that the product made under their fingerprint, before any row names them. May be repeated.
+ * @throws OutOfSpaceError; UnavailableError
+ */
+export async function storeBlob(
+  where: Where,
+  bytes: Uint8Array,
+): Promise<{ sha256: string; sizeBytes: number }> {
+  const sha256 = createHash("sha256").update(bytes).digest("hex");
+  const declared = { sizeBytes: bytes.length, sha256 };
+  await where.store.create(blobKey(where.workspaceId, sha256), piece(bytes), declared);
+  return { sha256, sizeBytes: bytes.length };
+}
+
+async function* piece(bytes: Uint8Array): AsyncGenerator<Uint8Array> {
+  yield bytes;
+}
+
+/**
+ * The row that says that stored bytes are kept, in the caller's transaction. The digest is locked against the sweep and the object
+ * looked at once more, so that the row never names bytes that were just cleared.
+ * @throws NotFoundError when the bytes are gone
+ */
+export async function keepBlob(
+  tx: Queryable,
+  where: Where,
+  { sha256, sizeBytes }: { sha256: string; sizeBytes: number },
+): Promise<void> {
+  const { workspaceId } = where;
+  await lockDigest(tx, { workspaceId, sha256 });
+  await where.store.stat(blobKey(workspaceId, sha256));
+  await insertBlob(tx, { workspaceId, sha256, sizeBytes });
 }

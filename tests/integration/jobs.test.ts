@@ -6,6 +6,7 @@ import { enqueueJob, type Job } from "@/lib/jobs/enqueue";
 import { type Handlers, startWorker } from "@/lib/jobs/start-worker";
 import type { ObjectStore } from "@/storage/port";
 import { type TestDatabase, test } from "@/tests/support/database";
+import { IDLE_HANDLERS } from "@/tests/support/idle-handlers";
 import { hasPendingJob } from "@/tests/support/pending-job";
 
 const STORE = {} as ObjectStore;
@@ -19,6 +20,7 @@ function noting(): { handlers: Handlers; done: string[]; givenUp: string[] } {
   const done: string[] = [];
   const givenUp: string[] = [];
   const handlers: Handlers = {
+    ...IDLE_HANDLERS,
     "judge-run": {
       run: async (_system, { runId }) => {
         done.push(runId);

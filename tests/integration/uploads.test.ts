@@ -12,7 +12,7 @@ import { openUpload } from "@/lib/services/uploads/begin";
 import { cancelUpload } from "@/lib/services/uploads/cancel";
 import { getUpload } from "@/lib/services/uploads/load";
 import { LARGEST_BYTES } from "@/lib/services/uploads/schema";
-import { sealUpload, useSealedUpload } from "@/lib/services/uploads/seal";
+import { sealUpload, spendSealedUpload } from "@/lib/services/uploads/seal";
 import { PART_BYTES } from "@/storage/port";
 import { test } from "@/tests/support/database";
 import { createMember, createProgrammeRow, createWorkspaceRow } from "@/tests/support/factories";
@@ -43,7 +43,7 @@ describe("sending a file in parts", () => {
         uploadId: await uploadBytes(ctx, "log", "a.csv", bytes),
         purpose: "log",
       });
-      await withTransaction(ctx, (inner, c) => useSealedUpload(inner, c, sealed));
+      await withTransaction(ctx, (inner, c) => spendSealedUpload(inner, c, sealed));
       expect(sealed).toMatchObject({ sizeBytes: size, sha256: sha256Of(bytes), fileName: "a.csv" });
       expect(Buffer.compare(await readBlob(ctx, sealed.sha256), bytes)).toBe(0);
     });
@@ -170,7 +170,7 @@ describe("who may send what", () => {
       return await sealUpload(ctx, { uploadId, purpose: "log" });
     };
     const use = (sealed: Awaited<ReturnType<typeof send>>) =>
-      withTransaction(ctx, (inner, c) => useSealedUpload(inner, c, sealed));
+      withTransaction(ctx, (inner, c) => spendSealedUpload(inner, c, sealed));
     const used = await send();
     await use(used);
     await expect(use(used)).rejects.toMatchObject({ code: "upload_used" });

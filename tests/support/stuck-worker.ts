@@ -1,5 +1,6 @@
 import { startWorker } from "@/lib/jobs/start-worker";
 import type { ObjectStore } from "@/storage/port";
+import { IDLE_HANDLERS } from "@/tests/support/idle-handlers";
 
 // A worker in a process of its own that takes a job, says so, and never finishes it: to be killed by a test.
 const stuck = {
@@ -12,7 +13,7 @@ const stuck = {
 await startWorker({
   databaseUrl: process.argv[2] ?? "",
   store: {} as ObjectStore,
-  handlers: { "judge-run": stuck, "compute-comparison": stuck },
+  handlers: { ...IDLE_HANDLERS, "judge-run": stuck, "compute-comparison": stuck },
   sendMail: null,
   sweep: null,
 });

@@ -13,7 +13,7 @@ async function* chunksOf(bytes: Uint8Array): AsyncGenerator<Uint8Array> {
 /** Sends bytes as the browser does: declaration, then parts in order. @returns the upload's id */
 export async function uploadBytes(
   ctx: Ctx,
-  purpose: "image" | "log",
+  purpose: "image" | "log" | "description",
   fileName: string,
   bytes: Uint8Array,
   sha256 = sha256Of(bytes),

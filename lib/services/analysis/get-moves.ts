@@ -40,7 +40,7 @@ function gateMoves(
 ): GateMove[] | null {
   if (!plan) return null;
   const judge = (result: CampaignResult) =>
-    evaluateGates(plan.plan, gateEvidence({ current, shown: { result } }, sheet.figures));
+    evaluateGates(plan.plan, gateEvidence({ current, shown: { result } }, sheet.figures, null));
   const now = new Map(judge(after).map((gate) => [gate.id, gate]));
   return judge(before).flatMap(({ id, title, state }) => {
     const found = now.get(id);

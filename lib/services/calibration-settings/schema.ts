@@ -1,8 +1,7 @@
 import { z } from "zod";
+import type { RelevanceMark } from "@/lib/calibration/changes/relevance";
 import type { AxisLink } from "@/lib/calibration/coverage/types";
 import type { ChecksumRegion } from "@/lib/calibration/image/checksum-regions";
-
-export type { AxisLink, ChecksumRegion };
 
 const name = z.string().trim().min(1, "Give it a name.").max(200, "A name has at most 200 characters.");
 const address = z.int().min(0).max(0xffffffff);
@@ -14,8 +13,7 @@ export const relevanceMarkSchema = z.strictObject({
   name,
   relevance: z.enum(["emission", "safety"]),
   note: z.string().trim().max(500, "A note has at most 500 characters."),
-});
-export type RelevanceMark = z.infer<typeof relevanceMarkSchema>;
+}) satisfies z.ZodType<RelevanceMark>;
 
 /** Which channel of the logs moves along an axis. */
 export const axisLinkSchema = z.strictObject({

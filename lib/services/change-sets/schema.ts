@@ -1,9 +1,9 @@
 import { z } from "zod";
+import type { RelevanceMark } from "@/lib/calibration/changes/relevance";
 import type { ChangeSet } from "@/lib/calibration/changes/types";
 import type { AxisLink, Coverage } from "@/lib/calibration/coverage/types";
 import type { RegionResult } from "@/lib/calibration/image/checksum-regions";
 import type { ImageReading } from "@/lib/calibration/values/types";
-import type { RelevanceMark } from "@/lib/services/calibration-settings/schema";
 import type { DescriptionSummary } from "@/lib/services/descriptions/schema";
 
 /** A description as pages show it. */
@@ -20,6 +20,7 @@ export interface ShownDescription {
 export interface ShownQuantity {
   /** Input quantity of the description, or `NAME/x` for an axis without one. */
   quantity: string;
+  /** What it is in words, as far as its name says; empty where that is not known. */
   text: string;
   unit: string;
   /** The link in use; null where none is known. `by` says whether a person chose it. */
@@ -48,8 +49,11 @@ export interface RevisionChangesView {
   changeSetId: string | null;
   changes: ChangeSet | null;
   coverage: {
-    /** ready: for what counts now. computing: `result` may hold the one before. no_description: axes are not known. */
-    state: "ready" | "computing" | "failed" | "no_runs" | "no_description";
+    /**
+     * ready: for what counts now. computing: `result` may hold the one before. no_description: axes are not known. not_asked: nobody
+     * has had it worked out for what counts now; askForChangeSet does.
+     */
+    state: "ready" | "computing" | "failed" | "no_runs" | "no_description" | "not_asked";
     failure: string | null;
     result: Coverage | null;
     /** `result` belongs to earlier runs or links. */

@@ -10,6 +10,7 @@ import type { GateResult } from "@/lib/gates/plan";
 import { type ComparisonStanding, comparisonStanding } from "@/lib/services/comparisons/load";
 import { STANDARD_SHA256 } from "@/lib/services/comparisons/standard-digest";
 import { authorise, type Ctx } from "@/lib/services/ctx";
+import { type CalibrationDesk, calibrationDesk } from "@/lib/services/gates/calibration";
 import { gateEvidence } from "@/lib/services/gates/evidence";
 
 /** How a revision stands towards the gates of its plan. */
@@ -25,10 +26,21 @@ export interface GateStatus {
 /** The same with the comparison that it rests on. */
 export interface GateDesk extends Omit<GateStatus, "comparisonId"> {
   comparison: ComparisonStanding | null;
+  /** Null where nothing stands, or where no gate is asked any more. */
+  calibration: CalibrationDesk | null;
 }
 
 /** States in which gates are asked; a decision froze those of the others. */
 const ASKED = new Set<RevisionRow["state"]>(["draft", "validating", "in_review"]);
+
+/** Gates that rest on the images and not on the comparison. */
+const OF_CALIBRATION = new Set<GateResult["kind"]>([
+  "touched",
+  "step_limit",
+  "coverage",
+  "integrity",
+  "declaration",
+]);
 
 function asStale(gate: GateResult, moved: readonly string[]): GateResult {
   return {
@@ -58,7 +70,16 @@ export async function gateDesk(
   db: Queryable,
   args: {
     workspaceId: string;
-    revision: Pick<RevisionRow, "id" | "programmeId" | "gatePlanVersion" | "state">;
+    revision: Pick<
+      RevisionRow,
+      | "id"
+      | "programmeId"
+      | "parentId"
+      | "gatePlanVersion"
+      | "state"
+      | "touchesEmissionOrSafety"
+      | "intendedUse"
+    >;
     standingRevisionId: string | null;
   },
 ): Promise<GateDesk> {
@@ -75,15 +96,23 @@ export async function gateDesk(
           revisionBId: revision.id,
         })
       : null;
-  if (!plan || !ASKED.has(revision.state)) return { comparison, stale: false, results: [], planVersion };
+  const calibration = ASKED.has(revision.state)
+    ? await calibrationDesk(db, { workspaceId, revision, standingRevisionId })
+    : null;
+  if (!plan || !ASKED.has(revision.state))
+    return { comparison, calibration, stale: false, results: [], planVersion };
   const stale = comparison?.state === "stale";
   const sheet = await selectVehicleSheet(db, { workspaceId, programmeId });
-  const results = evaluateGates(plan.plan, gateEvidence(comparison, sheet?.figures ?? null));
+  const evidence = gateEvidence(comparison, sheet?.figures ?? null, calibration?.evidence ?? null);
+  const results = evaluateGates(plan.plan, evidence);
   return {
     comparison,
+    calibration,
     stale,
     planVersion,
-    results: stale ? results.map((gate) => asStale(gate, comparison.moved)) : results,
+    results: stale
+      ? results.map((gate) => (OF_CALIBRATION.has(gate.kind) ? gate : asStale(gate, comparison.moved)))
+      : results,
   };
 }
 
@@ -100,6 +129,10 @@ export async function gateStatus(ctx: Ctx, { revisionId }: { revisionId: string 
     : null;
   if (!revision || !programme) throw new NotFoundError("no_revision", "There is no such revision.");
   const { standingRevisionId } = programme;
-  const { comparison, ...status } = await gateDesk(db, { workspaceId, revision, standingRevisionId });
+  const {
+    comparison,
+    calibration: _,
+    ...status
+  } = await gateDesk(db, { workspaceId, revision, standingRevisionId });
   return { ...status, comparisonId: comparison?.comparison.id ?? null };
 }

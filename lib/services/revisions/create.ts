@@ -1,15 +1,21 @@
 import { insertRevision, selectRevision, takeRevisionNumber } from "@/db/queries/revisions";
 import { InvalidInputError, NotFoundError } from "@/lib/errors";
+import { refreshChangeSetsOf } from "@/lib/services/change-sets/refresh";
 import { authorise, type Ctx } from "@/lib/services/ctx";
+import {
+  clearDescriptionStaging,
+  keepSealedDescription,
+  sealDescription,
+} from "@/lib/services/descriptions/keep";
 import { once } from "@/lib/services/idempotency";
 import { appendLedger } from "@/lib/services/ledger/append";
 import { noRevision } from "@/lib/services/revisions/load";
 import { openCalibrationImage, summarise } from "@/lib/services/revisions/read-image";
 import { type CreateRevision, createRevision } from "@/lib/services/revisions/schema";
-import { clearStaging, sealUpload, useSealedUpload } from "@/lib/services/uploads/seal";
+import { clearStaging, sealUpload, spendSealedUpload } from "@/lib/services/uploads/seal";
 
 /**
- * Adds a draft revision from an uploaded image: bytes first, then row, ledger entry and answer in one transaction.
+ * Adds a draft revision from an uploaded image, with its description if it came with one: bytes first, then row, ledger entry and answer in one transaction.
  * @throws ForbiddenError; NotFoundError; FileRefusedError when the image can't be read; InvalidInputError; ConflictError
  */
 export async function addRevision(
@@ -20,8 +26,9 @@ export async function addRevision(
   const request = createRevision.parse(input);
   authorise(ctx, "revision.create");
   const { workspaceId, userId } = ctx;
-  const { uploadId, programmeId, parentId, baseAddress, ...text } = request;
+  const { uploadId, descriptionUploadIds, programmeId, parentId, baseAddress, ...text } = request;
   const sealed = await sealUpload(ctx, { uploadId, purpose: "image" });
+  const sealedFiles = await sealDescription(ctx, descriptionUploadIds);
   const source = {
     imageSha256: sealed.sha256,
     imageFileName: sealed.fileName,
@@ -39,7 +46,11 @@ export async function addRevision(
         throw new InvalidInputError("foreign_parent", "The parent must be a revision of the same programme.");
       }
     }
-    await useSealedUpload(tx, inner, sealed);
+    await spendSealedUpload(tx, inner, sealed);
+    const description =
+      sealedFiles.length === 0
+        ? null
+        : await keepSealedDescription(tx, inner, { programmeId, sealed: sealedFiles });
     const row = await insertRevision(tx, {
       ...text,
       ...source,
@@ -49,6 +60,7 @@ export async function addRevision(
       parentId,
       imageBytes: sealed.sizeBytes,
       imageSummary,
+      descriptionId: description?.id ?? null,
       authorId: userId,
     });
     await appendLedger(tx, inner, {
@@ -56,10 +68,19 @@ export async function addRevision(
       subjectType: "revision",
       subjectId: row.id,
       programmeId,
-      data: { number, parentId, sha256: sealed.sha256, identity: imageSummary.identity, title: text.title },
+      data: {
+        number,
+        parentId,
+        sha256: sealed.sha256,
+        identity: imageSummary.identity,
+        title: text.title,
+        ...(description && { description: { sha256: description.sha256, files: description.files } }),
+      },
     });
+    await refreshChangeSetsOf(tx, inner, { revisionId: row.id });
     return { revisionId: row.id, number };
   });
   await clearStaging(ctx, uploadId);
+  await clearDescriptionStaging(ctx, descriptionUploadIds);
   return answer;
 }

@@ -1,5 +1,6 @@
 import { z } from "zod";
 import type { ImageDifference, ImageSummary } from "@/lib/calibration/image/image-summary";
+import { descriptionUploads } from "@/lib/services/descriptions/schema";
 
 const INTENDED_USES = ["road", "closed_course", "bench"] as const;
 
@@ -64,6 +65,8 @@ export const createRevision = revisionText.extend({
   parentId: z.uuid().nullable(),
   uploadId: z.uuid(),
   baseAddress: baseAddress.default(null as never),
+  /** Files of its description, the main one first; none: bytes only, until one is added. */
+  descriptionUploadIds: descriptionUploads.default([]),
 });
 export type CreateRevision = z.input<typeof createRevision>;
 

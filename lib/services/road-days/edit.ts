@@ -1,7 +1,7 @@
 import { type RoadDayRow, updateRoadDay } from "@/db/queries/road-days";
 import { selectRunIds, updateWeatherOfRuns } from "@/db/queries/runs";
 import { ConflictError } from "@/lib/errors";
-import { refreshComparisonsOf } from "@/lib/services/comparisons/refresh";
+import { refreshResultsOf } from "@/lib/services/comparisons/refresh";
 import { authorise, type Ctx, withTransaction } from "@/lib/services/ctx";
 import { appendLedger } from "@/lib/services/ledger/append";
 import { loadRoadDayForUpdate } from "@/lib/services/road-days/load";
@@ -53,7 +53,7 @@ export async function editRoadDay(ctx: Ctx, input: EditRoadDay): Promise<RoadDay
       await updateWeatherOfRuns(tx, { workspaceId, roadDayId, old: weather(row), new: weather(figures) });
       await judgeRunsAgain(tx, inner, { programmeId, roadDayId });
       for (const revisionId of new Set(affected.map((run) => run.revisionId)))
-        await refreshComparisonsOf(tx, inner, { revisionId });
+        await refreshResultsOf(tx, inner, { revisionId });
     }
     const changed = await updateRoadDay(tx, { workspaceId, roadDayId, rowVersion, set: figures });
     if (!changed) throw new ConflictError("road_day_moved", "The road day has just changed. Try again.");

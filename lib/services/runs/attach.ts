@@ -16,7 +16,7 @@ import { loadRevisionForUpdate, requireState } from "@/lib/services/revisions/lo
 import { loadRoadDay } from "@/lib/services/road-days/load";
 import { openLines } from "@/lib/services/road-days/schema";
 import type { AttachedRun, AttachRun } from "@/lib/services/runs/schema";
-import { clearStaging, type SealedUpload, sealUpload, useSealedUpload } from "@/lib/services/uploads/seal";
+import { clearStaging, type SealedUpload, sealUpload, spendSealedUpload } from "@/lib/services/uploads/seal";
 
 /** The road day is cleared for driving. @throws ConflictError `checklist_open` */
 function requireChecklist(roadDay: RoadDayRow): void {
@@ -111,7 +111,7 @@ export async function attachRun(
     // Its row lock also puts attachments of the workspace one after the other, so the checks below can't race.
     const number = await takeRunNumber(tx, { workspaceId });
     await requireNew(tx, roadDay, input, sealed);
-    await useSealedUpload(tx, inner, sealed);
+    await spendSealedUpload(tx, inner, sealed);
     const { kind, leg, driveOrder, gear, note, startedAt, sample } = input;
     const run = await insertRun(tx, {
       workspaceId,

@@ -3,7 +3,7 @@ import { countOthersWithRole } from "@/db/queries/people";
 import { type RunRow, selectRunWithLog, selectTakenPlaces, updateRun } from "@/db/queries/runs";
 import { ConflictError, ForbiddenError } from "@/lib/errors";
 import { canBringBack } from "@/lib/policy/bring-back";
-import { refreshComparisonsOf } from "@/lib/services/comparisons/refresh";
+import { refreshResultsOf } from "@/lib/services/comparisons/refresh";
 import { authorise, type Ctx, withTransaction } from "@/lib/services/ctx";
 import { appendLedger } from "@/lib/services/ledger/append";
 import { loadRunForUpdate } from "@/lib/services/runs/load";
@@ -81,7 +81,7 @@ export async function bringRunBack(ctx: Ctx, input: BringBackRun): Promise<RunRo
         resultWasVisible: run.resultWasVisible,
       },
     });
-    await refreshComparisonsOf(tx, inner, { revisionId: run.revisionId });
+    await refreshResultsOf(tx, inner, { revisionId: run.revisionId });
     return changed ?? run;
   });
 }

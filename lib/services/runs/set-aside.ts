@@ -1,7 +1,7 @@
 import { hasRunAnalysis } from "@/db/queries/run-analyses";
 import { type RunRow, updateRun } from "@/db/queries/runs";
 import { ConflictError } from "@/lib/errors";
-import { refreshComparisonsOf } from "@/lib/services/comparisons/refresh";
+import { refreshResultsOf } from "@/lib/services/comparisons/refresh";
 import { authorise, type Ctx, withTransaction } from "@/lib/services/ctx";
 import { appendLedger } from "@/lib/services/ledger/append";
 import { loadRunForUpdate } from "@/lib/services/runs/load";
@@ -38,7 +38,7 @@ export async function setRunAside(ctx: Ctx, input: SetAsideRun): Promise<RunRow>
       rowVersion: run.rowVersion,
       set: { setAsideAt: at, setAsideBy: inner.userId, setAsideReason: input.reason, resultWasVisible },
     });
-    await refreshComparisonsOf(tx, inner, { revisionId: run.revisionId });
+    await refreshResultsOf(tx, inner, { revisionId: run.revisionId });
     return changed ?? run;
   });
 }

@@ -17,7 +17,7 @@ const OPEN_BYTES_AT_MOST = 4_000_000_000;
  */
 export async function openUpload(ctx: Ctx, input: BeginUpload): Promise<UploadState> {
   const { purpose, fileName, sizeBytes, sha256 } = beginUpload.parse(input);
-  authorise(ctx, purpose === "image" ? "revision.upload" : "run.attach");
+  authorise(ctx, purpose === "log" ? "run.attach" : "revision.upload");
   const { workspaceId, userId } = ctx;
   await limitTries(ctx.db, { doing: "begin uploads", userId });
   const row = await withTransaction(ctx, async (tx) => {

@@ -24,7 +24,7 @@ export async function loadUpload(ctx: Ctx, uploadId: string): Promise<UploadRow>
   const { workspaceId, userId } = ctx;
   const row = await selectUpload(ctx.db, { workspaceId, userId, uploadId });
   if (!row) throw new NotFoundError("no_upload", "There is no such upload. Choose the file again.");
-  authorise(ctx, row.purpose === "image" ? "revision.upload_part" : "run.attach", { ownerId: row.userId });
+  authorise(ctx, row.purpose === "log" ? "run.attach" : "revision.upload_part", { ownerId: row.userId });
   return row;
 }
 

@@ -1,7 +1,11 @@
 import { z } from "zod";
 
 /** Largest file taken, in bytes; a larger one is refused before it is sent. */
-export const LARGEST_BYTES = { log: 200_000_000, image: 64 * 1024 * 1024 } as const;
+export const LARGEST_BYTES = {
+  log: 200_000_000,
+  image: 64 * 1024 * 1024,
+  description: 128 * 1024 * 1024,
+} as const;
 
 /** The last part of what the browser calls the file, without control characters: shown, never used as a place. */
 const fileName = z
@@ -16,7 +20,7 @@ const fileName = z
 
 export const beginUpload = z
   .strictObject({
-    purpose: z.enum(["image", "log"]),
+    purpose: z.enum(["image", "log", "description"]),
     fileName,
     sizeBytes: z.int().min(1, "The file is empty: it has 0 bytes. Choose another."),
     sha256: z.string().regex(/^[0-9a-f]{64}$/, "The fingerprint is not a SHA-256."),

@@ -1,8 +1,8 @@
 import type { Transaction } from "@/db/client";
-import { lockDigest } from "@/db/queries/sweep";
-import { insertBlob, setUploadState, type UploadRow } from "@/db/queries/uploads";
+import { setUploadState, type UploadRow } from "@/db/queries/uploads";
 import { ConflictError, InvalidInputError } from "@/lib/errors";
 import { logger } from "@/lib/logger";
+import { keepBlob } from "@/lib/services/blobs";
 import type { Ctx } from "@/lib/services/ctx";
 import { loadUpload } from "@/lib/services/uploads/load";
 import { blobKey, parseStagingKey, prefixOf } from "@/storage/keys";
@@ -73,15 +73,12 @@ export async function sealUpload(
 }
 
 /**
- * The row that says the bytes are kept, and the upload's end, in the caller's transaction. The digest is locked against the
- * sweep and the object looked at once more, so that the row never names bytes that were just cleared.
+ * The row that says the bytes are kept, and the upload's end, in the caller's transaction.
  * @throws NotFoundError when the bytes are gone; ConflictError `upload_used` when the upload served before or was ended
  */
-export async function useSealedUpload(tx: Transaction, ctx: Ctx, sealed: SealedUpload): Promise<void> {
+export async function spendSealedUpload(tx: Transaction, ctx: Ctx, sealed: SealedUpload): Promise<void> {
   const { workspaceId } = ctx;
-  await lockDigest(tx, { workspaceId, sha256: sealed.sha256 });
-  await ctx.store.stat(blobKey(workspaceId, sealed.sha256));
-  await insertBlob(tx, { workspaceId, sha256: sealed.sha256, sizeBytes: sealed.sizeBytes });
+  await keepBlob(tx, ctx, sealed);
   const { uploadId, fileName } = sealed;
   if (!(await setUploadState(tx, { workspaceId, uploadId, from: ["complete"], to: "used" })))
     throw new ConflictError(

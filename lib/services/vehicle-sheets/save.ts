@@ -2,7 +2,7 @@ import { selectLineage } from "@/db/queries/programme-overview";
 import { insertVehicleSheet } from "@/db/queries/vehicle-sheets";
 import { ConflictError } from "@/lib/errors";
 import { changedMembers } from "@/lib/services/changed-members";
-import { refreshComparisonsOf } from "@/lib/services/comparisons/refresh";
+import { refreshResultsOf } from "@/lib/services/comparisons/refresh";
 import { authorise, type Ctx, withTransaction } from "@/lib/services/ctx";
 import { appendLedger } from "@/lib/services/ledger/append";
 import { loadProgramme } from "@/lib/services/programmes/load";
@@ -42,7 +42,7 @@ export async function saveVehicleSheet(
       );
     await judgeRunsAgain(tx, inner, { programmeId });
     const lineage = await selectLineage(tx, { workspaceId, programmeIds: [programmeId] });
-    for (const revision of lineage) await refreshComparisonsOf(tx, inner, { revisionId: revision.id });
+    for (const revision of lineage) await refreshResultsOf(tx, inner, { revisionId: revision.id });
     await appendLedger(tx, inner, {
       event: "vehicle.versioned",
       subjectType: "programme",

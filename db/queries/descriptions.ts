@@ -1,0 +1,77 @@
+import { and, eq, sql } from "drizzle-orm";
+import type { Queryable } from "@/db/client";
+import { descriptions, revisions } from "@/db/tables";
+
+export type DescriptionRow = typeof descriptions.$inferSelect;
+type Key = { workspaceId: string; descriptionId: string };
+
+const at = ({ workspaceId, descriptionId }: Key) =>
+  and(eq(descriptions.workspaceId, workspaceId), eq(descriptions.id, descriptionId));
+
+/** Keeps a description once a programme and content. @returns the row, made now or there before */
+export async function keepDescription(
+  tx: Queryable,
+  values: Pick<DescriptionRow, "workspaceId" | "programmeId" | "sha256" | "files" | "createdBy">,
+): Promise<{ row: DescriptionRow; created: boolean }> {
+  const [made] = await tx
+    .insert(descriptions)
+    .values(values)
+    .onConflictDoNothing({ target: [descriptions.programmeId, descriptions.sha256] })
+    .returning();
+  if (made) return { row: made, created: true };
+  const [row] = await tx
+    .select()
+    .from(descriptions)
+    .where(
+      and(
+        eq(descriptions.workspaceId, values.workspaceId),
+        eq(descriptions.programmeId, values.programmeId),
+        eq(descriptions.sha256, values.sha256),
+      ),
+    );
+  return { row, created: false };
+}
+
+export async function selectDescription(db: Queryable, key: Key): Promise<DescriptionRow | null> {
+  const [row] = await db.select().from(descriptions).where(at(key));
+  return row ?? null;
+}
+
+/** What a version of the reader made of a description. */
+export type ReadOutcome =
+  | { state: "read"; summary: NonNullable<DescriptionRow["summary"]>; failure: null }
+  | { state: "refused"; summary: null; failure: string };
+
+export async function settleDescription(
+  tx: Queryable,
+  args: Key & { readerVersion: string | null; outcome: ReadOutcome },
+): Promise<void> {
+  const { readerVersion, outcome } = args;
+  await tx
+    .update(descriptions)
+    .set({ ...outcome, readerVersion })
+    .where(at(args));
+}
+
+/** Revisions that are read by a description, oldest first. */
+export async function selectRevisionsOfDescription(db: Queryable, { workspaceId, descriptionId }: Key) {
+  return await db
+    .select({ id: revisions.id, programmeId: revisions.programmeId })
+    .from(revisions)
+    .where(and(eq(revisions.workspaceId, workspaceId), eq(revisions.descriptionId, descriptionId)))
+    .orderBy(revisions.number);
+}
+
+/** Descriptions that only another version of the reader settled, newest first. */
+export async function selectOutdatedDescriptions(
+  db: Queryable,
+  { readerVersion, most }: { readerVersion: string; most: number },
+): Promise<{ workspaceId: string; descriptionId: string }[]> {
+  const { rows } = await db.execute<{ workspaceId: string; descriptionId: string }>(sql`
+    select d.workspace_id as "workspaceId", d.id as "descriptionId" from descriptions d
+    where d.reader_version is distinct from ${readerVersion} and d.created_at < now() - interval '10 minutes'
+      and not exists (select from pgboss.job where name = 'read-description'
+        and data->>'descriptionId' = d.id::text and (state < 'completed' or completed_on > now() - interval '1 day'))
+    order by d.created_at desc limit ${most}`);
+  return rows;
+}

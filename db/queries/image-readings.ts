@@ -1,0 +1,62 @@
+import { and, desc, eq, sql } from "drizzle-orm";
+import type { Queryable } from "@/db/client";
+import { imageChecks, imageReadings } from "@/db/tables";
+
+export type ImageReadingRow = typeof imageReadings.$inferSelect;
+type ReadingKey = Pick<ImageReadingRow, "workspaceId" | "revisionId" | "descriptionId" | "readerVersion">;
+
+export async function selectImageReading(db: Queryable, key: ReadingKey): Promise<ImageReadingRow | null> {
+  const [row] = await db
+    .select()
+    .from(imageReadings)
+    .where(
+      and(
+        eq(imageReadings.workspaceId, key.workspaceId),
+        eq(imageReadings.revisionId, key.revisionId),
+        eq(imageReadings.descriptionId, key.descriptionId),
+        eq(imageReadings.readerVersion, key.readerVersion),
+      ),
+    );
+  return row ?? null;
+}
+
+/** Keeps a reading; one that is there already stays. */
+export async function insertImageReading(
+  tx: Queryable,
+  values: Omit<ImageReadingRow, "createdAt">,
+): Promise<void> {
+  await tx.insert(imageReadings).values(values).onConflictDoNothing();
+}
+
+/** What the stored image was last found to be, for a version of the regions; null where it was not checked for it yet. */
+export async function selectImageCheck(
+  db: Queryable,
+  args: { workspaceId: string; revisionId: string; regionsVersion: number },
+) {
+  const [row] = await db
+    .select({ result: imageChecks.result, checkedAt: imageChecks.createdAt })
+    .from(imageChecks)
+    .where(
+      and(
+        eq(imageChecks.workspaceId, args.workspaceId),
+        eq(imageChecks.revisionId, args.revisionId),
+        eq(imageChecks.regionsVersion, args.regionsVersion),
+      ),
+    )
+    .orderBy(desc(imageChecks.createdAt));
+  return row ?? null;
+}
+
+/** Keeps what a check found; the newest counts. */
+export async function putImageCheck(
+  tx: Queryable,
+  values: Omit<typeof imageChecks.$inferInsert, "createdAt">,
+): Promise<void> {
+  await tx
+    .insert(imageChecks)
+    .values(values)
+    .onConflictDoUpdate({
+      target: [imageChecks.revisionId, imageChecks.regionsVersion],
+      set: { result: values.result, createdAt: sql`clock_timestamp()` },
+    });
+}

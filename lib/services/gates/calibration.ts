@@ -1,0 +1,109 @@
+import type { Queryable } from "@/db/client";
+import { selectSetting } from "@/db/queries/calibration-settings";
+import { type ChangeSetRow, type SideRow, selectChangeSetOf, selectSides } from "@/db/queries/change-sets";
+import { selectImageCheck } from "@/db/queries/image-readings";
+import type { RevisionRow } from "@/db/queries/revisions";
+import { type TouchedMark, touchedMarks } from "@/lib/calibration/changes/relevance";
+import { digestOf } from "@/lib/canonical-json";
+import type { CalibrationEvidence } from "@/lib/gates/evidence";
+import { type CoverageNow, coverageNow } from "@/lib/services/change-sets/coverage-now";
+import { changeSetInputSha256 } from "@/lib/services/change-sets/current-input";
+
+type Revision = Pick<
+  RevisionRow,
+  "id" | "programmeId" | "parentId" | "touchesEmissionOrSafety" | "intendedUse"
+>;
+
+/** What the gates see of a candidate's calibration, and what of it a decision is bound to. */
+export interface CalibrationDesk {
+  evidence: CalibrationEvidence;
+  /** What stands → candidate, once it is computed. */
+  changeSet: { id: string; inputSha256: string; resultSha256: string } | null;
+  coverageSha256: string | null;
+  /** Marked functions and characteristics that the change set touches. */
+  touched: TouchedMark[];
+  /** Digest of all of the above: what a lead saw. */
+  seenSha256: string;
+  /** Digest of the change set and of what in it is marked: what a second lead agrees to; null while nothing marked is touched. */
+  touchedSha256: string | null;
+}
+
+async function pair(
+  db: Queryable,
+  { workspaceId, a, b }: { workspaceId: string; a: SideRow | undefined; b: SideRow },
+): Promise<ChangeSetRow | null> {
+  if (!a || a.id === b.id) return null;
+  const inputSha256 = changeSetInputSha256(a, b);
+  return await selectChangeSetOf(db, { workspaceId, revisionAId: a.id, revisionBId: b.id, inputSha256 });
+}
+
+/** What is neither there nor impossible is on its way, as far as a gate is concerned: it has too little until then. */
+function coverageStateOf(now: CoverageNow | null): CalibrationEvidence["coverageState"] {
+  const state = now?.shown.state;
+  return state === "ready" || state === "no_runs" ? state : "computing";
+}
+
+async function integrityOf(
+  db: Queryable,
+  { workspaceId, revision }: { workspaceId: string; revision: Revision },
+): Promise<CalibrationEvidence["integrity"]> {
+  const { programmeId, id: revisionId } = revision;
+  const kind = "checksum_regions" as const;
+  const { version: regionsVersion } = await selectSetting(db, { workspaceId, programmeId, kind });
+  const check = await selectImageCheck(db, { workspaceId, revisionId, regionsVersion });
+  return {
+    fingerprintHolds: check?.result.fingerprintHolds ?? null,
+    regions: check?.result.regions ?? null,
+  };
+}
+
+/**
+ * Reads what is known of a candidate's calibration at this moment, against what stands. Asks no policy.
+ * @returns null where nothing stands, or the candidate itself does
+ */
+export async function calibrationDesk(
+  db: Queryable,
+  args: { workspaceId: string; revision: Revision; standingRevisionId: string | null },
+): Promise<CalibrationDesk | null> {
+  const { workspaceId, revision, standingRevisionId } = args;
+  const { programmeId, parentId, touchesEmissionOrSafety, intendedUse } = revision;
+  if (standingRevisionId === null || standingRevisionId === revision.id) return null;
+  const revisionIds = [revision.id, standingRevisionId, ...(parentId ? [parentId] : [])];
+  const sides = await selectSides(db, { workspaceId, revisionIds });
+  const b = sides.find(({ id }) => id === revision.id);
+  if (!b) return null;
+  const sideOf = (wanted: string | null) => sides.find(({ id }) => id === wanted);
+  const standing = await pair(db, { workspaceId, a: sideOf(standingRevisionId), b });
+  const parent =
+    parentId === standingRevisionId ? standing : await pair(db, { workspaceId, a: sideOf(parentId), b });
+  const marks = await selectSetting(db, { workspaceId, programmeId, kind: "relevance_marks" });
+  const coverage = standing?.result ? await coverageNow(db, standing) : null;
+  const coverageState = coverageStateOf(coverage);
+  const counts = coverageState === "ready";
+  const evidence: CalibrationEvidence = {
+    fromStanding: standing?.result ?? null,
+    fromParent: parent?.result ?? null,
+    coverage: counts ? (coverage?.shown.result ?? null) : null,
+    coverageState,
+    integrity: await integrityOf(db, { workspaceId, revision }),
+    marks: marks.content,
+    declaresTouch: touchesEmissionOrSafety,
+    intendedUse,
+  };
+  const touched = standing?.result ? touchedMarks(standing.result, marks.content) : [];
+  const changeSet =
+    standing?.resultSha256 != null
+      ? { id: standing.id, inputSha256: standing.inputSha256, resultSha256: standing.resultSha256 }
+      : null;
+  const coverageSha256 = counts ? (coverage?.resultSha256 ?? null) : null;
+  const { integrity } = evidence;
+  const parentSha256 = parent?.resultSha256 ?? null;
+  return {
+    evidence,
+    changeSet,
+    coverageSha256,
+    touched,
+    seenSha256: digestOf({ changeSet, parentSha256, coverageSha256, integrity, marks: marks.content }),
+    touchedSha256: changeSet && touched.length > 0 ? digestOf({ changeSet, touched }) : null,
+  };
+}
