@@ -37,16 +37,26 @@ export function pointAt(axis: ReadAxis | undefined, index: number): PhysicalValu
   return axis ? (axis.points[index] ?? null) : index;
 }
 
-/** Name and unit of an axis: its input quantity in words where they are known. */
-export function axisHead(
-  side: ChangeSide,
-  axis: number,
-  quantityTexts: Readonly<Record<string, string>>,
-): string {
+/** What an axis is called: its input quantity, else the shared axis it rests on, else its letter. */
+export function axisName(side: ChangeSide, axis: number): string {
   const described = side.axes[axis];
   const letter = AXIS_LETTERS[axis] ?? String(axis + 1);
-  if (!described) return `place in ${letter}`;
-  const quantity = described.inputQuantity;
-  const name = (quantity && (quantityTexts[quantity] || quantity)) || described.reference || `${letter} axis`;
-  return described.unit ? `${name}, ${described.unit}` : name;
+  return described
+    ? described.inputQuantity || described.reference || `${letter} axis`
+    : `place in ${letter}`;
+}
+
+/** Name and unit of an axis. */
+export function axisHead(side: ChangeSide, axis: number): string {
+  const unit = side.axes[axis]?.unit;
+  return unit ? `${axisName(side, axis)}, ${unit}` : axisName(side, axis);
+}
+
+/** Digits behind the point such that no moved point of an axis looks as before. */
+export function axisDigits(axis: ReadAxis | undefined, old: ReadAxis | undefined): number {
+  if (!axis) return 0;
+  return digitsFor(
+    axis.points.flatMap((point, i) => differenceOf(old?.points[i], point) ?? []),
+    axis.decimals,
+  );
 }

@@ -1,5 +1,5 @@
 import { CharacteristicCurve } from "@/components/charts/characteristic/characteristic-curve";
-import { axisHead, type ChangeGrid } from "@/components/features/change-sets/detail/change-grid";
+import { axisDigits, axisName, type ChangeGrid } from "@/components/features/change-sets/detail/change-grid";
 import { curveView } from "@/components/features/change-sets/detail/curve-view";
 import { PointTable } from "@/components/features/change-sets/detail/point-table";
 import { spreadText } from "@/components/features/change-sets/words/change-words";
@@ -12,7 +12,6 @@ export interface CurveChangeProps {
   change: CharacteristicChange;
   grid: ChangeGrid;
   coverage: MapCoverage | null;
-  quantityTexts: Readonly<Record<string, string>>;
   labels: { before: string; after: string };
 }
 
@@ -25,14 +24,11 @@ function describeCurve(change: CharacteristicChange, digits: number): string {
 }
 
 /** A changed curve: both sides overlaid, the difference below, the values behind. Texts are listed instead. */
-export function CurveChange({ change, grid, coverage, quantityTexts, labels }: CurveChangeProps) {
-  const table = <PointTable change={change} grid={grid} coverage={coverage} quantityTexts={quantityTexts} />;
+export function CurveChange({ change, grid, coverage, labels }: CurveChangeProps) {
+  const table = <PointTable change={change} grid={grid} coverage={coverage} />;
   const view = curveView(change.before, change.after);
   if (!view) return table;
   const axis = grid.shape.axes[0];
-  const unit = view.byPlace ? "" : (axis?.unit ?? "");
-  const head = axisHead(grid.shape, 0, quantityTexts);
-  const name = view.byPlace ? "Place" : unit ? head.slice(0, -(unit.length + 2)) : head;
   const notes = [
     ...(view.byPlace
       ? ["Axis points neither rise nor fall throughout: drawn over the places of the points."]
@@ -46,7 +42,15 @@ export function CurveChange({ change, grid, coverage, quantityTexts, labels }: C
       title={change.text || change.name}
       unit={change.unit}
       decimals={grid.digits}
-      axis={{ name, unit, decimals: view.byPlace ? 0 : (axis?.decimals ?? 0) }}
+      axis={
+        view.byPlace
+          ? { name: "place", unit: "", decimals: 0 }
+          : {
+              name: axisName(grid.shape, 0),
+              unit: axis?.unit ?? "",
+              decimals: axisDigits(axis, change.before?.axes[0]),
+            }
+      }
       a={view.a}
       b={view.b}
       labelA={labels.before}

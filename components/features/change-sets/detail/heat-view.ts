@@ -1,6 +1,11 @@
 import { heatStep } from "@/components/charts/heat/heat-ramp";
 import type { HeatAxis, HeatCell } from "@/components/charts/heat/heat-table";
-import { axisHead, type ChangeGrid, pointAt } from "@/components/features/change-sets/detail/change-grid";
+import {
+  axisDigits,
+  axisHead,
+  type ChangeGrid,
+  pointAt,
+} from "@/components/features/change-sets/detail/change-grid";
 import { LIMIT_MARKS } from "@/components/features/change-sets/words/change-words";
 import { differenceOf, differenceText, valueText } from "@/components/features/change-sets/words/figure-text";
 import { numberText } from "@/components/ui/data/number-text";
@@ -12,9 +17,6 @@ import type { ReadAxis } from "@/lib/calibration/values/types";
 /** What the cells of a heat table hold. */
 export type ShownSide = "difference" | "before" | "after";
 
-/** Above this many cells only rows and columns that hold a change are drawn. */
-export const MOST_CELLS = 8192;
-
 export interface HeatQuestion {
   side: ShownSide;
   /** Indices on the third and further axes. */
@@ -22,53 +24,34 @@ export interface HeatQuestion {
   coverage: MapCoverage | null;
   /** Print time and visits in every cell. */
   withVisits: boolean;
-  quantityTexts: Readonly<Record<string, string>>;
 }
 
 export interface HeatView {
   x: HeatAxis;
   y: HeatAxis;
   cells: HeatCell[][];
-  /** Says what was left out of a table too large to be drawn whole; null when nothing was. */
-  leftOut: string | null;
 }
 
 const range = (count: number) => Array.from({ length: count }, (_, index) => index);
-
-/** Rows and columns to draw: all, or of a giant table those that hold a change, as many as fit. */
-function shownLines(grid: ChangeGrid, dims: readonly number[], plane: readonly number[]) {
-  const [nx = 1, ny = 1] = dims;
-  if (nx * ny <= MOST_CELLS) return { columns: range(nx), rows: range(ny), leftOut: null };
-  const changed = [...grid.changedAt.values()]
-    .map((cell) => cell.index)
-    .filter((index) => plane.every((at, i) => index[i + 2] === at));
-  const lines = (axis: number) =>
-    [...new Set(changed.map((index) => index[axis] ?? 0))].sort((a, b) => a - b);
-  const columns = (nx <= 128 ? range(nx) : lines(0)).slice(0, 256);
-  const rows = lines(1).slice(0, Math.max(1, Math.floor(MOST_CELLS / Math.max(1, columns.length))));
-  return {
-    columns,
-    rows,
-    leftOut: `A table of ${numberText(nx * ny)} cells: only lines that hold a change are drawn, ${numberText(columns.length)} of ${numberText(nx)} across and ${numberText(rows.length)} of ${numberText(ny)} down.`,
-  };
-}
 
 function heatAxis(
   change: CharacteristicChange,
   side: ChangeSide,
   axis: number,
-  shown: readonly number[],
   question: HeatQuestion,
 ): HeatAxis {
   const described = side.axes[axis];
   const other = question.side === "difference" ? change.before?.axes[axis] : undefined;
-  const text = (from: ReadAxis | undefined, index: number) =>
-    valueText(pointAt(from, index), described?.decimals ?? 0);
+  const digits = axisDigits(change.after?.axes[axis] ?? described, change.before?.axes[axis]);
+  const text = (from: ReadAxis | undefined, index: number) => valueText(pointAt(from, index), digits);
   const moved = (index: number) =>
-    other !== undefined && described !== undefined && other.raw[index] !== described.raw[index];
+    other !== undefined &&
+    described !== undefined &&
+    (other.raw[index] !== described.raw[index] || other.points[index] !== described.points[index]);
+  const shown = range(side.dims[axis] ?? 1);
   const isMoved = shown.some(moved);
   return {
-    head: axisHead(side, axis, question.quantityTexts),
+    head: axisHead(side, axis),
     points: shown.map((index) => text(described, index)),
     ...(isMoved && { was: shown.map((index) => (moved(index) ? text(other, index) : null)) }),
   };
@@ -84,7 +67,7 @@ export function heatView(change: CharacteristicChange, grid: ChangeGrid, questio
   const { plane, coverage, withVisits } = question;
   const side = (question.side === "before" ? change.before : change.after) ?? grid.shape;
   const never = new Set(coverage?.changedNeverVisited);
-  const { columns, rows, leftOut } = shownLines(grid, side.dims, plane);
+  const [columns, rows] = [range(side.dims[0] ?? 1), range(side.dims[1] ?? 1)];
   const cell = (column: number, row: number): HeatCell => {
     const at = cellNumber([column, row, ...plane], side.dims);
     const changed = grid.isComparable ? grid.changedAt.get(at) : undefined;
@@ -100,10 +83,9 @@ export function heatView(change: CharacteristicChange, grid: ChangeGrid, questio
     };
   };
   return {
-    x: heatAxis(change, side, 0, columns, question),
-    y: heatAxis(change, side, 1, rows, question),
+    x: heatAxis(change, side, 0, question),
+    y: heatAxis(change, side, 1, question),
     cells: rows.map((row) => columns.map((column) => cell(column, row))),
-    leftOut,
   };
 }
 

@@ -21,7 +21,8 @@ import type { MapCoverage } from "@/lib/calibration/coverage/types";
 export interface MapChangeProps {
   change: CharacteristicChange;
   coverage: MapCoverage | null;
-  quantityTexts: Readonly<Record<string, string>>;
+  /** What of a giant table is not drawn, in words. */
+  leftOut: string | null;
   /** What a link asked for. */
   initial: { side: ShownSide; plane: readonly number[] | null };
 }
@@ -33,7 +34,7 @@ const SIDES: readonly { value: ShownSide; label: string }[] = [
 ];
 
 /** A changed table of two or more axes as a heat table; with more than two, one plane at a time. */
-export function MapChange({ change, coverage, quantityTexts, initial }: MapChangeProps) {
+export function MapChange({ change, coverage, leftOut, initial }: MapChangeProps) {
   const grid = useMemo(() => changeGrid(change), [change]);
   const [side, setSide] = useState<ShownSide>(initial.side);
   const [plane, setPlane] = useState<readonly number[]>(initial.plane ?? largestPlane(change));
@@ -47,7 +48,7 @@ export function MapChange({ change, coverage, quantityTexts, initial }: MapChang
   );
   const shown = possible.some(({ value }) => value === side) ? side : (possible.at(-1)?.value ?? "after");
   const fits = coverage && coverage.dims.join() === grid.shape.dims.join() ? coverage : null;
-  const view = heatView(change, grid, { side: shown, plane, coverage: fits, withVisits, quantityTexts });
+  const view = heatView(change, grid, { side: shown, plane, coverage: fits, withVisits });
   return (
     <div className="flex flex-col gap-3">
       <div className="no-print flex flex-wrap items-end gap-3">
@@ -70,7 +71,6 @@ export function MapChange({ change, coverage, quantityTexts, initial }: MapChang
         <PlaneChooser
           change={change}
           plane={plane}
-          quantityTexts={quantityTexts}
           onPlane={(value) => {
             setPlane(value);
             rememberInAddress({ plane: value.join("-") });
@@ -78,7 +78,7 @@ export function MapChange({ change, coverage, quantityTexts, initial }: MapChang
         />
       </div>
       <HeatTable caption={caption(change, shown)} x={view.x} y={view.y} cells={view.cells} />
-      {view.leftOut && <p className="text-13 text-ink2">{view.leftOut}</p>}
+      {leftOut && <p className="text-13 text-ink2">{leftOut}</p>}
       <Legend
         change={change}
         isComparable={grid.isComparable}
@@ -108,12 +108,11 @@ function largestPlane(change: CharacteristicChange): number[] {
 interface PlaneChooserProps {
   change: CharacteristicChange;
   plane: readonly number[];
-  quantityTexts: Readonly<Record<string, string>>;
   onPlane: (plane: number[]) => void;
 }
 
 /** One list a further axis; each plane says how many of its cells changed. */
-function PlaneChooser({ change, plane, quantityTexts, onPlane }: PlaneChooserProps) {
+function PlaneChooser({ change, plane, onPlane }: PlaneChooserProps) {
   const side = change.after ?? change.before;
   if (!side || plane.length === 0) return null;
   return plane.map((at, further) => {
@@ -130,7 +129,7 @@ function PlaneChooser({ change, plane, quantityTexts, onPlane }: PlaneChooserPro
     return (
       <Select
         key={AXIS_LETTERS[axis]}
-        label={axisHead(side, axis, quantityTexts)}
+        label={axisHead(side, axis)}
         value={String(at)}
         onChange={(event) =>
           onPlane(plane.map((other, i) => (i === further ? Number(event.target.value) : other)))

@@ -1,4 +1,9 @@
-import { axisHead, type ChangeGrid, pointAt } from "@/components/features/change-sets/detail/change-grid";
+import {
+  axisDigits,
+  axisHead,
+  type ChangeGrid,
+  pointAt,
+} from "@/components/features/change-sets/detail/change-grid";
 import { LIMIT_MARKS } from "@/components/features/change-sets/words/change-words";
 import { differenceText, valueText } from "@/components/features/change-sets/words/figure-text";
 import { numberText } from "@/components/ui/data/number-text";
@@ -15,11 +20,10 @@ export interface PointTableProps {
   change: CharacteristicChange;
   grid: ChangeGrid;
   coverage: MapCoverage | null;
-  quantityTexts: Readonly<Record<string, string>>;
 }
 
 /** A curve, a shared axis or a block place by place: before, after and the difference. */
-export function PointTable({ change, grid, coverage, quantityTexts }: PointTableProps) {
+export function PointTable({ change, grid, coverage }: PointTableProps) {
   const { before, after, unit } = change;
   const count = Math.max(before?.values.length ?? 0, after?.values.length ?? 0);
   const all = Array.from({ length: count }, (_, place) => place);
@@ -30,7 +34,7 @@ export function PointTable({ change, grid, coverage, quantityTexts }: PointTable
     side && place < side.values.length ? valueText(side.values[place], grid.digits) : "–";
   const columns: Column<number>[] = [
     { key: "place", header: "Place", numeric: true, rowHeader: true, cell: (place) => numberText(place) },
-    ...axisColumns(change, quantityTexts),
+    ...axisColumns(change),
     { key: "before", header: "Before", unit, numeric: true, cell: (place) => text(before, place) },
     { key: "after", header: "After", unit, numeric: true, cell: (place) => text(after, place) },
     ...(grid.isComparable ? [differenceColumn(change, grid)] : []),
@@ -61,19 +65,17 @@ export function PointTable({ change, grid, coverage, quantityTexts }: PointTable
 }
 
 /** One column where the points are the same, two where they moved. */
-function axisColumns(
-  { before, after }: CharacteristicChange,
-  quantityTexts: PointTableProps["quantityTexts"],
-): Column<number>[] {
+function axisColumns({ before, after }: CharacteristicChange): Column<number>[] {
   const side = after ?? before;
   const axis = side?.axes[0];
   if (!side || !axis) return [];
-  const head = axisHead(side, 0, quantityTexts);
+  const head = axisHead(side, 0);
+  const digits = axisDigits(axis, before?.axes[0]);
   const column = (key: string, header: string, of: typeof axis | undefined): Column<number> => ({
     key,
     header,
     numeric: true,
-    cell: (place) => valueText(pointAt(of ?? axis, place), axis.decimals),
+    cell: (place) => valueText(pointAt(of ?? axis, place), digits),
   });
   const old = before?.axes[0];
   const moved =

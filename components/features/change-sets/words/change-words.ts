@@ -38,11 +38,15 @@ export function kindsText(changes: readonly Pick<CharacteristicChange, "type">[]
 /** What differs, in one sentence: "3 maps, 1 curve and 2 values differ from R2; 38 cells; 4 bytes outside the description." */
 export function summarySentence(set: ChangeSet, againstNumber: number): string {
   const than = `R${againstNumber}`;
-  if (set.identical) return `The content is the same as ${than}: not one byte differs.`;
+  if (set.identical) {
+    const read = set.characteristics.length;
+    const otherwise = read > 0 ? `; the descriptions tell ${counted(read, "characteristic")} otherwise` : "";
+    return `The content is the same as ${than}: not one byte differs${otherwise}.`;
+  }
   const bytes = counted(set.changedBytes, "byte");
   const places = counted(set.changedRanges, "place");
   if (set.readBy === "none")
-    return `${bytes} in ${places} differ from ${than}; no description says what they mean.`;
+    return `${bytes} in ${places} ${set.changedBytes === 1 ? "differs" : "differ"} from ${than}; no description says what they mean.`;
   const differing = set.characteristics.filter((change) => change.kind === "changed");
   const only = (kind: "added" | "removed") =>
     set.characteristics.filter((change) => change.kind === kind).length;

@@ -5,8 +5,8 @@ import type { PhysicalValue } from "@/lib/calibration/values/types";
 const MOST_DIGITS = 6;
 
 /**
- * Digits behind the point such that no difference of a list is printed as zero: those declared, more where the smallest
- * difference is finer, at most 6. Zeros and NaN are passed over.
+ * Digits behind the point such that the smallest difference of a list is printed right to a tenth of itself: those
+ * declared, more where it is finer, at most 6. Zeros and NaN are passed over.
  */
 export function digitsFor(differences: readonly number[], declared: number): number {
   let smallest = Number.POSITIVE_INFINITY;
@@ -15,7 +15,9 @@ export function digitsFor(differences: readonly number[], declared: number): num
     if (size > 0 && size < smallest) smallest = size;
   }
   let digits = Math.min(declared, MOST_DIGITS);
-  while (digits < MOST_DIGITS && Number(smallest.toFixed(digits)) === 0) digits += 1;
+  if (!Number.isFinite(smallest)) return digits;
+  const isCoarse = () => Math.abs(Number(smallest.toFixed(digits)) - smallest) > smallest / 10;
+  while (digits < MOST_DIGITS && isCoarse()) digits += 1;
   return digits;
 }
 

@@ -1,0 +1,36 @@
+import { Info, OctagonX, TriangleAlert } from "lucide-react";
+import type { Route } from "next";
+import Link from "next/link";
+import type { Warning } from "@/components/features/change-sets/words/warnings";
+import { cn } from "@/lib/cn";
+
+const ICON = { problem: OctagonX, caution: TriangleAlert, plain: Info } as const;
+const COLOUR = { problem: "text-unmet", caution: "text-thin", plain: "text-ink2" } as const;
+
+/** What must be known before the list is read; nothing where there is nothing. */
+export function WarningList({ warnings, bytesHref }: { warnings: readonly Warning[]; bytesHref: Route }) {
+  if (warnings.length === 0) return null;
+  return (
+    <ul aria-label="Know this first" className="flex flex-col rounded border border-line bg-surface">
+      {warnings.map(({ tone, title, text, toBytes }) => {
+        const Icon = ICON[tone];
+        return (
+          <li
+            key={`${title}${text}`}
+            className="flex gap-3 border-line border-t px-3 py-2 text-15 first:border-t-0"
+          >
+            <Icon aria-hidden size={18} className={cn("mt-0.5 shrink-0", COLOUR[tone])} />
+            <p className="min-w-0 max-w-prose">
+              <strong className="font-semibold">{title}.</strong> {text}{" "}
+              {toBytes && (
+                <Link href={bytesHref} className="link">
+                  See the bytes
+                </Link>
+              )}
+            </p>
+          </li>
+        );
+      })}
+    </ul>
+  );
+}
