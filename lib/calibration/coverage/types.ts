@@ -42,7 +42,7 @@ export interface MapCoverage {
 }
 
 /** Why a characteristic's coverage can't be told; "no_axes": nothing moves through it, it is left out of the share. */
-export type NotToldCode = "no_axes" | "no_link" | "not_recorded" | "unit" | "axis_points";
+export type NotToldCode = "no_axes" | "no_link" | "not_recorded" | "unit" | "axis_points" | "not_listed";
 
 export interface Coverage {
   coverage: 1;

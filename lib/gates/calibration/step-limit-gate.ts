@@ -52,7 +52,7 @@ function verdictOn(gate: StepLimitGate, changes: ChangeSet): Verdict {
       : [
           hold(
             gate,
-            tables.map((change) => stepOf(gate, change)),
+            tables.flatMap((change) => stepOf(gate, change)),
             gate.maxNeighbourStep,
             stepText,
           ),
@@ -62,7 +62,7 @@ function verdictOn(gate: StepLimitGate, changes: ChangeSet): Verdict {
       : [
           hold(
             gate,
-            tables.map((change) => moveOf(gate, change)),
+            tables.flatMap((change) => moveOf(gate, change)),
             gate.movedAtMost,
             moveText,
           ),
@@ -73,7 +73,11 @@ function verdictOn(gate: StepLimitGate, changes: ChangeSet): Verdict {
     return notMet(why, "Look at this cell; make a new revision.");
   if (unread.length > 0 || parts.some(({ state }) => state === "open"))
     return tooLittle(why, "Look at these tables yourself, and say in a waiver what you saw.");
-  if (why !== "") return met(why);
+  const words = tables.filter(({ changes }) => changes.some(({ after }) => typeof after === "string"));
+  if (why !== "")
+    return met(
+      words.length > 0 ? `${why} Words have no size: ${nameSome(words.map(({ name }) => name))}.` : why,
+    );
   return met(
     tables.length === 0
       ? `Nothing ${scope.size > 0 ? `of ${nameSome(gate.scope)}` : "described"} changed.`
@@ -83,12 +87,12 @@ function verdictOn(gate: StepLimitGate, changes: ChangeSet): Verdict {
 
 function hold(
   gate: StepLimitGate,
-  found: readonly (Found | null)[],
+  found: readonly Found[],
   limit: number,
   text: (change: CharacteristicChange, step: TableStep, measured: string) => string,
 ): { state: "inside" | "open" | "beyond"; why: string } {
-  const told = found.flatMap((one) => (one && "step" in one ? [one] : []));
-  const unknown = found.flatMap((one) => (one && "unknown" in one ? [one.unknown] : []));
+  const told = found.filter((one) => "step" in one);
+  const open = found.flatMap((one) => ("unknown" in one ? [one.unknown] : []));
   const worst = told.length > 0 ? told.reduce((a, b) => (b.size > a.size ? b : a)) : null;
   const measured = worst && gate.measure === "share" ? `, ${figure(worst.size)} % of the span` : "";
   const why = [
@@ -97,29 +101,50 @@ function hold(
           `${text(worst.change, worst.step, measured)}; ${figure(limit, 3)}${gate.measure === "share" ? " %" : ""} is allowed.`,
         ]
       : []),
-    ...unknown.slice(0, 2),
-    ...(unknown.length > 2 ? [`So it is with ${unknown.length - 2} more.`] : []),
+    ...open.slice(0, 2),
+    ...(open.length > 2 ? [`So it is with ${open.length - 2} more.`] : []),
   ].join(" ");
   if (worst && worst.size > limit * (1 + ROUNDING)) return { state: "beyond", why };
-  return { state: unknown.length > 0 ? "open" : "inside", why };
+  return { state: open.length > 0 ? "open" : "inside", why };
 }
 
-function stepOf(gate: StepLimitGate, change: CharacteristicChange): Found | null {
+/** A change set that changes very much lists its largest changes only. */
+function isUnlisted({ before, after }: CharacteristicChange): boolean {
+  return before === null && after === null;
+}
+
+const unknown = ({ name }: CharacteristicChange, why: string): Found[] => [{ unknown: `${name} ${why}.` }];
+const UNLISTED = "is not listed cell by cell: too many cells changed";
+
+/** The largest step of a table, and why some of it can't be told; nothing for what has no neighbours. */
+function stepOf(gate: StepLimitGate, change: CharacteristicChange): Found[] {
+  if (isUnlisted(change)) return unknown(change, UNLISTED);
   const step = largestStep(change);
-  if (change.after?.axes.length && change.after.values.includes(null))
-    return { unknown: `${change.name} has cells without a value.` };
-  return step && sized(gate, change, step);
+  const isHollow = change.after && change.after.axes.length > 0 && change.after.values.includes(null);
+  return [
+    ...(step ? [sized(gate, change, step)] : []),
+    ...(isHollow ? unknown(change, "has cells without a value") : []),
+  ];
 }
 
-function moveOf(gate: StepLimitGate, change: CharacteristicChange): Found | null {
-  if (!change.before || !change.after) return { unknown: `${change.name} is known to one description only.` };
-  if (change.shapeChanged) return { unknown: `${change.name} has another number of cells than before.` };
-  if (change.axisChanged && change.type !== "AXIS_PTS")
-    return { unknown: `The axis points of ${change.name} moved, so its cells hold at other places.` };
-  if (change.changes.some(({ before, after }) => before === null || after === null))
-    return { unknown: `${change.name} has changed cells without a value.` };
+/** The largest move of a cell, and why some of it can't be told; nothing for words. */
+function moveOf(gate: StepLimitGate, change: CharacteristicChange): Found[] {
+  const { before, after, changes, largestRise, largestFall } = change;
+  if (isUnlisted(change)) return unknown(change, UNLISTED);
+  if (!before || !after) return unknown(change, "is known to one description only");
+  if (change.shapeChanged) return unknown(change, "has another number of cells than before");
   const move = largestMove(change);
-  return move && sized(gate, change, move);
+  if (move && move.size > 0 && largestRise === null && largestFall === null)
+    return unknown(change, "has another unit in each of the two descriptions");
+  return [
+    ...(move ? [sized(gate, change, move)] : []),
+    ...(change.axisChanged && change.type !== "AXIS_PTS"
+      ? unknown(change, "has axis points that moved, so its cells hold at other places")
+      : []),
+    ...(changes.some((cell) => cell.before === null || cell.after === null)
+      ? unknown(change, "has changed cells without a value")
+      : []),
+  ];
 }
 
 function sized(gate: StepLimitGate, change: CharacteristicChange, step: TableStep): Found {

@@ -1,3 +1,4 @@
+import { spanOf } from "@/lib/calibration/changes/effect";
 import type { CharacteristicChange } from "@/lib/calibration/changes/types";
 import { cellIndex, changedCellFlags } from "@/lib/calibration/coverage/changed-cells";
 import type { PhysicalValue } from "@/lib/calibration/values/types";
@@ -17,9 +18,7 @@ const isNumber = (value: PhysicalValue | undefined): value is number =>
 /** What a share of a table refers to: the span of its values before, or their size where all are alike; null for none or zero. */
 export function shareBase({ before }: CharacteristicChange): number | null {
   const numbers = (before?.values ?? []).filter(isNumber);
-  if (numbers.length === 0) return null;
-  const span = numbers.reduce((a, b) => Math.max(a, b)) - numbers.reduce((a, b) => Math.min(a, b));
-  return span || Math.abs(numbers[0]) || null;
+  return spanOf(numbers) || Math.abs(numbers[0] ?? 0) || null;
 }
 
 /**

@@ -52,9 +52,10 @@ function uncoveredText({ uncovered, uncoveredBytes, uncoveredRanges, notRead }: 
   const where = first
     ? `, the first at ${formatAddress(first.address)}${first.segment ? ` in ${first.segment}` : ""}`
     : "";
+  const hidden = new Set(notRead.map(({ name }) => name)).size;
   const unread =
-    notRead.length > 0
-      ? ` ${counted(notRead.length, "characteristic")} could not be read; bytes under ${notRead.length === 1 ? "it" : "them"} count as outside.`
+    hidden > 0
+      ? ` ${counted(hidden, "characteristic")} could not be read; bytes under ${hidden === 1 ? "it" : "them"} count as outside.`
       : "";
   return `${figure(uncoveredBytes, 0)} ${uncoveredBytes === 1 ? "byte differs" : "bytes differ"} in ${counted(uncoveredRanges, "place")} outside the description${where}.${unread}`;
 }

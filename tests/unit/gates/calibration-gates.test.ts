@@ -16,7 +16,7 @@ import {
   side,
   UNCOVERED,
   withCalibration,
-} from "./calibration-sample";
+} from "@/tests/support/change-set-sample";
 
 const ask = (gate: Gate, known: Partial<CalibrationEvidence> | null) =>
   evaluateGates({ plan: 1, gates: [gate] }, withCalibration(known && calibration(known)))[0];

@@ -5,7 +5,7 @@ import type { Gate, GateState } from "@/lib/gates/plan";
 import { startingPlan } from "@/lib/gates/starting-plan";
 import { figure } from "@/lib/gates/verdict";
 import type { CampaignResult, DeltaResult } from "@/lib/measure/types";
-import { calibration } from "./calibration-sample";
+import { calibration } from "@/tests/support/change-set-sample";
 import { fullLoad } from "./full-load-sample";
 
 const RPM = Array.from({ length: 91 }, (_, k) => 1700 + 50 * k);

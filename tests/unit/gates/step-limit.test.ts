@@ -12,7 +12,7 @@ import {
   side,
   UNCOVERED,
   withCalibration,
-} from "./calibration-sample";
+} from "@/tests/support/change-set-sample";
 
 const gate = (over: Partial<StepLimitGate>): Gate => ({
   ...{ id: "s", kind: "step_limit", level: "must", scope: [], measure: "unit", against: "standing" },
@@ -65,12 +65,18 @@ describe("Moves", () => {
     const shape = change("grown", side([1, 2], [1, 2]), side([1, 2, 3], X), { shapeChanged: true });
     const moved = change("shifted", side([1, 2], [1, 2]), side([1, 2], [1, 3]), { axisChanged: true });
     const hollow = change("hollow", side([1]), side([null]));
-    for (const open of [added, shape, moved, hollow]) {
-      const got = ask(gate({ movedAtMost: 5 }), of(open));
+    const otherUnit = change("kelvin", side([10]), side([283.15]), { largestRise: null });
+    const unlisted = { ...change("huge", side([1]), side([2])), before: null, after: null, changes: [] };
+    for (const open of [added, shape, moved, hollow, otherUnit, unlisted]) {
+      const got = ask(gate({ movedAtMost: 500 }), of(open));
       expect(got.state).toBe("too_little");
       expect(got.why).toContain(open.name);
     }
     expect(ask(gate({ movedAtMost: 2 }), of(map, added)).state).toBe("not_met");
+    const partly = change("partly", side([1, 2, 3], X), side([null, 2, 30], X));
+    expect(ask(gate({ movedAtMost: 20 }), of(partly)).state).toBe("not_met");
+    expect(ask(gate({ maxNeighbourStep: 20 }), of(partly)).state).toBe("not_met");
+    expect(ask(gate({ maxNeighbourStep: 30 }), of(partly)).state).toBe("too_little");
   });
 
   it("leaves words out", () => {
@@ -79,6 +85,7 @@ describe("Moves", () => {
       state: "met",
       why: "1 changed characteristic has nothing to hold against this limit.",
     });
+    expect(ask(gate({ movedAtMost: 3 }), of(map, word)).why).toMatch(/Words have no size: mode\.$/);
   });
 });
 

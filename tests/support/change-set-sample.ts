@@ -1,4 +1,9 @@
-import type { ChangeSet, ChangeSide, CharacteristicChange } from "@/lib/calibration/changes/types";
+import type {
+  CellChange,
+  ChangeSet,
+  ChangeSide,
+  CharacteristicChange,
+} from "@/lib/calibration/changes/types";
 import type { Coverage } from "@/lib/calibration/coverage/types";
 import type { PhysicalValue } from "@/lib/calibration/values/types";
 import type { CalibrationEvidence, GateEvidence } from "@/lib/gates/evidence";
@@ -18,6 +23,14 @@ export function side(values: PhysicalValue[], ...points: number[][]): ChangeSide
   };
 }
 
+function extremes(changes: readonly CellChange[]) {
+  const deltas = changes.flatMap(({ before, after }) =>
+    typeof before === "number" && typeof after === "number" ? [after - before] : [],
+  );
+  const [most, least] = [Math.max(0, ...deltas), Math.min(0, ...deltas)];
+  return { largestRise: most > 0 ? most : null, largestFall: least < 0 ? least : null };
+}
+
 /** An invented change between two sides of one shape; the changed cells follow from their values. */
 export function change(
   name: string,
@@ -35,7 +48,7 @@ export function change(
     ...{ name, text: "", type: (["VALUE", "CURVE", "MAP", "CUBOID"] as const)[after?.axes.length ?? 0] },
     ...{ address: 0x810000, unit: "°", decimals: 2, functions: [], groups: [], kind: "changed" },
     ...{ cells: after?.values.length ?? 0, changed: changes.length, axisChanged: false, shapeChanged: false },
-    ...{ before, after, changes, largestRise: null, largestFall: null, effect: 1 },
+    ...{ before, after, changes, ...extremes(changes), effect: 1 },
     ...{ largestNeighbourStep: { before: null, after: null }, digest: "" },
     ...over,
   };
