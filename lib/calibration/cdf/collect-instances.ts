@@ -32,6 +32,9 @@ export class InstanceCollector {
   private valueCount = 0;
   private problemCount = 0;
 
+  /** @param mostValues bound of values in the file */
+  constructor(private readonly mostValues = MOST_VALUES) {}
+
   get depth(): number {
     return this.path.length;
   }
@@ -192,8 +195,11 @@ export class InstanceCollector {
   }
 
   private counted(value: CdfValue): CdfValue {
-    if (++this.valueCount > MOST_VALUES)
-      throw new FileRefusedError("too_many_values", `The values file holds more than ${MOST_VALUES} values.`);
+    if (++this.valueCount > this.mostValues)
+      throw new FileRefusedError(
+        "too_many_values",
+        `The values file holds more than ${this.mostValues} values.`,
+      );
     return value;
   }
 

@@ -1,4 +1,5 @@
 import { describe, expect, it } from "vitest";
+import { InstanceCollector } from "@/lib/calibration/cdf/collect-instances";
 import { readCdfx } from "@/lib/calibration/cdf/read-cdfx";
 import { CDF_REFUSALS } from "@/lib/calibration/cdf/types";
 import { FileRefusedError } from "@/lib/errors";
@@ -209,9 +210,15 @@ describe("what is refused", () => {
     expect(error.message).toMatch(message);
   });
   it("more values than any calibration has", () => {
-    const row = `<V>1</V>`.repeat(50_000);
-    const bytes = utf8(tree(plain("a", "CURVE", row.repeat(101))));
-    expect(refusal(bytes).code).toBe("too_many_values");
+    const collector = new InstanceCollector(5);
+    for (const name of ["SW-INSTANCE", "SW-VALUES-PHYS"]) collector.open(name);
+    const add = () => {
+      collector.open("V");
+      collector.text("1");
+      collector.close();
+    };
+    for (let k = 0; k < 5; k++) add();
+    expect(add).toThrow(/more than 5 values/);
   });
   it("problems without end are counted, not all kept", () => {
     const { problems } = readCdfx(utf8(tree(plain("a", "CURVE", "<V>x</V>".repeat(5000)))));

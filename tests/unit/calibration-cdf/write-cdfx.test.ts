@@ -44,7 +44,7 @@ const axis: fc.Arbitrary<CdfAxis> = fc.oneof(
     category: fc.constantFrom("COM_AXIS", "RES_AXIS", "CURVE_AXIS"),
     reference: name,
     unit: text,
-    values: fc.constant([]),
+    values: fc.constant<CdfAxis["values"]>([]),
   }),
 );
 const instance: fc.Arbitrary<CdfInstance> = shape.chain(({ category, dims }) =>

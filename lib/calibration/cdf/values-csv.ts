@@ -1,0 +1,131 @@
+import Papa from "papaparse";
+import { cellIndex } from "@/lib/calibration/cdf/cell-index";
+import { limitStateOf } from "@/lib/calibration/changes/limit-state";
+import type {
+  ChangeSet,
+  ChangeSide,
+  CharacteristicChange,
+  LimitState,
+} from "@/lib/calibration/changes/types";
+import type {
+  ImageReading,
+  PhysicalValue,
+  ReadAxis,
+  ReadCharacteristic,
+} from "@/lib/calibration/values/types";
+import { FORMULA_START } from "@/lib/format/formula-start";
+
+type Cell = string | number | null;
+/** What places a row: its axes, and the cell by axis, from 0. */
+interface Place {
+  axes: readonly ReadAxis[];
+  /** NaN = not along this axis. */
+  index: readonly number[];
+}
+
+const AXES = ["x", "y", "z", "4", "5"] as const;
+const AXIS_TITLES = AXES.flatMap((axis) => [`${axis} index`, `${axis} value`, `${axis} unit`]);
+const LIMITS: Readonly<Record<LimitState, string>> = {
+  ok: "inside",
+  extended: "inside the extended limits only",
+  below: "below the lower limit",
+  above: "above the upper limit",
+};
+
+/**
+ * All values of a reading as CSV (RFC 4180), one row a cell, a piece a characteristic: point as decimal mark, an empty cell where there is
+ * no value.
+ */
+export function* readingCsv(reading: ImageReading): Generator<string> {
+  yield csvOf([["name", ...AXIS_TITLES, "value", "unit", "limit", "functions"]]);
+  for (const of of reading.characteristics) yield csvOf(readingRows(of));
+}
+
+/**
+ * The changed cells of a change set as CSV, likewise, and the points of own axes that moved ("axis x" under `change`); of what was
+ * added, removed or has another shape every cell of each side.
+ */
+export function* changesCsv(changes: ChangeSet): Generator<string> {
+  const titles = ["before", "after", "difference", "unit", "limit after", "functions"];
+  yield csvOf([["name", "change", ...AXIS_TITLES, ...titles]]);
+  for (const change of changes.characteristics) yield csvOf(changeRows(change));
+}
+
+function readingRows(of: ReadCharacteristic): Cell[][] {
+  const { axes, dims, limits, unit, characters } = of;
+  const functions = of.functions.join(", ");
+  return cellsOf({ axes, dims, values: of.values, characters }).map(({ index, value }) => [
+    of.name,
+    ...placed({ axes, index }),
+    value,
+    unit,
+    LIMITS[limitStateOf(value, limits)],
+    functions,
+  ]);
+}
+
+function changeRows(change: CharacteristicChange): Cell[][] {
+  const { name, before, after, kind, changes } = change;
+  const functions = change.functions.join(", ");
+  const line = (at: Place, from: PhysicalValue, to: PhysicalValue, over: Partial<Shown> = {}): Cell[] => {
+    const { what, unit, limit } = { what: kind, unit: change.unit, limit: "", ...over };
+    const difference = typeof from === "number" && typeof to === "number" ? to - from : null;
+    return [name, what, ...placed(at), from, to, difference, unit, limit, functions];
+  };
+  // Cells that only one side has, or of other shapes, do not stand for each other.
+  const eachSide = () => [
+    ...cellsOf(before).map(({ value, ...at }) => line(at, value, null)),
+    ...cellsOf(after).map(({ value, ...at }) => line(at, null, value)),
+  ];
+  if (!before || !after) return eachSide();
+  return [
+    ...movedPoints(before, after).map(({ axis, index, from, to, unit }) =>
+      line({ axes: [], index }, from, to, { what: `axis ${axis}`, unit }),
+    ),
+    ...changes.map(({ index, before: from, after: to, limit }) =>
+      line({ axes: after.axes, index }, from, to, { limit: LIMITS[limit] }),
+    ),
+    ...(before.characters !== null && after.characters !== null
+      ? [line({ axes: [], index: [] }, before.characters, after.characters)]
+      : change.shapeChanged
+        ? eachSide()
+        : []),
+  ];
+}
+
+/** What a row of a change says beside its place and values. */
+interface Shown {
+  what: string;
+  unit: string;
+  limit: string;
+}
+
+/** Points of own axes that moved; shared axes are changes of their own, and other numbers of points another shape. */
+function movedPoints(before: ChangeSide, after: ChangeSide) {
+  return after.axes.flatMap((axis, k) => {
+    const old = before.axes[k]?.points ?? [];
+    if (axis.reference !== null || old.length !== axis.points.length) return [];
+    return axis.points.flatMap((to, point) => {
+      const index = Array.from({ length: k + 1 }, (_, at) => (at === k ? point : Number.NaN));
+      return old[point] === to ? [] : [{ axis: AXES[k], index, from: old[point], to, unit: axis.unit }];
+    });
+  });
+}
+
+function cellsOf(side: ChangeSide | null) {
+  if (!side) return [];
+  const { axes, dims, values, characters } = side;
+  if (characters !== null) return [{ axes, index: [], value: characters }];
+  return values.map((value, cell) => ({ axes, index: cellIndex(cell, dims), value }));
+}
+
+/** Index, point and unit of each axis; empty where the cell has no such axis. */
+function placed({ axes, index }: Place): Cell[] {
+  return AXES.flatMap((_, k): Cell[] => {
+    const at = index[k] ?? Number.NaN;
+    return Number.isNaN(at) ? [null, null, null] : [at, axes[k]?.points[at] ?? null, axes[k]?.unit ?? null];
+  });
+}
+
+const csvOf = (rows: Cell[][]) =>
+  rows.length === 0 ? "" : `${Papa.unparse(rows, { escapeFormulae: FORMULA_START })}\r\n`;
