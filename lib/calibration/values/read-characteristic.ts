@@ -31,9 +31,10 @@ export function readCharacteristic(
 ): ReadCharacteristic {
   const { module, book, memory } = context;
   refuseVirtual(wanted);
-  if (wanted.axes.length !== AXES[wanted.type]) {
+  const needed = AXES[wanted.type];
+  if (wanted.axes.length !== needed) {
     throw new NotReadable(
-      `it is a ${wanted.type} with ${wanted.axes.length} axis descriptions, ${AXES[wanted.type]} are needed`,
+      `it is a ${wanted.type} with ${wanted.axes.length} axis descriptions, ${needed} ${needed === 1 ? "is" : "are"} needed`,
     );
   }
   const layout = module.layouts.get(wanted.layout);
@@ -111,7 +112,7 @@ function refuseVirtual({ derived }: Characteristic): void {
 function blockDims({ type, matrixDim }: Characteristic): number[] {
   if (type === "VALUE") return [];
   if (matrixDim === null || matrixDim.length === 0) {
-    throw new NotReadable(`it is a ${type} and states no number of cells`);
+    throw new NotReadable(`its type is ${type} and it states no number of cells`);
   }
   const dims = [...matrixDim];
   while (dims.length > 1 && dims[dims.length - 1] === 1) dims.pop();

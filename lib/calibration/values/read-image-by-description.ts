@@ -1,5 +1,5 @@
 import type { Description, DescriptionModule } from "@/lib/calibration/a2l/types";
-import type { CalibrationImage } from "@/lib/calibration/image/types";
+import { ADDRESS_LIMIT, type CalibrationImage } from "@/lib/calibration/image/types";
 import { checkEpk } from "@/lib/calibration/values/check-epk";
 import { ConversionBook } from "@/lib/calibration/values/convert/conversion-book";
 import { ImageMemory } from "@/lib/calibration/values/memory/image-memory";
@@ -68,10 +68,13 @@ function readModule(context: ReadingContext, names: Set<string>, reading: ImageR
       if (names.has(name))
         throw new NotReadable("another module or block of the description has this name too");
       names.add(name);
+      if (address !== null && !isAddress(address))
+        throw new NotReadable(`its address ${address} is not possible`);
       reading.characteristics.push(read());
     } catch (error) {
       if (!(error instanceof NotReadable)) throw error;
-      reading.notRead.push({ name, reason: `${error.message}.`, address });
+      const at = address !== null && isAddress(address) ? address : null;
+      reading.notRead.push({ name, reason: `${error.message}.`, address: at });
     }
   };
   for (const { name, address } of context.module.axisPoints.values()) {
@@ -82,6 +85,8 @@ function readModule(context: ReadingContext, names: Set<string>, reading: ImageR
     attempt(wanted.name, address, () => readCharacteristic(context, wanted));
   }
 }
+
+const isAddress = (address: number) => Number.isInteger(address) && address >= 0 && address < ADDRESS_LIMIT;
 
 const NAMES_SHOWN = 5;
 
