@@ -1,5 +1,5 @@
-import { cellIndex } from "@/lib/calibration/cdf/cell-index";
 import type { CdfAxis, CdfFile, CdfInstance, CdfValue } from "@/lib/calibration/cdf/types";
+import { cellIndex } from "@/lib/calibration/coverage/changed-cells";
 import type {
   ImageReading,
   PhysicalValue,

@@ -1,5 +1,4 @@
 import Papa from "papaparse";
-import { cellIndex } from "@/lib/calibration/cdf/cell-index";
 import { limitStateOf } from "@/lib/calibration/changes/limit-state";
 import type {
   ChangeSet,
@@ -7,6 +6,7 @@ import type {
   CharacteristicChange,
   LimitState,
 } from "@/lib/calibration/changes/types";
+import { cellIndex } from "@/lib/calibration/coverage/changed-cells";
 import type {
   ImageReading,
   PhysicalValue,

@@ -1,6 +1,7 @@
 import Papa from "papaparse";
 import { type PlottedGrid, plottedGrid } from "@/lib/compare/plotted-grid";
 import { ConflictError } from "@/lib/errors";
+import { FORMULA_START } from "@/lib/format/formula-start";
 import { ENGINE_CHANNELS, ENGINE_UNITS } from "@/lib/measure/engine/full-load-types";
 import { valuesOn } from "@/lib/measure/engine/values-on";
 import type { CampaignResult } from "@/lib/measure/types";
@@ -8,9 +9,6 @@ import { getComparison } from "@/lib/services/comparisons/load";
 import { sideLabels, sideOfRun } from "@/lib/services/comparisons/schema";
 import { type Ctx, withTransaction } from "@/lib/services/ctx";
 import { appendLedger } from "@/lib/services/ledger/append";
-
-/** Texts that a spreadsheet would take for a formula get an apostrophe in front (OWASP ASVS 5.0, 1.2.10); numbers stay. */
-const FORMULA_START = /^[=+\-@\t\r\n\0]/;
 
 /**
  * The plotted grid as CSV (RFC 4180): units in the header, decimal point always, a gap is an empty cell.

@@ -1,6 +1,7 @@
 import Papa from "papaparse";
 import { selectRunAnalyses, selectRunForJudging } from "@/db/queries/run-analyses";
 import { ConflictError, FileRefusedError } from "@/lib/errors";
+import { FORMULA_START } from "@/lib/format/formula-start";
 import type { RefusedRow } from "@/lib/logs/types";
 import { type Ctx, withTransaction } from "@/lib/services/ctx";
 import { appendLedger } from "@/lib/services/ledger/append";
@@ -10,11 +11,6 @@ import { readStoredLog } from "@/lib/services/runs/read-stored-log";
 
 /** More bad rows than this are no list that anybody reads; the file says then that it ends there. */
 const MOST_ROWS = 100_000;
-/**
- * Texts that a spreadsheet would take for a formula get an apostrophe in front (OWASP ASVS 5.0, 1.2.10); a plain number with a
- * sign is none and stays as the log has it.
- */
-const FORMULA_START = /^(?![+-]?\d+(?:[.,]\d+)?$)[=+\-@\t\r\n\0]/;
 
 /** Refused rows as CSV (RFC 4180): the line of the file, the column, the raw text and the reason. */
 export function refusedRowsCsv(rows: readonly RefusedRow[], most = MOST_ROWS): string {
