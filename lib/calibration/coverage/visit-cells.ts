@@ -42,8 +42,27 @@ export interface CellVisits {
 
 /** A cell is entered anew after being left for this long (common practice, no source). */
 const AWAY_S = 0.5;
-/** A table has up to five axes, so that a sample lies between up to 32 cells. */
-const MOST_CORNERS = 32;
+/** A table has up to five axes: beyond the first two a sample lies between up to eight lines of cells. */
+const MOST_CORNERS = 8;
+
+/** A table while one run is added to it. */
+interface Tally {
+  seconds: Float64Array;
+  visits: Float64Array;
+  timeS: Float64Array;
+  joined: Uint8Array;
+  /** The last sample that used a cell, −1 for none. */
+  lastSample: Int32Array;
+}
+
+/** Stands for the second axis of a curve: every sample lies in its only cell. */
+function noAxis(samples: number): AxisPlace {
+  return {
+    cell: new Int32Array(samples),
+    share: new Float64Array(samples),
+    outside: new Uint8Array(samples),
+  };
+}
 
 /**
  * Adds one run to a table: each sample's worth shared among the cells that multilinear interpolation uses, by their weight. A cell
@@ -57,44 +76,70 @@ export function visitCells(
   timeS: Float64Array,
   { worthS, joined }: SampleTimes,
 ): void {
+  const lastSample = new Int32Array(table.seconds.length).fill(-1);
   const { seconds, visits } = table;
-  const lastSample = new Int32Array(seconds.length).fill(-1);
+  const tally: Tally = { seconds, visits, timeS, joined, lastSample };
+  const [x, y = noAxis(timeS.length), ...others] = places;
+  const row = dims[0];
+  const plane = row * (dims[1] ?? 1);
   const at = new Int32Array(MOST_CORNERS);
   const weight = new Float64Array(MOST_CORNERS);
   for (let i = 0; i < timeS.length; i++) {
-    if (worthS[i] === 0) continue;
-    at[0] = 0;
+    if (worthS[i] === 0 || x.cell[i] < 0 || y.cell[i] < 0) continue;
+    at[0] = x.cell[i] + row * y.cell[i];
     weight[0] = worthS[i];
     let corners = 1;
-    let stride = 1;
-    let beyond = 0;
-    for (let axis = 0; axis < places.length; axis++) {
-      const { cell, share, outside } = places[axis];
-      if (cell[i] < 0) {
-        corners = 0;
-        break;
-      }
+    let beyond = x.outside[i] | y.outside[i];
+    let stride = plane;
+    for (let axis = 0; axis < others.length && corners > 0; axis++) {
+      const { cell, share, outside } = others[axis];
       beyond |= outside[i];
-      const upper = share[i];
-      for (let k = 0; k < corners; k++) at[k] += cell[i] * stride;
-      if (upper > 0) {
-        for (let k = 0; k < corners; k++) {
-          at[corners + k] = at[k] + stride;
-          weight[corners + k] = weight[k] * upper;
-          weight[k] -= weight[corners + k];
-        }
-        corners *= 2;
-      }
-      stride *= dims[axis];
+      corners = cell[i] < 0 ? 0 : split(at, weight, corners, cell[i] * stride, stride, share[i]);
+      stride *= dims[axis + 2];
     }
     if (corners > 0 && beyond) table.secondsOutside += worthS[i];
     for (let k = 0; k < corners; k++) {
-      const cell = at[k];
-      seconds[cell] += weight[k];
-      const seen = lastSample[cell];
-      const left = seen < i - 1 || joined[i] === 0;
-      if (seen < 0 || (left && timeS[i] - timeS[seen] >= AWAY_S)) visits[cell]++;
-      lastSample[cell] = i;
+      const upper = weight[k] * y.share[i];
+      addTwo(tally, i, at[k], weight[k] - upper, x.share[i]);
+      if (upper > 0) addTwo(tally, i, at[k] + row, upper, x.share[i]);
     }
   }
+}
+
+/** Splits each corner in two along a further axis; gives their number. */
+function split(
+  at: Int32Array,
+  weight: Float64Array,
+  corners: number,
+  offset: number,
+  stride: number,
+  share: number,
+): number {
+  for (let k = 0; k < corners; k++) {
+    at[k] += offset;
+    at[corners + k] = at[k] + stride;
+    weight[corners + k] = weight[k] * share;
+    weight[k] -= weight[corners + k];
+  }
+  return share > 0 ? 2 * corners : corners;
+}
+
+/** Two neighbours along x. */
+function addTwo(tally: Tally, sample: number, cell: number, worthS: number, share: number): void {
+  const upper = worthS * share;
+  addOne(tally, sample, cell, worthS - upper);
+  if (upper > 0) addOne(tally, sample, cell + 1, upper);
+}
+
+function addOne(
+  { seconds, visits, lastSample, joined, timeS }: Tally,
+  sample: number,
+  cell: number,
+  worthS: number,
+) {
+  seconds[cell] += worthS;
+  const seen = lastSample[cell];
+  lastSample[cell] = sample;
+  if (seen === sample - 1 && joined[sample] === 1) return;
+  if (seen < 0 || timeS[sample] - timeS[seen] >= AWAY_S) visits[cell]++;
 }
