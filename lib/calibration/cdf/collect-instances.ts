@@ -2,8 +2,8 @@ import type { CdfAxis, CdfFile, CdfInstance, CdfValue } from "@/lib/calibration/
 import { ValueGroups } from "@/lib/calibration/cdf/value-groups";
 import { FileRefusedError } from "@/lib/errors";
 
-/** A large calibration has some hundred thousand cells; a made-up file must not claim memory by numbers. */
-const MOST_VALUES = 5_000_000;
+/** A reading of an image ends at eight million cells; a made-up file must not claim memory by numbers. */
+const MOST_VALUES = 10_000_000;
 const MOST_INSTANCES = 500_000;
 const LONGEST_TEXT = 1 << 20;
 const MOST_PROBLEMS = 200;
