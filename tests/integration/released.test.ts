@@ -1,9 +1,10 @@
 import { eq } from "drizzle-orm";
 import { describe, expect } from "vitest";
 import { comparisons, decisions, revisions } from "@/db/tables";
+import { getRevisionChanges } from "@/lib/services/change-sets/get";
 import { getProgramme } from "@/lib/services/programmes/get";
 import { shareProgramme } from "@/lib/services/programmes/share";
-import { getImageDifference, getRevision } from "@/lib/services/revisions/get";
+import { getRevision } from "@/lib/services/revisions/get";
 import { getRun } from "@/lib/services/runs/get";
 import { test } from "@/tests/support/database";
 import { createRunRow, createScene, type Scene } from "@/tests/support/decision-scene";
@@ -85,14 +86,14 @@ describe("a reader of a shared programme", () => {
     });
     expect((await getRevision(author, childId)).parent).toMatchObject({ number: 2 });
     expect((await getRevision(reader, childId)).parent).toBeNull();
-    await expect(getImageDifference(reader, childId)).rejects.toMatchObject({ status: 403 });
+    await expect(getRevisionChanges(reader, childId, candidateId)).rejects.toMatchObject({ status: 403 });
+    expect(await getRevisionChanges(reader, childId)).toMatchObject({ against: null, changes: null });
 
     await db.update(revisions).set({ state: "superseded" }).where(eq(revisions.id, candidateId));
     expect((await getRevision(reader, childId)).parent).toMatchObject({ number: 2 });
-    // Allowed now: the next thing asked for is the bytes, which this scene has none of.
-    await expect(getImageDifference(reader, childId)).rejects.not.toMatchObject({ status: 403 });
+    expect(await getRevisionChanges(reader, childId)).toMatchObject({ against: { number: 2 } });
     const stranger = await createMember(db, { workspaceId, roles: ["reader"], store: noStore });
-    await expect(getImageDifference(stranger, childId)).rejects.toMatchObject({ status: 403 });
+    await expect(getRevisionChanges(stranger, childId)).rejects.toMatchObject({ status: 403 });
   });
 
   test("sees the names of people, and no roles", async ({ database: { db } }) => {

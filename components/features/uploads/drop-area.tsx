@@ -3,10 +3,10 @@ import { Upload } from "lucide-react";
 import { type FileError, useDropzone } from "react-dropzone";
 import { Button } from "@/components/ui/action/button";
 import { cn } from "@/lib/cn";
-import { LARGEST_BYTES } from "@/lib/services/uploads/schema";
+import { type BeginUpload, LARGEST_BYTES } from "@/lib/services/uploads/schema";
 
 export interface DropAreaProps {
-  purpose: "log" | "image";
+  purpose: BeginUpload["purpose"];
   /** E.g. "Drop run logs here". */
   title: string;
   /** What is taken, in words. */
@@ -18,7 +18,7 @@ export interface DropAreaProps {
 const megabytes = (bytes: number) => Math.ceil(bytes / 1e6);
 
 /** All that is wrong with a file before it is sent, in one plain text; null when nothing. */
-function refusalOf(file: File, purpose: "log" | "image"): string | null {
+function refusalOf(file: File, purpose: BeginUpload["purpose"]): string | null {
   if (file.size === 0) return `${file.name} is empty: it has 0 bytes. Choose another.`;
   const limit = LARGEST_BYTES[purpose];
   if (file.size > limit) {

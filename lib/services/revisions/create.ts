@@ -26,7 +26,10 @@ export async function addRevision(
   const request = createRevision.parse(input);
   authorise(ctx, "revision.create");
   const { workspaceId, userId } = ctx;
-  const { uploadId, descriptionUploadIds, programmeId, parentId, baseAddress, ...text } = request;
+  const { uploadId, descriptionUploadIds, sameDescription, programmeId, parentId, baseAddress, ...text } =
+    request;
+  if (sameDescription && descriptionUploadIds.length > 0)
+    throw new InvalidInputError("two_descriptions", "Take the parent's description or files, not both.");
   const sealed = await sealUpload(ctx, { uploadId, purpose: "image" });
   const sealedFiles = await sealDescription(ctx, descriptionUploadIds);
   const source = {
@@ -39,13 +42,15 @@ export async function addRevision(
     const number = await takeRevisionNumber(tx, { workspaceId, programmeId });
     if (number === null)
       throw new NotFoundError("no_programme", "There is no such programme, or it is archived.");
+    const parent = parentId === null ? null : await selectRevision(tx, { workspaceId, revisionId: parentId });
     if (parentId !== null) {
-      const parent = await selectRevision(tx, { workspaceId, revisionId: parentId });
       if (!parent) throw noRevision();
       if (parent.programmeId !== programmeId) {
         throw new InvalidInputError("foreign_parent", "The parent must be a revision of the same programme.");
       }
     }
+    if (sameDescription && !parent?.descriptionId)
+      throw new InvalidInputError("no_description", "The parent has no description to take over.");
     await spendSealedUpload(tx, inner, sealed);
     const description =
       sealedFiles.length === 0
@@ -60,7 +65,7 @@ export async function addRevision(
       parentId,
       imageBytes: sealed.sizeBytes,
       imageSummary,
-      descriptionId: description?.id ?? null,
+      descriptionId: description?.id ?? (sameDescription ? parent?.descriptionId : null) ?? null,
       authorId: userId,
     });
     await appendLedger(tx, inner, {
@@ -74,6 +79,7 @@ export async function addRevision(
         sha256: sealed.sha256,
         identity: imageSummary.identity,
         title: text.title,
+        ...(sameDescription && { sameDescriptionAs: parentId }),
         ...(description && { description: { sha256: description.sha256, files: description.files } }),
       },
     });

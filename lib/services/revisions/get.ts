@@ -1,19 +1,15 @@
 import { selectUser } from "@/db/queries/people";
-import { isShared } from "@/db/queries/programmes";
 import {
   selectDecisionsOfRevision,
   selectRevision,
   selectRunsOfRevision,
   selectStanding,
 } from "@/db/queries/revisions";
-import type { ImageDifference } from "@/lib/calibration/image/image-summary";
-import { FileRefusedError } from "@/lib/errors";
 import { isReaderOnly, RELEASED_STATES, RELEASING_KINDS } from "@/lib/policy/released";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { loadProgramme } from "@/lib/services/programmes/load";
 import { missingForDecision } from "@/lib/services/revisions/ask-for-decision";
 import { noRevision } from "@/lib/services/revisions/load";
-import { differenceOf, openCalibrationImage } from "@/lib/services/revisions/read-image";
 import { missingForValidating } from "@/lib/services/revisions/start-validating";
 
 /** Everything the revision page shows. @throws NotFoundError for another workspace's, ForbiddenError for an unshared reader */
@@ -46,33 +42,4 @@ export async function getRevision(ctx: Ctx, revisionId: string) {
       decision: revision.state === "validating" ? await missingForDecision(db, revision) : [],
     },
   };
-}
-
-/**
- * What differs between a revision's image and its parent's; null without a parent. A damaged file is told in a sentence.
- * @throws NotFoundError; ForbiddenError for a reader unless the programme is shared and both revisions are released
- */
-export async function getImageDifference(
-  ctx: Ctx,
-  revisionId: string,
-): Promise<{ difference: ImageDifference } | { failure: string } | null> {
-  const { workspaceId, db, userId } = ctx;
-  const revision = await selectRevision(db, { workspaceId, revisionId });
-  if (!revision) throw noRevision();
-  const { parentId, programmeId } = revision;
-  const parent = parentId ? await selectRevision(db, { workspaceId, revisionId: parentId }) : null;
-  const released = [revision, parent].every((row) => row === null || RELEASED_STATES.has(row.state));
-  const granted = released && (await isShared(db, { workspaceId, programmeId, userId }));
-  authorise(ctx, "revision.compare_images", { granted });
-  if (!parent) return null;
-  try {
-    const [before, after] = [
-      await openCalibrationImage(ctx, parent),
-      await openCalibrationImage(ctx, revision),
-    ];
-    return { difference: differenceOf(before, after) };
-  } catch (error) {
-    if (error instanceof FileRefusedError) return { failure: error.message };
-    throw error;
-  }
 }

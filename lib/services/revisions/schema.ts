@@ -67,6 +67,8 @@ export const createRevision = revisionText.extend({
   baseAddress: baseAddress.default(null as never),
   /** Files of its description, the main one first; none: bytes only, until one is added. */
   descriptionUploadIds: descriptionUploads.default([]),
+  /** Read by the description of its parent, instead of files of its own. */
+  sameDescription: z.boolean().default(false),
 });
 export type CreateRevision = z.input<typeof createRevision>;
 

@@ -7,9 +7,11 @@ import { useForm } from "react-hook-form";
 import { ChangedRanges } from "@/components/features/revisions/changed-ranges";
 import { ImageUnderstood } from "@/components/features/revisions/image-understood";
 import { RevisionFields } from "@/components/features/revisions/revision-fields";
+import { DescriptionUploads, descriptionUploadIds } from "@/components/features/uploads/description-uploads";
 import { UploadList } from "@/components/features/uploads/upload-list";
 import { useUploads } from "@/components/features/uploads/use-uploads";
 import { Button } from "@/components/ui/action/button";
+import { RadioCards } from "@/components/ui/form/radio-cards";
 import { Select } from "@/components/ui/form/select";
 import { TextInput } from "@/components/ui/form/text-input";
 import { Card } from "@/components/ui/layout/card";
@@ -25,8 +27,17 @@ import {
 
 export interface NewRevisionFormProps {
   programmeId: string;
-  parents: { id: string; number: number; title: string; stands: boolean }[];
+  parents: {
+    id: string;
+    number: number;
+    title: string;
+    stands: boolean;
+    /** Files of its description; null: it has none. */
+    descriptionFiles: string[] | null;
+  }[];
 }
+
+type DescriptionFrom = "parent" | "files" | "none";
 
 /** Image first, what was understood of it, then what the calibrator states; nothing joins the lineage before the last button. */
 export function NewRevisionForm({ programmeId, parents }: NewRevisionFormProps) {
@@ -34,6 +45,13 @@ export function NewRevisionForm({ programmeId, parents }: NewRevisionFormProps) 
   const uploads = useUploads("image");
   const item = uploads.items.find((candidate) => candidate.uploadId !== null);
   const [parentId, setParentId] = useState(parents[0]?.id ?? "");
+  const parent = parents.find(({ id }) => id === parentId);
+  const descriptionFiles = useUploads("description");
+  const [chosenFrom, setChosenFrom] = useState<DescriptionFrom | null>(null);
+  const [mainId, setMainId] = useState<string | null>(null);
+  const usualFrom = parent?.descriptionFiles ? "parent" : "files";
+  const describedBy =
+    chosenFrom === null || (chosenFrom === "parent" && usualFrom === "files") ? usualFrom : chosenFrom;
   const [baseAddress, setBaseAddress] = useState("");
   const isRaw = item !== undefined && /\.bin$/i.test(item.file.name);
   const form = useForm<RevisionFormValues, unknown, RevisionText>({
@@ -58,6 +76,9 @@ export function NewRevisionForm({ programmeId, parents }: NewRevisionFormProps) 
         uploadId,
         parentId: parentId === "" ? null : parentId,
         baseAddress,
+        descriptionUploadIds:
+          describedBy === "files" ? descriptionUploadIds(descriptionFiles.items, mainId) : [],
+        sameDescription: describedBy === "parent",
       };
       const made = await callApi<{ revisionId: string; number: number }>("/api/revisions", {
         method: "POST",
@@ -68,6 +89,15 @@ export function NewRevisionForm({ programmeId, parents }: NewRevisionFormProps) 
       return `R${made.number} is in the lineage as a draft.`;
     });
   });
+
+  const isSending = descriptionFiles.items.some(({ phase }) =>
+    ["waiting", "checking", "sending"].includes(phase),
+  );
+  const blocked = !isUnderstood
+    ? "Drop an image and have it read first."
+    : describedBy === "files" && isSending
+      ? "The description is still on its way."
+      : null;
 
   return (
     <form onSubmit={add} noValidate className="flex flex-col gap-6">
@@ -141,16 +171,38 @@ export function NewRevisionForm({ programmeId, parents }: NewRevisionFormProps) 
           </div>
         </Card>
       )}
+      <Card
+        title="Description"
+        description="What tells where each map, curve and value lies. Without one a change is shown as bytes; it can be added later."
+      >
+        <div className="flex flex-col gap-4">
+          <RadioCards
+            name="description"
+            legend="The image is read by"
+            columns={3}
+            value={describedBy}
+            onChange={(event) => setChosenFrom(event.target.value as DescriptionFrom)}
+            options={[
+              {
+                value: "parent",
+                label: parent ? `The same description as R${parent.number}` : "The parent's description",
+                description: parent?.descriptionFiles?.join(", "),
+                blockedBecause: parent?.descriptionFiles ? null : "There is none to take over.",
+              },
+              { value: "files", label: "Files of its own" },
+              { value: "none", label: "None yet" },
+            ]}
+          />
+          {describedBy === "files" && (
+            <DescriptionUploads uploads={descriptionFiles} mainId={mainId} onMain={setMainId} />
+          )}
+        </div>
+      </Card>
       <Card title="What you state">
         <RevisionFields register={form.register} control={form.control} errors={form.formState.errors} />
       </Card>
       <div className="flex flex-wrap items-center gap-3">
-        <Button
-          type="submit"
-          look="filled"
-          blockedBecause={isUnderstood ? null : "Drop an image and have it read first."}
-          disabled={item?.phase === "attaching"}
-        >
+        <Button type="submit" look="filled" blockedBecause={blocked} disabled={item?.phase === "attaching"}>
           Add as a draft
         </Button>
       </div>
