@@ -7,6 +7,11 @@ const MOST_LISTED = 1000;
 const MOST_ENTRIES = 4_000_000;
 export const ENTRIES_OF_A_THING = 8;
 
+const LONGEST_TEXT = 300;
+
+/** A name of the file may be as long as the file. */
+const cut = (text: string) => (text.length > LONGEST_TEXT ? `${text.slice(0, LONGEST_TEXT)}…` : text);
+
 /** Where something stands. */
 export interface Place {
   file: string;
@@ -26,7 +31,7 @@ export class Findings {
 
   note(code: string, message: string, place: { file: string; line: number | null }): void {
     if (this.notes.length < MOST_LISTED)
-      this.notes.push({ code, message, file: place.file, line: place.line });
+      this.notes.push({ code, message: cut(message), file: place.file, line: place.line });
     else this.notesLeftOut++;
   }
 
@@ -39,7 +44,8 @@ export class Findings {
   }
 
   skipped(keyword: string, name: string, reason: string, line: number): void {
-    if (this.notRead.length < MOST_LISTED) this.notRead.push({ keyword, name, reason, line });
+    if (this.notRead.length < MOST_LISTED)
+      this.notRead.push({ keyword: cut(keyword), name: cut(name), reason: cut(reason), line });
     else this.blocksLeftOut++;
   }
 

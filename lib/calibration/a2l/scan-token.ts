@@ -47,6 +47,15 @@ function isDirective(bytes: Uint8Array, start: number, end: number, word: Uint8A
   return true;
 }
 
+/** Whether a slash ends the word before it: a comment, /begin or /end stands right behind. Any other belongs to the word. */
+function endsWord(bytes: Uint8Array, at: number): boolean {
+  const next = bytes[at + 1];
+  if (next === STAR_BYTE || next === SLASH_BYTE) return true;
+  let to = at + 1;
+  while (to <= at + BEGIN.length && CLASS[bytes[to]] === OTHER) to++;
+  return isDirective(bytes, at, to, BEGIN) || isDirective(bytes, at, to, END);
+}
+
 /** One past a comment that begins at `at`, -1 when it never ends, `at` when none begins there. */
 function commentEnd(bytes: Uint8Array, at: number): number {
   const second = bytes[at + 1];
@@ -111,9 +120,7 @@ export function scanToken(state: TokenState): TokenKind | NotClosed {
     const kind = CLASS[bytes[at]];
     if (kind !== OTHER) {
       if (kind !== SLASH) break;
-      // A comment right behind a word ends it; any other slash belongs to it.
-      const next = bytes[at + 1];
-      if (next === STAR_BYTE || next === SLASH_BYTE) break;
+      if (endsWord(bytes, at)) break;
     }
   }
   state.at = at;

@@ -10,7 +10,7 @@ const MOST_LISTED = 2000;
 const LONGEST_LINE = 500;
 /** Texts beyond this are not compared, nor is one looked for with more edits: together they bound time and memory. */
 const MOST_BYTES = 128 * 1024 * 1024;
-const MOST_EDITS = 4000;
+const MOST_EDITS = 2000;
 const MOST_STEPS = 2e9;
 
 /** Lines of all files; where there are several, each begins with a line of its name. */
@@ -51,6 +51,9 @@ function differingStretches(a: readonly string[], b: readonly string[]): Stretch
     a[a.length - 1 - tail] === b[b.length - 1 - tail]
   )
     tail++;
+  const whole = { fromA: head, toA: a.length - tail, fromB: head, toB: b.length - tail };
+  if (whole.fromA === whole.toA || whole.fromB === whole.toB)
+    return whole.toA - whole.fromA + whole.toB - whole.fromB > 0 ? [whole] : [];
   const numbers = new Map<string, number>();
   const middleA = numbered(a.slice(head, a.length - tail), numbers);
   const middleB = numbered(b.slice(head, b.length - tail), numbers);
@@ -126,7 +129,7 @@ function cut(hunks: readonly Hunk[]): { hunks: Hunk[]; truncated: boolean } {
 /**
  * The difference of two descriptions line by line (Myers' algorithm, npm `diff`), with three lines around each change and
  * at most 2,000 lines listed. Line ends and encodings do not count. `hunks` is null, and nothing is counted, where the
- * texts are larger than 128 MiB or differ in more than about 4,000 lines. Throws what decodeDescription throws.
+ * texts are larger than 128 MiB or differ in more than about 2,000 lines. Throws what decodeDescription throws.
  */
 export function textDifference(a: readonly DescriptionFile[], b: readonly DescriptionFile[]): TextDifference {
   const none = { hunks: null, added: 0, removed: 0, truncated: true };

@@ -60,7 +60,7 @@ export function tokenNumber({ bytes, start, end }: TokenState, text: () => strin
     : WRITTEN.test(written)
       ? Number(written)
       : Number.NaN;
-  return Number.isFinite(value) ? value : Number.NaN;
+  return Number.isFinite(value) ? value + 0 : Number.NaN;
 }
 
 /** A mask as a whole number of up to 64 bits; null where the text is none. */

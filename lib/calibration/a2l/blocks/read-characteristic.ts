@@ -3,7 +3,6 @@ import { readAxis } from "@/lib/calibration/a2l/blocks/read-axis";
 import { readByteOrder } from "@/lib/calibration/a2l/blocks/read-layout";
 import { maskNumber } from "@/lib/calibration/a2l/token-number";
 import type {
-  AxisDescription,
   AxisPoints,
   ByteOrder,
   Characteristic,
@@ -24,43 +23,37 @@ const AXES_OF: Readonly<Record<CharacteristicType, number>> = {
 };
 const MOST_DIMENSIONS = 5;
 const NO_CONVERSION = "NO_COMPU_METHOD";
-const NO_QUANTITY = "NO_INPUT_QUANTITY";
 
 /** Options that characteristics and shared axes have in common. */
-function newOptions() {
-  return {
-    displayIdentifier: null as string | null,
-    extendedLimits: null as readonly [number, number] | null,
-    byteOrder: null as ByteOrder | null,
-    format: null as string | null,
-    physUnit: null as string | null,
-    readOnly: false,
-  };
+interface PlacedOptions {
+  displayIdentifier: string | null;
+  extendedLimits: readonly [number, number] | null;
+  byteOrder: ByteOrder | null;
+  format: string | null;
+  physUnit: string | null;
+  readOnly: boolean;
 }
 
-function readPlacedOption(
-  reader: BlockReader,
-  keyword: string,
-  options: ReturnType<typeof newOptions>,
-): boolean {
+/** Reads an option of both into `placed`; false where the keyword is another. */
+function readPlacedOption(reader: BlockReader, keyword: string, placed: PlacedOptions): boolean {
   switch (keyword) {
     case "DISPLAY_IDENTIFIER":
-      options.displayIdentifier = reader.word("display identifier");
+      placed.displayIdentifier = reader.word("display identifier");
       return true;
     case "EXTENDED_LIMITS":
-      options.extendedLimits = [reader.limit("extended limit"), reader.limit("extended limit")];
+      placed.extendedLimits = [reader.limit("extended limit"), reader.limit("extended limit")];
       return true;
     case "BYTE_ORDER":
-      options.byteOrder = readByteOrder(reader, reader.begun);
+      placed.byteOrder = readByteOrder(reader, reader.begun);
       return true;
     case "FORMAT":
-      options.format = reader.word("format");
+      placed.format = reader.word("format");
       return true;
     case "PHYS_UNIT":
-      options.physUnit = reader.word("unit");
+      placed.physUnit = reader.word("unit");
       return true;
     case "READ_ONLY":
-      options.readOnly = true;
+      placed.readOnly = true;
       return true;
     case "DEPOSIT":
       if (reader.word("deposit") === "DIFFERENCE")
@@ -80,86 +73,118 @@ function readDimensions(reader: BlockReader): number[] {
   return sizes;
 }
 
+function readType(reader: BlockReader): CharacteristicType {
+  const word = reader.word("type");
+  if (isType(word)) return word;
+  reader.fault ??= `its type "${word}" is not known`;
+  return "VALUE";
+}
+
+function readMask(reader: BlockReader): bigint | null {
+  const written = reader.word("bit mask");
+  const mask = maskNumber(written);
+  if (mask === null) reader.fault ??= `its bit mask "${written}" is no whole number of up to 64 bits`;
+  return mask;
+}
+
+/** An option that characteristics alone have; false where the keyword is another. */
+function readOwnOption(reader: BlockReader, keyword: string, into: Mutable<Characteristic>): boolean {
+  switch (keyword) {
+    case "/AXIS_DESCR":
+      into.axes = [...into.axes, readAxis(reader)];
+      return true;
+    case "MATRIX_DIM":
+      into.matrixDim = readDimensions(reader);
+      return true;
+    case "NUMBER":
+      into.matrixDim ??= [reader.whole("number of values")];
+      return true;
+    case "BIT_MASK":
+      into.bitMask = readMask(reader);
+      return true;
+    case "DISCRETE":
+      into.discrete = true;
+      return true;
+    case "/VIRTUAL_CHARACTERISTIC":
+      into.derived = { kind: "virtual", formula: reader.word("formula"), inputs: reader.names() };
+      return true;
+    case "/DEPENDENT_CHARACTERISTIC":
+      into.derived = { kind: "dependent", formula: reader.word("formula"), inputs: reader.names() };
+      return true;
+    default:
+      return false;
+  }
+}
+
+type Mutable<T> = { -readonly [K in keyof T]: T[K] };
+
+/** The conversion, which stands behind the largest difference of a value to its neighbours. */
+function readConversionName(reader: BlockReader): string | null {
+  reader.number("largest difference");
+  return reader.reference("conversion", NO_CONVERSION);
+}
+
 /** Reads a CHARACTERISTIC with its options in any order. Faults stand in `reader.fault`. */
 export function readCharacteristic(reader: BlockReader): Characteristic {
   const place = reader.begun;
-  const name = reader.word("name");
-  const text = reader.quoted();
-  const typeWord = reader.word("type");
-  const type = isType(typeWord) ? typeWord : "VALUE";
-  if (type !== typeWord) reader.fault ??= `its type "${typeWord}" is not known`;
-  const address = reader.whole("address");
-  const layout = reader.word("record layout");
-  reader.number("largest difference");
-  const conversion = reader.reference("conversion", NO_CONVERSION);
-  const limits = { lowerLimit: reader.limit("lower limit"), upperLimit: reader.limit("upper limit") };
-  const options = newOptions();
-  const axes: AxisDescription[] = [];
-  let matrixDim: number[] | null = null;
-  let bitMask: bigint | null = null;
-  let discrete = false;
-  let derived: Characteristic["derived"] = null;
+  // Members are read in the order in which the standard has the parameters; spreads would cost half of the time.
+  const read: Mutable<Characteristic> = {
+    name: reader.word("name"),
+    text: reader.quoted(),
+    type: readType(reader),
+    address: reader.whole("address"),
+    layout: reader.word("record layout"),
+    conversion: readConversionName(reader),
+    lowerLimit: reader.limit("lower limit"),
+    upperLimit: reader.limit("upper limit"),
+    displayIdentifier: null,
+    extendedLimits: null,
+    byteOrder: null,
+    format: null,
+    physUnit: null,
+    readOnly: false,
+    line: place.line,
+    axes: [],
+    matrixDim: null,
+    bitMask: null,
+    discrete: false,
+    derived: null,
+  };
   for (let keyword = reader.option(); keyword !== null; keyword = reader.option()) {
-    if (readPlacedOption(reader, keyword, options)) continue;
-    switch (keyword) {
-      case "/AXIS_DESCR":
-        axes.push(readAxis(reader));
-        break;
-      case "MATRIX_DIM":
-        matrixDim = readDimensions(reader);
-        break;
-      case "NUMBER":
-        matrixDim ??= [reader.whole("number of values")];
-        break;
-      case "BIT_MASK": {
-        const written = reader.word("bit mask");
-        bitMask = maskNumber(written);
-        if (bitMask === null)
-          reader.fault ??= `its bit mask "${written}" is no whole number of up to 64 bits`;
-        break;
-      }
-      case "DISCRETE":
-        discrete = true;
-        break;
-      case "/VIRTUAL_CHARACTERISTIC":
-      case "/DEPENDENT_CHARACTERISTIC": {
-        const kind = keyword === "/VIRTUAL_CHARACTERISTIC" ? "virtual" : "dependent";
-        derived = { kind, formula: reader.word("formula"), inputs: reader.names() };
-        break;
-      }
-      default:
-        reader.pass(keyword, "CHARACTERISTIC");
-    }
+    if (!readPlacedOption(reader, keyword, read) && !readOwnOption(reader, keyword, read))
+      reader.pass(keyword, "CHARACTERISTIC");
   }
+  const { name, type, axes } = read;
   if (axes.length !== AXES_OF[type]) {
     const message = `${name} is a ${type}, which has ${AXES_OF[type]} axes, but ${axes.length} are described.`;
     reader.findings.note("axes_not_described", message, place);
   }
-  return {
-    ...{ name, text, type, address, layout, conversion, ...limits, ...options, line: place.line },
-    ...{ axes, matrixDim, bitMask, discrete, derived },
-  };
+  return read;
 }
 
 /** Reads an AXIS_PTS, an axis that several characteristics share. */
 export function readAxisPoints(reader: BlockReader): AxisPoints {
-  const { line } = reader.begun;
-  const name = reader.word("name");
-  const text = reader.quoted();
-  const address = reader.whole("address");
-  const inputQuantity = reader.reference("input quantity", NO_QUANTITY);
-  const layout = reader.word("record layout");
-  reader.number("largest difference");
-  const conversion = reader.reference("conversion", NO_CONVERSION);
-  const maxPoints = reader.whole("number of points");
-  const limits = { lowerLimit: reader.limit("lower limit"), upperLimit: reader.limit("upper limit") };
-  const options = newOptions();
-  for (let keyword = reader.option(); keyword !== null; keyword = reader.option())
-    if (!readPlacedOption(reader, keyword, options)) reader.pass(keyword, "AXIS_PTS");
-  return {
-    ...{ name, text, address, layout, conversion, ...limits, ...options, line },
-    ...{ inputQuantity, maxPoints },
+  const read: Mutable<AxisPoints> = {
+    line: reader.begun.line,
+    name: reader.word("name"),
+    text: reader.quoted(),
+    address: reader.whole("address"),
+    inputQuantity: reader.reference("input quantity", "NO_INPUT_QUANTITY"),
+    layout: reader.word("record layout"),
+    conversion: readConversionName(reader),
+    maxPoints: reader.whole("number of points"),
+    lowerLimit: reader.limit("lower limit"),
+    upperLimit: reader.limit("upper limit"),
+    displayIdentifier: null,
+    extendedLimits: null,
+    byteOrder: null,
+    format: null,
+    physUnit: null,
+    readOnly: false,
   };
+  for (let keyword = reader.option(); keyword !== null; keyword = reader.option())
+    if (!readPlacedOption(reader, keyword, read)) reader.pass(keyword, "AXIS_PTS");
+  return read;
 }
 
 /** Reads of a MEASUREMENT what axes need: name, text, conversion and unit. */
