@@ -33,6 +33,19 @@ export async function selectSetting<Kind extends SettingKind>(
   return row as { version: number; content: CalibrationSettings[Kind] };
 }
 
+/** One version of a kind; null where there is no such version. */
+export async function selectSettingVersion<Kind extends SettingKind>(
+  db: Queryable,
+  place: Place<Kind> & { version: number },
+): Promise<{ version: number; content: CalibrationSettings[Kind] } | null> {
+  const [row] = await db
+    .select({ version: calibrationSettings.version, content: calibrationSettings.content })
+    .from(calibrationSettings)
+    .where(and(at(place), eq(calibrationSettings.version, place.version)));
+  // As above: a row of this kind holds this kind's content.
+  return (row as { version: number; content: CalibrationSettings[Kind] } | undefined) ?? null;
+}
+
 /** Versions of a kind, newest first, without their content. */
 export async function selectSettingVersions(db: Queryable, place: Place<SettingKind>) {
   return await db

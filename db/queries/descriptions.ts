@@ -1,4 +1,4 @@
-import { and, eq, sql } from "drizzle-orm";
+import { and, desc, eq, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
 import { descriptions, revisions } from "@/db/tables";
 
@@ -35,6 +35,26 @@ export async function keepDescription(
 export async function selectDescription(db: Queryable, key: Key): Promise<DescriptionRow | null> {
   const [row] = await db.select().from(descriptions).where(at(key));
   return row ?? null;
+}
+
+/** What was understood of a programme's descriptions, the newest first. */
+export async function selectSummaries(
+  db: Queryable,
+  { workspaceId, programmeId, most }: { workspaceId: string; programmeId: string; most: number },
+): Promise<NonNullable<DescriptionRow["summary"]>[]> {
+  const rows = await db
+    .select({ summary: descriptions.summary })
+    .from(descriptions)
+    .where(
+      and(
+        eq(descriptions.workspaceId, workspaceId),
+        eq(descriptions.programmeId, programmeId),
+        eq(descriptions.state, "read"),
+      ),
+    )
+    .orderBy(desc(descriptions.createdAt))
+    .limit(most);
+  return rows.flatMap(({ summary }) => summary ?? []);
 }
 
 /** What a version of the reader made of a description. */

@@ -51,6 +51,23 @@ export interface EvidenceRevision {
   touchesEmissionOrSafety: boolean | null;
 }
 
+/** What was known of the changed values, and by whose word marked functions were released for the road. */
+export interface EvidenceCalibration {
+  changeSetId: string;
+  inputSha256: string;
+  /** Digest of the change set's canonical JSON, and of the coverage's; null where none was there. */
+  resultSha256: string;
+  coverageSha256: string | null;
+  readBy: "both" | "a" | "b" | "none";
+  changedBytes: number;
+  changedCharacteristics: number;
+  uncoveredBytes: number;
+  /** Marked functions and characteristics that the change touches. */
+  touched: { name: string; relevance: "emission" | "safety"; characteristics: string[] }[];
+  approval: { document: string; issuer: string } | null;
+  secondLead: { id: string; name: string; at: string; reason: string } | null;
+}
+
 /** The evidence a decision was taken on, frozen with it. */
 export interface DecisionEvidence {
   comparisonId: string | null;
@@ -63,6 +80,8 @@ export interface DecisionEvidence {
   sheetVersion: number | null;
   gatePlanVersion: number | null;
   gates: GateResult[];
+  /** Absent where no change set was there. */
+  calibration?: EvidenceCalibration;
   runs: EvidenceRun[];
   revision: EvidenceRevision;
   fromNumber: number | null;

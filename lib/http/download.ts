@@ -18,6 +18,20 @@ const GUARDED = {
   "content-security-policy": "sandbox",
 };
 
+/** A text made piece by piece as a download that no browser renders; nobody holds it as a whole. */
+export function downloadText(file: { fileName: string; type: string; pieces: Iterable<string> }): Response {
+  const body = Readable.toWeb(
+    Readable.from(file.pieces, { objectMode: true }).map((piece) => Buffer.from(piece)),
+  );
+  return new Response(body as ReadableStream<Uint8Array>, {
+    headers: {
+      "content-type": `${file.type}; charset=utf-8`,
+      "content-disposition": contentDisposition(file.fileName),
+      ...GUARDED,
+    },
+  });
+}
+
 /** A table made on the way as a download that no browser renders. */
 export function downloadCsv({ fileName, csv }: { fileName: string; csv: string }): Response {
   return new Response(csv, {

@@ -18,7 +18,7 @@ import {
   createRoadDayRow,
   createWorkspaceRow,
 } from "@/tests/support/factories";
-import { noStore } from "@/tests/support/no-store";
+import { imageStore, keepAnImage } from "@/tests/support/image-store";
 
 /** The tests that use this scene stand in for the hashing of passphrases: what is stored is the passphrase itself. */
 export const PASSPHRASE = "out and back again";
@@ -53,7 +53,7 @@ export async function createSigner(
   db: Database,
   args: Omit<Parameters<typeof createMember>[1], "store">,
 ): Promise<Ctx> {
-  const ctx = await createMember(db, { ...args, store: noStore });
+  const ctx = await createMember(db, { ...args, store: imageStore });
   await savePassphrase(db, { userId: ctx.userId, scryptHash: PASSPHRASE });
   return ctx;
 }
@@ -178,6 +178,7 @@ export async function createCandidate(
     submittedAt: new Date(),
     gatePlanVersion: 1,
     state: "in_review",
+    imageSha256: keepAnImage(scene.workspaceId),
     ...values,
   });
 }
@@ -232,6 +233,7 @@ export async function seenBy(ctx: Ctx, revisionId: string): Promise<PromoteInput
     inputSha256: desk.comparison?.inputSha256 ?? null,
     shownInputSha256: desk.comparison?.basis?.inputSha256 ?? null,
     gatePlanVersion: desk.gates.planVersion,
+    calibrationSha256: desk.calibration.seenSha256,
     typedNumber: `R${desk.revision.number}`,
     reason: "shown on the road",
     waivers: [],

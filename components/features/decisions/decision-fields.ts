@@ -9,6 +9,7 @@ export interface SeenByLead {
   inputSha256: string | null;
   shownInputSha256: string | null;
   gatePlanVersion: number | null;
+  calibrationSha256: string | null;
 }
 
 /** The fields of the form, all of them whatever is chosen: changing one's mind loses nothing. */
@@ -18,12 +19,16 @@ export interface DecisionFields {
   typedNumber: string;
   passphrase: string;
   waivers: { gateId: string; reason: string }[];
+  /** Both empty: no document is named. */
+  approval: { document: string; issuer: string };
 }
 
 /** What is sent for the decision chosen: a hold carries no waivers and no typed number. */
 export function toDecideInput(fields: DecisionFields, seen: SeenByLead): unknown {
-  const { kind, reason, passphrase, typedNumber, waivers } = fields;
+  const { kind, reason, passphrase, typedNumber, waivers, approval } = fields;
   const { gatePlanVersion, ...base } = seen;
   const common = { kind, ...base, reason, passphrase };
-  return kind === "promote" ? { ...common, gatePlanVersion, typedNumber, waivers } : common;
+  if (kind !== "promote") return common;
+  const isNamed = approval.document.trim() !== "" || approval.issuer.trim() !== "";
+  return { ...common, gatePlanVersion, typedNumber, waivers, approval: isNamed ? approval : null };
 }

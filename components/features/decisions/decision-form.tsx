@@ -3,6 +3,7 @@
 import { zodResolver } from "@hookform/resolvers/zod";
 import { useState, useTransition } from "react";
 import { FormProvider, type Resolver, useForm } from "react-hook-form";
+import { ApprovalFields } from "@/components/features/decisions/approval-fields";
 import {
   type DecisionFields,
   type SeenByLead,
@@ -26,6 +27,10 @@ export interface DecisionFormProps {
   openGates: readonly GateResult[];
   /** Why each step can't be taken by this person now; null when it can. */
   blocked: { promote: string | null; sendBack: string | null; waive: string | null };
+  /** Marked functions are changed for the road: a document or a second lead is needed. */
+  needsApproval: boolean;
+  /** Names of the leads whose agreement counts. */
+  agreedBy: readonly string[];
   hasPassphrase: boolean;
   peopleTold: number;
   action: (input: unknown) => Promise<{ ok: boolean; message?: string }>;
@@ -59,16 +64,25 @@ const SIGN_WORDS = { promote: "Sign and promote", hold: "Sign and hold", turn_do
 
 /** The countersign form: promote, hold or turn down, with waivers, reason, typed number and passphrase. */
 export function DecisionForm(props: DecisionFormProps) {
-  const { seen, number, openGates, blocked, hasPassphrase, action } = props;
+  const { seen, number, openGates, blocked, hasPassphrase, needsApproval, agreedBy, action } = props;
   const [pending, start] = useTransition();
   const [refusal, setRefusal] = useState<string | null>(null);
   const form = useForm<DecisionFields>({
     resolver: resolverFor(seen),
-    defaultValues: { kind: "", reason: "", typedNumber: "", passphrase: "", waivers: [] },
+    defaultValues: {
+      kind: "",
+      reason: "",
+      typedNumber: "",
+      passphrase: "",
+      waivers: [],
+      approval: { document: "", issuer: "" },
+    },
   });
   const { errors } = form.formState;
   const kind = form.watch("kind");
   const waived = form.watch("waivers").length;
+  const approval = form.watch("approval");
+  const isApproved = approval.document.trim() !== "" && approval.issuer.trim() !== "";
   const unwaived = kind === "promote" ? openGates.length - waived : 0;
 
   const send = form.handleSubmit(() =>
@@ -89,7 +103,9 @@ export function DecisionForm(props: DecisionFormProps) {
         ? "Choose a decision above."
         : unwaived > 0
           ? `${unwaived === 1 ? "One must gate is" : `${unwaived} must gates are`} not met and not waived.`
-          : null;
+          : kind === "promote" && needsApproval && agreedBy.length === 0 && !isApproved
+            ? "Name the approval document and its issuer, or have a second lead agree."
+            : null;
 
   return (
     <FormProvider {...form}>
@@ -125,6 +141,7 @@ export function DecisionForm(props: DecisionFormProps) {
         {kind === "promote" && openGates.length > 0 && (
           <WaiverFields gates={openGates} blockedBecause={blocked.waive} />
         )}
+        {kind === "promote" && needsApproval && <ApprovalFields agreedBy={agreedBy} />}
         {!everythingBlocked && (
           <>
             <Textarea

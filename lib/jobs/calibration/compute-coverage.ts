@@ -2,6 +2,7 @@ import { type ChangeSetRow, selectChangeSet } from "@/db/queries/change-sets";
 import { closeCoverage, openCoverage, selectCoverage } from "@/db/queries/coverages";
 import type { FoundColumn } from "@/db/schema/change-sets";
 import { coverageOf } from "@/lib/calibration/coverage/coverage";
+import { linksInUse } from "@/lib/calibration/coverage/suggest-links";
 import type { CoverageRun } from "@/lib/calibration/coverage/types";
 import { digestOf } from "@/lib/canonical-json";
 import { FileRefusedError, TwinpassError } from "@/lib/errors";
@@ -9,7 +10,6 @@ import { coverageRun, foundColumns } from "@/lib/jobs/calibration/coverage-run";
 import { storable } from "@/lib/jobs/calibration/storable";
 import type { System } from "@/lib/jobs/system";
 import { logger } from "@/lib/logger";
-import { linksInUse } from "@/lib/services/change-sets/axis-quantities";
 import { type CoverageInput, coverageInput } from "@/lib/services/change-sets/coverage-input";
 import { readStoredLog } from "@/lib/services/runs/read-stored-log";
 

@@ -1,5 +1,3 @@
-import { promisify } from "node:util";
-import { gunzip, gzip } from "node:zlib";
 import type { SideRow } from "@/db/queries/change-sets";
 import type { DescriptionRow } from "@/db/queries/descriptions";
 import { insertImageReading, selectImageReading } from "@/db/queries/image-readings";
@@ -10,10 +8,8 @@ import type { ImageReading } from "@/lib/calibration/values/types";
 import { openDescription } from "@/lib/jobs/calibration/settle-description";
 import { storable } from "@/lib/jobs/calibration/storable";
 import type { System } from "@/lib/jobs/system";
-import { keepBlob, readBlob, storeBlob } from "@/lib/services/blobs";
-
-const pack = promisify(gzip);
-const unpack = promisify(gunzip);
+import { keepBlob, storeBlob } from "@/lib/services/blobs";
+import { openReading, packReading } from "@/lib/services/change-sets/stored-reading";
 
 /**
  * A revision's image read by a description: the kept reading, or one made and kept now, bytes before row.
@@ -34,12 +30,9 @@ export async function imageReading(
     readerVersion: READER_VERSION,
   };
   const kept = await selectImageReading(db, key);
-  if (kept) {
-    const text = await unpack(await readBlob(where, kept.blobSha256));
-    return JSON.parse(text.toString("utf8")) as ImageReading;
-  }
+  if (kept) return await openReading(where, kept.blobSha256);
   const reading = storable(readImageByDescription(await openDescription({ db, store }, description), image));
-  const blob = await storeBlob(where, await pack(JSON.stringify(reading)));
+  const blob = await storeBlob(where, await packReading(reading));
   const { epk, problems, characteristics, notRead } = reading;
   const summary = { epk, problems, characteristics: characteristics.length, notRead: notRead.length };
   await db.transaction(async (tx) => {

@@ -2,6 +2,7 @@ import type { Description } from "@/lib/calibration/a2l/types";
 import type { DescriptionSummary } from "@/lib/services/descriptions/schema";
 
 const MOST_LISTED = 200;
+const MOST_SETS = 1000;
 
 /** What pages tell of a description, without what is in it. Long lists are cut after 200 entries. */
 export function summariseDescription(description: Description): DescriptionSummary {
@@ -18,6 +19,12 @@ export function summariseDescription(description: Description): DescriptionSumma
     counts,
     functions: modules.reduce((sum, { functions }) => sum + functions.size, 0),
     groups: modules.reduce((sum, { groups }) => sum + groups.size, 0),
+    setNames: [
+      ...new Set([
+        ...modules.flatMap(({ functions }) => [...functions.keys()]),
+        ...modules.flatMap(({ groups }) => [...groups.keys()]),
+      ]),
+    ].slice(0, MOST_SETS),
     notRead: notRead.slice(0, MOST_LISTED),
     notReadCount: notRead.length,
     missingIncludes: missingIncludes.slice(0, MOST_LISTED),

@@ -1,24 +1,33 @@
-import { selectSetting, selectSettingVersions } from "@/db/queries/calibration-settings";
+import {
+  type SettingKind,
+  selectSetting,
+  selectSettingVersion,
+  selectSettingVersions,
+} from "@/db/queries/calibration-settings";
+import { NotFoundError } from "@/lib/errors";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { loadProgramme } from "@/lib/services/programmes/load";
 
 /**
- * What a programme has settled about its calibration: marks, links and regions, each in its newest version with the list of all.
- * Version 0 and nothing in it where none was saved.
+ * A version of what a programme has settled about its calibration, and the list of all versions; without a named one the
+ * newest, or version 0 with nothing in it where none was saved.
  * @throws NotFoundError; ForbiddenError
  */
-export async function getCalibrationSettings(ctx: Ctx, programmeId: string) {
+export async function getCalibrationSetting<Kind extends SettingKind>(
+  ctx: Ctx,
+  { programmeId, kind, version }: { programmeId: string; kind: Kind; version?: number },
+) {
   const { programme } = await loadProgramme(ctx, programmeId);
   authorise(ctx, "history.view");
   const { db, workspaceId } = ctx;
-  const kindOf = async <Kind extends Parameters<typeof selectSetting>[1]["kind"]>(kind: Kind) => ({
-    ...(await selectSetting(db, { workspaceId, programmeId, kind })),
-    versions: await selectSettingVersions(db, { workspaceId, programmeId, kind }),
-  });
+  const place = { workspaceId, programmeId, kind };
+  const newest = await selectSetting(db, place);
+  const shown = version === undefined ? newest : await selectSettingVersion(db, { ...place, version });
+  if (!shown) throw new NotFoundError("setting_not_found", "This programme has no such version of it.");
   return {
-    programme: { id: programme.id, name: programme.name, archived: programme.archivedAt !== null },
-    marks: await kindOf("relevance_marks"),
-    links: await kindOf("axis_links"),
-    regions: await kindOf("checksum_regions"),
+    programme,
+    shown,
+    newestVersion: newest.version,
+    versions: await selectSettingVersions(db, place),
   };
 }

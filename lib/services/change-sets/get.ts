@@ -3,9 +3,9 @@ import { selectChangeSetOf, selectComparableRevisions } from "@/db/queries/chang
 import { selectImageCheck, selectImageReading } from "@/db/queries/image-readings";
 import { selectLookedAt } from "@/db/queries/looked-at";
 import { type RevisionRow, selectRevision, selectStanding } from "@/db/queries/revisions";
+import { axisQuantities, linksInUse, suggestedLinks } from "@/lib/calibration/coverage/suggest-links";
 import { READER_VERSION } from "@/lib/calibration/reader-version";
 import { isReaderOnly, RELEASED_STATES } from "@/lib/policy/released";
-import { axisQuantities, linksInUse, suggestedLinks } from "@/lib/services/change-sets/axis-quantities";
 import { contradictionOf } from "@/lib/services/change-sets/contradiction";
 import { coverageNow } from "@/lib/services/change-sets/coverage-now";
 import { changeSetInputSha256 } from "@/lib/services/change-sets/current-input";

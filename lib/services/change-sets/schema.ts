@@ -81,6 +81,8 @@ export interface ChangeSetState {
   coverage: RevisionChangesView["coverage"]["state"];
 }
 
+export const valuesFormat = z.enum(["cdfx", "csv"], "Choose cdfx or csv as the format.");
+
 export const askForChangeSetSchema = z.strictObject({ revisionId: z.uuid(), againstId: z.uuid() });
 
 const sha256 = z.string().regex(/^[0-9a-f]{64}$/);

@@ -1,5 +1,5 @@
 import type { Transaction } from "@/db/client";
-import { selectRevision } from "@/db/queries/revisions";
+import { type RevisionRow, selectRevision } from "@/db/queries/revisions";
 import { reauthenticate } from "@/lib/auth/reauthenticate";
 import { ConflictError, NotFoundError } from "@/lib/errors";
 import type { Action } from "@/lib/policy/rules";
@@ -39,12 +39,13 @@ export function asConflict(error: unknown): unknown {
 /**
  * The frame of promote, hold and turn down: policy, passphrase, then one transaction in which role, state, version and
  * standing revision are read anew under lock. The passphrase is asked outside, so that a wrong try counts.
+ * @param look what takes long and must be looked at right before, outside the transaction; refuses by exception
  * @param sign writes the decision; all of it commits together or not at all
  * @throws ForbiddenError, NotFoundError, ConflictError naming what moved, TooManyRequestsError
  */
 export async function decide(
   ctx: Ctx,
-  { action, seen }: { action: Action; seen: Seen },
+  { action, seen, look }: { action: Action; seen: Seen; look?: (revision: RevisionRow) => Promise<void> },
   sign: (signing: Signing) => Promise<RecordedDecision>,
 ): Promise<RecordedDecision> {
   const { workspaceId } = ctx;
@@ -53,6 +54,7 @@ export async function decide(
   const before = await selectRevision(ctx.db, { workspaceId, revisionId });
   if (!before) throw new NotFoundError("no_revision", "There is no such revision.");
   const reauthMethod = await reauthenticate(ctx, seen.passphrase);
+  await look?.(before);
   const { programmeId } = before;
   try {
     return await retryLost(() =>

@@ -38,8 +38,34 @@ function runsThen(
   });
 }
 
+/** What is known of the changed values; undefined where no change set is there. */
+function calibrationOf({ calibration }: GateDesk): ComparedEvidence["calibration"] {
+  const changes = calibration?.evidence.fromStanding;
+  if (!calibration?.changeSet || !changes) return undefined;
+  const { changeSet, coverageSha256, touched } = calibration;
+  return {
+    changeSetId: changeSet.id,
+    inputSha256: changeSet.inputSha256,
+    resultSha256: changeSet.resultSha256,
+    coverageSha256,
+    readBy: changes.readBy,
+    changedBytes: changes.changedBytes,
+    changedCharacteristics: changes.characteristics.length,
+    uncoveredBytes: changes.uncoveredBytes,
+    touched: touched.map(({ mark, characteristics }) => ({
+      name: mark.name,
+      relevance: mark.relevance,
+      characteristics,
+    })),
+    approval: null,
+    secondLead: null,
+  };
+}
+
 /** Freezes what the gates rest on: the result shown, with the runs that belong to it. */
-export function evidenceOf({ comparison, stale, planVersion, results }: GateDesk): ComparedEvidence {
+export function evidenceOf(desk: GateDesk): ComparedEvidence {
+  const { comparison, stale, planVersion, results } = desk;
+  const calibration = calibrationOf(desk);
   const shown = comparison?.shown ?? null;
   return {
     comparisonId: comparison?.comparison.id ?? null,
@@ -49,6 +75,7 @@ export function evidenceOf({ comparison, stale, planVersion, results }: GateDesk
     sheetVersion: shown?.input.sheetVersion ?? null,
     gatePlanVersion: planVersion,
     gates: results,
+    ...(calibration && { calibration }),
     ...(stale && { stale }),
     runs: comparison ? (stale && shown ? runsThen(comparison, shown) : runsNow(comparison)) : [],
   };

@@ -1,14 +1,32 @@
 import { selectPeopleToTell } from "@/db/queries/decisions";
 import { countOthersWithRole, hasPassphrase, selectUser } from "@/db/queries/people";
-import { type RevisionState, selectRevision } from "@/db/queries/revisions";
+import { type RevisionRow, type RevisionState, selectRevision } from "@/db/queries/revisions";
+import { selectSecondAgreements } from "@/db/queries/second-agreements";
 import { NotFoundError } from "@/lib/errors";
 import type { Verdict } from "@/lib/policy/actor";
 import { can } from "@/lib/policy/can";
 import { getComparison } from "@/lib/services/comparisons/load";
 import type { ComparisonView } from "@/lib/services/comparisons/schema";
 import { authorise, type Ctx } from "@/lib/services/ctx";
+import { countingAgreements, needsApproval } from "@/lib/services/decisions/approval";
+import { calibrationDesk } from "@/lib/services/gates/calibration";
 import { type GateStatus, gateStatus } from "@/lib/services/gates/status";
 import { loadProgramme } from "@/lib/services/programmes/load";
+
+/** What the decision page shows of marked functions that the revision changes. */
+export interface DeskCalibration {
+  seenSha256: string | null;
+  /** Marked functions and characteristics that are touched, with what of them changed. */
+  touched: { name: string; relevance: "emission" | "safety"; note: string; characteristics: string[] }[];
+  /** What a second lead agrees to; null while nothing marked is touched. */
+  touchedSha256: string | null;
+  /** Promoting takes a named document or a second lead. */
+  needsApproval: boolean;
+  /** Agreements that would count if this person promoted. */
+  agreements: { leadName: string; at: Date; reason: string }[];
+  /** Why this person can't agree as second lead; null when they can. */
+  agreeBlocked: string | null;
+}
 
 /** Everything the decision page shows beside the form. */
 export interface DecisionDesk {
@@ -33,12 +51,53 @@ export interface DecisionDesk {
   gates: GateStatus;
   /** The comparison that the gates rest on; null when nobody has opened it. */
   comparison: ComparisonView | null;
+  calibration: DeskCalibration;
   mayPromote: Verdict;
   mayTurnDown: Verdict;
   mayWaive: Verdict;
   hasPassphrase: boolean;
   /** How many people a decision is told. */
   peopleTold: number;
+}
+
+function agreeBlocked(ctx: Ctx, row: RevisionRow, agreed: boolean): string | null {
+  if (row.authorId === ctx.userId || row.submitterId === ctx.userId)
+    return "You made it or asked for the decision, so another lead agrees.";
+  const verdict = can(ctx, "decision.agree");
+  if (!verdict.ok) return verdict.reason;
+  return agreed ? "You have agreed to exactly this. Another lead promotes." : null;
+}
+
+async function deskCalibration(
+  ctx: Ctx,
+  revision: RevisionRow,
+  standingRevisionId: string | null,
+): Promise<DeskCalibration> {
+  const { db, workspaceId, userId } = ctx;
+  const desk = await calibrationDesk(db, { workspaceId, revision, standingRevisionId });
+  const touchedSha256 = desk?.touchedSha256 ?? null;
+  const counting = await countingAgreements(db, { workspaceId, revision, touchedSha256, promoterId: userId });
+  const given = touchedSha256
+    ? await selectSecondAgreements(db, { workspaceId, revisionId: revision.id, seenSha256: touchedSha256 })
+    : [];
+  const touched = (desk?.touched ?? []).map(({ mark: { name, relevance, note }, characteristics }) => ({
+    name,
+    relevance,
+    note,
+    characteristics,
+  }));
+  return {
+    seenSha256: desk?.seenSha256 ?? null,
+    touched,
+    touchedSha256,
+    needsApproval: needsApproval(desk),
+    agreements: counting.map(({ leadName, createdAt: at, reason }) => ({ leadName, at, reason })),
+    agreeBlocked: agreeBlocked(
+      ctx,
+      revision,
+      given.some(({ leadId }) => leadId === userId),
+    ),
+  };
 }
 
 /**
@@ -56,6 +115,7 @@ export async function getDecisionDesk(ctx: Ctx, revisionId: string): Promise<Dec
   const author = await selectUser(db, { userId: row.authorId });
   const submitter = row.submitterId ? await selectUser(db, { userId: row.submitterId }) : null;
   const gates = await gateStatus(ctx, { revisionId });
+  const calibration = await deskCalibration(ctx, row, standingId);
   const otherLeads = await countOthersWithRole(db, { workspaceId, userId, role: "lead" });
   const facts = {
     authorId: row.authorId,
@@ -84,6 +144,7 @@ export async function getDecisionDesk(ctx: Ctx, revisionId: string): Promise<Dec
     submitterName: row.submitterId ? (submitter?.name ?? "somebody") : null,
     gates,
     comparison: gates.comparisonId ? await getComparison(ctx, gates.comparisonId) : null,
+    calibration,
     mayPromote: can(ctx, "decision.promote", facts),
     mayTurnDown: can(ctx, "decision.turn_down", facts),
     mayWaive: can(ctx, "gate.waive", facts),

@@ -1,12 +1,16 @@
 import { moveRevision, setStandingRevision } from "@/db/queries/decisions";
+import type { RevisionRow } from "@/db/queries/revisions";
 import { ConflictError, InvalidInputError } from "@/lib/errors";
 import type { GateResult } from "@/lib/gates/plan";
+import { refreshAgainstStanding } from "@/lib/services/change-sets/refresh";
 import { authorise, type Ctx } from "@/lib/services/ctx";
+import { requireApproval } from "@/lib/services/decisions/approval";
 import { decide } from "@/lib/services/decisions/decide";
 import { evidenceOf } from "@/lib/services/decisions/freeze-evidence";
 import { type RecordedDecision, recordDecision } from "@/lib/services/decisions/record";
 import { LOOK_AGAIN, requireSameComparison } from "@/lib/services/decisions/same-evidence";
 import { namesRevision, type PromoteInput, promoteInput } from "@/lib/services/decisions/schema";
+import { requireWholeImage } from "@/lib/services/decisions/whole-image";
 import { openMusts } from "@/lib/services/gates/open-musts";
 import type { GateDesk } from "@/lib/services/gates/status";
 import { refuseArchived } from "@/lib/services/programmes/refuse-archived";
@@ -61,12 +65,16 @@ function applyWaivers(results: readonly GateResult[], waivers: readonly Waiver[]
 
 /**
  * in review → promoted: the revision stands from now on, the one before is superseded.
- * @throws ForbiddenError author, submitter, role or passphrase; InvalidInputError typed number or open gates;
+ * @throws ForbiddenError author, submitter, role or passphrase; InvalidInputError typed number, open gates or a missing approval;
  * ConflictError when anything the lead saw has moved, or another decision was first
  */
 export async function promoteRevision(ctx: Ctx, raw: PromoteInput): Promise<RecordedDecision> {
   const input = promoteInput.parse(raw);
-  return await decide(ctx, { action: "decision.promote", seen: input }, async (signing) => {
+  // In another state it is refused below, in the words that fit.
+  const look = async (revision: RevisionRow) => {
+    if (revision.state === "in_review") await requireWholeImage(ctx, revision);
+  };
+  return await decide(ctx, { action: "decision.promote", seen: input, look }, async (signing) => {
     const { tx, actor, desk, gates, reauthMethod, selfReleased } = signing;
     const { revision, standing, programme } = desk;
     const { workspaceId } = actor;
@@ -84,6 +92,8 @@ export async function promoteRevision(ctx: Ctx, raw: PromoteInput): Promise<Reco
     }
     requireSameEvidence(gates, input);
     const { gates: results, signed } = applyWaivers(gates.results, input.waivers);
+    const released = await requireApproval(tx, { actor, revision, gates, approval: input.approval });
+    const { calibration, ...evidence } = evidenceOf(gates);
 
     const recorded = await recordDecision(tx, actor, {
       kind: "promote",
@@ -93,7 +103,11 @@ export async function promoteRevision(ctx: Ctx, raw: PromoteInput): Promise<Reco
       reason: input.reason,
       reauthMethod,
       selfReleased,
-      evidence: { ...evidenceOf(gates), gates: results },
+      evidence: {
+        ...evidence,
+        gates: results,
+        ...(calibration && { calibration: { ...calibration, ...released } }),
+      },
       waivers: signed,
     });
     const moves = [
@@ -124,6 +138,7 @@ export async function promoteRevision(ctx: Ctx, raw: PromoteInput): Promise<Reco
         "revision_moved",
         `R${revision.number} or the standing revision was changed at this moment. Nothing was decided. Open the page again.`,
       );
+    await refreshAgainstStanding(tx, actor, { programmeId: programme.id });
     return recorded;
   });
 }

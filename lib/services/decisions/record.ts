@@ -39,6 +39,7 @@ export type ComparedEvidence = Pick<
   | "sheetVersion"
   | "gatePlanVersion"
   | "gates"
+  | "calibration"
   | "runs"
 >;
 

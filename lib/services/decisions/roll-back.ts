@@ -1,6 +1,7 @@
 import { moveRevision, setStandingRevision } from "@/db/queries/decisions";
 import { reauthenticate } from "@/lib/auth/reauthenticate";
 import { ConflictError, InvalidInputError } from "@/lib/errors";
+import { refreshAgainstStanding } from "@/lib/services/change-sets/refresh";
 import { authorise, type Ctx, withTransaction } from "@/lib/services/ctx";
 import { asConflict } from "@/lib/services/decisions/decide";
 import { type Desk, lockDesk, requireSameStanding } from "@/lib/services/decisions/lock-desk";
@@ -80,6 +81,7 @@ export async function rollBack(ctx: Ctx, raw: RollBackInput): Promise<RecordedDe
         });
         if (!left || !back || !stands)
           throw new ConflictError("revision_moved", "The revisions could not be moved. Nothing was changed.");
+        await refreshAgainstStanding(tx, actor, { programmeId });
         return recorded;
       }),
     );

@@ -9,6 +9,7 @@ export interface SeenEvidence {
   comparisonId: string | null;
   inputSha256: string | null;
   shownInputSha256: string | null;
+  calibrationSha256: string | null;
 }
 
 /**
@@ -16,9 +17,14 @@ export interface SeenEvidence {
  * @throws ConflictError `evidence_moved` naming what moved
  */
 export function requireSameComparison(
-  { comparison }: Pick<GateDesk, "comparison">,
+  { comparison, calibration }: Pick<GateDesk, "comparison" | "calibration">,
   seen: SeenEvidence,
 ): void {
+  if ((calibration?.seenSha256 ?? null) !== seen.calibrationSha256)
+    throw new ConflictError(
+      "evidence_moved",
+      `What is known of the changed values has moved since you opened this page: the change set, its coverage, a check of the image or the marks. ${LOOK_AGAIN}`,
+    );
   if ((comparison?.comparison.id ?? null) !== seen.comparisonId)
     throw new ConflictError("evidence_moved", `The comparison is another one than you saw. ${LOOK_AGAIN}`);
   if (!comparison) return;

@@ -28,6 +28,8 @@ const seen = {
   inputSha256: sha256.nullable(),
   /** Of what the result shown was computed from; another one when stale. */
   shownInputSha256: sha256.nullable(),
+  /** Of what changed in the calibration, its coverage, checks and marks; null: nothing of it was known yet. */
+  calibrationSha256: sha256.nullable().default(null),
 };
 
 const waiver = z.strictObject({
@@ -40,6 +42,12 @@ const waiver = z.strictObject({
       `A waiver needs a reason of at least ${WAIVER_REASON_MIN} characters: it stays on the record for ever.`,
     )
     .max(2000),
+});
+
+/** A document by which somebody approved the change of emission- or safety-relevant functions. */
+const approval = z.strictObject({
+  document: z.string().trim().min(1, "Name the document or its number.").max(200),
+  issuer: z.string().trim().min(1, "Say who issued the document.").max(200),
 });
 
 const typedNumber = z
@@ -55,6 +63,7 @@ export const promoteInput = z.strictObject({
   typedNumber,
   reason,
   waivers: z.array(waiver).max(50),
+  approval: approval.nullable().default(null),
   passphrase,
 });
 export type PromoteInput = z.input<typeof promoteInput>;
@@ -64,6 +73,15 @@ export type HoldInput = z.input<typeof holdInput>;
 
 export const turnDownInput = holdInput;
 export type TurnDownInput = HoldInput;
+
+export const agreeInput = z.strictObject({
+  revisionId: z.uuid(),
+  /** Of the change set and of what in it is marked, as the lead saw it. */
+  touchedSha256: sha256,
+  reason,
+  passphrase,
+});
+export type AgreeInput = z.input<typeof agreeInput>;
 
 export const rollBackInput = z.strictObject({
   programmeId: z.uuid(),

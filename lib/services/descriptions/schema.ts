@@ -20,6 +20,8 @@ export interface DescriptionSummary {
   counts: Record<string, number>;
   functions: number;
   groups: number;
+  /** Names of functions, then of groups: what can be marked as relevant. The first 1,000. */
+  setNames: string[];
   /** First 200 of what was skipped, and how many there are. */
   notRead: { keyword: string; name: string; reason: string; line: number }[];
   notReadCount: number;

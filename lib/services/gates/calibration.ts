@@ -22,8 +22,8 @@ export interface CalibrationDesk {
   coverageSha256: string | null;
   /** Marked functions and characteristics that the change set touches. */
   touched: TouchedMark[];
-  /** Digest of all of the above: what a lead saw. */
-  seenSha256: string;
+  /** Digest of all of the above: what a lead saw; null while nothing of it is known. */
+  seenSha256: string | null;
   /** Digest of the change set and of what in it is marked: what a second lead agrees to; null while nothing marked is touched. */
   touchedSha256: string | null;
 }
@@ -98,12 +98,15 @@ export async function calibrationDesk(
   const coverageSha256 = counts ? (coverage?.resultSha256 ?? null) : null;
   const { integrity } = evidence;
   const parentSha256 = parent?.resultSha256 ?? null;
+  const isKnown = changeSet !== null || parentSha256 !== null || integrity.regions !== null;
   return {
     evidence,
     changeSet,
     coverageSha256,
     touched,
-    seenSha256: digestOf({ changeSet, parentSha256, coverageSha256, integrity, marks: marks.content }),
+    seenSha256: isKnown
+      ? digestOf({ changeSet, parentSha256, coverageSha256, integrity, marks: marks.content })
+      : null,
     touchedSha256: changeSet && touched.length > 0 ? digestOf({ changeSet, touched }) : null,
   };
 }

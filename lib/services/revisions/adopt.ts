@@ -3,6 +3,7 @@ import { setStandingRevision } from "@/db/queries/decisions";
 import { selectRevision, updateRevision } from "@/db/queries/revisions";
 import { reauthenticate } from "@/lib/auth/reauthenticate";
 import { ConflictError } from "@/lib/errors";
+import { refreshAgainstStanding } from "@/lib/services/change-sets/refresh";
 import { authorise, type Ctx, withTransaction } from "@/lib/services/ctx";
 import { asConflict } from "@/lib/services/decisions/decide";
 import { lockDesk } from "@/lib/services/decisions/lock-desk";
@@ -60,6 +61,7 @@ export async function adoptRevisionAsFound(
         const { rowVersion } = revision;
         await updateRevision(tx, { workspaceId, revisionId, rowVersion, set });
         await setStandingRevision(tx, { workspaceId, programmeId, from: null, to: revisionId });
+        await refreshAgainstStanding(tx, actor, { programmeId });
         return recorded;
       }),
     );

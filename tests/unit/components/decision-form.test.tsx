@@ -28,7 +28,10 @@ function show(parts: Partial<DecisionFormProps> = {}) {
         inputSha256: "a".repeat(64),
         shownInputSha256: "a".repeat(64),
         gatePlanVersion: 2,
+        calibrationSha256: "c".repeat(64),
       }}
+      needsApproval={false}
+      agreedBy={[]}
       number={15}
       standingNumber={14}
       openGates={[]}

@@ -5,6 +5,7 @@ import { ComparisonFigure } from "@/components/features/comparisons/comparison-f
 import { methodNotes } from "@/components/features/comparisons/method-notes";
 import { PeaksTable } from "@/components/features/comparisons/peaks-table";
 import { Cautions } from "@/components/features/decisions/cautions";
+import { RecordCalibration } from "@/components/features/decisions/record-calibration";
 import { RecordChain } from "@/components/features/decisions/record-chain";
 import { RecordFacts } from "@/components/features/decisions/record-facts";
 import { RecordRuns } from "@/components/features/decisions/record-runs";
@@ -113,6 +114,11 @@ export default async function RecordPage({ params }: PageProps<"/records/[record
           <Card title="What was decided on">
             <RecordFacts record={record} />
           </Card>
+          {evidence.calibration && (
+            <Card title="What changed in the values">
+              <RecordCalibration calibration={evidence.calibration} />
+            </Card>
+          )}
           {evidence.gates.length > 0 && (
             <Card
               title="Gates"

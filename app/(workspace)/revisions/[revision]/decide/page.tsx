@@ -2,13 +2,14 @@ import type { Metadata, Route } from "next";
 import Link from "next/link";
 import { redirect } from "next/navigation";
 import { openComparisonAction, recomputeAction } from "@/app/(workspace)/comparisons/actions";
-import { decideAction } from "@/app/(workspace)/revisions/[revision]/decide/actions";
+import { agreeAction, decideAction } from "@/app/(workspace)/revisions/[revision]/decide/actions";
 import { AnswerCard } from "@/components/features/comparisons/answer-card";
 import { ComparisonFigure } from "@/components/features/comparisons/comparison-figure";
 import { ComparisonStateNotice } from "@/components/features/comparisons/comparison-state-notice";
 import { methodNotes } from "@/components/features/comparisons/method-notes";
 import { OpenComparisonForm } from "@/components/features/comparisons/open-comparison-form";
 import { PeaksTable } from "@/components/features/comparisons/peaks-table";
+import { AgreeForm } from "@/components/features/decisions/agree-form";
 import { Cautions } from "@/components/features/decisions/cautions";
 import { DecisionForm } from "@/components/features/decisions/decision-form";
 import { DeskFacts } from "@/components/features/decisions/desk-facts";
@@ -33,7 +34,7 @@ export const metadata: Metadata = { title: "Decision" };
 export default async function DecidePage({ params }: PageProps<"/revisions/[revision]/decide">) {
   const ctx = await requireCtx();
   const desk = await orNotFound((await params).revision, (id) => getDecisionDesk(ctx, id));
-  const { revision, standing, comparison, gates, programme } = desk;
+  const { revision, standing, comparison, gates, programme, calibration } = desk;
   if (revision.state !== "in_review") redirect(`/revisions/${revision.id}` as Route);
   const result = comparison?.result ?? null;
   const grid = comparison && result && plottedGrid(result, sideOfRun(comparison.runs));
@@ -113,7 +114,7 @@ export default async function DecidePage({ params }: PageProps<"/revisions/[revi
         <aside className="flex min-w-0 flex-col gap-6">
           <Card title="Countersign" tone="well" id="countersign">
             <DecisionForm
-              key={`${revision.rowVersion} ${comparison?.inputSha256} ${comparison?.basis?.inputSha256}`}
+              key={`${revision.rowVersion} ${comparison?.inputSha256} ${comparison?.basis?.inputSha256} ${calibration.seenSha256}`}
               seen={{
                 revisionId: revision.id,
                 rowVersion: revision.rowVersion,
@@ -122,16 +123,27 @@ export default async function DecidePage({ params }: PageProps<"/revisions/[revi
                 inputSha256: comparison?.inputSha256 ?? null,
                 shownInputSha256: comparison?.basis?.inputSha256 ?? null,
                 gatePlanVersion: gates.planVersion,
+                calibrationSha256: calibration.seenSha256,
               }}
               number={revision.number}
               standingNumber={standing?.number ?? null}
               openGates={openMusts(gates.results)}
+              needsApproval={calibration.needsApproval}
+              agreedBy={calibration.agreements.map(({ leadName }) => leadName)}
               blocked={blocked}
               hasPassphrase={desk.hasPassphrase}
               peopleTold={desk.peopleTold}
               action={decideAction}
             />
           </Card>
+          {calibration.touched.length > 0 && (
+            <Card
+              title="Emission- or safety-relevant"
+              description="What of the changes is marked in this programme."
+            >
+              <AgreeForm revisionId={revision.id} calibration={calibration} action={agreeAction} />
+            </Card>
+          )}
           <Card title="What is decided on">
             <DeskFacts desk={desk} />
           </Card>

@@ -1,0 +1,53 @@
+import { TouchedMarks } from "@/components/features/decisions/touched-marks";
+import { DescriptionList } from "@/components/ui/data/description-list";
+import { Fingerprint } from "@/components/ui/data/fingerprint";
+import { numberText } from "@/components/ui/data/number-text";
+
+export interface RecordCalibrationProps {
+  calibration: {
+    resultSha256: string;
+    coverageSha256: string | null;
+    readBy: "both" | "a" | "b" | "none";
+    changedBytes: number;
+    changedCharacteristics: number;
+    uncoveredBytes: number;
+    touched: React.ComponentProps<typeof TouchedMarks>["touched"];
+    approval: { document: string; issuer: string } | null;
+    secondLead: { name: string; at: string; reason: string } | null;
+  };
+}
+
+/** What changed in the values when it was decided, what of it is marked, and by whose word it was released for the road. */
+export function RecordCalibration({ calibration }: RecordCalibrationProps) {
+  const { touched, approval, secondLead, coverageSha256, readBy } = calibration;
+  const items = [
+    {
+      term: "Changed",
+      description:
+        readBy === "none"
+          ? `${numberText(calibration.changedBytes)} bytes; no description said what they are`
+          : `${numberText(calibration.changedCharacteristics)} characteristics, ${numberText(calibration.changedBytes)} bytes, of which ${numberText(calibration.uncoveredBytes)} are described by none`,
+    },
+    { term: "Change set", description: <Fingerprint value={calibration.resultSha256} full /> },
+    {
+      term: "Coverage",
+      description: coverageSha256 ? <Fingerprint value={coverageSha256} full /> : "none was there",
+    },
+    {
+      term: "Marked as emission- or safety-relevant",
+      description: touched.length === 0 ? "nothing touched" : <TouchedMarks touched={touched} />,
+    },
+    ...(approval
+      ? [{ term: "Approval document", description: `${approval.document}, issued by ${approval.issuer}` }]
+      : []),
+    ...(secondLead
+      ? [
+          {
+            term: "Second lead",
+            description: `${secondLead.name} agreed on ${secondLead.at.slice(0, 16).replace("T", " ")} UTC: ${secondLead.reason}`,
+          },
+        ]
+      : []),
+  ];
+  return <DescriptionList items={items} />;
+}

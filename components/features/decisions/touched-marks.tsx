@@ -1,0 +1,19 @@
+/** Marked functions and characteristics that a change touches, with what of them changed. */
+export function TouchedMarks({
+  touched,
+}: {
+  touched: readonly { name: string; relevance: "emission" | "safety"; characteristics: readonly string[] }[];
+}) {
+  return (
+    <ul className="list-disc pl-5 text-15">
+      {touched.map(({ name, relevance, characteristics }) => (
+        <li key={`${name} ${relevance}`} className="break-words">
+          <span className="font-mono">{name}</span>, {relevance}-relevant
+          {characteristics.length === 1 && characteristics[0] === name
+            ? ""
+            : `: ${characteristics.slice(0, 5).join(", ")}${characteristics.length > 5 ? ` and ${characteristics.length - 5} more` : ""}`}
+        </li>
+      ))}
+    </ul>
+  );
+}
