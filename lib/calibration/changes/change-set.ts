@@ -1,7 +1,7 @@
 import { compareReadings } from "@/lib/calibration/changes/compare-readings";
 import { mergeNotRead, mergeProblems } from "@/lib/calibration/changes/merge-notes";
 import type { ChangeSet, RevisionContent, TextDifference } from "@/lib/calibration/changes/types";
-import { uncoveredRanges } from "@/lib/calibration/changes/uncovered";
+import { uncoveredRanges } from "@/lib/calibration/changes/uncovered/uncovered-ranges";
 import { changedRanges } from "@/lib/calibration/image/changed-ranges";
 
 export interface ChangeSetOptions {

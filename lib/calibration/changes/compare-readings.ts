@@ -96,6 +96,6 @@ function sentence(names: readonly string[], what: string): string[] {
   if (names.length === 0) return [];
   const more = names.length - NAMES_SHOWN;
   const list = names.slice(0, NAMES_SHOWN).join(", ");
-  if (more <= 0 && names.length === 1) return [`${list} ${what}.`];
-  return [`So it is with ${names.length}: ${list}${more > 0 ? ` and ${more} more` : ""}: each ${what}.`];
+  if (names.length === 1) return [`${list} ${what}.`];
+  return [`${list}${more > 0 ? ` and ${more} more` : ""}: each ${what}.`];
 }

@@ -48,7 +48,7 @@ export function readSeries(context: ReadingContext, series: Series, order: ByteO
   spendCells(context, series.count);
   const { view, offset } = wholeSeries(context.memory, series);
   return Array.from({ length: series.count }, (_, k) =>
-    readNumber({ view, offset: offset + k * series.stride }, series.type, order),
+    readNumber(view, offset + k * series.stride, series.type, order),
   );
 }
 

@@ -47,7 +47,9 @@ export function describedStarts(a: ImageReading | null, b: ImageReading | null):
         return `${what} from ${formatAddress(first)} on may belong to ${name}, which could not be read.`;
       });
       const more = found.size - MOST_NAMES;
-      return more > 0 ? [...listed, `So it is with ${more} more that could not be read.`] : listed;
+      return more > 0
+        ? [...listed, `Changed bytes may belong to ${more} more that could not be read.`]
+        : listed;
     },
   };
 }

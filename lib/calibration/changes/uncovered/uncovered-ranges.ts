@@ -1,7 +1,7 @@
-import { describeRange } from "@/lib/calibration/changes/describe-range";
-import { describedStarts, type Suspects } from "@/lib/calibration/changes/not-read-suspects";
-import { segmentFinder } from "@/lib/calibration/changes/segment-finder";
 import type { RevisionContent, UncoveredRange } from "@/lib/calibration/changes/types";
+import { describeRange } from "@/lib/calibration/changes/uncovered/describe-range";
+import { describedStarts, type Suspects } from "@/lib/calibration/changes/uncovered/not-read-suspects";
+import { segmentFinder } from "@/lib/calibration/changes/uncovered/segment-finder";
 import type { ChangedRange } from "@/lib/calibration/image/changed-ranges";
 import { joinRanges } from "@/lib/calibration/values/convert/presentation";
 import type { ByteRange } from "@/lib/calibration/values/types";
@@ -30,18 +30,25 @@ export function uncoveredRanges(
   const covered = joinRanges(explained);
   let kept: Piece[] = [];
   let [ranges, bytes, next] = [0, 0, 0];
+  // Later ranges of this length have no place among the longest any more.
+  let shortest = 0;
   const keep = (address: number, length: number, kind: ChangedRange["kind"]) => {
     for (let at = address; at < address + length; ) {
       const { segment, until } = segmentAt(at);
       const end = Math.min(address + length, until);
       const piece = { address: at, length: end - at, kind };
-      kept.push({ ...piece, segment: segment?.name ?? null, programType: segment?.programType ?? null });
+      if (piece.length > shortest) {
+        kept.push({ ...piece, segment: segment?.name ?? null, programType: segment?.programType ?? null });
+      }
       suspects.add(piece);
       ranges++;
       bytes += piece.length;
       at = end;
     }
-    if (kept.length > 8 * MOST_RANGES) kept = longest(kept);
+    if (kept.length > 8 * MOST_RANGES) {
+      kept = longest(kept);
+      shortest = kept[kept.length - 1].length;
+    }
   };
   for (const { address, length, kind } of changed) {
     const end = address + length;

@@ -89,7 +89,8 @@ export function placeRecord(request: RecordRequest): PlacedRecord {
   const stored = (component: LayoutComponent, start: number) => {
     const size = DATA_TYPES[component.dataType];
     take(start, size);
-    return Number(readNumber(memory.at(start, size), component.dataType, order));
+    const { view, offset } = memory.at(start, size);
+    return Number(readNumber(view, offset, component.dataType, order));
   };
 
   for (const [k, component] of layout.components.entries()) {

@@ -20,7 +20,7 @@ export function readCells(context: ReadingContext, cells: CellPlaces, order: Byt
   const raw: Raw[] = [];
   let at = offset + address - low;
   for (let cell = 0; cell < total; cell++) {
-    raw.push(readNumber({ view, offset: at }, type, order));
+    raw.push(readNumber(view, at, type, order));
     for (let k = 0; k < dims.length; k++) {
       at += strides[k];
       if (++index[k] < dims[k]) break;

@@ -1,5 +1,4 @@
 import { type ByteOrder, DATA_TYPES, type DataType } from "@/lib/calibration/a2l/types";
-import type { Stretch } from "@/lib/calibration/values/memory/image-memory";
 import { NotReadable } from "@/lib/calibration/values/not-readable";
 
 /** A number as it lies in memory: bigint for 64-bit whole numbers, else number. */
@@ -8,8 +7,8 @@ export type Raw = number | bigint;
 const WORD = 2;
 const scratch = new DataView(new ArrayBuffer(8));
 
-/** Reads one number at `offset` of a stretch; 16-bit floats after IEEE 754-2008 binary16. */
-export function readNumber({ view, offset }: Stretch, type: DataType, order: ByteOrder): Raw {
+/** Reads one number at `offset` of a view; 16-bit floats after IEEE 754-2008 binary16. */
+export function readNumber(view: DataView, offset: number, type: DataType, order: ByteOrder): Raw {
   if (order === "little") return read(view, offset, type, true);
   if (order === "big") return read(view, offset, type, false);
   const size = DATA_TYPES[type];
