@@ -16,4 +16,6 @@ export const METHOD_CONTENTS = [
   ["planning", "How many runs"],
   ["gates", "When a gate is met"],
   ["fingerprints", "Fingerprints"],
+  ["coverage", "Coverage of cells"],
+  ["steps", "Steps and moves"],
 ] as const;

@@ -1,5 +1,6 @@
 import type { Metadata } from "next";
 import { AirMethods } from "@/app/methods/air-methods";
+import { CalibrationMethods } from "@/app/methods/calibration-methods";
 import { ComparisonMethods } from "@/app/methods/comparison-methods";
 import { METHOD_CONTENTS } from "@/app/methods/contents";
 import { JudgingMethods } from "@/app/methods/judging-methods";
@@ -41,6 +42,7 @@ export default function MethodsPage() {
           <AirMethods />
           <UncertaintyMethods />
           <ComparisonMethods />
+          <CalibrationMethods />
           <p className="max-w-prose border-line border-t pt-6 text-13 text-ink2">
             Inside, all quantities are SI: metre, kilogram, second, newton, pascal, kelvin. Conversion happens
             when a figure is read or shown, by exact factors (1 hp = 745.699 871 582 W, 1 PS = 735.498 75 W, 1

@@ -42,8 +42,12 @@ function verdictOn({ allowed, uncovered }: TouchedGate, changes: ChangeSet): Ver
     changes.uncoveredBytes > 0
       ? ` ${uncoveredText(changes)} The plan allows that.`
       : " No byte outside the description differs.";
+  const problems =
+    changes.problems.length > 0
+      ? ` Read the ${changes.problems.length === 1 ? "problem" : `${changes.problems.length} problems`} named beside the change set.`
+      : "";
   return met(
-    `${counted(n, "characteristic")} changed${allowed ? `, ${n === 1 ? "which the plan names" : "all of which the plan names"}` : ""}.${bytes}`,
+    `${counted(n, "characteristic")} changed${allowed ? `, ${n === 1 ? "which the plan names" : "all of which the plan names"}` : ""}.${bytes}${problems}`,
   );
 }
 

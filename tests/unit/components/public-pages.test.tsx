@@ -1,6 +1,7 @@
 import { renderToStaticMarkup } from "react-dom/server";
 import { describe, expect, it } from "vitest";
 import { AirMethods } from "@/app/methods/air-methods";
+import { CalibrationMethods } from "@/app/methods/calibration-methods";
 import { ComparisonMethods } from "@/app/methods/comparison-methods";
 import { METHOD_CONTENTS } from "@/app/methods/contents";
 import { JudgingMethods } from "@/app/methods/judging-methods";
@@ -15,6 +16,7 @@ const markup = renderToStaticMarkup(
     <AirMethods />
     <UncertaintyMethods />
     <ComparisonMethods />
+    <CalibrationMethods />
   </>,
 );
 const page = document.createElement("div");

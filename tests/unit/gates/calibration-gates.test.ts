@@ -59,6 +59,8 @@ describe("Touched", () => {
     });
     expect(ask(gate(["Spark"], true), known).state).toBe("met");
     expect(ask(gate(["Air"], true), known).state).toBe("not_met");
+    const odd = ask(gate(null), { fromStanding: changeSet([ignition], { problems: ["The EPK differs."] }) });
+    expect(odd).toMatchObject({ state: "met", why: expect.stringContaining("Read the problem named") });
     const unread = changeSet([], { ...UNCOVERED, notRead: [{ name: "odd", reason: "no layout" }] });
     expect(ask(gate(null), { fromStanding: unread }).why).toContain("1 characteristic could not be read");
   });
