@@ -26,6 +26,8 @@ export class InstanceCollector {
   private readonly names = new Set<string>();
   private inAxis = false;
   private groups: ValueGroups | null = null;
+  /** Length of the path at which the values began. */
+  private valuesFrom = 0;
   /** Length of the path at which a second variant began; 0 = none is being passed over. */
   private passedOverFrom = 0;
   private gathered = "";
@@ -47,6 +49,11 @@ export class InstanceCollector {
     this.path.push(name);
     this.gathered = "";
     if (this.passedOverFrom > 0) return;
+    // Inside values only groups mean anything; what else stands there is passed over when it closes.
+    if (this.groups) {
+      if (name === "VG") this.groups.openGroup();
+      return;
+    }
     if (name === "SW-INSTANCE") this.openInstance();
     const draft = this.drafts[this.drafts.length - 1];
     if (!draft) return;
@@ -58,11 +65,11 @@ export class InstanceCollector {
       draft.axes.push({ category: "", reference: null, unit: "", index: Number.NaN, found: null });
     } else if (name === "SW-VALUES-PHYS") {
       this.groups = new ValueGroups();
+      this.valuesFrom = this.path.length;
       const owner = this.inAxis ? draft.axes[draft.axes.length - 1] : draft;
       if (owner.found) this.problem(draft, "states its values twice; the later ones were taken.");
       owner.found = this.groups;
-    } else if (name === "VG") this.groups?.openGroup();
-    else if (name === "SW-VALUES-CODED")
+    } else if (name === "SW-VALUES-CODED")
       this.note("Coded (raw) values were passed over; only physical ones are read.");
   }
 
@@ -121,7 +128,7 @@ export class InstanceCollector {
     if (name === "V" || name === "VF") this.groups?.add(this.counted(this.numberOf(draft, text)));
     else if (name === "VT") this.groups?.add(this.counted(text));
     else if (name === "VG") this.groups?.closeGroup();
-    else if (name === "SW-VALUES-PHYS") this.groups = null;
+    else if (this.path.length < this.valuesFrom) this.groups = null;
     else if (name !== "LABEL") this.note(`Values of the kind ${name.slice(0, 40)} were passed over.`);
   }
 

@@ -65,6 +65,8 @@ export function readIntelHex(bytes: Uint8Array): CalibrationImage {
           line,
           `a record of type 0${type} must have ${FIXED_LENGTH[type]} data bytes, not ${length}.`,
         );
+      if (offset !== 0 && (type === 2 || type === 4))
+        refuseLine("record_offset_wrong", line, `a record of type 0${type} has an offset, which must be 0.`);
       let value = 0;
       for (let i = 0; i < length; i++) {
         const byte = hexByte(bytes, from + 9 + 2 * i, line);

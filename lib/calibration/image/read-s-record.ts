@@ -77,6 +77,12 @@ export function readSRecord(bytes: Uint8Array): CalibrationImage {
       if (dataRecords > 0) note("header_inside", `A header record stands inside the data, in line ${line}.`);
       header ??= text;
     } else if (type === 5 || type === 6) {
+      if (length > 0)
+        refuseLine(
+          "record_length_wrong",
+          line,
+          `a record of type S${type} holds a count of ${width} bytes and nothing else.`,
+        );
       counted = true;
       if (address !== dataRecords) {
         refuseLine(

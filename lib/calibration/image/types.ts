@@ -33,6 +33,7 @@ export const IMAGE_REFUSALS = [
   "record_length_wrong",
   "checksum_wrong",
   "record_type_unknown",
+  "record_offset_wrong",
   "address_wraps",
   "overlap_differs",
   "no_end_record",
