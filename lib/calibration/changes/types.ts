@@ -3,7 +3,6 @@ import type {
   ByteRange,
   ImageReading,
   PhysicalValue,
-  ReadAxis,
   ReadCharacteristic,
 } from "@/lib/calibration/values/types";
 
@@ -96,5 +95,3 @@ export interface ChangeSet {
   notRead: { name: string; reason: string }[];
   problems: string[];
 }
-
-export type { ReadAxis };

@@ -12,7 +12,7 @@ import type { ImageReading, ReadCharacteristic } from "@/lib/calibration/values/
 
 /**
  * Reads every characteristic and shared axis of a description from an image, in raw and in physical values. What can't be read is
- * listed in `notRead` with its reason; nothing is guessed and nothing throws. At most 8 million cells are read altogether.
+ * listed in `notRead` with its reason; nothing is guessed and nothing throws. At most 4 million cells are read altogether.
  */
 export function readImageByDescription(
   description: Description,

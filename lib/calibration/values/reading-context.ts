@@ -33,7 +33,7 @@ export interface ReadingContext {
 }
 
 /** Cells read of one image at most, all characteristics together. */
-export const MOST_CELLS_OF_ALL = 8_000_000;
+export const MOST_CELLS_OF_ALL = 4_000_000;
 
 /** Takes cells from what may still be read. Throws NotReadable when nothing is left. */
 export function spendCells(context: ReadingContext, cells: number): void {

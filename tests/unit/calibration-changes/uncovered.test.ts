@@ -1,5 +1,5 @@
 import fc from "fast-check";
-import { describe, expect, it } from "vitest";
+import { describe, expect, it, vi } from "vitest";
 import { changeSetOf } from "@/lib/calibration/changes/change-set";
 import type { ImageSegment } from "@/lib/calibration/image/types";
 import { readImageByDescription } from "@/lib/calibration/values/read-image-by-description";
@@ -10,6 +10,8 @@ import {
   layout,
   type MadeModule,
 } from "@/tests/support/made-description";
+
+vi.setConfig({ testTimeout: 60_000 });
 
 const at = (address: number, bytes: number[]): ImageSegment => ({ address, bytes: Uint8Array.from(bytes) });
 const bare = (a: ImageSegment[], b: ImageSegment[]) =>
@@ -177,6 +179,6 @@ it("every changed byte is accounted for once (property)", () => {
         }
       },
     ),
-    { numRuns: 500 },
+    { numRuns: 200 },
   );
 });

@@ -1,9 +1,11 @@
 import { readFileSync } from "node:fs";
 import { gunzipSync } from "node:zlib";
-import { describe, expect, it } from "vitest";
+import { describe, expect, it, vi } from "vitest";
 import { readDescription } from "@/lib/calibration/a2l/read-description";
 import { readImage } from "@/lib/calibration/image/read-image";
 import { readImageByDescription } from "@/lib/calibration/values/read-image-by-description";
+
+vi.setConfig({ testTimeout: 60_000 });
 
 const golden = (path: string) => gunzipSync(readFileSync(new URL(`../../golden/${path}`, import.meta.url)));
 const read = (name: string) =>

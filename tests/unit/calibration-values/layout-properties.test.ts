@@ -1,7 +1,9 @@
 import fc from "fast-check";
-import { expect, it } from "vitest";
+import { expect, it, vi } from "vitest";
 import type { ByteOrder, DataType, LayoutComponent } from "@/lib/calibration/a2l/types";
 import { axis, characteristic, component, layout, readOne } from "@/tests/support/made-description";
+
+vi.setConfig({ testTimeout: 60_000 });
 
 /** Whole-number types: bytes, and whether the highest bit is a sign. */
 const TYPES: Partial<Record<DataType, [number, boolean]>> = {
@@ -125,6 +127,6 @@ it("what is written by a layout is read back, cell by cell", () => {
         expect(address + length).toBeLessThanOrEqual(0x1000 + writer.bytes.length);
       }
     }),
-    { numRuns: 500 },
+    { numRuns: 200 },
   );
 });

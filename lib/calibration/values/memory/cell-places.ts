@@ -35,7 +35,7 @@ interface Result {
 }
 
 /** Most cells of one characteristic; checked before anything is allocated. */
-export const MOST_CELLS = 1 << 20;
+const MOST_CELLS = 1 << 20;
 
 /**
  * Where the function values lie. ROW_DIR: x runs fastest; COLUMN_DIR: y runs fastest, then x; further axes are outside in both.

@@ -16,15 +16,16 @@ export function readCells(context: ReadingContext, cells: CellPlaces, order: Byt
     else high += reach;
   }
   const { view, offset } = context.memory.at(low, high - low + DATA_TYPES[type]);
+  const [along, step] = [dims[0] ?? 1, strides[0] ?? 0];
   const index = dims.map(() => 0);
-  const raw: Raw[] = [];
-  let at = offset + address - low;
-  for (let cell = 0; cell < total; cell++) {
-    raw.push(readNumber(view, at, type, order));
-    for (let k = 0; k < dims.length; k++) {
-      at += strides[k];
+  const raw: Raw[] = new Array(total);
+  let row = offset + address - low;
+  for (let cell = 0; cell < total; ) {
+    for (let k = 0; k < along; k++) raw[cell++] = readNumber(view, row + k * step, type, order);
+    for (let k = 1; k < dims.length; k++) {
+      row += strides[k];
       if (++index[k] < dims[k]) break;
-      at -= dims[k] * strides[k];
+      row -= dims[k] * strides[k];
       index[k] = 0;
     }
   }
