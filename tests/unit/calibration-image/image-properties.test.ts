@@ -68,6 +68,33 @@ describe("what a writer wrote is read back, in any order and record size", () =>
   });
 });
 
+describe("one content has one identity", () => {
+  it("as HEX with linear or with segment bases, as S1, S2 or S3, and as raw bytes", () => {
+    const placed = fc.tuple(fc.nat(0xff00), fc.uint8Array({ minLength: 1, maxLength: 200 }));
+    fc.assert(
+      fc.property(placed, fc.integer({ min: 1, max: 64 }), ([address, bytes], size) => {
+        const parts = records([{ address, bytes }], size);
+        const sRecords = (type: number) => parts.map((p) => sRecord(type, p.address, p.data)).join("\n");
+        // A base of 16 bytes steps: the offset is what is left of the address.
+        const segmented = parts.flatMap((p) => [
+          hexRecord(2, 0, [p.address >> 12, (p.address >> 4) & 0xff]),
+          hexRecord(0, p.address % 16, p.data),
+        ]);
+        const linear = parts.map((p) => hexRecord(0, p.address, p.data));
+        const texts = [
+          [...segmented, ":00000001FF"].join("\n"),
+          [...linear, ":00000001FF"].join("\r\n"),
+          ...[1, 2, 3].map(sRecords),
+        ];
+        const raw = readImage(bytes, { fileName: "image.bin", baseAddress: address });
+        const identities = [...texts.map(read), raw].map(imageIdentity);
+        expect(new Set(identities)).toEqual(new Set([imageIdentity({ segments: [{ address, bytes }] })]));
+      }),
+      { numRuns: 150, seed: 15 },
+    );
+  });
+});
+
 describe("damage is never read as a good image", () => {
   it("one digit of a record changed: refused", () => {
     fc.assert(
