@@ -1,6 +1,6 @@
 import { spawn } from "node:child_process";
 import { fileURLToPath } from "node:url";
-import type { FuzzedReader } from "@/tests/fuzz/seed-files";
+import type { FuzzedReader } from "@/tests/fuzz/fuzz-case";
 
 /** What came of a series of mutated files. A fault names the file by reader, seed and number: the same three make it again. */
 export interface FuzzOutcome {

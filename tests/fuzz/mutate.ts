@@ -52,6 +52,23 @@ const TOKENS = [
   "##DL",
   "##CN",
   "##CA",
+  "/begin ",
+  "/end ",
+  "/end CHARACTERISTIC",
+  "/begin GROUP ",
+  '/include "main.a2l"\n',
+  "/include part.a2l ",
+  "/*",
+  "*/",
+  "//",
+  "\\",
+  "MATRIX_DIM 4000000000 ",
+  "FIX_AXIS_PAR 0 1 1000000000 ",
+  "0xFFFFFFFFFFFFFFFF",
+  ":00000001FF",
+  ":020000040000FA",
+  "S9030000FC",
+  "S0030000FC",
 ].map((text) => new TextEncoder().encode(text));
 
 /** Whole numbers at which sizes, counts and places go wrong. */
@@ -144,4 +161,24 @@ export function mutate(seed: Uint8Array, other: Uint8Array, random: RandomStream
   for (let k = 0; k < changes && bytes.length > 0; k++)
     bytes = CHANGES[random.nextBelow(CHANGES.length)](bytes, random, other);
   return bytes;
+}
+
+const RECORD_CHARACTERS = new TextEncoder().encode("0123456789ABCDEFabcdef:Ss\r\n ");
+
+/** One byte of a record file changed: to any other value, or to a character that record files are made of. */
+export function flipByte(seed: Uint8Array, random: RandomStream): Uint8Array {
+  const out = seed.slice();
+  const at = random.nextBelow(out.length);
+  const other = RECORD_CHARACTERS[random.nextBelow(RECORD_CHARACTERS.length)];
+  out[at] = random.nextBelow(4) === 0 || other === out[at] ? out[at] ^ (1 + random.nextBelow(255)) : other;
+  return out;
+}
+
+/** A line of a record file left out, doubled or moved. */
+export function moveLine(seed: Uint8Array, random: RandomStream): Uint8Array {
+  const lines = new TextDecoder("latin1").decode(seed).split("\n");
+  const from = random.nextBelow(lines.length);
+  const [line] = random.nextBelow(3) === 0 ? [lines[from]] : lines.splice(from, 1);
+  if (random.nextBelow(3) > 0) lines.splice(random.nextBelow(lines.length + 1), 0, line);
+  return new TextEncoder().encode(lines.join("\n"));
 }

@@ -2,7 +2,7 @@ import { goldenLog } from "@/tests/support/golden-log";
 import { type WrittenChannel, type WrittenData, writeMdf } from "@/tests/support/mdf-writer";
 
 export const READERS = ["delimited", "mdf", "nmea", "gpx", "gzip"] as const;
-export type FuzzedReader = (typeof READERS)[number];
+export type LogReader = (typeof READERS)[number];
 
 const start = (name: string, bytes: number) => goldenLog(name).slice(0, bytes);
 const DIALECTS = [
@@ -89,7 +89,7 @@ function mdfOf(
 const text = (value: string) => new TextEncoder().encode(value);
 
 /** Sound files of each format, from which mutations start; those of "gzip" are packed before or after they are changed. */
-export function seedFiles(reader: FuzzedReader): Uint8Array[] {
+export function seedFiles(reader: LogReader): Uint8Array[] {
   switch (reader) {
     case "delimited":
       return DIALECTS.map((name) => start(name, 6000));

@@ -23,6 +23,13 @@ export function readSRecord(bytes: Uint8Array): CalibrationImage {
   let ended = false;
   let counted = false;
   let dataRecords = 0;
+  let dataType = 0;
+  // The checksum does not cover the digit of the type: a damaged one shows only in that records do not go together.
+  const doubtType = (line: number) =>
+    note(
+      "record_types_mixed",
+      `The type of the record in line ${line} does not go with the others, and no checksum covers it. Compare the image with its source.`,
+    );
 
   forEachRecordLine(bytes, ({ line, from, to }) => {
     const type = bytes[from + 1] - ZERO;
@@ -72,9 +79,12 @@ export function readSRecord(bytes: Uint8Array): CalibrationImage {
     }
     if (isData) {
       dataRecords++;
+      if (dataType !== 0 && type !== dataType) doubtType(line);
+      dataType ||= type;
       if (ended) note("data_after_end", `Data follow the end record, first in line ${line}; they were read.`);
     } else if (type === 0) {
       if (dataRecords > 0) note("header_inside", `A header record stands inside the data, in line ${line}.`);
+      else if (header !== null) note("header_repeated", `A second header record stands in line ${line}.`);
       header ??= text;
     } else if (type === 5 || type === 6) {
       if (length > 0)
@@ -92,6 +102,9 @@ export function readSRecord(bytes: Uint8Array): CalibrationImage {
         );
       }
     } else {
+      if (length > 0)
+        refuseLine("record_length_wrong", line, `a record of type S${type} ends the file and holds no data.`);
+      if (dataType !== 0 && type !== 10 - dataType) doubtType(line);
       ended = true;
       startAddress ??= address;
     }
