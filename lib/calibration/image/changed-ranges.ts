@@ -9,7 +9,7 @@ export interface ChangedRange {
 }
 
 /** Windows that are compared at once: they grow from the smaller to the larger while nothing differs. */
-const WINDOW = { least: 512, most: 32_768 } as const;
+const WINDOW = { least: 512, most: 65_536 } as const;
 /** Stretch that is known to differ and so short that its bytes are looked at one by one. */
 const NARROW = 128;
 
