@@ -1,5 +1,6 @@
 import { and, desc, eq, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
+import { hasOwnJob } from "@/db/queries/analysis-versions";
 import { descriptions, revisions } from "@/db/tables";
 
 export type DescriptionRow = typeof descriptions.$inferSelect;
@@ -82,16 +83,15 @@ export async function selectRevisionsOfDescription(db: Queryable, { workspaceId,
     .orderBy(revisions.number);
 }
 
-/** Descriptions that only another version of the reader settled, newest first. */
+/** Descriptions that this version of the reader has not settled, without a job of their own (hasOwnJob), newest first. */
 export async function selectOutdatedDescriptions(
   db: Queryable,
   { readerVersion, most }: { readerVersion: string; most: number },
 ): Promise<{ workspaceId: string; descriptionId: string }[]> {
   const { rows } = await db.execute<{ workspaceId: string; descriptionId: string }>(sql`
     select d.workspace_id as "workspaceId", d.id as "descriptionId" from descriptions d
-    where d.reader_version is distinct from ${readerVersion} and d.created_at < now() - interval '10 minutes'
-      and not exists (select from pgboss.job where name = 'read-description'
-        and data->>'descriptionId' = d.id::text and (state < 'completed' or completed_on > now() - interval '1 day'))
+    where d.reader_version is distinct from ${readerVersion}
+      and not ${hasOwnJob("read-description", "descriptionId", sql`d.id`)}
     order by d.created_at desc limit ${most}`);
   return rows;
 }

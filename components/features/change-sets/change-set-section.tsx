@@ -23,7 +23,6 @@ export interface ChangeSetSectionProps {
   /** Reasons of the policy; null = allowed. */
   refused: { ask: string | null; look: string | null };
   actions: { ask: AskAction; look: LookedAtAction };
-  linksHref: Route;
   downloads: ReactNode;
   /** Watches what is being worked out; shown while something is. */
   watch: ReactNode;
@@ -45,14 +44,19 @@ export function ChangeSetSection(props: ChangeSetSectionProps) {
   );
 }
 
-function Body({ view, asked, refused, actions, linksHref, watch, describe }: ChangeSetSectionProps) {
+function Body({ view, asked, refused, actions, watch, describe }: ChangeSetSectionProps) {
   const { changes, against, changeSetId, revision, state } = view;
   if (!against)
     return (
       <p className="text-15">This is the first image of its line: there is nothing to set it against.</p>
     );
-  const bytesHref = changeAddress(revision.id, { ...asked, change: BYTES_KEY });
-  const warnings = <WarningList warnings={warningsOf(view)} bytesHref={bytesHref} />;
+  const setting = (page: string) => `/programmes/${revision.programmeId}/${page}` as Route;
+  const hrefs = {
+    bytes: changeAddress(revision.id, { ...asked, change: BYTES_KEY }),
+    regions: setting("checksum-regions"),
+    marks: setting("relevance"),
+  };
+  const warnings = <WarningList warnings={warningsOf(view)} hrefs={hrefs} />;
   const ask = (label: string) => (
     <AskForm
       revisionId={revision.id}
@@ -89,7 +93,11 @@ function Body({ view, asked, refused, actions, linksHref, watch, describe }: Cha
       {warnings}
       {changes.readBy === "none" && describe}
       {changes.readBy !== "none" && (
-        <CoverageNote coverage={view.coverage} linksHref={linksHref} ask={ask("Work it out")} />
+        <CoverageNote
+          coverage={view.coverage}
+          linksHref={setting(`axis-links?revision=${revision.id}`)}
+          ask={ask("Work it out")}
+        />
       )}
       <ChangeSetWalk
         view={{ ...view, changes, against }}

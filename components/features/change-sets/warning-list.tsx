@@ -7,12 +7,25 @@ import { cn } from "@/lib/cn";
 const ICON = { problem: OctagonX, caution: TriangleAlert, plain: Info } as const;
 const COLOUR = { problem: "text-unmet", caution: "text-thin", plain: "text-ink2" } as const;
 
+type Place = NonNullable<Warning["to"]>;
+
+const LINK_WORDS: Record<Place, string> = {
+  bytes: "See the bytes",
+  regions: "Checksum regions",
+  marks: "What is marked",
+};
+
+export interface WarningListProps {
+  warnings: readonly Warning[];
+  hrefs: Record<Place, Route>;
+}
+
 /** What must be known before the list is read; nothing where there is nothing. */
-export function WarningList({ warnings, bytesHref }: { warnings: readonly Warning[]; bytesHref: Route }) {
+export function WarningList({ warnings, hrefs }: WarningListProps) {
   if (warnings.length === 0) return null;
   return (
     <ul aria-label="Know this first" className="flex flex-col rounded border border-line bg-surface">
-      {warnings.map(({ tone, title, text, toBytes }) => {
+      {warnings.map(({ tone, title, text, to }) => {
         const Icon = ICON[tone];
         return (
           <li
@@ -22,9 +35,9 @@ export function WarningList({ warnings, bytesHref }: { warnings: readonly Warnin
             <Icon aria-hidden size={18} className={cn("mt-0.5 shrink-0", COLOUR[tone])} />
             <p className="min-w-0 max-w-prose">
               <strong className="font-semibold">{title}.</strong> {text}{" "}
-              {toBytes && (
-                <Link href={bytesHref} className="link">
-                  See the bytes
+              {to && (
+                <Link href={hrefs[to]} className="link">
+                  {LINK_WORDS[to]}
                 </Link>
               )}
             </p>

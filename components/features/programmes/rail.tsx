@@ -51,6 +51,31 @@ export function GatesCard({
   );
 }
 
+/** What is settled once about the calibration of a programme. */
+export function CalibrationCard({ programmeId }: { programmeId: string }) {
+  const pages = [
+    ["relevance", "Emission and safety"],
+    ["axis-links", "Axis links"],
+    ["checksum-regions", "Checksum regions"],
+  ] as const;
+  return (
+    <Card title="Calibration" level={2}>
+      <ul className="flex flex-col">
+        {pages.map(([page, words]) => (
+          <li key={page}>
+            <Link
+              href={`/programmes/${programmeId}/${page}` as Route}
+              className="link inline-flex min-h-control items-center text-15"
+            >
+              {words}
+            </Link>
+          </li>
+        ))}
+      </ul>
+    </Card>
+  );
+}
+
 export function PeopleCard({
   people,
 }: {

@@ -7,6 +7,7 @@ import { HistoryList } from "@/components/features/ledger/ledger-list";
 import { statePhrase } from "@/components/features/programmes/lineage-words";
 import { PolicyLink } from "@/components/features/programmes/policy-link";
 import {
+  CalibrationCard,
   GatesCard,
   HistoryCard,
   PeopleCard,
@@ -137,6 +138,7 @@ export default async function ProgrammePage({ params }: PageProps<"/programmes/[
         <aside aria-label="About this programme" className="grid min-w-0 gap-6 sm:grid-cols-2 lg:grid-cols-1">
           <VehicleCard programmeId={programme.id} sheet={sheet} />
           <GatesCard programmeId={programme.id} plan={plan} />
+          {can(ctx, "history.view").ok && <CalibrationCard programmeId={programme.id} />}
           <RoadDaysCard programmeId={programme.id} days={roadDays} mayPlan={can(ctx, "plan.view").ok} />
           <PeopleCard people={people} />
         </aside>

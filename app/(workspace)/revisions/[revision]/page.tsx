@@ -1,4 +1,4 @@
-import type { Metadata, Route } from "next";
+import type { Metadata } from "next";
 import { z } from "zod";
 import { openComparisonAction } from "@/app/(workspace)/comparisons/actions";
 import { askForChangesAction, lookedAtAction } from "@/app/(workspace)/revisions/[revision]/actions";
@@ -15,6 +15,7 @@ import {
 import { ChangeSetSection } from "@/components/features/change-sets/change-set-section";
 import { ChangesWatch } from "@/components/features/change-sets/changes-watch";
 import { viewFromParameters } from "@/components/features/change-sets/list/view-address";
+import { ValueDownloads } from "@/components/features/change-sets/value-downloads";
 import { OpenComparisonForm } from "@/components/features/comparisons/open-comparison-form";
 import { DescriptionUnderstood } from "@/components/features/descriptions/description-understood";
 import { EditRevisionForm } from "@/components/features/revisions/edit-form";
@@ -114,8 +115,14 @@ export default async function RevisionPage({ params, searchParams }: PageProps<"
           asked={asked}
           refused={{ ask: reasonAgainst("change_set.ask"), look: reasonAgainst("change_set.look_at") }}
           actions={{ ask: askForChangesAction, look: lookedAtAction }}
-          linksHref={`/programmes/${programme.id}/axis-links?revision=${revision.id}` as Route}
-          downloads={null}
+          downloads={
+            reasonAgainst("values.export") === null && (
+              <ValueDownloads
+                changeSetId={view.changes && view.changes.readBy !== "none" ? view.changeSetId : null}
+                revision={described?.state === "read" ? revision : null}
+              />
+            )
+          }
           watch={
             view.changeSetId && (
               <ChangesWatch

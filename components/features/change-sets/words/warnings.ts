@@ -8,8 +8,8 @@ export interface Warning {
   tone: "problem" | "caution" | "plain";
   title: string;
   text: string;
-  /** Leads to the bytes outside the description. */
-  toBytes?: boolean;
+  /** Where it leads: the bytes outside the description, or a setting of the programme. */
+  to?: "bytes" | "regions" | "marks";
 }
 
 /** Names that are printed at most in one sentence. */
@@ -33,7 +33,10 @@ export function warningsOf(view: RevisionChangesView): Warning[] {
           ),
         ]
       : []),
-    ...broken.map(({ name, sentence }) => problem(`Checksum region ${name}`, sentence)),
+    ...broken.map(({ name, sentence }) => ({
+      ...problem(`Checksum region ${name}`, sentence),
+      to: "regions" as const,
+    })),
     ...(epk?.state === "mismatch"
       ? [
           problem(
@@ -64,12 +67,13 @@ function changeWarnings(
             tone: "caution" as const,
             title: "Changed outside the description",
             text: `${counted(set.uncoveredBytes, "byte")} in ${counted(set.uncoveredRanges, "place")} belong to no characteristic.`,
-            toBytes: true,
+            to: "bytes" as const,
           },
         ]
       : []),
     ...touched.map(({ mark, characteristics }) => ({
       tone: "caution" as const,
+      to: "marks" as const,
       title: mark.relevance === "emission" ? "Emission-relevant" : "Safety-relevant",
       text: `${mark.set === "function" ? `Function ${mark.name}` : mark.name} is touched: ${namesText(characteristics)}.${mark.note ? ` ${mark.note}` : ""}`,
     })),

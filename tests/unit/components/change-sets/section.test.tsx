@@ -26,7 +26,6 @@ function section(shown: RevisionChangesView, parameters: Record<string, string> 
       asked={viewFromParameters(parameters)}
       refused={{ ask: null, look: null }}
       actions={{ ask: async () => ({ ok: true }), look }}
-      linksHref={"/programmes/p/axis-links" as never}
       downloads={null}
       watch={<p>watching</p>}
       describe={<p>Add a description.</p>}
