@@ -72,7 +72,7 @@ export async function selectOlderDecisions(
  * True where a job on this item is on its way, or failed for good within a day: what could not be computed is not tried again every
  * hour. Failed jobs move to the queue's archive after some hours.
  */
-function hasOwnJob(name: JobName, key: string, id: SQL): SQL {
+export function hasOwnJob(name: JobName, key: string, id: SQL): SQL {
   const failedToday = sql`state = 'failed' and completed_on > now() - interval '1 day'`;
   return sql`(
     exists (select from pgboss.job

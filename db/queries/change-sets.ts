@@ -1,5 +1,6 @@
 import { and, desc, eq, inArray, isNull, ne, or, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
+import { hasOwnJob } from "@/db/queries/analysis-versions";
 import { changeSets, programmes, revisions } from "@/db/tables";
 
 export type ChangeSetRow = typeof changeSets.$inferSelect;
@@ -195,7 +196,7 @@ export async function selectComparableRevisions(
     .orderBy(desc(revisions.number));
 }
 
-/** Pairs that another version of the reader compared and this one did not, newest first, where no job is on its way. */
+/** Pairs that other versions of the reader compared and this one did not, newest first. */
 export async function selectOutdatedPairs(
   db: Queryable,
   { readerVersion, most }: { readerVersion: string; most: number },
@@ -206,5 +207,31 @@ export async function selectOutdatedPairs(
     group by workspace_id, revision_a_id, revision_b_id
     having bool_and(reader_version <> ${readerVersion})
     order by max(created_at) desc limit ${most}`);
+  return rows;
+}
+
+/** Change sets that are said to be computed although no job would bring them, e.g. after a restore; younger ones are left alone. */
+export async function selectForgottenChangeSets(
+  db: Queryable,
+  { most }: { most: number },
+): Promise<{ workspaceId: string; changeSetId: string }[]> {
+  const { rows } = await db.execute<{ workspaceId: string; changeSetId: string }>(sql`
+    select c.workspace_id as "workspaceId", c.id as "changeSetId" from change_sets c
+    where c.state = 'computing' and c.created_at < now() - interval '10 minutes'
+      and not ${hasOwnJob("compute-change-set", "changeSetId", sql`c.id`)}
+    order by c.created_at desc limit ${most}`);
+  return rows;
+}
+
+/** As selectForgottenChangeSets, by their coverage. */
+export async function selectForgottenCoverages(
+  db: Queryable,
+  { most }: { most: number },
+): Promise<{ workspaceId: string; changeSetId: string }[]> {
+  const { rows } = await db.execute<{ workspaceId: string; changeSetId: string }>(sql`
+    select distinct c.workspace_id as "workspaceId", c.change_set_id as "changeSetId" from coverages c
+    where c.state = 'computing' and c.created_at < now() - interval '10 minutes'
+      and not ${hasOwnJob("compute-coverage", "changeSetId", sql`c.change_set_id`)}
+    limit ${most}`);
   return rows;
 }

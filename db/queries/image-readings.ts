@@ -1,5 +1,6 @@
 import { and, desc, eq, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
+import { hasOwnJob } from "@/db/queries/analysis-versions";
 import { imageChecks, imageReadings } from "@/db/tables";
 
 export type ImageReadingRow = typeof imageReadings.$inferSelect;
@@ -26,6 +27,22 @@ export async function insertImageReading(
   values: Omit<ImageReadingRow, "createdAt">,
 ): Promise<void> {
   await tx.insert(imageReadings).values(values).onConflictDoNothing();
+}
+
+/** Revisions whose image this version of the reader has not read by their description, without a job of their own, newest first. */
+export async function selectOutdatedReadings(
+  db: Queryable,
+  { readerVersion, most }: { readerVersion: string; most: number },
+): Promise<{ workspaceId: string; revisionId: string }[]> {
+  const { rows } = await db.execute<{ workspaceId: string; revisionId: string }>(sql`
+    select r.workspace_id as "workspaceId", r.id as "revisionId" from revisions r
+    join descriptions d on d.id = r.description_id and d.state = 'read'
+    where r.set_aside_at is null
+      and not exists (select from image_readings i where i.revision_id = r.id
+        and i.description_id = r.description_id and i.reader_version = ${readerVersion})
+      and not ${hasOwnJob("read-image", "revisionId", sql`r.id`)}
+    order by r.created_at desc limit ${most}`);
+  return rows;
 }
 
 /** What the stored image was last found to be, for a version of the regions; null where it was not checked for it yet. */

@@ -11,7 +11,7 @@ async function* whole(bytes: Uint8Array) {
 /** Sends bytes the way a browser does. @returns the upload's id */
 export async function uploadFile(
   ctx: Ctx,
-  purpose: "image" | "log",
+  purpose: "image" | "log" | "description",
   fileName: string,
   bytes: Buffer,
 ): Promise<string> {

@@ -1,7 +1,12 @@
 import type { Queryable } from "@/db/client";
 import { selectOutdatedComparisons, selectOutdatedRuns } from "@/db/queries/analysis-versions";
-import { selectOutdatedPairs } from "@/db/queries/change-sets";
+import {
+  selectForgottenChangeSets,
+  selectForgottenCoverages,
+  selectOutdatedPairs,
+} from "@/db/queries/change-sets";
 import { selectOutdatedDescriptions } from "@/db/queries/descriptions";
+import { selectOutdatedReadings } from "@/db/queries/image-readings";
 import { READER_VERSION } from "@/lib/calibration/reader-version";
 import { enqueueJob } from "@/lib/jobs/enqueue";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
@@ -13,7 +18,7 @@ const MOST_A_SWEEP = 200;
 /**
  * Has everything that only an older analysis version or an older reader of calibrations computed computed anew, behind whatever people
  * wait for. Old results and verdicts stay as they are. What failed for good, e.g. because its log is gone, is left alone for a day.
- * @returns how many jobs were made, `most` at most of each of the two kinds
+ * @returns how many jobs were made, `most` at most for the analysis, and `most` of each kind for calibrations
  */
 export async function renewOutdated(db: Queryable, most = MOST_A_SWEEP): Promise<number> {
   const version = { analysisVersion: ANALYSIS_VERSION };
@@ -25,13 +30,20 @@ export async function renewOutdated(db: Queryable, most = MOST_A_SWEEP): Promise
   return runs.length + comparisons.length + (await renewReadings(db, most));
 }
 
+/** Descriptions, readings, change sets and coverages; each kind up to `most`, one after the other. */
 async function renewReadings(db: Queryable, most: number): Promise<number> {
-  const reader = { readerVersion: READER_VERSION };
-  const descriptions = await selectOutdatedDescriptions(db, { ...reader, most });
-  for (const data of descriptions)
-    await enqueueJob(db, { name: "read-description", data }, { background: true });
-  const pairs = await selectOutdatedPairs(db, { ...reader, most: most - descriptions.length });
+  const reader = { readerVersion: READER_VERSION, most };
+  const background = { background: true };
+  const descriptions = await selectOutdatedDescriptions(db, reader);
+  for (const data of descriptions) await enqueueJob(db, { name: "read-description", data }, background);
+  const readings = await selectOutdatedReadings(db, reader);
+  for (const data of readings) await enqueueJob(db, { name: "read-image", data }, background);
+  const pairs = await selectOutdatedPairs(db, reader);
   for (const { workspaceId, ...pair } of pairs)
-    await db.transaction((tx) => openPairs(tx, { workspaceId }, [pair], { background: true }));
-  return descriptions.length + pairs.length;
+    await db.transaction((tx) => openPairs(tx, { workspaceId }, [pair], background));
+  const changeSets = await selectForgottenChangeSets(db, { most });
+  for (const data of changeSets) await enqueueJob(db, { name: "compute-change-set", data }, background);
+  const coverages = await selectForgottenCoverages(db, { most });
+  for (const data of coverages) await enqueueJob(db, { name: "compute-coverage", data }, background);
+  return [descriptions, readings, pairs, changeSets, coverages].reduce((sum, { length }) => sum + length, 0);
 }

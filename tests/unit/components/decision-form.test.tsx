@@ -69,6 +69,8 @@ describe("the countersign form", () => {
       inputSha256: "a".repeat(64),
       shownInputSha256: "a".repeat(64),
       gatePlanVersion: 2,
+      calibrationSha256: "c".repeat(64),
+      approval: null,
       reason: "gain shown, nothing lost",
       typedNumber: "R15",
       passphrase: "out and back again",
@@ -139,5 +141,28 @@ describe("the countersign form", () => {
     show({ blocked: { promote: reason, sendBack: reason, waive: reason } });
     expect(screen.getAllByText(reason).length).toBeGreaterThan(0);
     expect(screen.queryByLabelText(/passphrase/)).toBeNull();
+  });
+
+  test("asks for a document where marked functions are changed for the road, unless a second lead agreed", async () => {
+    const action = show({ needsApproval: true });
+    choose(/^Promote/);
+    type(/^Reason/, "gain shown");
+    type(/Number of the revision/, "R15");
+    type(/passphrase/, "out and back again");
+    sign(/Sign and promote R15/);
+    expect(screen.getByText(/Name the approval document and its issuer/)).toBeTruthy();
+    expect(action).not.toHaveBeenCalled();
+    type(/^Approval document/, "Report 17");
+    type(/^Issued by/, "Test house");
+    sign(/Sign and promote R15/);
+    await waitFor(() => expect(action).toHaveBeenCalledOnce());
+    expect(action.mock.calls[0]?.[0]).toMatchObject({
+      approval: { document: "Report 17", issuer: "Test house" },
+    });
+    cleanup();
+    show({ needsApproval: true, agreedBy: ["A second lead"] });
+    choose(/^Promote/);
+    expect(screen.getByText(/A second lead agreed as second lead/)).toBeTruthy();
+    expect(screen.queryByText(/Name the approval document and its issuer/)).toBeNull();
   });
 });
