@@ -1,5 +1,6 @@
 import { lines as campaign } from "./campaign";
 import { lines as coverage } from "./coverage";
+import { lines as descriptions, printDescriptionMemory } from "./descriptions";
 import { lines as images } from "./images";
 import { lines as ingest } from "./ingest";
 import { printMemory } from "./ingest-memory";
@@ -12,6 +13,15 @@ import { python } from "./python";
 // npm run bench: ratios taken in one run on one machine, CPU time, the middle of rounds that take turns with the reference.
 // A budget that is not kept is said and ends with code 1; what is not installed is "not run". No test depends on the figures.
 console.log(`Node ${process.versions.node}; ${python ? python.versions : "no python3 with scipy"}`);
-const kept = [...numerics, ...campaign, ...logs, ...ingest, ...mdf, ...images, ...coverage].map(printLine);
-kept.push(printMemory());
+const kept = [
+  ...numerics,
+  ...campaign,
+  ...logs,
+  ...ingest,
+  ...mdf,
+  ...images,
+  ...coverage,
+  ...descriptions,
+].map(printLine);
+kept.push(printMemory(), printDescriptionMemory());
 if (kept.includes(false)) process.exitCode = 1;

@@ -30,18 +30,14 @@ function writtenThings(i: number): string {
 `;
 }
 
-/** A description of at least `bytes`, all of it invented, as one block of bytes. */
+/** A description of at least `bytes`, all of it invented, as one block of bytes that never was a string. */
 export function writtenDescription(bytes: number): { bytes: Uint8Array; characteristics: number } {
-  const parts = [
-    'ASAP2_VERSION 1 71\n/begin PROJECT Bench ""\n/begin MODULE Unit ""\n/begin MOD_COMMON "" BYTE_ORDER MSB_LAST /end MOD_COMMON\n',
-  ];
-  let size = 0;
+  const head =
+    'ASAP2_VERSION 1 71\n/begin PROJECT Bench ""\n/begin MODULE Unit ""\n/begin MOD_COMMON "" BYTE_ORDER MSB_LAST /end MOD_COMMON\n';
+  const room = Buffer.alloc(bytes + 10_000);
+  let size = room.write(head, 0);
   let things = 0;
-  for (; size < bytes; things++) {
-    const text = writtenThings(things);
-    size += text.length;
-    parts.push(text);
-  }
-  parts.push("/end MODULE\n/end PROJECT\n");
-  return { bytes: new TextEncoder().encode(parts.join("")), characteristics: things };
+  for (; size < bytes; things++) size += room.write(writtenThings(things), size);
+  size += room.write("/end MODULE\n/end PROJECT\n", size);
+  return { bytes: new Uint8Array(room.buffer, room.byteOffset, size), characteristics: things };
 }
