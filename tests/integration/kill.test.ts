@@ -2,7 +2,7 @@ import { spawn } from "node:child_process";
 import { randomUUID } from "node:crypto";
 import { and, eq } from "drizzle-orm";
 import { afterAll, beforeAll, expect } from "vitest";
-import { idempotencyKeys, ledger, revisions } from "@/db/tables";
+import { descriptions, idempotencyKeys, ledger, revisions } from "@/db/tables";
 import { readBlob } from "@/lib/services/blobs";
 import { mintCtx } from "@/lib/services/ctx";
 import { addRevision } from "@/lib/services/revisions/create";
@@ -10,6 +10,7 @@ import type { TestDatabase } from "@/tests/support/database";
 import { test } from "@/tests/support/database";
 import { createMember, createProgrammeRow, createWorkspaceRow } from "@/tests/support/factories";
 import type { KillOrder } from "@/tests/support/kill-child";
+import { smallA2l } from "@/tests/support/small-calibration";
 import { createTestStore } from "@/tests/support/store";
 import { sha256Of, uploadBytes } from "@/tests/support/upload-bytes";
 
@@ -57,6 +58,8 @@ async function prepare(database: TestDatabase): Promise<KillOrder> {
   const ctx = await createMember(database.db, { workspaceId, roles: ["calibrator"], store: files.store });
   const programmeId = await createProgrammeRow(database.db, { workspaceId, createdBy: ctx.userId });
   const uploadId = await uploadBytes(ctx, "image", "image.hex", someImage());
+  const a2l = smallA2l({ unit: randomUUID().slice(0, 8) });
+  const descriptionUploadIds = [await uploadBytes(ctx, "description", "image.a2l", a2l)];
   return {
     databaseUrl: database.url,
     storeRoot: files.root,
@@ -69,6 +72,7 @@ async function prepare(database: TestDatabase): Promise<KillOrder> {
       programmeId,
       parentId: null,
       uploadId,
+      descriptionUploadIds,
       title: "boost ramp",
       note: "",
       changeReason: "",
@@ -112,10 +116,18 @@ async function check(database: TestDatabase, order: KillOrder, expected: number)
     expect(sha256Of(bytes)).toBe(row.imageSha256);
     expect(bytes.length).toBe(row.imageBytes);
   }
+  const described = await database.db
+    .select()
+    .from(descriptions)
+    .where(eq(descriptions.workspaceId, workspaceId));
+  expect(described.map(({ id }) => id)).toEqual(rows.map(({ descriptionId }) => descriptionId));
+  for (const { files: parts } of described)
+    for (const { sha256 } of parts)
+      expect(sha256Of(await readBlob({ store: files.store, workspaceId }, sha256))).toBe(sha256);
 }
 
 test("a kill before any call of database or store loses nothing and doubles nothing", {
-  timeout: 240_000,
+  timeout: 600_000,
 }, async ({ database }) => {
   const whole = await prepare(database);
   const first = await runChild(whole);
