@@ -1,8 +1,9 @@
 import { readFileSync } from "node:fs";
 import { gunzipSync } from "node:zlib";
+import { valuesFileSeeds } from "@/tests/fuzz/values-file-seeds";
 import { hexRecord, sRecord } from "@/tests/support/record-files";
 
-export const CALIBRATION_READERS = ["description", "intel-hex", "s-record"] as const;
+export const CALIBRATION_READERS = ["description", "intel-hex", "s-record", "values-file"] as const;
 export type CalibrationReader = (typeof CALIBRATION_READERS)[number];
 
 const golden = (name: string) =>
@@ -91,5 +92,7 @@ export function calibrationSeeds(reader: CalibrationReader): Uint8Array[] {
         sFile([0, 1, null, 9], 0x1000),
         golden("images/bincopy_in.s19"),
       ];
+    case "values-file":
+      return valuesFileSeeds();
   }
 }

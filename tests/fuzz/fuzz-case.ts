@@ -8,8 +8,10 @@ import {
 import { judgeDescription } from "@/tests/fuzz/judge-description";
 import { judgeFlip, judgeImage } from "@/tests/fuzz/judge-image";
 import { judgeOutcome } from "@/tests/fuzz/judge-outcome";
+import { judgeValuesFile } from "@/tests/fuzz/judge-values-file";
 import { flipByte, moveLine, mutate } from "@/tests/fuzz/mutate";
 import { type LogReader, READERS, seedFiles } from "@/tests/fuzz/seed-files";
+import { mutateElements } from "@/tests/fuzz/values-file-seeds";
 
 export type FuzzedReader = LogReader | CalibrationReader;
 /** Makes one file from a stream of random numbers and has it judged; a fault of the reader is thrown. */
@@ -35,6 +37,10 @@ function calibrationCase(reader: CalibrationReader): FuzzCase {
     const file = files[random.nextBelow(files.length)];
     const other = files[random.nextBelow(files.length)];
     if (reader === "description") return judgeDescription(mutate(file, other, random), other);
+    if (reader === "values-file")
+      return judgeValuesFile(
+        random.nextBelow(2) === 0 ? mutate(file, other, random) : mutateElements(files[0], random),
+      );
     switch (random.nextBelow(4)) {
       case 0:
         return judgeImage(mutate(file, other, random), fileName);

@@ -71,7 +71,7 @@ const S_RECORD: Odd[] = [
   ["no end record", [S0, s1(0, 1)]],
   ["S5 with a wrong count", [S0, s1(0, 1), sRecord(5, 2, []), S9]],
   ["S5 with bytes behind its count", [S0, s1(0, 1), sRecord(5, 1, [5]), S9]],
-  ["end record with data", [S0, s1(0, 1), sRecord(9, 0, [5])]],
+  ["end record with data", [S0, s1(0, 1), sRecord(9, 0, [5])], "refused: an end record holds no data"],
   ["record without data", [S0, s1(0, 1), s1(9), S9]],
   ["S5 and S6 with the right count", [S0, s1(0, 1), sRecord(5, 1, []), sRecord(6, 1, []), S9]],
   ["S4", [S0, s1(0, 1), "S4030000FC", S9]],
