@@ -25,13 +25,18 @@ export function imageReport(image: CalibrationImage, fileSha256: string) {
   };
 }
 
-/** What a description says of itself: blocks that were not read, included files that were not given. */
-export function descriptionReport({ notRead, missingIncludes }: Description): Said {
+/** What a description says of itself: blocks that were not read, included files that were not given, what a person should know. */
+export function descriptionReport({ notRead, missingIncludes, notes }: Description): Said {
   return {
     notRead: notRead.map(({ keyword, name, reason }) => ({ name, reason: `${keyword}: ${reason}` })),
-    problems: missingIncludes.map(
-      (name) => `The description includes ${name}, which was not given. Name it behind --description.`,
-    ),
+    problems: [
+      ...missingIncludes.map(
+        (name) => `The description includes ${name}, which was not given. Name it behind --description.`,
+      ),
+      ...notes.map(
+        ({ message, file, line }) => `${message} (${file}${line === null ? "" : `, line ${line}`})`,
+      ),
+    ],
   };
 }
 

@@ -4,12 +4,14 @@ import type { PhysicalValue } from "@/lib/calibration/values/types";
 
 /**
  * Cells of a curve on a rescale axis. The last virtual index is the last cell where that fits; where it is the greatest number
- * of its data type, the virtual axis spans the whole range and has as many cells as the description states. Throws NotReadable.
+ * of its data type, the virtual axis spans the whole range and has as many cells as the description states. A description that
+ * states the number of pairs instead limits nothing. Throws NotReadable.
  */
 export function cellsOfRescale(shared: SharedAxis, most: number): number {
   const last = lastIndex(shared);
   if (Number.isInteger(last) && last >= 0 && last < most) return last + 1;
   if (last === shared.fullScale && most >= 2) return most;
+  if (Number.isInteger(last) && last >= 0 && most === shared.pairs?.length) return last + 1;
   throw new NotReadable(
     `the rescale pairs of ${shared.read.name} end at index ${last}, cells 0 to ${most - 1} are possible`,
   );

@@ -88,6 +88,10 @@ describe("rescale axes", () => {
     expect(read.axes[0].raw).toEqual([10, 15, 20, 50, 80]);
   });
 
+  it("a description that states the number of pairs does not limit the cells", () => {
+    expect(readOne(...rescale([10, 0, 20, 2, 80, 4], 3, 5)).values).toEqual([0, 1, 2, 3, 4]);
+  });
+
   it("the shared axis itself shows its pairs in use", () => {
     const [made, bytes] = rescale([10, 0, 20, 2, 80, 4, 255, 255], 9, 3, 2);
     const reading = readMade(made, bytes);
