@@ -8,7 +8,7 @@ export function CalibrationMethods() {
         id="coverage"
         title="Coverage of changed cells"
         source="Multilinear interpolation between axis points, as control units do it: textbook. From 0.1 s of weight on a cell counts as visited, gaps from 1 s or three usual steps, absence of 0.5 s before a new visit, 0.5 s between a channel's own samples: common practice, no source."
-        limits="A channel of a log stands for the quantity that the control unit uses; it may be filtered, late or rounded otherwise. Seconds show that a cell was in use, not that its value is right. Channels recorded less often than every 0.5 s are known at their own times only. Between the points of a rescale or curve axis the weight is shared linearly."
+        limits="A channel of a log stands for the quantity that the control unit uses; it may be filtered, late or rounded otherwise. Seconds show that a cell was in use, not that its value is right. Channels recorded less often than every 0.5 s beside a faster log tell nothing. Between the points of a rescale or curve axis the weight is shared linearly."
       >
         <p>
           Each sample of a usable run, of any kind, is worth half of the step before it and half of the step

@@ -1,7 +1,12 @@
 import type { ChangeSet, CharacteristicChange } from "@/lib/calibration/changes/types";
 import { pointsIn, quantityOf, risingPoints } from "@/lib/calibration/coverage/axis-points";
 import { cellCount, changedCellFlags } from "@/lib/calibration/coverage/changed-cells";
-import { atTimes, type SampleTimes, sampleTimes } from "@/lib/calibration/coverage/sample-times";
+import {
+  atTimes,
+  type SampleTimes,
+  sampleTimes,
+  tooLongStepS,
+} from "@/lib/calibration/coverage/sample-times";
 import type {
   AxisLink,
   Coverage,
@@ -18,6 +23,9 @@ import {
 
 /** Weighted seconds from which on a cell counts as visited (common practice, no source). */
 const VISITED_S = 0.1;
+
+const NO_STEP =
+  "The samples of the usable runs lie more than 1 s apart: how long a cell was in use is not known.";
 
 /** An axis that samples can be placed on. */
 interface LinkedAxis {
@@ -121,6 +129,10 @@ function openTable(
 /** Adds a run to every table that it tells; tables that share a channel or an axis share its samples. */
 function addRun(tables: readonly OpenTable[], run: CoverageRun): void {
   const times = sampleTimes(run.timeS);
+  if (!times.joined.includes(1)) {
+    for (const table of tables) table.silent = { code: "not_recorded", reason: NO_STEP };
+    return;
+  }
   const samples = new Map<string, Float64Array>();
   const places = new Map<string, AxisPlace>();
   for (const table of tables) {
@@ -156,6 +168,11 @@ function placeOf(
     const words = (text: string) => (text.trim() === "" ? "no unit" : `the unit ${text}`);
     const reason = `${quantity} has ${words(unit)}, but ${link.channel} has ${words(channel.unit)}: one can't be converted into the other.`;
     return { code: "unit", reason };
+  }
+  const stepS = tooLongStepS(channel);
+  if (stepS !== null) {
+    const reason = `${link.channel}, linked to ${quantity}, is recorded every ${Number(stepS.toPrecision(2))} s only: what lies between is not known.`;
+    return { code: "not_recorded", reason };
   }
   const key = `${link.channel}\n${inUnit.join()}`;
   const known = places.get(key);

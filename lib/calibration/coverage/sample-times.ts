@@ -15,13 +15,24 @@ export interface SampleTimes {
   joined: Uint8Array;
 }
 
+function stepsOf(timeS: Float64Array): Float64Array {
+  const steps = new Float64Array(Math.max(0, timeS.length - 1));
+  for (let i = 1; i < timeS.length; i++) steps[i - 1] = timeS[i] - timeS[i - 1];
+  return steps;
+}
+
+/** The usual step of a channel's own times in s where it is too long to tell what lies between; null where it is not. */
+export function tooLongStepS({ timeS: own }: CoverageChannel): number | null {
+  const usual = own ? median(stepsOf(own)) : 0;
+  return usual > LONGEST_OWN_GAP_S ? usual : null;
+}
+
 /** Shares the time of a run (s, rising) among its samples; steps that are gaps, or do not rise, are nobody's. */
 export function sampleTimes(timeS: Float64Array): SampleTimes {
   const n = timeS.length;
   const worthS = new Float64Array(n);
   const joined = new Uint8Array(n);
-  const steps = new Float64Array(Math.max(0, n - 1));
-  for (let i = 1; i < n; i++) steps[i - 1] = timeS[i] - timeS[i - 1];
+  const steps = stepsOf(timeS);
   const longest = Math.min(LONGEST_STEP_S, USUAL_STEPS * median(steps));
   for (let i = 1; i < n; i++) {
     const step = steps[i - 1];

@@ -136,10 +136,14 @@ describe("Channels", () => {
     // 0 to 2,000 in 2 s: hats of half width 1 s.
     const map = only(table("c", X), [with_(0.5)]);
     for (const [k, area] of [0.5, 1, 0.5, 0].entries()) expect(map.secondsByCell[k]).toBeCloseTo(area, 9);
-    // With samples 1 s apart only the three at its own times are known: half a step, a whole one, half a step.
-    const sparse = only(table("c", X), [with_(1)]);
-    for (const [k, area] of [0.005, 0.01, 0.005, 0].entries())
-      expect(sparse.secondsByCell[k]).toBeCloseTo(area, 9);
+    // The own samples between 0.4 and 1.6 s are missing from a channel of 10 Hz, so that only 0 to 0.4 and 1.6 to 2 s are known.
+    const tenth = own(0.1);
+    const kept = (list: Float64Array) => list.filter((_, i) => i <= 4 || i >= 16);
+    const holed = { values: kept(tenth.values), timeS: kept(tenth.timeS ?? tenth.values), unit: "1/min" };
+    const partly = only(table("c", X), [{ ...base, channels: new Map([["engine_speed", holed]]) }]);
+    expect(partly.secondsByCell.reduce((a, b) => a + b)).toBeCloseTo(0.8 + 0.01, 9);
+    const seldom = covered(table("c", X), [with_(1)]).notTold[0];
+    expect(seldom).toMatchObject({ code: "not_recorded", reason: expect.stringContaining("every 1 s only") });
   });
 
   it("come from those runs that recorded them", () => {
@@ -178,6 +182,9 @@ describe("What can't be told", () => {
     expect(why(table("m", X, Y)).code).toBe("not_recorded");
     expect(why(table("m", X, Y)).reason).toContain("manifold_pressure, linked to quantity_1");
     expect(why(table("c", X), []).reason).toBe("There is no usable run.");
+    expect(why(table("c", X), [run(5, 0.5, { engine_speed: () => 1000 })]).reason).toContain(
+      "more than 1 s apart",
+    );
     const odd = run(201, 100, { engine_speed: () => 1000 }, { engine_speed: "mg/stroke" });
     expect(why(table("c", X), [odd])).toMatchObject({
       code: "unit",
