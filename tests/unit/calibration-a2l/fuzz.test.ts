@@ -5,7 +5,7 @@ import { fuzzReader } from "@/tests/fuzz/fuzz-reader";
 // The short form: fixed seed, some thousand files a reader. `npm run soak:calibration` goes on with other seeds for as long as it is told.
 const FILES = 3000;
 
-describe("a changed description, image or values file is read soundly or refused plainly", { timeout: 240_000 }, () => {
+describe("a changed file is read soundly or refused plainly", { timeout: 240_000 }, () => {
   it.each(CALIBRATION_READERS)("%s", async (reader) => {
     const outcome = await fuzzReader({ reader, seed: 9, count: FILES, limitMs: 15_000 });
     expect(outcome.faults).toEqual([]);
