@@ -1,6 +1,7 @@
 import { lines as campaign } from "./campaign";
 import { lines as coverage } from "./coverage";
 import { lines as descriptions, printDescriptionMemory } from "./descriptions";
+import { printHeatScroll } from "./heat-scroll";
 import { lines as images } from "./images";
 import { lines as ingest } from "./ingest";
 import { printMemory } from "./ingest-memory";
@@ -23,5 +24,5 @@ const kept = [
   ...coverage,
   ...descriptions,
 ].map(printLine);
-kept.push(printMemory(), printDescriptionMemory());
+kept.push(printMemory(), printDescriptionMemory(), await printHeatScroll());
 if (kept.includes(false)) process.exitCode = 1;

@@ -51,7 +51,7 @@ export const typedRegion = z
     wordOrder: z.enum(["little", "big"]),
     complement: z.enum(["none", "ones", "twos"]),
   })
-  .refine(({ from, to }) => from <= to, { path: ["to"], message: "It lies before the first address." })
+  .refine(({ from, to }) => !(from > to), { path: ["to"], message: "It lies before the first address." })
   .refine(({ storedAt, expected }) => storedAt !== null || expected !== null, {
     path: ["storedAt"],
     message: "Say where the value is stored, or what it must be.",
