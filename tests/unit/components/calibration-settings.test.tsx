@@ -170,7 +170,10 @@ describe("regions", () => {
     expect(faults({})).toEqual([]);
     expect(faults({ to: "0x8" })).toEqual(["to: It lies before the first address."]);
     expect(faults({ from: "810000h" })).toEqual(["from: Write it as 0x810000 or as a whole number."]);
-    expect(faults({ from: "4294967296" })).toEqual(["from: It has more than 32 bits."]);
+    expect(faults({ from: "4294967296" })).toEqual([
+      "from: It has more than 32 bits.",
+      "to: It lies before the first address.",
+    ]);
     expect(faults({ storedAt: "" })).toEqual([
       "storedAt: Say where the value is stored, or what it must be.",
     ]);
