@@ -27,7 +27,7 @@ export function summarise(pair: Pair): CharacteristicChange | null {
   const deltas = differing.flatMap((cell) => {
     const [from, to] = [before?.values[cell], after?.values[cell]];
     const comparable = typeof from === "number" && typeof to === "number" && before?.unit === after?.unit;
-    return comparable ? [to - from] : [];
+    return comparable && Number.isFinite(to - from) ? [to - from] : [];
   });
   const most = deltas.reduce((a, b) => Math.max(a, b), 0);
   const least = deltas.reduce((a, b) => Math.min(a, b), 0);

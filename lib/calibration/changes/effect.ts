@@ -10,6 +10,9 @@ interface Found {
   largest: number;
 }
 
+/** Numbers that are all alike but for the last digit must not make an effect that no JSON holds. */
+const MOST = 1e6;
+
 /**
  * How much a change matters, to sort by: 0 = nothing, 1 = as much as everything there was. Numbers: the largest change over the span
  * of the values before, or over the span of the limits where that is smaller or the values have no span (one value, all alike). Words
@@ -25,7 +28,7 @@ export function effectOf({ before, after }: Pair, { whole, axisChanged, differin
   const span = Math.min(...spans);
   const share = before.raw.length > 0 ? differing.length / before.raw.length : 0;
   const ofValues = largest > 0 && Number.isFinite(span) ? largest / span : share;
-  return Math.max(ofValues, axisChanged ? axisEffect(before.axes, after.axes) : 0);
+  return Math.min(MOST, Math.max(ofValues, axisChanged ? axisEffect(before.axes, after.axes) : 0));
 }
 
 /** Greatest minus least of the numbers, null where there is none. */

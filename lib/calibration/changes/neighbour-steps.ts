@@ -11,7 +11,8 @@ export function neighbourSteps({ before, after }: Pair): CharacteristicChange["l
   const span = before ? spanOf(before.values) : null;
   const share = (side: ReadCharacteristic | null) => {
     const step = side && side.axes.length > 0 ? largestStep(side) : null;
-    return step === null || !span ? null : step / span;
+    const part = step === null || !span ? Number.NaN : step / span;
+    return Number.isFinite(part) ? part : null;
   };
   return { before: share(before), after: share(after) };
 }
