@@ -34,11 +34,22 @@ const LIMITS: Readonly<Record<LimitState, string>> = {
 
 /**
  * All values of a reading as CSV (RFC 4180), one row a cell, a piece a characteristic: point as decimal mark, an empty cell where there is
- * no value.
+ * no value. What could not be read stands at the end with its reason.
  */
 export function* readingCsv(reading: ImageReading): Generator<string> {
-  yield csvOf([["name", ...AXIS_TITLES, "value", "unit", "limit", "functions"]]);
+  yield csvOf([["name", ...AXIS_TITLES, "value", "unit", "limit", "functions", "remark"]]);
   for (const of of reading.characteristics) yield csvOf(readingRows(of));
+  yield csvOf(
+    reading.notRead.map(({ name, reason }) => [
+      name,
+      ...placed({ axes: [], index: [] }),
+      null,
+      null,
+      null,
+      null,
+      `not read: ${reason}`,
+    ]),
+  );
 }
 
 /**
@@ -61,6 +72,7 @@ function readingRows(of: ReadCharacteristic): Cell[][] {
     unit,
     LIMITS[limitStateOf(value, limits)],
     functions,
+    null,
   ]);
 }
 

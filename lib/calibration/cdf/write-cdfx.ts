@@ -5,6 +5,8 @@ const UNWRITABLE =
   // biome-ignore lint/suspicious/noControlCharactersInRegex: these are what is looked for
   /[\u0000-\u0008\u000b\u000c\u000e-\u001f\ufffe\uffff]|[\ud800-\udbff](?![\udc00-\udfff])|(?<![\ud800-\udbff])[\udc00-\udfff]/;
 
+const UNWRITABLE_ALL = new RegExp(UNWRITABLE, "g");
+
 const ESCAPES: Readonly<Record<string, string>> = { "&": "&amp;", "<": "&lt;", ">": "&gt;", "\r": "&#13;" };
 
 /** Whether a text can stand in an XML file at all. */
@@ -12,18 +14,27 @@ export const isWritable = (text: string) => !UNWRITABLE.test(text);
 
 const escaped = (text: string) => text.replace(/[&<>\r]/g, (sign) => ESCAPES[sign]);
 const element = (name: string, text: string) => `<${name}>${escaped(text)}</${name}>`;
+/** A remark for people; two hyphens would end it. */
+const comment = (text: string) =>
+  `<!-- ${text.replace(/-(?=-|$)/g, "- ").replace(UNWRITABLE_ALL, "?")} -->\n`;
 const optional = (name: string, text: string) => (text === "" ? "" : `${element(name, text)}\n`);
 
 /**
  * Writes instances as an ASAM CDF 2.0 file (CDFX, UTF-8), in pieces so that a large one never stands in memory whole. Numbers have
  * as many digits as bring the same number back. Every text must be writable (`isWritable`) and every value a number or a text.
  * @param title name of the system, e.g. of the revision
+ * @param leftOut what the file does not hold, with why: remarks at its end
  */
-export function* writeCdfx(title: string, instances: Iterable<CdfInstance>): Generator<string> {
+export function* writeCdfx(
+  title: string,
+  instances: Iterable<CdfInstance>,
+  leftOut: readonly { name: string; reason: string }[] = [],
+): Generator<string> {
   const name = element("SHORT-NAME", title);
   yield `<?xml version="1.0" encoding="UTF-8"?>\n<MSRSW>\n${name}\n<CATEGORY>CDF20</CATEGORY>\n<SW-SYSTEMS>\n<SW-SYSTEM>\n${name}\n`;
   yield `<SW-INSTANCE-SPEC>\n<SW-INSTANCE-TREE>\n${name}\n<CATEGORY>NO_VCD</CATEGORY>\n`;
   for (const instance of instances) yield* writeInstance(instance);
+  for (const { name: missing, reason } of leftOut) yield comment(`Left out: ${missing}: ${reason}`);
   yield "</SW-INSTANCE-TREE>\n</SW-INSTANCE-SPEC>\n</SW-SYSTEM>\n</SW-SYSTEMS>\n</MSRSW>\n";
 }
 

@@ -25,8 +25,8 @@ export interface ValuesFile {
 
 const TYPES: Record<Format, string> = { cdfx: "application/xml", csv: "text/csv" };
 
-function cdfx(title: string, { instances }: CdfSelection): Iterable<string> {
-  return writeCdfx(title, instances);
+function cdfx(title: string, { instances, leftOut }: CdfSelection): Iterable<string> {
+  return writeCdfx(title, instances, leftOut);
 }
 
 /**

@@ -116,6 +116,18 @@ describe("values as CSV", () => {
   });
 });
 
+describe("what could not be read", () => {
+  it("stands at the end of the values with its reason", () => {
+    const reading = madeReading(madeCharacteristic({ name: "v" }));
+    const notRead = [{ name: "w", reason: "its byte 0x10 is not in the image", address: 0x10 }];
+    const rows = parsed(readingCsv({ ...reading, notRead }));
+    expect(rows.map((r) => [r.name, r.value, r.remark])).toEqual([
+      ["v", "1", ""],
+      ["w", "", "not read: its byte 0x10 is not in the image"],
+    ]);
+  });
+});
+
 describe("changes as CSV", () => {
   const side = (values: PhysicalValue[], points: number[], characters: string | null = null) => ({
     dims: [values.length],

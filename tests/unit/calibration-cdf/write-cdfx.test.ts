@@ -87,6 +87,20 @@ describe("a values file that was written", () => {
     parser.write(written([{ ...map, values: [1, 2, 3, 4, 5, "six"] }])).close();
     expect(counts).toMatchObject({ V: 5, VT: 1, VG: 2, LABEL: 2, "SW-INSTANCE": 1, MSRSW: 1 });
   });
+  it("says in remarks what it does not hold, whatever the names are (property)", () => {
+    fc.assert(
+      fc.property(fc.string({ unit: "binary" }), fc.string(), (missing, reason) => {
+        const leftOut = [
+          { name: missing, reason },
+          { name: "a--b", reason: "-" },
+        ];
+        const whole = [...writeCdfx("t", [], leftOut)].join("");
+        expect(whole).toContain("<!-- Left out: a- -b: -  -->");
+        expect(readCdfx(new TextEncoder().encode(whole))).toMatchObject({ instances: [], problems: [] });
+      }),
+      { numRuns: 100, seed: 42 },
+    );
+  });
   it("comes in pieces, an instance never before it is asked for", () => {
     let asked = 0;
     const endless = function* (): Generator<CdfInstance> {
