@@ -210,6 +210,22 @@ export async function selectOutdatedPairs(
   return rows;
 }
 
+/** Revisions that nothing was decided on and that nobody has set against what stands, though they have been there for a while. */
+export async function selectUncomparedPairs(
+  db: Queryable,
+  { most }: { most: number },
+): Promise<{ workspaceId: string; revisionAId: string; revisionBId: string }[]> {
+  const { rows } = await db.execute<{ workspaceId: string; revisionAId: string; revisionBId: string }>(sql`
+    select r.workspace_id as "workspaceId", p.standing_revision_id as "revisionAId", r.id as "revisionBId"
+    from revisions r join programmes p on p.id = r.programme_id
+    where r.state in ('draft', 'validating', 'in_review') and r.set_aside_at is null and p.archived_at is null
+      and p.standing_revision_id <> r.id and r.created_at < now() - interval '10 minutes'
+      and not exists (select from change_sets c
+        where c.revision_a_id = p.standing_revision_id and c.revision_b_id = r.id)
+    order by r.created_at desc limit ${most}`);
+  return rows;
+}
+
 /** Change sets that are said to be computed although no job would bring them, e.g. after a restore; younger ones are left alone. */
 export async function selectForgottenChangeSets(
   db: Queryable,

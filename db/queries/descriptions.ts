@@ -1,7 +1,7 @@
 import { and, desc, eq, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
 import { hasOwnJob } from "@/db/queries/analysis-versions";
-import { descriptions, revisions } from "@/db/tables";
+import { descriptions } from "@/db/tables";
 
 export type DescriptionRow = typeof descriptions.$inferSelect;
 type Key = { workspaceId: string; descriptionId: string };
@@ -72,15 +72,6 @@ export async function settleDescription(
     .update(descriptions)
     .set({ ...outcome, readerVersion })
     .where(at(args));
-}
-
-/** Revisions that are read by a description, oldest first. */
-export async function selectRevisionsOfDescription(db: Queryable, { workspaceId, descriptionId }: Key) {
-  return await db
-    .select({ id: revisions.id, programmeId: revisions.programmeId })
-    .from(revisions)
-    .where(and(eq(revisions.workspaceId, workspaceId), eq(revisions.descriptionId, descriptionId)))
-    .orderBy(revisions.number);
 }
 
 /** Descriptions that this version of the reader has not settled, without a job of their own (hasOwnJob), newest first. */

@@ -29,17 +29,23 @@ export async function insertImageReading(
   await tx.insert(imageReadings).values(values).onConflictDoNothing();
 }
 
-/** Revisions whose image this version of the reader has not read by their description, without a job of their own, newest first. */
-export async function selectOutdatedReadings(
+/**
+ * Revisions whose image this version of the reader has not read by their description, or that was never checked although something may
+ * still be decided on it; without a job of their own (hasOwnJob), newest first.
+ */
+export async function selectUnreadImages(
   db: Queryable,
   { readerVersion, most }: { readerVersion: string; most: number },
 ): Promise<{ workspaceId: string; revisionId: string }[]> {
   const { rows } = await db.execute<{ workspaceId: string; revisionId: string }>(sql`
     select r.workspace_id as "workspaceId", r.id as "revisionId" from revisions r
-    join descriptions d on d.id = r.description_id and d.state = 'read'
+    left join descriptions d on d.id = r.description_id
     where r.set_aside_at is null
-      and not exists (select from image_readings i where i.revision_id = r.id
-        and i.description_id = r.description_id and i.reader_version = ${readerVersion})
+      and (
+        (d.state = 'read' and not exists (select from image_readings i where i.revision_id = r.id
+          and i.description_id = r.description_id and i.reader_version = ${readerVersion}))
+        or (r.state in ('draft', 'validating', 'in_review', 'promoted') and r.created_at < now() - interval '10 minutes'
+          and not exists (select from image_checks c where c.revision_id = r.id)))
       and not ${hasOwnJob("read-image", "revisionId", sql`r.id`)}
     order by r.created_at desc limit ${most}`);
   return rows;

@@ -4,9 +4,10 @@ import {
   selectForgottenChangeSets,
   selectForgottenCoverages,
   selectOutdatedPairs,
+  selectUncomparedPairs,
 } from "@/db/queries/change-sets";
 import { selectOutdatedDescriptions } from "@/db/queries/descriptions";
-import { selectOutdatedReadings } from "@/db/queries/image-readings";
+import { selectUnreadImages } from "@/db/queries/image-readings";
 import { READER_VERSION } from "@/lib/calibration/reader-version";
 import { enqueueJob } from "@/lib/jobs/enqueue";
 import { ANALYSIS_VERSION } from "@/lib/measure/analysis-version";
@@ -36,9 +37,9 @@ async function renewReadings(db: Queryable, most: number): Promise<number> {
   const background = { background: true };
   const descriptions = await selectOutdatedDescriptions(db, reader);
   for (const data of descriptions) await enqueueJob(db, { name: "read-description", data }, background);
-  const readings = await selectOutdatedReadings(db, reader);
+  const readings = await selectUnreadImages(db, reader);
   for (const data of readings) await enqueueJob(db, { name: "read-image", data }, background);
-  const pairs = await selectOutdatedPairs(db, reader);
+  const pairs = [...(await selectOutdatedPairs(db, reader)), ...(await selectUncomparedPairs(db, { most }))];
   for (const { workspaceId, ...pair } of pairs)
     await db.transaction((tx) => openPairs(tx, { workspaceId }, [pair], background));
   const changeSets = await selectForgottenChangeSets(db, { most });

@@ -70,15 +70,13 @@ async function candidate(
   const { workspaceId, programmeId, calibrator } = base;
   const lead = await signer(db, workspaceId, ["lead"]);
   const otherLead = await signer(db, workspaceId, ["lead"]);
-  await db
-    .insert(gatePlans)
-    .values({
-      workspaceId,
-      programmeId,
-      version: 1,
-      plan: { plan: 1, gates: GATES },
-      createdBy: lead.userId,
-    });
+  await db.insert(gatePlans).values({
+    workspaceId,
+    programmeId,
+    version: 1,
+    plan: { plan: 1, gates: GATES },
+    createdBy: lead.userId,
+  });
   const marks = [{ set: "function" as const, name: "limiter", relevance: "safety" as const, note: "" }];
   await saveRelevanceMarks(lead, { programmeId, basedOnVersion: 0, marks });
   const before = await addSmallRevision(base, {});

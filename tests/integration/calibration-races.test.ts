@@ -1,8 +1,9 @@
 import { randomUUID } from "node:crypto";
 import { and, eq, sql } from "drizzle-orm";
+import { Client } from "pg";
 import { afterAll, beforeAll, describe, expect, vi } from "vitest";
 import { savePassphrase } from "@/db/queries/people";
-import { changeSets, gatePlans, imageReadings, programmes, revisions } from "@/db/tables";
+import { changeSets, gatePlans, imageChecks, imageReadings, programmes, revisions } from "@/db/tables";
 import { READER_VERSION } from "@/lib/calibration/reader-version";
 import { ConflictError } from "@/lib/errors";
 import { renewOutdated } from "@/lib/jobs/renew-outdated";
@@ -19,7 +20,7 @@ import {
   doJobs,
   setState,
 } from "@/tests/support/calibration-scene";
-import { test } from "@/tests/support/database";
+import { type TestDatabase, test } from "@/tests/support/database";
 import { PASSPHRASE } from "@/tests/support/decision-scene";
 import { smallA2l } from "@/tests/support/small-calibration";
 import { createTestStore } from "@/tests/support/store";
@@ -34,6 +35,16 @@ beforeAll(() => {
   files = createTestStore();
 });
 afterAll(() => files.drop());
+
+async function asOwner({ ownerUrl }: TestDatabase, statements: string): Promise<void> {
+  const client = new Client({ connectionString: ownerUrl });
+  await client.connect();
+  try {
+    await client.query(statements);
+  } finally {
+    await client.end();
+  }
+}
 
 describe("at the same moment", () => {
   test("a promotion and descriptions for both sides: each happens whole or is told, and every pair is opened", async ({
@@ -143,6 +154,29 @@ describe("in the background", () => {
     expect(await renewOutdated(db)).toBe(1);
     await doJobs(scene);
     expect((await getRevisionChanges(scene.lead, b)).state).toBe("ready");
+  });
+
+  test("revisions from before there were change sets are checked and compared, after a while", async ({
+    database,
+  }) => {
+    const { db } = database;
+    const scene = await createCalibrationScene(db, files.store);
+    const a = await addSmallRevision(scene, {}, { a2l: null });
+    const b = await addSmallRevision(scene, { gain: 2 }, { a2l: null });
+    await setState(scene, a, { state: "promoted", asFound: true });
+    await db.update(programmes).set({ standingRevisionId: a }).where(eq(programmes.id, scene.programmeId));
+    await doJobs(scene);
+    await db.delete(imageChecks);
+    expect(await renewOutdated(db)).toBe(0);
+    // Only the owner of the tables may change when a revision was made.
+    await asOwner(
+      database,
+      `alter table revisions disable trigger user; update revisions set created_at = now() - interval '1 hour'; alter table revisions enable trigger user`,
+    );
+    expect(await renewOutdated(db)).toBe(3);
+    await doJobs(scene);
+    expect(await getRevisionChanges(scene.lead, b)).toMatchObject({ state: "ready", integrity: [] });
+    expect(await renewOutdated(db)).toBe(0);
   });
 
   test("the sweep leaves readings alone: they are kept like every other file", async ({ database }) => {

@@ -6,7 +6,7 @@ import { ConflictError, ForbiddenError, InvalidInputError, NotFoundError } from 
 import { exportComparison } from "@/lib/services/comparisons/export-csv";
 import { getComparison, getComparisonState } from "@/lib/services/comparisons/load";
 import { changeSettings, openComparison, recomputeComparison } from "@/lib/services/comparisons/open";
-import { refreshComparisonsOf } from "@/lib/services/comparisons/refresh";
+import { refreshResultsOf } from "@/lib/services/comparisons/refresh";
 import { withTransaction } from "@/lib/services/ctx";
 import { gateStatus } from "@/lib/services/gates/status";
 import { test } from "@/tests/support/database";
@@ -243,17 +243,15 @@ describe("refreshing", () => {
     await changeSettings(lead, { comparisonId, factor: "none", rpmStep: 50 });
     const before = await jobs(scene);
     const undone = withTransaction(lead, async (tx, inner) => {
-      await refreshComparisonsOf(tx, inner, { revisionId: candidateId });
+      await refreshResultsOf(tx, inner, { revisionId: candidateId });
       throw new Error("undone");
     });
     await expect(undone).rejects.toThrow("undone");
     expect(await jobs(scene)).toBe(before);
-    await withTransaction(lead, (tx, inner) => refreshComparisonsOf(tx, inner, { revisionId: candidateId }));
+    await withTransaction(lead, (tx, inner) => refreshResultsOf(tx, inner, { revisionId: candidateId }));
     expect(await jobs(scene)).toBe(before + 2);
     const workspaceId = await createWorkspaceRow(db);
-    await withTransaction(lead, (tx) =>
-      refreshComparisonsOf(tx, { workspaceId }, { revisionId: candidateId }),
-    );
+    await withTransaction(lead, (tx) => refreshResultsOf(tx, { workspaceId }, { revisionId: candidateId }));
     expect(await jobs(scene)).toBe(before + 2);
   });
 });

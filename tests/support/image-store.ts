@@ -15,11 +15,6 @@ export function keepAnImage(workspaceId: string): string {
   return sha256;
 }
 
-/** Spoils what was kept, as a failing disk would. */
-export function spoilImage(workspaceId: string, sha256: string): void {
-  kept.set(blobKey(workspaceId, sha256), randomBytes(5));
-}
-
 /** Gives out what `keepAnImage` kept; any other use of it fails. */
 export const imageStore: ObjectStore = new Proxy(noStore, {
   get(target, name) {

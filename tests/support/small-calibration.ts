@@ -5,7 +5,7 @@ const LENGTH = 64;
 
 /** Places in the image; words are unsigned 16 bit, low byte first. */
 export const AT = { limit: 0x8000, gain: 0x8002, axis: 0x8010, curve: 0x8018, epk: 0x8030, spare: 0x803c };
-export const EPK = "TEST01";
+const EPK = "TEST01";
 
 /** The rpm axis of the curve, raw = 1/min. */
 const AXIS = [1000, 2000, 4000, 6000];

@@ -16,7 +16,7 @@ export const relevanceMarkSchema = z.strictObject({
 }) satisfies z.ZodType<RelevanceMark>;
 
 /** Which channel of the logs moves along an axis. */
-export const axisLinkSchema = z.strictObject({
+const axisLinkSchema = z.strictObject({
   quantity: name,
   channel: name,
   by: z.enum(["column", "title", "hand"]),
@@ -45,7 +45,7 @@ const sum = z.strictObject({
 });
 
 /** A stretch of the image whose checksum is declared, with the parameters of its algorithm. */
-export const checksumRegionSchema = z
+const checksumRegionSchema = z
   .discriminatedUnion("algorithm", [
     region.extend({ algorithm: z.enum(["crc32", "crc16"]), parameters: crc }),
     region.extend({ algorithm: z.enum(["sum8", "sum16", "sum32"]), parameters: sum }),

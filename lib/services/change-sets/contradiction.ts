@@ -3,7 +3,7 @@ import { touchedMarks } from "@/lib/calibration/changes/relevance";
 import type { ChangeSet } from "@/lib/calibration/changes/types";
 
 /** Marked functions and characteristics that a change set touches, in words; null where none is. */
-export function touchedInWords(changes: ChangeSet, marks: readonly RelevanceMark[]): string | null {
+function touchedInWords(changes: ChangeSet, marks: readonly RelevanceMark[]): string | null {
   const touched = touchedMarks(changes, marks);
   if (touched.length === 0) return null;
   return touched

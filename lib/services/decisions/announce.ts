@@ -13,6 +13,17 @@ const SUBJECT: Record<DecisionRow["kind"], (revision: string, from: string) => s
   roll_back: (revision, from) => `Rolled back from ${from}: ${revision} stands again`,
 };
 
+/** By whose word marked functions were released; nothing where none are touched. */
+function releasedWords(calibration: DecisionRow["evidence"]["calibration"]): string[] {
+  if (!calibration || calibration.touched.length === 0) return [];
+  const { touched, approval, secondLead } = calibration;
+  return [
+    `Touches what is marked: ${touched.map(({ name, relevance }) => `${name} (${relevance})`).join(", ")}.`,
+    ...(approval ? [`Approval document: ${approval.document}, issued by ${approval.issuer}.`] : []),
+    ...(secondLead ? [`Second lead: ${secondLead.name}. ${secondLead.reason}`] : []),
+  ];
+}
+
 /**
  * Queues the mails that a decision causes, in its own transaction: to author, submitter and every lead, the decider too,
  * so that a decision in somebody's name is never a secret to them. The link only opens the record.
@@ -37,6 +48,7 @@ export async function announceDecision(
       ? ["Self-released: author or submitter decided, no other lead was active."]
       : []),
     ...waivers.map((waiver) => `Gate waived: ${waiver.gateId}. ${waiver.reason}`),
+    ...releasedWords(evidence.calibration),
     "",
     `Fingerprint of the record: ${decision.recordSha256}`,
     new URL(`/records/${decision.id}`, env().AUTH_URL).toString(),
