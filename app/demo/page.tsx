@@ -20,7 +20,8 @@ const LOOP = [
   </>,
   <>
     <strong>Add a revision as the calibrator.</strong> Sign in as Mia, open the programme and add the image
-    below, made from R4. Read what was understood of it, add it as a draft, and start validating.
+    below, made from R4, with the description of its parent. Read what was understood of it, add it as a
+    draft, and start validating.
   </>,
   <>
     <strong>Drive as the tester.</strong> Sign in as Sam, open a new road day, confirm its checklist, and drop
@@ -64,6 +65,12 @@ export default function DemoPage() {
                   R5-full-curve.hex
                 </a>{" "}
                 the new image, Intel HEX
+              </li>
+              <li>
+                <a className="link" href="/samples/marlin-sample.a2l" download>
+                  marlin-sample.a2l
+                </a>{" "}
+                what lies in the image, A2L; the earlier revisions have it already
               </li>
               <li>
                 <a className="link" href="/samples/road-day.zip" download>

@@ -8,7 +8,7 @@ export function hill(share: number, fromRpm: number, toRpm: number, edgeRpm = 35
 }
 
 /** How the image as found runs the invented engine. */
-const AS_FOUND: EngineModel = {
+export const AS_FOUND: EngineModel = {
   lambda: (rpm) => 0.875 - 0.03 * Math.min(1, Math.max(0, (rpm - 3000) / 3000)),
   boostKpa: (rpm) => 196 - 22 * Math.min(1, Math.max(0, (rpm - 4800) / 1800)),
   overshootKpa: 9,

@@ -1,12 +1,18 @@
 import { randomUUID } from "node:crypto";
 import { selectComparisonsOf } from "@/db/queries/comparisons";
-import { demoImage, type Patch } from "@/db/seed/demo-image";
+import type { ImageName } from "@/db/seed/control-unit/revisions";
+import { writeDescription } from "@/db/seed/control-unit/write-description";
+import { DEMO_DESCRIPTION_NAME, demoImage } from "@/db/seed/demo-image";
 import { driveRoadDay, type Effect } from "@/db/seed/demo-logs";
 import { asOlderBox, OLDER_BOX_KEY } from "@/db/seed/demo-odd-log";
 import type { DemoPerson } from "@/db/seed/demo-people";
 import { uploadFile } from "@/db/seed/upload";
+import { computeChangeSet } from "@/lib/jobs/calibration/compute-change-set";
+import { computeCoverage } from "@/lib/jobs/calibration/compute-coverage";
+import { readRevisionImage } from "@/lib/jobs/calibration/read-image";
 import { computeComparison } from "@/lib/jobs/compute-comparison";
 import { judgeRun } from "@/lib/jobs/judge-run";
+import { askForChangeSet } from "@/lib/services/change-sets/ask";
 import { saveChannelKey } from "@/lib/services/channel-keys/save";
 import { openComparison } from "@/lib/services/comparisons/open";
 import type { Ctx } from "@/lib/services/ctx";
@@ -31,17 +37,22 @@ export async function addDemoRevision(
     parent: DemoRevision | null;
     title: string;
     reason: string;
-    patches: readonly Patch[];
+    image: ImageName;
   },
 ): Promise<DemoRevision> {
   const fileName = `${args.title.toLowerCase().replaceAll(/[^a-z]+/g, "-")}.hex`;
-  const uploadId = await uploadFile(ctx, "image", fileName, demoImage(args.patches));
+  const uploadId = await uploadFile(ctx, "image", fileName, demoImage(args.image));
+  const describes = async () => [
+    await uploadFile(ctx, "description", DEMO_DESCRIPTION_NAME, writeDescription()),
+  ];
   const made = await addRevision(
     ctx,
     {
       programmeId: args.programmeId,
       parentId: args.parent?.id ?? null,
       uploadId,
+      descriptionUploadIds: args.parent ? [] : await describes(),
+      sameDescription: args.parent !== null,
       title: args.title,
       note: "Sample data.",
       changeReason: args.reason,
@@ -51,7 +62,21 @@ export async function addDemoRevision(
     randomUUID(),
   );
   if (args.parent) await startValidating(ctx, { revisionId: made.revisionId });
+  const { workspaceId, db, store } = ctx;
+  await readRevisionImage({ db, store }, { workspaceId, revisionId: made.revisionId });
   return { id: made.revisionId, number: made.number };
+}
+
+/** What a revision changes against another one is worked out, and where the runs so far went on it. */
+export async function compareImages(
+  ctx: Ctx,
+  { revision, against }: { revision: DemoRevision; against: DemoRevision },
+): Promise<void> {
+  const { workspaceId, db, store } = ctx;
+  const pair = { revisionId: revision.id, againstId: against.id };
+  const { changeSetId } = await askForChangeSet(ctx, pair);
+  await computeChangeSet({ db, store }, { workspaceId, changeSetId });
+  await computeCoverage({ db, store }, { workspaceId, changeSetId });
 }
 
 export interface DemoStrip {
@@ -154,6 +179,7 @@ async function driveDay(people: People, args: DemoDay & { isNullTest: boolean })
 export async function driveDemoDay(people: People, args: DemoDay): Promise<{ comparisonId: string }> {
   const { sam } = people;
   await driveDay(people, { ...args, isNullTest: false });
+  await compareImages(sam, { revision: args.b, against: args.a });
   const { comparisonId } = await openComparison(sam, { revisionAId: args.a.id, revisionBId: args.b.id });
   await computeComparison({ db: sam.db, store: sam.store }, { workspaceId: sam.workspaceId, comparisonId });
   return { comparisonId };

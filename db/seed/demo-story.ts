@@ -1,8 +1,9 @@
 import { HATCH_SHEET } from "@/db/seed/demo-car";
 import { EFFECTS } from "@/db/seed/demo-effects";
-import { PATCHES } from "@/db/seed/demo-image";
+import { settleCalibration } from "@/db/seed/demo-settings";
 import {
   addDemoRevision,
+  compareImages,
   type DemoRevision,
   driveDemoDay,
   driveDemoNullTest,
@@ -37,6 +38,7 @@ async function seenBy(lead: Ctx, revision: DemoRevision) {
       comparisonId: desk.comparison?.id ?? null,
       inputSha256: desk.comparison?.inputSha256 ?? null,
       shownInputSha256: desk.comparison?.basis?.inputSha256 ?? null,
+      calibrationSha256: desk.calibration.seenSha256,
     },
   };
 }
@@ -54,12 +56,14 @@ export async function tellStory(people: People): Promise<void> {
   });
   await shareProgramme(ana, { programmeId, userId: noor.userId, expiresOn: inDays(300) });
 
+  await settleCalibration(people, programmeId);
+
   const asFound = await addDemoRevision(mia, {
     programmeId,
     parent: null,
     title: "as the car came",
     reason: "The image that was in the car.",
-    patches: PATCHES.asFound,
+    image: "asFound",
   });
   await adoptRevisionAsFound(ana, {
     revisionId: asFound.id,
@@ -86,7 +90,7 @@ export async function tellStory(people: People): Promise<void> {
     parent: asFound,
     title: "mid-range torque",
     reason: "More air between 2,300 and 4,700 per minute.",
-    patches: PATCHES.midRange,
+    image: "midRange",
   });
   const first = { programmeId, a: { ...asFound, effect: EFFECTS.asFound }, twinsPerSide: 4 };
   await driveDemoDay(people, {
@@ -124,7 +128,7 @@ export async function tellStory(people: People): Promise<void> {
     parent: asFound,
     title: "later ignition, top end",
     reason: "Room against knock above 5,400 per minute.",
-    patches: PATCHES.topEnd,
+    image: "topEnd",
   });
   await driveDemoDay(people, {
     ...first,
@@ -146,7 +150,7 @@ export async function tellStory(people: People): Promise<void> {
     parent: midRange,
     title: "mid-range torque, ignition revised",
     reason: "As R2, with two degrees less ignition where the knock was heard.",
-    patches: PATCHES.ignition,
+    image: "ignition",
   });
   await driveDemoDay(people, {
     ...first,
@@ -156,6 +160,7 @@ export async function tellStory(people: People): Promise<void> {
     seed: 13,
     olderBoxAt: 16,
   });
+  await compareImages(sam, { revision: ignition, against: midRange });
   await askForDecision(sam, { revisionId: ignition.id });
 }
 

@@ -1,8 +1,9 @@
 import { mkdirSync, rmSync, writeFileSync } from "node:fs";
 import { join } from "node:path";
 import { gzipSync, zipSync } from "fflate";
+import { writeDescription } from "@/db/seed/control-unit/write-description";
 import { EFFECTS } from "@/db/seed/demo-effects";
-import { demoImage, PATCHES } from "@/db/seed/demo-image";
+import { DEMO_DESCRIPTION_NAME, demoImage } from "@/db/seed/demo-image";
 import { driveRoadDay } from "@/db/seed/demo-logs";
 
 // Writes the files that the demo offers for download: npm run make-samples. Same input, same bytes.
@@ -11,7 +12,8 @@ const WRITTEN_AT = new Date("2026-01-01T00:00:00Z");
 
 rmSync(FOLDER, { recursive: true, force: true });
 mkdirSync(FOLDER, { recursive: true });
-writeFileSync(join(FOLDER, "R5-full-curve.hex"), demoImage(PATCHES.visitor));
+writeFileSync(join(FOLDER, "R5-full-curve.hex"), demoImage("visitor"));
+writeFileSync(join(FOLDER, DEMO_DESCRIPTION_NAME), writeDescription());
 
 const runs = driveRoadDay({
   twinsPerSide: 4,
@@ -29,4 +31,4 @@ const files = Object.fromEntries(
 for (const [name, bytes] of Object.entries(files))
   writeFileSync(join(FOLDER, `${name}.gz`), gzipSync(bytes, { level: 9, mtime: 0 }));
 writeFileSync(join(FOLDER, "road-day.zip"), zipSync(files, { level: 9, mtime: WRITTEN_AT }));
-console.log(`Wrote ${Object.keys(files).length + 2} files into ${FOLDER}.`);
+console.log(`Wrote ${Object.keys(files).length + 3} files into ${FOLDER}.`);
