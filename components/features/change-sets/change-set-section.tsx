@@ -95,7 +95,7 @@ function Body({ view, asked, refused, actions, watch, describe }: ChangeSetSecti
       {changes.readBy !== "none" && (
         <CoverageNote
           coverage={view.coverage}
-          linksHref={setting(`axis-links?revision=${revision.id}`)}
+          linksHref={setting(`axis-links?revision=${revision.id}&against=${against.id}`)}
           ask={ask("Work it out")}
         />
       )}

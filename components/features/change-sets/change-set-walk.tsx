@@ -14,7 +14,9 @@ import { ChangeKeys, type WalkItem } from "@/components/features/change-sets/wal
 import { LookedAtCount, LookedAtForm } from "@/components/features/change-sets/walk/looked-at";
 import { TYPE_WORDS } from "@/components/features/change-sets/words/change-words";
 import { coverageOf } from "@/components/features/change-sets/words/coverage-words";
-import { counted } from "@/components/features/change-sets/words/figure-text";
+import { counted, withPlainUnits } from "@/components/features/change-sets/words/figure-text";
+import { LinkButton } from "@/components/ui/action/link-button";
+import { numberText } from "@/components/ui/data/number-text";
 import { touchedMarks } from "@/lib/calibration/changes/relevance";
 import type { ChangeSet, CharacteristicChange } from "@/lib/calibration/changes/types";
 import { cn } from "@/lib/cn";
@@ -28,7 +30,8 @@ export interface ChangeSetWalkProps {
 
 /** The list of changes with one of them opened, and what leads from one to the next. */
 export function ChangeSetWalk({ view, asked, mayLook }: ChangeSetWalkProps) {
-  const { changes: set, coverage, revision, against } = view;
+  const { coverage, revision, against } = view;
+  const set = { ...view.changes, characteristics: view.changes.characteristics.map(withPlainUnits) };
   const { order } = asked;
   const groups = orderChanges(set.characteristics, order);
   const walked = groups.flatMap((group) => group.changes);
@@ -49,6 +52,7 @@ export function ChangeSetWalk({ view, asked, mayLook }: ChangeSetWalkProps) {
       ? [{ href: hrefOf(BYTES_KEY), digests: byteDigests, spoken: `${byteWords} outside the description.` }]
       : []),
   ];
+  const at = current ? walked.indexOf(current) : walked.length;
   const relevance = relevanceByName(set, view.marks);
   const bytes = hasBytes && <BytesDetail set={set} digests={byteDigests} mayLook={mayLook} />;
   const folds = (
@@ -73,7 +77,7 @@ export function ChangeSetWalk({ view, asked, mayLook }: ChangeSetWalkProps) {
       <div className="flex flex-wrap items-center justify-between gap-x-4 gap-y-2">
         <OrderLinks asked={asked} revisionId={revision.id} />
         {mayLook && <LookedAtCount items={items.map(({ digests }) => digests)} />}
-        <ChangeKeys items={items} current={current ? walked.indexOf(current) : walked.length} />
+        <ChangeKeys items={items} current={at} />
       </div>
       <div className="grid items-start gap-4 lg:grid-cols-[minmax(17rem,22rem)_minmax(0,1fr)]">
         <nav aria-label="Changes" className="rounded border border-line bg-surface">
@@ -113,10 +117,21 @@ export function ChangeSetWalk({ view, asked, mayLook }: ChangeSetWalkProps) {
           ) : (
             bytes
           )}
+          <Neighbours previous={items[at - 1]} next={items[at + 1]} />
         </section>
       </div>
       {folds}
     </div>
+  );
+}
+
+/** The way on under the opened change, where the buttons above the list are out of sight. */
+function Neighbours({ previous, next }: { previous: WalkItem | undefined; next: WalkItem | undefined }) {
+  return (
+    <nav aria-label="To the neighbouring changes" className="no-print mt-6 flex flex-wrap gap-2 lg:hidden">
+      {previous && <LinkButton href={previous.href}>Previous change</LinkButton>}
+      {next && <LinkButton href={next.href}>Next change</LinkButton>}
+    </nav>
   );
 }
 
@@ -147,7 +162,7 @@ function BytesDetail({
 function spokenOf(change: CharacteristicChange): string {
   const what = `${change.name}, ${TYPE_WORDS[change.type][0]}`;
   return change.cells > 1
-    ? `${what}, ${change.changed} of ${counted(change.cells, "cell")} changed.`
+    ? `${what}, ${numberText(change.changed)} of ${counted(change.cells, "cell")} changed.`
     : `${what}.`;
 }
 

@@ -8,16 +8,16 @@ import type { ShownDescription } from "@/lib/services/change-sets/schema";
 import type { DescriptionSummary } from "@/lib/services/descriptions/schema";
 
 /** Kinds of characteristics in the order and the words of the pages. */
-const KINDS: readonly [string, string][] = [
-  ["MAP", "maps"],
-  ["CURVE", "curves"],
-  ["VALUE", "values"],
-  ["CUBOID", "cuboids"],
-  ["CUBE_4", "tables of 4 axes"],
-  ["CUBE_5", "tables of 5 axes"],
-  ["VAL_BLK", "blocks"],
-  ["AXIS_PTS", "shared axes"],
-  ["ASCII", "texts"],
+const KINDS: readonly [string, string, string][] = [
+  ["MAP", "map", "maps"],
+  ["CURVE", "curve", "curves"],
+  ["VALUE", "value", "values"],
+  ["CUBOID", "cuboid", "cuboids"],
+  ["CUBE_4", "table of 4 axes", "tables of 4 axes"],
+  ["CUBE_5", "table of 5 axes", "tables of 5 axes"],
+  ["VAL_BLK", "block", "blocks"],
+  ["AXIS_PTS", "shared axis", "shared axes"],
+  ["ASCII", "text", "texts"],
 ];
 
 const EPK_WORDS: Record<ImageReading["epk"]["state"], string> = {
@@ -57,9 +57,10 @@ export function DescriptionUnderstood({ description, epk }: DescriptionUnderstoo
 
 function Summary({ summary, epk }: { summary: DescriptionSummary; epk: ImageReading["epk"] | null }) {
   const { version, project, modules, counts, functions, groups, missingIncludes, notes } = summary;
-  const kinds = KINDS.flatMap(([kind, words]) =>
-    counts[kind] ? [`${numberText(counts[kind])} ${words}`] : [],
-  );
+  const kinds = KINDS.flatMap(([kind, one, many]) => {
+    const count = counts[kind] ?? 0;
+    return count > 0 ? [`${numberText(count)} ${count === 1 ? one : many}`] : [];
+  });
   return (
     <>
       <DescriptionList

@@ -1,4 +1,5 @@
-import { addressText, bytesText } from "@/components/features/revisions/image-understood";
+import { bytesText } from "@/components/features/revisions/image-understood";
+import { addressText } from "@/components/ui/data/address-text";
 import { Table } from "@/components/ui/data/table";
 import type { ImageDifference } from "@/lib/calibration/image/image-summary";
 

@@ -1,3 +1,4 @@
+import { addressText } from "@/components/ui/data/address-text";
 import { DescriptionList } from "@/components/ui/data/description-list";
 import { Fingerprint } from "@/components/ui/data/fingerprint";
 import { Notice } from "@/components/ui/status/notice";
@@ -9,8 +10,6 @@ const CONTAINER_WORDS: Record<string, string> = {
   binary: "raw binary",
 };
 
-/** An address as the trade writes it: 0x810000. */
-export const addressText = (address: number) => `0x${address.toString(16).toUpperCase().padStart(6, "0")}`;
 export const bytesText = (bytes: number) =>
   `${bytes.toLocaleString("en-GB").replaceAll(",", "\u202f")} bytes`;
 

@@ -210,7 +210,7 @@ export default async function RevisionPage({ params, searchParams }: PageProps<"
                 {described ? (
                   <DescriptionUnderstood description={described} epk={view.epk} />
                 ) : (
-                  <p className="text-15">It has none: its changes are bytes without a meaning.</p>
+                  <p className="text-15">It has none of its own.</p>
                 )}
                 {mayDescribe &&
                   (described ? (

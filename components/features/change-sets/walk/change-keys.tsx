@@ -56,7 +56,10 @@ export function ChangeKeys({ items, current }: ChangeKeysProps) {
   const target = useRef(current);
   const seen = useRef(current);
 
-  useEffect(() => setOn(keysAreOn()), []);
+  useEffect(() => {
+    setOn(keysAreOn());
+    showInList();
+  }, []);
 
   useEffect(() => {
     target.current = current;

@@ -1,4 +1,5 @@
 import { numberText } from "@/components/ui/data/number-text";
+import type { ChangeSide, CharacteristicChange } from "@/lib/calibration/changes/types";
 import type { PhysicalValue } from "@/lib/calibration/values/types";
 
 /** Most digits behind the point that a physical value is shown with. */
@@ -58,4 +59,18 @@ export function counted(count: number, one: string, many = `${one}s`): string {
 export function listed(parts: readonly string[]): string {
   if (parts.length < 2) return parts.join("");
   return `${parts.slice(0, -1).join(", ")} and ${parts.at(-1)}`;
+}
+
+const plainUnit = (unit: string) => (unit.trim() === "-" ? "" : unit);
+const plainSide = (side: ChangeSide | null): ChangeSide | null =>
+  side && { ...side, axes: side.axes.map((axis) => ({ ...axis, unit: plainUnit(axis.unit) })) };
+
+/** The same change without the dash by which many descriptions say that there is no unit: behind a number it reads as a minus. */
+export function withPlainUnits(change: CharacteristicChange): CharacteristicChange {
+  return {
+    ...change,
+    unit: plainUnit(change.unit),
+    before: plainSide(change.before),
+    after: plainSide(change.after),
+  };
 }

@@ -33,7 +33,7 @@ export function RegionFields({ index, onRemove }: { index: number; onRemove: () 
       aria-label={title}
       className="flex flex-col gap-3 border-line border-t py-4 first:border-t-0 first:pt-0"
     >
-      <div className="grid gap-3 sm:grid-cols-2">
+      <div className="grid gap-3 sm:grid-cols-2 sm:items-end">
         <TextInput label="Name" required {...field("name")} />
         <Select label="Checksum" options={choices(ALGORITHM_WORDS)} {...field("algorithm")} />
         <TextInput mono label="First address" required {...field("from")} />

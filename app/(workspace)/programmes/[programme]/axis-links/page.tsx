@@ -21,16 +21,16 @@ export default async function AxisLinksPage({
   searchParams,
 }: PageProps<"/programmes/[programme]/axis-links">) {
   const ctx = await requireCtx();
-  const { version, revision } = await searchParams;
+  const { version, revision, against } = await searchParams;
   const setting = await orNotFound((await params).programme, (programmeId) =>
     getCalibrationSetting(ctx, { programmeId, kind: "axis_links", version: versionOf(version) }),
   );
   const { programme, shown } = setting;
   const may = can(ctx, "axis_links.version");
-  const revisionId = z.uuid().safeParse(revision).data;
+  const [revisionId, againstId] = [revision, against].map((id) => z.uuid().safeParse(id).data);
   const mayCompare = can(ctx, "revision.compare_images").ok;
   const found = mayCompare
-    ? await orRefused(() => quantitiesToLink(ctx, { programmeId: programme.id, revisionId }))
+    ? await orRefused(() => quantitiesToLink(ctx, { programmeId: programme.id, revisionId, againstId }))
     : null;
   return (
     <SettingPage
