@@ -4,6 +4,7 @@ import { seedPeople } from "@/db/seed/demo-people";
 import { tellStory } from "@/db/seed/demo-story";
 import { imageChecks, revisions } from "@/db/tables";
 import { getRevisionChanges } from "@/lib/services/change-sets/get";
+import { getDecisionDesk } from "@/lib/services/decisions/load-desk";
 import { test } from "@/tests/support/database";
 import { createTestStore } from "@/tests/support/store";
 
@@ -44,6 +45,10 @@ describe("the demo's story, told with the product's own steps", () => {
       expect(changedVisited, name).toBeGreaterThan(0);
       expect(changedVisited, name).toBeLessThanOrEqual(changedCells);
     }
+    // The checksum had to change with the data; it is declared, so it is nothing that nobody described.
+    const { gates } = await getDecisionDesk(people.ana, rows[3].id);
+    expect(gates.results.find(({ id }) => id === "touched")?.state).toBe("met");
+    expect(gates.results.find(({ id }) => id === "integrity")?.state).toBe("met");
     const [check] = await db.select().from(imageChecks).where(eq(imageChecks.revisionId, rows[3].id));
     expect(check.result).toMatchObject({ fingerprintHolds: true, regions: [{ state: "holds" }] });
   });

@@ -4,6 +4,8 @@ import { type ChangeSetRow, type SideRow, selectChangeSetOf, selectSides } from 
 import { selectImageCheck } from "@/db/queries/image-readings";
 import type { RevisionRow } from "@/db/queries/revisions";
 import { type TouchedMark, touchedMarks } from "@/lib/calibration/changes/relevance";
+import { withoutChecksums } from "@/lib/calibration/changes/uncovered/without-checksums";
+import type { ChecksumRegion } from "@/lib/calibration/image/checksum-regions";
 import { digestOf } from "@/lib/canonical-json";
 import type { CalibrationEvidence } from "@/lib/gates/evidence";
 import { type CoverageNow, coverageNow } from "@/lib/services/change-sets/coverage-now";
@@ -43,13 +45,17 @@ function coverageStateOf(now: CoverageNow | null): CalibrationEvidence["coverage
   return state === "ready" || state === "no_runs" ? state : "computing";
 }
 
+/** A change set without the stored values of checksums that the programme has declared. */
+function judgedChanges(row: ChangeSetRow | null, regions: readonly ChecksumRegion[]) {
+  return row?.result ? withoutChecksums(row.result, regions) : null;
+}
+
 async function integrityOf(
   db: Queryable,
-  { workspaceId, revision }: { workspaceId: string; revision: Revision },
+  place: { workspaceId: string; revisionId: string },
+  regionsVersion: number,
 ): Promise<CalibrationEvidence["integrity"]> {
-  const { programmeId, id: revisionId } = revision;
-  const kind = "checksum_regions" as const;
-  const { version: regionsVersion } = await selectSetting(db, { workspaceId, programmeId, kind });
+  const { workspaceId, revisionId } = place;
   const check = await selectImageCheck(db, { workspaceId, revisionId, regionsVersion });
   return {
     fingerprintHolds: check?.result.fingerprintHolds ?? null,
@@ -77,15 +83,16 @@ export async function calibrationDesk(
   const parent =
     parentId === standingRevisionId ? standing : await pair(db, { workspaceId, a: sideOf(parentId), b });
   const marks = await selectSetting(db, { workspaceId, programmeId, kind: "relevance_marks" });
+  const regions = await selectSetting(db, { workspaceId, programmeId, kind: "checksum_regions" });
   const coverage = standing?.result ? await coverageNow(db, standing) : null;
   const coverageState = coverageStateOf(coverage);
   const counts = coverageState === "ready";
   const evidence: CalibrationEvidence = {
-    fromStanding: standing?.result ?? null,
-    fromParent: parent?.result ?? null,
+    fromStanding: judgedChanges(standing, regions.content),
+    fromParent: judgedChanges(parent, regions.content),
     coverage: counts ? (coverage?.shown.result ?? null) : null,
     coverageState,
-    integrity: await integrityOf(db, { workspaceId, revision }),
+    integrity: await integrityOf(db, { workspaceId, revisionId: revision.id }, regions.version),
     marks: marks.content,
     declaresTouch: touchesEmissionOrSafety,
     intendedUse,
@@ -105,7 +112,10 @@ export async function calibrationDesk(
     coverageSha256,
     touched,
     seenSha256: isKnown
-      ? digestOf({ changeSet, parentSha256, coverageSha256, integrity, marks: marks.content })
+      ? digestOf({
+          ...{ changeSet, parentSha256, coverageSha256, integrity, marks: marks.content },
+          regionsVersion: regions.version,
+        })
       : null,
     touchedSha256: changeSet && touched.length > 0 ? digestOf({ changeSet, touched }) : null,
   };
