@@ -83,7 +83,7 @@ export function CurveStrip({
 }
 
 /** Place of the largest difference; 0 where there is none. */
-export function largestDelta({ delta }: JoinedCurves): number {
+function largestDelta({ delta }: JoinedCurves): number {
   return delta.reduce<number>(
     (best, value, i) => (Math.abs(value ?? 0) > Math.abs(delta[best] ?? 0) ? i : best),
     0,

@@ -23,7 +23,7 @@ import type { Coverage } from "@/lib/calibration/coverage/types";
 import { cn } from "@/lib/cn";
 
 /** Rows that are drawn at most; the downloads hold all. */
-export const MOST_ROWS = 400;
+const MOST_ROWS = 400;
 
 export interface ChangeListProps {
   groups: readonly ChangeGroup[];

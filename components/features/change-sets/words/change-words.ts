@@ -25,7 +25,7 @@ export const LIMIT_MARKS: Record<LimitState, HeatMark | null> = {
 };
 
 /** "3 maps, 1 curve and 2 values": the kinds in the order above. */
-export function kindsText(changes: readonly Pick<CharacteristicChange, "type">[]): string {
+function kindsText(changes: readonly Pick<CharacteristicChange, "type">[]): string {
   const types = Object.keys(TYPE_WORDS) as CharacteristicChange["type"][];
   return listed(
     types.flatMap((type) => {
