@@ -25,7 +25,15 @@ export function component(
 }
 
 export function layout(components: LayoutComponent[], more: Partial<RecordLayout> = {}): RecordLayout {
-  return { name: "L", components, fixedCounts: {}, alignments: {}, isStatic: false, ...more };
+  return {
+    name: "L",
+    components,
+    fixedCounts: {},
+    alignments: {},
+    isStatic: false,
+    keepsStarts: false,
+    ...more,
+  };
 }
 
 export function characteristic(more: Partial<Characteristic> = {}): Characteristic {

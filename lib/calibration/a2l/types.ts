@@ -43,6 +43,8 @@ export interface RecordLayout {
   alignments: Alignments;
   /** STATIC_RECORD_LAYOUT: places do not move with the used number of points. */
   isStatic: boolean;
+  /** STATIC_ADDRESS_OFFSETS: axes and function values begin where they would with the most points; inside them places do move. */
+  keepsStarts: boolean;
 }
 
 export type AxisLetter = "X" | "Y" | "Z" | "4" | "5";

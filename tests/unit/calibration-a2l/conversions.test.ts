@@ -114,7 +114,11 @@ describe("record layouts", () => {
     expect(layout?.components[8]).toMatchObject({ dataType: "FLOAT16_IEEE", indexMode: "COLUMN_DIR" });
     expect(layout?.fixedCounts).toEqual({ Z: 5 });
     expect(layout?.alignments).toEqual({ UWORD: 1, SWORD: 1 });
-    expect(layout?.isStatic).toBe(true);
+    expect(layout).toMatchObject({ isStatic: true, keepsStarts: false });
+    const offsets = readModuleOf(
+      "/begin RECORD_LAYOUT L FNC_VALUES 1 UBYTE ROW_DIR DIRECT STATIC_ADDRESS_OFFSETS /end RECORD_LAYOUT",
+    );
+    expect(offsets.module.layouts.get("L")).toMatchObject({ isStatic: false, keepsStarts: true });
     expect(notes).toEqual([]);
   });
   it.each([

@@ -204,17 +204,18 @@ it("no made-up description throws: everything is read or has its reason (fuzzing
       { maxLength: 5 },
     ),
     isStatic: fc.boolean(),
+    keepsStarts: fc.boolean(),
     matrixDim: fc.option(fc.array(odd, { maxLength: 3 })),
     address: fc.oneof(fc.integer({ min: 0xff0, max: 0x1050 }), odd),
     bytes: fc.array(fc.nat(12), { minLength: 1, maxLength: 80 }),
   });
   fc.assert(
-    fc.property(made, ({ components, kind, axes, isStatic, matrixDim, address, bytes }) => {
+    fc.property(made, ({ components, kind, axes, isStatic, keepsStarts, matrixDim, address, bytes }) => {
       const reading = readMade(
         {
           characteristics: [characteristic({ type: kind, axes, matrixDim, address })],
           axisPoints: [axisPoints({ address: 0x1004, layout: "L" })],
-          layouts: [layout(components, { isStatic })],
+          layouts: [layout(components, { isStatic, keepsStarts })],
         },
         bytes,
       );

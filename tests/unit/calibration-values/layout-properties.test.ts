@@ -62,6 +62,7 @@ it("what is written by a layout is read back, cell by cell", () => {
     order: fc.constantFrom<ByteOrder>("little", "big", "little_words_swapped", "big_words_swapped"),
     columns: fc.boolean(),
     isStatic: fc.boolean(),
+    keepsStarts: fc.boolean(),
     reserved: fc.nat(2),
     packed: fc.boolean(),
     firstX: fc.boolean(),
@@ -96,7 +97,7 @@ it("what is written by a layout is read back, cell by cell", () => {
         add(`AXIS_PTS_${letter}`, type);
         points[letter] = Array.from({ length: used }, () => next(type));
         for (const point of points[letter]) writer.put(type, point);
-        for (let k = used; one.isStatic && k < most; k++) writer.put(type, 0xeen);
+        for (let k = used; (one.isStatic || one.keepsStarts) && k < most; k++) writer.put(type, 0xeen);
       };
       const axes = [() => addAxis("X", xType, nx, mostX), () => addAxis("Y", yType, ny, mostY)];
       for (const write of one.firstX ? axes : axes.reverse()) write();
@@ -114,7 +115,7 @@ it("what is written by a layout is read back, cell by cell", () => {
           characteristics: [
             characteristic({ type: "MAP", axes: [axis({ maxPoints: mostX }), axis({ maxPoints: mostY })] }),
           ],
-          layouts: [layout(components, { isStatic: one.isStatic })],
+          layouts: [layout(components, { isStatic: one.isStatic, keepsStarts: one.keepsStarts })],
         },
         writer.bytes,
       );

@@ -90,6 +90,36 @@ describe("places of a record", () => {
     ]);
   });
 
+  it("keeps the starts and closes the rows where only offsets are static (from memory of ASAP2 1.7)", () => {
+    const components = [
+      ...[COUNT_X, component(2, "NO_AXIS_PTS_Y", "UBYTE"), component(3, "FNC_VALUES", "UBYTE")],
+      ...[component(4, "AXIS_PTS_X", "UBYTE"), component(5, "AXIS_PTS_Y", "UBYTE")],
+    ];
+    const bytes = [2, 2, 11, 12, 13, 14, 0xee, 0xee, 1, 2, 0xee, 7, 8];
+    const read = readOne(map(components, { keepsStarts: true }, [3, 2]), bytes);
+    expect(read.values).toEqual([11, 12, 13, 14]);
+    expect(read.axes.map(({ points }) => points)).toEqual([
+      [1, 2],
+      [7, 8],
+    ]);
+    const both = [2, 2, 11, 12, 0xee, 13, 14, 0xee, 1, 2, 0xee, 7, 8];
+    const whole = map(components, { keepsStarts: true, isStatic: true }, [3, 2]);
+    expect(readOne(whole, both)).toMatchObject({ values: [11, 12, 13, 14], dims: [2, 2] });
+  });
+
+  it("keeps where the values of a curve begin where offsets are static, and where its last part does", () => {
+    const components = [COUNT_X, X, component(3, "FNC_VALUES", "UBYTE")];
+    const read = readOne(curve(components, { keepsStarts: true }), [2, 5, 6, 0xee, 0xee, 50, 60]);
+    expect(read).toMatchObject({ dims: [2], values: [50, 60] });
+    const turned = [component(1, "FNC_VALUES", "UBYTE"), component(2, "AXIS_PTS_X", "UBYTE")];
+    const fixed = curve(turned, { keepsStarts: true, fixedCounts: { X: 2 } });
+    const after = readOne(fixed, [50, 60, 0xee, 0xee, 5, 6]);
+    expect([after.values, after.axes[0].points]).toEqual([
+      [50, 60],
+      [5, 6],
+    ]);
+  });
+
   it("skips addresses, identification and the like by their size", () => {
     const made = curve(
       [

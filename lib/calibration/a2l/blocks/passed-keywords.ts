@@ -33,7 +33,6 @@ export const PASSED_KEYWORDS: ReadonlyMap<string, number> = new Map(
     READ_WRITE: 0,
     REF_MEMORY_SEGMENT: 1,
     SI_EXPONENTS: 7,
-    STATIC_ADDRESS_OFFSETS: 0,
     STEP_SIZE: 1,
     SUPPLIER: 1,
     SYMBOL_LINK: 2,

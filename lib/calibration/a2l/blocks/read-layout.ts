@@ -127,10 +127,12 @@ export function readRecordLayout(reader: BlockReader): RecordLayout {
   const layout = { name, components: [] as LayoutComponent[], alignments: {} as Alignments };
   const fixedCounts: Partial<Record<AxisLetter, number>> = {};
   let isStatic = false;
+  let keepsStarts = false;
   for (let keyword = reader.option(); keyword !== null; keyword = reader.option()) {
     const letter = AXIS_LETTERS.find((each) => keyword === `FIX_NO_AXIS_PTS_${each}`);
     if (letter) fixedCounts[letter] = reader.whole("fixed number of points");
     else if (keyword === "STATIC_RECORD_LAYOUT") isStatic = true;
+    else if (keyword === "STATIC_ADDRESS_OFFSETS") keepsStarts = true;
     else if (!readAlignment(reader, keyword, layout.alignments)) {
       const component = readComponent(reader, keyword);
       if (component) {
@@ -140,5 +142,5 @@ export function readRecordLayout(reader: BlockReader): RecordLayout {
     }
   }
   layout.components.sort((a, b) => a.position - b.position);
-  return { ...layout, fixedCounts, isStatic };
+  return { ...layout, fixedCounts, isStatic, keepsStarts };
 }

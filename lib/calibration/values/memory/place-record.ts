@@ -79,10 +79,12 @@ export function placeRecord(request: RecordRequest): PlacedRecord {
     alternate === "ALTERNATE_WITH_X" ? "X" : alternate === "ALTERNATE_WITH_Y" ? "Y" : null;
 
   const used = (letter: AxisLetter) => counts.get(letter) ?? settle(request, letter, null, counts);
-  const reserved = (letter: AxisLetter) =>
-    layout.isStatic
-      ? Math.max(used(letter), request.axes.find((axis) => axis.letter === letter)?.max ?? 0)
-      : used(letter);
+  const most = (letter: AxisLetter) =>
+    Math.max(used(letter), request.axes.find((axis) => axis.letter === letter)?.max ?? 0);
+  // Places inside the function values, and room that is kept for a component: only a static layout keeps the rows of a map apart as
+  // well, static offsets keep where each component begins (from memory of ASAP2 1.7).
+  const apart = layout.isStatic ? most : used;
+  const kept = layout.isStatic || layout.keepsStarts ? most : used;
   const take = (start: number, length: number) => {
     if (length > 0) placed.bytes.push({ address: start, length });
   };
@@ -117,24 +119,22 @@ export function placeRecord(request: RecordRequest): PlacedRecord {
       const count = used(axis);
       placed.axes[axis] = turned({ type: dataType, address: start, stride: size, count }, component);
       take(start, count * size);
-      at = start + reserved(axis) * size;
+      at = start + kept(axis) * size;
     } else if (kind === "FNC_VALUES" || (kind === "AXIS_PTS" && axis === alternateLetter)) {
       if (cells) {
         at = before;
         continue;
       }
       for (const need of request.axes) waitForCount(layout, k, need.letter, request, counts);
-      const result = cellPlaces({
-        layout,
-        start,
-        dims: request.dims ?? request.axes.map(({ letter: own }) => used(own)),
-        reserved: request.dims ?? request.axes.map(({ letter: own }) => reserved(own)),
-        alignment: (type) => alignmentOf(request, type),
-      });
+      const cellsBy = (count: typeof used) =>
+        request.dims ?? request.axes.map(({ letter: own }) => count(own));
+      const alignment = (type: DataType) => alignmentOf(request, type);
+      const values = { layout, start, alignment };
+      const result = cellPlaces({ ...values, dims: cellsBy(used), reserved: cellsBy(apart) });
       cells = result.cells;
       if (result.axis) placed.axes[result.axis.letter] = result.axis.series;
       take(start, result.length);
-      at = start + result.reservedLength;
+      at = start + cellPlaces({ ...values, dims: cellsBy(used), reserved: cellsBy(kept) }).reservedLength;
     }
   }
   return { ...placed, counts: request.axes.map(({ letter }) => used(letter)), cells, rescale };
