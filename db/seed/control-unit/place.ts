@@ -72,7 +72,7 @@ export const SPREAD_PARTS: readonly Part[] = [
 ];
 
 /** Every number begins at a multiple of its size. */
-export const alignedTo = (address: number, type: DataType): number =>
+const alignedTo = (address: number, type: DataType): number =>
   Math.ceil(address / DATA_TYPES[type]) * DATA_TYPES[type];
 
 /** Address at which each part begins, and the first one behind them. */
@@ -87,7 +87,7 @@ export function placesOf(parts: readonly Part[], from: number): { starts: readon
 }
 
 /** Addresses by name: shared axes first, then the items; what is virtual has none. */
-export const ADDRESSES: ReadonlyMap<string, number> = (() => {
+const ADDRESSES: ReadonlyMap<string, number> = (() => {
   const addresses = new Map<string, number>();
   let at: number = MEMORY.firstItem;
   const put = (name: string, parts: readonly Part[]) => {

@@ -9,8 +9,8 @@ export const ENTRIES_OF_A_THING = 8;
 
 const LONGEST_TEXT = 300;
 
-/** A name of the file may be as long as the file. */
-const cut = (text: string) => (text.length > LONGEST_TEXT ? `${text.slice(0, LONGEST_TEXT)}…` : text);
+/** A text of the file as it fits into a sentence: a name may be as long as the file. */
+export const cut = (text: string) => (text.length > LONGEST_TEXT ? `${text.slice(0, LONGEST_TEXT)}…` : text);
 
 /** Where something stands. */
 export interface Place {

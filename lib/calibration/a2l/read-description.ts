@@ -1,6 +1,6 @@
 import { BlockReader } from "@/lib/calibration/a2l/blocks/block-reader";
 import { readModule } from "@/lib/calibration/a2l/blocks/read-module";
-import { Findings } from "@/lib/calibration/a2l/findings";
+import { cut, Findings } from "@/lib/calibration/a2l/findings";
 import { TokenSource } from "@/lib/calibration/a2l/token-source";
 import type { Description, DescriptionFile, DescriptionModule } from "@/lib/calibration/a2l/types";
 import { FileRefusedError } from "@/lib/errors";
@@ -54,7 +54,7 @@ export function readDescription(files: readonly DescriptionFile[]): Description 
   if (modules.length === 0) {
     throw new FileRefusedError(
       "no_module",
-      `The project ${project} in ${main} holds no MODULE, so it describes nothing.`,
+      `The project ${cut(project)} in ${main} holds no MODULE, so it describes nothing.`,
     );
   }
   return { version, project, encoding: source.encoding, modules, ...findings.close(main) };

@@ -1,5 +1,5 @@
 import { type DescriptionText, decodeDescription } from "@/lib/calibration/a2l/decode-description";
-import type { Findings, Place } from "@/lib/calibration/a2l/findings";
+import { cut, type Findings, type Place } from "@/lib/calibration/a2l/findings";
 import { NameTable } from "@/lib/calibration/a2l/name-table";
 import { NotClosed, scanToken, type TokenKind, type TokenState } from "@/lib/calibration/a2l/scan-token";
 import { tokenNumber } from "@/lib/calibration/a2l/token-number";
@@ -122,7 +122,7 @@ export class TokenSource {
   /** Refuses the description at a place. */
   refuse(code: string, reason: string, place: Place = this.place()): never {
     const { file, line } = place;
-    throw new FileRefusedError(code, `Line ${line} of ${file}: ${reason}`, { file, line });
+    throw new FileRefusedError(code, cut(`Line ${line} of ${file}: ${reason}`), { file, line });
   }
 
   private refuseNotClosed({ what }: NotClosed): never {

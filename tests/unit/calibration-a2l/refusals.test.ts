@@ -90,6 +90,15 @@ describe("a description in doubt is refused with file, line and reason", () => {
       message: "Line 2 of c: main.a2l includes b includes c includes b. Remove one of them.",
     });
   });
+  it("a sentence stays short, however long a name is", () => {
+    const long = "N".repeat(100_000);
+    for (const text of [
+      inModule(`/begin ${long} /end X`),
+      inModule(`/begin ${long}`),
+      `/begin PROJECT ${long} "" /end PROJECT`,
+    ])
+      expect(main(text).message.length).toBeLessThan(700);
+  });
   it("the file of an unclosed text is named where it is an included one", () => {
     expect(refused({ "main.a2l": inModule("/include b.a2l"), "b.a2l": '\n\n"open' }).message).toContain(
       "Line 3 of b.a2l",
