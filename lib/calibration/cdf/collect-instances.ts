@@ -7,7 +7,11 @@ const MOST_VALUES = 10_000_000;
 const MOST_INSTANCES = 500_000;
 const LONGEST_TEXT = 1 << 20;
 const MOST_PROBLEMS = 200;
-const NUMBER = /^[+-]?(\d+\.?\d*|\.\d+)(e[+-]?\d+)?$/i;
+const MOST_NOTES = 50;
+/** Parts of structures carry the names around them, so a long one would be kept again and again. */
+const LONGEST_NAME = 1024;
+/** Only one way to match: a long row of digits must not be tried at every place. */
+const NUMBER = /^[+-]?(\d+(\.\d*)?|\.\d+)(e[+-]?\d+)?$/i;
 /** Categories whose single value is still an array of one. */
 const ARRAYS = /^(CURVE|MAP|CUBOID|CUBE_[45]|VAL_BLK|.*_AXIS)$/;
 
@@ -42,7 +46,8 @@ export class InstanceCollector {
   }
 
   note(message: string): void {
-    if (!this.file.notes.includes(message)) this.file.notes.push(message);
+    const { notes } = this.file;
+    if (notes.length < MOST_NOTES && !notes.includes(message)) notes.push(message);
   }
 
   open(name: string): void {
@@ -213,7 +218,12 @@ export class InstanceCollector {
   /** Parts of a structure carry its name in front. */
   private fullName(own: string): string {
     const outer = this.drafts[this.drafts.length - 2];
-    return outer ? `${outer.name}.${own}` : own;
+    const name = outer ? `${outer.name}.${own}` : own;
+    if (name.length <= LONGEST_NAME) return name;
+    throw new FileRefusedError(
+      "file_damaged",
+      `A name of the values file is longer than ${LONGEST_NAME} characters: "${name.slice(0, 40)}…".`,
+    );
   }
 
   private problem({ name }: Pick<Draft, "name">, message: string): void {
