@@ -223,6 +223,14 @@ describe("modules", () => {
     // No MOD_COMMON: the order that was taken is told.
     expect(description.notes.map(({ code }) => code)).toEqual(["byte_order_missing", "byte_order_missing"]);
   });
+  it("a characteristic may name its functions itself", () => {
+    const list = "/begin FUNCTION_LIST F gone /end FUNCTION_LIST";
+    const { module, notes } = readModuleOf(
+      `${value("a", list)}${value("b", list)} /begin FUNCTION F "" /begin DEF_CHARACTERISTIC c a /end DEF_CHARACTERISTIC /end FUNCTION`,
+    );
+    expect(module.functions.get("F")?.characteristics).toEqual(["c", "a", "b"]);
+    expect(notes).toEqual([]);
+  });
   it("functions and groups, with circles told and not followed", () => {
     const { module, notes } = readModuleOf(`
       /begin FUNCTION F "f" /begin DEF_CHARACTERISTIC a b /end DEF_CHARACTERISTIC

@@ -13,6 +13,8 @@ const LEAST_INFINITE = /^[+-]?(inf(inity)?|\d\.#inf\w*)$/i;
 export class BlockReader {
   /** First thing wrong since it was last cleared; the block is then not read, the file still is. */
   fault: string | null = null;
+  /** Functions that characteristics and shared axes say they belong to; a module takes them when it ends. */
+  listedFunctions: { name: string; member: string }[] = [];
   /** Where the block read last begins. */
   begun: Place = { file: "", line: 1 };
   private readonly stack: { keyword: string; place: Place }[] = [];

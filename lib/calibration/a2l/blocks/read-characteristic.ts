@@ -26,6 +26,7 @@ const NO_CONVERSION = "NO_COMPU_METHOD";
 
 /** Options that characteristics and shared axes have in common. */
 interface PlacedOptions {
+  readonly name: string;
   displayIdentifier: string | null;
   extendedLimits: readonly [number, number] | null;
   byteOrder: ByteOrder | null;
@@ -54,6 +55,9 @@ function readPlacedOption(reader: BlockReader, keyword: string, placed: PlacedOp
       return true;
     case "READ_ONLY":
       placed.readOnly = true;
+      return true;
+    case "/FUNCTION_LIST":
+      for (const name of reader.names()) reader.listedFunctions.push({ name, member: placed.name });
       return true;
     case "DEPOSIT":
       if (reader.word("deposit") === "DIFFERENCE")

@@ -15,7 +15,7 @@ import {
 } from "@/lib/calibration/a2l/blocks/read-conversion";
 import { readRecordLayout } from "@/lib/calibration/a2l/blocks/read-layout";
 import { type ModuleFacts, readModCommon, readModPar } from "@/lib/calibration/a2l/blocks/read-module-facts";
-import { readFunction, readGroup, setsInCycles } from "@/lib/calibration/a2l/blocks/read-set";
+import { addListed, readFunction, readGroup, setsInCycles } from "@/lib/calibration/a2l/blocks/read-set";
 import { ENTRIES_OF_A_THING, type Place } from "@/lib/calibration/a2l/findings";
 import type {
   AxisPoints,
@@ -177,6 +177,8 @@ export function readModule(reader: BlockReader): DescriptionModule {
     const message = `The module ${name} states no byte order in MOD_COMMON; little-endian was taken.`;
     reader.findings.note("byte_order_missing", message, place);
   }
+  addListed(draft.functions, reader.listedFunctions);
+  reader.listedFunctions = [];
   noteConnections(reader, draft, place);
   const units = new Map(Array.from(draft.units.values(), ({ name: unit, display }) => [unit, display]));
   const { characteristics, axisPoints, layouts, measurements, functions, groups } = draft;

@@ -25,6 +25,24 @@ function readSet(reader: BlockReader, keyword: "FUNCTION" | "GROUP"): NamedSet {
   return { name, text, characteristics: [...characteristics], subSets: [...subSets], isRoot };
 }
 
+/** Adds members that name their function themselves (FUNCTION_LIST), each once; functions that are not there are left out. */
+export function addListed(
+  functions: Map<string, NamedSet>,
+  listed: readonly { name: string; member: string }[],
+): void {
+  const added = new Map<string, Set<string>>();
+  for (const { name, member } of listed) {
+    const known = functions.get(name);
+    if (!known) continue;
+    const members = added.get(name) ?? new Set(known.characteristics);
+    added.set(name, members.add(member));
+  }
+  for (const [name, members] of added) {
+    const known = functions.get(name);
+    if (known) functions.set(name, { ...known, characteristics: [...members] });
+  }
+}
+
 /**
  * Names of sets that contain themselves, over others or straight, one for each way back that is found. Takes time in
  * proportion to sets and sub-sets, and no call nests.
