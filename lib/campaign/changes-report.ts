@@ -1,5 +1,6 @@
 import { createHash } from "node:crypto";
 import type { Description } from "@/lib/calibration/a2l/types";
+import type { ValuesCheck } from "@/lib/calibration/cdf/check-values";
 import type { ChangeSet, CharacteristicChange } from "@/lib/calibration/changes/types";
 import { imageIdentity } from "@/lib/calibration/image/image-identity";
 import { type CalibrationImage, formatAddress } from "@/lib/calibration/image/types";
@@ -142,5 +143,30 @@ export function valuesReport(reading: ImageReading, description: Said) {
     epk: reading.epk,
     not_read: [...reading.notRead.map(({ name, reason }) => ({ name, reason })), ...description.notRead],
     problems: [...reading.problems, ...description.problems],
+  };
+}
+
+/** How the image stands to a values file: counts first, then what differs and what could not be compared. */
+export function cdfReport(check: ValuesCheck) {
+  const { differing, otherShape, otherUnit, notInImage, notReadable, notInFile } = check;
+  return {
+    in_file: check.inFile,
+    compared: check.compared,
+    equal: check.equal,
+    values: check.values,
+    different_values: differing.count,
+    differences: differing.first.map(({ decimals: _, ...said }) => said),
+    other_shape_count: otherShape.count,
+    other_shape: otherShape.first,
+    other_unit_count: otherUnit.count,
+    other_unit: otherUnit.first,
+    not_in_image_count: notInImage.count,
+    not_in_image: notInImage.first,
+    not_readable_count: notReadable.count,
+    not_readable: notReadable.first,
+    not_in_file_count: notInFile.count,
+    not_in_file: notInFile.first,
+    problems: check.problems,
+    notes: check.notes,
   };
 }

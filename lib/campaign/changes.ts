@@ -4,14 +4,23 @@ import { basename } from "node:path";
 import { parseArgs } from "node:util";
 import { readDescription } from "@/lib/calibration/a2l/read-description";
 import type { Description } from "@/lib/calibration/a2l/types";
+import { checkValues } from "@/lib/calibration/cdf/check-values";
+import { readCdfx } from "@/lib/calibration/cdf/read-cdfx";
 import { changeSetOf } from "@/lib/calibration/changes/change-set";
 import { readImage } from "@/lib/calibration/image/read-image";
 import { readImageByDescription } from "@/lib/calibration/values/read-image-by-description";
-import { changesReport, descriptionReport, imageReport, valuesReport } from "@/lib/campaign/changes-report";
+import {
+  cdfReport,
+  changesReport,
+  descriptionReport,
+  imageReport,
+  valuesReport,
+} from "@/lib/campaign/changes-report";
 import { TwinpassError } from "@/lib/errors";
 
 const USAGE = `Usage: npm run -s changes -- A.hex B.hex [--description ecu.a2l [included.a2l ...]]
        npm run -s changes -- A.hex --description ecu.a2l --values
+       npm run -s changes -- A.hex --description ecu.a2l --cdf values.cdfx
 Raw binaries need --base 0x810000. Two descriptions: --description-a old.a2l --description-b new.a2l`;
 
 class CallError extends Error {}
@@ -23,7 +32,12 @@ interface Call {
   b: string[];
   base: number | undefined;
   values: boolean;
+  /** A values file that one image is held against. */
+  cdf: string | null;
 }
+
+/** Differences, and names of each kind, that are printed of a values file. */
+const MOST_PRINTED = 10_000;
 
 const MANY = { type: "string", multiple: true } as const;
 
@@ -36,13 +50,16 @@ function call(): Call {
       "description-b": MANY,
       base: { type: "string" },
       values: { type: "boolean" },
+      cdf: { type: "string" },
     },
   });
   const values = options.values ?? false;
-  const wanted = values ? 1 : 2;
+  const cdf = options.cdf ?? null;
+  const ofOne = cdf !== null ? "--cdf" : values ? "--values" : null;
+  const wanted = ofOne ? 1 : 2;
   const isDescription = (path: string) => /\.a2l$/i.test(path);
   const images = positionals.filter((path) => !isDescription(path)).slice(0, wanted);
-  if (images.length < wanted) throw new CallError(values ? "Name one image." : "Name two images.");
+  if (images.length < wanted) throw new CallError(ofOne ? "Name one image." : "Name two images.");
   const more = positionals.filter((path) => !images.includes(path));
   const shared = options.description ?? [];
   if (shared.length === 0 && more.length > 0) {
@@ -50,8 +67,8 @@ function call(): Call {
   }
   const both = [...shared, ...more];
   const [a, b] = [options["description-a"] ?? both, options["description-b"] ?? both];
-  if (values && a.length === 0) throw new CallError("--values needs a --description.");
-  return { images, a, b, base: baseOf(options.base), values };
+  if (ofOne && a.length === 0) throw new CallError(`${ofOne} needs a --description.`);
+  return { images, a, b, base: baseOf(options.base), values, cdf };
 }
 
 function baseOf(text: string | undefined): number | undefined {
@@ -103,18 +120,23 @@ function compare({ images, a, b, base }: Call): void {
   );
 }
 
-function values({ images, a, base }: Call): void {
+function ofOneImage({ images, base, values, cdf }: Call, description: Description): void {
   const image = readImage(bytesOf(images[0]), { fileName: basename(images[0]), baseAddress: base });
-  const description = described(a);
-  if (!description) throw new CallError("--values needs a --description.");
-  print(valuesReport(readImageByDescription(description, image), descriptionReport(description)));
+  const reading = readImageByDescription(description, image);
+  const { values: byName, ...said } = valuesReport(reading, descriptionReport(description));
+  print({
+    ...(cdf === null ? {} : { cdf: cdfReport(checkValues(reading, readCdfx(bytesOf(cdf)), MOST_PRINTED)) }),
+    ...(values ? { values: byName } : {}),
+    ...said,
+  });
 }
 
-/** Prints changes or values as JSON. Exit status 0: read; 1: a file is refused; 2: wrong call. */
+/** Prints changes, values or a check of values as JSON. Exit status 0: read; 1: a file is refused; 2: wrong call. */
 function main(): number {
   try {
     const asked = call();
-    if (asked.values) values(asked);
+    const description = asked.values || asked.cdf !== null ? described(asked.a) : null;
+    if (description) ofOneImage(asked, description);
     else compare(asked);
     return 0;
   } catch (error) {

@@ -171,6 +171,37 @@ describe("npm run changes", () => {
     expect(not_read.map(({ name }: { name: string }) => name)).toContain("ASAM.C.VIRTUAL.REF_1.SWORD");
   });
 
+  it("holds one image against a values file, its differences and what could not be compared (by hand)", () => {
+    const instance = (name: string, category: string, values: string) =>
+      `<SW-INSTANCE><SHORT-NAME>${name}</SHORT-NAME><CATEGORY>${category}</CATEGORY><SW-VALUE-CONT>
+      <UNIT-DISPLAY-NAME>kPa</UNIT-DISPLAY-NAME><SW-VALUES-PHYS>${values}</SW-VALUES-PHYS></SW-VALUE-CONT></SW-INSTANCE>`;
+    const boost = (last: string) =>
+      instance("Boost", "MAP", `<VG><V>10</V><V>11</V></VG><VG><V>12</V><V>${last}</V></VG>`);
+    const others = instance("Far", "VALUE", "<V>1</V>") + instance("Strange", "VALUE", "<V>many</V>");
+    writeFileSync(join(folder, "same.cdfx"), `<MSRSW>${boost("14.2")}</MSRSW>`);
+    writeFileSync(join(folder, "other.cdfx"), `<MSRSW>${boost("15")}${others}</MSRSW>`);
+    const described = ["a.hex", "--description", "ecu.a2l", "more.a2l"];
+    const same = JSON.parse(changes(...described, "--cdf", "same.cdfx").out);
+    expect(same.cdf).toMatchObject({ compared: 1, equal: 1, values: 4, differences: [], problems: [] });
+    expect([same.cdf.not_in_file, same.values]).toEqual([["Label"], undefined]);
+    const { status, out } = changes(...described, "--cdf", "other.cdfx", "--values");
+    expect(status).toBe(0);
+    const { cdf, values } = JSON.parse(out);
+    expect(values.Boost.values[3]).toBeCloseTo(14.2, 9);
+    const place = { name: "Boost", axis: null, index: [1, 1], unit: "kPa" };
+    expect(cdf).toMatchObject({
+      ...{ in_file: 3, compared: 1, equal: 0, values: 4, different_values: 1 },
+      differences: [
+        { ...place, file: 15, image: expect.closeTo(14.2, 9), difference: expect.closeTo(0.8, 9) },
+      ],
+      not_readable: [{ name: "Far", reason: expect.stringContaining("not in the image") }],
+      not_in_image: ["Strange"],
+      problems: ['Strange holds "many", which is no number.'],
+    });
+    const refused = changes(...described, "--cdf", "a.hex");
+    expect([refused.status, refused.err.split(":")[0]]).toEqual([1, "file_damaged"]);
+  });
+
   it("names an included file that is missing", () => {
     const result = JSON.parse(changes("a.hex", "b.s19", "--description", "ecu.a2l").out);
     expect(result.problems).toContain(
@@ -191,6 +222,7 @@ describe("npm run changes", () => {
     expect(changes("a.hex", "b.s19", "--description", "odd.a2l").status).toBe(1);
     for (const args of [
       ["a.hex", "--values"],
+      ["a.hex", "--cdf", "same.cdfx"],
       ["a.hex", "b.s19", "c.hex"],
       ["a.hex", "gone.hex"],
     ]) {
