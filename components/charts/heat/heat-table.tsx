@@ -65,7 +65,7 @@ export function HeatTable({ caption, x, y, rowHead = "", cells }: HeatTableProps
               rowSpan={2}
               className={cn(
                 headCell,
-                "sticky top-0 left-0 z-20 max-w-32 whitespace-normal border-r border-b align-bottom",
+                "sticky top-0 left-0 z-20 w-32 max-w-32 whitespace-normal border-r border-b align-bottom [overflow-wrap:anywhere]",
               )}
             >
               {y?.head}
@@ -75,7 +75,7 @@ export function HeatTable({ caption, x, y, rowHead = "", cells }: HeatTableProps
               colSpan={x.points.length}
               className="px-2 pt-1.5 text-left font-medium text-ink2"
             >
-              <span className="sticky left-22">{x.head}</span>
+              <span className="sticky left-34">{x.head}</span>
             </th>
           </tr>
           <tr>
