@@ -30,6 +30,7 @@ const config = {
   headers: async () => [
     { source: "/:path*", headers: EVERYWHERE },
     { source: "/api/uploads/:path*", headers: NOTHING_RUNS },
+    { source: "/api/revisions/:revision/values-check", headers: NOTHING_RUNS },
     { source: "/icon.svg", headers: NOTHING_RUNS },
   ],
 };

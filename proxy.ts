@@ -7,7 +7,7 @@ const DATA_POLICY = "default-src 'none'; base-uri 'none'; frame-ancestors 'none'
 /**
  * Content security policy with a nonce for each answer, the request id, and the path for the way back after signing in.
  * It decides no access: pages, routes and actions do. What a client sends under these header names is overwritten.
- * Uploads are outside the matcher: a proxy in front of them cuts bodies over 10 MB without an error.
+ * Uploads and values files are outside the matcher: a proxy in front of them cuts bodies over 10 MB without an error.
  */
 export function proxy(request: NextRequest): NextResponse {
   const nonce = Buffer.from(randomUUID()).toString("base64");
@@ -40,5 +40,5 @@ export function proxy(request: NextRequest): NextResponse {
 }
 
 export const config = {
-  matcher: ["/((?!api/uploads|_next/static|_next/image|icon.svg).*)"],
+  matcher: ["/((?!api/uploads|api/revisions/[^/]+/values-check|_next/static|_next/image|icon.svg).*)"],
 };

@@ -7,6 +7,7 @@ const AN_HOUR = {
   "begin uploads": 600,
   "send invitations": 30,
   "make workspaces": 5,
+  "check values files": 120,
 } as const;
 
 /**

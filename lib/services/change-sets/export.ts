@@ -1,18 +1,15 @@
 import type { z } from "zod";
 import { selectChangeSet } from "@/db/queries/change-sets";
-import { selectImageReading } from "@/db/queries/image-readings";
-import { selectRevision } from "@/db/queries/revisions";
 import { type CdfSelection, cdfOfChanges, cdfOfReading } from "@/lib/calibration/cdf/cdf-instances";
 import { changesCsv, readingCsv } from "@/lib/calibration/cdf/values-csv";
 import { writeCdfx } from "@/lib/calibration/cdf/write-cdfx";
-import { READER_VERSION } from "@/lib/calibration/reader-version";
 import { ConflictError, NotFoundError } from "@/lib/errors";
 import { loadSides } from "@/lib/services/change-sets/pair";
+import { findRevisionReading } from "@/lib/services/change-sets/revision-reading";
 import type { valuesFormat } from "@/lib/services/change-sets/schema";
 import { openReading } from "@/lib/services/change-sets/stored-reading";
-import { authorise, type Ctx, withTransaction } from "@/lib/services/ctx";
+import { type Ctx, withTransaction } from "@/lib/services/ctx";
 import { appendLedger } from "@/lib/services/ledger/append";
-import { noRevision } from "@/lib/services/revisions/load";
 
 type Format = z.infer<typeof valuesFormat>;
 
@@ -62,21 +59,8 @@ export async function exportRevisionValues(
   ctx: Ctx,
   { revisionId, format }: { revisionId: string; format: Format },
 ): Promise<ValuesFile> {
-  authorise(ctx, "values.export");
-  const { db, workspaceId } = ctx;
-  const revision = await selectRevision(db, { workspaceId, revisionId });
-  if (!revision) throw noRevision();
-  const { number, descriptionId, programmeId } = revision;
-  const key = { workspaceId, revisionId, readerVersion: READER_VERSION };
-  const kept = descriptionId === null ? null : await selectImageReading(db, { ...key, descriptionId });
-  if (!kept)
-    throw new ConflictError(
-      "no_values",
-      descriptionId === null
-        ? `R${number} has no description, so its values are not known. Add one on its page.`
-        : `The values of R${number} are not read yet. Wait for it, then download.`,
-    );
-  const reading = await openReading(ctx, kept.blobSha256);
+  const { number, programmeId, blobSha256 } = await findRevisionReading(ctx, revisionId);
+  const reading = await openReading(ctx, blobSha256);
   await note(ctx, { revisionId, programmeId }, { number, format });
   return {
     fileName: `R${number}.${format}`,

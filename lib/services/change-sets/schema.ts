@@ -83,6 +83,11 @@ export interface ChangeSetState {
 
 export const valuesFormat = z.enum(["cdfx", "csv"], "Choose cdfx or csv as the format.");
 
+/** Largest values file that a revision is held against, in bytes. */
+export const LARGEST_VALUES_FILE_BYTES = 16_000_000;
+/** Differences, and names of each kind, that the answer lists; more are counted. */
+export const MOST_LISTED_VALUES = 500;
+
 export const askForChangeSetSchema = z.strictObject({ revisionId: z.uuid(), againstId: z.uuid() });
 
 const sha256 = z.string().regex(/^[0-9a-f]{64}$/);

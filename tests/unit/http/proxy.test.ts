@@ -1,6 +1,7 @@
+import { unstable_doesMiddlewareMatch as doesMatch } from "next/experimental/testing/server";
 import { NextRequest } from "next/server";
 import { describe, expect, test } from "vitest";
-import { proxy } from "@/proxy";
+import { config, proxy } from "@/proxy";
 
 const policyOf = (path: string, headers: Record<string, string> = {}) =>
   proxy(new NextRequest(`http://localhost:3000${path}`, { headers })).headers.get("content-security-policy");
@@ -25,4 +26,16 @@ describe("the content security policy", () => {
     expect(policies.join()).not.toContain("forged");
     expect(policies.join()).not.toContain("sandbox");
   });
+});
+
+// A body behind the proxy is cut after 10 MB without an error (Next's own bound), so what is larger must not pass it.
+test.each([
+  ["/api/uploads", false],
+  ["/api/uploads/1", false],
+  ["/api/revisions/1/values-check", false],
+  ["/api/revisions/1/values", true],
+  ["/api/revisions/1", true],
+  ["/revisions/1", true],
+])("the proxy stands in front of %s: %s", (url, stands) => {
+  expect(doesMatch({ config, nextConfig: {}, url })).toBe(stands);
 });

@@ -14,6 +14,7 @@ import {
 } from "@/app/(workspace)/revisions/actions";
 import { ChangeSetSection } from "@/components/features/change-sets/change-set-section";
 import { ChangesWatch } from "@/components/features/change-sets/changes-watch";
+import { CheckValuesFile } from "@/components/features/change-sets/check-values-file";
 import { viewFromParameters } from "@/components/features/change-sets/list/view-address";
 import { ValueDownloads } from "@/components/features/change-sets/value-downloads";
 import { OpenComparisonForm } from "@/components/features/comparisons/open-comparison-form";
@@ -117,10 +118,16 @@ export default async function RevisionPage({ params, searchParams }: PageProps<"
           actions={{ ask: askForChangesAction, look: lookedAtAction }}
           downloads={
             reasonAgainst("values.export") === null && (
-              <ValueDownloads
-                changeSetId={view.changes && view.changes.readBy !== "none" ? view.changeSetId : null}
-                revision={described?.state === "read" ? revision : null}
-              />
+              <>
+                <ValueDownloads
+                  changeSetId={view.changes && view.changes.readBy !== "none" ? view.changeSetId : null}
+                  revision={described?.state === "read" ? revision : null}
+                />
+                <CheckValuesFile
+                  revision={{ id: revision.id, number: revision.number }}
+                  described={described?.state ?? null}
+                />
+              </>
             )
           }
           watch={

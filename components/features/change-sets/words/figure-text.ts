@@ -61,7 +61,8 @@ export function listed(parts: readonly string[]): string {
   return `${parts.slice(0, -1).join(", ")} and ${parts.at(-1)}`;
 }
 
-const plainUnit = (unit: string) => (unit.trim() === "-" ? "" : unit);
+/** A unit without the dash that stands for none. */
+export const plainUnit = (unit: string) => (unit.trim() === "-" ? "" : unit);
 const plainSide = (side: ChangeSide | null): ChangeSide | null =>
   side && { ...side, axes: side.axes.map((axis) => ({ ...axis, unit: plainUnit(axis.unit) })) };
 

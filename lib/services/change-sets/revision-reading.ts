@@ -1,0 +1,31 @@
+import { selectImageReading } from "@/db/queries/image-readings";
+import { selectRevision } from "@/db/queries/revisions";
+import { READER_VERSION } from "@/lib/calibration/reader-version";
+import { ConflictError } from "@/lib/errors";
+import { authorise, type Ctx } from "@/lib/services/ctx";
+import { noRevision } from "@/lib/services/revisions/load";
+
+/**
+ * Where the values of a revision's image are kept, as its description reads them; for who may have values as a file.
+ * @throws ForbiddenError; NotFoundError; ConflictError `no_values` where no reading is there
+ */
+export async function findRevisionReading(
+  ctx: Ctx,
+  revisionId: string,
+): Promise<{ number: number; programmeId: string; blobSha256: string }> {
+  authorise(ctx, "values.export");
+  const { db, workspaceId } = ctx;
+  const revision = await selectRevision(db, { workspaceId, revisionId });
+  if (!revision) throw noRevision();
+  const { number, descriptionId, programmeId } = revision;
+  const key = { workspaceId, revisionId, readerVersion: READER_VERSION };
+  const kept = descriptionId === null ? null : await selectImageReading(db, { ...key, descriptionId });
+  if (!kept)
+    throw new ConflictError(
+      "no_values",
+      descriptionId === null
+        ? `R${number} has no description, so its values are not known. Add one on its page.`
+        : `The values of R${number} are not read yet. Wait for it, then try again.`,
+    );
+  return { number, programmeId, blobSha256: kept.blobSha256 };
+}
