@@ -1,6 +1,7 @@
 import { randomUUID } from "node:crypto";
 import { readdirSync } from "node:fs";
 import { afterAll, beforeAll, describe, expect } from "vitest";
+import { rateLimits } from "@/db/tables";
 import { ConflictError, ForbiddenError, NotFoundError, TooLargeError } from "@/lib/errors";
 import { checkValuesFile } from "@/lib/services/change-sets/check-values-file";
 import { exportRevisionValues } from "@/lib/services/change-sets/export";
@@ -105,5 +106,7 @@ describe("a values file against a revision", () => {
     await expect(check(bodyOf())).rejects.toMatchObject({ code: "empty_file" });
     await expect(check(bodyOf(":00000001FF"))).rejects.toMatchObject({ code: "file_damaged" });
     await expect(check(bodyOf("<html/>"))).rejects.toMatchObject({ code: "not_cdf" });
+    await tx.update(rateLimits).set({ count: 120 });
+    await expect(check(bodyOf("<MSRSW/>"))).rejects.toThrow("check values files at most 120 times an hour");
   });
 });
