@@ -60,7 +60,7 @@ export function CalibrationCard({ programmeId }: { programmeId: string }) {
   ] as const;
   return (
     <Card title="Calibration" level={2}>
-      <ul className="flex flex-col">
+      <ul className="-my-2 flex flex-col">
         {pages.map(([page, words]) => (
           <li key={page}>
             <Link

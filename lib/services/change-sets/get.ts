@@ -3,6 +3,7 @@ import { selectChangeSetOf, selectComparableRevisions } from "@/db/queries/chang
 import { selectImageCheck, selectImageReading } from "@/db/queries/image-readings";
 import { selectLookedAt } from "@/db/queries/looked-at";
 import { type RevisionRow, selectRevision, selectStanding } from "@/db/queries/revisions";
+import { withoutChecksums } from "@/lib/calibration/changes/uncovered/without-checksums";
 import { axisQuantities, linksInUse, suggestedLinks } from "@/lib/calibration/coverage/suggest-links";
 import { READER_VERSION } from "@/lib/calibration/reader-version";
 import { isReaderOnly, RELEASED_STATES } from "@/lib/policy/released";
@@ -64,6 +65,7 @@ type Compared = Pick<
   | "failure"
   | "changeSetId"
   | "changes"
+  | "checksumBytes"
   | "coverage"
   | "lookedAt"
   | "contradiction"
@@ -75,6 +77,7 @@ const NOTHING: Compared = {
   failure: null,
   changeSetId: null,
   changes: null,
+  checksumBytes: 0,
   coverage: { state: "not_asked", failure: null, result: null, moved: false },
   lookedAt: [],
   contradiction: null,
@@ -100,7 +103,10 @@ async function compared(
       failure: row?.failure ?? null,
       changeSetId: row?.id ?? null,
     };
-  const changes = row.result;
+  const { programmeId } = revision;
+  const kind = "checksum_regions" as const;
+  const { content: regions } = await selectSetting(db, { workspaceId, programmeId, kind });
+  const changes = withoutChecksums(row.result, regions);
   const coverage = await coverageNow(db, row);
   const looked = await selectLookedAt(db, { workspaceId, userId, revisionId: revision.id });
   const known = digestsOf(changes);
@@ -110,6 +116,7 @@ async function compared(
     failure: null,
     changeSetId: row.id,
     changes,
+    checksumBytes: row.result.uncoveredBytes - changes.uncoveredBytes,
     coverage: coverage.shown,
     lookedAt: looked.filter((digest) => known.has(digest)),
     contradiction: contradictionOf(changes, marks, revision),

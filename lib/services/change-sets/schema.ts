@@ -47,7 +47,10 @@ export interface RevisionChangesView {
   state: "ready" | "computing" | "failed" | "not_asked" | "nothing_to_compare";
   failure: string | null;
   changeSetId: string | null;
+  /** Stored values of declared checksums are not counted as bytes that nobody described, as at the gates. */
   changes: ChangeSet | null;
+  /** Bytes of such stored values that differ. */
+  checksumBytes: number;
   coverage: {
     /**
      * ready: for what counts now. computing: `result` may hold the one before. no_description: axes are not known. not_asked: nobody

@@ -71,6 +71,15 @@ function changeWarnings(
           },
         ]
       : []),
+    ...(view.checksumBytes > 0
+      ? [
+          {
+            tone: "plain" as const,
+            title: "The stored checksum changed with it",
+            text: `${counted(view.checksumBytes, "byte")} of declared checksum regions.`,
+          },
+        ]
+      : []),
     ...touched.map(({ mark, characteristics }) => ({
       tone: "caution" as const,
       to: "marks" as const,

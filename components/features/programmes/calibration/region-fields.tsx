@@ -36,8 +36,8 @@ export function RegionFields({ index, onRemove }: { index: number; onRemove: () 
       <div className="grid gap-3 sm:grid-cols-2 sm:items-end">
         <TextInput label="Name" required {...field("name")} />
         <Select label="Checksum" options={choices(ALGORITHM_WORDS)} {...field("algorithm")} />
-        <TextInput mono label="First address" required {...field("from")} />
-        <TextInput mono label="Last address" hint="It is inside." required {...field("to")} />
+        <TextInput mono label="First address" hint="Of the first byte." required {...field("from")} />
+        <TextInput mono label="Last address" hint="Of the last byte." required {...field("to")} />
         <TextInput mono label="Stored at" hint="Empty: it is not stored." {...field("storedAt")} />
         <Select label="Stored with" options={choices(ORDER_WORDS)} {...field("byteOrder")} />
         <TextInput mono label="Must be" hint="Empty: as stored." {...field("expected")} />

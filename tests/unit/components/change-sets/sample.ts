@@ -159,6 +159,7 @@ export const view = (parts: Partial<RevisionChangesView> = {}): RevisionChangesV
   failure: null,
   changeSetId: "44444444-4444-4444-8444-444444444444",
   changes: changeSet(),
+  checksumBytes: 0,
   coverage: { state: "no_runs", failure: null, result: null, moved: false },
   lookedAt: [],
   marks: [],

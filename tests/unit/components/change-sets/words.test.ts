@@ -174,6 +174,12 @@ describe("warnings", () => {
 
   it("say nothing where all is well, and whose description was used where one side has none", () => {
     expect(warningsOf(view())).toEqual([]);
+    const [checksum] = warningsOf(view({ checksumBytes: 4 }));
+    expect(checksum).toEqual({
+      tone: "plain",
+      title: "The stored checksum changed with it",
+      text: "4 bytes of declared checksum regions.",
+    });
     const [first] = warningsOf(view({ changes: changeSet({ readBy: "b" }) }));
     expect(first).toMatchObject({ tone: "plain", title: "Read by the description of R3" });
   });
