@@ -1,5 +1,8 @@
+"use client";
+
 import { memo } from "react";
 import type { HeatStep } from "@/components/charts/heat/heat-ramp";
+import { useStartAtChange } from "@/components/charts/heat/use-start-at-change";
 import { cn } from "@/lib/cn";
 
 export interface HeatAxis {
@@ -44,12 +47,14 @@ const headCell = "border-line bg-surface px-2 py-1.5 text-right font-medium text
 
 /**
  * A two-axis table in its own shape: axis points on both edges that stay in sight, a number in every cell, ink by the
- * size of its difference. It scrolls inside itself; nothing in it needs script.
+ * size of its difference. It scrolls inside itself, and opens where the changes begin.
  */
 export function HeatTable({ caption, x, y, rowHead = "", cells }: HeatTableProps) {
+  const scroller = useStartAtChange(cells);
   return (
     // biome-ignore lint/a11y/useSemanticElements: a named scroller around a table, not a set of fields
     <div
+      ref={scroller}
       role="group"
       aria-label={caption}
       // biome-ignore lint/a11y/noNoninteractiveTabindex: what scrolls must be reachable by key (WCAG 2.1.1)

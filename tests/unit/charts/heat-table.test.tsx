@@ -3,6 +3,7 @@ import { renderToStaticMarkup } from "react-dom/server";
 import { afterEach, describe, expect, it } from "vitest";
 import { heatStep } from "@/components/charts/heat/heat-ramp";
 import { HeatTable, type HeatTableProps } from "@/components/charts/heat/heat-table";
+import { firstChange } from "@/components/charts/heat/use-start-at-change";
 
 afterEach(cleanup);
 
@@ -61,5 +62,20 @@ describe("HeatTable", () => {
   it("names its only row where there is no second axis", () => {
     render(<HeatTable {...TABLE} y={null} rowHead="after − before" cells={TABLE.cells.slice(0, 1)} />);
     expect(screen.getAllByRole("rowheader").map((head) => head.textContent)).toEqual(["after − before"]);
+  });
+});
+
+describe("firstChange", () => {
+  const plain = { text: "·", step: "heat-0" } as const;
+  it("is the first row and the first column that hold a change, whichever cells they meet in", () => {
+    const rise = { text: "+1", step: "heat-b1" } as const;
+    expect(
+      firstChange([
+        [plain, plain, plain],
+        [plain, plain, rise],
+        [plain, rise, plain],
+      ]),
+    ).toEqual({ row: 1, column: 1 });
+    expect(firstChange([[plain]])).toBeNull();
   });
 });
