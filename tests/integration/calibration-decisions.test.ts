@@ -197,6 +197,21 @@ describe("a promotion", () => {
     expect(entries.map(({ event }) => event)).toContain("decision.agreed");
   });
 
+  test("takes one as well where bytes without a description may belong to what is marked", async ({ tx }) => {
+    const scene = await candidate(tx, { image: { gain: 90, spare: 1 } });
+    const { lead, otherLead, after } = scene;
+    await doJobs(scene);
+    const waivers = [{ gateId: "touched", reason: "for the sake of this very test" }];
+    const bare = { ...(await seen(lead, after)), waivers };
+    await expect(promoteRevision(lead, bare)).rejects.toThrow(/bytes without a description/);
+    await agreeAsSecondLead(otherLead, await agreeing(otherLead, after));
+    const { decisionId } = await promoteRevision(lead, bare);
+    expect((await getRecord(lead, decisionId)).decision.evidence.calibration).toMatchObject({
+      touched: [],
+      secondLead: { id: otherLead.userId },
+    });
+  });
+
   test("needs neither off the road, nor where nothing marked is touched", async ({ tx }) => {
     const closed = await candidate(tx, { use: "closed_course" });
     const plain = await candidate(tx, { image: { gain: 90 }, declares: false });

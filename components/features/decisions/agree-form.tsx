@@ -17,6 +17,7 @@ export interface AgreeFormProps {
   revisionId: string;
   calibration: {
     touched: React.ComponentProps<typeof TouchedMarks>["touched"];
+    untold: boolean;
     touchedSha256: string | null;
     needsApproval: boolean;
     agreements: readonly { leadName: string; reason: string }[];
@@ -27,11 +28,16 @@ export interface AgreeFormProps {
 
 /** What of the changes is marked as emission- or safety-relevant, who has agreed to it, and where a second lead agrees. */
 export function AgreeForm({ revisionId, calibration, action }: AgreeFormProps) {
-  const { touched, touchedSha256, needsApproval, agreements, agreeBlocked } = calibration;
+  const { touched, untold, touchedSha256, needsApproval, agreements, agreeBlocked } = calibration;
   const [state, send, pending] = useActionState(action, null);
   return (
     <div className="flex flex-col gap-4">
-      <TouchedMarks touched={touched} />
+      {touched.length > 0 && <TouchedMarks touched={touched} />}
+      {untold && (
+        <p className="text-15">
+          Bytes that no description covers are changed. Whether they belong to something marked can't be told.
+        </p>
+      )}
       {agreements.map(({ leadName, reason }) => (
         <p key={leadName} className="text-15">
           {leadName} agreed: {reason}

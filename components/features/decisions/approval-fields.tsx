@@ -14,7 +14,7 @@ export function ApprovalFields({ agreedBy }: { agreedBy: readonly string[] }) {
       <p className="text-15">
         {agreedBy.length > 0
           ? `${agreedBy.join(" and ")} agreed as second lead. A document may be named as well.`
-          : "This changes what is marked as emission- or safety-relevant. Name the document that approves it, or have a second lead agree first."}
+          : "This changes what is or may be marked as emission- or safety-relevant. Name the document that approves it, or have a second lead agree first."}
       </p>
       <TextInput
         label="Approval document"

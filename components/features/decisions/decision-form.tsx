@@ -27,7 +27,7 @@ export interface DecisionFormProps {
   openGates: readonly GateResult[];
   /** Why each step can't be taken by this person now; null when it can. */
   blocked: { promote: string | null; sendBack: string | null; waive: string | null };
-  /** Marked functions are changed for the road: a document or a second lead is needed. */
+  /** Marked functions are or may be changed for the road: a document or a second lead is needed. */
   needsApproval: boolean;
   /** Names of the leads whose agreement counts. */
   agreedBy: readonly string[];

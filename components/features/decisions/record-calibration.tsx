@@ -17,6 +17,13 @@ export interface RecordCalibrationProps {
   };
 }
 
+/** Bytes without a description may belong to anything. */
+function noneTouched({ readBy, uncoveredBytes }: RecordCalibrationProps["calibration"]): string {
+  return readBy === "none" || uncoveredBytes > 0
+    ? "nothing described is touched; what no description covers can't be told"
+    : "nothing touched";
+}
+
 /** What changed in the values when it was decided, what of it is marked, and by whose word it was released for the road. */
 export function RecordCalibration({ calibration }: RecordCalibrationProps) {
   const { touched, approval, secondLead, coverageSha256, readBy } = calibration;
@@ -35,7 +42,7 @@ export function RecordCalibration({ calibration }: RecordCalibrationProps) {
     },
     {
       term: "Marked as emission- or safety-relevant",
-      description: touched.length === 0 ? "nothing touched" : <TouchedMarks touched={touched} />,
+      description: touched.length > 0 ? <TouchedMarks touched={touched} /> : noneTouched(calibration),
     },
     ...(approval
       ? [{ term: "Approval document", description: `${approval.document}, issued by ${approval.issuer}` }]

@@ -13,12 +13,16 @@ const SUBJECT: Record<DecisionRow["kind"], (revision: string, from: string) => s
   roll_back: (revision, from) => `Rolled back from ${from}: ${revision} stands again`,
 };
 
-/** By whose word marked functions were released; nothing where none are touched. */
+/** By whose word marked functions were released; nothing where none are touched and nobody gave it. */
 function releasedWords(calibration: DecisionRow["evidence"]["calibration"]): string[] {
-  if (!calibration || calibration.touched.length === 0) return [];
+  if (!calibration) return [];
   const { touched, approval, secondLead } = calibration;
   return [
-    `Touches what is marked: ${touched.map(({ name, relevance }) => `${name} (${relevance})`).join(", ")}.`,
+    ...(touched.length > 0
+      ? [
+          `Touches what is marked: ${touched.map(({ name, relevance }) => `${name} (${relevance})`).join(", ")}.`,
+        ]
+      : []),
     ...(approval ? [`Approval document: ${approval.document}, issued by ${approval.issuer}.`] : []),
     ...(secondLead ? [`Second lead: ${secondLead.name}. ${secondLead.reason}`] : []),
   ];

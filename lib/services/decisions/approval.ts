@@ -11,9 +11,10 @@ import type { GateDesk } from "@/lib/services/gates/status";
 type Approved = Pick<EvidenceCalibration, "approval" | "secondLead">;
 type Concerned = Pick<RevisionRow, "id" | "authorId" | "submitterId">;
 
-/** Whether promoting takes a named document or a second lead: something marked is touched, and the revision is meant for the road. */
+/** Whether promoting takes a named document or a second lead: the revision is meant for the road, and something marked is or may be touched. */
 export function needsApproval(calibration: CalibrationDesk | null): boolean {
-  return calibration?.evidence.intendedUse === "road" && calibration.touched.length > 0;
+  if (calibration?.evidence.intendedUse !== "road") return false;
+  return calibration.touched.length > 0 || calibration.untold;
 }
 
 /**
@@ -73,7 +74,7 @@ export async function requireApproval(
   if (!agreement && approval === null)
     throw new InvalidInputError(
       "approval_missing",
-      `R${revision.number} is meant for the road and changes what is marked as emission- or safety-relevant. Name the approval document and who issued it, or have a second lead agree.`,
+      `R${revision.number} is meant for the road and changes ${calibration?.touched.length ? "what" : "bytes without a description, which may belong to what"} is marked as emission- or safety-relevant. Name the approval document and who issued it, or have a second lead agree.`,
     );
   const secondLead = agreement
     ? {

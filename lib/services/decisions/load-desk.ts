@@ -18,7 +18,9 @@ export interface DeskCalibration {
   seenSha256: string | null;
   /** Marked functions and characteristics that are touched, with what of them changed. */
   touched: { name: string; relevance: "emission" | "safety"; note: string; characteristics: string[] }[];
-  /** What a second lead agrees to; null while nothing marked is touched. */
+  /** Something is marked, and changed bytes that no description covers may belong to it. */
+  untold: boolean;
+  /** What a second lead agrees to; null where nothing marked is or may be touched. */
   touchedSha256: string | null;
   /** Promoting takes a named document or a second lead. */
   needsApproval: boolean;
@@ -89,6 +91,7 @@ async function deskCalibration(
   return {
     seenSha256: desk?.seenSha256 ?? null,
     touched,
+    untold: desk?.untold ?? false,
     touchedSha256,
     needsApproval: needsApproval(desk),
     agreements: counting.map(({ leadName, createdAt: at, reason }) => ({ leadName, at, reason })),

@@ -24,9 +24,11 @@ export interface CalibrationDesk {
   coverageSha256: string | null;
   /** Marked functions and characteristics that the change set touches. */
   touched: TouchedMark[];
+  /** Something is marked, and changed bytes that no description covers may belong to it. */
+  untold: boolean;
   /** Digest of all of the above: what a lead saw; null while nothing of it is known. */
   seenSha256: string | null;
-  /** Digest of the change set and of what in it is marked: what a second lead agrees to; null while nothing marked is touched. */
+  /** Digest of the change set and of what in it is or may be marked: what a second lead agrees to; null where nothing is. */
   touchedSha256: string | null;
 }
 
@@ -43,6 +45,12 @@ async function pair(
 function coverageStateOf(now: CoverageNow | null): CalibrationEvidence["coverageState"] {
   const state = now?.shown.state;
   return state === "ready" || state === "no_runs" ? state : "computing";
+}
+
+/** Whether changed bytes that no description covers may belong to something marked. */
+function isUntold({ fromStanding, marks }: CalibrationEvidence): boolean {
+  if (!fromStanding || fromStanding.identical || marks.length === 0) return false;
+  return fromStanding.readBy === "none" || fromStanding.uncoveredBytes > 0;
 }
 
 /** A change set without the stored values of checksums that the programme has declared. */
@@ -98,6 +106,7 @@ export async function calibrationDesk(
     intendedUse,
   };
   const touched = standing?.result ? touchedMarks(standing.result, marks.content) : [];
+  const untold = isUntold(evidence);
   const changeSet =
     standing?.resultSha256 != null
       ? { id: standing.id, inputSha256: standing.inputSha256, resultSha256: standing.resultSha256 }
@@ -111,12 +120,16 @@ export async function calibrationDesk(
     changeSet,
     coverageSha256,
     touched,
+    untold,
     seenSha256: isKnown
       ? digestOf({
           ...{ changeSet, parentSha256, coverageSha256, integrity, marks: marks.content },
           regionsVersion: regions.version,
         })
       : null,
-    touchedSha256: changeSet && touched.length > 0 ? digestOf({ changeSet, touched }) : null,
+    touchedSha256:
+      changeSet && (touched.length > 0 || untold)
+        ? digestOf({ changeSet, touched, ...(untold && { untold }) })
+        : null,
   };
 }

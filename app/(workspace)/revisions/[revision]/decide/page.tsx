@@ -136,7 +136,7 @@ export default async function DecidePage({ params }: PageProps<"/revisions/[revi
               action={decideAction}
             />
           </Card>
-          {calibration.touched.length > 0 && (
+          {(calibration.touched.length > 0 || calibration.untold) && (
             <Card
               title="Emission- or safety-relevant"
               description="What of the changes is marked in this programme."
