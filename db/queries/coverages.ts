@@ -69,6 +69,21 @@ export async function closeCoverage(
     .where(and(at(key), ne(coverages.state, "ready")));
 }
 
+/** Closes what waits for other runs or links than those that count now: nothing would bring it. openCoverage opens it again when they count. */
+export async function closeMovedCoverages(tx: Queryable, key: Key): Promise<void> {
+  await tx
+    .update(coverages)
+    .set({ state: "failed", failure: "Runs or links changed meanwhile. The coverage is worked out anew." })
+    .where(
+      and(
+        eq(coverages.workspaceId, key.workspaceId),
+        eq(coverages.changeSetId, key.changeSetId),
+        ne(coverages.inputSha256, key.inputSha256),
+        eq(coverages.state, "computing"),
+      ),
+    );
+}
+
 /** Usable runs of a revision, of any kind and also of null tests, with the key that each log is read with, in order of number. */
 export async function selectRunsForCoverage(
   db: Queryable,

@@ -1,5 +1,6 @@
 import { afterAll, beforeAll, describe, expect } from "vitest";
 import type { Transaction } from "@/db/client";
+import { coverages } from "@/db/tables";
 import { saveAxisLinks } from "@/lib/services/calibration-settings/save-links";
 import { askForChangeSet } from "@/lib/services/change-sets/ask";
 import { getRevisionChanges } from "@/lib/services/change-sets/get";
@@ -96,6 +97,25 @@ describe("coverage", () => {
       moved: false,
       result: { changedCells: 2, changedVisited: 0, notTold: [{ name: "advance", code: "not_recorded" }] },
     });
+  });
+
+  test("that waited for runs or links of before waits no longer, and is opened again when they count again", async ({
+    tx,
+  }) => {
+    const { scene, after, attach } = await scenery(tx);
+    await attach(0);
+    await doJobs(scene);
+    const { programmeId, calibrator } = scene;
+    const link = (channel: string) => [{ quantity: "engine_speed", channel, by: "hand" as const }];
+    for (const [basedOnVersion, channel] of ["first", "second"].entries())
+      await saveAxisLinks(calibrator, { programmeId, basedOnVersion, links: link(channel) });
+    await doJobs(scene);
+    const states = async () => (await tx.select().from(coverages)).map(({ state }) => state).sort();
+    expect(await states()).toEqual(["failed", "ready", "ready"]);
+    expect((await getRevisionChanges(calibrator, after)).coverage.state).toBe("ready");
+    await saveAxisLinks(calibrator, { programmeId, basedOnVersion: 2, links: link("first") });
+    await doJobs(scene);
+    expect(await states()).toEqual(["ready", "ready", "ready"]);
   });
 
   test("of a pair that nobody asked for is worked out when somebody does", async ({ tx }) => {

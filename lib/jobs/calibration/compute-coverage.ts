@@ -1,5 +1,5 @@
 import { type ChangeSetRow, selectChangeSet } from "@/db/queries/change-sets";
-import { closeCoverage, openCoverage, selectCoverage } from "@/db/queries/coverages";
+import { closeCoverage, closeMovedCoverages, openCoverage, selectCoverage } from "@/db/queries/coverages";
 import type { FoundColumn } from "@/db/schema/change-sets";
 import { coverageOf } from "@/lib/calibration/coverage/coverage";
 import { linksInUse } from "@/lib/calibration/coverage/suggest-links";
@@ -60,8 +60,9 @@ export async function computeCoverage(system: System, job: CoverageJob): Promise
   if (!changeSet?.result) return;
   const { result } = changeSet;
   const input = await coverageInput(db, changeSet);
-  if (input.runs.length === 0) return;
   const key = { ...job, inputSha256: input.inputSha256 };
+  await closeMovedCoverages(db, key);
+  if (input.runs.length === 0) return;
   if (!(await openCoverage(db, key))) return;
   try {
     await closeCoverage(db, key, await compute(system, { ...changeSet, result }, input));
