@@ -30,8 +30,8 @@ export async function insertImageReading(
 }
 
 /**
- * Revisions whose image this version of the reader has not read by their description, or that was never checked although something may
- * still be decided on it; without a job of their own (hasOwnJob), newest first.
+ * Revisions whose image this version of the reader has not read by their description, or that was never checked by the regions that
+ * count now although something may still be decided on it; without a job of their own (hasOwnJob), newest first.
  */
 export async function selectUnreadImages(
   db: Queryable,
@@ -45,7 +45,8 @@ export async function selectUnreadImages(
         (d.state = 'read' and not exists (select from image_readings i where i.revision_id = r.id
           and i.description_id = r.description_id and i.reader_version = ${readerVersion}))
         or (r.state in ('draft', 'validating', 'in_review', 'promoted') and r.created_at < now() - interval '10 minutes'
-          and not exists (select from image_checks c where c.revision_id = r.id)))
+          and not exists (select from image_checks c where c.revision_id = r.id and c.regions_version = coalesce(
+            (select max(version) from calibration_settings s where s.programme_id = r.programme_id and s.kind = 'checksum_regions'), 0))))
       and not ${hasOwnJob("read-image", "revisionId", sql`r.id`)}
     order by r.created_at desc limit ${most}`);
   return rows;

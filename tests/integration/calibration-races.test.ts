@@ -177,6 +177,9 @@ describe("in the background", () => {
     await doJobs(scene);
     expect(await getRevisionChanges(scene.lead, b)).toMatchObject({ state: "ready", integrity: [] });
     expect(await renewOutdated(db)).toBe(0);
+    // A check by regions that do not count any more is none.
+    await db.update(imageChecks).set({ regionsVersion: 7 });
+    expect(await renewOutdated(db)).toBe(2);
   });
 
   test("the sweep leaves readings alone: they are kept like every other file", async ({ database }) => {

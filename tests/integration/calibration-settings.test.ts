@@ -7,6 +7,7 @@ import { saveAxisLinks } from "@/lib/services/calibration-settings/save-links";
 import { saveRelevanceMarks } from "@/lib/services/calibration-settings/save-marks";
 import { saveChecksumRegions } from "@/lib/services/calibration-settings/save-regions";
 import { getRevisionChanges } from "@/lib/services/change-sets/get";
+import { bringRevisionBack, setRevisionAside } from "@/lib/services/revisions/set-aside";
 import { addSmallRevision, createCalibrationScene, doJobs } from "@/tests/support/calibration-scene";
 import { test } from "@/tests/support/database";
 import { AT, smallBytes } from "@/tests/support/small-calibration";
@@ -138,5 +139,22 @@ describe("settings of a calibration", () => {
     expect((await getRevisionChanges(lead, revisionId)).integrity).toMatchObject([
       { name: "values", state: "broken" },
     ]);
+  });
+
+  test("are held against a draft that comes back after they were saved", async ({ tx }) => {
+    const scene = await createCalibrationScene(tx, files.store);
+    const { calibrator, lead, programmeId } = scene;
+    const revisionId = await addSmallRevision(scene, {});
+    await doJobs(scene);
+    const step = { revisionId, reason: "the wrong file" };
+    await setRevisionAside(calibrator, step);
+    await saveChecksumRegions(calibrator, {
+      programmeId,
+      basedOnVersion: 0,
+      regions: [region(byteSum() + 1)],
+    });
+    await bringRevisionBack(calibrator, { ...step, reason: "the right file after all" });
+    await doJobs(scene);
+    expect((await getRevisionChanges(lead, revisionId)).integrity).toMatchObject([{ state: "broken" }]);
   });
 });

@@ -1,6 +1,7 @@
 import type { z } from "zod";
 import { selectRunsOfRevision, updateRevision } from "@/db/queries/revisions";
 import { ConflictError } from "@/lib/errors";
+import { refreshChangeSetsOf } from "@/lib/services/change-sets/refresh";
 import { authorise, type Ctx, withTransaction } from "@/lib/services/ctx";
 import { appendLedger } from "@/lib/services/ledger/append";
 import { loadRevisionForUpdate } from "@/lib/services/revisions/load";
@@ -25,7 +26,7 @@ export async function setRevisionAside(ctx: Ctx, input: z.input<typeof stepWithR
   });
 }
 
-/** Brings a draft that was set aside back. */
+/** Brings a draft that was set aside back; what was settled or decided meanwhile is held against it. */
 export async function bringRevisionBack(ctx: Ctx, input: z.input<typeof stepWithReason>): Promise<void> {
   const { revisionId, reason } = stepWithReason.parse(input);
   await withTransaction(ctx, async (tx, inner) => {
@@ -46,5 +47,6 @@ export async function bringRevisionBack(ctx: Ctx, input: z.input<typeof stepWith
       programmeId: row.programmeId,
       data: { number: row.number, reason },
     });
+    await refreshChangeSetsOf(tx, inner, { revisionId });
   });
 }
