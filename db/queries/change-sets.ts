@@ -28,7 +28,7 @@ export async function selectChangeSetOf(db: Queryable, key: InputKey): Promise<C
   return row ?? null;
 }
 
-/** As selectChangeSet, without what came out. */
+/** As selectChangeSet, of what came out only by whose description it was read; the rest may be large. */
 export async function selectChangeSetHead(db: Queryable, key: Key) {
   const [row] = await db
     .select({
@@ -39,10 +39,25 @@ export async function selectChangeSetHead(db: Queryable, key: Key) {
       revisionBId: changeSets.revisionBId,
       inputSha256: changeSets.inputSha256,
       state: changeSets.state,
+      readBy: sql<NonNullable<ChangeSetRow["result"]>["readBy"] | null>`${changeSets.result} ->> 'readBy'`,
     })
     .from(changeSets)
     .where(at(key));
   return row ?? null;
+}
+
+/** Digests of everything in a finished change set that can be looked at, and whose changes they are; null where there is none. */
+export async function selectChangeDigests(
+  db: Queryable,
+  { workspaceId, changeSetId }: Key,
+): Promise<{ revisionBId: string; digests: string[] } | null> {
+  const { rows } = await db.execute<{ revisionBId: string; digests: string[] }>(sql`
+    select revision_b_id as "revisionBId", array(
+      select digest #>> '{}' from jsonb_path_query(result, '$.characteristics[*].digest') digest
+      union all select digest #>> '{}' from jsonb_path_query(result, '$.uncovered[*].digest') digest) as digests
+    from change_sets
+    where workspace_id = ${workspaceId} and id = ${changeSetId} and state = 'ready'`);
+  return rows[0] ?? null;
 }
 
 /** Opens the row of exact inputs; one that failed is opened again, a finished one stays. @returns its id and whether work is left */

@@ -17,6 +17,15 @@ export async function selectCoverage(db: Queryable, key: Key): Promise<CoverageR
   return row ?? null;
 }
 
+/** As selectCoverage, how far it is and nothing else. */
+export async function selectCoverageState(
+  db: Queryable,
+  key: Key,
+): Promise<Pick<CoverageRow, "state"> | null> {
+  const [row] = await db.select({ state: coverages.state }).from(coverages).where(at(key));
+  return row ?? null;
+}
+
 /** The newest finished coverage of a change set, of whatever runs and links. */
 export async function selectNewestCoverage(
   db: Queryable,

@@ -4,6 +4,7 @@ import { coverages } from "@/db/tables";
 import { saveAxisLinks } from "@/lib/services/calibration-settings/save-links";
 import { askForChangeSet } from "@/lib/services/change-sets/ask";
 import { getRevisionChanges } from "@/lib/services/change-sets/get";
+import { getChangeSetState } from "@/lib/services/change-sets/state";
 import { confirmChecklist } from "@/lib/services/road-days/confirm-checklist";
 import { createRoadDay } from "@/lib/services/road-days/create";
 import { CHECKLIST } from "@/lib/services/road-days/schema";
@@ -44,7 +45,13 @@ async function scenery(tx: Transaction) {
 describe("coverage", () => {
   test("follows the usable runs: none, computed, out of date, computed anew", async ({ tx }) => {
     const { scene, after, attach } = await scenery(tx);
-    const coverage = async () => (await getRevisionChanges(scene.lead, after)).coverage;
+    const coverage = async () => {
+      const shown = await getRevisionChanges(scene.lead, after);
+      // What the page polls says the same.
+      const polled = await getChangeSetState(scene.lead, shown.changeSetId ?? "");
+      expect(polled).toEqual({ state: shown.state, coverage: shown.coverage.state });
+      return shown.coverage;
+    };
     expect(await coverage()).toMatchObject({ state: "no_runs", result: null });
     const { runId } = await attach(0);
     expect(await coverage()).toMatchObject({ state: "no_runs" });

@@ -1,5 +1,5 @@
 import type { z } from "zod";
-import { selectChangeSet, selectReadyChangeSetsOf } from "@/db/queries/change-sets";
+import { selectChangeSetHead } from "@/db/queries/change-sets";
 import { loadSides } from "@/lib/services/change-sets/pair";
 import { openPair } from "@/lib/services/change-sets/refresh";
 import { openCoverageOf } from "@/lib/services/change-sets/refresh-coverage";
@@ -20,12 +20,8 @@ export async function askForChangeSet(
   const { workspaceId } = ctx;
   return await withTransaction(ctx, async (tx, inner) => {
     const changeSetId = await openPair(tx, inner, sides);
-    const row = await selectChangeSet(tx, { workspaceId, changeSetId });
-    if (row?.result && row.result.readBy !== "none") {
-      const ready = await selectReadyChangeSetsOf(tx, { workspaceId, revisionId: sides.b.id });
-      const own = ready.find(({ id }) => id === changeSetId);
-      if (own) await openCoverageOf(tx, inner, own);
-    }
+    const row = await selectChangeSetHead(tx, { workspaceId, changeSetId });
+    if (row?.state === "ready" && row.readBy !== "none") await openCoverageOf(tx, inner, row);
     return { changeSetId };
   });
 }

@@ -1,6 +1,11 @@
 import type { Queryable } from "@/db/client";
 import type { ChangeSetRow } from "@/db/queries/change-sets";
-import { type CoverageRow, selectCoverage, selectNewestCoverage } from "@/db/queries/coverages";
+import {
+  type CoverageRow,
+  selectCoverage,
+  selectCoverageState,
+  selectNewestCoverage,
+} from "@/db/queries/coverages";
 import type { FoundColumn } from "@/db/schema/change-sets";
 import { type CoverageInput, coverageInput } from "@/lib/services/change-sets/coverage-input";
 import type { RevisionChangesView } from "@/lib/services/change-sets/schema";
@@ -9,6 +14,8 @@ type Ready = Pick<
   ChangeSetRow,
   "id" | "workspaceId" | "programmeId" | "revisionBId" | "inputSha256" | "result"
 >;
+
+type CoverageState = RevisionChangesView["coverage"]["state"];
 
 /** How the coverage of a change set stands, and what it rests on. */
 export interface CoverageNow {
@@ -40,11 +47,22 @@ export async function coverageNow(db: Queryable, changeSet: Ready): Promise<Cove
   };
 }
 
+/** How far the coverage of a finished change set is at this moment, without reading what came out; asks no policy. */
+export async function coverageStateNow(
+  db: Queryable,
+  changeSet: Omit<Ready, "result"> & { readBy: string | null },
+): Promise<CoverageState> {
+  const { workspaceId, id: changeSetId, readBy } = changeSet;
+  const input = await coverageInput(db, changeSet);
+  const now = await selectCoverageState(db, { workspaceId, changeSetId, inputSha256: input.inputSha256 });
+  return stateOf(readBy === "none", input, now);
+}
+
 function stateOf(
   isUndescribed: boolean,
   { runs }: CoverageInput,
-  now: CoverageRow | null,
-): RevisionChangesView["coverage"]["state"] {
+  now: Pick<CoverageRow, "state"> | null,
+): CoverageState {
   if (isUndescribed) return "no_description";
   if (runs.length === 0) return "no_runs";
   return now?.state ?? "not_asked";

@@ -1,4 +1,4 @@
-import { type ChangeSetRow, selectChangeSet } from "@/db/queries/change-sets";
+import { selectChangeDigests } from "@/db/queries/change-sets";
 import { deleteLookedAt, insertLookedAt } from "@/db/queries/looked-at";
 import type { ChangeSet } from "@/lib/calibration/changes/types";
 import { ConflictError, NotFoundError } from "@/lib/errors";
@@ -20,10 +20,10 @@ export async function setLookedAt(ctx: Ctx, input: SetLookedAt): Promise<void> {
   const { revisionId, changeSetId, digests, looked } = setLookedAtSchema.parse(input);
   const { workspaceId, userId } = ctx;
   await withTransaction(ctx, async (tx) => {
-    const row: ChangeSetRow | null = await selectChangeSet(tx, { workspaceId, changeSetId });
-    if (row?.revisionBId !== revisionId || !row.result)
+    const row = await selectChangeDigests(tx, { workspaceId, changeSetId });
+    if (row?.revisionBId !== revisionId)
       throw new NotFoundError("no_change_set", "There is no such change set.");
-    const known = digestsOf(row.result);
+    const known = new Set(row.digests);
     if (!digests.every((digest) => known.has(digest)))
       throw new ConflictError("changes_moved", "The changes are other ones than you saw. Reload the page.");
     const own = { workspaceId, userId, revisionId };
