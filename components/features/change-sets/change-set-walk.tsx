@@ -77,7 +77,7 @@ export function ChangeSetWalk({ view, asked, mayLook }: ChangeSetWalkProps) {
       <div className="flex flex-wrap items-center justify-between gap-x-4 gap-y-2">
         <OrderLinks asked={asked} revisionId={revision.id} />
         {mayLook && <LookedAtCount items={items.map(({ digests }) => digests)} />}
-        <ChangeKeys items={items} current={at} />
+        <ChangeKeys items={items} current={at} mayLook={mayLook} />
       </div>
       <div className="grid items-start gap-4 lg:grid-cols-[minmax(17rem,22rem)_minmax(0,1fr)]">
         <nav aria-label="Changes" className="rounded border border-line bg-surface">

@@ -22,6 +22,8 @@ export interface ChangeKeysProps {
   items: readonly WalkItem[];
   /** Place of the opened one; -1: none of them. */
   current: number;
+  /** Whether this person keeps marks; without, there is no key for them. */
+  mayLook: boolean;
 }
 
 const KEYS: readonly [string, string][] = [
@@ -47,7 +49,7 @@ function isTaken(event: KeyboardEvent): boolean {
 }
 
 /** Previous and next with their keys, a live region that speaks where one is, and the list of keys. */
-export function ChangeKeys({ items, current }: ChangeKeysProps) {
+export function ChangeKeys({ items, current, mayLook }: ChangeKeysProps) {
   const router = useRouter();
   const state = useLookedAt();
   const [isOpen, setOpen] = useState(false);
@@ -87,17 +89,22 @@ export function ChangeKeys({ items, current }: ChangeKeysProps) {
 
   const toggle = useCallback(() => {
     const digests = items[current]?.digests;
-    if (!digests || !state) return;
+    if (!digests || !state || !mayLook) return;
     const isLooked = digests.every((digest) => state.looked.has(digest));
     state.mark(digests, !isLooked);
     setSpoken(isLooked ? "No longer marked as looked at." : "Marked as looked at.");
-  }, [items, current, state]);
+  }, [items, current, state, mayLook]);
 
   useEffect(() => {
     const onKey = (event: KeyboardEvent) => {
       if (isTaken(event)) return;
-      const acts: Record<string, () => void> = { n: () => go(1), p: () => go(-1), l: toggle };
-      const act = event.key === "?" ? () => setOpen(true) : isOn ? acts[event.key] : undefined;
+      const acts: Record<string, () => void> = {
+        n: () => go(1),
+        p: () => go(-1),
+        l: toggle,
+        "?": () => setOpen(true),
+      };
+      const act = isOn ? acts[event.key] : undefined;
       if (!act) return;
       event.preventDefault();
       act();
@@ -129,7 +136,7 @@ export function ChangeKeys({ items, current }: ChangeKeysProps) {
         }
       >
         <dl className="grid grid-cols-[4rem_1fr] gap-y-2 text-15">
-          {KEYS.map(([key, words]) => (
+          {KEYS.filter(([key]) => mayLook || key !== "l").map(([key, words]) => (
             <div key={key} className="contents">
               <dt>
                 <kbd className="tabular rounded border border-edge px-2 py-0.5">{key}</kbd>

@@ -173,7 +173,7 @@ describe("the keys", () => {
     expect(push).not.toHaveBeenCalled();
   });
 
-  it("can be switched off on this device; the list of keys stays", () => {
+  it("can all be switched off on this device (WCAG 2.1.4); the button for their list stays", () => {
     render(section(withBytes()));
     press("?");
     fireEvent.click(screen.getByLabelText("Use single keys on this device"));
@@ -185,7 +185,24 @@ describe("the keys", () => {
     press("n");
     expect(push).not.toHaveBeenCalled();
     press("?");
+    expect(screen.queryByRole("dialog")).toBeNull();
+    fireEvent.click(screen.getByRole("button", { name: "Keys" }));
     expect(screen.getByRole("dialog", { name: "Keys" })).toBeTruthy();
+  });
+
+  it("mark nothing for who keeps no marks, and are not listed for them", () => {
+    look.mockClear();
+    render(
+      <ChangeSetSection
+        {...section(withBytes()).props}
+        refused={{ ask: null, look: "Readers keep no marks." }}
+      />,
+    );
+    press("l");
+    expect(look).not.toHaveBeenCalled();
+    expect(screen.queryByText(/arked as looked at/)).toBeNull();
+    press("?");
+    expect(screen.getByRole("dialog", { name: "Keys" }).textContent).not.toMatch(/looked at/);
   });
 });
 
