@@ -12,12 +12,11 @@ export interface LeastSquaresFit {
   df: number;
 }
 
-/** What is left of a column of length 1 beside the ones before it; above this, one solution is exact to rounding. */
+/** What is left of a column beside the ones before it, as a share of its length; above this, one solution is exact to rounding. */
 const WELL_CONDITIONED = 0.1;
-const leastOf = (diagonal: Float64Array) => diagonal.reduce((least, d) => Math.min(least, Math.abs(d)), 1);
 
 /**
- * Least squares by Householder QR of column-scaled X (`rows` × `columns`, row-major), with one step of iterative
+ * Least squares by Householder QR of X (`rows` × `columns`, row-major), with one step of iterative
  * refinement unless the columns are well apart. Columns that are (nearly) dependent raise InvalidInputError `rank_deficient` naming the column.
  * No intercept is added. O(rows · columns²). Source: Golub and Van Loan, Matrix Computations, 5.3.
  */
@@ -26,21 +25,19 @@ export function leastSquares(x: Float64Array, y: Float64Array, columns: number):
   if (x.length !== rows * columns || rows < columns) {
     throw new InvalidInputError("too_few_rows", `${rows} rows can't fit ${columns} coefficients.`);
   }
-  // Column after column, each scaled to length 1: the inner loops run over neighbours.
+  // Column after column: the inner loops run over neighbours.
   const q = new Float64Array(x.length);
-  for (let i = 0, at = 0; i < rows; i++) for (let j = 0; j < columns; j++) q[j * rows + i] = x[at++];
-  const scale = new Float64Array(columns);
+  const length = new Float64Array(columns);
   for (let j = 0; j < columns; j++) {
     const column = q.subarray(j * rows, (j + 1) * rows);
-    scale[j] = Math.sqrt(dot(column, column, 0)) || 1;
-    const factor = 1 / scale[j];
-    for (let i = 0; i < rows; i++) column[i] *= factor;
+    takeColumn(column, x, j, columns);
+    length[j] = Math.sqrt(dot(column, column, 0));
   }
   const diagonal = new Float64Array(columns);
   for (let j = 0; j < columns; j++) {
     const reflector = q.subarray(j * rows, (j + 1) * rows);
-    const norm = Math.sqrt(dot(reflector, reflector, j));
-    if (!(norm > 1e-12)) {
+    const norm = j === 0 ? length[0] : Math.sqrt(dot(reflector, reflector, j));
+    if (!(norm > 1e-12 * length[j])) {
       throw new InvalidInputError(
         "rank_deficient",
         `Column ${j + 1} of the regression depends on the ones before it.`,
@@ -69,22 +66,17 @@ export function leastSquares(x: Float64Array, y: Float64Array, columns: number):
     }
     return out;
   };
-  const residualsOf = (scaled: Float64Array): Float64Array => {
-    const factors = scaled.map((value, j) => value / scale[j]);
+  const residualsOf = (fitted: Float64Array): Float64Array => {
     const residuals = y.slice();
-    for (let i = 0, at = 0; i < rows; i++) {
-      let rest = residuals[i];
-      for (let j = 0; j < columns; j++) rest -= x[at++] * factors[j];
-      residuals[i] = rest;
-    }
+    for (let j = 0; j < columns; j++) subtractColumn(residuals, fitted[j], x, j, columns);
     return residuals;
   };
-  const scaled = solve(y);
-  let residuals = residualsOf(scaled);
-  if (leastOf(diagonal) < WELL_CONDITIONED) {
+  const coefficients = solve(y);
+  let residuals = residualsOf(coefficients);
+  if (diagonal.some((d, j) => Math.abs(d) < WELL_CONDITIONED * length[j])) {
     const correction = solve(residuals);
-    for (let j = 0; j < columns; j++) scaled[j] += correction[j];
-    residuals = residualsOf(scaled);
+    for (let j = 0; j < columns; j++) coefficients[j] += correction[j];
+    residuals = residualsOf(coefficients);
   }
   const inverse = inverseOfR(q, rows, diagonal);
   const unscaledCovariance = new Float64Array(columns * columns);
@@ -93,14 +85,14 @@ export function leastSquares(x: Float64Array, y: Float64Array, columns: number):
       let sum = 0;
       for (let k = Math.max(a, b); k < columns; k++)
         sum += inverse[a * columns + k] * inverse[b * columns + k];
-      unscaledCovariance[a * columns + b] = sum / (scale[a] * scale[b]);
+      unscaledCovariance[a * columns + b] = sum;
     }
   }
   const df = rows - columns;
   const residualSd = df > 0 ? Math.sqrt(dot(residuals, residuals, 0) / df) : Number.NaN;
   return {
-    coefficients: scaled.map((value, j) => value / scale[j]),
-    standardErrors: scaled.map((_, j) => residualSd * Math.sqrt(unscaledCovariance[j * columns + j])),
+    coefficients,
+    standardErrors: coefficients.map((_, j) => residualSd * Math.sqrt(unscaledCovariance[j * columns + j])),
     unscaledCovariance,
     residuals,
     residualSd,
@@ -126,6 +118,22 @@ function dot(a: Float64Array, b: Float64Array, from: number): number {
     s3 += a[i + 3] * b[i + 3];
   }
   return s0 + s1 + (s2 + s3);
+}
+
+/** Column `j` of row-major `x`. */
+function takeColumn(column: Float64Array, x: Float64Array, j: number, columns: number): void {
+  for (let i = 0, at = j; i < column.length; i++, at += columns) column[i] = x[at];
+}
+
+/** Takes `factor` times column `j` of row-major `x` from `target` in place. */
+function subtractColumn(
+  target: Float64Array,
+  factor: number,
+  x: Float64Array,
+  j: number,
+  columns: number,
+): void {
+  for (let i = 0, at = j; i < target.length; i++, at += columns) target[i] -= factor * x[at];
 }
 
 /** Takes `factor` times `column` from `target` in place, from index `from` on. */

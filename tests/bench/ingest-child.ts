@@ -1,5 +1,6 @@
 import { createReadStream, statSync } from "node:fs";
 import { readLogStream } from "@/lib/logs/read-log-stream";
+import { peakMemoryBytes } from "@/tests/support/peak-memory";
 import { writtenLog } from "./written-log";
 
 // Reads the file named and prints how far its memory grew beyond what a small log of the same kind takes.
@@ -17,7 +18,7 @@ let ticks = 0;
 const timer = setInterval(() => ticks++, 1);
 const table = await readLogStream(createReadStream(file), statSync(file).size);
 clearInterval(timer);
-const peak = process.resourceUsage().maxRSS * 1024;
+const peak = peakMemoryBytes();
 const columnsMib = (8 * table.rowsRead * (table.channels.length + 1)) / MIB;
 console.log(
   JSON.stringify({ rows: table.rowsRead, columnsMib, beyondMib: (peak - before) / MIB - columnsMib, ticks }),

@@ -1,6 +1,7 @@
 import { writeSync } from "node:fs";
 import { randomStream } from "@/lib/signal/random";
 import { fuzzCase } from "@/tests/fuzz/fuzz-case";
+import { peakMemoryBytes } from "@/tests/support/peak-memory";
 
 // Reads mutated files one after the other and says before each which one it is, so that the parent knows where it hung or died.
 const [reader, seed, from, count] = process.argv.slice(2);
@@ -30,4 +31,4 @@ for (let i = Number(from); i < Number(count); i++) {
   }
   say(`end ${outcome.replaceAll("\n", " ")}`);
 }
-say(`rss ${Math.round(process.resourceUsage().maxRSS / 1024)}`);
+say(`rss ${Math.round(peakMemoryBytes() / (1024 * 1024))}`);
