@@ -72,6 +72,26 @@ describe("MarksForm", () => {
   });
 });
 
+describe("MarksForm that sends nothing", () => {
+  it("says why: a name that is too long, a note that is", async () => {
+    const action = saving();
+    render(
+      <MarksForm {...{ programmeId, action }} version={2} marks={[]} known={[]} blockedBecause={null} />,
+    );
+    fireEvent.change(screen.getByLabelText("By its name"), { target: { value: "x".repeat(201) } });
+    press("Mark the function");
+    press("Save as version 3");
+    await screen.findByText("A name has at most 200 characters.");
+    press(/^Take out/);
+    fireEvent.change(screen.getByLabelText("By its name"), { target: { value: "Fuel" } });
+    press("Mark the function");
+    fireEvent.change(screen.getByLabelText("Note on Fuel"), { target: { value: "x".repeat(501) } });
+    press("Save as version 3");
+    await screen.findByText("Some fields need another look: each says why.");
+    expect(action).not.toHaveBeenCalled();
+  });
+});
+
 describe("LinksForm", () => {
   const quantity = (name: string, parts = {}) => ({
     ...{ quantity: name, text: "", unit: "1/min", link: null, suggestions: [] },

@@ -3,7 +3,7 @@
 import { zodResolver } from "@hookform/resolvers/zod";
 import { Plus, Trash2 } from "lucide-react";
 import { useId, useState } from "react";
-import { useFieldArray, useForm } from "react-hook-form";
+import { type FieldErrors, useFieldArray, useForm } from "react-hook-form";
 import { z } from "zod";
 import { RELEVANCE_WORDS, SET_WORDS } from "@/components/features/programmes/calibration/mark-words";
 import {
@@ -87,8 +87,22 @@ export function MarksForm({ programmeId, version, marks, known, blockedBecause, 
         ))}
       </ul>
       <AddMark known={known.filter((name) => !marked.has(name))} onAdd={add} />
-      <SaveVersion version={version} blockedBecause={blockedBecause} {...state} />
+      <SaveVersion
+        version={version}
+        blockedBecause={blockedBecause}
+        {...state}
+        problem={wrongText(formState.errors.marks) ?? state.problem}
+      />
     </form>
+  );
+}
+
+/** Why nothing was sent; null where nothing is wrong. A name has no field of its own that could say it. */
+function wrongText(errors: FieldErrors<{ marks: RelevanceMark[] }>["marks"]): string | null {
+  if (!errors) return null;
+  const ofNames = Array.isArray(errors) ? errors.flatMap((error) => error?.name?.message ?? []) : [];
+  return (
+    errors.root?.message ?? errors.message ?? ofNames[0] ?? "Some fields need another look: each says why."
   );
 }
 
