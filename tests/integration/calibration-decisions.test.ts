@@ -204,8 +204,16 @@ describe("a promotion", () => {
     const waivers = [{ gateId: "touched", reason: "for the sake of this very test" }];
     const bare = { ...(await seen(lead, after)), waivers };
     await expect(promoteRevision(lead, bare)).rejects.toThrow(/bytes without a description/);
+    const agreed = async () => (await getDecisionDesk(lead, after)).calibration.agreements.length;
     await agreeAsSecondLead(otherLead, await agreeing(otherLead, after));
-    const { decisionId } = await promoteRevision(lead, bare);
+    expect(await agreed()).toBe(1);
+    // Another mark: the bytes may belong to that one too, which nobody has agreed to.
+    const { programmeId } = scene;
+    const further = { set: "function" as const, name: "air", relevance: "emission" as const, note: "" };
+    await saveRelevanceMarks(lead, { programmeId, basedOnVersion: 1, marks: [further] });
+    expect(await agreed()).toBe(0);
+    await agreeAsSecondLead(otherLead, await agreeing(otherLead, after));
+    const { decisionId } = await promoteRevision(lead, { ...(await seen(lead, after)), waivers });
     expect((await getRecord(lead, decisionId)).decision.evidence.calibration).toMatchObject({
       touched: [],
       secondLead: { id: otherLead.userId },

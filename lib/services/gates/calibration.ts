@@ -28,7 +28,7 @@ export interface CalibrationDesk {
   untold: boolean;
   /** Digest of all of the above: what a lead saw; null while nothing of it is known. */
   seenSha256: string | null;
-  /** Digest of the change set and of what in it is or may be marked: what a second lead agrees to; null where nothing is. */
+  /** Digest of the change set and of what in it is or may be marked (then with all marks): what a second lead agrees to; null where nothing is. */
   touchedSha256: string | null;
 }
 
@@ -129,7 +129,7 @@ export async function calibrationDesk(
       : null,
     touchedSha256:
       changeSet && (touched.length > 0 || untold)
-        ? digestOf({ changeSet, touched, ...(untold && { untold }) })
+        ? digestOf({ changeSet, touched, ...(untold && { marks: marks.content }) })
         : null,
   };
 }
