@@ -8,6 +8,7 @@ const AN_HOUR = {
   "send invitations": 30,
   "make workspaces": 5,
   "check values files": 120,
+  "download values": 300,
 } as const;
 
 /**

@@ -1,7 +1,7 @@
 import { randomUUID } from "node:crypto";
 import { eq } from "drizzle-orm";
 import { afterAll, beforeAll, describe, expect } from "vitest";
-import { changeSets, imageChecks, imageReadings, ledger, programmeShares } from "@/db/tables";
+import { changeSets, imageChecks, imageReadings, ledger, programmeShares, rateLimits } from "@/db/tables";
 import { ConflictError, ForbiddenError, NotFoundError } from "@/lib/errors";
 import { computeChangeSet } from "@/lib/jobs/calibration/compute-change-set";
 import { readBlob } from "@/lib/services/blobs";
@@ -282,6 +282,12 @@ describe("a download of values", () => {
     expect(all).toMatch(/gain.*10/);
     const entries = await tx.select().from(ledger).where(eq(ledger.event, "values.exported"));
     expect(entries.filter(({ workspaceId }) => workspaceId === scene.workspaceId)).toHaveLength(3);
+    await tx.update(rateLimits).set({ count: 300 });
+    for (const again of [
+      () => exportChangeSet(scene.tester, { changeSetId: id, format: "csv" }),
+      () => exportRevisionValues(scene.calibrator, { revisionId: after, format: "csv" }),
+    ])
+      await expect(again()).rejects.toThrow(/at most 300 times an hour/);
   });
 
   test("is not for readers, admins and strangers, and not without a description", async ({ tx }) => {

@@ -10,6 +10,7 @@ import type { valuesFormat } from "@/lib/services/change-sets/schema";
 import { openReading } from "@/lib/services/change-sets/stored-reading";
 import { type Ctx, withTransaction } from "@/lib/services/ctx";
 import { appendLedger } from "@/lib/services/ledger/append";
+import { limitTries } from "@/lib/services/limit-tries";
 
 type Format = z.infer<typeof valuesFormat>;
 
@@ -28,7 +29,7 @@ function cdfx(title: string, { instances, leftOut }: CdfSelection): Iterable<str
 
 /**
  * What a change set changes, as a file: CDFX with the values after the change, or CSV with both. Noted in the ledger.
- * @throws ForbiddenError; NotFoundError; ConflictError `not_ready`
+ * @throws ForbiddenError; NotFoundError; ConflictError `not_ready`; TooManyRequestsError
  */
 export async function exportChangeSet(
   ctx: Ctx,
@@ -41,6 +42,7 @@ export async function exportChangeSet(
   const { a, b } = await loadSides(ctx, pair, "values.export");
   if (!row.result)
     throw new ConflictError("not_ready", "The changes are not worked out yet. Wait for them, then download.");
+  await limitTries(ctx.db, { doing: "download values", userId: ctx.userId });
   const name = `R${a.number} to R${b.number}`;
   const changes = row.result;
   await note(ctx, { revisionId: b.id, programmeId: b.programmeId }, { from: a.number, to: b.number, format });
@@ -53,13 +55,14 @@ export async function exportChangeSet(
 
 /**
  * All values of a revision's image as its description reads them, as a file. Noted in the ledger.
- * @throws ForbiddenError; NotFoundError; ConflictError `no_values` where no reading is there
+ * @throws ForbiddenError; NotFoundError; ConflictError `no_values` where no reading is there; TooManyRequestsError
  */
 export async function exportRevisionValues(
   ctx: Ctx,
   { revisionId, format }: { revisionId: string; format: Format },
 ): Promise<ValuesFile> {
   const { number, programmeId, blobSha256 } = await findRevisionReading(ctx, revisionId);
+  await limitTries(ctx.db, { doing: "download values", userId: ctx.userId });
   const reading = await openReading(ctx, blobSha256);
   await note(ctx, { revisionId, programmeId }, { number, format });
   return {
