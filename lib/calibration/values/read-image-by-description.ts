@@ -1,4 +1,4 @@
-import type { Description, DescriptionModule } from "@/lib/calibration/a2l/types";
+import type { Description } from "@/lib/calibration/a2l/types";
 import { ADDRESS_LIMIT, type CalibrationImage } from "@/lib/calibration/image/types";
 import { checkEpk } from "@/lib/calibration/values/check-epk";
 import { ConversionBook } from "@/lib/calibration/values/convert/conversion-book";
@@ -6,13 +6,19 @@ import { ImageMemory } from "@/lib/calibration/values/memory/image-memory";
 import { setsByMember } from "@/lib/calibration/values/named-sets";
 import { NotReadable } from "@/lib/calibration/values/not-readable";
 import { readCharacteristic } from "@/lib/calibration/values/read-characteristic";
-import { MOST_CELLS_OF_ALL, type ReadingContext } from "@/lib/calibration/values/reading-context";
+import {
+  MOST_CELLS_OF_ALL,
+  MOST_LETTERS_OF_ALL,
+  type ReadingContext,
+  spendLetters,
+} from "@/lib/calibration/values/reading-context";
 import { sharedAxis } from "@/lib/calibration/values/shared-axis";
 import type { ImageReading, ReadCharacteristic } from "@/lib/calibration/values/types";
 
 /**
  * Reads every characteristic and shared axis of a description from an image, in raw and in physical values. What can't be read is
- * listed in `notRead` with its reason; nothing is guessed and nothing throws. At most 4 million cells are read altogether.
+ * listed in `notRead` with its reason; nothing is guessed and nothing throws. At most 4 million cells and 50 million letters are read
+ * altogether.
  */
 export function readImageByDescription(
   description: Description,
@@ -28,11 +34,25 @@ export function readImageByDescription(
     problems: [],
   };
   const names = new Set<string>();
-  let cellsLeft = MOST_CELLS_OF_ALL;
+  let left: Pick<ReadingContext, "cellsLeft" | "lettersLeft"> = {
+    cellsLeft: MOST_CELLS_OF_ALL,
+    lettersLeft: MOST_LETTERS_OF_ALL,
+  };
   for (const module of description.modules) {
-    const context = contextOf(module, memory, cellsLeft);
+    const [functions, groups] = [setsByMember(module.functions), setsByMember(module.groups)];
+    const context: ReadingContext = {
+      module,
+      memory,
+      book: new ConversionBook(module),
+      sharedAxes: new Map(),
+      functionsOf: functions.byMember,
+      groupsOf: groups.byMember,
+      fallingAxes: new Set(),
+      ...left,
+    };
     readModule(context, names, reading);
-    cellsLeft = context.cellsLeft;
+    left = context;
+    if (functions.isCut || groups.isCut) reading.problems.push(SETS_CUT);
     for (const { name, programType, address, length } of module.memorySegments) {
       reading.memorySegments.push({ name, programType, address, length });
     }
@@ -49,18 +69,8 @@ export function readImageByDescription(
   return reading;
 }
 
-function contextOf(module: DescriptionModule, memory: ImageMemory, cellsLeft: number): ReadingContext {
-  return {
-    module,
-    memory,
-    book: new ConversionBook(module),
-    sharedAxes: new Map(),
-    functionsOf: setsByMember(module.functions),
-    groupsOf: setsByMember(module.groups),
-    fallingAxes: new Set(),
-    cellsLeft,
-  };
-}
+const SETS_CUT =
+  "Functions or groups lie in one another so widely that some of the outer ones are not put to what they hold. A mark on such a one may not be seen to be touched.";
 
 function readModule(context: ReadingContext, names: Set<string>, reading: ImageReading): void {
   const attempt = (name: string, address: number | null, read: () => ReadCharacteristic) => {
@@ -70,7 +80,9 @@ function readModule(context: ReadingContext, names: Set<string>, reading: ImageR
       names.add(name);
       if (address !== null && !isAddress(address))
         throw new NotReadable(`its address ${address} is not possible`);
-      reading.characteristics.push(read());
+      const one = read();
+      spendLetters(context, one);
+      reading.characteristics.push(one);
     } catch (error) {
       if (!(error instanceof NotReadable)) throw error;
       const at = address !== null && isAddress(address) ? address : null;

@@ -27,7 +27,8 @@ export function pointsOfRescale(shared: SharedAxis, cells: number): (number | nu
   const step = last + 1 === cells ? 1 : (last + 1) / (cells - 1);
   const values = pairs.map(({ value }) => Number(value));
   const indices = pairs.map(({ index }) => index);
-  return Array.from({ length: cells }, (_, cell) => inverse(indices, values, Math.min(cell * step, last)));
+  const inputAt = inverse(indices, values);
+  return Array.from({ length: cells }, (_, cell) => inputAt(Math.min(cell * step, last)));
 }
 
 function lastIndex({ pairs }: SharedAxis): number {
@@ -42,19 +43,30 @@ export function pointsOfCurve(
 ): (number | null)[] {
   const numbers = values.map((value) => (typeof value === "number" ? value : Number.NaN));
   const at = inputs.map((value) => (typeof value === "number" ? value : Number.NaN));
-  return Array.from({ length: cells }, (_, cell) => inverse(numbers, at, cell));
+  const inputAt = inverse(numbers, at);
+  return Array.from({ length: cells }, (_, cell) => inputAt(cell));
 }
 
-/** Where a rising or falling broken line y(x) takes the value `wanted`; null outside it or where it is not strictly monotone. */
-function inverse(y: readonly number[], x: readonly number[], wanted: number): number | null {
+/**
+ * Where a rising or falling broken line y(x) takes a value; null outside it or where it is not strictly monotone. O(points) once,
+ * O(log points) a value.
+ */
+function inverse(y: readonly number[], x: readonly number[]): (wanted: number) => number | null {
   const sign = Math.sign(y[y.length - 1] - y[0]);
-  for (let k = 1; k < y.length; k++) if (!(sign * (y[k] - y[k - 1]) > 0)) return null;
-  if (y.length === 1) return y[0] === wanted ? x[0] : null;
-  for (let k = 1; k < y.length; k++) {
-    const part = (wanted - y[k - 1]) / (y[k] - y[k - 1]);
-    if (part < 0 || part > 1) continue;
-    const found = part === 0 ? x[k - 1] : part === 1 ? x[k] : x[k - 1] + part * (x[k] - x[k - 1]);
+  for (let k = 1; k < y.length; k++) if (!(sign * (y[k] - y[k - 1]) > 0)) return () => null;
+  if (y.length === 1) return (wanted) => (y[0] === wanted ? x[0] : null);
+  return (wanted) => {
+    // The first stretch whose end is not in front of the value.
+    let low = 1;
+    let high = y.length - 1;
+    while (low < high) {
+      const middle = (low + high) >>> 1;
+      if (sign * (y[middle] - wanted) >= 0) high = middle;
+      else low = middle + 1;
+    }
+    const part = (wanted - y[low - 1]) / (y[low] - y[low - 1]);
+    if (!(part >= 0 && part <= 1)) return null;
+    const found = part === 0 ? x[low - 1] : part === 1 ? x[low] : x[low - 1] + part * (x[low] - x[low - 1]);
     return Number.isFinite(found) ? found : null;
-  }
-  return null;
+  };
 }

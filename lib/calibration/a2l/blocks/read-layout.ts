@@ -29,6 +29,8 @@ const INDEX_MODES = [
 ] as const;
 const INDEX_ORDERS = ["INDEX_INCR", "INDEX_DECR"] as const;
 const AXIS_LETTERS = ["X", "Y", "Z", "4", "5"] as const;
+/** Components of one layout: five axes of all kinds have fewer. Each record of the layout walks over all of them. */
+const MOST_COMPONENTS = 256;
 /** Components of a position and a data type only. */
 const PLAIN =
   /^(IDENTIFICATION|(NO_AXIS_PTS|NO_RESCALE|SRC_ADDR|OFFSET|SHIFT_OP|DIST_OP)_[XYZ45]|RIP_ADDR_[WXYZ45])$/;
@@ -136,7 +138,8 @@ export function readRecordLayout(reader: BlockReader): RecordLayout {
     else if (!readAlignment(reader, keyword, layout.alignments)) {
       const component = readComponent(reader, keyword);
       if (component) {
-        layout.components.push(component);
+        if (layout.components.length < MOST_COMPONENTS) layout.components.push(component);
+        else reader.fault ??= `it has more than ${MOST_COMPONENTS} components`;
         reader.findings.keep(4, reader.begun);
       } else reader.pass(keyword, "RECORD_LAYOUT");
     }

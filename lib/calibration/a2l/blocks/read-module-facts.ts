@@ -42,13 +42,19 @@ function readSegment(reader: BlockReader): MemorySegment {
   return { ...segment, ...place };
 }
 
+/** Addresses of one EPK; each is held against the image letter by letter. */
+const MOST_EPK_ADDRESSES = 100;
+
 /** Reads MOD_PAR: memory segments and the text by which image and description are known to belong together. */
 export function readModPar(reader: BlockReader, facts: ModuleFacts): void {
   reader.quoted();
   for (let keyword = reader.option(); keyword !== null; keyword = reader.option()) {
     if (keyword === "EPK") facts.epkText = reader.word("EPK");
-    else if (keyword === "ADDR_EPK") facts.epkAddresses.push(reader.whole("address of the EPK"));
-    else if (keyword === "/MEMORY_SEGMENT") {
+    else if (keyword === "ADDR_EPK") {
+      if (facts.epkAddresses.length < MOST_EPK_ADDRESSES)
+        facts.epkAddresses.push(reader.whole("address of the EPK"));
+      else reader.fault ??= `it states more than ${MOST_EPK_ADDRESSES} addresses of the EPK`;
+    } else if (keyword === "/MEMORY_SEGMENT") {
       const segment = readSegment(reader);
       if (reader.fault === null) facts.memorySegments.push(segment);
       reader.findings.keep(2, reader.begun);

@@ -1,4 +1,5 @@
 import type { Conversion } from "@/lib/calibration/a2l/types";
+import { firstRangeAt } from "@/lib/calibration/values/convert/first-range";
 import { fromRational } from "@/lib/calibration/values/convert/rational";
 import type { PhysicalValue } from "@/lib/calibration/values/types";
 import { compileFormula } from "@/lib/logs/mdf/mdf-formula";
@@ -112,10 +113,10 @@ function interpolate(pairs: readonly (readonly [number, number])[]) {
   };
 }
 
+/** The text of each raw number; of several that hold it a single number comes first, then the range that is written first. */
 function words(ranges: readonly { from: number; to: number; text: string }[], fallback: string | null) {
   const single = new Map<number, string>();
-  const wide = ranges.filter(({ from, to }) => from !== to);
   for (const { from, to, text } of ranges) if (from === to && !single.has(from)) single.set(from, text);
-  return (raw: number): string | null =>
-    single.get(raw) ?? wide.find(({ from, to }) => from <= raw && raw <= to)?.text ?? fallback;
+  const wide = firstRangeAt(ranges.filter(({ from, to }) => from < to));
+  return (raw: number): string | null => single.get(raw) ?? wide(raw)?.text ?? fallback;
 }
