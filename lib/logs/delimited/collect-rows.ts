@@ -95,7 +95,7 @@ export function createCollector(options: CollectOptions) {
       refuse({ row: line, reason });
       return;
     }
-    const count = target.cells[timeIndex * target.stride + target.row];
+    const count = target.columns[timeIndex][target.row];
     if (Number.isNaN(count)) {
       refuseUntimed(line);
       return;
@@ -108,11 +108,11 @@ export function createCollector(options: CollectOptions) {
       if (!firstText.has(c)) firstText.set(c, { row: line, raw });
     }
     target.row = store.keepRow();
-    if (target.row === 0) Object.assign(target, store.piece());
+    if (target.row === 0) target.columns = store.piece();
   }
 
   const target: RowTarget = {
-    ...store.piece(),
+    columns: store.piece(),
     row: 0,
     oddCell(column, cell) {
       if (form.decimalOpen && COMMA_NUMBER.test(cell)) refuseDecimal(cell);

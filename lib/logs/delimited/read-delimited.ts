@@ -110,7 +110,7 @@ function takeColumns(table: CollectedTable, order: Uint32Array | null, form: Tab
 function guessRows(text: string, sizeBytes: number | null, width: number): number {
   const size = sizeBytes ?? text.length;
   const lines = text.split(/\r?\n|\r/).length;
-  const guess = Math.ceil((1.1 * lines * size) / text.length) + 16;
+  const guess = Math.ceil((1.02 * lines * size) / text.length) + 16;
   return Math.max(1, Math.min(guess, Math.floor(size / width) + 16));
 }
 

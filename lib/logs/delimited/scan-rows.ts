@@ -17,9 +17,8 @@ export interface ScanForm {
 
 /** Where the numbers go. */
 export interface RowTarget {
-  /** Column after column, `stride` places each; the next row is written at place `row` of each and stays unless `endRow` moves `row`. */
-  cells: Float64Array;
-  stride: number;
+  /** One array a column; the next row is written at place `row` of each and stays unless `endRow` moves `row`. */
+  columns: Float64Array[];
   row: number;
   /** Value of a cell that is no plain number, NaN = missing. */
   oddCell: (column: number, text: string) => number;
@@ -114,13 +113,13 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
     if (at <= lastHeadLine || text.trim() === "") return end;
     Object.assign(current, { bytes, from, end });
     const cells = split(text);
-    const { cells: into, stride, row } = target;
+    const { columns, row } = target;
     let filled = 0;
     for (let c = 0; c < cells.length; c++) {
       if (cells[c].trim() !== "") filled = c + 1;
-      if (c < width) into[c * stride + row] = target.oddCell(c, cells[c]);
+      if (c < width) columns[c][row] = target.oddCell(c, cells[c]);
     }
-    for (let c = cells.length; c < width; c++) into[c * stride + row] = Number.NaN;
+    for (let c = cells.length; c < width; c++) columns[c][row] = Number.NaN;
     target.endRow(at, cells.length, filled);
     return end;
   }
@@ -128,7 +127,7 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
   /** Reads whole lines of [from, to), the last byte of which is a line end; gives the position up to which it came. */
   function scan(bytes: Uint8Array, from: number, to: number, final: boolean): number {
     // The engine keeps locals of a hot loop in registers, but reads what a closure holds again and again.
-    const [cellEnd, rowEnd, point, tab, columns, asText] = [
+    const [cellEnd, rowEnd, point, tab, cells, asText] = [
       delimiter,
       lineEnd,
       decimal,
@@ -144,8 +143,7 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
         if (i === start) return start;
         continue;
       }
-      const { cells, stride } = target;
-      let at = target.row;
+      const { columns, row } = target;
       let column = 0;
       let filled = 0;
       for (; ; column++) {
@@ -200,19 +198,18 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
             const text = decode(bytes.subarray(cellStart, textEnd));
             if (text.trim() !== "") {
               filled = column + 1;
-              if (column < columns) value = target.oddCell(column, text);
+              if (column < cells) value = target.oddCell(column, text);
             }
           }
         }
-        if (column < columns) cells[at] = value;
-        at += stride;
+        if (column < cells) columns[column][row] = value;
         i++;
         if (c === rowEnd) break;
       }
       line++;
       const found = column + 1;
       if (filled === 0 && (found === 1 || blankDelimiter)) continue;
-      for (let k = found; k < columns; k++, at += stride) cells[at] = Number.NaN;
+      for (let k = found; k < cells; k++) columns[k][row] = Number.NaN;
       current.bytes = bytes;
       current.from = start;
       current.end = i;

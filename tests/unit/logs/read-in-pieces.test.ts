@@ -76,17 +76,16 @@ function scan(bytes: Uint8Array, lengths: readonly number[], changes: Partial<Sc
     ...changes,
   };
   const out: Scanned = { values: [], lines: [], texts: [] };
-  const cells = new Float64Array(form.width);
+  const columns = Array.from({ length: form.width }, () => new Float64Array(1));
   const decoder = new TextDecoder();
   const scanner = createRowScanner(
     form,
     {
-      cells,
-      stride: 1,
+      columns,
       row: 0,
       oddCell: (_, text) => parseNumber(text, form.decimal) ?? Number.NaN,
       endRow: (line) => {
-        out.values.push([...cells]);
+        out.values.push(columns.map((column) => column[0]));
         out.lines.push(line);
         out.texts.push(scanner.texts());
       },
@@ -141,7 +140,7 @@ describe("row scanner", () => {
     const piece = new Uint8Array(1 << 20).fill(0x31);
     const scanner = createRowScanner(
       { delimiter: ",", decimal: ".", width: 1, lineEnd: "\n", lastHeadLine: 0, textColumn: -1 },
-      { cells: new Float64Array(1), stride: 1, row: 0, oddCell: () => Number.NaN, endRow: () => undefined },
+      { columns: [new Float64Array(1)], row: 0, oddCell: () => Number.NaN, endRow: () => undefined },
       () => "",
     );
     expect(() => {
