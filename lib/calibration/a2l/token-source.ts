@@ -154,14 +154,14 @@ export class TokenSource {
     if (kind instanceof NotClosed) this.refuseNotClosed(kind);
     if (kind !== "word" && kind !== "string")
       this.refuse("unexpected_text", "/include is not followed by the name of a file.", place);
-    const written = this.shown().trim();
+    const written = this.text().trim();
     const wanted = baseName(written);
     const given =
       this.files.find(({ name }) => name === written) ??
       this.files.find(({ name }) => baseName(name) === wanted) ??
       this.files.find(({ name }) => baseName(name).toLowerCase() === wanted.toLowerCase());
     if (!given) {
-      this.findings.lacks(written);
+      this.findings.lacks(cut(written));
       return;
     }
     if (this.open.some(({ text }) => text.name === given.name)) {

@@ -27,6 +27,15 @@ describe("files of an upload", () => {
       ["duplicate_name", "somewhere/three.aml", 3],
     ]);
   });
+  it("are found by a path of any length, and a missing one is told by a short one", () => {
+    const deep = `${"deliveries/of/the/supplier/".repeat(4)}axes`;
+    const description = readTexts({
+      "main.a2l": inModule(`/include "${deep}.a2l" /include ${"x".repeat(2000)}.a2l`),
+      "axes.a2l": part("far"),
+    });
+    expect([...description.modules[0].characteristics.keys()]).toEqual(["far"]);
+    expect(description.missingIncludes[0]).toMatch(/^x{300}…$/);
+  });
   it("missing ones are listed once and the rest is read", () => {
     const description = readTexts({
       "main.a2l": inModule(`/include "gone/far.a2l" ${value("here")} /include near.a2l /include near.a2l`),
