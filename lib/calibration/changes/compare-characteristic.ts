@@ -38,8 +38,8 @@ export function summarise(pair: Pair): CharacteristicChange | null {
     address: shown.address,
     unit: shown.unit,
     decimals: shown.decimals,
-    functions: shown.functions,
-    groups: shown.groups,
+    functions: ofBoth(after?.functions, before?.functions),
+    groups: ofBoth(after?.groups, before?.groups),
     kind: before === null ? "added" : after === null ? "removed" : "changed",
     cells,
     changed: whole ? cells : textChanged ? 1 : differing.length,
@@ -60,6 +60,11 @@ export function summarise(pair: Pair): CharacteristicChange | null {
     digest: digestOf({ name: shown.name, before: content(before), after: content(after) }),
   };
 }
+
+/** What the description after says, then what only the one before said: nothing leaves a function unseen by being described anew. */
+const ofBoth = (after: readonly string[] = [], before: readonly string[] = []) => [
+  ...new Set([...after, ...before]),
+];
 
 /** Every cell whose raw number differs, with its limit state after; nothing where the shapes are not alike. */
 export function cellChanges(pair: Pair): CellChange[] {

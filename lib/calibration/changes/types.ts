@@ -33,6 +33,7 @@ export interface CharacteristicChange {
   address: number;
   unit: string;
   decimals: number;
+  /** Of either description: those of the one after come first. */
   functions: string[];
   groups: string[];
   /** added / removed: only one of the two descriptions knows it. The same content at another address is no change (a problem tells it). */

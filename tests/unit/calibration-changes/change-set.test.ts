@@ -40,6 +40,20 @@ const map = (more = {}): MadeModule => ({
   characteristics: [characteristic({ type: "MAP", axes: [fixed(3), fixed(2)], ...more })],
 });
 
+describe("functions and groups", () => {
+  it("are those of both descriptions, so that describing a value anew hides it from no mark", () => {
+    const set = (name: string) => ({ name, text: "", characteristics: ["C"], subSets: [], isRoot: false });
+    const one = { characteristics: [characteristic()], groups: [set("All")] };
+    const found = only(
+      changed({ ...one, functions: [set("Limits"), set("Torque")] }, [1], [2], {
+        ...one,
+        functions: [set("Comfort"), set("Torque")],
+      }),
+    );
+    expect(found).toMatchObject({ functions: ["Comfort", "Torque", "Limits"], groups: ["All"] });
+  });
+});
+
 describe("values", () => {
   it("each cell whose raw number differs, with before, after and where it lies towards the limits", () => {
     const made = map({ lowerLimit: 10, upperLimit: 100, extendedLimits: [5, 110] });
