@@ -43,7 +43,9 @@ export function AgreeForm({ revisionId, calibration, action }: AgreeFormProps) {
           {leadName} agreed: {reason}
         </p>
       ))}
-      {needsApproval && agreeBlocked !== null && <p className="text-13 text-ink2">{agreeBlocked}</p>}
+      <div role="status">
+        {needsApproval && agreeBlocked !== null && <p className="text-13 text-ink2">{agreeBlocked}</p>}
+      </div>
       {needsApproval && agreeBlocked === null && (
         <form action={send} className="flex flex-col gap-3">
           <input type="hidden" name="revisionId" value={revisionId} />

@@ -18,8 +18,12 @@ export interface RecordCalibrationProps {
 }
 
 /** Bytes without a description may belong to anything. */
-function noneTouched({ readBy, uncoveredBytes }: RecordCalibrationProps["calibration"]): string {
-  return readBy === "none" || uncoveredBytes > 0
+function noneTouched({
+  readBy,
+  changedBytes,
+  uncoveredBytes,
+}: RecordCalibrationProps["calibration"]): string {
+  return (readBy === "none" && changedBytes > 0) || uncoveredBytes > 0
     ? "nothing described is touched; what no description covers can't be told"
     : "nothing touched";
 }
