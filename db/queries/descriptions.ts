@@ -1,4 +1,4 @@
-import { and, desc, eq, sql } from "drizzle-orm";
+import { and, desc, eq, inArray, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
 import { hasOwnJob } from "@/db/queries/analysis-versions";
 import { descriptions } from "@/db/tables";
@@ -36,6 +36,18 @@ export async function keepDescription(
 export async function selectDescription(db: Queryable, key: Key): Promise<DescriptionRow | null> {
   const [row] = await db.select().from(descriptions).where(at(key));
   return row ?? null;
+}
+
+/** Names of the files of descriptions, the main one first. */
+export async function selectFileNames(
+  db: Queryable,
+  { workspaceId, descriptionIds }: { workspaceId: string; descriptionIds: readonly string[] },
+): Promise<{ id: string; fileNames: string[] }[]> {
+  const rows = await db
+    .select({ id: descriptions.id, files: descriptions.files })
+    .from(descriptions)
+    .where(and(eq(descriptions.workspaceId, workspaceId), inArray(descriptions.id, [...descriptionIds])));
+  return rows.map(({ id, files }) => ({ id, fileNames: files.map(({ name }) => name) }));
 }
 
 /** What was understood of a programme's descriptions, the newest first. */

@@ -1,5 +1,5 @@
 import { selectSides } from "@/db/queries/change-sets";
-import { selectDescription } from "@/db/queries/descriptions";
+import { selectFileNames } from "@/db/queries/descriptions";
 import { selectLineage } from "@/db/queries/programme-overview";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { loadProgramme } from "@/lib/services/programmes/load";
@@ -11,15 +11,9 @@ async function descriptionFiles(
 ): Promise<Map<string, string[]>> {
   if (revisionIds.length === 0) return new Map();
   const sides = await selectSides(db, { workspaceId, revisionIds: [...revisionIds] });
-  const names = new Map<string, string[]>();
-  for (const descriptionId of new Set(sides.map((side) => side.descriptionId))) {
-    const row = descriptionId && (await selectDescription(db, { workspaceId, descriptionId }));
-    if (row)
-      names.set(
-        row.id,
-        row.files.map(({ name }) => name),
-      );
-  }
+  const descriptionIds = [...new Set(sides.flatMap((side) => side.descriptionId ?? []))];
+  const described = await selectFileNames(db, { workspaceId, descriptionIds });
+  const names = new Map(described.map(({ id, fileNames }) => [id, fileNames]));
   return new Map(
     sides.flatMap(({ id, descriptionId }) => {
       const files = descriptionId && names.get(descriptionId);
