@@ -51,7 +51,7 @@ export function readImageByDescription(
       ...left,
     };
     readModule(context, names, reading);
-    left = context;
+    left = { cellsLeft: context.cellsLeft, lettersLeft: context.lettersLeft };
     if (functions.isCut || groups.isCut) reading.problems.push(SETS_CUT);
     for (const { name, programType, address, length } of module.memorySegments) {
       reading.memorySegments.push({ name, programType, address, length });

@@ -17,6 +17,7 @@ import {
   type MadeModule,
   readMade,
   reasonOf,
+  segments,
 } from "@/tests/support/made-description";
 
 vi.setConfig({ testTimeout: 60_000 });
@@ -90,6 +91,23 @@ describe("what can't be read says why", () => {
   it("names that two blocks share are read once", () => {
     const made = one({ name: "A" }, { axisPoints: [axisPoints({ layout: "L" })] });
     expect(readMade(made, [1, 2]).notRead).toHaveLength(2);
+  });
+});
+
+describe("several modules", () => {
+  it("each is read by its own byte order and layouts; a name that an earlier one has is not read again", () => {
+    const made = one({ name: "A" }, { byteOrder: "big" });
+    const second = one(
+      { name: "B" },
+      { characteristics: ["A", "B"].map((name) => characteristic({ name })) },
+    );
+    const modules = [made, second].flatMap((each) => describedBy(each).modules);
+    const reading = readImageByDescription({ ...describedBy(made), modules }, { segments: segments([1, 2]) });
+    expect(reading.characteristics.map(({ name, values }) => [name, values])).toEqual([
+      ["A", [0x0102]],
+      ["B", [0x0201]],
+    ]);
+    expect(reading.notRead.map(({ name }) => name)).toEqual(["A"]);
   });
 });
 
