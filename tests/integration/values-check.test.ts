@@ -86,6 +86,9 @@ describe("a values file against a revision", () => {
     const waiting = await addSmallRevision(scene, { gain: 1 });
     await expect(check(waiting)).rejects.toThrow(ConflictError);
     await doJobs(scene);
+    const refused = await addSmallRevision(scene, { gain: 2 }, { a2l: Buffer.from("/begin PROJECT x") });
+    await doJobs(scene);
+    await expect(check(refused)).rejects.toThrow(/R3 was refused, so its values are not known\. \S/);
     expect(await check(waiting)).toMatchObject({ inFile: 0, compared: 0, notInFile: { count: 4 } });
   });
 

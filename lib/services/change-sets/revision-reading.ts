@@ -1,3 +1,4 @@
+import { selectDescription } from "@/db/queries/descriptions";
 import { selectImageReading } from "@/db/queries/image-readings";
 import { selectRevision } from "@/db/queries/revisions";
 import { READER_VERSION } from "@/lib/calibration/reader-version";
@@ -20,12 +21,18 @@ export async function findRevisionReading(
   const { number, descriptionId, programmeId } = revision;
   const key = { workspaceId, revisionId, readerVersion: READER_VERSION };
   const kept = descriptionId === null ? null : await selectImageReading(db, { ...key, descriptionId });
-  if (!kept)
-    throw new ConflictError(
-      "no_values",
-      descriptionId === null
-        ? `R${number} has no description, so its values are not known. Add one on its page.`
-        : `The values of R${number} are not read yet. Wait for it, then try again.`,
-    );
+  if (!kept) throw new ConflictError("no_values", await whyNoValues(ctx, { number, descriptionId }));
   return { number, programmeId, blobSha256: kept.blobSha256 };
+}
+
+async function whyNoValues(
+  { db, workspaceId }: Ctx,
+  { number, descriptionId }: { number: number; descriptionId: string | null },
+): Promise<string> {
+  if (descriptionId === null)
+    return `R${number} has no description, so its values are not known. Add one on its page.`;
+  const description = await selectDescription(db, { workspaceId, descriptionId });
+  return description?.state === "refused"
+    ? `The description of R${number} was refused, so its values are not known. ${description.failure}`
+    : `The values of R${number} are not read yet. Wait for it, then try again.`;
 }
