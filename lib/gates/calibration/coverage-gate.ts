@@ -36,7 +36,10 @@ function verdictOn(atLeastPct: number, evidence: GateEvidence): Verdict {
   if (calibration.coverageState === "no_runs")
     return tooLittle("There is no usable run of this revision yet.", "Drive it where the changed cells lie.");
   if (!calibration.coverage)
-    return tooLittle("The coverage is being computed.", "Open the page again in a moment.");
+    return tooLittle(
+      "Where the runs of now went is not worked out yet.",
+      "Open the revision's page: it is on its way there, or can be asked for.",
+    );
   return verdictOnShare(atLeastPct, calibration.coverage);
 }
 
