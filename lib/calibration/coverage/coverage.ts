@@ -102,7 +102,9 @@ function openTable(
   if (kind === "removed") return null;
   const changed = changedCellFlags(change);
   const not = (code: NotToldCode, reason: string): NotTold => {
-    const cells = after && after.axes.length > 0 ? count(changed) : change.changed;
+    // Where axis points moved and cells are not listed, any of them may hold at another place.
+    const unlisted = change.axisChanged ? change.cells : change.changed;
+    const cells = after && after.axes.length > 0 ? count(changed) : unlisted;
     return { name, changedCells: cells, code, reason };
   };
   if (!after) return not("not_listed", `${name} is not listed cell by cell: too many cells changed.`);

@@ -218,13 +218,15 @@ describe("What can't be told", () => {
     const shared = change("axis", side([1, 2]), side([1, 3]), { type: "AXIS_PTS" });
     const gone = change("gone", side([1, 2], [0, 1]), null, { kind: "removed" });
     const unlisted = { ...table("huge", X), before: null, after: null, changes: [], changed: 4 };
-    const got = coverageOf(changeSet([value, shared, gone, unlisted]), [idle], LINKS);
+    const moved = { ...unlisted, name: "moved", cells: 9, changed: 0, axisChanged: true };
+    const got = coverageOf(changeSet([value, shared, gone, unlisted, moved]), [idle], LINKS);
     expect(got.notTold.map(({ name, code }) => [name, code])).toEqual([
       ["limit", "no_axes"],
       ["axis", "no_axes"],
       ["huge", "not_listed"],
+      ["moved", "not_listed"],
     ]);
-    expect(got).toMatchObject({ changedCells: 4, changedVisited: 0 });
+    expect(got).toMatchObject({ changedCells: 4 + 9, changedVisited: 0 });
   });
 });
 
