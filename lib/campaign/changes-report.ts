@@ -117,7 +117,10 @@ export function changesReport({
     })),
     uncovered_ranges: changes.uncoveredRanges,
     uncovered_bytes: changes.uncoveredBytes,
-    not_read: [...changes.notRead, ...descriptions.flatMap(({ notRead }) => notRead)],
+    not_read: [
+      ...changes.notRead.map(({ name, reason }) => ({ name, reason })),
+      ...descriptions.flatMap(({ notRead }) => notRead),
+    ],
     problems: [...changes.problems, ...descriptions.flatMap(({ problems }) => problems)],
   };
 }

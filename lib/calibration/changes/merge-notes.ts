@@ -14,9 +14,11 @@ export function mergeProblems(a: ImageReading | null, b: ImageReading | null): s
 
 /** What could not be read in either image, once where both say the same, by name. */
 export function mergeNotRead(a: ImageReading | null, b: ImageReading | null): ChangeSet["notRead"] {
-  const merged = new Map<string, { name: string; reason: string }>();
-  for (const { name, reason } of [...(a?.notRead ?? []), ...(b?.notRead ?? [])]) {
-    merged.set(`${name}\n${reason}`, { name, reason });
+  const merged = new Map<string, ChangeSet["notRead"][number]>();
+  for (const { name, reason, sets = [] } of [...(a?.notRead ?? []), ...(b?.notRead ?? [])]) {
+    const key = `${name}\n${reason}`;
+    const ofBoth = [...new Set([...(merged.get(key)?.sets ?? []), ...sets])];
+    merged.set(key, { name, reason, ...(ofBoth.length > 0 ? { sets: ofBoth } : {}) });
   }
   return [...merged.entries()].sort(([p], [q]) => (p < q ? -1 : p > q ? 1 : 0)).map(([, entry]) => entry);
 }

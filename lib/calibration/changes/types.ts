@@ -93,6 +93,7 @@ export interface ChangeSet {
   uncoveredRanges: number;
   uncoveredBytes: number;
   descriptionDifference: TextDifference | null;
-  notRead: { name: string; reason: string }[];
+  /** `sets`: functions and groups that name it. */
+  notRead: { name: string; reason: string; sets?: string[] }[];
   problems: string[];
 }

@@ -86,7 +86,11 @@ function readModule(context: ReadingContext, names: Set<string>, reading: ImageR
     } catch (error) {
       if (!(error instanceof NotReadable)) throw error;
       const at = address !== null && isAddress(address) ? address : null;
-      reading.notRead.push({ name, reason: `${error.message}.`, address: at });
+      const sets = [context.functionsOf, context.groupsOf].flatMap((of) => of.get(name) ?? []);
+      reading.notRead.push({
+        ...{ name, reason: `${error.message}.`, address: at },
+        ...(sets.length > 0 ? { sets } : {}),
+      });
     }
   };
   for (const { name, address } of context.module.axisPoints.values()) {

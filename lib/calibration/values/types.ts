@@ -59,8 +59,8 @@ export interface ImageReading {
   reading: 1;
   /** Sorted by name. */
   characteristics: ReadCharacteristic[];
-  /** `address`: where it would begin, null where it has no memory of its own. */
-  notRead: { name: string; reason: string; address: number | null }[];
+  /** `address`: where it would begin, null where it has no memory of its own; `sets`: functions and groups that name it. */
+  notRead: { name: string; reason: string; address: number | null; sets?: string[] }[];
   memorySegments: { name: string; programType: string; address: number; length: number }[];
   /** Whether description and image belong together by their EPK; "none" where the description has none. */
   epk: { state: "match" | "mismatch" | "none"; expected: string | null; found: string | null };

@@ -41,7 +41,9 @@ function verdictOn(gate: StepLimitGate, changes: ChangeSet): Verdict {
   if (changes.readBy === "none") return noDescription();
   const scope = new Set(gate.scope);
   const tables = changes.characteristics.filter((change) => scope.size === 0 || isNamed(change, scope));
-  const hidden = changes.notRead.filter(({ name }) => scope.size === 0 || scope.has(name));
+  const hidden = changes.notRead.filter(
+    ({ name, sets = [] }) => scope.size === 0 || [name, ...sets].some((one) => scope.has(one)),
+  );
   const unread =
     hidden.length > 0 && changes.uncoveredBytes > 0
       ? [`${nameSome(hidden.map(({ name }) => name))} could not be read and may have changed.`]
@@ -143,6 +145,11 @@ function moveOf(gate: StepLimitGate, change: CharacteristicChange): Found[] {
       : []),
     ...(changes.some((cell) => cell.before === null || cell.after === null)
       ? unknown(change, "has changed cells without a value")
+      : []),
+    ...(changes.some(
+      ({ before: from, after: to }) => from !== null && to !== null && typeof from !== typeof to,
+    )
+      ? unknown(change, "has changed cells that are a number on one side and a word on the other")
       : []),
   ];
 }

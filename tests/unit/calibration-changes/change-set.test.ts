@@ -52,6 +52,12 @@ describe("functions and groups", () => {
     );
     expect(found).toMatchObject({ functions: ["Comfort", "Torque", "Limits"], groups: ["All"] });
   });
+  it("are told of what could not be read too, of both descriptions", () => {
+    const set = (name: string) => ({ name, text: "", characteristics: ["C"], subSets: [], isRoot: false });
+    const lost = { characteristics: [characteristic({ layout: "GONE" })], groups: [set("All")] };
+    const { notRead } = changed({ ...lost, functions: [set("Limits")] }, [1], [2], lost);
+    expect(notRead).toMatchObject([{ name: "C", sets: ["Limits", "All"] }]);
+  });
 });
 
 describe("values", () => {

@@ -130,6 +130,20 @@ describe("Scope", () => {
     expect(asked(["fuel"])).toMatchObject({ state: "met", why: "Nothing of fuel changed." });
   });
 
+  it("has too little where a cell was a word and is a number now, or the other way round", () => {
+    for (const [from, to] of [
+      ["defect", 200],
+      [200, "defect"],
+    ] as const) {
+      const state = change("sensor", side([from]), side([to]));
+      expect(ask(gate({ movedAtMost: 1 }), of(state))).toMatchObject({
+        state: "too_little",
+        why: expect.stringContaining("sensor has changed cells that are a number on one side"),
+      });
+    }
+    expect(ask(gate({ movedAtMost: 1 }), of(change("mode", side(["off"]), side(["on"])))).state).toBe("met");
+  });
+
   it("asks the parent where the plan says so", () => {
     const known = { fromStanding: changeSet([map]), fromParent: IDENTICAL };
     expect(ask(gate({ movedAtMost: 1, against: "parent" }), known).state).toBe("met");
@@ -138,6 +152,11 @@ describe("Scope", () => {
 
   it("has too little where a table could not be read and undescribed bytes changed", () => {
     const hidden = changeSet([], { ...UNCOVERED, notRead: [{ name: "fuel", reason: "no layout" }] });
+    const ofMixture = [{ name: "fuel", reason: "no layout", sets: ["Mixture"] }];
+    const inSet = changeSet([], { ...UNCOVERED, notRead: ofMixture });
+    const scoped = (scope: string) =>
+      ask(gate({ movedAtMost: 1, scope: [scope] }), { fromStanding: inSet }).state;
+    expect([scoped("Mixture"), scoped("Ignition")]).toEqual(["too_little", "met"]);
     const got = ask(gate({ movedAtMost: 1, scope: ["fuel"] }), { fromStanding: hidden });
     expect(got).toMatchObject({
       state: "too_little",
