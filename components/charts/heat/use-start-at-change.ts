@@ -1,10 +1,16 @@
 import { useEffect, useRef } from "react";
-import type { HeatCell } from "@/components/charts/heat/heat-table";
+import type { HeatStep } from "@/components/charts/heat/heat-ramp";
 
-const isChanged = (cell: HeatCell) => cell.step !== "heat-0" || cell.isEdged === true;
+/** What of a cell tells whether it changed. */
+interface Cell {
+  step: HeatStep;
+  isEdged?: boolean;
+}
+
+const isChanged = (cell: Cell) => cell.step !== "heat-0" || cell.isEdged === true;
 
 /** First row and first column that hold a change; null where none does. */
-export function firstChange(cells: readonly (readonly HeatCell[])[]): { row: number; column: number } | null {
+export function firstChange(cells: readonly (readonly Cell[])[]): { row: number; column: number } | null {
   const row = cells.findIndex((line) => line.some(isChanged));
   if (row < 0) return null;
   const columns = cells.map((line) => line.findIndex(isChanged)).filter((column) => column >= 0);
@@ -15,7 +21,7 @@ export function firstChange(cells: readonly (readonly HeatCell[])[]): { row: num
  * Scrolls a heat table once, when it comes into being, so that the first change is in sight, past the heads that stay. Without
  * script it starts at its first cell.
  */
-export function useStartAtChange(cells: readonly (readonly HeatCell[])[]) {
+export function useStartAtChange(cells: readonly (readonly Cell[])[]) {
   const scroller = useRef<HTMLDivElement>(null);
   const start = useRef(firstChange(cells));
   useEffect(() => {
