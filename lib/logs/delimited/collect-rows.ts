@@ -1,6 +1,6 @@
 import { FileRefusedError } from "@/lib/errors";
 import { createColumnStore } from "@/lib/logs/delimited/column-store";
-import { createRowScanner, type RowTarget } from "@/lib/logs/delimited/scan-rows";
+import { RowScanner, type RowTarget } from "@/lib/logs/delimited/scan-rows";
 import type { TableForm } from "@/lib/logs/delimited/table-form";
 import { parseNumber } from "@/lib/logs/parse-number";
 import { countsToSeconds, readTimeCell, type TimeForm } from "@/lib/logs/times/time-forms";
@@ -49,112 +49,126 @@ function refuseDecimal(cell: string): never {
 /** True when a column holds any number at all. */
 export const hasNumber = (column: Float64Array): boolean => column.some((value) => !Number.isNaN(value));
 
+const isHead = (cells: readonly string[], head: readonly string[] | null) =>
+  head?.every((title, c) => (cells[c] ?? "").trim() === title) ?? false;
+
 /**
  * Parses all data rows from bytes that are pushed piece by piece. A row without a time, with too few or too many cells is
  * refused with its line; a repeated header is skipped with a problem entry; text in a numeric column becomes missing and is
  * counted. One pass; memory is that of the columns.
  */
-export function createCollector(options: CollectOptions) {
-  const { form, timeIndex, timeForm, lineEnd, decode, listAtMost = MOST_REFUSED_LISTED } = options;
-  const width = form.titles.length;
-  const { decimal } = form;
-  const store = createColumnStore(width, options.expectedRows);
-  const text = new Uint32Array(width);
-  const firstText = new Map<number, { row: number; raw: string }>();
-  const startText = new Map<number, string>();
-  const refused: RefusedRow[] = [];
-  let oddTexts: [number, string][] = [];
-  let refusedCount = 0;
-  let headers = 0;
-  let lastCount = Number.POSITIVE_INFINITY;
+export class RowCollector implements RowTarget {
+  columns: Float64Array[];
+  row = 0;
+  private readonly store: ReturnType<typeof createColumnStore>;
+  private readonly scanner: RowScanner;
+  private readonly width: number;
+  private readonly text: Uint32Array;
+  private readonly firstText = new Map<number, { row: number; raw: string }>();
+  private readonly startText = new Map<number, string>();
+  private readonly refused: RefusedRow[] = [];
+  private oddTexts: [number, string][] = [];
+  private refusedCount = 0;
+  private headers = 0;
+  private lastCount = Number.POSITIVE_INFINITY;
 
-  const refuse = (row: RefusedRow) => {
-    refusedCount++;
-    if (refused.length < listAtMost) refused.push(row);
-  };
-  const isHead = (cells: readonly string[], head: readonly string[] | null) =>
-    head?.every((title, c) => (cells[c] ?? "").trim() === title) ?? false;
+  constructor(private readonly options: CollectOptions) {
+    const { form, timeIndex, timeForm, lineEnd, decode } = options;
+    const { delimiter, decimal, lastHeadLine } = form;
+    this.width = form.titles.length;
+    this.store = createColumnStore(this.width, options.expectedRows);
+    this.columns = this.store.piece();
+    this.text = new Uint32Array(this.width);
+    const textColumn = timeForm === "clock" || timeForm === "iso" ? timeIndex : -1;
+    const { width } = this;
+    this.scanner = new RowScanner(
+      { delimiter, decimal, width, lineEnd, lastHeadLine, textColumn },
+      this,
+      decode,
+    );
+  }
 
-  function refuseUntimed(line: number): void {
-    const cells = scanner.texts();
-    if (isHead(cells, form.titles)) headers++;
+  private refuse(row: RefusedRow): void {
+    const { listAtMost = MOST_REFUSED_LISTED } = this.options;
+    this.refusedCount++;
+    if (this.refused.length < listAtMost) this.refused.push(row);
+  }
+
+  private refuseUntimed(line: number): void {
+    const { form, timeIndex } = this.options;
+    const cells = this.scanner.texts();
+    if (isHead(cells, form.titles)) this.headers++;
     else if (!isHead(cells, form.unitRow)) {
       const raw = (cells[timeIndex] ?? "").slice(0, LONGEST_RAW);
-      refuse({ row: line, column: form.titles[timeIndex], raw, reason: "has no readable time" });
+      this.refuse({ row: line, column: form.titles[timeIndex], raw, reason: "has no readable time" });
     }
   }
 
-  function endRow(line: number, cells: number, filled: number): void {
-    const odd = oddTexts;
-    if (odd.length > 0) oddTexts = [];
+  endRow(line: number, cells: number, filled: number): void {
+    const { width, columns, row } = this;
+    const { timeIndex } = this.options;
+    const odd = this.oddTexts;
+    if (odd.length > 0) this.oddTexts = [];
     if (cells !== width && (cells < width || filled > width)) {
       const reason =
         filled > width
           ? `has ${filled} cells where the header has ${width}`
           : `has ${cells} of ${width} cells`;
-      refuse({ row: line, reason });
+      this.refuse({ row: line, reason });
       return;
     }
-    const count = target.columns[timeIndex][target.row];
+    const count = columns[timeIndex][row];
     if (Number.isNaN(count)) {
-      refuseUntimed(line);
+      this.refuseUntimed(line);
       return;
     }
-    if (!(count >= lastCount) && startText.size < MAX_STARTS)
-      startText.set(store.rows(), (scanner.texts()[timeIndex] ?? "").trim());
-    lastCount = count;
+    if (!(count >= this.lastCount) && this.startText.size < MAX_STARTS)
+      this.startText.set(this.store.rows(), (this.scanner.texts()[timeIndex] ?? "").trim());
+    this.lastCount = count;
     for (const [c, raw] of odd) {
-      text[c]++;
-      if (!firstText.has(c)) firstText.set(c, { row: line, raw });
+      this.text[c]++;
+      if (!this.firstText.has(c)) this.firstText.set(c, { row: line, raw });
     }
-    target.row = store.keepRow();
-    if (target.row === 0) target.columns = store.piece();
+    this.row = this.store.keepRow();
+    if (this.row === 0) this.columns = this.store.piece();
   }
 
-  const target: RowTarget = {
-    columns: store.piece(),
-    row: 0,
-    oddCell(column, cell) {
-      if (form.decimalOpen && COMMA_NUMBER.test(cell)) refuseDecimal(cell);
-      if (column === timeIndex) return readTimeCell(cell, timeForm, decimal);
-      const value = parseNumber(cell, decimal);
-      if (value === null) oddTexts.push([column, cell]);
-      return value ?? Number.NaN;
-    },
-    endRow,
-  };
-  const textColumn = timeForm === "clock" || timeForm === "iso" ? timeIndex : -1;
-  const { delimiter, lastHeadLine } = form;
-  const scanner = createRowScanner(
-    { delimiter, decimal, width, lineEnd, lastHeadLine, textColumn },
-    target,
-    decode,
-  );
+  oddCell(column: number, cell: string): number {
+    const { form, timeIndex, timeForm } = this.options;
+    if (form.decimalOpen && COMMA_NUMBER.test(cell)) refuseDecimal(cell);
+    if (column === timeIndex) return readTimeCell(cell, timeForm, form.decimal);
+    const value = parseNumber(cell, form.decimal);
+    if (value === null) this.oddTexts.push([column, cell]);
+    return value ?? Number.NaN;
+  }
 
-  return {
-    push: scanner.push,
-    finish(problems: LogProblem[]): CollectedTable {
-      scanner.finish();
-      if (headers > 0)
-        problems.push({
-          code: "repeated_header",
-          message: `The header row is repeated ${headers} times inside the data; those lines were skipped.`,
-        });
-      if (refusedCount > 0)
-        problems.push({
-          code: "rows_refused",
-          message: `${refusedCount} rows were refused, the first in line ${refused[0]?.row}: it ${refused[0]?.reason}.`,
-        });
-      const columns = store.finish();
-      for (const [c, { row, raw }] of firstText) {
-        if (!hasNumber(columns[c])) continue;
-        problems.push({
-          code: "text_in_column",
-          message: `"${form.titles[c]}" holds ${text[c]} cells that are no numbers, the first "${raw.trim().slice(0, 40)}" in line ${row}; they count as missing.`,
-        });
-      }
-      countsToSeconds(columns[timeIndex], timeForm);
-      return { rows: store.rows(), columns, text, startText, refused };
-    },
-  };
+  push(bytes: Uint8Array): void {
+    this.scanner.push(bytes);
+  }
+
+  finish(problems: LogProblem[]): CollectedTable {
+    const { form, timeIndex, timeForm } = this.options;
+    this.scanner.finish();
+    const { headers, refusedCount, refused, firstText, startText, text, store } = this;
+    if (headers > 0)
+      problems.push({
+        code: "repeated_header",
+        message: `The header row is repeated ${headers} times inside the data; those lines were skipped.`,
+      });
+    if (refusedCount > 0)
+      problems.push({
+        code: "rows_refused",
+        message: `${refusedCount} rows were refused, the first in line ${refused[0]?.row}: it ${refused[0]?.reason}.`,
+      });
+    const columns = store.finish();
+    for (const [c, { row, raw }] of firstText) {
+      if (!hasNumber(columns[c])) continue;
+      problems.push({
+        code: "text_in_column",
+        message: `"${form.titles[c]}" holds ${text[c]} cells that are no numbers, the first "${raw.trim().slice(0, 40)}" in line ${row}; they count as missing.`,
+      });
+    }
+    countsToSeconds(columns[timeIndex], timeForm);
+    return { rows: store.rows(), columns, text, startText, refused };
+  }
 }

@@ -2,7 +2,7 @@ import { FileRefusedError } from "@/lib/errors";
 import { isTimeTitle, splitTitle } from "@/lib/logs/channels/channel-names";
 import { buildChannels, missingKeyColumns, type RawColumn } from "@/lib/logs/channels/channel-values";
 import { checkMissing } from "@/lib/logs/channels/missing-values";
-import { type CollectedTable, createCollector, hasNumber } from "@/lib/logs/delimited/collect-rows";
+import { type CollectedTable, hasNumber, RowCollector } from "@/lib/logs/delimited/collect-rows";
 import { firstRows } from "@/lib/logs/delimited/delimited-rows";
 import { spreadTimes } from "@/lib/logs/delimited/spread-times";
 import { findTableForm, type TableForm } from "@/lib/logs/delimited/table-form";
@@ -145,7 +145,7 @@ export function openDelimited(
       message: `The channel key states "${form.decimal}" as the decimal sign, but the cells of this log are written with the other one. Check the values, and give this log a key of its own.`,
     });
   const time = findTimeColumn(text.head, form, key, problems);
-  const collector = createCollector({
+  const collector = new RowCollector({
     form,
     timeIndex: time.index,
     timeForm: time.form,

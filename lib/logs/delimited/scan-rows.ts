@@ -60,59 +60,74 @@ function longMantissa(bytes: Uint8Array, from: number, to: number): number {
 /**
  * Cuts bytes of delimited text into rows of numbers, in one pass and without making strings of plain numbers; feed it piece
  * by piece, an unfinished line waits for the next piece. Text must be ASCII-compatible (UTF-8, windows-1252).
- * Same cells as `forEachRow` gives: RFC 4180 quotes, LF, CRLF or CR line ends, blank lines passed over. O(bytes).
+ * Same cells as `forEachRow` gives: RFC 4180 quotes, LF, CRLF or CR line ends, blank lines passed over. O(bytes). A class, as is
+ * its target: functions made anew for each log would have the engine throw away what it compiled for the last one.
  */
-export function createRowScanner(form: ScanForm, target: RowTarget, decode: (bytes: Uint8Array) => string) {
-  const { width, lastHeadLine, textColumn } = form;
-  const lineEnd = form.lineEnd.charCodeAt(0);
-  const plain = /^[\t;,|:!#&^~/]$/.test(form.delimiter);
-  const delimiter = plain ? form.delimiter.charCodeAt(0) : -1;
-  // A mark that cuts cells can't be the decimal sign as well: then only quoted cells hold one.
-  const decimal = form.decimal === form.delimiter ? -1 : form.decimal.charCodeAt(0);
-  const blankDelimiter = form.delimiter.trim() === "";
-  const whiteTab = delimiter === TAB ? SPACE : TAB;
-  let line = 0;
+export class RowScanner {
+  private readonly lineEnd: number;
+  private readonly plain: boolean;
+  private readonly delimiter: number;
+  private readonly decimal: number;
+  private readonly blankDelimiter: boolean;
+  private line = 0;
   /** The line under way, for whoever asks for its text. */
-  const current: { bytes: Uint8Array; from: number; end: number } = {
+  private readonly current: { bytes: Uint8Array; from: number; end: number } = {
     bytes: new Uint8Array(0),
     from: 0,
     end: 0,
   };
   /** Pieces of the line that has no end yet. */
-  let waiting: Uint8Array[] = [];
-  let waitingBytes = 0;
+  private waiting: Uint8Array[] = [];
+  private waitingBytes = 0;
+
+  constructor(
+    private readonly form: ScanForm,
+    private readonly target: RowTarget,
+    private readonly decode: (bytes: Uint8Array) => string,
+  ) {
+    this.lineEnd = form.lineEnd.charCodeAt(0);
+    this.plain = /^[\t;,|:!#&^~/]$/.test(form.delimiter);
+    this.delimiter = this.plain ? form.delimiter.charCodeAt(0) : -1;
+    // A mark that cuts cells can't be the decimal sign as well: then only quoted cells hold one.
+    this.decimal = form.decimal === form.delimiter ? -1 : form.decimal.charCodeAt(0);
+    this.blankDelimiter = form.delimiter.trim() === "";
+  }
 
   /** First position after the line that begins at `from`, quotes minded; −1 when a quoted cell is not closed before `to`. */
-  function logicalEnd(bytes: Uint8Array, from: number, to: number): number {
+  private logicalEnd(bytes: Uint8Array, from: number, to: number): number {
     let quotes = 0;
     for (let i = from; i < to; i++) {
       if (bytes[i] === QUOTE) quotes++;
-      else if (bytes[i] === lineEnd && quotes % 2 === 0) return i + 1;
+      else if (bytes[i] === this.lineEnd && quotes % 2 === 0) return i + 1;
     }
     return -1;
   }
 
-  function textLine(bytes: Uint8Array, from: number, end: number): string {
+  private textLine(bytes: Uint8Array, from: number, end: number): string {
     let stop = end;
-    if (stop > from && bytes[stop - 1] === lineEnd) stop--;
+    if (stop > from && bytes[stop - 1] === this.lineEnd) stop--;
     if (stop > from && bytes[stop - 1] === CR) stop--;
-    return decode(bytes.subarray(from, stop));
+    return this.decode(bytes.subarray(from, stop));
   }
 
-  const split = (text: string) =>
-    text.includes('"') ? splitQuoted(text, form.delimiter) : text.split(form.delimiter);
+  private split(text: string): string[] {
+    const { delimiter } = this.form;
+    return text.includes('"') ? splitQuoted(text, delimiter) : text.split(delimiter);
+  }
 
   /** A line with quotes, or any line where the delimiter is no single ASCII character. */
-  function slowLine(bytes: Uint8Array, from: number, to: number, final: boolean): number {
-    let end = logicalEnd(bytes, from, to);
+  private slowLine(bytes: Uint8Array, from: number, to: number, final: boolean): number {
+    const { lineEnd, target } = this;
+    const { lastHeadLine, width } = this.form;
+    let end = this.logicalEnd(bytes, from, to);
     if (end < 0 && (final || to - from > LONGEST_QUOTED_LINE)) end = bytes.indexOf(lineEnd, from) + 1;
     if (end < 0) return from;
-    const text = textLine(bytes, from, end);
-    const at = line + 1;
-    for (let i = from; i < end; i++) if (bytes[i] === lineEnd) line++;
+    const text = this.textLine(bytes, from, end);
+    const at = this.line + 1;
+    for (let i = from; i < end; i++) if (bytes[i] === lineEnd) this.line++;
     if (at <= lastHeadLine || text.trim() === "") return end;
-    Object.assign(current, { bytes, from, end });
-    const cells = split(text);
+    Object.assign(this.current, { bytes, from, end });
+    const cells = this.split(text);
     const { columns, row } = target;
     let filled = 0;
     for (let c = 0; c < cells.length; c++) {
@@ -125,21 +140,16 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
   }
 
   /** Reads whole lines of [from, to), the last byte of which is a line end; gives the position up to which it came. */
-  function scan(bytes: Uint8Array, from: number, to: number, final: boolean): number {
-    // The engine keeps locals of a hot loop in registers, but reads what a closure holds again and again.
-    const [cellEnd, rowEnd, point, tab, cells, asText] = [
-      delimiter,
-      lineEnd,
-      decimal,
-      whiteTab,
-      width,
-      textColumn,
-    ];
+  private scan(bytes: Uint8Array, from: number, to: number, final: boolean): number {
+    // The engine keeps locals of a hot loop in registers, but reads members again and again.
+    const { delimiter: cellEnd, lineEnd: rowEnd, decimal: point, plain, target } = this;
+    const { width: cells, textColumn: asText, lastHeadLine } = this.form;
+    const tab = cellEnd === TAB ? SPACE : TAB;
     let i = from;
     lines: while (i < to) {
       const start = i;
-      if (!plain || line < lastHeadLine) {
-        i = slowLine(bytes, start, to, final);
+      if (!plain || this.line < lastHeadLine) {
+        i = this.slowLine(bytes, start, to, final);
         if (i === start) return start;
         continue;
       }
@@ -188,14 +198,14 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
         } else {
           while (c !== cellEnd && c !== rowEnd && c !== QUOTE) c = bytes[++i];
           if (c === QUOTE) {
-            i = slowLine(bytes, start, to, final);
+            i = this.slowLine(bytes, start, to, final);
             if (i === start) return start;
             continue lines;
           }
           const textEnd = c === rowEnd && i > cellStart && bytes[i - 1] === CR ? i - 1 : i;
           value = Number.NaN;
           if (textEnd > cellStart) {
-            const text = decode(bytes.subarray(cellStart, textEnd));
+            const text = this.decode(bytes.subarray(cellStart, textEnd));
             if (text.trim() !== "") {
               filled = column + 1;
               if (column < cells) value = target.oddCell(column, text);
@@ -206,61 +216,65 @@ export function createRowScanner(form: ScanForm, target: RowTarget, decode: (byt
         i++;
         if (c === rowEnd) break;
       }
-      line++;
+      this.line++;
       const found = column + 1;
-      if (filled === 0 && (found === 1 || blankDelimiter)) continue;
+      if (filled === 0 && (found === 1 || this.blankDelimiter)) continue;
       for (let k = found; k < cells; k++) columns[k][row] = Number.NaN;
-      current.bytes = bytes;
-      current.from = start;
-      current.end = i;
-      target.endRow(line, found, filled);
+      this.current.bytes = bytes;
+      this.current.from = start;
+      this.current.end = i;
+      target.endRow(this.line, found, filled);
     }
     return i;
   }
 
-  function wait(bytes: Uint8Array): void {
+  private wait(bytes: Uint8Array): void {
     if (bytes.length === 0) return;
-    if (waitingBytes + bytes.length > LONGEST_LINE) refuseLine(line + 1);
-    waiting.push(bytes.slice());
-    waitingBytes += bytes.length;
+    if (this.waitingBytes + bytes.length > LONGEST_LINE) refuseLine(this.line + 1);
+    this.waiting.push(bytes.slice());
+    this.waitingBytes += bytes.length;
   }
 
   /** What waited with `tail` behind it; nothing waits then. */
-  function join(tail: Uint8Array): Uint8Array {
-    if (waiting.length === 0) return tail;
-    const joined = new Uint8Array(waitingBytes + tail.length);
+  private join(tail: Uint8Array): Uint8Array {
+    if (this.waiting.length === 0) return tail;
+    const joined = new Uint8Array(this.waitingBytes + tail.length);
     let at = 0;
-    for (const piece of waiting) {
+    for (const piece of this.waiting) {
       joined.set(piece, at);
       at += piece.length;
     }
     joined.set(tail, at);
-    waiting = [];
-    waitingBytes = 0;
+    this.waiting = [];
+    this.waitingBytes = 0;
     return joined;
   }
 
-  return {
-    /** The cells of the row under way as text; decodes and splits the line, so it is for the rare row only. */
-    texts: (): string[] => split(textLine(current.bytes, current.from, current.end)),
-    push(bytes: Uint8Array): void {
-      const last = bytes.lastIndexOf(lineEnd) + 1;
-      if (last > 0) {
-        // Only the line that was cut in two is copied, unless a quote in it is still open.
-        const first = waitingBytes > 0 ? bytes.indexOf(lineEnd) + 1 : 0;
-        const cut = join(bytes.subarray(0, first));
-        wait(cut.subarray(scan(cut, 0, cut.length, false)));
-        const whole = join(bytes.subarray(first, last));
-        wait(whole.subarray(scan(whole, 0, whole.length, false)));
-      }
-      wait(bytes.subarray(last));
-    },
-    finish(): void {
-      const rest = join(new Uint8Array());
-      const closed = new Uint8Array(rest.length + 1);
-      closed.set(rest);
-      closed[rest.length] = lineEnd;
-      for (let from = 0; from < closed.length; ) from = scan(closed, from, closed.length, true);
-    },
-  };
+  /** The cells of the row under way as text; decodes and splits the line, so it is for the rare row only. */
+  texts(): string[] {
+    const { bytes, from, end } = this.current;
+    return this.split(this.textLine(bytes, from, end));
+  }
+
+  push(bytes: Uint8Array): void {
+    const { lineEnd } = this;
+    const last = bytes.lastIndexOf(lineEnd) + 1;
+    if (last > 0) {
+      // Only the line that was cut in two is copied, unless a quote in it is still open.
+      const first = this.waitingBytes > 0 ? bytes.indexOf(lineEnd) + 1 : 0;
+      const cut = this.join(bytes.subarray(0, first));
+      this.wait(cut.subarray(this.scan(cut, 0, cut.length, false)));
+      const whole = this.join(bytes.subarray(first, last));
+      this.wait(whole.subarray(this.scan(whole, 0, whole.length, false)));
+    }
+    this.wait(bytes.subarray(last));
+  }
+
+  finish(): void {
+    const rest = this.join(new Uint8Array());
+    const closed = new Uint8Array(rest.length + 1);
+    closed.set(rest);
+    closed[rest.length] = this.lineEnd;
+    for (let from = 0; from < closed.length; ) from = this.scan(closed, from, closed.length, true);
+  }
 }

@@ -2,7 +2,7 @@ import fc from "fast-check";
 import Papa from "papaparse";
 import { describe, expect, it } from "vitest";
 import { openDelimited } from "@/lib/logs/delimited/read-delimited";
-import { createRowScanner, type ScanForm } from "@/lib/logs/delimited/scan-rows";
+import { RowScanner, type ScanForm } from "@/lib/logs/delimited/scan-rows";
 import { parseNumber } from "@/lib/logs/parse-number";
 import type { LogTable } from "@/lib/logs/types";
 
@@ -78,7 +78,7 @@ function scan(bytes: Uint8Array, lengths: readonly number[], changes: Partial<Sc
   const out: Scanned = { values: [], lines: [], texts: [] };
   const columns = Array.from({ length: form.width }, () => new Float64Array(1));
   const decoder = new TextDecoder();
-  const scanner = createRowScanner(
+  const scanner = new RowScanner(
     form,
     {
       columns,
@@ -138,7 +138,7 @@ describe("row scanner", () => {
 
   it("a line without an end is refused before it fills the memory", () => {
     const piece = new Uint8Array(1 << 20).fill(0x31);
-    const scanner = createRowScanner(
+    const scanner = new RowScanner(
       { delimiter: ",", decimal: ".", width: 1, lineEnd: "\n", lastHeadLine: 0, textColumn: -1 },
       { columns: [new Float64Array(1)], row: 0, oddCell: () => Number.NaN, endRow: () => undefined },
       () => "",
