@@ -44,7 +44,7 @@ export function DescriptionUnderstood({ description, epk }: DescriptionUnderstoo
           </li>
         ))}
       </ul>
-      {state === "reading" && <Notice>It is being read.</Notice>}
+      {state === "reading" && <Notice>It is being read. Reload the page in a moment.</Notice>}
       {state === "refused" && (
         <Notice tone="problem" title="This description is refused">
           {failure}
