@@ -129,6 +129,18 @@ export type CharacteristicType =
   | "VAL_BLK"
   | "ASCII";
 
+/** Axes that each type must describe. */
+export const AXES_OF: Readonly<Record<CharacteristicType, number>> = {
+  VALUE: 0,
+  CURVE: 1,
+  MAP: 2,
+  CUBOID: 3,
+  CUBE_4: 4,
+  CUBE_5: 5,
+  VAL_BLK: 0,
+  ASCII: 0,
+};
+
 export interface Characteristic extends Placed {
   type: CharacteristicType;
   axes: readonly AxisDescription[];

@@ -43,7 +43,7 @@ export interface RegionResult {
 type Image = Pick<CalibrationImage, "segments">;
 
 /** Bytes of a value of each algorithm. */
-const VALUE_BYTES = { crc32: 4, crc16: 2, sum8: 1, sum16: 2, sum32: 4 } as const;
+export const VALUE_BYTES = { crc32: 4, crc16: 2, sum8: 1, sum16: 2, sum32: 4 } as const;
 const TITLES = {
   crc32: "CRC-32",
   crc16: "CRC-16",

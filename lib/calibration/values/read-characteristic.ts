@@ -1,4 +1,4 @@
-import type { Characteristic } from "@/lib/calibration/a2l/types";
+import { AXES_OF, type Characteristic } from "@/lib/calibration/a2l/types";
 import { decimalsOf, joinRanges, stepOf } from "@/lib/calibration/values/convert/presentation";
 import type { CellPlaces } from "@/lib/calibration/values/memory/cell-places";
 import { AXIS_LETTERS, type PlacedRecord, placeRecord } from "@/lib/calibration/values/memory/place-record";
@@ -10,16 +10,6 @@ import { needOf, readAxis } from "@/lib/calibration/values/read-axis";
 import type { ReadingContext } from "@/lib/calibration/values/reading-context";
 import type { ReadCharacteristic } from "@/lib/calibration/values/types";
 
-const AXES: Readonly<Record<Characteristic["type"], number>> = {
-  VALUE: 0,
-  ASCII: 0,
-  VAL_BLK: 0,
-  CURVE: 1,
-  MAP: 2,
-  CUBOID: 3,
-  CUBE_4: 4,
-  CUBE_5: 5,
-};
 /** Curves that rest on curves that rest on curves … */
 const LONGEST_CHAIN = 8;
 
@@ -31,7 +21,7 @@ export function readCharacteristic(
 ): ReadCharacteristic {
   const { module, book, memory } = context;
   refuseVirtual(wanted);
-  const needed = AXES[wanted.type];
+  const needed = AXES_OF[wanted.type];
   if (wanted.axes.length !== needed) {
     throw new NotReadable(
       `it is a ${wanted.type} with ${wanted.axes.length} axis descriptions, ${needed} ${needed === 1 ? "is" : "are"} needed`,

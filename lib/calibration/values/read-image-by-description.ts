@@ -1,4 +1,4 @@
-import type { Description } from "@/lib/calibration/a2l/types";
+import type { Description, DescriptionModule } from "@/lib/calibration/a2l/types";
 import { ADDRESS_LIMIT, type CalibrationImage } from "@/lib/calibration/image/types";
 import { checkEpk } from "@/lib/calibration/values/check-epk";
 import { ConversionBook } from "@/lib/calibration/values/convert/conversion-book";
@@ -53,9 +53,7 @@ export function readImageByDescription(
     readModule(context, names, reading);
     left = { cellsLeft: context.cellsLeft, lettersLeft: context.lettersLeft };
     if (functions.isCut || groups.isCut) reading.problems.push(SETS_CUT);
-    for (const { name, programType, address, length } of module.memorySegments) {
-      reading.memorySegments.push({ name, programType, address, length });
-    }
+    addSegments(reading, module);
     const { epk, problem } = checkEpk(module.epk, memory);
     if (reading.epk.state === "none" || epk.state === "mismatch") reading.epk = epk;
     if (problem !== null) reading.problems.push(problem);
@@ -100,6 +98,19 @@ function readModule(context: ReadingContext, names: Set<string>, reading: ImageR
     const address = wanted.derived?.kind === "virtual" ? null : wanted.address;
     attempt(wanted.name, address, () => readCharacteristic(context, wanted));
   }
+}
+
+/** Segments of one reading; each changed stretch is looked for among all that overlap at it. */
+const MOST_SEGMENTS = 1000;
+
+function addSegments(reading: ImageReading, module: DescriptionModule): void {
+  const room = MOST_SEGMENTS - reading.memorySegments.length;
+  for (const { name, programType, address, length } of module.memorySegments.slice(0, room)) {
+    reading.memorySegments.push({ name, programType, address, length });
+  }
+  if (module.memorySegments.length <= room) return;
+  const message = `The description names more than ${MOST_SEGMENTS} memory segments; bytes in the others are listed without one.`;
+  if (!reading.problems.includes(message)) reading.problems.push(message);
 }
 
 const isAddress = (address: number) => Number.isInteger(address) && address >= 0 && address < ADDRESS_LIMIT;

@@ -2,25 +2,15 @@ import type { BlockReader } from "@/lib/calibration/a2l/blocks/block-reader";
 import { readAxis } from "@/lib/calibration/a2l/blocks/read-axis";
 import { readByteOrder } from "@/lib/calibration/a2l/blocks/read-layout";
 import { maskNumber } from "@/lib/calibration/a2l/token-number";
-import type {
-  AxisPoints,
-  ByteOrder,
-  Characteristic,
-  CharacteristicType,
-  Measurement,
+import {
+  AXES_OF,
+  type AxisPoints,
+  type ByteOrder,
+  type Characteristic,
+  type CharacteristicType,
+  type Measurement,
 } from "@/lib/calibration/a2l/types";
 
-/** Types with the number of axes that each must describe. */
-const AXES_OF: Readonly<Record<CharacteristicType, number>> = {
-  VALUE: 0,
-  CURVE: 1,
-  MAP: 2,
-  CUBOID: 3,
-  CUBE_4: 4,
-  CUBE_5: 5,
-  VAL_BLK: 0,
-  ASCII: 0,
-};
 const MOST_DIMENSIONS = 5;
 const NO_CONVERSION = "NO_COMPU_METHOD";
 

@@ -1,14 +1,11 @@
 import type { ChangeSet } from "@/lib/calibration/changes/types";
-import type { ChecksumRegion } from "@/lib/calibration/image/checksum-regions";
-
-/** Bytes of a stored value of each algorithm. */
-const STORED_BYTES = { crc32: 4, crc16: 2, sum8: 1, sum16: 2, sum32: 4 } as const;
+import { type ChecksumRegion, VALUE_BYTES } from "@/lib/calibration/image/checksum-regions";
 
 /** Addresses of the stored values of declared regions, each once: regions may share a value. */
 function storedAddresses(regions: readonly ChecksumRegion[]): Set<number> {
   const addresses = new Set<number>();
   for (const { storedAt, algorithm } of regions)
-    if (storedAt !== null) for (let i = 0; i < STORED_BYTES[algorithm]; i++) addresses.add(storedAt + i);
+    if (storedAt !== null) for (let i = 0; i < VALUE_BYTES[algorithm]; i++) addresses.add(storedAt + i);
   return addresses;
 }
 
