@@ -17,13 +17,13 @@ function valueText({ unit, decimals }: CharacteristicChange, value: number): str
   return `${figure(value, decimals)}${unit ? ` ${unit}` : ""}`;
 }
 
-/** "KFZW moves most at cell [3, 1] at 2,500 1/min, 120 kPa: 14.2 to 15 °", then what it measures. */
+/** "Spark moves most at cell [3, 1] at 2,500 1/min, 120 kPa: 14.2 to 15 °", then what it measures. */
 export function moveText(change: CharacteristicChange, step: TableStep, measured: string): string {
   const cell = step.index.length > 0 ? ` at cell ${cellText(change, step.index)}` : "";
   return `${change.name} moves most${cell}: ${figure(step.from, change.decimals)} to ${valueText(change, step.to)}${measured}`;
 }
 
-/** "KFZW steps most from cell [3, 1] at 2,500 1/min to [4, 1] at 3,000 1/min: 14.2 to 18 °", then what it measures. */
+/** "Spark steps most from cell [3, 1] at 2,500 1/min to [4, 1] at 3,000 1/min: 14.2 to 18 °", then what it measures. */
 export function stepText(change: CharacteristicChange, step: TableStep, measured: string): string {
   const next = step.next ? ` to ${cellText(change, step.next)}` : "";
   return `${change.name} steps most from cell ${cellText(change, step.index)}${next}: ${figure(step.from, change.decimals)} to ${valueText(change, step.to)}${measured}`;
