@@ -303,6 +303,11 @@ describe("a second lead's agreement", () => {
     await expect(agreeAsSecondLead(lead, { ...input, passphrase: "wrong" })).rejects.toThrow(ForbiddenError);
     const stranger = await signer(tx, (await createCalibrationScene(tx, files.store)).workspaceId, ["lead"]);
     await expect(agreeAsSecondLead(stranger, input)).rejects.toThrow(NotFoundError);
+    const archive = (archivedAt: Date | null) =>
+      tx.update(programmes).set({ archivedAt }).where(eq(programmes.id, scene.programmeId));
+    await archive(new Date());
+    await expect(agreeAsSecondLead(lead, input)).rejects.toMatchObject({ code: "programme_archived" });
+    await archive(null);
     await setState(scene, after, { submitterId: lead.userId });
     await expect(agreeAsSecondLead(lead, input)).rejects.toThrow(ForbiddenError);
     const plain = await candidate(tx, { image: { gain: 90 } });

@@ -8,13 +8,14 @@ import { retryLost } from "@/lib/services/decisions/retry";
 import { type AgreeInput, agreeInput } from "@/lib/services/decisions/schema";
 import { gateDesk } from "@/lib/services/gates/status";
 import { appendLedger } from "@/lib/services/ledger/append";
+import { refuseArchived } from "@/lib/services/programmes/refuse-archived";
 import { noRevision, requireState } from "@/lib/services/revisions/load";
 
 /**
  * A second lead agrees that marked functions are changed, signed; it holds for exactly the change set that they saw. Whoever
  * promotes then must be another lead. It decides nothing by itself.
  * @throws ForbiddenError author, submitter, role or passphrase; NotFoundError; ConflictError `evidence_moved`, `nothing_to_agree`,
- *   `agreed_already`, `wrong_state`; TooManyRequestsError
+ *   `agreed_already`, `wrong_state`, `programme_archived`; TooManyRequestsError
  */
 export async function agreeAsSecondLead(ctx: Ctx, raw: AgreeInput): Promise<void> {
   const { revisionId, touchedSha256, reason, passphrase } = agreeInput.parse(raw);
@@ -38,6 +39,7 @@ export async function agreeAsSecondLead(ctx: Ctx, raw: AgreeInput): Promise<void
           "not_allowed",
           "You can't agree as second lead: you made it or asked for the decision.",
         );
+      refuseArchived(programme);
       requireState(revision, ["in_review"], "agree to it");
       const { calibration } = await gateDesk(tx, {
         workspaceId,
