@@ -2,7 +2,7 @@ import type { CdfAxis, CdfFile, CdfInstance, CdfValue } from "@/lib/calibration/
 import { ValueGroups } from "@/lib/calibration/cdf/value-groups";
 import { FileRefusedError } from "@/lib/errors";
 
-/** A reading of an image ends at eight million cells; a made-up file must not claim memory by numbers. */
+/** A reading of an image ends at four million cells; a made-up file must not claim memory by numbers. */
 const MOST_VALUES = 10_000_000;
 const MOST_INSTANCES = 500_000;
 const LONGEST_TEXT = 1 << 20;

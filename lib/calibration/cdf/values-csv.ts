@@ -33,13 +33,13 @@ const LIMITS: Readonly<Record<LimitState, string>> = {
 };
 
 /**
- * All values of a reading as CSV (RFC 4180), one row a cell, a piece a characteristic: point as decimal mark, an empty cell where there is
+ * All values of a reading as CSV (RFC 4180), one row a cell, in pieces of some rows: point as decimal mark, an empty cell where there is
  * no value. What could not be read stands at the end with its reason.
  */
 export function* readingCsv(reading: ImageReading): Generator<string> {
   yield csvOf([["name", ...AXIS_TITLES, "value", "unit", "limit", "functions", "remark"]]);
-  for (const of of reading.characteristics) yield csvOf(readingRows(of));
-  yield csvOf(
+  for (const of of reading.characteristics) yield* piecesOf(readingRows(of));
+  yield* piecesOf(
     reading.notRead.map(({ name, reason }) => [
       name,
       ...placed({ axes: [], index: [] }),
@@ -59,24 +59,19 @@ export function* readingCsv(reading: ImageReading): Generator<string> {
 export function* changesCsv(changes: ChangeSet): Generator<string> {
   const titles = ["before", "after", "difference", "unit", "limit after", "functions"];
   yield csvOf([["name", "change", ...AXIS_TITLES, ...titles]]);
-  for (const change of changes.characteristics) yield csvOf(changeRows(change));
+  for (const change of changes.characteristics) yield* piecesOf(changeRows(change));
 }
 
-function readingRows(of: ReadCharacteristic): Cell[][] {
+function* readingRows(of: ReadCharacteristic): Generator<Cell[]> {
   const { axes, dims, limits, unit, characters } = of;
   const functions = of.functions.join(", ");
-  return cellsOf({ axes, dims, values: of.values, characters }).map(({ index, value }) => [
-    of.name,
-    ...placed({ axes, index }),
-    value,
-    unit,
-    LIMITS[limitStateOf(value, limits)],
-    functions,
-    null,
-  ]);
+  for (const { index, value } of cellsOf({ axes, dims, values: of.values, characters })) {
+    const limit = LIMITS[limitStateOf(value, limits)];
+    yield [of.name, ...placed({ axes, index }), value, unit, limit, functions, null];
+  }
 }
 
-function changeRows(change: CharacteristicChange): Cell[][] {
+function* changeRows(change: CharacteristicChange): Generator<Cell[]> {
   const { name, before, after, kind, changes } = change;
   const functions = change.functions.join(", ");
   const line = (at: Place, from: PhysicalValue, to: PhysicalValue, over: Partial<Shown> = {}): Cell[] => {
@@ -85,24 +80,18 @@ function changeRows(change: CharacteristicChange): Cell[][] {
     return [name, what, ...placed(at), from, to, difference, unit, limit, functions];
   };
   // Cells that only one side has, or of other shapes, do not stand for each other.
-  const eachSide = () => [
-    ...cellsOf(before).map(({ value, ...at }) => line(at, value, null)),
-    ...cellsOf(after).map(({ value, ...at }) => line(at, null, value)),
-  ];
-  if (!before || !after) return eachSide();
-  return [
-    ...movedPoints(before, after).map(({ axis, index, from, to, unit }) =>
-      line({ axes: [], index }, from, to, { what: `axis ${axis}`, unit }),
-    ),
-    ...changes.map(({ index, before: from, after: to, limit }) =>
-      line({ axes: after.axes, index }, from, to, { limit: LIMITS[limit] }),
-    ),
-    ...(before.characters !== null && after.characters !== null
-      ? [line({ axes: [], index: [] }, before.characters, after.characters)]
-      : change.shapeChanged
-        ? eachSide()
-        : []),
-  ];
+  function* eachSide() {
+    for (const { value, ...at } of cellsOf(before)) yield line(at, value, null);
+    for (const { value, ...at } of cellsOf(after)) yield line(at, null, value);
+  }
+  if (!before || !after) return yield* eachSide();
+  for (const { axis, index, from, to, unit } of movedPoints(before, after))
+    yield line({ axes: [], index }, from, to, { what: `axis ${axis}`, unit });
+  for (const { index, before: from, after: to, limit } of changes)
+    yield line({ axes: after.axes, index }, from, to, { limit: LIMITS[limit] });
+  if (before.characters !== null && after.characters !== null)
+    yield line({ axes: [], index: [] }, before.characters, after.characters);
+  else if (change.shapeChanged) yield* eachSide();
 }
 
 /** What a row of a change says beside its place and values. */
@@ -124,11 +113,11 @@ function movedPoints(before: ChangeSide, after: ChangeSide) {
   });
 }
 
-function cellsOf(side: ChangeSide | null) {
-  if (!side) return [];
+function* cellsOf(side: ChangeSide | null): Generator<Place & { value: PhysicalValue }> {
+  if (!side) return;
   const { axes, dims, values, characters } = side;
-  if (characters !== null) return [{ axes, index: [], value: characters }];
-  return values.map((value, cell) => ({ axes, index: cellIndex(cell, dims), value }));
+  if (characters !== null) yield { axes, index: [], value: characters };
+  else for (const [cell, value] of values.entries()) yield { axes, index: cellIndex(cell, dims), value };
 }
 
 /** Index, point and unit of each axis; empty where the cell has no such axis. */
@@ -137,6 +126,21 @@ function placed({ axes, index }: Place): Cell[] {
     const at = index[k] ?? Number.NaN;
     return Number.isNaN(at) ? [null, null, null] : [at, axes[k]?.points[at] ?? null, axes[k]?.unit ?? null];
   });
+}
+
+/** Rows of one piece: a large block must stand in memory neither as rows nor as text. */
+const ROWS_OF_A_PIECE = 1000;
+
+function* piecesOf(rows: Iterable<Cell[]>): Generator<string> {
+  let some: Cell[][] = [];
+  for (const row of rows) {
+    if (some.length === ROWS_OF_A_PIECE) {
+      yield csvOf(some);
+      some = [];
+    }
+    some.push(row);
+  }
+  yield csvOf(some);
 }
 
 const csvOf = (rows: Cell[][]) =>

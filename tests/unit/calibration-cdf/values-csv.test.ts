@@ -99,6 +99,13 @@ describe("values as CSV", () => {
       { numRuns: 200, seed: 51 },
     );
   });
+  it("a large block comes in many small pieces", () => {
+    const values = Array.from({ length: 20_000 }, (_, k) => k);
+    const block = madeCharacteristic({ name: "block", type: "VAL_BLK", dims: [values.length], values });
+    const pieces = [...readingCsv(madeReading(block))];
+    expect(Math.max(...pieces.map((piece) => piece.length))).toBeLessThan(100_000);
+    expect(parsed(pieces).map((row) => Number(row.value))).toEqual(values);
+  });
   it("a text is one row without an index; limits are told in words", () => {
     const limits = { lower: 0, upper: 10, extended: [-5, 20] as const };
     const reading = madeReading(
