@@ -1,6 +1,7 @@
 import { cellChanges, sideOf, summarise } from "@/lib/calibration/changes/compare-characteristic";
 import type { Pair } from "@/lib/calibration/changes/pair";
 import type { CharacteristicChange } from "@/lib/calibration/changes/types";
+import { createMaskedWords } from "@/lib/calibration/changes/uncovered/masked-words";
 import type { ByteRange, ImageReading, ReadCharacteristic } from "@/lib/calibration/values/types";
 
 /** Cells of changed characteristics that are listed in full, all together. */
@@ -27,6 +28,7 @@ export function compareReadings(a: ImageReading, b: ImageReading): Compared {
   const oneSided: string[] = [];
   const explained: ByteRange[] = [];
   const found: { pair: Pair; change: CharacteristicChange }[] = [];
+  const maskedWords = createMaskedWords();
   const explain = (one: ReadCharacteristic | null) => explained.push(...(one?.bytes ?? []));
 
   for (const name of new Set([...before.keys(), ...after.keys()])) {
@@ -37,7 +39,7 @@ export function compareReadings(a: ImageReading, b: ImageReading): Compared {
     }
     const change = summarise(pair);
     const isMoved = pair.before && pair.after && pair.before.address !== pair.after.address;
-    if (change || isMoved) {
+    if ((change || isMoved) && !maskedWords.take(pair)) {
       explain(pair.before);
       explain(pair.after);
     }
@@ -48,7 +50,7 @@ export function compareReadings(a: ImageReading, b: ImageReading): Compared {
   found.sort((p, q) => q.change.effect - p.change.effect || (p.change.name < q.change.name ? -1 : 1));
   return {
     changes: withCells(found),
-    explained,
+    explained: [...explained, ...maskedWords.explained()],
     problems: [
       ...sentence(
         oneSided,

@@ -1,10 +1,10 @@
-import { AXES_OF, type Characteristic } from "@/lib/calibration/a2l/types";
+import { AXES_OF, type Characteristic, DATA_TYPES, type DataType } from "@/lib/calibration/a2l/types";
 import { decimalsOf, joinRanges, stepOf } from "@/lib/calibration/values/convert/presentation";
 import type { CellPlaces } from "@/lib/calibration/values/memory/cell-places";
 import { AXIS_LETTERS, type PlacedRecord, placeRecord } from "@/lib/calibration/values/memory/place-record";
 import { readCells } from "@/lib/calibration/values/memory/read-cells";
 import { readCharacters } from "@/lib/calibration/values/memory/read-characters";
-import { applyMask, exactRaw } from "@/lib/calibration/values/memory/read-number";
+import { applyMask, exactRaw, type Raw } from "@/lib/calibration/values/memory/read-number";
 import { NotReadable } from "@/lib/calibration/values/not-readable";
 import { needOf, readAxis } from "@/lib/calibration/values/read-axis";
 import type { ReadingContext } from "@/lib/calibration/values/reading-context";
@@ -77,7 +77,8 @@ export function readCharacteristic(
     readAxis(context, { axis, letter: AXIS_LETTERS[k], count: placed.counts[k], placed }, wanted, byName),
   );
   noteFalling(context, wanted, placed, cells);
-  const raw = readCells(context, cells, order).map(mask);
+  const words = readCells(context, cells, order);
+  const raw = words.map(mask);
   return {
     ...common,
     dims: cells.dims,
@@ -86,8 +87,18 @@ export function readCharacteristic(
     raw: raw.map(exactRaw),
     characters: null,
     rawStep: stepOf(converter, raw, limits, cells.type),
+    ...(cells.dims.length === 0 && maskedBits(cells.type, wanted.bitMask, words[0])),
     bytes: joinRanges(placed.bytes),
   };
+}
+
+/** The word that a masked value is part of; nothing where the mask takes all of it. */
+function maskedBits(type: DataType, mask: bigint | null, word: Raw): Pick<ReadCharacteristic, "bits"> {
+  const width = 8 * DATA_TYPES[type];
+  const own = mask === null ? -1n : BigInt.asUintN(width, mask);
+  if (own === BigInt.asUintN(width, -1n) || own === -1n) return {};
+  const hex = (bits: bigint) => `0x${bits.toString(16)}`;
+  return { bits: { mask: hex(own), word: hex(BigInt.asUintN(width, BigInt(word))) } };
 }
 
 function refuseVirtual({ derived }: Characteristic): void {

@@ -50,6 +50,8 @@ export interface ReadCharacteristic {
   readOnly: boolean;
   /** DEPENDENT_CHARACTERISTIC: its formula. */
   formula: string | null;
+  /** One value that is some bits of a word: mask and whole word, as hexadecimal text. */
+  bits?: { mask: string; word: string };
   /** All bytes that it rests on in its own record (not those of a shared axis). */
   bytes: ByteRange[];
 }

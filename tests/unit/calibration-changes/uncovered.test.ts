@@ -127,8 +127,23 @@ describe("beside described values", () => {
     const bits = described(made, [at(0x1000, [0b01, 0x41, 0, 0, 0])], [at(0x1000, [0b11, 0x41, 0, 7, 0])]);
     expect(bits.characteristics).toEqual([]);
     expect(bits.uncovered.map(({ address }) => address)).toEqual([0x1000, 0x1003]);
-    const own = described(made, [at(0x1000, [0b00, 0x41, 0, 0, 0])], [at(0x1000, [0b11, 0x41, 0, 0, 0])]);
+    const own = described(made, [at(0x1000, [0b00, 0x41, 0, 0, 0])], [at(0x1000, [0b01, 0x41, 0, 0, 0])]);
     expect(own).toMatchObject({ uncovered: [], characteristics: [{ name: "BIT" }] });
+  });
+
+  it("a bit that nobody described is uncovered, even where a described bit of the same word changed", () => {
+    const bit = (name: string, bitMask: bigint) => characteristic({ name, bitMask });
+    const two = { characteristics: [bit("LOW", 1n), bit("HIGH", 0x80n)] };
+    const from = [at(0x1000, [0])];
+    const addresses = (byte: number, made: MadeModule = two) =>
+      described(made, from, [at(0x1000, [byte])]).uncovered.map(({ address }) => address);
+    expect(addresses(0x01)).toEqual([]);
+    expect(addresses(0x81)).toEqual([]);
+    expect(addresses(0x03)).toEqual([0x1000]);
+    expect(addresses(0x91)).toEqual([0x1000]);
+    // A value without a mask describes the whole byte.
+    const whole = { characteristics: [bit("LOW", 1n), characteristic({ name: "WHOLE" })] };
+    expect(addresses(0x03, whole)).toEqual([]);
   });
 
   it("bytes behind the start of what could not be read are told, not counted as covered", () => {
