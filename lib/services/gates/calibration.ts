@@ -88,8 +88,11 @@ export async function calibrationDesk(
   if (!b) return null;
   const sideOf = (wanted: string | null) => sides.find(({ id }) => id === wanted);
   const standing = await pair(db, { workspaceId, a: sideOf(standingRevisionId), b });
+  // Where there is no parent, what is asked against it is asked against what stands.
   const parent =
-    parentId === standingRevisionId ? standing : await pair(db, { workspaceId, a: sideOf(parentId), b });
+    parentId === null || parentId === standingRevisionId
+      ? standing
+      : await pair(db, { workspaceId, a: sideOf(parentId), b });
   const marks = await selectSetting(db, { workspaceId, programmeId, kind: "relevance_marks" });
   const regions = await selectSetting(db, { workspaceId, programmeId, kind: "checksum_regions" });
   const coverage = standing?.result ? await coverageNow(db, standing) : null;
