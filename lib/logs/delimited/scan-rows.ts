@@ -256,7 +256,9 @@ export class RowScanner {
     return this.split(this.textLine(bytes, from, end));
   }
 
-  push(bytes: Uint8Array): void {
+  push(piece: Uint8Array): void {
+    // A Buffer is another shape to the engine: one loop that met both would read every byte the slow way.
+    const bytes = new Uint8Array(piece.buffer, piece.byteOffset, piece.byteLength);
     const { lineEnd } = this;
     const last = bytes.lastIndexOf(lineEnd) + 1;
     if (last > 0) {
