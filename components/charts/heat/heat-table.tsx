@@ -1,6 +1,6 @@
 "use client";
 
-import { memo } from "react";
+import { Fragment, memo } from "react";
 import type { HeatStep } from "@/components/charts/heat/heat-ramp";
 import { useStartAtChange } from "@/components/charts/heat/use-start-at-change";
 import { cn } from "@/lib/cn";
@@ -70,10 +70,10 @@ export function HeatTable({ caption, x, y, rowHead = "", cells }: HeatTableProps
               rowSpan={2}
               className={cn(
                 headCell,
-                "sticky top-0 left-0 z-20 w-32 max-w-32 whitespace-normal border-r border-b align-bottom [overflow-wrap:anywhere]",
+                "sticky top-0 left-0 z-20 min-w-28 max-w-32 whitespace-normal border-r border-b align-bottom [overflow-wrap:anywhere]",
               )}
             >
-              {y?.head}
+              {y && breakable(y.head)}
             </th>
             <th
               scope="colgroup"
@@ -110,6 +110,17 @@ export function HeatTable({ caption, x, y, rowHead = "", cells }: HeatTableProps
       </table>
     </div>
   );
+}
+
+/** A name that breaks behind its underscores before it breaks anywhere. */
+function breakable(name: string) {
+  return name.split(/(?<=_)/).map((part, at) => (
+    // biome-ignore lint/suspicious/noArrayIndexKey: parts never move
+    <Fragment key={at}>
+      {at > 0 && <wbr />}
+      {part}
+    </Fragment>
+  ));
 }
 
 /** A point of an axis; where it moved, the old one stands struck above the new one. */
