@@ -5,7 +5,7 @@ import { type StripValue, ValueStrip } from "@/components/charts/frame/value-str
 import { deltaText } from "@/components/charts/overlay/describe-overlay";
 import { OVERLAY_BOX, type OverlayLayout } from "@/components/charts/overlay/overlay-layout";
 import type { DeltaView, OverlayData, OverlayQuantity } from "@/components/charts/overlay/overlay-types";
-import { numberText } from "@/components/ui/data/number-text";
+import { counted, numberText } from "@/components/ui/data/number-text";
 
 interface CursorProps {
   store: CursorStore;
@@ -76,22 +76,18 @@ export function OverlayStrip({
       marker: "a",
       value: number(quantity.a[at]),
       unit: quantity.unit,
-      note: runsText(data.nA),
+      note: counted(data.nA, "run"),
     },
     {
       term: `B ${data.labelB}`,
       marker: "b",
       value: number(quantity.b[at]),
       unit: quantity.unit,
-      note: runsText(data.nB),
+      note: counted(data.nB, "run"),
     },
     { term: "B \u2212 A", value: deltaText(delta, at), note: verdictAt(data, at), emphasis: true },
   ];
   return <ValueStrip values={values} />;
-}
-
-function runsText(n: number): string {
-  return n === 1 ? "1 run" : `${n} runs`;
 }
 
 function verdictAt(data: OverlayData, index: number): string {

@@ -1,12 +1,12 @@
 import { AxisChange } from "@/components/features/change-sets/detail/axis-change";
 import { ChangeFigure, type ChangeFigureProps } from "@/components/features/change-sets/detail/change-figure";
 import { LookedAtForm } from "@/components/features/change-sets/walk/looked-at";
-import { limitText, TYPE_WORDS } from "@/components/features/change-sets/words/change-words";
+import { limitText } from "@/components/features/change-sets/words/change-words";
 import { type ChangeCoverage, visitedText } from "@/components/features/change-sets/words/coverage-words";
-import { counted } from "@/components/features/change-sets/words/figure-text";
 import { addressText } from "@/components/ui/data/address-text";
-import { numberText } from "@/components/ui/data/number-text";
+import { counted, numberText } from "@/components/ui/data/number-text";
 import { Tag } from "@/components/ui/data/tag";
+import { TYPE_WORDS } from "@/lib/calibration/values/type-words";
 
 export interface ChangeDetailProps extends Omit<ChangeFigureProps, "coverage"> {
   coverage: ChangeCoverage | null;

@@ -12,13 +12,13 @@ import {
 } from "@/components/features/change-sets/list/view-address";
 import { ChangeKeys, type WalkItem } from "@/components/features/change-sets/walk/change-keys";
 import { LookedAtCount, LookedAtForm } from "@/components/features/change-sets/walk/looked-at";
-import { TYPE_WORDS } from "@/components/features/change-sets/words/change-words";
 import { coverageOf } from "@/components/features/change-sets/words/coverage-words";
-import { counted, withPlainUnits } from "@/components/features/change-sets/words/figure-text";
+import { withPlainUnits } from "@/components/features/change-sets/words/figure-text";
 import { LinkButton } from "@/components/ui/action/link-button";
-import { numberText } from "@/components/ui/data/number-text";
+import { counted, numberText } from "@/components/ui/data/number-text";
 import { touchedMarks } from "@/lib/calibration/changes/relevance";
 import type { ChangeSet, CharacteristicChange } from "@/lib/calibration/changes/types";
+import { TYPE_WORDS } from "@/lib/calibration/values/type-words";
 import { cn } from "@/lib/cn";
 import type { RevisionChangesView } from "@/lib/services/change-sets/schema";
 

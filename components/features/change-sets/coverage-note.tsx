@@ -1,8 +1,7 @@
 import type { Route } from "next";
 import Link from "next/link";
 import type { ReactNode } from "react";
-import { counted } from "@/components/features/change-sets/words/figure-text";
-import { numberText } from "@/components/ui/data/number-text";
+import { counted, numberText } from "@/components/ui/data/number-text";
 import { Table } from "@/components/ui/data/table";
 import { Disclosure } from "@/components/ui/layout/disclosure";
 import type { RevisionChangesView } from "@/lib/services/change-sets/schema";

@@ -1,4 +1,4 @@
-import { counted, plainUnit } from "@/components/features/change-sets/words/figure-text";
+import { plainUnit } from "@/components/features/change-sets/words/figure-text";
 import {
   checkSentence,
   differenceTexts,
@@ -6,7 +6,7 @@ import {
   leftOutOf,
   placeText,
 } from "@/components/features/change-sets/words/values-check-words";
-import { numberText } from "@/components/ui/data/number-text";
+import { counted, numberText } from "@/components/ui/data/number-text";
 import { type Column, Table } from "@/components/ui/data/table";
 import { Disclosure } from "@/components/ui/layout/disclosure";
 import { Notice } from "@/components/ui/status/notice";

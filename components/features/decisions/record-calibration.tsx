@@ -1,7 +1,7 @@
 import { TouchedMarks } from "@/components/features/decisions/touched-marks";
 import { DescriptionList } from "@/components/ui/data/description-list";
 import { Fingerprint } from "@/components/ui/data/fingerprint";
-import { numberText } from "@/components/ui/data/number-text";
+import { counted, numberText } from "@/components/ui/data/number-text";
 
 export interface RecordCalibrationProps {
   calibration: {
@@ -36,8 +36,8 @@ export function RecordCalibration({ calibration }: RecordCalibrationProps) {
       term: "Changed",
       description:
         readBy === "none"
-          ? `${numberText(calibration.changedBytes)} bytes; no description said what they are`
-          : `${numberText(calibration.changedCharacteristics)} characteristics, ${numberText(calibration.changedBytes)} bytes, of which ${numberText(calibration.uncoveredBytes)} are described by none`,
+          ? `${counted(calibration.changedBytes, "byte")}; no description said what they are`
+          : `${counted(calibration.changedCharacteristics, "characteristic")}, ${counted(calibration.changedBytes, "byte")}, of which ${numberText(calibration.uncoveredBytes)} are described by none`,
     },
     { term: "Change set", description: <Fingerprint value={calibration.resultSha256} full /> },
     {

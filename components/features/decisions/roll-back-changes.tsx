@@ -1,5 +1,6 @@
+import { addressText } from "@/components/ui/data/address-text";
 import { Fingerprint } from "@/components/ui/data/fingerprint";
-import { numberText } from "@/components/ui/data/number-text";
+import { counted, numberText } from "@/components/ui/data/number-text";
 import { Table } from "@/components/ui/data/table";
 import { Notice } from "@/components/ui/status/notice";
 
@@ -12,8 +13,6 @@ export interface RollBackChangesProps {
     sameBytes: boolean;
   };
 }
-
-const hex = (address: number) => `0x${address.toString(16).toUpperCase().padStart(6, "0")}`;
 
 /** Bytes that would change back, by address. */
 export function RollBackChanges({ preview }: RollBackChangesProps) {
@@ -35,7 +34,7 @@ export function RollBackChanges({ preview }: RollBackChangesProps) {
               ? "Both revisions have the same file, byte for byte."
               : difference.bytes === 0
                 ? "Both images hold the same bytes at the same addresses; only their files differ."
-                : `${numberText(difference.bytes)} bytes in ${numberText(difference.ranges)} ${difference.ranges === 1 ? "place" : "places"} differ.`}
+                : `${counted(difference.bytes, "byte")} in ${counted(difference.ranges, "place")} ${difference.bytes === 1 ? "differs" : "differ"}.`}
           </p>
           {difference.first.length > 0 && (
             <Table
@@ -55,7 +54,7 @@ export function RollBackChanges({ preview }: RollBackChangesProps) {
                   header: "Address",
                   rowHeader: true,
                   className: "tabular",
-                  cell: (range) => hex(range.address),
+                  cell: (range) => addressText(range.address),
                 },
                 { key: "length", header: "Bytes", numeric: true, cell: (range) => numberText(range.length) },
               ]}

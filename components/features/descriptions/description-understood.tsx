@@ -1,24 +1,12 @@
 import { DescriptionList } from "@/components/ui/data/description-list";
-import { numberText } from "@/components/ui/data/number-text";
+import { counted, numberText } from "@/components/ui/data/number-text";
 import { Table } from "@/components/ui/data/table";
 import { Disclosure } from "@/components/ui/layout/disclosure";
 import { Notice } from "@/components/ui/status/notice";
+import { TYPE_WORDS } from "@/lib/calibration/values/type-words";
 import type { ImageReading } from "@/lib/calibration/values/types";
 import type { ShownDescription } from "@/lib/services/change-sets/schema";
 import type { DescriptionSummary } from "@/lib/services/descriptions/schema";
-
-/** Kinds of characteristics in the order and the words of the pages. */
-const KINDS: readonly [string, string, string][] = [
-  ["MAP", "map", "maps"],
-  ["CURVE", "curve", "curves"],
-  ["VALUE", "value", "values"],
-  ["CUBOID", "cuboid", "cuboids"],
-  ["CUBE_4", "table of 4 axes", "tables of 4 axes"],
-  ["CUBE_5", "table of 5 axes", "tables of 5 axes"],
-  ["VAL_BLK", "block", "blocks"],
-  ["AXIS_PTS", "shared axis", "shared axes"],
-  ["ASCII", "text", "texts"],
-];
 
 const EPK_WORDS: Record<ImageReading["epk"]["state"], string> = {
   match: "belongs to this image by its identification",
@@ -57,9 +45,9 @@ export function DescriptionUnderstood({ description, epk }: DescriptionUnderstoo
 
 function Summary({ summary, epk }: { summary: DescriptionSummary; epk: ImageReading["epk"] | null }) {
   const { version, project, modules, counts, functions, groups, missingIncludes, notes } = summary;
-  const kinds = KINDS.flatMap(([kind, one, many]) => {
+  const kinds = Object.entries(TYPE_WORDS).flatMap(([kind, words]) => {
     const count = counts[kind] ?? 0;
-    return count > 0 ? [`${numberText(count)} ${count === 1 ? one : many}`] : [];
+    return count > 0 ? [counted(count, ...words)] : [];
   });
   return (
     <>
@@ -71,7 +59,7 @@ function Summary({ summary, epk }: { summary: DescriptionSummary; epk: ImageRead
           { term: "Describes", description: kinds.join(", ") || "nothing" },
           {
             term: "Named sets",
-            description: `${numberText(functions)} functions, ${numberText(groups)} groups`,
+            description: `${counted(functions, "function")}, ${counted(groups, "group")}`,
           },
           ...(epk ? [{ term: "Image", description: EPK_WORDS[epk.state] }] : []),
         ]}

@@ -1,5 +1,5 @@
-import { bytesText } from "@/components/features/revisions/image-understood";
 import { addressText } from "@/components/ui/data/address-text";
+import { counted } from "@/components/ui/data/number-text";
 import { Table } from "@/components/ui/data/table";
 import type { ImageDifference } from "@/lib/calibration/image/image-summary";
 
@@ -17,9 +17,8 @@ export function ChangedRanges({
   return (
     <div className="flex flex-col gap-3">
       <p>
-        <strong>{bytesText(difference.bytes)}</strong> differ from R{parentNumber}, in {difference.ranges}{" "}
-        place
-        {difference.ranges === 1 ? "" : "s"}.
+        <strong>{counted(difference.bytes, "byte")}</strong> {difference.bytes === 1 ? "differs" : "differ"}{" "}
+        from R{parentNumber}, in {counted(difference.ranges, "place")}.
       </p>
       <Table
         caption={`Where it differs from R${parentNumber}`}

@@ -1,6 +1,7 @@
 import { addressText } from "@/components/ui/data/address-text";
 import { DescriptionList } from "@/components/ui/data/description-list";
 import { Fingerprint } from "@/components/ui/data/fingerprint";
+import { counted } from "@/components/ui/data/number-text";
 import { Notice } from "@/components/ui/status/notice";
 import type { ImageSummary } from "@/lib/calibration/image/image-summary";
 
@@ -9,9 +10,6 @@ const CONTAINER_WORDS: Record<string, string> = {
   "s-record": "Motorola S-record",
   binary: "raw binary",
 };
-
-export const bytesText = (bytes: number) =>
-  `${bytes.toLocaleString("en-GB").replaceAll(",", "\u202f")} bytes`;
 
 export interface ImageUnderstoodProps {
   fileName: string;
@@ -30,11 +28,11 @@ export function ImageUnderstood({ fileName, sizeBytes, sha256, summary }: ImageU
           { term: "File", description: <span className="break-all">{fileName}</span> },
           {
             term: "Container",
-            description: `${CONTAINER_WORDS[summary.container] ?? summary.container}, ${bytesText(sizeBytes)}`,
+            description: `${CONTAINER_WORDS[summary.container] ?? summary.container}, ${counted(sizeBytes, "byte")}`,
           },
           {
             term: "Content",
-            description: `${bytesText(content)} in ${summary.segments.length} segment${summary.segments.length === 1 ? "" : "s"}`,
+            description: `${counted(content, "byte")} in ${counted(summary.segments.length, "segment")}`,
           },
           {
             term: "Segments",

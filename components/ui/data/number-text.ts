@@ -33,3 +33,14 @@ export function decimalsForHalfWidth(halfWidth: number | null | undefined, fallb
   if (!halfWidth || !Number.isFinite(halfWidth)) return fallback;
   return Math.min(4, Math.max(0, -Math.floor(Math.log10(Math.abs(halfWidth) / 3))));
 }
+
+/** "1 cell", "38 cells". */
+export function counted(count: number, one: string, many = `${one}s`): string {
+  return `${numberText(count)} ${count === 1 ? one : many}`;
+}
+
+/** "a", "a and b", "a, b and c". */
+export function listed(parts: readonly string[]): string {
+  if (parts.length < 2) return parts.join("");
+  return `${parts.slice(0, -1).join(", ")} and ${parts.at(-1)}`;
+}

@@ -57,6 +57,19 @@ describe("the record", () => {
     ...{ changedBytes: 6, changedCharacteristics: 1, touched: [], approval: null, secondLead: null },
   };
 
+  it("prints what was touched, and the document or the second lead it was released by", () => {
+    const approval = { document: "Report 17/2030", issuer: "Test house North" };
+    const secondLead = { name: "Ira Vale", at: "2030-01-02T03:04:05.000Z", reason: "looked through" };
+    const shown = { ...record, uncoveredBytes: 0, touched: [LIMITER] };
+    const { rerender } = render(<RecordCalibration calibration={{ ...shown, approval }} />);
+    expect(screen.getByRole("listitem").textContent).toBe("limiter, safety-relevant: rpm_limit");
+    expect(screen.getByText(/Report 17\/2030.*Test house North/)).toBeTruthy();
+    expect(screen.queryByText("Second lead")).toBeNull();
+    rerender(<RecordCalibration calibration={{ ...shown, secondLead }} />);
+    expect(screen.getByText(/Ira Vale.*2030-01-02 03:04 UTC.*looked through/)).toBeTruthy();
+    expect(screen.queryByText("Approval document")).toBeNull();
+  });
+
   it("says that nothing marked is touched only where every changed byte is described", () => {
     const { rerender } = render(<RecordCalibration calibration={{ ...record, uncoveredBytes: 0 }} />);
     expect(screen.getByText("nothing touched")).toBeTruthy();

@@ -1,7 +1,15 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import { dateTimeText } from "@/components/ui/data/date-time";
-import { decimalsForHalfWidth, numberText } from "@/components/ui/data/number-text";
+import { counted, decimalsForHalfWidth, listed, numberText } from "@/components/ui/data/number-text";
+
+describe("counted and listed", () => {
+  it("takes one thing by its own word, and joins the last part with and", () => {
+    expect(counted(1, "byte")).toBe("1 byte");
+    expect(counted(1234, "shared axis", "shared axes")).toBe("1\u202f234 shared axes");
+    expect([listed([]), listed(["a"]), listed(["a", "b", "c"])]).toEqual(["", "a", "a, b and c"]);
+  });
+});
 
 describe("numberText", () => {
   it("parts thousands by a narrow no-break space and uses the real minus", () => {

@@ -1,5 +1,4 @@
-import { counted } from "@/components/features/change-sets/words/figure-text";
-import { numberText } from "@/components/ui/data/number-text";
+import { counted, numberText } from "@/components/ui/data/number-text";
 import { Table } from "@/components/ui/data/table";
 import { Disclosure } from "@/components/ui/layout/disclosure";
 

@@ -3,8 +3,7 @@ import { axisDigits, axisName, type ChangeGrid } from "@/components/features/cha
 import { curveView } from "@/components/features/change-sets/detail/curve-view";
 import { PointTable } from "@/components/features/change-sets/detail/point-table";
 import { spreadText } from "@/components/features/change-sets/words/change-words";
-import { counted } from "@/components/features/change-sets/words/figure-text";
-import { numberText } from "@/components/ui/data/number-text";
+import { counted, numberText } from "@/components/ui/data/number-text";
 import type { CharacteristicChange } from "@/lib/calibration/changes/types";
 import type { MapCoverage } from "@/lib/calibration/coverage/types";
 

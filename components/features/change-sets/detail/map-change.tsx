@@ -2,21 +2,18 @@
 
 import { useMemo, useState } from "react";
 import { HeatTable } from "@/components/charts/heat/heat-table";
-import {
-  AXIS_LETTERS,
-  axisHead,
-  changeGrid,
-  pointAt,
-} from "@/components/features/change-sets/detail/change-grid";
+import { axisHead, changeGrid, pointAt } from "@/components/features/change-sets/detail/change-grid";
 import { heatView, type ShownSide } from "@/components/features/change-sets/detail/heat-view";
 import { rememberInAddress } from "@/components/features/change-sets/detail/remember-in-address";
 import { LIMIT_MARKS } from "@/components/features/change-sets/words/change-words";
-import { counted, valueText } from "@/components/features/change-sets/words/figure-text";
+import { valueText } from "@/components/features/change-sets/words/figure-text";
 import { Button } from "@/components/ui/action/button";
 import { SegmentedControl } from "@/components/ui/action/segmented-control";
+import { counted } from "@/components/ui/data/number-text";
 import { Select } from "@/components/ui/form/select";
 import type { CharacteristicChange } from "@/lib/calibration/changes/types";
 import type { MapCoverage } from "@/lib/calibration/coverage/types";
+import { AXIS_NAMES } from "@/lib/calibration/values/cells";
 
 export interface MapChangeProps {
   change: CharacteristicChange;
@@ -128,7 +125,7 @@ function PlaneChooser({ change, plane, onPlane }: PlaneChooserProps) {
       ).length;
     return (
       <Select
-        key={AXIS_LETTERS[axis]}
+        key={AXIS_NAMES[axis]}
         label={axisHead(side, axis)}
         value={String(at)}
         onChange={(event) =>

@@ -3,23 +3,14 @@ import Link from "next/link";
 import type { ReactNode } from "react";
 import type { ChangeGroup } from "@/components/features/change-sets/list/change-order";
 import { LookedAtMark } from "@/components/features/change-sets/walk/looked-at";
-import {
-  limitText,
-  spreadText,
-  structureText,
-  TYPE_WORDS,
-} from "@/components/features/change-sets/words/change-words";
+import { limitText, spreadText, structureText } from "@/components/features/change-sets/words/change-words";
 import { coverageOf, visitedText } from "@/components/features/change-sets/words/coverage-words";
-import {
-  counted,
-  differenceOf,
-  digitsFor,
-  valueText,
-} from "@/components/features/change-sets/words/figure-text";
-import { numberText } from "@/components/ui/data/number-text";
+import { differenceOf, digitsFor, valueText } from "@/components/features/change-sets/words/figure-text";
+import { counted, numberText } from "@/components/ui/data/number-text";
 import { Tag } from "@/components/ui/data/tag";
 import type { CharacteristicChange } from "@/lib/calibration/changes/types";
 import type { Coverage } from "@/lib/calibration/coverage/types";
+import { TYPE_WORDS } from "@/lib/calibration/values/type-words";
 import { cn } from "@/lib/cn";
 
 /** Rows that are drawn at most; the downloads hold all. */

@@ -1,20 +1,7 @@
 import type { HeatMark } from "@/components/charts/heat/heat-table";
-import { counted, listed } from "@/components/features/change-sets/words/figure-text";
-import { numberText } from "@/components/ui/data/number-text";
+import { counted, listed, numberText } from "@/components/ui/data/number-text";
 import type { ChangeSet, CharacteristicChange, LimitState } from "@/lib/calibration/changes/types";
-
-/** A kind of characteristic, singular and plural. */
-export const TYPE_WORDS: Record<CharacteristicChange["type"], readonly [string, string]> = {
-  MAP: ["map", "maps"],
-  CURVE: ["curve", "curves"],
-  VALUE: ["value", "values"],
-  CUBOID: ["cuboid", "cuboids"],
-  CUBE_4: ["table of 4 axes", "tables of 4 axes"],
-  CUBE_5: ["table of 5 axes", "tables of 5 axes"],
-  VAL_BLK: ["block", "blocks"],
-  AXIS_PTS: ["shared axis", "shared axes"],
-  ASCII: ["text", "texts"],
-};
+import { TYPE_WORDS } from "@/lib/calibration/values/type-words";
 
 /** How a cell lies towards the description's limits; null inside them. */
 export const LIMIT_MARKS: Record<LimitState, HeatMark | null> = {

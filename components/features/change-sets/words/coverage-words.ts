@@ -1,5 +1,4 @@
-import { counted } from "@/components/features/change-sets/words/figure-text";
-import { numberText } from "@/components/ui/data/number-text";
+import { counted, numberText } from "@/components/ui/data/number-text";
 import type { Coverage, MapCoverage } from "@/lib/calibration/coverage/types";
 
 /** What coverage says of one change: its table, or why it can't be told; null where it says nothing of it. */

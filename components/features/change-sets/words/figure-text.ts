@@ -50,17 +50,6 @@ export function differenceText(
   return Number(difference.toFixed(decimals)) === 0 ? "≈\u202f0" : text;
 }
 
-/** "1 cell", "38 cells". */
-export function counted(count: number, one: string, many = `${one}s`): string {
-  return `${numberText(count)} ${count === 1 ? one : many}`;
-}
-
-/** "a", "a and b", "a, b and c". */
-export function listed(parts: readonly string[]): string {
-  if (parts.length < 2) return parts.join("");
-  return `${parts.slice(0, -1).join(", ")} and ${parts.at(-1)}`;
-}
-
 /** A unit without the dash that stands for none. */
 export const plainUnit = (unit: string) => (unit.trim() === "-" ? "" : unit);
 const plainSide = (side: ChangeSide | null): ChangeSide | null =>

@@ -1,7 +1,8 @@
-import { counted, digitsFor, valueText } from "@/components/features/change-sets/words/figure-text";
-import { numberText } from "@/components/ui/data/number-text";
+import { digitsFor, valueText } from "@/components/features/change-sets/words/figure-text";
+import { counted, numberText } from "@/components/ui/data/number-text";
 import type { Listed, ValuesCheck } from "@/lib/calibration/cdf/check-values";
 import type { CdfDifference } from "@/lib/calibration/cdf/compare-with-cdf";
+import { AXIS_NAMES } from "@/lib/calibration/values/cells";
 
 /** Names of a file that could not be compared, or not as they are meant, with why. */
 export interface LeftOut {
@@ -67,7 +68,7 @@ export function leftOutOf({ notInImage, notReadable, otherShape, otherUnit }: Va
 export function placeText({ axis, index }: Pick<CdfDifference, "axis" | "index">): string {
   if (axis !== null) return `axis ${axis}, point ${numberText(index[0])}`;
   if (index.length === 1) return numberText(index[0]);
-  return index.map((at, k) => `${["x", "y", "z"][k] ?? k + 1} ${numberText(at)}`).join(", ");
+  return index.map((at, k) => `${AXIS_NAMES[k] ?? k + 1} ${numberText(at)}`).join(", ");
 }
 
 /** The two values of a difference and how far they are apart, with as many digits as show it. */

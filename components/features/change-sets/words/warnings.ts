@@ -1,4 +1,4 @@
-import { counted, listed } from "@/components/features/change-sets/words/figure-text";
+import { counted, listed } from "@/components/ui/data/number-text";
 import { type TouchedMark, touchedMarks } from "@/lib/calibration/changes/relevance";
 import type { ChangeSet } from "@/lib/calibration/changes/types";
 import type { RevisionChangesView } from "@/lib/services/change-sets/schema";
