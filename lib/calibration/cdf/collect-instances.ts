@@ -1,5 +1,6 @@
 import type { CdfAxis, CdfFile, CdfInstance, CdfValue } from "@/lib/calibration/cdf/types";
 import { ValueGroups } from "@/lib/calibration/cdf/value-groups";
+import { cellCount } from "@/lib/calibration/values/cells";
 import { FileRefusedError } from "@/lib/errors";
 
 /** A reading of an image ends at four million cells; a made-up file must not claim memory by numbers. */
@@ -191,7 +192,7 @@ export class InstanceCollector {
       return nested.length === 1 && nested[0] === 1 && !ARRAYS.test(category) ? [] : nested;
     const stated = [...sizes];
     while (stated.length > 1 && stated[stated.length - 1] === 1) stated.pop();
-    const fits = stated.reduce((product, n) => product * n, 1) === found.values.length;
+    const fits = cellCount(stated) === found.values.length;
     const agrees = nested.length === 1 || nested.join() === stated.join();
     if (fits && agrees) return stated;
     this.problem(draft, `states the size ${stated.join(" × ")} and holds ${nested.join(" × ")} values.`);

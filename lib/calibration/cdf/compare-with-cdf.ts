@@ -1,5 +1,5 @@
 import type { CdfFile, CdfInstance, CdfValue } from "@/lib/calibration/cdf/types";
-import { cellIndex } from "@/lib/calibration/coverage/changed-cells";
+import { AXIS_NAMES, cellIndex } from "@/lib/calibration/values/cells";
 import type { ImageReading, PhysicalValue, ReadCharacteristic } from "@/lib/calibration/values/types";
 
 /** A place at which the image and the values file do not say the same. */
@@ -41,7 +41,6 @@ const MOST_LISTED = 10_000;
 const RELATIVE = 1e-6;
 /** Half a step is still the same raw value; the conversion itself rounds in its last bits. */
 const HALF_STEP = 0.5 * (1 + 1e-9);
-const AXIS_NAMES = ["x", "y", "z", "4", "5"];
 
 /**
  * Compares an image with a values file by name: numbers that lie more than half a raw step apart, texts that are not the same. Without a

@@ -6,7 +6,7 @@ import type {
   CharacteristicChange,
   LimitState,
 } from "@/lib/calibration/changes/types";
-import { cellIndex } from "@/lib/calibration/coverage/changed-cells";
+import { AXIS_NAMES, cellIndex } from "@/lib/calibration/values/cells";
 import type {
   ImageReading,
   PhysicalValue,
@@ -23,8 +23,7 @@ interface Place {
   index: readonly number[];
 }
 
-const AXES = ["x", "y", "z", "4", "5"] as const;
-const AXIS_TITLES = AXES.flatMap((axis) => [`${axis} index`, `${axis} value`, `${axis} unit`]);
+const AXIS_TITLES = AXIS_NAMES.flatMap((axis) => [`${axis} index`, `${axis} value`, `${axis} unit`]);
 const LIMITS: Readonly<Record<LimitState, string>> = {
   ok: "inside",
   extended: "inside the extended limits only",
@@ -108,7 +107,7 @@ function movedPoints(before: ChangeSide, after: ChangeSide) {
     if (axis.reference !== null || old.length !== axis.points.length) return [];
     return axis.points.flatMap((to, point) => {
       const index = Array.from({ length: k + 1 }, (_, at) => (at === k ? point : Number.NaN));
-      return old[point] === to ? [] : [{ axis: AXES[k], index, from: old[point], to, unit: axis.unit }];
+      return old[point] === to ? [] : [{ axis: AXIS_NAMES[k], index, from: old[point], to, unit: axis.unit }];
     });
   });
 }
@@ -122,7 +121,7 @@ function* cellsOf(side: ChangeSide | null): Generator<Place & { value: PhysicalV
 
 /** Index, point and unit of each axis; empty where the cell has no such axis. */
 function placed({ axes, index }: Place): Cell[] {
-  return AXES.flatMap((_, k): Cell[] => {
+  return AXIS_NAMES.flatMap((_, k): Cell[] => {
     const at = index[k] ?? Number.NaN;
     return Number.isNaN(at) ? [null, null, null] : [at, axes[k]?.points[at] ?? null, axes[k]?.unit ?? null];
   });

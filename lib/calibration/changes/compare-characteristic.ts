@@ -3,6 +3,7 @@ import { limitStateOf } from "@/lib/calibration/changes/limit-state";
 import { neighbourSteps } from "@/lib/calibration/changes/neighbour-steps";
 import type { Pair } from "@/lib/calibration/changes/pair";
 import type { CellChange, ChangeSide, CharacteristicChange } from "@/lib/calibration/changes/types";
+import { cellCount, cellIndex } from "@/lib/calibration/values/cells";
 import type { ReadCharacteristic } from "@/lib/calibration/values/types";
 import { digestOf } from "@/lib/canonical-json";
 
@@ -23,7 +24,7 @@ export function summarise(pair: Pair): CharacteristicChange | null {
   const textChanged = before?.characters !== after?.characters && shown.type === "ASCII";
   const whole = !before || !after || shapeChanged;
   if (!whole && !axisChanged && differing.length === 0 && !textChanged) return null;
-  const cells = cellCount(shown.dims, shown.type);
+  const cells = shown.type === "ASCII" ? 1 : cellCount(shown.dims);
   const deltas = differing.flatMap((cell) => {
     const [from, to] = [before?.values[cell], after?.values[cell]];
     const comparable = typeof from === "number" && typeof to === "number" && before?.unit === after?.unit;
@@ -71,7 +72,7 @@ export function cellChanges(pair: Pair): CellChange[] {
   const { before, after } = pair;
   if (!before || !after || before.type !== after.type || !sameList(before.dims, after.dims)) return [];
   return changedCells(pair).map((cell) => ({
-    index: indexOf(cell, after.dims),
+    index: cellIndex(cell, after.dims),
     before: before.values[cell],
     after: after.values[cell],
     limit: limitStateOf(after.values[cell], after.limits),
@@ -85,20 +86,6 @@ function changedCells({ before, after }: Pair): number[] {
     for (let k = 0; k < after.raw.length; k++) if (before.raw[k] !== after.raw[k]) cells.push(k);
   }
   return cells;
-}
-
-function indexOf(cell: number, dims: readonly number[]): number[] {
-  let rest = cell;
-  return dims.map((n) => {
-    const at = rest % n;
-    rest = (rest - at) / n;
-    return at;
-  });
-}
-
-/** Cells of a characteristic; a text is one. */
-function cellCount(dims: readonly number[], type: ReadCharacteristic["type"]): number {
-  return type === "ASCII" ? 1 : dims.reduce((product, n) => product * n, 1);
 }
 
 /** The same points of the same quantities; the raw points decide where both are stored the same way. */

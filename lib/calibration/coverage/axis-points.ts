@@ -1,15 +1,13 @@
 import type { AxisLink } from "@/lib/calibration/coverage/types";
+import { AXIS_NAMES } from "@/lib/calibration/values/cells";
 import type { ReadAxis } from "@/lib/calibration/values/types";
 import { CHANNEL_UNITS } from "@/lib/logs/channels/channel-names";
 import { KNOWN_CHANNELS, type KnownChannel } from "@/lib/logs/types";
 import { parseUnit, toCanonical } from "@/lib/units/unit-text";
 
-/** Letters of the axes, as in `NAME/x`. */
-const LETTERS = ["x", "y", "z", "4", "5"];
-
 /** What a link is made by: the input quantity, or `NAME/x` where the description names none. */
 export function quantityOf(name: string, axis: Pick<ReadAxis, "inputQuantity">, place: number): string {
-  return axis.inputQuantity ?? `${name}/${LETTERS[place] ?? place + 1}`;
+  return axis.inputQuantity ?? `${name}/${AXIS_NAMES[place] ?? place + 1}`;
 }
 
 /** Points as numbers, or null where one is none or they do not rise strictly: a sample can't be placed between them. */

@@ -1,26 +1,5 @@
 import type { ChangeSide, CharacteristicChange } from "@/lib/calibration/changes/types";
-
-/** Number of cells of a side; one value has one. */
-export function cellCount(dims: readonly number[]): number {
-  return dims.reduce((product, n) => product * n, 1);
-}
-
-/** Number of a cell by its place on the axes: x fastest, then y, then z. */
-export function cellNumber(index: readonly number[], dims: readonly number[]): number {
-  let number = 0;
-  for (let axis = dims.length - 1; axis >= 0; axis--) number = number * dims[axis] + (index[axis] ?? 0);
-  return number;
-}
-
-/** Place on the axes of a cell by its number. */
-export function cellIndex(number: number, dims: readonly number[]): number[] {
-  let rest = number;
-  return dims.map((n) => {
-    const place = rest % n;
-    rest = (rest - place) / n;
-    return place;
-  });
-}
+import { cellCount, cellIndex, cellNumber } from "@/lib/calibration/values/cells";
 
 /** Axis points that differ from the side before, as flags; all where there were none or another number of them. */
 function movedPoints(before: ChangeSide, after: ChangeSide, axis: number): boolean[] | null {

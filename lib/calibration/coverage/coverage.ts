@@ -1,6 +1,6 @@
 import type { ChangeSet, CharacteristicChange } from "@/lib/calibration/changes/types";
 import { pointsIn, quantityOf, risingPoints } from "@/lib/calibration/coverage/axis-points";
-import { cellCount, changedCellFlags } from "@/lib/calibration/coverage/changed-cells";
+import { changedCellFlags } from "@/lib/calibration/coverage/changed-cells";
 import {
   atTimes,
   type SampleTimes,
@@ -20,6 +20,7 @@ import {
   placeOnAxis,
   visitCells,
 } from "@/lib/calibration/coverage/visit-cells";
+import { cellCount } from "@/lib/calibration/values/cells";
 
 /** Weighted seconds from which on a cell counts as visited (common practice, no source). */
 const VISITED_S = 0.1;

@@ -1,6 +1,7 @@
 import { spanOf } from "@/lib/calibration/changes/effect";
 import type { CharacteristicChange } from "@/lib/calibration/changes/types";
-import { cellIndex, changedCellFlags } from "@/lib/calibration/coverage/changed-cells";
+import { changedCellFlags } from "@/lib/calibration/coverage/changed-cells";
+import { cellIndex } from "@/lib/calibration/values/cells";
 import type { PhysicalValue } from "@/lib/calibration/values/types";
 
 /** A difference of two values, in the table's unit, and where: cell `index` and, for a step, its neighbour `next`. */

@@ -1,8 +1,8 @@
 import { pointAt } from "@/components/features/change-sets/detail/change-grid";
 import { numberText } from "@/components/ui/data/number-text";
 import type { ChangeSide, CharacteristicChange } from "@/lib/calibration/changes/types";
-import { cellCount, cellIndex, cellNumber } from "@/lib/calibration/coverage/changed-cells";
 import type { MapCoverage } from "@/lib/calibration/coverage/types";
+import { cellCount, cellIndex, cellNumber } from "@/lib/calibration/values/cells";
 import type { ReadAxis } from "@/lib/calibration/values/types";
 
 /** A table with more cells is drawn by those lines that hold a change, and at most by as many cells as this. */

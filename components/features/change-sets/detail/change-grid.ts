@@ -1,6 +1,6 @@
 import { differenceOf, digitsFor } from "@/components/features/change-sets/words/figure-text";
 import type { CellChange, ChangeSide, CharacteristicChange } from "@/lib/calibration/changes/types";
-import { cellNumber } from "@/lib/calibration/coverage/changed-cells";
+import { AXIS_NAMES, cellNumber } from "@/lib/calibration/values/cells";
 import type { PhysicalValue, ReadAxis } from "@/lib/calibration/values/types";
 
 /** A changed characteristic, ready to be drawn cell by cell. */
@@ -30,8 +30,6 @@ export function changeGrid(change: CharacteristicChange): ChangeGrid | null {
   };
 }
 
-export const AXIS_LETTERS = ["x", "y", "z", "4", "5"] as const;
-
 /** Points of an axis as numbers; the places 0, 1, 2 … where a table has no axis there. */
 export function pointAt(axis: ReadAxis | undefined, index: number): PhysicalValue {
   return axis ? (axis.points[index] ?? null) : index;
@@ -40,7 +38,7 @@ export function pointAt(axis: ReadAxis | undefined, index: number): PhysicalValu
 /** What an axis is called: its input quantity, else the shared axis it rests on, else its letter. */
 export function axisName(side: ChangeSide, axis: number): string {
   const described = side.axes[axis];
-  const letter = AXIS_LETTERS[axis] ?? String(axis + 1);
+  const letter = AXIS_NAMES[axis] ?? String(axis + 1);
   return described
     ? described.inputQuantity || described.reference || `${letter} axis`
     : `place in ${letter}`;

@@ -10,8 +10,8 @@ import { LIMIT_MARKS } from "@/components/features/change-sets/words/change-word
 import { differenceOf, differenceText, valueText } from "@/components/features/change-sets/words/figure-text";
 import { numberText } from "@/components/ui/data/number-text";
 import type { ChangeSide, CharacteristicChange } from "@/lib/calibration/changes/types";
-import { cellNumber } from "@/lib/calibration/coverage/changed-cells";
 import type { MapCoverage } from "@/lib/calibration/coverage/types";
+import { cellNumber } from "@/lib/calibration/values/cells";
 import type { ReadAxis } from "@/lib/calibration/values/types";
 
 /** What the cells of a heat table hold. */

@@ -1,4 +1,5 @@
 import { type AxisLetter, DATA_TYPES, type DataType, type RecordLayout } from "@/lib/calibration/a2l/types";
+import { cellCount } from "@/lib/calibration/values/cells";
 import { NotReadable } from "@/lib/calibration/values/not-readable";
 
 /** Equally spaced numbers in memory. */
@@ -47,8 +48,8 @@ export function cellPlaces(request: Request): Result {
   const { layout, start, dims, reserved } = request;
   const values = layout.components.find(({ keyword }) => keyword === "FNC_VALUES");
   if (!values) throw new NotReadable(`its layout ${layout.name} has no function values`);
-  const cells = dims.reduce((product, n) => product * n, 1);
-  const kept = reserved.reduce((product, n) => product * n, 1);
+  const cells = cellCount(dims);
+  const kept = cellCount(reserved);
   if (!(kept <= MOST_CELLS) || !Number.isInteger(cells) || cells < 1) {
     throw new NotReadable(
       `it states ${kept} cells, ${kept < 1 ? "at least 1 is needed" : `at most ${MOST_CELLS} are read`}`,

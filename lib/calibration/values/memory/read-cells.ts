@@ -1,4 +1,5 @@
 import { type ByteOrder, DATA_TYPES } from "@/lib/calibration/a2l/types";
+import { cellCount } from "@/lib/calibration/values/cells";
 import type { CellPlaces } from "@/lib/calibration/values/memory/cell-places";
 import { type Raw, readNumber } from "@/lib/calibration/values/memory/read-number";
 import { type ReadingContext, spendCells } from "@/lib/calibration/values/reading-context";
@@ -6,7 +7,7 @@ import { type ReadingContext, spendCells } from "@/lib/calibration/values/readin
 /** Reads all cells in logical order, x fastest. Throws NotReadable where the image does not have all their bytes. */
 export function readCells(context: ReadingContext, cells: CellPlaces, order: ByteOrder): Raw[] {
   const { type, address, strides, dims } = cells;
-  const total = dims.reduce((product, n) => product * n, 1);
+  const total = cellCount(dims);
   spendCells(context, total);
   let low = address;
   let high = address;
