@@ -2,7 +2,7 @@ import { createHash } from "node:crypto";
 import type { Queryable } from "@/db/client";
 import { lockDigest } from "@/db/queries/sweep";
 import { insertBlob } from "@/db/queries/uploads";
-import { UnavailableError } from "@/lib/errors";
+import { NotFoundError, UnavailableError } from "@/lib/errors";
 import { logger } from "@/lib/logger";
 import type { Ctx } from "@/lib/services/ctx";
 import { blobKey } from "@/storage/keys";
@@ -16,6 +16,13 @@ function refuse(where: Where, sha256: string): never {
     "integrity_failed",
     "The stored file no longer has the fingerprint it was kept under, so it is not given out. Tell whoever runs this installation.",
     { sha256 },
+  );
+}
+
+/** Stored bytes that are gone or damaged, as opposed to a store that does not answer. */
+export function isLost(error: unknown): boolean {
+  return (
+    error instanceof NotFoundError || (error instanceof UnavailableError && error.code === "integrity_failed")
   );
 }
 

@@ -3,21 +3,17 @@ import { type SideRow, selectSides } from "@/db/queries/change-sets";
 import { putImageCheck } from "@/db/queries/image-readings";
 import { checkRegions } from "@/lib/calibration/image/checksum-regions";
 import type { CalibrationImage } from "@/lib/calibration/image/types";
-import { NotFoundError, UnavailableError } from "@/lib/errors";
 import { imageReading } from "@/lib/jobs/calibration/image-reading";
 import { settledDescription } from "@/lib/jobs/calibration/settle-description";
 import { storable } from "@/lib/jobs/calibration/storable";
 import type { System } from "@/lib/jobs/system";
+import { isLost } from "@/lib/services/blobs";
 import { openCalibrationImage } from "@/lib/services/revisions/read-image";
 
 interface ImageJob {
   workspaceId: string;
   revisionId: string;
 }
-
-/** Damaged or gone, as opposed to a store that does not answer. */
-const isLost = (error: unknown) =>
-  error instanceof NotFoundError || (error instanceof UnavailableError && error.code === "integrity_failed");
 
 /** The image whose fingerprint was checked on the way; null where the stored bytes are not what was kept. */
 async function openWhole(

@@ -1,6 +1,6 @@
 import type { RevisionRow } from "@/db/queries/revisions";
-import { ConflictError, NotFoundError, UnavailableError } from "@/lib/errors";
-import { streamBlob } from "@/lib/services/blobs";
+import { ConflictError } from "@/lib/errors";
+import { isLost, streamBlob } from "@/lib/services/blobs";
 import type { Ctx } from "@/lib/services/ctx";
 
 /**
@@ -14,10 +14,7 @@ export async function requireWholeImage(
   try {
     for await (const _ of streamBlob(ctx, imageSha256));
   } catch (error) {
-    const isLost =
-      error instanceof NotFoundError ||
-      (error instanceof UnavailableError && error.code === "integrity_failed");
-    if (!isLost) throw error;
+    if (!isLost(error)) throw error;
     throw new ConflictError(
       "image_damaged",
       `The stored image of R${number} no longer has its fingerprint, so it can't be released. Nothing was decided. Tell whoever runs this installation.`,
