@@ -56,7 +56,7 @@ export async function openCoverage(tx: Queryable, key: Key): Promise<boolean> {
       set: { state: "computing", failure: null },
       setWhere: eq(coverages.state, "failed"),
     });
-  return (await selectCoverage(tx, key))?.state === "computing";
+  return (await selectCoverageState(tx, key))?.state === "computing";
 }
 
 /** Stores what came out; a result that is there already is never replaced. */

@@ -1,10 +1,4 @@
-import {
-  closeChangeSet,
-  type SideRow,
-  selectChangeSetHead,
-  selectReadyChangeSetsOf,
-  selectSides,
-} from "@/db/queries/change-sets";
+import { closeChangeSet, type SideRow, selectChangeSetHead, selectSides } from "@/db/queries/change-sets";
 import type { DescriptionRow } from "@/db/queries/descriptions";
 import { textDifference } from "@/lib/calibration/a2l/text-difference";
 import { changeSetOf } from "@/lib/calibration/changes/change-set";
@@ -12,11 +6,10 @@ import type { ChangeSet } from "@/lib/calibration/changes/types";
 import { digestOf } from "@/lib/canonical-json";
 import { TwinpassError } from "@/lib/errors";
 import { imageReading } from "@/lib/jobs/calibration/image-reading";
-import { settledDescription } from "@/lib/jobs/calibration/settle-description";
+import { readFilesOf, settledDescription } from "@/lib/jobs/calibration/settle-description";
 import { storable } from "@/lib/jobs/calibration/storable";
 import type { System } from "@/lib/jobs/system";
 import { logger } from "@/lib/logger";
-import { readBlob } from "@/lib/services/blobs";
 import { changeSetInputSha256 } from "@/lib/services/change-sets/current-input";
 import { openCoverageOf } from "@/lib/services/change-sets/refresh-coverage";
 import { openCalibrationImage } from "@/lib/services/revisions/read-image";
@@ -49,21 +42,13 @@ async function withDescription(system: System, workspaceId: string, row: SideRow
   };
 }
 
-/** The text of a description for a comparison line by line; several files follow one another under their names. */
-async function filesOf({ store }: System, { workspaceId, files }: DescriptionRow) {
-  const read = [];
-  for (const { name, sha256 } of files)
-    read.push({ name, bytes: await readBlob({ store, workspaceId }, sha256) });
-  return read;
-}
-
 async function descriptionDifference(
   system: System,
   a: Side,
   b: Side,
 ): Promise<ChangeSet["descriptionDifference"]> {
   if (!a.description || !b.description || a.description.id === b.description.id) return null;
-  return textDifference(await filesOf(system, a.description), await filesOf(system, b.description));
+  return textDifference(await readFilesOf(system, a.description), await readFilesOf(system, b.description));
 }
 
 async function compare(
@@ -117,9 +102,7 @@ export async function computeChangeSet(system: System, job: ChangeSetJob): Promi
     const resultSha256 = digestOf(result);
     await db.transaction(async (tx) => {
       await closeChangeSet(tx, job, { state: "ready", result, resultSha256 });
-      const ready = await selectReadyChangeSetsOf(tx, { workspaceId, revisionId: b.id });
-      const own = ready.find(({ id }) => id === job.changeSetId);
-      if (own && result.readBy !== "none") await openCoverageOf(tx, { workspaceId }, own);
+      if (result.readBy !== "none") await openCoverageOf(tx, { workspaceId }, head);
     });
   } catch (error) {
     logger().error({ event: "change_set.failed", ...job, err: error });

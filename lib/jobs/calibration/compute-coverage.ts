@@ -1,5 +1,10 @@
-import { type ChangeSetRow, selectChangeSet } from "@/db/queries/change-sets";
-import { closeCoverage, closeMovedCoverages, openCoverage, selectCoverage } from "@/db/queries/coverages";
+import { type ChangeSetRow, selectChangeSet, selectChangeSetHead } from "@/db/queries/change-sets";
+import {
+  closeCoverage,
+  closeMovedCoverages,
+  openCoverage,
+  selectCoverageState,
+} from "@/db/queries/coverages";
 import type { FoundColumn } from "@/db/schema/change-sets";
 import { coverageOf } from "@/lib/calibration/coverage/coverage";
 import { linksInUse } from "@/lib/calibration/coverage/suggest-links";
@@ -76,9 +81,9 @@ export async function computeCoverage(system: System, job: CoverageJob): Promise
 
 /** The last try failed too, perhaps before anything could be noted: whoever waits is told. */
 export async function giveUpCovering({ db }: System, job: CoverageJob): Promise<void> {
-  const changeSet = await selectChangeSet(db, job);
+  const changeSet = await selectChangeSetHead(db, job);
   if (!changeSet) return;
   const key = { ...job, inputSha256: (await coverageInput(db, changeSet)).inputSha256 };
-  if ((await selectCoverage(db, key))?.state !== "computing") return;
+  if ((await selectCoverageState(db, key))?.state !== "computing") return;
   await closeCoverage(db, key, { state: "failed", failure: OUR_SIDE });
 }

@@ -1,6 +1,6 @@
 import { type DescriptionRow, selectDescription, settleDescription } from "@/db/queries/descriptions";
 import { readDescription } from "@/lib/calibration/a2l/read-description";
-import type { Description } from "@/lib/calibration/a2l/types";
+import type { Description, DescriptionFile } from "@/lib/calibration/a2l/types";
 import { READER_VERSION } from "@/lib/calibration/reader-version";
 import { FileRefusedError } from "@/lib/errors";
 import { summariseDescription } from "@/lib/jobs/calibration/summarise-description";
@@ -15,17 +15,25 @@ interface DescriptionJob {
 // Several jobs in a row read by one description; it goes when memory is wanted.
 let last: { id: string; description: WeakRef<Description> } | null = null;
 
+/** The files of a description in their order, whole. @throws NotFoundError, UnavailableError of the store */
+export async function readFilesOf(
+  { store }: System,
+  { workspaceId, files }: DescriptionRow,
+): Promise<DescriptionFile[]> {
+  const read = [];
+  for (const { name, sha256 } of files)
+    read.push({ name, bytes: await readBlob({ store, workspaceId }, sha256) });
+  return read;
+}
+
 /**
  * Parses a kept description, from its files in their order.
  * @throws FileRefusedError; NotFoundError, UnavailableError of the store
  */
-export async function openDescription({ store }: System, row: DescriptionRow): Promise<Description> {
+export async function openDescription(system: System, row: DescriptionRow): Promise<Description> {
   const known = last?.id === row.id ? last.description.deref() : undefined;
   if (known) return known;
-  const files = [];
-  for (const { name, sha256 } of row.files)
-    files.push({ name, bytes: await readBlob({ store, workspaceId: row.workspaceId }, sha256) });
-  const description = readDescription(files);
+  const description = readDescription(await readFilesOf(system, row));
   last = { id: row.id, description: new WeakRef(description) };
   return description;
 }
