@@ -1,4 +1,3 @@
-import { type SideRow, selectSides } from "@/db/queries/change-sets";
 import { isShared } from "@/db/queries/programmes";
 import { type RevisionRow, selectRevision } from "@/db/queries/revisions";
 import { NotFoundError } from "@/lib/errors";
@@ -28,23 +27,20 @@ export async function loadPair(
   return { before };
 }
 
-/** As loadPair, with the rows that a change set is made of. @throws as loadPair */
+/** As loadPair, from the ids of two revisions, which must be two. @throws as loadPair */
 export async function loadSides(
   ctx: Ctx,
   { revisionId, againstId }: { revisionId: string; againstId: string },
   action: Action,
-): Promise<{ a: SideRow; b: SideRow }> {
+): Promise<{ a: RevisionRow; b: RevisionRow }> {
   const { db, workspaceId } = ctx;
   const revision = await selectRevision(db, { workspaceId, revisionId });
   if (!revision) throw noRevision();
-  await loadPair(ctx, { revision, againstId }, action);
-  const sides = await selectSides(db, { workspaceId, revisionIds: [revisionId, againstId] });
-  const a = sides.find(({ id }) => id === againstId);
-  const b = sides.find(({ id }) => id === revisionId);
-  if (!a || !b || a.id === b.id)
+  const { before } = await loadPair(ctx, { revision, againstId }, action);
+  if (!before || before.id === revision.id)
     throw new NotFoundError(
       "no_pair",
       "A revision does not differ from itself. Choose another to compare with.",
     );
-  return { a, b };
+  return { a: before, b: revision };
 }
