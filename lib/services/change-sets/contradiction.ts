@@ -1,5 +1,4 @@
-import type { RelevanceMark } from "@/lib/calibration/changes/relevance";
-import { touchedMarks } from "@/lib/calibration/changes/relevance";
+import { type RelevanceMark, touchedMarks } from "@/lib/calibration/changes/relevance";
 import type { ChangeSet } from "@/lib/calibration/changes/types";
 
 /** Marked functions and characteristics that a change set touches, in words; null where none is. */

@@ -1,17 +1,18 @@
 import { selectSetting } from "@/db/queries/calibration-settings";
-import { selectChangeSetOf, selectComparableRevisions } from "@/db/queries/change-sets";
-import { selectImageCheck, selectImageReading } from "@/db/queries/image-readings";
+import { selectComparableRevisions } from "@/db/queries/change-sets";
 import { selectLookedAt } from "@/db/queries/looked-at";
 import { type RevisionRow, selectRevision, selectStanding } from "@/db/queries/revisions";
 import { withoutChecksums } from "@/lib/calibration/changes/uncovered/without-checksums";
 import { axisQuantities, linksInUse, suggestedLinks } from "@/lib/calibration/coverage/suggest-links";
-import { READER_VERSION } from "@/lib/calibration/reader-version";
+import type { ChecksumRegion } from "@/lib/calibration/image/checksum-regions";
 import { isReaderOnly, RELEASED_STATES } from "@/lib/policy/released";
 import { contradictionOf } from "@/lib/services/change-sets/contradiction";
 import { coverageNow } from "@/lib/services/change-sets/coverage-now";
-import { changeSetInputSha256 } from "@/lib/services/change-sets/current-input";
+import { currentChangeSet } from "@/lib/services/change-sets/current-input";
+import { imageIntegrity } from "@/lib/services/change-sets/image-integrity";
 import { digestsOf } from "@/lib/services/change-sets/looked-at";
 import { loadPair } from "@/lib/services/change-sets/pair";
+import { ownReading } from "@/lib/services/change-sets/revision-reading";
 import type { RevisionChangesView } from "@/lib/services/change-sets/schema";
 import { shownDescription } from "@/lib/services/change-sets/shown-description";
 import type { Ctx } from "@/lib/services/ctx";
@@ -20,13 +21,16 @@ import { noRevision } from "@/lib/services/revisions/load";
 const UNDECIDED = new Set<RevisionRow["state"]>(["draft", "validating", "in_review"]);
 
 /** What a revision is compared with when nobody chose: what stands while nothing is decided on it, else its parent. */
-async function usualCounterpart(ctx: Ctx, revision: RevisionRow): Promise<string | null> {
+async function usualCounterpart(
+  ctx: Ctx,
+  revision: RevisionRow,
+  standingId: string | null,
+): Promise<string | null> {
   const { workspaceId, db } = ctx;
-  const { programmeId, parentId } = revision;
-  const standing = UNDECIDED.has(revision.state)
-    ? await selectStanding(db, { workspaceId, programmeId })
-    : null;
-  const usual = standing && standing.id !== revision.id ? standing.id : parentId;
+  const usual =
+    UNDECIDED.has(revision.state) && standingId !== null && standingId !== revision.id
+      ? standingId
+      : revision.parentId;
   if (usual === null || !isReaderOnly(ctx)) return usual;
   const row = await selectRevision(db, { workspaceId, revisionId: usual });
   return row && RELEASED_STATES.has(row.state) ? usual : null;
@@ -45,18 +49,11 @@ async function choicesOf(
 }
 
 /** What holds for a revision's own image, whatever it is compared with. */
-async function imageFacts({ db, workspaceId }: Ctx, revision: RevisionRow) {
-  const { id: revisionId, programmeId, descriptionId } = revision;
-  const kind = "checksum_regions" as const;
-  const { version: regionsVersion } = await selectSetting(db, { workspaceId, programmeId, kind });
-  const check = await selectImageCheck(db, { workspaceId, revisionId, regionsVersion });
-  const key = { workspaceId, revisionId, readerVersion: READER_VERSION };
-  const reading = descriptionId === null ? null : await selectImageReading(db, { ...key, descriptionId });
-  return {
-    fingerprintHolds: check?.result.fingerprintHolds ?? null,
-    integrity: check?.result.regions ?? null,
-    epk: reading?.summary.epk ?? null,
-  };
+async function imageFacts({ db, workspaceId }: Ctx, revision: RevisionRow, regionsVersion: number) {
+  const place = { workspaceId, revisionId: revision.id, regionsVersion };
+  const { fingerprintHolds, regions: integrity } = await imageIntegrity(db, place);
+  const reading = await ownReading(db, revision);
+  return { fingerprintHolds, integrity, epk: reading?.summary.epk ?? null };
 }
 
 type Compared = Pick<
@@ -86,16 +83,16 @@ const NOTHING: Compared = {
 
 async function compared(
   ctx: Ctx,
-  args: { revision: RevisionRow; before: RevisionRow; marks: RevisionChangesView["marks"] },
+  args: {
+    revision: RevisionRow;
+    before: RevisionRow;
+    marks: RevisionChangesView["marks"];
+    regions: readonly ChecksumRegion[];
+  },
 ): Promise<Compared> {
   const { db, workspaceId, userId } = ctx;
-  const { revision, before, marks } = args;
-  const row = await selectChangeSetOf(db, {
-    workspaceId,
-    revisionAId: before.id,
-    revisionBId: revision.id,
-    inputSha256: changeSetInputSha256(before, revision),
-  });
+  const { revision, before, marks, regions } = args;
+  const row = await currentChangeSet(db, { workspaceId, a: before, b: revision });
   if (!row?.result)
     return {
       ...NOTHING,
@@ -103,9 +100,6 @@ async function compared(
       failure: row?.failure ?? null,
       changeSetId: row?.id ?? null,
     };
-  const { programmeId } = revision;
-  const kind = "checksum_regions" as const;
-  const { content: regions } = await selectSetting(db, { workspaceId, programmeId, kind });
   const changes = withoutChecksums(row.result, regions);
   const coverage = await coverageNow(db, row);
   const looked = await selectLookedAt(db, { workspaceId, userId, revisionId: revision.id });
@@ -142,10 +136,11 @@ export async function getRevisionChanges(
   const revision = await selectRevision(db, { workspaceId, revisionId });
   if (!revision) throw noRevision();
   const { programmeId } = revision;
-  const asked = againstId ?? (await usualCounterpart(ctx, revision));
+  const standing = await selectStanding(db, { workspaceId, programmeId });
+  const asked = againstId ?? (await usualCounterpart(ctx, revision, standing?.id ?? null));
   const { before } = await loadPair(ctx, { revision, againstId: asked }, "revision.compare_images");
   const { content: marks } = await selectSetting(db, { workspaceId, programmeId, kind: "relevance_marks" });
-  const standing = await selectStanding(db, { workspaceId, programmeId });
+  const regions = await selectSetting(db, { workspaceId, programmeId, kind: "checksum_regions" });
   return {
     revision: { id: revision.id, number: revision.number, title: revision.title, programmeId },
     against: before && {
@@ -161,7 +156,9 @@ export async function getRevisionChanges(
       before: before && (await shownDescription(db, before)),
       after: await shownDescription(db, revision),
     },
-    ...(await imageFacts(ctx, revision)),
-    ...(before && before.id !== revision.id ? await compared(ctx, { revision, before, marks }) : NOTHING),
+    ...(await imageFacts(ctx, revision, regions.version)),
+    ...(before && before.id !== revision.id
+      ? await compared(ctx, { revision, before, marks, regions: regions.content })
+      : NOTHING),
   };
 }

@@ -1,10 +1,25 @@
+import type { Queryable } from "@/db/client";
 import { selectDescription } from "@/db/queries/descriptions";
-import { selectImageReading } from "@/db/queries/image-readings";
-import { selectRevision } from "@/db/queries/revisions";
+import { type ImageReadingRow, selectImageReading } from "@/db/queries/image-readings";
+import { type RevisionRow, selectRevision } from "@/db/queries/revisions";
 import { READER_VERSION } from "@/lib/calibration/reader-version";
 import { ConflictError } from "@/lib/errors";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { noRevision } from "@/lib/services/revisions/load";
+
+/** The reading of a revision's image by its own description and this version of the reader; null where none is there. */
+export async function ownReading(
+  db: Queryable,
+  { workspaceId, id: revisionId, descriptionId }: Pick<RevisionRow, "workspaceId" | "id" | "descriptionId">,
+): Promise<ImageReadingRow | null> {
+  if (descriptionId === null) return null;
+  return await selectImageReading(db, {
+    workspaceId,
+    revisionId,
+    descriptionId,
+    readerVersion: READER_VERSION,
+  });
+}
 
 /**
  * Where the values of a revision's image are kept, as its description reads them; for who may have values as a file.
@@ -19,8 +34,7 @@ export async function findRevisionReading(
   const revision = await selectRevision(db, { workspaceId, revisionId });
   if (!revision) throw noRevision();
   const { number, descriptionId, programmeId } = revision;
-  const key = { workspaceId, revisionId, readerVersion: READER_VERSION };
-  const kept = descriptionId === null ? null : await selectImageReading(db, { ...key, descriptionId });
+  const kept = await ownReading(db, revision);
   if (!kept) throw new ConflictError("no_values", await whyNoValues(ctx, { number, descriptionId }));
   return { number, programmeId, blobSha256: kept.blobSha256 };
 }

@@ -1,7 +1,6 @@
 import type { Queryable } from "@/db/client";
 import { selectSetting } from "@/db/queries/calibration-settings";
-import { type ChangeSetRow, type SideRow, selectChangeSetOf, selectSides } from "@/db/queries/change-sets";
-import { selectImageCheck } from "@/db/queries/image-readings";
+import { type ChangeSetRow, type SideRow, selectSides } from "@/db/queries/change-sets";
 import type { RevisionRow } from "@/db/queries/revisions";
 import { type TouchedMark, touchedMarks } from "@/lib/calibration/changes/relevance";
 import { withoutChecksums } from "@/lib/calibration/changes/uncovered/without-checksums";
@@ -9,7 +8,8 @@ import type { ChecksumRegion } from "@/lib/calibration/image/checksum-regions";
 import { digestOf } from "@/lib/canonical-json";
 import type { CalibrationEvidence } from "@/lib/gates/evidence";
 import { type CoverageNow, coverageNow } from "@/lib/services/change-sets/coverage-now";
-import { changeSetInputSha256 } from "@/lib/services/change-sets/current-input";
+import { currentChangeSet } from "@/lib/services/change-sets/current-input";
+import { imageIntegrity } from "@/lib/services/change-sets/image-integrity";
 
 type Revision = Pick<
   RevisionRow,
@@ -36,9 +36,7 @@ async function pair(
   db: Queryable,
   { workspaceId, a, b }: { workspaceId: string; a: SideRow | undefined; b: SideRow },
 ): Promise<ChangeSetRow | null> {
-  if (!a || a.id === b.id) return null;
-  const inputSha256 = changeSetInputSha256(a, b);
-  return await selectChangeSetOf(db, { workspaceId, revisionAId: a.id, revisionBId: b.id, inputSha256 });
+  return a && a.id !== b.id ? await currentChangeSet(db, { workspaceId, a, b }) : null;
 }
 
 /** What is neither there nor impossible is on its way, as far as a gate is concerned: it has too little until then. */
@@ -56,19 +54,6 @@ function isUntold({ fromStanding, marks }: CalibrationEvidence): boolean {
 /** A change set without the stored values of checksums that the programme has declared. */
 function judgedChanges(row: ChangeSetRow | null, regions: readonly ChecksumRegion[]) {
   return row?.result ? withoutChecksums(row.result, regions) : null;
-}
-
-async function integrityOf(
-  db: Queryable,
-  place: { workspaceId: string; revisionId: string },
-  regionsVersion: number,
-): Promise<CalibrationEvidence["integrity"]> {
-  const { workspaceId, revisionId } = place;
-  const check = await selectImageCheck(db, { workspaceId, revisionId, regionsVersion });
-  return {
-    fingerprintHolds: check?.result.fingerprintHolds ?? null,
-    regions: check?.result.regions ?? null,
-  };
 }
 
 /**
@@ -103,7 +88,11 @@ export async function calibrationDesk(
     fromParent: judgedChanges(parent, regions.content),
     coverage: counts ? (coverage?.shown.result ?? null) : null,
     coverageState,
-    integrity: await integrityOf(db, { workspaceId, revisionId: revision.id }, regions.version),
+    integrity: await imageIntegrity(db, {
+      workspaceId,
+      revisionId: revision.id,
+      regionsVersion: regions.version,
+    }),
     marks: marks.content,
     declaresTouch: touchesEmissionOrSafety,
     intendedUse,
