@@ -9,8 +9,8 @@ import { getComparison } from "@/lib/services/comparisons/load";
 import type { ComparisonView } from "@/lib/services/comparisons/schema";
 import { authorise, type Ctx } from "@/lib/services/ctx";
 import { countingAgreements, needsApproval } from "@/lib/services/decisions/approval";
-import { calibrationDesk } from "@/lib/services/gates/calibration";
-import { type GateStatus, gateStatus } from "@/lib/services/gates/status";
+import type { CalibrationDesk } from "@/lib/services/gates/calibration";
+import { type GateStatus, gateDesk } from "@/lib/services/gates/status";
 import { loadProgramme } from "@/lib/services/programmes/load";
 
 /** What the decision page shows of marked functions that the revision changes. */
@@ -73,10 +73,9 @@ function agreeBlocked(ctx: Ctx, row: RevisionRow, agreed: boolean): string | nul
 async function deskCalibration(
   ctx: Ctx,
   revision: RevisionRow,
-  standingRevisionId: string | null,
+  desk: CalibrationDesk | null,
 ): Promise<DeskCalibration> {
   const { db, workspaceId, userId } = ctx;
-  const desk = await calibrationDesk(db, { workspaceId, revision, standingRevisionId });
   const touchedSha256 = desk?.touchedSha256 ?? null;
   const counting = await countingAgreements(db, { workspaceId, revision, touchedSha256, promoterId: userId });
   const given = touchedSha256
@@ -117,8 +116,9 @@ export async function getDecisionDesk(ctx: Ctx, revisionId: string): Promise<Dec
   const standing = standingId ? await selectRevision(db, { workspaceId, revisionId: standingId }) : null;
   const author = await selectUser(db, { userId: row.authorId });
   const submitter = row.submitterId ? await selectUser(db, { userId: row.submitterId }) : null;
-  const gates = await gateStatus(ctx, { revisionId });
-  const calibration = await deskCalibration(ctx, row, standingId);
+  const gates = await gateDesk(db, { workspaceId, revision: row, standingRevisionId: standingId });
+  const { stale, results, planVersion } = gates;
+  const comparisonId = gates.comparison?.comparison.id ?? null;
   const otherLeads = await countOthersWithRole(db, { workspaceId, userId, role: "lead" });
   const facts = {
     authorId: row.authorId,
@@ -145,9 +145,9 @@ export async function getDecisionDesk(ctx: Ctx, revisionId: string): Promise<Dec
     standing: standing && { id: standing.id, number: standing.number, title: standing.title },
     authorName: author?.name ?? "somebody",
     submitterName: row.submitterId ? (submitter?.name ?? "somebody") : null,
-    gates,
-    comparison: gates.comparisonId ? await getComparison(ctx, gates.comparisonId) : null,
-    calibration,
+    gates: { comparisonId, stale, results, planVersion },
+    comparison: comparisonId ? await getComparison(ctx, comparisonId) : null,
+    calibration: await deskCalibration(ctx, row, gates.calibration),
     mayPromote: can(ctx, "decision.promote", facts),
     mayTurnDown: can(ctx, "decision.turn_down", facts),
     mayWaive: can(ctx, "gate.waive", facts),
