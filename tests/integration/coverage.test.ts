@@ -1,6 +1,7 @@
 import { afterAll, beforeAll, describe, expect } from "vitest";
 import type { Transaction } from "@/db/client";
-import { coverages } from "@/db/tables";
+import { selectRunsForCoverage } from "@/db/queries/coverages";
+import { coverages, type runs } from "@/db/tables";
 import { saveAxisLinks } from "@/lib/services/calibration-settings/save-links";
 import { askForChangeSet } from "@/lib/services/change-sets/ask";
 import { getRevisionChanges } from "@/lib/services/change-sets/get";
@@ -17,6 +18,8 @@ import {
   setState,
 } from "@/tests/support/calibration-scene";
 import { test } from "@/tests/support/database";
+import { createRunRow, createScene } from "@/tests/support/decision-scene";
+import { createRevisionRow } from "@/tests/support/factories";
 import { attachLog, DAY, pullLog } from "@/tests/support/road-side";
 import { createTestStore } from "@/tests/support/store";
 
@@ -123,6 +126,26 @@ describe("coverage", () => {
     await saveAxisLinks(calibrator, { programmeId, basedOnVersion: 2, links: link("first") });
     await doJobs(scene);
     expect(await states()).toEqual(["ready", "ready", "ready"]);
+  });
+
+  test("takes usable runs of any kind, and no others", async ({ database }) => {
+    const scene = await createScene(database.db);
+    const revisionId = await createRevisionRow(scene.db, {
+      ...{ workspaceId: scene.workspaceId, programmeId: scene.programmeId, authorId: scene.author.userId },
+      ...{ number: 77, state: "validating" },
+    });
+    const add = (number: number, values: Partial<typeof runs.$inferInsert>) =>
+      createRunRow(scene, { revisionId, number, ...values });
+    const usable = [
+      await add(71, { kind: "pull" }),
+      await add(72, { kind: "coast-down" }),
+      await add(73, { kind: "sprint" }),
+    ];
+    await add(74, { state: "refused" });
+    await add(75, { state: "waiting" });
+    await add(76, { setAsideAt: new Date(), setAsideReason: "a gust", setAsideBy: scene.tester.userId });
+    const found = await selectRunsForCoverage(scene.db, { workspaceId: scene.workspaceId, revisionId });
+    expect(found.map(({ id }) => id)).toEqual(usable);
   });
 
   test("of a pair that nobody asked for is worked out when somebody does", async ({ tx }) => {
