@@ -37,8 +37,8 @@ export function ChangeDetail({ change, coverage, relevance, mayLook, ...figure }
     sentence(limitText(change)),
     sentence(coverage?.table ? visitedText(coverage.table) : null),
     coverage?.reason ? `Coverage can't be told: ${coverage.reason}` : null,
-    change.changes.length < changed
-      ? `The first ${counted(change.changes.length, "changed cell")} are shown.`
+    change.before === null && change.after === null
+      ? "It is not shown cell by cell: too many cells changed altogether. The files of all values below hold it."
       : null,
   ].filter((note) => note !== null);
   return (

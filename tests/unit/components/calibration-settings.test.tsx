@@ -128,7 +128,7 @@ describe("LinksForm", () => {
         blockedBecause={null}
       />,
     );
-    expect(screen.getByText("Linked to engine speed by itself: what its name means.")).toBeTruthy();
+    expect(screen.getByText("Linked by itself to engine speed, by its name.")).toBeTruthy();
     const list = screen.getByRole("combobox", { name: "Channel of rl" });
     fireEvent.change(list, {
       target: {

@@ -37,11 +37,12 @@ export function summarySentence(set: ChangeSet, againstNumber: number): string {
   const differing = set.characteristics.filter((change) => change.kind === "changed");
   const only = (kind: "added" | "removed") =>
     set.characteristics.filter((change) => change.kind === kind).length;
-  const cells = differing.reduce((sum, change) => sum + change.changed, 0);
+  // A text has no cells.
+  const cells = differing.reduce((sum, { type, changed }) => sum + (type === "ASCII" ? 0 : changed), 0);
   const [added, removed] = [only("added"), only("removed")];
   const parts = [
     differing.length > 0
-      ? `${kindsText(differing)} ${differing.length === 1 ? "differs" : "differ"} from ${than}; ${counted(cells, "cell")}`
+      ? `${kindsText(differing)} ${differing.length === 1 ? "differs" : "differ"} from ${than}${cells > 0 ? `; ${counted(cells, "cell")}` : ""}`
       : `No described value differs from ${than}`,
     ...(added > 0 ? [`${numberText(added)} only in this revision's description`] : []),
     ...(removed > 0 ? [`${numberText(removed)} only in the description of ${than}`] : []),

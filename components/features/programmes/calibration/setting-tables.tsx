@@ -29,8 +29,8 @@ export function MarksTable({ marks }: { marks: readonly RelevanceMark[] }) {
 }
 
 export const LINK_WORDS: Record<AxisLink["by"], string> = {
-  column: "a column of the same title",
-  title: "what its name means",
+  column: "by a column of the same title",
+  title: "by its name",
   hand: "chosen by hand",
 };
 

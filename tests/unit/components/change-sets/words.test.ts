@@ -38,6 +38,14 @@ describe("the summary", () => {
     );
   });
 
+  it("counts no cells of a text", () => {
+    const text = change("Label", side([], [], []), side([], [], []), { type: "ASCII", changed: 1 });
+    expect(summarySentence(changeSet({ characteristics: [text] }), 2)).toBe(
+      "1 text differs from R2; no byte outside the description.",
+    );
+    expect(summarySentence(changeSet({ characteristics: [VALUE, text] }), 2)).toContain("; 1 cell;");
+  });
+
   it("keeps apart what only one description knows, and says when nothing described differs", () => {
     const added = change("New_Value", null, side([], [], [1]));
     expect(summarySentence(changeSet({ characteristics: [VALUE, added] }), 2)).toBe(
