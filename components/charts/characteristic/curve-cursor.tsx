@@ -4,6 +4,7 @@ import { CURVE_BOX, type CurveLayout } from "@/components/charts/characteristic/
 import type { JoinedCurves } from "@/components/charts/characteristic/join-curves";
 import { type CursorStore, useCursorIndex } from "@/components/charts/frame/cursor-store";
 import { type StripValue, ValueStrip } from "@/components/charts/frame/value-strip";
+import { CursorMarks } from "@/components/charts/pair/side-shapes";
 import { numberText } from "@/components/ui/data/number-text";
 
 interface CurveCursorProps {
@@ -16,26 +17,17 @@ export function CurveCursor({ store, joined, layout }: CurveCursorProps & { layo
   const index = useCursorIndex(store);
   const x = index === null ? undefined : joined.x[index];
   if (index === null || x === undefined) return null;
-  const at = layout.x(x);
-  const [a, b, delta] = [joined.a[index], joined.b[index], joined.delta[index]];
-  const bottom = joined.delta.some((value) => value !== null)
-    ? CURVE_BOX.deltaBottom
-    : CURVE_BOX.curvesBottom;
+  const hasDelta = joined.delta.some((value) => value !== null);
   return (
-    <g>
-      <line x1={at} x2={at} y1={CURVE_BOX.curvesTop - 8} y2={bottom} className="stroke-ink" />
-      {typeof a === "number" && <circle cx={at} cy={layout.curves(a)} r="5" className="marker-a" />}
-      {typeof b === "number" && (
-        <rect x={at - 4.5} y={layout.curves(b) - 4.5} width="9" height="9" className="marker-b" />
-      )}
-      {typeof delta === "number" && (
-        <path
-          d={`M${at} ${layout.delta(delta) - 5.5}l5.5 5.5l-5.5 5.5l-5.5 -5.5z`}
-          strokeWidth="2"
-          className="fill-surface stroke-delta"
-        />
-      )}
-    </g>
+    <CursorMarks
+      at={layout.x(x)}
+      top={CURVE_BOX.curvesTop - 8}
+      bottom={hasDelta ? CURVE_BOX.deltaBottom : CURVE_BOX.curvesBottom}
+      a={joined.a[index]}
+      b={joined.b[index]}
+      delta={joined.delta[index]}
+      scales={layout}
+    />
   );
 }
 

@@ -1,10 +1,9 @@
-import { LinePath } from "@visx/shape";
 import { memo } from "react";
 import { CURVE_BOX, type CurveLayout } from "@/components/charts/characteristic/curve-layout";
 import type { JoinedCurves, PointCurve } from "@/components/charts/characteristic/join-curves";
-import { BaseAxis, fittingTicks, type LinearScale, ValueAxis } from "@/components/charts/frame/axes";
+import { BaseAxis, fittingTicks, ValueAxis } from "@/components/charts/frame/axes";
 import { shiftLabels } from "@/components/charts/frame/label-shift";
-import type { Series } from "@/components/charts/frame/series";
+import { CurveLine, EndLabel, SideMarker } from "@/components/charts/pair/side-shapes";
 
 export interface CurvePlotProps {
   a: PointCurve | null;
@@ -35,8 +34,17 @@ export const CurvePlot = memo(function CurvePlot(props: CurvePlotProps) {
         right={right}
         ticks={fittingTicks(curves, curvesBottom - curvesTop, 48)}
       />
-      {b && <Line xs={b.x} values={b.y} x={x} y={curves} className="series-b" />}
-      {a && <Line xs={a.x} values={a.y} x={x} y={curves} className="series-a overprint" />}
+      {b && <CurveLine indices={places(b.x)} xs={b.x} values={b.y} x={x} y={curves} className="series-b" />}
+      {a && (
+        <CurveLine
+          indices={places(a.x)}
+          xs={a.x}
+          values={a.y}
+          x={x}
+          y={curves}
+          className="series-a overprint"
+        />
+      )}
       {b && <Points curve={b} layout={layout} side="b" />}
       {a && <Points curve={a} layout={layout} side="a" />}
       <EndLabels {...props} />
@@ -52,40 +60,15 @@ export const CurvePlot = memo(function CurvePlot(props: CurvePlotProps) {
   );
 });
 
-interface LineProps {
-  xs: readonly number[];
-  values: Series;
-  x: LinearScale;
-  y: LinearScale;
-  className: string;
-}
+const places = (xs: readonly number[]) => xs.map((_, i) => i);
 
-function Line({ xs, values, x, y, className }: LineProps) {
-  return (
-    <LinePath<number>
-      data={xs.map((_, i) => i)}
-      x={(i) => x(xs[i] ?? 0)}
-      y={(i) => y(values[i] ?? 0)}
-      defined={(i) => typeof values[i] === "number"}
-      fill="none"
-      strokeLinejoin="round"
-      className={className}
-    />
-  );
-}
-
-/** Round for A, square for B: they tell the points apart in grey too. */
+/** A marker at each point of a side that has a value. */
 function Points({ curve, layout, side }: { curve: PointCurve; layout: CurveLayout; side: "a" | "b" }) {
   return curve.x.map((at, i) => {
     const value = curve.y[i];
     if (typeof value !== "number") return null;
-    const [cx, cy] = [layout.x(at), layout.curves(value)];
     const key = `${side}${i}`;
-    return side === "a" ? (
-      <circle key={key} cx={cx} cy={cy} r="3.5" className="marker-a" />
-    ) : (
-      <rect key={key} x={cx - 3.2} y={cy - 3.2} width="6.4" height="6.4" className="marker-b" />
-    );
+    return <SideMarker key={key} side={side} cx={layout.x(at)} cy={layout.curves(value)} />;
   });
 }
 
@@ -104,16 +87,7 @@ function EndLabels({ a, b, layout, labelA, labelB }: CurvePlotProps) {
     CURVE_BOX.curvesBottom - 8,
   );
   return sides.map(({ y, text }, i) => (
-    <g key={text}>
-      <path
-        d={`M${layout.right + 1} ${y}L${layout.right + 9} ${shifted[i] ?? y}`}
-        fill="none"
-        className="stroke-edge"
-      />
-      <text x={layout.right + 12} y={shifted[i]} dy="0.35em" className="chart-label">
-        {text}
-      </text>
-    </g>
+    <EndLabel key={text} x={layout.right} y={shifted[i] ?? y} from={y} text={text} />
   ));
 }
 
@@ -135,7 +109,14 @@ function Delta({ joined, layout, unit }: { joined: JoinedCurves; layout: CurveLa
         withoutLineAt={0}
       />
       <line x1={left} x2={right} y1={delta(0)} y2={delta(0)} strokeWidth="1.5" className="stroke-ink" />
-      <Line xs={joined.x} values={joined.delta} x={x} y={delta} className="series-delta" />
+      <CurveLine
+        indices={places(joined.x)}
+        xs={joined.x}
+        values={joined.delta}
+        x={x}
+        y={delta}
+        className="series-delta"
+      />
     </>
   );
 }

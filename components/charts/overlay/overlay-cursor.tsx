@@ -5,6 +5,7 @@ import { type StripValue, ValueStrip } from "@/components/charts/frame/value-str
 import { deltaText } from "@/components/charts/overlay/describe-overlay";
 import { OVERLAY_BOX, type OverlayLayout } from "@/components/charts/overlay/overlay-layout";
 import type { DeltaView, OverlayData, OverlayQuantity } from "@/components/charts/overlay/overlay-types";
+import { CursorMarks } from "@/components/charts/pair/side-shapes";
 import { counted, numberText } from "@/components/ui/data/number-text";
 
 interface CursorProps {
@@ -25,31 +26,16 @@ export function OverlayCursor({
   const index = useCursorIndex(store);
   const rpm = index === null ? undefined : data.rpm[index];
   if (index === null || rpm === undefined) return null;
-  const at = layout.x(rpm);
-  const a = quantity.a[index];
-  const b = quantity.b[index];
-  const d = delta.values[index];
   return (
-    <g>
-      <line
-        x1={at}
-        x2={at}
-        y1={OVERLAY_BOX.curvesTop - 8}
-        y2={OVERLAY_BOX.deltaBottom}
-        className="stroke-ink"
-      />
-      {typeof a === "number" && <circle cx={at} cy={layout.curves(a)} r="5" className="marker-a" />}
-      {typeof b === "number" && (
-        <rect x={at - 4.5} y={layout.curves(b) - 4.5} width="9" height="9" className="marker-b" />
-      )}
-      {typeof d === "number" && (
-        <path
-          d={`M${at} ${layout.delta(d) - 5.5}l5.5 5.5l-5.5 5.5l-5.5 -5.5z`}
-          strokeWidth="2"
-          className="fill-surface stroke-delta"
-        />
-      )}
-    </g>
+    <CursorMarks
+      at={layout.x(rpm)}
+      top={OVERLAY_BOX.curvesTop - 8}
+      bottom={OVERLAY_BOX.deltaBottom}
+      a={quantity.a[index]}
+      b={quantity.b[index]}
+      delta={delta.values[index]}
+      scales={layout}
+    />
   );
 }
 

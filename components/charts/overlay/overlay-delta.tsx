@@ -1,7 +1,8 @@
 import { fittingTicks, ValueAxis } from "@/components/charts/frame/axes";
 import { indexSpan } from "@/components/charts/frame/series";
-import { BandArea, CurveLine, type OverlayPlotProps } from "@/components/charts/overlay/curve-shapes";
+import { BandArea, type OverlayPlotProps } from "@/components/charts/overlay/curve-shapes";
 import { OVERLAY_BOX } from "@/components/charts/overlay/overlay-layout";
+import { CurveLine } from "@/components/charts/pair/side-shapes";
 import { numberText } from "@/components/ui/data/number-text";
 
 /** The lower panel: B − A with its band, the zero line darkest, the proven stretches marked on it. */
@@ -35,7 +36,7 @@ export function OverlayDelta({ data, delta, layout, fills, clipId }: OverlayPlot
         withoutLineAt={0}
       />
       <g clipPath={`url(#${clip})`}>
-        <BandArea indices={indices} rpm={data.rpm} low={delta.low} high={delta.high} x={x} y={y} />
+        <BandArea indices={indices} xs={data.rpm} low={delta.low} high={delta.high} x={x} y={y} />
         {worthwhile.map((value) => (
           <line
             key={value}
@@ -72,7 +73,7 @@ export function OverlayDelta({ data, delta, layout, fills, clipId }: OverlayPlot
         })}
         <CurveLine
           indices={indices}
-          rpm={data.rpm}
+          xs={data.rpm}
           values={delta.values}
           x={x}
           y={y}

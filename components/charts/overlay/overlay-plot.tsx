@@ -1,20 +1,23 @@
 import { memo } from "react";
-import { BaseAxis, fittingTicks, type LinearScale, ValueAxis } from "@/components/charts/frame/axes";
+import { BaseAxis, fittingTicks, ValueAxis } from "@/components/charts/frame/axes";
 import { FillDefs } from "@/components/charts/frame/fills";
 import { shiftLabels } from "@/components/charts/frame/label-shift";
 import type { Series } from "@/components/charts/frame/series";
-import { CurveLine, type OverlayPlotProps } from "@/components/charts/overlay/curve-shapes";
+import type { OverlayPlotProps } from "@/components/charts/overlay/curve-shapes";
 import { OverlayDelta } from "@/components/charts/overlay/overlay-delta";
 import { OVERLAY_BOX } from "@/components/charts/overlay/overlay-layout";
 import { OverlayMarks } from "@/components/charts/overlay/overlay-marks";
+import { CurveLine, EndLabel, SideMarker } from "@/components/charts/pair/side-shapes";
 
 /** Everything that stays still while the cursor moves. */
 export const OverlayPlot = memo(function OverlayPlot(props: OverlayPlotProps) {
   const { data, quantity, layout, everyRun, fills, clipId } = props;
   const { x, curves, right, first, last } = layout;
-  const ends = [lastValue(quantity.a, last), lastValue(quantity.b, last)];
-  const [labelYA, labelYB] = shiftLabels(
-    ends.map((value) => (value === null ? OVERLAY_BOX.curvesTop : curves(value))),
+  const ends = [lastValue(quantity.a, last), lastValue(quantity.b, last)].map((value) =>
+    value === null ? null : curves(value),
+  );
+  const labels = shiftLabels(
+    ends.map((end) => end ?? OVERLAY_BOX.curvesTop),
     19,
     OVERLAY_BOX.curvesTop,
     OVERLAY_BOX.curvesBottom - 8,
@@ -24,7 +27,7 @@ export const OverlayPlot = memo(function OverlayPlot(props: OverlayPlotProps) {
     <CurveLine
       key={key}
       indices={indices}
-      rpm={data.rpm}
+      xs={data.rpm}
       values={values}
       x={x}
       y={curves}
@@ -64,8 +67,9 @@ export const OverlayPlot = memo(function OverlayPlot(props: OverlayPlotProps) {
         <Markers {...props} />
       </g>
       <OverlayMarks {...props} />
-      <EndLabel side="a" x={right} y={labelYA} end={ends[0]} scale={curves} text={`A ${data.labelA}`} />
-      <EndLabel side="b" x={right} y={labelYB} end={ends[1]} scale={curves} text={`B ${data.labelB}`} />
+      {[`A ${data.labelA}`, `B ${data.labelB}`].map((text, i) => (
+        <EndLabel key={text} x={right} y={labels[i] ?? 0} from={ends[i] ?? labels[i] ?? 0} text={text} />
+      ))}
       <OverlayDelta {...props} />
       <BaseAxis
         scale={x}
@@ -78,7 +82,7 @@ export const OverlayPlot = memo(function OverlayPlot(props: OverlayPlotProps) {
   );
 });
 
-/** Round for A, square for B, at different engine speeds, so that the curves are told apart in grey and in glare. */
+/** A marker of each side at different engine speeds. */
 function Markers({ data, quantity, layout }: OverlayPlotProps) {
   const { x, curves, first, last, right } = layout;
   const ticks = fittingTicks(x, right - OVERLAY_BOX.left, 96);
@@ -97,35 +101,8 @@ function Markers({ data, quantity, layout }: OverlayPlotProps) {
     const value = values[index];
     const rpm = data.rpm[index];
     if (value === null || value === undefined || rpm === undefined) return null;
-    const [cx, cy] = [x(rpm), curves(value)];
-    return side === "a" ? (
-      <circle key={key} cx={cx} cy={cy} r="3.5" className="marker-a" />
-    ) : (
-      <rect key={key} x={cx - 3.2} y={cy - 3.2} width="6.4" height="6.4" className="marker-b" />
-    );
+    return <SideMarker key={key} side={side} cx={x(rpm)} cy={curves(value)} />;
   });
-}
-
-interface EndLabelProps {
-  side: "a" | "b";
-  x: number;
-  y: number | undefined;
-  end: number | null | undefined;
-  scale: LinearScale;
-  text: string;
-}
-
-/** The name of a curve at its right end, with a hairline to it when the label had to move. */
-function EndLabel({ x, y = 0, end, scale, text }: EndLabelProps) {
-  const from = end === null || end === undefined ? y : scale(end);
-  return (
-    <>
-      <path d={`M${x + 1} ${from}L${x + 9} ${y}`} fill="none" className="stroke-edge" />
-      <text x={x + 12} y={y} dy="0.35em" className="chart-label">
-        {text}
-      </text>
-    </>
-  );
 }
 
 function lastValue(values: Series, last: number): number | null {
