@@ -8,11 +8,14 @@ import type { z } from "zod";
 import type { PlanFields } from "@/components/features/programmes/gate-field-words";
 import { GateRow } from "@/components/features/programmes/gate-row";
 import { GATE_GROUPS, SPRINT_TIMES } from "@/components/features/programmes/gate-words";
+import {
+  SaveVersion,
+  useSaveVersion,
+  type VersionAnswer,
+} from "@/components/features/programmes/save-version";
 import { Button } from "@/components/ui/action/button";
 import { Select } from "@/components/ui/form/select";
 import { SectionHeading } from "@/components/ui/layout/section-heading";
-import { Notice } from "@/components/ui/status/notice";
-import { showToast } from "@/components/ui/status/toast";
 import type { Gate, GatePlan } from "@/lib/gates/plan";
 import { gatePlanSchema } from "@/lib/services/gate-plans/schema";
 
@@ -23,11 +26,7 @@ export interface GatePlanFormProps {
   /** Gates that the plan does not name yet, switched off: only those that are switched on are saved. */
   offered: readonly Gate[];
   blockedBecause: string | null;
-  action: (input: {
-    programmeId: string;
-    basedOnVersion: number;
-    plan: GatePlan;
-  }) => Promise<{ ok: boolean; message?: string; value?: { version: number } }>;
+  action: (input: { programmeId: string; basedOnVersion: number; plan: GatePlan }) => Promise<VersionAnswer>;
 }
 
 /** Kinds that a plan may hold several of, so that one can be taken out again. */
@@ -70,9 +69,8 @@ export function GatePlanForm({
   });
   const { fields, append, remove } = useFieldArray({ control: form.control, name: "gates", keyName: "key" });
   const [time, setTime] = useState("0-100");
-  const [problem, setProblem] = useState<string | null>(null);
-  const { formState } = form;
-  const wrong = Object.keys(formState.errors).length > 0;
+  const { save, ...state } = useSaveVersion(version);
+  const wrong = Object.keys(form.formState.errors).length > 0;
   const gates = fields as unknown as (Gate & { key: string })[];
 
   const addGain = () =>
@@ -89,16 +87,10 @@ export function GatePlanForm({
     const base = `sprint.${time.replaceAll(/[^a-z0-9.-]+/g, "-")}`;
     append({ id: freshId(base, gates), kind: "sprint", level: "should", time, notSlowerByS: "0.1" });
   };
-  const send = form.handleSubmit(async (parsed) => {
-    setProblem(null);
+  const send = form.handleSubmit((parsed) => {
     const left = (gate: Gate) => gate.level === "off" && offered.some(({ id }) => id === gate.id);
     const asked = { ...parsed, gates: parsed.gates.filter((gate) => !left(gate)) };
-    const state = await action({ programmeId, basedOnVersion: version, plan: asked });
-    const saved = state.value?.version;
-    const words =
-      saved === version ? "Nothing was changed, so no version was added." : `Version ${saved} is saved.`;
-    if (state.ok) showToast(words);
-    else setProblem(state.message ?? "It was not saved.");
+    return save(() => action({ programmeId, basedOnVersion: version, plan: asked }));
   });
 
   return (
@@ -146,21 +138,12 @@ export function GatePlanForm({
             )}
           </div>
         ))}
-        {(wrong || problem) && (
-          <Notice tone="problem" live>
-            {wrong ? "Some gates need another look: each says why." : problem}
-          </Notice>
-        )}
-        <div>
-          <Button
-            type="submit"
-            look="filled"
-            blockedBecause={blockedBecause}
-            disabled={formState.isSubmitting}
-          >
-            {formState.isSubmitting ? "Saving …" : `Save as version ${version + 1}`}
-          </Button>
-        </div>
+        <SaveVersion
+          version={version}
+          blockedBecause={blockedBecause}
+          {...state}
+          problem={wrong ? "Some gates need another look: each says why." : state.problem}
+        />
       </form>
     </FormProvider>
   );

@@ -2,12 +2,12 @@
 
 import { Check } from "lucide-react";
 import { type FormEvent, useState } from "react";
+import { LINK_WORDS } from "@/components/features/programmes/calibration/setting-tables";
 import {
   SaveVersion,
   useSaveVersion,
   type VersionAnswer,
-} from "@/components/features/programmes/calibration/save-version";
-import { LINK_WORDS } from "@/components/features/programmes/calibration/setting-tables";
+} from "@/components/features/programmes/save-version";
 import { Button } from "@/components/ui/action/button";
 import { Select } from "@/components/ui/form/select";
 import { TextInput } from "@/components/ui/form/text-input";
@@ -125,9 +125,9 @@ function LinkRow({
         {text && <p className="text-13 text-ink2">{text}</p>}
         <p className="text-13 text-ink2">
           {chosen
-            ? `Linked to ${channelWords(chosen.channel)}: ${LINK_WORDS[chosen.by]}.`
+            ? `Linked to ${channelWords(chosen.channel)}, ${LINK_WORDS[chosen.by]}.`
             : byItself
-              ? `Linked to ${channelWords(byItself.channel)} by itself: ${LINK_WORDS[byItself.by]}.`
+              ? `Linked by itself to ${channelWords(byItself.channel)}, ${LINK_WORDS[byItself.by]}.`
               : "Not linked: where runs went on this axis can't be told."}
         </p>
         {offered.length > 0 && (
@@ -149,7 +149,7 @@ function LinkRow({
         <Select
           label="Channel"
           aria-label={`Channel of ${quantity}`}
-          emptyLabel={byItself ? "as it is by itself" : "not linked"}
+          emptyLabel={byItself ? "as linked by itself" : "not linked"}
           value={chosen === null ? "" : isTitle ? TITLE : chosen.channel}
           onChange={({ target }) =>
             target.value === TITLE ? onChoose({ quantity, channel: " ", by: "hand" }) : choose(target.value)

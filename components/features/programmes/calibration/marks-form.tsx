@@ -10,7 +10,7 @@ import {
   SaveVersion,
   useSaveVersion,
   type VersionAnswer,
-} from "@/components/features/programmes/calibration/save-version";
+} from "@/components/features/programmes/save-version";
 import { choices } from "@/components/features/programmes/sheet-words";
 import { Button } from "@/components/ui/action/button";
 import { Select } from "@/components/ui/form/select";

@@ -15,7 +15,7 @@ import {
   SaveVersion,
   useSaveVersion,
   type VersionAnswer,
-} from "@/components/features/programmes/calibration/save-version";
+} from "@/components/features/programmes/save-version";
 import { Button } from "@/components/ui/action/button";
 import type { ChecksumRegion } from "@/lib/calibration/image/checksum-regions";
 
