@@ -128,6 +128,30 @@ describe("what the revisions change", () => {
       });
     }
   });
+  it("with boost the air ratio asked for is the one that the simulated engine runs at, to what a workshop types", () => {
+    for (const name of NAMES) {
+      const target = readingOf(name).characteristics.find((each) => each.name === "Fuel.Lambda_target");
+      const [speeds, pressures] = target?.axes.map(({ points }) => points.map(Number)) ?? [];
+      const boosted = pressures.findIndex((kPa) => kPa >= 160);
+      expect(boosted).toBeGreaterThan(0);
+      speeds.forEach((rpm, at) => {
+        const asked = Number(target?.values[at + boosted * speeds.length]);
+        expect(Math.abs(asked - EFFECTS[name].engine.lambda(rpm)), `${name} at ${rpm}`).toBeLessThan(0.00051);
+      });
+    }
+  });
+  it("ignition is later exactly where the simulated engine loses torque at the top", () => {
+    const base = (name: ImageName) =>
+      readingOf(name).characteristics.find((each) => each.name === "Ignition.Base");
+    const [before, after] = [base("asFound"), base("topEnd")];
+    const speeds = before?.axes[0].points.map(Number) ?? [];
+    const last = (before?.values.length ?? 0) - speeds.length;
+    const later = speeds.filter(
+      (_, at) => Number(after?.values[last + at]) < Number(before?.values[last + at]),
+    );
+    expect(later).toEqual(speeds.filter((rpm) => EFFECTS.topEnd.gain(rpm) < -0.005));
+    expect(later.length).toBeGreaterThan(0);
+  });
 });
 
 describe("what moves along the axes", () => {

@@ -232,6 +232,17 @@ describe("modules", () => {
     // No MOD_COMMON: the order that was taken is told.
     expect(description.notes.map(({ code }) => code)).toEqual(["byte_order_missing", "byte_order_missing"]);
   });
+  // ASAM's releases of the standard: 1.5 (5.1), 1.6 (6.0, 6.1) and 1.7 (7.0, 7.1), from memory.
+  it.each(["1 50", "1 51", "1 60", "1 61", "1 70", "1 71"])(
+    "version %s is read, and nothing noted",
+    (written) => {
+      const description = readTexts({
+        "main.a2l": inModule(value("a")).replace("ASAP2_VERSION 1 61", `ASAP2_VERSION ${written}`),
+      });
+      expect([description.version, description.notes]).toEqual([written.replace(" ", "."), []]);
+      expect([...description.modules[0].characteristics.keys()]).toEqual(["a"]);
+    },
+  );
   it("a characteristic may name its functions itself", () => {
     const list = "/begin FUNCTION_LIST F gone /end FUNCTION_LIST";
     const { module, notes } = readModuleOf(

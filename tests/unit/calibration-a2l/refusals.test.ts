@@ -1,6 +1,7 @@
 import { describe, expect, it } from "vitest";
 import { readDescription } from "@/lib/calibration/a2l/read-description";
 import { descriptionRefusal, inModule, readTexts } from "@/tests/support/description-text";
+import { peakMemoryBytes } from "@/tests/support/peak-memory";
 
 const refused = (files: Record<string, string | Uint8Array>) => descriptionRefusal(() => readTexts(files));
 const main = (text: string) => refused({ "main.a2l": text });
@@ -106,15 +107,18 @@ describe("a description in doubt is refused with file, line and reason", () => {
   });
 });
 
-/** Reads within a CPU time that no machine needs unless something grows faster than the text. */
-function bounded(text: string | Record<string, string>): { code: string; ms: number } {
+/** Reads within a CPU time and memory that no machine needs unless something grows faster than the text. */
+function bounded(text: string | Record<string, string>): { code: string; ms: number; mib: number } {
   const files = typeof text === "string" ? { "main.a2l": text } : text;
+  const peak = peakMemoryBytes();
   const before = process.cpuUsage();
   const { code } = refused(files);
   const spent = process.cpuUsage(before);
-  return { code, ms: (spent.user + spent.system) / 1000 };
+  return { code, ms: (spent.user + spent.system) / 1000, mib: (peakMemoryBytes() - peak) / 2 ** 20 };
 }
 const MOST_MS = 8000;
+/** How far the process's peak may grow; the longest of these texts has about 7 MB. */
+const MOST_MIB = 256;
 
 describe("a hostile description ends in a plain answer, in time in proportion to its size", () => {
   const characteristic = '/begin CHARACTERISTIC a "" VALUE 0 L 0 C 0 1 /end CHARACTERISTIC ';
@@ -199,6 +203,7 @@ describe("a hostile description ends in a plain answer, in time in proportion to
     const outcome = bounded(text);
     expect(outcome.code).toBe(code);
     expect(outcome.ms).toBeLessThan(MOST_MS);
+    expect(outcome.mib).toBeLessThan(MOST_MIB);
   });
   it("what can't all be listed is counted", () => {
     const description = readTexts({

@@ -191,7 +191,10 @@ describe("Intel HEX: each odd case of formats.md 1.1", () => {
     expect([both.startAddress, codes(both)]).toEqual([0x2305, ["two_start_addresses"]]);
   });
   it("sparse over 4 GiB costs memory for its bytes only", () => {
+    const before = process.memoryUsage().arrayBuffers;
     const image = read(`${data(0, 1)}\n${linear(0xffff)}\n${data(0xffff, 2)}\n${END}`);
+    expect(process.memoryUsage().arrayBuffers - before).toBeLessThan(16e6);
+    for (const { bytes } of image.segments) expect(bytes.buffer.byteLength).toBeLessThan(16e6);
     expect(layout(image)).toEqual([
       [0, 1],
       [0xffffffff, 1],
