@@ -11,12 +11,14 @@ function contentDisposition(fileName: string): string {
   return `attachment; filename="${plain}"; filename*=UTF-8''${encoded}`;
 }
 
-/** What keeps a download out of shared caches and any browser from rendering it. */
-const GUARDED = {
+/** What names a download, and keeps it out of shared caches and any browser from rendering it. */
+const guarded = (type: string, fileName: string) => ({
+  "content-type": type,
+  "content-disposition": contentDisposition(fileName),
   "cache-control": "private, no-store",
   "x-content-type-options": "nosniff",
   "content-security-policy": "sandbox",
-};
+});
 
 function* encoded(pieces: Iterable<string>): Generator<Uint8Array> {
   for (const piece of pieces) yield Buffer.from(piece);
@@ -25,24 +27,12 @@ function* encoded(pieces: Iterable<string>): Generator<Uint8Array> {
 /** A text made piece by piece as a download that no browser renders; nobody holds it as a whole. */
 export function downloadText(file: { fileName: string; type: string; pieces: Iterable<string> }): Response {
   const body = Readable.toWeb(Readable.from(encoded(file.pieces))) as ReadableStream<Uint8Array>;
-  return new Response(body, {
-    headers: {
-      "content-type": `${file.type}; charset=utf-8`,
-      "content-disposition": contentDisposition(file.fileName),
-      ...GUARDED,
-    },
-  });
+  return new Response(body, { headers: guarded(`${file.type}; charset=utf-8`, file.fileName) });
 }
 
 /** A table made on the way as a download that no browser renders. */
 export function downloadCsv({ fileName, csv }: { fileName: string; csv: string }): Response {
-  return new Response(csv, {
-    headers: {
-      "content-type": "text/csv; charset=utf-8",
-      "content-disposition": contentDisposition(fileName),
-      ...GUARDED,
-    },
-  });
+  return new Response(csv, { headers: guarded("text/csv; charset=utf-8", fileName) });
 }
 
 /** A stored file as a download that no browser renders, with its fingerprint (RFC 9530) beside it. */
@@ -50,12 +40,10 @@ export function download(file: StoredBytes & { fileName: string; sha256: string 
   const body = Readable.toWeb(file.body) as ReadableStream<Uint8Array>;
   return new Response(body, {
     headers: {
-      "content-type": "application/octet-stream",
+      ...guarded("application/octet-stream", file.fileName),
       "content-length": String(file.sizeBytes),
-      "content-disposition": contentDisposition(file.fileName),
       "repr-digest": `sha-256=:${Buffer.from(file.sha256, "hex").toString("base64")}:`,
       "x-fingerprint": file.sha256,
-      ...GUARDED,
     },
   });
 }
