@@ -1,7 +1,7 @@
 import { and, desc, eq, inArray, sql } from "drizzle-orm";
 import type { Queryable } from "@/db/client";
 import { hasOwnJob } from "@/db/queries/analysis-versions";
-import { descriptions } from "@/db/tables";
+import { descriptions, revisions } from "@/db/tables";
 
 export type DescriptionRow = typeof descriptions.$inferSelect;
 type Key = { workspaceId: string; descriptionId: string };
@@ -38,16 +38,17 @@ export async function selectDescription(db: Queryable, key: Key): Promise<Descri
   return row ?? null;
 }
 
-/** Names of the files of descriptions, the main one first. */
-export async function selectFileNames(
+/** Names of the files of the description that each revision has, the main one first; absent where it has none. */
+export async function selectFileNamesOf(
   db: Queryable,
-  { workspaceId, descriptionIds }: { workspaceId: string; descriptionIds: readonly string[] },
-): Promise<{ id: string; fileNames: string[] }[]> {
+  { workspaceId, revisionIds }: { workspaceId: string; revisionIds: readonly string[] },
+): Promise<Map<string, string[]>> {
   const rows = await db
-    .select({ id: descriptions.id, files: descriptions.files })
-    .from(descriptions)
-    .where(and(eq(descriptions.workspaceId, workspaceId), inArray(descriptions.id, [...descriptionIds])));
-  return rows.map(({ id, files }) => ({ id, fileNames: files.map(({ name }) => name) }));
+    .select({ id: revisions.id, files: descriptions.files })
+    .from(revisions)
+    .innerJoin(descriptions, eq(descriptions.id, revisions.descriptionId))
+    .where(and(eq(revisions.workspaceId, workspaceId), inArray(revisions.id, [...revisionIds])));
+  return new Map(rows.map(({ id, files }) => [id, files.map(({ name }) => name)]));
 }
 
 /** What was understood of a programme's descriptions, the newest first. */
