@@ -4,17 +4,19 @@ import PgBoss from "pg-boss";
 /** Wakes the worker when a transaction that put a job into a queue has committed. */
 export const JOB_CHANNEL = "twinpass_jobs";
 
+const TRIED_AGAIN = { retryLimit: 4, retryDelay: 1, retryBackoff: true, expireInSeconds: 600 };
+
 /**
  * Every queue there is, in the order in which the worker asks them among jobs of one priority. A job whose worker died is found by its missing lock
  * (see openJobQueue), long before `expireInSeconds`, which only stands for a worker whose machine vanished.
  */
 export const JOB_QUEUES = {
-  "judge-run": { retryLimit: 4, retryDelay: 1, retryBackoff: true, expireInSeconds: 600 },
-  "compute-comparison": { retryLimit: 4, retryDelay: 1, retryBackoff: true, expireInSeconds: 600 },
-  "read-description": { retryLimit: 4, retryDelay: 1, retryBackoff: true, expireInSeconds: 600 },
-  "read-image": { retryLimit: 4, retryDelay: 1, retryBackoff: true, expireInSeconds: 600 },
-  "compute-change-set": { retryLimit: 4, retryDelay: 1, retryBackoff: true, expireInSeconds: 600 },
-  "compute-coverage": { retryLimit: 4, retryDelay: 1, retryBackoff: true, expireInSeconds: 600 },
+  "judge-run": TRIED_AGAIN,
+  "compute-comparison": TRIED_AGAIN,
+  "read-description": TRIED_AGAIN,
+  "read-image": TRIED_AGAIN,
+  "compute-change-set": TRIED_AGAIN,
+  "compute-coverage": TRIED_AGAIN,
 } as const satisfies Record<string, Omit<PgBoss.Queue, "name">>;
 export type JobName = keyof typeof JOB_QUEUES;
 
