@@ -53,7 +53,7 @@ export const imageReadings = pgTable(
       .notNull()
       .references(() => descriptions.id),
     readerVersion: text("reader_version").notNull(),
-    /** Canonical JSON of the reading, packed by gzip. */
+    /** JSON of the reading, packed by gzip. */
     blobSha256: text("blob_sha256").notNull(),
     summary: jsonb("summary").$type<ReadingSummary>().notNull(),
     createdAt: createdAt(),

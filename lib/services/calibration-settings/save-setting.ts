@@ -31,11 +31,11 @@ export async function saveSetting<Kind extends SettingKind>(
   return await withTransaction(ctx, async (tx, inner) => {
     const { programme } = await loadProgramme(inner, programmeId);
     refuseArchived(programme);
-    const newest = await selectSetting(tx, { workspaceId, programmeId, kind });
+    const place = { workspaceId, programmeId, kind };
+    const newest = await selectSetting(tx, place);
     const isNewest = newest.version === basedOnVersion;
     if (isNewest && digestOf(newest.content) === digestOf(content)) return { version: newest.version };
     const version = newest.version + 1;
-    const place = { workspaceId, programmeId, kind };
     if (!isNewest || !(await insertSetting(tx, { ...place, version, content, createdBy: userId })))
       throw new ConflictError(
         "setting_moved",
