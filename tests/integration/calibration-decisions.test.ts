@@ -1,11 +1,9 @@
 import { eq } from "drizzle-orm";
 import { afterAll, beforeAll, describe, expect, vi } from "vitest";
 import type { Queryable } from "@/db/client";
-import { savePassphrase } from "@/db/queries/people";
 import { changeSets, decisions, gatePlans, ledger, programmes, secondAgreements } from "@/db/tables";
 import { ConflictError, ForbiddenError, InvalidInputError, NotFoundError } from "@/lib/errors";
 import type { Gate } from "@/lib/gates/plan";
-import type { Role } from "@/lib/policy/actor";
 import { saveRelevanceMarks } from "@/lib/services/calibration-settings/save-marks";
 import { getRevisionChanges } from "@/lib/services/change-sets/get";
 import type { Ctx } from "@/lib/services/ctx";
@@ -13,7 +11,6 @@ import { agreeAsSecondLead } from "@/lib/services/decisions/agree";
 import { getDecisionDesk } from "@/lib/services/decisions/load-desk";
 import { getRecord } from "@/lib/services/decisions/load-record";
 import { promoteRevision } from "@/lib/services/decisions/promote";
-import type { PromoteInput } from "@/lib/services/decisions/schema";
 import { gateStatus } from "@/lib/services/gates/status";
 import {
   addSmallRevision,
@@ -23,8 +20,7 @@ import {
   setState,
 } from "@/tests/support/calibration-scene";
 import { test } from "@/tests/support/database";
-import { PASSPHRASE } from "@/tests/support/decision-scene";
-import { createMember } from "@/tests/support/factories";
+import { createSigner, PASSPHRASE, seenBy } from "@/tests/support/decision-scene";
 import type { SmallImage } from "@/tests/support/small-calibration";
 import { createTestStore } from "@/tests/support/store";
 
@@ -51,12 +47,6 @@ interface DecisionScene extends CalibrationScene {
   after: string;
 }
 
-async function signer(db: Queryable, workspaceId: string, roles: Role[]): Promise<Ctx> {
-  const ctx = await createMember(db, { workspaceId, roles, store: files.store });
-  await savePassphrase(db, { userId: ctx.userId, scryptHash: PASSPHRASE });
-  return ctx;
-}
-
 /** What stands, and a candidate in review that raises the limiter; the limiter's function is marked. */
 async function candidate(
   db: Queryable,
@@ -68,8 +58,9 @@ async function candidate(
 ): Promise<DecisionScene> {
   const base = await createCalibrationScene(db, files.store);
   const { workspaceId, programmeId, calibrator } = base;
-  const lead = await signer(db, workspaceId, ["lead"]);
-  const otherLead = await signer(db, workspaceId, ["lead"]);
+  const signing = { workspaceId, roles: ["lead" as const], store: files.store };
+  const lead = await createSigner(db, signing);
+  const otherLead = await createSigner(db, signing);
   await db.insert(gatePlans).values({
     workspaceId,
     programmeId,
@@ -93,24 +84,6 @@ async function candidate(
   return { ...base, lead, otherLead, before, after };
 }
 
-/** What a lead would send who has the page before them now. */
-async function seen(ctx: Ctx, revisionId: string): Promise<PromoteInput> {
-  const { revision, standing, gates, calibration } = await getDecisionDesk(ctx, revisionId);
-  return {
-    revisionId,
-    rowVersion: revision.rowVersion,
-    standingRevisionId: standing?.id ?? null,
-    comparisonId: null,
-    inputSha256: null,
-    shownInputSha256: null,
-    gatePlanVersion: gates.planVersion,
-    calibrationSha256: calibration.seenSha256,
-    typedNumber: `R${revision.number}`,
-    reason: "shown on the road",
-    waivers: [],
-    passphrase: PASSPHRASE,
-  };
-}
 const stateOf = async (scene: DecisionScene) =>
   Object.fromEntries(
     (await gateStatus(scene.lead, { revisionId: scene.after })).results.map(({ id, state }) => [id, state]),
@@ -141,7 +114,7 @@ describe("gates on the calibration", () => {
     expect(await stateOf(scene)).toEqual({ integrity: "met", declaration: "not_met", touched: "not_met" });
     const { contradiction } = await getRevisionChanges(scene.calibrator, scene.after);
     expect(contradiction).toMatch(/R2 is declared to touch nothing.*limiter \(1 changed\), safety-relevant/);
-    await expect(promoteRevision(scene.lead, await seen(scene.lead, scene.after))).rejects.toThrow(
+    await expect(promoteRevision(scene.lead, await seenBy(scene.lead, scene.after))).rejects.toThrow(
       /Not met and not waived/,
     );
   });
@@ -156,7 +129,7 @@ describe("a promotion", () => {
       needsApproval: true,
       touched: [{ name: "limiter", relevance: "safety", characteristics: ["rpm_limit"] }],
     });
-    const input = await seen(scene.lead, scene.after);
+    const input = await seenBy(scene.lead, scene.after);
     await expect(promoteRevision(scene.lead, input)).rejects.toThrow(InvalidInputError);
     await expect(
       promoteRevision(scene.lead, { ...input, approval: { ...DOCUMENT, issuer: " " } }),
@@ -183,8 +156,8 @@ describe("a promotion", () => {
     await expect(agreeAsSecondLead(lead, await agreeing(lead, after))).rejects.toThrow(
       /agreed to exactly this/,
     );
-    await expect(promoteRevision(lead, await seen(lead, after))).rejects.toThrow(/second lead/);
-    const { decisionId } = await promoteRevision(otherLead, await seen(otherLead, after));
+    await expect(promoteRevision(lead, await seenBy(lead, after))).rejects.toThrow(/second lead/);
+    const { decisionId } = await promoteRevision(otherLead, await seenBy(otherLead, after));
     expect((await getRecord(lead, decisionId)).decision.evidence.calibration).toMatchObject({
       approval: null,
       secondLead: {
@@ -202,7 +175,7 @@ describe("a promotion", () => {
     const { lead, otherLead, after } = scene;
     await doJobs(scene);
     const waivers = [{ gateId: "touched", reason: "for the sake of this very test" }];
-    const bare = { ...(await seen(lead, after)), waivers };
+    const bare = { ...(await seenBy(lead, after)), waivers };
     await expect(promoteRevision(lead, bare)).rejects.toThrow(/bytes without a description/);
     const agreed = async () => (await getDecisionDesk(lead, after)).calibration.agreements.length;
     await agreeAsSecondLead(otherLead, await agreeing(otherLead, after));
@@ -213,7 +186,7 @@ describe("a promotion", () => {
     await saveRelevanceMarks(lead, { programmeId, basedOnVersion: 1, marks: [further] });
     expect(await agreed()).toBe(0);
     await agreeAsSecondLead(otherLead, await agreeing(otherLead, after));
-    const { decisionId } = await promoteRevision(lead, { ...(await seen(lead, after)), waivers });
+    const { decisionId } = await promoteRevision(lead, { ...(await seenBy(lead, after)), waivers });
     expect((await getRecord(lead, decisionId)).decision.evidence.calibration).toMatchObject({
       touched: [],
       secondLead: { id: otherLead.userId },
@@ -225,7 +198,7 @@ describe("a promotion", () => {
     const plain = await candidate(tx, { image: { gain: 90 }, declares: false });
     await doJobs(closed);
     for (const { lead, after } of [closed, plain]) {
-      const { decisionId } = await promoteRevision(lead, await seen(lead, after));
+      const { decisionId } = await promoteRevision(lead, await seenBy(lead, after));
       expect((await getRecord(lead, decisionId)).decision.evidence.calibration).toMatchObject({
         approval: null,
         secondLead: null,
@@ -237,11 +210,11 @@ describe("a promotion", () => {
     const scene = await candidate(tx);
     const { lead, after, programmeId } = scene;
     const waivers = GATES.map(({ id }) => ({ gateId: id, reason: "for the sake of this very test" }));
-    const early = { ...(await seen(lead, after)), approval: DOCUMENT };
+    const early = { ...(await seenBy(lead, after)), approval: DOCUMENT };
     await expect(promoteRevision(lead, { ...early, waivers })).rejects.toThrow(/not worked out yet/);
     await doJobs(scene);
     await expect(promoteRevision(lead, early)).rejects.toThrow(/has moved since you opened this page/);
-    const input = { ...(await seen(lead, after)), approval: DOCUMENT };
+    const input = { ...(await seenBy(lead, after)), approval: DOCUMENT };
     await saveRelevanceMarks(lead, { programmeId, basedOnVersion: 1, marks: [] });
     await expect(promoteRevision(lead, input)).rejects.toThrow(ConflictError);
     expect(await tx.select().from(decisions).where(eq(decisions.revisionId, after))).toEqual([]);
@@ -250,7 +223,7 @@ describe("a promotion", () => {
   test("is refused when the stored image has lost its fingerprint", async ({ tx }) => {
     const scene = await candidate(tx, { use: "closed_course" });
     await doJobs(scene);
-    const input = await seen(scene.lead, scene.after);
+    const input = await seenBy(scene.lead, scene.after);
     const gone = { ...files.store, get: () => Promise.reject(new NotFoundError("object_not_found", "gone")) };
     await expect(promoteRevision({ ...scene.lead, store: gone }, input)).rejects.toMatchObject({
       code: "image_damaged",
@@ -263,7 +236,7 @@ describe("a promotion", () => {
     const { lead, after, before } = scene;
     const third = await addSmallRevision(scene, { gain: 80 }, { parentId: before });
     await doJobs(scene);
-    await promoteRevision(lead, await seen(lead, after));
+    await promoteRevision(lead, await seenBy(lead, after));
     expect(await getRevisionChanges(lead, third)).toMatchObject({
       state: "computing",
       against: { id: after },
@@ -288,7 +261,7 @@ describe("a second lead's agreement", () => {
     });
     expect((await getDecisionDesk(otherLead, after)).calibration.agreements).toEqual([]);
     await expect(agreeAsSecondLead(otherLead, stale)).rejects.toThrow(/not what you saw/);
-    await expect(promoteRevision(otherLead, await seen(otherLead, after))).rejects.toThrow(/second lead/);
+    await expect(promoteRevision(otherLead, await seenBy(otherLead, after))).rejects.toThrow(/second lead/);
   });
 
   test("is refused by role, for strangers, on wrong passphrase, and where nothing marked is touched", async ({
@@ -301,7 +274,12 @@ describe("a second lead's agreement", () => {
     for (const ctx of [tester, calibrator, reader, admin])
       await expect(agreeAsSecondLead(ctx, input)).rejects.toThrow(ForbiddenError);
     await expect(agreeAsSecondLead(lead, { ...input, passphrase: "wrong" })).rejects.toThrow(ForbiddenError);
-    const stranger = await signer(tx, (await createCalibrationScene(tx, files.store)).workspaceId, ["lead"]);
+    const elsewhere = await createCalibrationScene(tx, files.store);
+    const stranger = await createSigner(tx, {
+      workspaceId: elsewhere.workspaceId,
+      roles: ["lead"],
+      store: files.store,
+    });
     await expect(agreeAsSecondLead(stranger, input)).rejects.toThrow(NotFoundError);
     const archive = (archivedAt: Date | null) =>
       tx.update(programmes).set({ archivedAt }).where(eq(programmes.id, scene.programmeId));

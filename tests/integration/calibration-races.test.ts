@@ -11,7 +11,6 @@ import { sweepLeftovers } from "@/lib/jobs/sweep";
 import { askForChangeSet } from "@/lib/services/change-sets/ask";
 import { exportRevisionValues } from "@/lib/services/change-sets/export";
 import { getRevisionChanges } from "@/lib/services/change-sets/get";
-import { getDecisionDesk } from "@/lib/services/decisions/load-desk";
 import { promoteRevision } from "@/lib/services/decisions/promote";
 import { addDescription } from "@/lib/services/descriptions/add";
 import {
@@ -21,7 +20,7 @@ import {
   setState,
 } from "@/tests/support/calibration-scene";
 import { type TestDatabase, test } from "@/tests/support/database";
-import { PASSPHRASE } from "@/tests/support/decision-scene";
+import { PASSPHRASE, seenBy } from "@/tests/support/decision-scene";
 import { smallA2l } from "@/tests/support/small-calibration";
 import { createTestStore } from "@/tests/support/store";
 import { uploadBytes } from "@/tests/support/upload-bytes";
@@ -67,29 +66,13 @@ describe("at the same moment", () => {
       await setState(scene, a, { state: "promoted", asFound: true, stoodFrom: new Date() });
       await db.update(programmes).set({ standingRevisionId: a }).where(eq(programmes.id, programmeId));
       await setState(scene, b, { state: "in_review", gatePlanVersion: 1 });
-      const { revision, calibration } = await getDecisionDesk(lead, b);
+      const seen = await seenBy(lead, b);
       const describeIt = async (revisionId: string) => {
         const uploadIds = [await uploadBytes(calibrator, "description", `${revisionId}.a2l`, smallA2l())];
         return () => addDescription(calibrator, { revisionId, rowVersion: 1, uploadIds }, randomUUID());
       };
       const adding = [await describeIt(a), await describeIt(c)];
-      const outcomes = await Promise.allSettled([
-        promoteRevision(lead, {
-          revisionId: b,
-          rowVersion: revision.rowVersion,
-          standingRevisionId: a,
-          comparisonId: null,
-          inputSha256: null,
-          shownInputSha256: null,
-          gatePlanVersion: 1,
-          calibrationSha256: calibration.seenSha256,
-          typedNumber: "2",
-          reason: "a race",
-          waivers: [],
-          passphrase: PASSPHRASE,
-        }),
-        ...adding.map((add) => add()),
-      ]);
+      const outcomes = await Promise.allSettled([promoteRevision(lead, seen), ...adding.map((add) => add())]);
       for (const outcome of outcomes)
         if (outcome.status === "rejected") expect(outcome.reason).toBeInstanceOf(ConflictError);
       await doJobs(scene);

@@ -1,6 +1,6 @@
 import { randomUUID } from "node:crypto";
 import { and, eq } from "drizzle-orm";
-import type { Database } from "@/db/client";
+import type { Database, Queryable } from "@/db/client";
 import { closeResult, openResult, selectComparison } from "@/db/queries/comparisons";
 import { savePassphrase } from "@/db/queries/people";
 import { blobs, programmes, type revisions, runs } from "@/db/tables";
@@ -11,6 +11,7 @@ import { openComparison } from "@/lib/services/comparisons/open";
 import type { Ctx } from "@/lib/services/ctx";
 import { getDecisionDesk } from "@/lib/services/decisions/load-desk";
 import type { PromoteInput } from "@/lib/services/decisions/schema";
+import type { ObjectStore } from "@/storage/port";
 import {
   createMember,
   createProgrammeRow,
@@ -48,12 +49,12 @@ export interface Scene {
   comparisonId: string;
 }
 
-/** A member who may sign. */
+/** A member who may sign. @param args `store`: one that holds what `keepAnImage` kept, unless given */
 export async function createSigner(
-  db: Database,
-  args: Omit<Parameters<typeof createMember>[1], "store">,
+  db: Queryable,
+  args: Omit<Parameters<typeof createMember>[1], "store"> & { store?: ObjectStore },
 ): Promise<Ctx> {
-  const ctx = await createMember(db, { ...args, store: imageStore });
+  const ctx = await createMember(db, { store: imageStore, ...args });
   await savePassphrase(db, { userId: ctx.userId, scryptHash: PASSPHRASE });
   return ctx;
 }
