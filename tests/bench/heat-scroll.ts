@@ -54,9 +54,29 @@ async function scroll(browser: Browser, page: Page, client: CDPSession): Promise
   return { dropped: count("DroppedFrame"), drawn: count("DrawFrame") };
 }
 
-async function measure(browser: Browser, html: string, rounds: number): Promise<Frames> {
+/** Throws where axis points leave the box while its cells scroll: those of x stay at its top, those of y at its left. */
+async function demandHeadsInSight(page: Page): Promise<void> {
+  const off = await page.evaluate(() => {
+    const box = document.querySelector(".heat-scroller");
+    const [column, row] = ["thead tr:last-child th:nth-child(40)", "tbody tr:nth-child(40) th"].map((head) =>
+      box?.querySelector(head),
+    );
+    if (!box || !column || !row) return null;
+    box.scrollTo(700, 500);
+    const [edge, top, left] = [box, column, row].map((part) => part.getBoundingClientRect());
+    const moved = [box.scrollLeft, box.scrollTop];
+    box.scrollTo(0, 0);
+    return { moved, top: top.top - edge.top, left: left.left - edge.left };
+  });
+  if (off?.moved[0] !== 700 || off.moved[1] !== 500) throw new Error("the heat table did not scroll");
+  if (Math.abs(off.top) > 2 || Math.abs(off.left) > 2)
+    throw new Error(`axis points left the heat table: ${JSON.stringify(off)}`);
+}
+
+async function measure(browser: Browser, html: string, rounds: number, hasHeads = false): Promise<Frames> {
   const page = await browser.newPage({ viewport: { width: 1280, height: 900 } });
   await page.setContent(html);
+  if (hasHeads) await demandHeadsInSight(page);
   const client = await page.context().newCDPSession(page);
   await scroll(browser, page, client);
   const seen: Frames[] = [];
@@ -92,7 +112,7 @@ export async function printHeatScroll(): Promise<boolean | null> {
       return null;
     }
     const html = renderToStaticMarkup(createElement(HeatTable, table()));
-    const { dropped, drawn } = await measure(browser, document(html), ROUNDS);
+    const { dropped, drawn } = await measure(browser, document(html), ROUNDS, true);
     const inside = dropped === 0;
     console.log(
       `${dropped.toFixed(0).padStart(7)}  ${against} ${what}: ${inside ? "inside" : "OUTSIDE"} 0 (${drawn} frames drawn)`,
