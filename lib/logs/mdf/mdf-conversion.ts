@@ -1,3 +1,4 @@
+import { compileFormula } from "@/lib/format/compile-formula";
 import {
   demandData,
   type MdfBlock,
@@ -6,7 +7,6 @@ import {
   readText,
   refuseDamaged,
 } from "@/lib/logs/mdf/mdf-blocks";
-import { compileFormula } from "@/lib/logs/mdf/mdf-formula";
 
 /** How a raw number becomes a physical one (CC block). */
 export interface MdfConversion {

@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { compileFormula } from "@/lib/logs/mdf/mdf-formula";
+import { compileFormula } from "@/lib/format/compile-formula";
 import { readLog } from "@/lib/logs/read-log";
 import type { ChannelKey, LogTable } from "@/lib/logs/types";
 import { codesOf, columnOf } from "@/tests/support/golden-log";

@@ -1,15 +1,11 @@
 import type { Conversion } from "@/lib/calibration/a2l/types";
 import { firstRangeAt } from "@/lib/calibration/values/convert/first-range";
 import { fromRational } from "@/lib/calibration/values/convert/rational";
-import type { PhysicalValue } from "@/lib/calibration/values/types";
-import { compileFormula } from "@/lib/logs/mdf/mdf-formula";
+import type { PhysicalValue, ReadCharacteristic } from "@/lib/calibration/values/types";
+import { compileFormula } from "@/lib/format/compile-formula";
 
-/** Physical limits that tell which of two solutions of a quadratic conversion is meant. */
-export interface Limits {
-  lower: number;
-  upper: number;
-  extended: readonly [number, number] | null;
-}
+/** Physical limits: they tell which of two solutions of a quadratic conversion is meant. */
+export type Limits = ReadCharacteristic["limits"];
 
 /** A conversion made ready: raw number in, physical value out; null where it has none for this raw number. */
 export interface Converter {
