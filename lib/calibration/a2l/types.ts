@@ -47,7 +47,9 @@ export interface RecordLayout {
   keepsStarts: boolean;
 }
 
-export type AxisLetter = "X" | "Y" | "Z" | "4" | "5";
+/** Letters by which a record layout tells axes apart. */
+export const AXIS_LETTERS = ["X", "Y", "Z", "4", "5"] as const;
+export type AxisLetter = (typeof AXIS_LETTERS)[number];
 
 /** How raw becomes physical. */
 export type Conversion = {

@@ -1,7 +1,13 @@
-import { AXES_OF, type Characteristic, DATA_TYPES, type DataType } from "@/lib/calibration/a2l/types";
+import {
+  AXES_OF,
+  AXIS_LETTERS,
+  type Characteristic,
+  DATA_TYPES,
+  type DataType,
+} from "@/lib/calibration/a2l/types";
 import { decimalsOf, joinRanges, stepOf } from "@/lib/calibration/values/convert/presentation";
 import type { CellPlaces } from "@/lib/calibration/values/memory/cell-places";
-import { AXIS_LETTERS, type PlacedRecord, placeRecord } from "@/lib/calibration/values/memory/place-record";
+import { type PlacedRecord, placeRecord } from "@/lib/calibration/values/memory/place-record";
 import { readCells } from "@/lib/calibration/values/memory/read-cells";
 import { readCharacters } from "@/lib/calibration/values/memory/read-characters";
 import { applyMask, exactRaw, type Raw } from "@/lib/calibration/values/memory/read-number";

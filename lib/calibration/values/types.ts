@@ -1,11 +1,10 @@
-import type { CharacteristicType } from "@/lib/calibration/a2l/types";
+import type { AxisKind, CharacteristicType } from "@/lib/calibration/a2l/types";
 
 /** A physical value: a number, a text (words, ASCII), or null where the conversion has none for this raw value. */
 export type PhysicalValue = number | string | null;
 
 export interface ReadAxis {
-  /** STD_AXIS … of ASAP2. */
-  kind: "STD_AXIS" | "COM_AXIS" | "FIX_AXIS" | "RES_AXIS" | "CURVE_AXIS";
+  kind: AxisKind;
   /** Shared axis or curve it rests on, else null. */
   reference: string | null;
   inputQuantity: string | null;

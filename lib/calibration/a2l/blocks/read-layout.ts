@@ -2,6 +2,7 @@ import type { BlockReader } from "@/lib/calibration/a2l/blocks/block-reader";
 import type { Place } from "@/lib/calibration/a2l/findings";
 import {
   type Alignments,
+  AXIS_LETTERS,
   type AxisLetter,
   type ByteOrder,
   DATA_TYPES,
@@ -28,7 +29,6 @@ const INDEX_MODES = [
   "ALTERNATE_WITH_Y",
 ] as const;
 const INDEX_ORDERS = ["INDEX_INCR", "INDEX_DECR"] as const;
-const AXIS_LETTERS = ["X", "Y", "Z", "4", "5"] as const;
 /** Components of one layout: five axes of all kinds have fewer. Each record of the layout walks over all of them. */
 const MOST_COMPONENTS = 256;
 /** Components of a position and a data type only. */

@@ -1,8 +1,4 @@
-interface Bounds {
-  lower: number;
-  upper: number;
-  extended: readonly [number, number] | null;
-}
+import type { ReadCharacteristic } from "@/lib/calibration/values/types";
 
 /**
  * Physical value p of raw = (a·p² + b·p + c) / (d·p² + e·p + f), the direction in which ASAP2 states it. Null where no p, every p
@@ -11,7 +7,7 @@ interface Bounds {
 export function fromRational(
   [a, b, c, d, e, f]: readonly [number, number, number, number, number, number],
   raw: number,
-  { lower, upper, extended }: Bounds,
+  { lower, upper, extended }: ReadCharacteristic["limits"],
 ): number | null {
   const [square, linear, constant] = [a - d * raw, e * raw - b, c - f * raw];
   if (square === 0) {

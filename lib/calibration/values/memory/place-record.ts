@@ -18,8 +18,6 @@ import { readNumber } from "@/lib/calibration/values/memory/read-number";
 import { NotReadable } from "@/lib/calibration/values/not-readable";
 import type { ByteRange } from "@/lib/calibration/values/types";
 
-export const AXIS_LETTERS: readonly AxisLetter[] = ["X", "Y", "Z", "4", "5"];
-
 /** One axis of a record, before its place is known. */
 export interface AxisNeed {
   letter: AxisLetter;
