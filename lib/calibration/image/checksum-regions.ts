@@ -1,4 +1,5 @@
 import { type CrcParameters, crcOf } from "@/lib/calibration/image/cyclic-redundancy";
+import { segmentAt } from "@/lib/calibration/image/segment-at";
 import { type CalibrationImage, formatAddress } from "@/lib/calibration/image/types";
 
 type ByteOrder = "little" | "big";
@@ -141,7 +142,7 @@ function cutOut(whole: AddressSpan, holes: readonly AddressSpan[]): AddressSpan[
 
 function bytesOf(image: Image, { from, to }: AddressSpan): Uint8Array {
   // Segments never touch, so a stretch without a gap lies in one of them.
-  const segment = image.segments.find((s) => s.address <= from && from < s.address + s.bytes.length);
+  const segment = segmentAt(image.segments, from);
   const missing = segment ? segment.address + segment.bytes.length : from;
   if (!segment || missing <= to)
     throw new NotThere(`the image has no byte at ${formatAddress(missing)}, so it can't be checked.`);

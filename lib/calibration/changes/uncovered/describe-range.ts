@@ -1,6 +1,7 @@
 import { createHash } from "node:crypto";
 import type { UncoveredRange } from "@/lib/calibration/changes/types";
 import type { ChangedRange } from "@/lib/calibration/image/changed-ranges";
+import { segmentAt } from "@/lib/calibration/image/segment-at";
 import type { CalibrationImage } from "@/lib/calibration/image/types";
 import { digestOf } from "@/lib/canonical-json";
 
@@ -32,22 +33,10 @@ export function describeRange(
   };
 }
 
-function segmentAt({ segments }: Image, address: number) {
-  let low = 0;
-  let high = segments.length;
-  while (low < high) {
-    const middle = (low + high) >>> 1;
-    if (segments[middle].address <= address) low = middle + 1;
-    else high = middle;
-  }
-  const segment = segments[low - 1];
-  return segment && address < segment.address + segment.bytes.length ? segment : null;
-}
-
 function hex(image: Image, from: number, to: number): string {
   let text = "";
   for (let at = from; at < to; at++) {
-    const segment = segmentAt(image, at);
+    const segment = segmentAt(image.segments, at);
     text += segment ? segment.bytes[at - segment.address].toString(16).toUpperCase().padStart(2, "0") : "--";
   }
   return text;
@@ -55,7 +44,7 @@ function hex(image: Image, from: number, to: number): string {
 
 /** SHA-256 of a stretch that one segment holds; null where the image has no byte there. */
 function hashOf(image: Image, address: number, length: number): string | null {
-  const segment = segmentAt(image, address);
+  const segment = segmentAt(image.segments, address);
   if (!segment) return null;
   const from = address - segment.address;
   return createHash("sha256")

@@ -1,5 +1,6 @@
 import { formatAddress } from "@/lib/calibration/image/types";
 import type { ByteRange, ImageReading } from "@/lib/calibration/values/types";
+import { lowerBound } from "@/lib/signal/local-quadratic";
 
 /** Collects changed bytes that may belong to something that could not be read. */
 export interface Suspects {
@@ -27,14 +28,7 @@ export function describedStarts(a: ImageReading | null, b: ImageReading | null):
   const found = new Map<string, { bytes: number; first: number }>();
   return {
     add({ address, length }) {
-      let low = 0;
-      let high = sorted.length;
-      while (low < high) {
-        const middle = (low + high) >>> 1;
-        if (sorted[middle] < address + length) low = middle + 1;
-        else high = middle;
-      }
-      const start = sorted[low - 1];
+      const start = sorted[lowerBound(sorted, address + length) - 1];
       const name = start === undefined || address - start > FURTHEST ? null : starts.get(start);
       if (!name) return;
       const known = found.get(name);

@@ -1,3 +1,4 @@
+import { lastSegmentFrom } from "@/lib/calibration/image/segment-at";
 import type { ImageReading } from "@/lib/calibration/values/types";
 
 type Segment = ImageReading["memorySegments"][number];
@@ -19,15 +20,9 @@ export function segmentFinder(
     return furthest;
   });
   return (address) => {
-    let low = 0;
-    let high = segments.length;
-    while (low < high) {
-      const middle = (low + high) >>> 1;
-      if (segments[middle].address <= address) low = middle + 1;
-      else high = middle;
-    }
-    const start = segments[low]?.address ?? Infinity;
-    for (let k = low - 1; k >= 0 && reach[k] > address; k--) {
+    const last = lastSegmentFrom(segments, address);
+    const start = segments[last + 1]?.address ?? Infinity;
+    for (let k = last; k >= 0 && reach[k] > address; k--) {
       const end = segments[k].address + segments[k].length;
       if (end > address) return { segment: segments[k], until: Math.min(end, start) };
     }

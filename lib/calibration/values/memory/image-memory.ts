@@ -1,3 +1,4 @@
+import { lastSegmentFrom } from "@/lib/calibration/image/segment-at";
 import { type CalibrationImage, formatAddress, type ImageSegment } from "@/lib/calibration/image/types";
 import { NotReadable } from "@/lib/calibration/values/not-readable";
 
@@ -21,7 +22,7 @@ export class ImageMemory {
 
   /** The stretch of `length` bytes at `address`. Throws NotReadable, with the first missing byte, unless the image has them all. */
   at(address: number, length: number): Stretch {
-    const k = this.indexBefore(address);
+    const k = lastSegmentFrom(this.segments, address);
     const segment = k < 0 ? undefined : this.segments[k];
     const end = segment ? segment.address + segment.bytes.length : -1;
     if (segment && address + length <= end) return { view: this.views[k], offset: address - segment.address };
@@ -37,17 +38,5 @@ export class ImageMemory {
     throw new NotReadable(
       `its bytes ${formatAddress(address)} to ${last} are not in the image, which has none${start}`,
     );
-  }
-
-  /** Index of the last segment that starts at or before `address`, −1 if none does. */
-  private indexBefore(address: number): number {
-    let low = 0;
-    let high = this.segments.length;
-    while (low < high) {
-      const middle = (low + high) >>> 1;
-      if (this.segments[middle].address <= address) low = middle + 1;
-      else high = middle;
-    }
-    return low - 1;
   }
 }
