@@ -1,4 +1,3 @@
-import Papa from "papaparse";
 import { limitStateOf } from "@/lib/calibration/changes/limit-state";
 import type {
   ChangeSet,
@@ -13,7 +12,7 @@ import type {
   ReadAxis,
   ReadCharacteristic,
 } from "@/lib/calibration/values/types";
-import { FORMULA_START } from "@/lib/format/formula-start";
+import { csvText } from "@/lib/format/csv-text";
 
 type Cell = string | number | null;
 /** What places a row: its axes, and the cell by axis, from 0. */
@@ -36,7 +35,7 @@ const LIMITS: Readonly<Record<LimitState, string>> = {
  * no value. What could not be read stands at the end with its reason.
  */
 export function* readingCsv(reading: ImageReading): Generator<string> {
-  yield csvOf([["name", ...AXIS_TITLES, "value", "unit", "limit", "functions", "remark"]]);
+  yield csvText([["name", ...AXIS_TITLES, "value", "unit", "limit", "functions", "remark"]]);
   for (const of of reading.characteristics) yield* piecesOf(readingRows(of));
   yield* piecesOf(
     reading.notRead.map(({ name, reason }) => [
@@ -57,7 +56,7 @@ export function* readingCsv(reading: ImageReading): Generator<string> {
  */
 export function* changesCsv(changes: ChangeSet): Generator<string> {
   const titles = ["before", "after", "difference", "unit", "limit after", "functions"];
-  yield csvOf([["name", "change", ...AXIS_TITLES, ...titles]]);
+  yield csvText([["name", "change", ...AXIS_TITLES, ...titles]]);
   for (const change of changes.characteristics) yield* piecesOf(changeRows(change));
 }
 
@@ -134,13 +133,10 @@ function* piecesOf(rows: Iterable<Cell[]>): Generator<string> {
   let some: Cell[][] = [];
   for (const row of rows) {
     if (some.length === ROWS_OF_A_PIECE) {
-      yield csvOf(some);
+      yield csvText(some);
       some = [];
     }
     some.push(row);
   }
-  yield csvOf(some);
+  if (some.length > 0) yield csvText(some);
 }
-
-const csvOf = (rows: Cell[][]) =>
-  rows.length === 0 ? "" : `${Papa.unparse(rows, { escapeFormulae: FORMULA_START })}\r\n`;

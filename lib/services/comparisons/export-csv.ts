@@ -1,7 +1,6 @@
-import Papa from "papaparse";
 import { type PlottedGrid, plottedGrid } from "@/lib/compare/plotted-grid";
 import { ConflictError } from "@/lib/errors";
-import { FORMULA_START } from "@/lib/format/formula-start";
+import { csvText } from "@/lib/format/csv-text";
 import { ENGINE_CHANNELS, ENGINE_UNITS } from "@/lib/measure/engine/full-load-types";
 import { valuesOn } from "@/lib/measure/engine/values-on";
 import type { CampaignResult } from "@/lib/measure/types";
@@ -40,10 +39,7 @@ export function gridCsv(
     ...(result ? engineColumns(grid.rpm, labels, result) : []),
   ];
   const rows = grid.rpm.map((_, index) => columns.map(([, values]) => values[index] ?? null));
-  return `${Papa.unparse(
-    { fields: columns.map(([title]) => title), data: rows },
-    { escapeFormulae: FORMULA_START },
-  )}\r\n`;
+  return csvText([columns.map(([title]) => title), ...rows]);
 }
 
 /** Deviation of each mean curve from its local fit, and every engine channel that a side carries. */

@@ -1,7 +1,6 @@
-import Papa from "papaparse";
 import { selectRunAnalyses, selectRunForJudging } from "@/db/queries/run-analyses";
 import { ConflictError, FileRefusedError } from "@/lib/errors";
-import { FORMULA_START } from "@/lib/format/formula-start";
+import { csvText } from "@/lib/format/csv-text";
 import type { RefusedRow } from "@/lib/logs/types";
 import { type Ctx, withTransaction } from "@/lib/services/ctx";
 import { appendLedger } from "@/lib/services/ledger/append";
@@ -19,7 +18,7 @@ export function refusedRowsCsv(rows: readonly RefusedRow[], most = MOST_ROWS): s
     .map(({ row, column, raw, reason }) => [row, column ?? "", raw ?? "", reason]);
   if (rows.length >= most) data.push(["", "", "", `the list ends after ${most} rows`]);
   const fields = ["row", "column", "raw text", "reason"];
-  return `${Papa.unparse({ fields, data }, { escapeFormulae: FORMULA_START })}\r\n`;
+  return csvText([fields, ...data]);
 }
 
 /**
