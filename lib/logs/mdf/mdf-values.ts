@@ -1,3 +1,4 @@
+import { halfToNumber } from "@/lib/format/half-float";
 import type { MdfChannel } from "@/lib/logs/mdf/mdf-tree";
 
 /** Rows of equal size: where they lie and how many there are. */
@@ -11,16 +12,6 @@ export interface RecordRows {
 }
 
 const TWO_32 = 4_294_967_296;
-
-/** IEEE 754 binary16: 1 sign, 5 exponent, 10 fraction bits. */
-function halfToNumber(bits: number): number {
-  const sign = bits & 0x8000 ? -1 : 1;
-  const exponent = (bits >> 10) & 0x1f;
-  const fraction = bits & 0x3ff;
-  if (exponent === 0) return sign * fraction * 2 ** -24;
-  if (exponent === 31) return fraction ? Number.NaN : sign * Number.POSITIVE_INFINITY;
-  return sign * (1 + fraction / 1024) * 2 ** (exponent - 15);
-}
 
 /** Values of whole bytes; a loop for each width, since one loop with a reader passed in is several times slower. */
 function readWhole(records: RecordRows, first: number, kind: string, le: boolean): Float64Array | null {

@@ -1,5 +1,6 @@
 import { type ByteOrder, DATA_TYPES, type DataType } from "@/lib/calibration/a2l/types";
 import { NotReadable } from "@/lib/calibration/values/not-readable";
+import { halfToNumber } from "@/lib/format/half-float";
 
 /** A number as it lies in memory: bigint for 64-bit whole numbers, else number. */
 export type Raw = number | bigint;
@@ -7,7 +8,7 @@ export type Raw = number | bigint;
 const WORD = 2;
 const scratch = new DataView(new ArrayBuffer(8));
 
-/** Reads one number at `offset` of a view; 16-bit floats after IEEE 754-2008 binary16. */
+/** Reads one number at `offset` of a view. */
 export function readNumber(view: DataView, offset: number, type: DataType, order: ByteOrder): Raw {
   if (order === "little") return read(view, offset, type, true);
   if (order === "big") return read(view, offset, type, false);
@@ -39,22 +40,12 @@ function read(view: DataView, at: number, type: DataType, little: boolean): Raw 
     case "A_INT64":
       return view.getBigInt64(at, little);
     case "FLOAT16_IEEE":
-      return float16(view.getUint16(at, little));
+      return halfToNumber(view.getUint16(at, little));
     case "FLOAT32_IEEE":
       return view.getFloat32(at, little);
     case "FLOAT64_IEEE":
       return view.getFloat64(at, little);
   }
-}
-
-/** IEEE 754 binary16: sign, 5 bits of exponent (bias 15), 10 bits of fraction. */
-function float16(bits: number): number {
-  const sign = bits & 0x8000 ? -1 : 1;
-  const exponent = (bits >> 10) & 0x1f;
-  const fraction = bits & 0x3ff;
-  if (exponent === 0x1f) return fraction === 0 ? sign * Infinity : Number.NaN;
-  if (exponent === 0) return sign * fraction * 2 ** -24;
-  return sign * (1 + fraction / 1024) * 2 ** (exponent - 15);
 }
 
 /** True for FLOAT16_IEEE, FLOAT32_IEEE and FLOAT64_IEEE. */
