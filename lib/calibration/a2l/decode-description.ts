@@ -1,5 +1,6 @@
 import type { DescriptionFile } from "@/lib/calibration/a2l/types";
 import { FileRefusedError } from "@/lib/errors";
+import { isUtf8 } from "@/lib/format/is-utf8";
 
 /** The bytes of a description with a known encoding, ready for the tokenizer. */
 export interface DescriptionText {
@@ -13,21 +14,7 @@ export interface DescriptionText {
   encoding: string;
 }
 
-const CHECKED_AT_ONCE = 1 << 20;
 const HEAD_BYTES = 4096;
-
-/** Whether the bytes are sound UTF-8. Looks at a piece at a time, so that a large file is never a string. */
-function isUtf8(bytes: Uint8Array): boolean {
-  const strict = new TextDecoder("utf-8", { fatal: true });
-  try {
-    for (let at = 0; at < bytes.length; at += CHECKED_AT_ONCE)
-      strict.decode(bytes.subarray(at, at + CHECKED_AT_ONCE), { stream: true });
-    strict.decode();
-    return true;
-  } catch {
-    return false;
-  }
-}
 
 const hasMark = (bytes: Uint8Array, ...mark: number[]) => mark.every((byte, i) => bytes[i] === byte);
 

@@ -1,4 +1,5 @@
 import { FileRefusedError } from "@/lib/errors";
+import { isUtf8 } from "@/lib/format/is-utf8";
 
 const PIECE = 1 << 16;
 const HEAD = 400;
@@ -35,18 +36,6 @@ function knownLabel(label: string): string {
       "encoding_unknown",
       `The file says its encoding is "${label.slice(0, 40)}", which is not known. Export it as UTF-8.`,
     );
-  }
-}
-
-function isUtf8(bytes: Uint8Array): boolean {
-  const decoder = new TextDecoder("utf-8", { fatal: true });
-  try {
-    for (let at = 0; at < bytes.length; at += PIECE)
-      decoder.decode(bytes.subarray(at, at + PIECE), { stream: true });
-    decoder.decode();
-    return true;
-  } catch {
-    return false;
   }
 }
 
