@@ -1,3 +1,5 @@
+import { nameSome } from "@/lib/format/name-some";
+
 /** Marked functions and characteristics that a change touches, with what of them changed. */
 export function TouchedMarks({
   touched,
@@ -11,7 +13,7 @@ export function TouchedMarks({
           <span className="font-mono">{name}</span>, {relevance}-relevant
           {characteristics.length === 1 && characteristics[0] === name
             ? ""
-            : `: ${characteristics.slice(0, 5).join(", ")}${characteristics.length > 5 ? ` and ${characteristics.length - 5} more` : ""}`}
+            : `: ${nameSome(characteristics, 5)}`}
         </li>
       ))}
     </ul>

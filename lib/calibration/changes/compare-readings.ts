@@ -3,6 +3,7 @@ import type { Pair } from "@/lib/calibration/changes/pair";
 import type { CharacteristicChange } from "@/lib/calibration/changes/types";
 import { createMaskedWords } from "@/lib/calibration/changes/uncovered/masked-words";
 import type { ByteRange, ImageReading, ReadCharacteristic } from "@/lib/calibration/values/types";
+import { nameSome } from "@/lib/format/name-some";
 
 /** Cells of changed characteristics that are listed in full, all together. */
 const MOST_CELLS = 400_000;
@@ -96,8 +97,5 @@ function sameMeaning({ before, after }: Pair): boolean {
 
 function sentence(names: readonly string[], what: string): string[] {
   if (names.length === 0) return [];
-  const more = names.length - NAMES_SHOWN;
-  const list = names.slice(0, NAMES_SHOWN).join(", ");
-  if (names.length === 1) return [`${list} ${what}.`];
-  return [`${list}${more > 0 ? ` and ${more} more` : ""}: each ${what}.`];
+  return [`${nameSome(names, NAMES_SHOWN)}${names.length > 1 ? ": each" : ""} ${what}.`];
 }

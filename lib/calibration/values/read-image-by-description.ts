@@ -14,6 +14,7 @@ import {
 } from "@/lib/calibration/values/reading-context";
 import { sharedAxis } from "@/lib/calibration/values/shared-axis";
 import type { ImageReading, ReadCharacteristic } from "@/lib/calibration/values/types";
+import { nameSome } from "@/lib/format/name-some";
 
 /**
  * Reads every characteristic and shared axis of a description from an image, in raw and in physical values. What can't be read is
@@ -118,7 +119,5 @@ const isAddress = (address: number) => Number.isInteger(address) && address >= 0
 const NAMES_SHOWN = 5;
 
 function fallingAxesProblem(names: string[]): string {
-  const more = names.length - NAMES_SHOWN;
-  const list = `${names.slice(0, NAMES_SHOWN).join(", ")}${more > 0 ? ` and ${more} more` : ""}`;
-  return `An axis of ${list} is stored from its last point on (INDEX_DECR). The values on it were left in the order of addresses; the standard does not settle it for such records. Check one known cell.`;
+  return `An axis of ${nameSome(names, NAMES_SHOWN)} is stored from its last point on (INDEX_DECR). The values on it were left in the order of addresses; the standard does not settle it for such records. Check one known cell.`;
 }

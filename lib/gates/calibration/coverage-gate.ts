@@ -1,5 +1,6 @@
 import type { Coverage } from "@/lib/calibration/coverage/types";
-import { knownChanges, nameSome } from "@/lib/gates/calibration/known-changes";
+import { nameSome } from "@/lib/format/name-some";
+import { knownChanges } from "@/lib/gates/calibration/known-changes";
 import type { GateEvidence } from "@/lib/gates/evidence";
 import type { CoverageGate, GateResult } from "@/lib/gates/plan";
 import {

@@ -1,6 +1,7 @@
 import { type TouchedMark, touchedMarks } from "@/lib/calibration/changes/relevance";
 import type { ChangeSet } from "@/lib/calibration/changes/types";
-import { knownChanges, nameSome, noDescription } from "@/lib/gates/calibration/known-changes";
+import { nameSome } from "@/lib/format/name-some";
+import { knownChanges, noDescription } from "@/lib/gates/calibration/known-changes";
 import type { CalibrationEvidence, GateEvidence } from "@/lib/gates/evidence";
 import type { DeclarationGate, GateResult } from "@/lib/gates/plan";
 import { counted, figure, gateResult, met, notMet, tooLittle, type Verdict } from "@/lib/gates/verdict";

@@ -1,4 +1,4 @@
-import { nameSome } from "@/lib/gates/calibration/known-changes";
+import { nameSome } from "@/lib/format/name-some";
 import type { CalibrationEvidence, GateEvidence } from "@/lib/gates/evidence";
 import type { GateResult, IntegrityGate } from "@/lib/gates/plan";
 import { counted, gateResult, met, notMet, tooLittle, type Verdict } from "@/lib/gates/verdict";

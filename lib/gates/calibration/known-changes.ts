@@ -2,14 +2,6 @@ import type { ChangeSet, CharacteristicChange } from "@/lib/calibration/changes/
 import type { CalibrationEvidence, GateEvidence } from "@/lib/gates/evidence";
 import { tooLittle, type Verdict } from "@/lib/gates/verdict";
 
-const MOST_NAMES = 3;
-
-/** "A, B, C and 4 more". */
-export function nameSome(names: readonly string[]): string {
-  const left = names.length - MOST_NAMES;
-  return left > 0 ? `${names.slice(0, MOST_NAMES).join(", ")} and ${left} more` : names.join(", ");
-}
-
 /** True where a characteristic, or a function or group that the description puts it into, is among the names. */
 export function isNamed(change: CharacteristicChange, names: ReadonlySet<string>): boolean {
   return [change.name, ...change.functions, ...change.groups].some((name) => names.has(name));

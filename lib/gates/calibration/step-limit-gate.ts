@@ -1,5 +1,6 @@
 import type { ChangeSet, CharacteristicChange } from "@/lib/calibration/changes/types";
-import { isNamed, knownChanges, nameSome, noDescription } from "@/lib/gates/calibration/known-changes";
+import { nameSome } from "@/lib/format/name-some";
+import { isNamed, knownChanges, noDescription } from "@/lib/gates/calibration/known-changes";
 import { moveText, stepText } from "@/lib/gates/calibration/step-words";
 import { largestMove, largestStep, shareBase, type TableStep } from "@/lib/gates/calibration/table-steps";
 import type { GateEvidence } from "@/lib/gates/evidence";

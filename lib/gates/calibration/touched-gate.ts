@@ -1,6 +1,7 @@
 import type { ChangeSet } from "@/lib/calibration/changes/types";
 import { formatAddress } from "@/lib/calibration/image/types";
-import { isNamed, knownChanges, nameSome, noDescription } from "@/lib/gates/calibration/known-changes";
+import { nameSome } from "@/lib/format/name-some";
+import { isNamed, knownChanges, noDescription } from "@/lib/gates/calibration/known-changes";
 import type { GateEvidence } from "@/lib/gates/evidence";
 import type { GateResult, TouchedGate } from "@/lib/gates/plan";
 import { counted, figure, gateResult, met, notMet, type Verdict } from "@/lib/gates/verdict";
