@@ -33,15 +33,14 @@ function startingLimits({ engine, aspiration }: EngineKind): ChannelLimitGate[] 
 const CALIBRATION: Gate[] = [
   { id: "touched", kind: "touched", level: "must", allowed: null, uncovered: false },
   {
-    ...{
-      id: "step_limit",
-      kind: "step_limit",
-      level: "off",
-      scope: [],
-      measure: "share",
-      against: "standing",
-    },
-    ...{ maxNeighbourStep: 50, movedAtMost: 20 },
+    id: "step_limit",
+    kind: "step_limit",
+    level: "off",
+    scope: [],
+    measure: "share",
+    maxNeighbourStep: 50,
+    movedAtMost: 20,
+    against: "standing",
   },
   { id: "coverage", kind: "coverage", level: "should", atLeastPct: 80 },
   { id: "integrity", kind: "integrity", level: "must" },
@@ -89,8 +88,10 @@ export function startingPlan(
   };
 }
 
-const OFFERED: ReadonlySet<string> = new Set([
-  ...["conditions", "channel_limit", "smooth_curve"],
+const OFFERED: ReadonlySet<Gate["kind"]> = new Set([
+  "conditions",
+  "channel_limit",
+  "smooth_curve",
   ...CALIBRATION.map(({ kind }) => kind),
 ]);
 
