@@ -85,6 +85,14 @@ module.exports = {
       { pathNot: "^(components/charts/|tests/)" },
       { path: "node_modules/(@visx/|d3-(?!array))" },
     ),
+    rule(
+      "descriptions-are-read-by-the-worker",
+      { path: "^(app|components|lib/(client|services))/" },
+      {
+        path: "^lib/calibration/(a2l/read-description|values/read-image-by-description)\\.ts$",
+        reachable: true,
+      },
+    ),
     rule("kernel-has-a-test", { path: "^tests/unit/" }, { path: KERNEL, reachable: false }),
     rule("product-never-imports-tests", { pathNot: "^tests/" }, { path: "^tests/" }),
     rule(

@@ -82,6 +82,15 @@ const VIOLATIONS: Record<string, { files: Record<string, string>; at: string }> 
     files: { "components/features/gain/axis.ts": from("@visx/axis") },
     at: "components/features/gain/axis.ts",
   },
+  "descriptions-are-read-by-the-worker": {
+    files: {
+      "lib/services/gain/early.ts": from("@/lib/http/by-the-way"),
+      "lib/http/by-the-way.ts": from("@/lib/calibration/a2l/read-description"),
+      "lib/calibration/a2l/read-description.ts": x,
+      "tests/unit/read-description.test.ts": from("@/lib/calibration/a2l/read-description"),
+    },
+    at: "lib/services/gain/early.ts",
+  },
   "kernel-has-a-test": { files: { "lib/signal/untested.ts": x }, at: "lib/signal/untested.ts" },
   "product-never-imports-tests": {
     files: { "lib/http/golden.ts": from("@/tests/support/made"), "tests/support/made.ts": x },
