@@ -1,4 +1,4 @@
-import { axisDigits, axisHead } from "@/components/features/change-sets/detail/change-grid";
+import { axisDigits, axisHead, isMovedAxis } from "@/components/features/change-sets/detail/change-grid";
 import { structureText } from "@/components/features/change-sets/words/change-words";
 import { valueText } from "@/components/features/change-sets/words/figure-text";
 import { numberText } from "@/components/ui/data/number-text";
@@ -22,8 +22,9 @@ export function AxisChange({ change }: { change: CharacteristicChange }) {
   if (!sentence || !before || !after) return null;
   const moved = after.axes.flatMap((axis, i) => {
     const old = before.axes[i];
-    const same = old && old.raw.length === axis.raw.length && old.raw.every((raw, p) => raw === axis.raw[p]);
-    return same ? [] : [{ head: axisHead(after, i), digits: axisDigits(axis, old), old, axis }];
+    return old && !isMovedAxis(axis, old)
+      ? []
+      : [{ head: axisHead(after, i), digits: axisDigits(axis, old), old, axis }];
   });
   return (
     <Notice tone="caution" title={sentence}>

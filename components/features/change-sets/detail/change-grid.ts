@@ -50,6 +50,16 @@ export function axisHead(side: ChangeSide, axis: number): string {
   return unit ? `${axisName(side, axis)}, ${unit}` : axisName(side, axis);
 }
 
+/** Whether a point of an axis is another one than before, stored otherwise or read otherwise. */
+export function isMovedPoint(axis: ReadAxis, old: ReadAxis, index: number): boolean {
+  return old.raw[index] !== axis.raw[index] || old.points[index] !== axis.points[index];
+}
+
+/** Whether any point of an axis moved, came or went. */
+export function isMovedAxis(axis: ReadAxis, old: ReadAxis): boolean {
+  return old.raw.length !== axis.raw.length || axis.raw.some((_, index) => isMovedPoint(axis, old, index));
+}
+
 /** Digits behind the point such that no moved point of an axis looks as before. */
 export function axisDigits(axis: ReadAxis | undefined, old: ReadAxis | undefined): number {
   if (!axis) return 0;

@@ -4,6 +4,7 @@ import {
   axisDigits,
   axisHead,
   type ChangeGrid,
+  isMovedPoint,
   pointAt,
 } from "@/components/features/change-sets/detail/change-grid";
 import { LIMIT_MARKS } from "@/components/features/change-sets/words/change-words";
@@ -45,9 +46,7 @@ function heatAxis(
   const digits = axisDigits(change.after?.axes[axis] ?? described, change.before?.axes[axis]);
   const text = (from: ReadAxis | undefined, index: number) => valueText(pointAt(from, index), digits);
   const moved = (index: number) =>
-    other !== undefined &&
-    described !== undefined &&
-    (other.raw[index] !== described.raw[index] || other.points[index] !== described.points[index]);
+    other !== undefined && described !== undefined && isMovedPoint(described, other, index);
   const shown = range(side.dims[axis] ?? 1);
   const isMoved = shown.some(moved);
   return {

@@ -2,6 +2,7 @@ import {
   axisDigits,
   axisHead,
   type ChangeGrid,
+  isMovedAxis,
   pointAt,
 } from "@/components/features/change-sets/detail/change-grid";
 import { LIMIT_MARKS } from "@/components/features/change-sets/words/change-words";
@@ -78,9 +79,7 @@ function axisColumns({ before, after }: CharacteristicChange): Column<number>[] 
     cell: (place) => valueText(pointAt(of ?? axis, place), digits),
   });
   const old = before?.axes[0];
-  const moved =
-    old && after && (old.raw.length !== axis.raw.length || old.raw.some((raw, i) => raw !== axis.raw[i]));
-  return moved
+  return old && after && isMovedAxis(axis, old)
     ? [column("axis-before", `${head}, before`, old), column("axis-after", `${head}, after`, axis)]
     : [column("axis", head, axis)];
 }

@@ -102,6 +102,19 @@ describe("the list and the opened change", () => {
     expect(screen.getByText("before: 1.0, 2.0, 3.0 1/min")).toBeTruthy();
   });
 
+  it("prints both sides of an axis whose stored points are read otherwise than before", () => {
+    const raw = [1, 2, 3];
+    const points = (x: number[]) => side([3], [axis(x, { raw })], [1, 2, 3]);
+    const moved = change("KL_Rescaled", points([10, 20, 30]), points([10, 25, 30]), {
+      type: "VAL_BLK",
+      axisChanged: true,
+    });
+    render(section(view({ changes: changeSet({ characteristics: [moved] }) })));
+    expect(screen.getByText("before: 10, 20, 30 1/min")).toBeTruthy();
+    expect(screen.getByText("after: 10, 25, 30 1/min")).toBeTruthy();
+    expect(screen.getByRole("columnheader", { name: /n_engine, 1\/min, before/ })).toBeTruthy();
+  });
+
   it("works without a description, and calls for one", () => {
     const changes = changeSet({
       readBy: "none",
