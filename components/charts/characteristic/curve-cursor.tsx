@@ -17,12 +17,11 @@ export function CurveCursor({ store, joined, layout }: CurveCursorProps & { layo
   const index = useCursorIndex(store);
   const x = index === null ? undefined : joined.x[index];
   if (index === null || x === undefined) return null;
-  const hasDelta = joined.delta.some((value) => value !== null);
   return (
     <CursorMarks
       at={layout.x(x)}
       top={CURVE_BOX.curvesTop - 8}
-      bottom={hasDelta ? CURVE_BOX.deltaBottom : CURVE_BOX.curvesBottom}
+      bottom={hasDelta(joined) ? CURVE_BOX.deltaBottom : CURVE_BOX.curvesBottom}
       a={joined.a[index]}
       b={joined.b[index]}
       delta={joined.delta[index]}
@@ -41,7 +40,7 @@ export interface CurveStripProps extends CurveCursorProps {
   labelB: string;
 }
 
-/** Values under the cursor; at rest those at the largest difference, and the strip says so. */
+/** Values under the cursor; at rest those at the largest difference, or at the first point where there is none, and the strip says so. */
 export function CurveStrip({
   store,
   joined,
@@ -60,7 +59,12 @@ export function CurveStrip({
       term: axisName,
       value: numberText(joined.x[at], { decimals: axisDecimals }),
       unit: axisUnit,
-      note: index === null ? "at the largest difference" : "under the cursor",
+      note:
+        index !== null
+          ? "under the cursor"
+          : hasDelta(joined)
+            ? "at the largest difference"
+            : "at the first point",
     },
     { term: `A ${labels.labelA}`, marker: "a", value: side(joined.a), unit },
     { term: `B ${labels.labelB}`, marker: "b", value: side(joined.b), unit },
@@ -73,6 +77,8 @@ export function CurveStrip({
   ];
   return <ValueStrip values={values} />;
 }
+
+const hasDelta = ({ delta }: JoinedCurves) => delta.some((value) => value !== null);
 
 /** Place of the largest difference; 0 where there is none. */
 function largestDelta({ delta }: JoinedCurves): number {

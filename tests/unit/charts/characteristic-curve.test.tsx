@@ -101,5 +101,7 @@ describe("CharacteristicCurve", () => {
     const { container } = render(<CharacteristicCurve {...props} a={null} b={a} />);
     expect(drawing(container, "path.series-a, path.series-delta")).toHaveLength(0);
     expect(drawing(container, "path.series-b")).toHaveLength(1);
+    expect(screen.getByText("at the first point")).toBeTruthy();
+    expect(screen.queryByText("at the largest difference")).toBeNull();
   });
 });
