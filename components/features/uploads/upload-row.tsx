@@ -1,7 +1,7 @@
 "use client";
 import { RotateCw, X } from "lucide-react";
 import type { ReactNode } from "react";
-import type { UploadItem } from "@/components/features/uploads/use-uploads";
+import { isOnItsWay, type UploadItem } from "@/components/features/uploads/use-uploads";
 import { Button } from "@/components/ui/action/button";
 import { Notice } from "@/components/ui/status/notice";
 import { Progress } from "@/components/ui/status/progress";
@@ -40,7 +40,7 @@ export interface UploadRowProps {
 
 /** One file's row with its own state, reason and way on. */
 export function UploadRow({ item, children, outcome, onRemove, onRetry }: UploadRowProps) {
-  const isMoving = item.phase === "checking" || item.phase === "sending" || item.phase === "waiting";
+  const isMoving = isOnItsWay(item);
   return (
     <li
       className="flex flex-col gap-3 border-line border-t py-4 first:border-t-0"

@@ -38,6 +38,10 @@ function reduce(items: UploadItem[], change: Change): UploadItem[] {
   }
 }
 
+/** Whether a file is not at the server yet and still may get there. */
+export const isOnItsWay = ({ phase }: UploadItem): boolean =>
+  phase === "waiting" || phase === "checking" || phase === "sending";
+
 const AT_ONCE = 2;
 const sentenceOf = (error: unknown) =>
   error instanceof Error ? error.message : "It did not work. Try again.";

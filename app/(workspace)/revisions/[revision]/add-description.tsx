@@ -4,7 +4,7 @@ import { useMutation } from "@tanstack/react-query";
 import { useRouter } from "next/navigation";
 import { useRef, useState } from "react";
 import { DescriptionUploads, descriptionUploadIds } from "@/components/features/uploads/description-uploads";
-import { useUploads } from "@/components/features/uploads/use-uploads";
+import { isOnItsWay, useUploads } from "@/components/features/uploads/use-uploads";
 import { Button } from "@/components/ui/action/button";
 import { Notice } from "@/components/ui/status/notice";
 import { callApi } from "@/lib/client/api";
@@ -51,7 +51,7 @@ function Form({ revisionId, rowVersion, label }: AddDescriptionFormProps) {
       router.refresh();
     },
   });
-  const isSending = uploads.items.some(({ phase }) => ["waiting", "checking", "sending"].includes(phase));
+  const isSending = uploads.items.some(isOnItsWay);
   return (
     <div className="flex flex-col gap-4">
       <DescriptionUploads uploads={uploads} mainId={mainId} onMain={setMainId} />

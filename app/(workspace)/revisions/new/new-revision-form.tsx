@@ -9,7 +9,7 @@ import { ImageUnderstood } from "@/components/features/revisions/image-understoo
 import { RevisionFields } from "@/components/features/revisions/revision-fields";
 import { DescriptionUploads, descriptionUploadIds } from "@/components/features/uploads/description-uploads";
 import { UploadList } from "@/components/features/uploads/upload-list";
-import { useUploads } from "@/components/features/uploads/use-uploads";
+import { isOnItsWay, useUploads } from "@/components/features/uploads/use-uploads";
 import { Button } from "@/components/ui/action/button";
 import { RadioCards } from "@/components/ui/form/radio-cards";
 import { Select } from "@/components/ui/form/select";
@@ -90,9 +90,7 @@ export function NewRevisionForm({ programmeId, parents }: NewRevisionFormProps) 
     });
   });
 
-  const isSending = descriptionFiles.items.some(({ phase }) =>
-    ["waiting", "checking", "sending"].includes(phase),
-  );
+  const isSending = descriptionFiles.items.some(isOnItsWay);
   const blocked = !isUnderstood
     ? "Drop an image and have it read first."
     : describedBy === "files" && isSending

@@ -4,7 +4,7 @@ import { Keyboard } from "lucide-react";
 import type { Route } from "next";
 import { useRouter } from "next/navigation";
 import { useCallback, useEffect, useRef, useState } from "react";
-import { useLookedAt } from "@/components/features/change-sets/walk/looked-at";
+import { hasAll, useLookedAt } from "@/components/features/change-sets/walk/looked-at";
 import { keysAreOn, rememberKeys } from "@/components/features/change-sets/walk/remember-keys";
 import { Button } from "@/components/ui/action/button";
 import { LinkButton } from "@/components/ui/action/link-button";
@@ -90,7 +90,7 @@ export function ChangeKeys({ items, current, mayLook }: ChangeKeysProps) {
   const toggle = useCallback(() => {
     const digests = items[current]?.digests;
     if (!digests || !state || !mayLook) return;
-    const isLooked = digests.every((digest) => state.looked.has(digest));
+    const isLooked = hasAll(state.looked, digests);
     state.mark(digests, !isLooked);
     setSpoken(isLooked ? "No longer marked as looked at." : "Marked as looked at.");
   }, [items, current, state, mayLook]);

@@ -96,7 +96,8 @@ export function useLookedAt(): LookedAt | null {
   return useContext(Context);
 }
 
-const hasAll = (looked: ReadonlySet<string>, digests: readonly string[]) =>
+/** Whether all of these were looked at. */
+export const hasAll = (looked: ReadonlySet<string>, digests: readonly string[]) =>
   digests.every((digest) => looked.has(digest));
 
 /** "looked at" with a tick; nothing where it was not. */

@@ -1,9 +1,8 @@
 import { z } from "zod";
-import { excludedText } from "@/components/features/programmes/calibration/region-words";
+import { excludedText, hexText } from "@/components/features/programmes/calibration/region-words";
 import type { ChecksumRegion } from "@/lib/calibration/image/checksum-regions";
 
 const HIGHEST = 0xffffffff;
-const hexText = (value: number) => `0x${value.toString(16).toUpperCase()}`;
 
 /** A number up to 32 bits as people write it: 0x810000 or 8454144. */
 const number32 = z
@@ -72,7 +71,8 @@ export function regionOf(typed: z.output<typeof typedRegion>): ChecksumRegion {
       polynomial: polynomial ?? 0,
       initial: initial ?? 0,
       finalXor: finalXor ?? 0,
-      ...{ reflectIn, reflectOut },
+      reflectIn,
+      reflectOut,
     };
     return { ...common, algorithm, parameters };
   }
@@ -86,24 +86,22 @@ export function regionOf(typed: z.output<typeof typedRegion>): ChecksumRegion {
 
 /** A new region; the parameters are those of the CRC-32 of IEEE 802.3 (from memory), to be overwritten. */
 export const NEW_REGION: TypedRegion = {
-  ...{
-    name: "",
-    algorithm: "crc32",
-    from: "",
-    to: "",
-    storedAt: "",
-    expected: "",
-    byteOrder: "little",
-    excluded: "",
-  },
-  ...{
-    polynomial: "0x4C11DB7",
-    initial: "0xFFFFFFFF",
-    finalXor: "0xFFFFFFFF",
-    reflectIn: true,
-    reflectOut: true,
-  },
-  ...{ wordBytes: "1", wordOrder: "little", complement: "none" },
+  name: "",
+  algorithm: "crc32",
+  from: "",
+  to: "",
+  storedAt: "",
+  expected: "",
+  byteOrder: "little",
+  excluded: "",
+  polynomial: "0x4C11DB7",
+  initial: "0xFFFFFFFF",
+  finalXor: "0xFFFFFFFF",
+  reflectIn: true,
+  reflectOut: true,
+  wordBytes: "1",
+  wordOrder: "little",
+  complement: "none",
 };
 
 /** A kept region as its form holds it. */
@@ -111,7 +109,12 @@ export function typedOf(region: ChecksumRegion): TypedRegion {
   const { name, algorithm, from, to, storedAt, expected, byteOrder, parameters } = region;
   const common = {
     ...NEW_REGION,
-    ...{ name, algorithm, byteOrder, from: hexText(from), to: hexText(to), excluded: excludedText(region) },
+    name,
+    algorithm,
+    byteOrder,
+    from: hexText(from),
+    to: hexText(to),
+    excluded: excludedText(region),
     storedAt: storedAt === null ? "" : hexText(storedAt),
     expected: expected === null ? "" : hexText(expected),
   };
@@ -119,8 +122,11 @@ export function typedOf(region: ChecksumRegion): TypedRegion {
     const { polynomial, initial, finalXor, reflectIn, reflectOut } = parameters;
     return {
       ...common,
-      ...{ polynomial: hexText(polynomial), initial: hexText(initial), finalXor: hexText(finalXor) },
-      ...{ reflectIn, reflectOut },
+      polynomial: hexText(polynomial),
+      initial: hexText(initial),
+      finalXor: hexText(finalXor),
+      reflectIn,
+      reflectOut,
     };
   }
   const { wordBytes, wordOrder, complement } = parameters;

@@ -20,14 +20,15 @@ export const COMPLEMENT_WORDS = {
   twos: "twos' complement",
 } as const;
 
-const hex = (value: number) => `0x${value.toString(16).toUpperCase()}`;
+/** A number of a region as it is typed: 0xFFFFFFFF. */
+export const hexText = (value: number) => `0x${value.toString(16).toUpperCase()}`;
 
 /** How the checksum is made, in one line. */
 export function parametersText({ parameters }: ChecksumRegion): string {
   if ("polynomial" in parameters) {
     const { polynomial, initial, reflectIn, reflectOut, finalXor } = parameters;
     const reflected = [...(reflectIn ? ["input"] : []), ...(reflectOut ? ["output"] : [])].join(" and ");
-    return `polynomial ${hex(polynomial)}, start ${hex(initial)}, ${reflected || "nothing"} reflected, final XOR ${hex(finalXor)}`;
+    return `polynomial ${hexText(polynomial)}, start ${hexText(initial)}, ${reflected || "nothing"} reflected, final XOR ${hexText(finalXor)}`;
   }
   const { wordBytes, wordOrder, complement } = parameters;
   const words = wordBytes === 1 ? "bytes" : `words of ${wordBytes} bytes, ${ORDER_WORDS[wordOrder]}`;
