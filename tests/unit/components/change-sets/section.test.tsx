@@ -143,6 +143,17 @@ describe("the list and the opened change", () => {
     expect(screen.getByText(/nothing to set it against/)).toBeTruthy();
   });
 
+  it("shows what differs in the text of the descriptions, where it does", () => {
+    const words = "The text of the description differs";
+    render(section(withBytes()));
+    expect(screen.queryByText(words)).toBeNull();
+    cleanup();
+    const hunks = [{ fromA: 1, fromB: 1, lines: [{ kind: "+" as const, text: "new" }] }];
+    const descriptionDifference = { hunks, added: 1, removed: 0, truncated: false };
+    render(section(view({ changes: changeSet({ descriptionDifference }) })));
+    expect(screen.getByText(words)).toBeTruthy();
+  });
+
   it("carries no style attribute", () => {
     expect(renderToStaticMarkup(section(withBytes()))).not.toMatch(/\sstyle=/);
   });
