@@ -11,16 +11,18 @@ interface Said {
   problems: string[];
 }
 
+const sha256 = (bytes: Uint8Array) => createHash("sha256").update(bytes).digest("hex");
+
 /** What an image file holds: container, SHA-256 of the file, identity of the content, its segments. */
-export function imageReport(image: CalibrationImage, fileSha256: string) {
+export function imageReport(image: CalibrationImage, file: Uint8Array) {
   return {
     container: image.container,
-    sha256: fileSha256,
+    sha256: sha256(file),
     identity: imageIdentity(image),
     segments: image.segments.map(({ address, bytes }) => ({
       address: formatAddress(address),
       length: bytes.length,
-      sha256: createHash("sha256").update(bytes).digest("hex"),
+      sha256: sha256(bytes),
     })),
     notes: image.notes.map(({ message }) => message),
   };

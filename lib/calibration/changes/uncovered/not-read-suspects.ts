@@ -3,7 +3,7 @@ import type { ByteRange, ImageReading } from "@/lib/calibration/values/types";
 import { lowerBound } from "@/lib/signal/local-quadratic";
 
 /** Collects changed bytes that may belong to something that could not be read. */
-export interface Suspects {
+interface Suspects {
   add(range: ByteRange): void;
   problems(): string[];
 }

@@ -1,6 +1,6 @@
 import type { RevisionContent, UncoveredRange } from "@/lib/calibration/changes/types";
 import { describeRange } from "@/lib/calibration/changes/uncovered/describe-range";
-import { describedStarts, type Suspects } from "@/lib/calibration/changes/uncovered/not-read-suspects";
+import { describedStarts } from "@/lib/calibration/changes/uncovered/not-read-suspects";
 import { segmentFinder } from "@/lib/calibration/changes/uncovered/segment-finder";
 import type { ChangedRange } from "@/lib/calibration/image/changed-ranges";
 import { joinRanges } from "@/lib/calibration/values/convert/presentation";
@@ -9,7 +9,7 @@ import type { ByteRange } from "@/lib/calibration/values/types";
 const MOST_RANGES = 500;
 
 /** A changed stretch that no described change accounts for, in one memory segment. */
-export interface Piece extends ChangedRange {
+interface Piece extends ChangedRange {
   segment: string | null;
   programType: string | null;
 }
@@ -26,7 +26,7 @@ export function uncoveredRanges(
   explained: readonly ByteRange[],
 ): { listed: UncoveredRange[]; ranges: number; bytes: number; problems: string[] } {
   const segmentAt = segmentFinder(b.reading ?? a.reading);
-  const suspects: Suspects = describedStarts(a.reading, b.reading);
+  const suspects = describedStarts(a.reading, b.reading);
   const covered = joinRanges(explained);
   let kept: Piece[] = [];
   let [ranges, bytes, next] = [0, 0, 0];
