@@ -1,5 +1,6 @@
 import type { ScaleName } from "@/db/seed/control-unit/scales";
 import type { DataType } from "@/lib/calibration/a2l/types";
+import { cellCount, cellIndex } from "@/lib/calibration/values/cells";
 
 export type FunctionName = "Boost" | "Fuel" | "Ignition" | "Torque" | "Limiter";
 
@@ -124,23 +125,23 @@ export const pointsOf = (axis: Axis): readonly number[] =>
 export const dimsOf = ({ axes, dims }: Item): readonly number[] =>
   dims ?? (axes ?? []).map((axis) => pointsOf(axis).length);
 
+/** Where a cell lies on the axes, in physical numbers; x fastest. */
+export function placeOfCell(axes: readonly Axis[], cell: number): number[] {
+  const points = axes.map(pointsOf);
+  const dims = points.map((axis) => axis.length);
+  return cellIndex(cell, dims).map((index, axis) => points[axis][index]);
+}
+
 /** The value of each cell by a rule of its axis points, x fastest; `decimals` as a workshop would type them. */
 export function filled(
   axes: readonly Axis[],
   rule: (...point: number[]) => number,
   decimals: number,
 ): readonly number[] {
-  const points = axes.map(pointsOf);
-  const cells = points.reduce((count, axis) => count * axis.length, 1);
-  return Array.from({ length: cells }, (_, cell) => {
-    let rest = cell;
-    const at = points.map((axis) => {
-      const index = rest % axis.length;
-      rest = Math.floor(rest / axis.length);
-      return axis[index];
-    });
-    return Number(rule(...at).toFixed(decimals));
-  });
+  const cells = cellCount(axes.map((axis) => pointsOf(axis).length));
+  return Array.from({ length: cells }, (_, cell) =>
+    Number(rule(...placeOfCell(axes, cell)).toFixed(decimals)),
+  );
 }
 
 /** Rises from 0 to 1 between two numbers, straight. */

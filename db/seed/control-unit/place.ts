@@ -14,6 +14,7 @@ import { TORQUE } from "@/db/seed/control-unit/torque";
 import { DATA_TYPES, type DataType } from "@/lib/calibration/a2l/types";
 import type { ChecksumRegion } from "@/lib/calibration/image/checksum-regions";
 import { CRC32_DEFAULT } from "@/lib/calibration/image/cyclic-redundancy";
+import { cellCount } from "@/lib/calibration/values/cells";
 
 /** Memory of the invented control unit. The checksum's four bytes end it and are not part of what they cover. */
 export const MEMORY = {
@@ -48,7 +49,7 @@ export function partsOf(item: Item): readonly Part[] {
   const own = (item.axes ?? []).flatMap((axis: Axis, at) =>
     axis.kind === "own" ? [{ letter: LETTERS[at], type: axis.type, count: axis.points.length }] : [],
   );
-  const cells = dimsOf(item).reduce((product, size) => product * size, 1);
+  const cells = cellCount(dimsOf(item));
   return [
     ...own.map(({ letter }): Part => ({ keyword: `NO_AXIS_PTS_${letter}`, type: "UBYTE", count: 1 })),
     ...own.map(({ letter, type, count }): Part => ({ keyword: `AXIS_PTS_${letter}`, type, count })),

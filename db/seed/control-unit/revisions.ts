@@ -1,4 +1,4 @@
-import { dimsOf, type Item, pointsOf, ramp } from "@/db/seed/control-unit/item";
+import { type Item, placeOfCell, ramp } from "@/db/seed/control-unit/item";
 import { ITEMS, MEMORY } from "@/db/seed/control-unit/place";
 import { SCALES } from "@/db/seed/control-unit/scales";
 import { type Patch, writeImage } from "@/db/seed/control-unit/write-image";
@@ -71,20 +71,6 @@ export const CHANGES = {
 } as const satisfies Record<string, Change>;
 export type ImageName = keyof typeof CHANGES;
 
-/** Where each cell of an item lies on its axes, x fastest. */
-function placesOfCells(item: Item): number[][] {
-  const dims = dimsOf(item);
-  const points = (item.axes ?? []).map(pointsOf);
-  return (item.values ?? []).map((_, cell) => {
-    let rest = cell;
-    return points.map((axis, at) => {
-      const index = rest % dims[at];
-      rest = Math.floor(rest / dims[at]);
-      return axis[index];
-    });
-  });
-}
-
 /** As a workshop would type it. */
 const typed = (item: Item, value: number) => Number(value.toFixed(SCALES[item.scale].decimals));
 
@@ -93,10 +79,11 @@ function changed(item: Item, { label, rules, axes }: Change): Item {
   if (item.characters) return { ...item, characters: { ...item.characters, text: label } };
   const rule = rules[item.name];
   const moved = axes?.[item.name];
-  const places = placesOfCells(item);
   return {
     ...item,
-    values: rule ? item.values?.map((value, cell) => typed(item, rule(value, ...places[cell]))) : item.values,
+    values: rule
+      ? item.values?.map((value, cell) => typed(item, rule(value, ...placeOfCell(item.axes ?? [], cell))))
+      : item.values,
     axes: moved
       ? item.axes?.map((axis, at) =>
           at === moved.axis && axis.kind === "own" ? { ...axis, points: moved.points } : axis,
