@@ -1,3 +1,4 @@
+import { FirstListed } from "@/components/features/change-sets/list/first-listed";
 import { plainUnit } from "@/components/features/change-sets/words/figure-text";
 import {
   checkSentence,
@@ -52,7 +53,7 @@ export function ValuesCheckResult({ fileName, check }: { fileName: string; check
           rowKey={(_, index) => String(index)}
         />
       )}
-      <Cut count={differing.count} listed={differing.first.length} />
+      <FirstListed count={differing.count} listed={differing.first.length} />
       {notInFile.count > 0 && (
         <p className="text-15 text-ink2">
           {counted(notInFile.count, "name")} of the image {notInFile.count === 1 ? "is" : "are"} not in the
@@ -80,7 +81,7 @@ function LeftOutNames({ sentence, listed }: LeftOut) {
           ...(hasReasons ? [{ key: "why", header: "Why", cell: (row: { why: string }) => row.why }] : []),
         ]}
       />
-      <Cut count={count} listed={first.length} />
+      <FirstListed count={count} listed={first.length} />
     </Disclosure>
   );
 }
@@ -93,14 +94,5 @@ function Sentences({ of }: { of: readonly string[] }) {
         <li key={index}>{sentence}</li>
       ))}
     </ul>
-  );
-}
-
-function Cut({ count, listed }: { count: number; listed: number }) {
-  if (count <= listed) return null;
-  return (
-    <p className="text-13 text-ink2">
-      The first {numberText(listed)} of {numberText(count)} are listed.
-    </p>
   );
 }

@@ -1,11 +1,7 @@
-import { Info, OctagonX, TriangleAlert } from "lucide-react";
 import type { Route } from "next";
 import Link from "next/link";
 import type { Warning } from "@/components/features/change-sets/words/warnings";
-import { cn } from "@/lib/cn";
-
-const ICON = { problem: OctagonX, caution: TriangleAlert, plain: Info } as const;
-const COLOUR = { problem: "text-unmet", caution: "text-thin", plain: "text-ink2" } as const;
+import { ToneSign } from "@/components/ui/status/tone-sign";
 
 type Place = NonNullable<Warning["to"]>;
 
@@ -25,25 +21,22 @@ export function WarningList({ warnings, hrefs }: WarningListProps) {
   if (warnings.length === 0) return null;
   return (
     <ul aria-label="Know this first" className="flex flex-col rounded border border-line bg-surface">
-      {warnings.map(({ tone, title, text, to }) => {
-        const Icon = ICON[tone];
-        return (
-          <li
-            key={`${title}${text}`}
-            className="flex gap-3 border-line border-t px-3 py-2 text-15 first:border-t-0"
-          >
-            <Icon aria-hidden size={18} className={cn("mt-0.5 shrink-0", COLOUR[tone])} />
-            <p className="min-w-0 max-w-prose">
-              <strong className="font-semibold">{title}.</strong> {text}{" "}
-              {to && (
-                <Link href={hrefs[to]} className="link">
-                  {LINK_WORDS[to]}
-                </Link>
-              )}
-            </p>
-          </li>
-        );
-      })}
+      {warnings.map(({ tone, title, text, to }) => (
+        <li
+          key={`${title}${text}`}
+          className="flex gap-3 border-line border-t px-3 py-2 text-15 first:border-t-0"
+        >
+          <ToneSign tone={tone} />
+          <p className="min-w-0 max-w-prose">
+            <strong className="font-semibold">{title}.</strong> {text}{" "}
+            {to && (
+              <Link href={hrefs[to]} className="link">
+                {LINK_WORDS[to]}
+              </Link>
+            )}
+          </p>
+        </li>
+      ))}
     </ul>
   );
 }

@@ -1,4 +1,5 @@
-import { counted, numberText } from "@/components/ui/data/number-text";
+import { FirstListed } from "@/components/features/change-sets/list/first-listed";
+import { counted } from "@/components/ui/data/number-text";
 import { Table } from "@/components/ui/data/table";
 import { Disclosure } from "@/components/ui/layout/disclosure";
 
@@ -22,11 +23,7 @@ export function NotReadList({ notRead }: { notRead: readonly { name: string; rea
           { key: "reason", header: "Why", cell: (row) => row.reason },
         ]}
       />
-      {notRead.length > rows.length && (
-        <p className="text-13 text-ink2">
-          The first {numberText(rows.length)} of {numberText(notRead.length)} are listed.
-        </p>
-      )}
+      <FirstListed listed={rows.length} count={notRead.length} />
     </Disclosure>
   );
 }

@@ -1,3 +1,4 @@
+import { FirstListed } from "@/components/features/change-sets/list/first-listed";
 import { addressText } from "@/components/ui/data/address-text";
 import { numberText } from "@/components/ui/data/number-text";
 import { Table } from "@/components/ui/data/table";
@@ -57,11 +58,7 @@ export function UncoveredTable({ ranges, total, hasDescription }: UncoveredTable
           },
         ]}
       />
-      {total > ranges.length && (
-        <p className="text-13 text-ink2">
-          The first {numberText(ranges.length)} of {numberText(total)} places are listed.
-        </p>
-      )}
+      <FirstListed listed={ranges.length} count={total} things="places" />
     </div>
   );
 }

@@ -1,11 +1,12 @@
 import { counted, listed } from "@/components/ui/data/number-text";
+import type { Tone } from "@/components/ui/status/tone-sign";
 import { type TouchedMark, touchedMarks } from "@/lib/calibration/changes/relevance";
 import type { ChangeSet } from "@/lib/calibration/changes/types";
 import type { RevisionChangesView } from "@/lib/services/change-sets/schema";
 
 /** Something to know before the list is read. */
 export interface Warning {
-  tone: "problem" | "caution" | "plain";
+  tone: Tone;
   title: string;
   text: string;
   /** Where it leads: the bytes outside the description, or a setting of the programme. */
