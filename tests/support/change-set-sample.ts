@@ -49,7 +49,7 @@ export function change(
     ...{ address: 0x810000, unit: "°", decimals: 2, functions: [], groups: [], kind: "changed" },
     ...{ cells: after?.values.length ?? 0, changed: changes.length, axisChanged: false, shapeChanged: false },
     ...{ before, after, changes, ...extremes(changes), effect: 1 },
-    ...{ largestNeighbourStep: { before: null, after: null }, digest: "" },
+    digest: "",
     ...over,
   };
 }

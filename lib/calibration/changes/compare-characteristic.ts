@@ -1,6 +1,5 @@
 import { effectOf } from "@/lib/calibration/changes/effect";
 import { limitStateOf } from "@/lib/calibration/changes/limit-state";
-import { neighbourSteps } from "@/lib/calibration/changes/neighbour-steps";
 import type { Pair } from "@/lib/calibration/changes/pair";
 import type { CellChange, ChangeSide, CharacteristicChange } from "@/lib/calibration/changes/types";
 import { cellCount, cellIndex } from "@/lib/calibration/values/cells";
@@ -57,7 +56,6 @@ export function summarise(pair: Pair): CharacteristicChange | null {
       differing,
       largest: Math.max(most, -least),
     }),
-    largestNeighbourStep: neighbourSteps(pair),
     digest: digestOf({ name: shown.name, before: content(before), after: content(after) }),
   };
 }

@@ -52,8 +52,6 @@ export interface CharacteristicChange {
   largestFall: number | null;
   /** Largest change relative to the span of the limits or of the values before, 0 to 1 and more: what the list is sorted by. */
   effect: number;
-  /** Steps between neighbouring cells of `after`, largest of each axis relative to before's span; null for one value. */
-  largestNeighbourStep: { before: number | null; after: number | null };
   /** SHA-256 of what changed (name, before, after): a mark "looked at" holds only for this. */
   digest: string;
 }

@@ -1,10 +1,12 @@
 import fc from "fast-check";
 import Papa from "papaparse";
-import { describe, expect, it } from "vitest";
+import { describe, expect, it, vi } from "vitest";
 import { changesCsv, readingCsv } from "@/lib/calibration/cdf/values-csv";
 import type { ChangeSet, CharacteristicChange } from "@/lib/calibration/changes/types";
 import type { PhysicalValue } from "@/lib/calibration/values/types";
 import { madeAxis, madeCharacteristic, madeReading } from "../../support/made-reading";
+
+vi.setConfig({ testTimeout: 60_000 });
 
 const AS_WRITTEN = { delimiter: ",", newline: "\r\n", skipEmptyLines: true } as const;
 

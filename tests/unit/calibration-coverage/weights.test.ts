@@ -1,7 +1,9 @@
 import fc from "fast-check";
-import { expect, it } from "vitest";
+import { expect, it, vi } from "vitest";
 import { sampleTimes } from "@/lib/calibration/coverage/sample-times";
 import { placeOnAxis, visitCells } from "@/lib/calibration/coverage/visit-cells";
+
+vi.setConfig({ testTimeout: 60_000 });
 
 const finite = { noNaN: true, noDefaultInfinity: true };
 const axisPoints = fc

@@ -82,7 +82,6 @@ export function change(
     largestRise: steps.length > 0 ? Math.max(0, ...steps) : null,
     largestFall: steps.length > 0 ? Math.min(0, ...steps) : null,
     effect: 0.1,
-    largestNeighbourStep: { before: null, after: null },
     digest: digestOf(name),
     ...parts,
   };
