@@ -11,14 +11,14 @@ const COLUMNS: LogColumn[] = [
   { title: " nEng ", channel: "engine_speed" },
   { title: "Boost abs", channel: "manifold_pressure" },
   { title: "GPS speed", channel: "gps_speed" },
-  { title: "rl", channel: null },
+  { title: "air_charge", channel: null },
 ];
 const suggested = (quantity: string, unit: string, columns = COLUMNS) =>
   suggestedLinks({ quantity, unit }, columns).map(({ channel, by }) => [by, channel]);
 
 describe("Suggestions", () => {
   it("are a column of the same title first, whatever its letter case", () => {
-    expect(suggested("RL", "%")).toEqual([["column", "rl"]]);
+    expect(suggested("AIR_CHARGE", "%")).toEqual([["column", "air_charge"]]);
     expect(suggested("neng", "1/min")[0]).toEqual(["column", " nEng "]);
   });
 

@@ -124,12 +124,12 @@ describe("LinksForm", () => {
         {...{ programmeId, action }}
         links={[]}
         version={0}
-        quantities={[quantity("n", { link }), quantity("rl", { unit: "%" })]}
+        quantities={[quantity("n", { link }), quantity("air_charge", { unit: "%" })]}
         blockedBecause={null}
       />,
     );
     expect(screen.getByText("Linked by itself to engine speed, by its name.")).toBeTruthy();
-    const list = screen.getByRole("combobox", { name: "Channel of rl" });
+    const list = screen.getByRole("combobox", { name: "Channel of air_charge" });
     fireEvent.change(list, {
       target: {
         value: within(list)
@@ -137,13 +137,15 @@ describe("LinksForm", () => {
           .getAttribute("value"),
       },
     });
-    fireEvent.change(screen.getByLabelText("Title of the column for rl"), { target: { value: "rl_w [%]" } });
+    fireEvent.change(screen.getByLabelText("Title of the column for air_charge"), {
+      target: { value: "air_charge_w [%]" },
+    });
     press("Save as version 1");
     await waitFor(() =>
       expect(action).toHaveBeenCalledWith({
         programmeId,
         basedOnVersion: 0,
-        links: [{ quantity: "rl", channel: "rl_w [%]", by: "hand" }],
+        links: [{ quantity: "air_charge", channel: "air_charge_w [%]", by: "hand" }],
       }),
     );
   });

@@ -8,6 +8,8 @@ import { gatesNotIn, startingPlan } from "@/lib/gates/starting-plan";
 
 afterEach(cleanup);
 
+vi.setConfig({ testTimeout: 60_000 });
+
 const NEWER = ["conditions.tyres", "conditions.fuel", "limit.knock_retard", "smooth"];
 const OLDER: GatePlan = {
   plan: 1,

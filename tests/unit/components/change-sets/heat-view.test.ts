@@ -53,7 +53,7 @@ describe("heatView", () => {
     const limited = { ...MAP, changes: MAP.changes.map((cell) => ({ ...cell, limit: "above" as const })) };
     const coverage = {
       ...{
-        name: "KF_Target",
+        name: "Boost.Target",
         dims: [3, 2],
         secondsByCell: [0, 1.25, 0, 0, 300, 0],
         visitsByCell: [0, 2, 0, 0, 40, 0],

@@ -91,13 +91,13 @@ const speed = axis([1000, 2000, 3000]);
 const pedal = axis([50, 100], { inputQuantity: "pedal", unit: "%" });
 
 export const MAP = change(
-  "KF_Target",
+  "Boost.Target",
   side([3, 2], [speed, pedal], [100, 110, 120, 130, 140, 150]),
   side([3, 2], [speed, pedal], [100, 110, 118, 130, 149, 150]),
   { effect: 0.3 },
 );
 export const CURVE = change(
-  "KL_Lambda",
+  "Fuel.Lambda",
   side([3], [speed], [0.9, 0.85, 0.8]),
   side([3], [speed], [0.9, 0.87, 0.8]),
   { functions: ["Fuel"], unit: "1", decimals: 2, effect: 0.2 },

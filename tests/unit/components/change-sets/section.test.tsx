@@ -44,20 +44,20 @@ describe("the list and the opened change", () => {
       screen.getByText(/^1 map, 1 curve and 1 value differ from R2; 4 cells; 4 bytes outside/),
     ).toBeTruthy();
     expect(rows().map((row) => row.querySelector("span")?.textContent)).toEqual([
-      ...["KF_Target", "KL_Lambda", "Limit_Speed", "4 bytes in 1 place"],
+      ...["Boost.Target", "Fuel.Lambda", "Limit_Speed", "4 bytes in 1 place"],
     ]);
     expect(rows()[0]?.getAttribute("aria-current")).toBe("true");
     expect(rows()[0]?.textContent).toContain("2 of 6 cells, \u22122.0 to +9.0\u202fkPa");
     expect(rows()[2]?.textContent).toContain("6\u202f400 → 6\u202f500\u202f1/min");
-    expect(screen.getByRole("heading", { name: "KF_Target" })).toBeTruthy();
-    expect(screen.getByRole("table", { name: "KF_Target, after − before, in kPa" })).toBeTruthy();
+    expect(screen.getByRole("heading", { name: "Boost.Target" })).toBeTruthy();
+    expect(screen.getByRole("table", { name: "Boost.Target, after − before, in kPa" })).toBeTruthy();
   });
 
   it("opens what the address names, and keeps the rest of the view in every link", () => {
-    render(section(withBytes(), { change: "KL_Lambda", order: "effect", against: "a" }));
-    expect(screen.getByRole("heading", { level: 3, name: "KL_Lambda" })).toBeTruthy();
+    render(section(withBytes(), { change: "Fuel.Lambda", order: "effect", against: "a" }));
+    expect(screen.getByRole("heading", { level: 3, name: "Fuel.Lambda" })).toBeTruthy();
     expect(rows()[0]?.getAttribute("href")).toBe(
-      "/revisions/11111111-1111-4111-8111-111111111111?change=KF_Target&against=a&order=effect#change",
+      "/revisions/11111111-1111-4111-8111-111111111111?change=Boost.Target&against=a&order=effect#change",
     );
   });
 
@@ -91,12 +91,12 @@ describe("the list and the opened change", () => {
     };
     expect(shown("Limit_Speed")).toContain("+100");
     expect(shown("Label")).toContain("“A1”");
-    expect(shown("KL_Lambda")).toContain("1 of 3 points changed, by +0.02\u202f1.");
+    expect(shown("Fuel.Lambda")).toContain("1 of 3 points changed, by +0.02\u202f1.");
   });
 
   it("tells a moved axis in words with both sides' points", () => {
     const points = (x: number[]) => side([3], [axis(x)], [1, 2, 3]);
-    const moved = change("KL_Moved", points([1, 2, 3]), points([1, 2.5, 3]), { axisChanged: true });
+    const moved = change("Curve_moved", points([1, 2, 3]), points([1, 2.5, 3]), { axisChanged: true });
     render(section(view({ changes: changeSet({ characteristics: [moved] }) })));
     expect(screen.getByText("Axis points moved: the values hold at other places.")).toBeTruthy();
     expect(screen.getByText("before: 1.0, 2.0, 3.0 1/min")).toBeTruthy();
@@ -171,15 +171,15 @@ describe("the keys", () => {
     press("n");
     expect(
       push.mock.calls.map(([href]) => new URL(href, "http://localhost").searchParams.get("change")),
-    ).toEqual([...["KL_Lambda", "Limit_Speed"]]);
+    ).toEqual([...["Fuel.Lambda", "Limit_Speed"]]);
   });
 
   it("move focus to the change that was opened and speak where it is", () => {
     const { rerender } = render(section(withBytes()));
     press("n");
-    rerender(section(withBytes(), { change: "KL_Lambda" }));
-    expect(document.activeElement?.textContent).toBe("KL_Lambda");
-    expect(screen.getByText("Change 2 of 4. KL_Lambda, curve, 1 of 3 cells changed.")).toBeTruthy();
+    rerender(section(withBytes(), { change: "Fuel.Lambda" }));
+    expect(document.activeElement?.textContent).toBe("Fuel.Lambda");
+    expect(screen.getByText("Change 2 of 4. Fuel.Lambda, curve, 1 of 3 cells changed.")).toBeTruthy();
   });
 
   it("are text where text is typed, and belong to a dialog while it is open", () => {

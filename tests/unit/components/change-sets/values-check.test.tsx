@@ -20,7 +20,7 @@ afterEach(() => {
 });
 
 const reading = madeReading(
-  madeCharacteristic({ name: "KF", type: "MAP", unit: "kPa", dims: [2, 2], values: [100, 110, 120, 130] }),
+  madeCharacteristic({ name: "Table", type: "MAP", unit: "kPa", dims: [2, 2], values: [100, 110, 120, 130] }),
   madeCharacteristic({ name: "Limit", unit: "-", values: [6400], rawStep: 1, decimals: 0 }),
 );
 const instance = (name: string, dims: number[], values: CdfInstance["values"], unit = ""): CdfInstance => ({
@@ -32,7 +32,7 @@ const checkOf = (...instances: CdfInstance[]): ValuesCheck =>
     { instances, notes: [], problems: [] },
     2,
   );
-const same = instance("KF", [2, 2], [100, 110, 120, 130], "kPa");
+const same = instance("Table", [2, 2], [100, 110, 120, 130], "kPa");
 
 describe("the words of a check", () => {
   it("says agreement only with what was compared", () => {
@@ -40,7 +40,7 @@ describe("the words of a check", () => {
     expect(checkSentence(checkOf(same, instance("Strange", [], [1])))).toBe(
       "The file and the image agree in all 4 values that could be compared (1 name).",
     );
-    expect(checkSentence({ ...checkOf(same), problems: ["KF is there more than once."] })).toContain(
+    expect(checkSentence({ ...checkOf(same), problems: ["Table is there more than once."] })).toContain(
       "could be",
     );
     expect(checkSentence(checkOf(instance("Limit", [], [6400])))).toBe(
@@ -51,10 +51,13 @@ describe("the words of a check", () => {
   });
 
   it("counts values and names that differ", () => {
-    const check = checkOf(instance("KF", [2, 2], [100, 111, 121, 131], "bar"), instance("Limit", [], [6400]));
+    const check = checkOf(
+      instance("Table", [2, 2], [100, 111, 121, 131], "bar"),
+      instance("Limit", [], [6400]),
+    );
     expect(checkSentence(check)).toBe("3 of 5 values differ, in 1 of 2 names.");
     expect(leftOutOf(check).map(({ listed }) => listed.first)).toEqual([
-      [{ name: "KF", why: "bar in the file, kPa in the image" }],
+      [{ name: "Table", why: "bar in the file, kPa in the image" }],
     ]);
   });
 
@@ -84,7 +87,7 @@ describe("the card", () => {
 
   it("sends the file as it is and lists what differs, in units, with what was not compared", async () => {
     const check = checkOf(
-      instance("KF", [2, 2], [100, 111, 121, 131], "kPa"),
+      instance("Table", [2, 2], [100, 111, 121, 131], "kPa"),
       instance("Limit", [], [6500]),
       instance("Strange", [], [1]),
       instance("Far", [], [1]),
@@ -98,8 +101,8 @@ describe("the card", () => {
     const table = screen.getByRole("table", { name: /Values that differ/ });
     const rows = within(table).getAllByRole("row").slice(1);
     expect(rows.map((row) => row.textContent)).toEqual([
-      "KFx 1, y 0111.0110.0+1.0kPa",
-      "KFx 0, y 1121.0120.0+1.0kPa",
+      "Tablex 1, y 0111.0110.0+1.0kPa",
+      "Tablex 0, y 1121.0120.0+1.0kPa",
     ]);
     expect(screen.getByText("The first 2 of 4 are listed.")).toBeTruthy();
     expect(screen.getByText("Strange")).toBeTruthy();

@@ -99,7 +99,7 @@ describe("a change in words", () => {
 
   it("says how many changed cells no run visited, and why where that can't be told", () => {
     const table = {
-      ...{ name: "KF_Target", dims: [3, 2], secondsByCell: [], visitsByCell: [], secondsOutside: 0 },
+      ...{ name: "Boost.Target", dims: [3, 2], secondsByCell: [], visitsByCell: [], secondsOutside: 0 },
       ...{ changedCells: 2, changedVisited: 1, changedNeverVisited: [4], links: [] },
     };
     const coverage = {
@@ -109,7 +109,7 @@ describe("a change in words", () => {
     expect(visitedText(table)).toBe("1 of 2 changed cells never visited");
     expect(visitedText({ ...table, changedNeverVisited: [] })).toBe("all 2 changed cells visited");
     expect(coverageOf(coverage, "Limit_Speed")).toEqual({ table: null, reason: "one value" });
-    expect(coverageOf(coverage, "KL_Lambda")).toBeNull();
+    expect(coverageOf(coverage, "Fuel.Lambda")).toBeNull();
   });
 });
 
@@ -117,7 +117,7 @@ describe("the order", () => {
   it("lists by effect, or by function with the largest effect first and no function last", () => {
     const set = changeSet().characteristics;
     expect(orderChanges(set, "effect").map(({ changes }) => changes.map(({ name }) => name))).toEqual([
-      ["KF_Target", "KL_Lambda", "Limit_Speed"],
+      ["Boost.Target", "Fuel.Lambda", "Limit_Speed"],
     ]);
     expect(orderChanges(set, "function").map(({ name }) => name)).toEqual(["Boost", "Fuel", null]);
     expect(orderChanges([], "effect")).toEqual([]);
@@ -127,7 +127,7 @@ describe("the order", () => {
 describe("the address", () => {
   it("carries the exact view there and back, and leaves out what makes no sense", () => {
     const asked = {
-      change: "KF_A.b[0]",
+      change: "Table_A.b[0]",
       against: "22222222-2222-4222-8222-222222222222",
       order: "effect" as const,
     };
@@ -177,7 +177,7 @@ describe("warnings", () => {
       "caution: Emission-relevant",
       "caution: While reading",
     ]);
-    expect(warnings[5]?.text).toBe("Function Fuel is touched: KL_Lambda. Type approval.");
+    expect(warnings[5]?.text).toBe("Function Fuel is touched: Fuel.Lambda. Type approval.");
   });
 
   it("say nothing where all is well, and whose description was used where one side has none", () => {
